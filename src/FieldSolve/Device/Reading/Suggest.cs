@@ -28,18 +28,20 @@ internal static class Suggest
         return best;
     }
 
-    /// <summary>" (did you mean 'x'?)", or nothing.</summary>
-    public static string Hint(string name, IEnumerable<string> candidates) =>
-        Nearest(name, candidates) is string near ? $"; did you mean '{near}'?" : "";
+    /// <summary>"; did you mean 'x'?", or what there is.</summary>
+    public static string Hint(string name, IReadOnlyList<string> candidates) =>
+        Nearest(name, candidates) is string near ? $"; did you mean '{near}'?"
+        : candidates.Count == 0 ? "; there are none"
+        : $"; there are {List(candidates, "and")}";
 
     /// <summary>Names for a message: 'a', 'b' or 'c'; long lists are cut.</summary>
-    public static string List(IReadOnlyList<string> names)
+    public static string List(IReadOnlyList<string> names, string joint = "or")
     {
         const int Longest = 16;
         IEnumerable<string> quoted = names.Take(Longest).Select(n => $"'{n}'");
         return names.Count > Longest ? string.Join(", ", quoted) + " …"
             : names.Count < 2 ? string.Concat(quoted)
-            : string.Join(", ", quoted.SkipLast(1)) + " or " + quoted.Last();
+            : string.Join(", ", quoted.SkipLast(1)) + $" {joint} " + quoted.Last();
     }
 
     // V. I. Levenshtein, Soviet Physics Doklady 10 (1966) 707, with swaps of neighbours counted as one edit.

@@ -28,6 +28,14 @@ internal static class Expect
         }
     }
 
+    public static void AtLeastOne(double value, string name)
+    {
+        if (!(value >= 1) || double.IsInfinity(value))
+        {
+            throw Bad(value, string.Empty, name, "finite and one or greater");
+        }
+    }
+
     public static void Finite(double value, string unit, string name)
     {
         if (!double.IsFinite(value))
@@ -37,5 +45,5 @@ internal static class Expect
     }
 
     private static ArgumentOutOfRangeException Bad(double value, string unit, string name, string rule) =>
-        new(name, string.Create(CultureInfo.InvariantCulture, $"'{name}' is {value:G6} {unit}; it must be {rule}."));
+        new(name, string.Create(CultureInfo.InvariantCulture, $"'{name}' is {value:G6}{(unit.Length == 0 ? string.Empty : " " + unit)}; it must be {rule}."));
 }

@@ -24,8 +24,11 @@ internal sealed record FieldScan(double Lowest, double Highest)
     /// <summary>Nothing can happen: dK/dE is the same at every field.</summary>
     public static FieldScan None { get; } = new(0, 0);
 
-    /// <summary>dK/dE itself fades at large fields, so that only a negative eigenvalue counts as a loss of definiteness.</summary>
-    public bool Fades { get; init; }
+    /// <summary>
+    /// Definiteness counts as lost where the smallest eigenvalue is below this share of its zero-field value: a margin for what lies
+    /// between the sampled fields. Zero for laws whose dK/dE itself fades at large fields.
+    /// </summary>
+    public double LossShare { get; init; } = 0.01;
 
     /// <summary>Largest step in |E|, V/m.</summary>
     public double LargestStep { get; init; } = double.PositiveInfinity;

@@ -7,6 +7,10 @@ public static class LawCatalogue
     public static IReadOnlyList<LawKind> Kinds { get; } =
     [
         OhmicLaw.Registration,
+        QuadraticLaw.Registration,
+        CubicLaw.Registration,
+        SaturatingLaw.Registration,
+        TableLaw.Registration,
     ];
 
     /// <summary>The law of that name; null when there is none.</summary>

@@ -10,7 +10,7 @@ public static class LawSummary
     public static string Describe(ISheetLaw law)
     {
         ArgumentNullException.ThrowIfNull(law);
-        string terms = law is ILawDetail detail ? detail.Terms : OhmicTerms(law.AtZeroField);
+        string terms = law is ILawDetail detail ? detail.Terms : TensorTerms(law.AtZeroField);
         string reach = law.Guard is { } g
             ? $"as written up to {Number(g.From)} V/m; bent monotonically beyond, with the non-ohmic part held at its value of at most {Number(g.Limit)} V/m"
             : law.IsLinear ? "the same dK/dE at every field" : "dK/dE stays definite at every field of the law: no guard";
@@ -20,6 +20,10 @@ public static class LawSummary
     /// <summary>a = … S, b = … S, hall = … S.</summary>
     internal static string OhmicTerms(Tensor2 s) =>
         $"a = {Number(s.Aa)} S, b = {Number(s.Bb)} S" + (s.Ab == 0 ? string.Empty : $", hall = {Number(s.Ab)} S");
+
+    /// <summary>dK/dE at zero field, element by element.</summary>
+    internal static string TensorTerms(Tensor2 s) =>
+        $"dK/dE at zero field: aa = {Number(s.Aa)} S, ab = {Number(s.Ab)} S, ba = {Number(s.Ba)} S, bb = {Number(s.Bb)} S";
 
     /// <summary>The terms that are not zero, each as ", name = value unit".</summary>
     internal static string Terms(string unit, params ReadOnlySpan<(string Name, double Value)> terms)

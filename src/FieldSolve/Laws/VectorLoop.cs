@@ -18,6 +18,18 @@ internal interface IVectorFormula
 internal struct VectorSlope
 {
     public Vector<double> Ka, Kb, Aa, Ab, Ba, Bb;
+
+    /// <summary>Adds the ohmic part, which all parametric laws share.</summary>
+    [MethodImpl(MethodImplOptions.AggressiveInlining)]
+    public void AddOhmic(Vector<double> ea, Vector<double> eb, double a, double b, double hall)
+    {
+        Ka += (a * ea) + (hall * eb);
+        Kb += (b * eb) - (hall * ea);
+        Aa += new Vector<double>(a);
+        Ab += new Vector<double>(hall);
+        Ba -= new Vector<double>(hall);
+        Bb += new Vector<double>(b);
+    }
 }
 
 /// <summary>Runs a formula over spans of any length; the last, partial vector is padded with zero field.</summary>

@@ -1,1 +1,45 @@
-return 0;
+using System.CommandLine;
+using FieldSolve.Cli;
+using FieldSolve.Cli.Commands;
+
+// Paths may be printed in any script; the names of quantities carry µ and Ω.
+Console.OutputEncoding = new System.Text.UTF8Encoding(false);
+
+var root = new RootCommand(
+    "Probe voltages, potential maps and curves of a thin anisotropic sheet whose conductivity depends on the local field.\n\n"
+    + "Example: fieldsolve drive meshes/disc-12.toml --out results");
+foreach (Command command in CommandList.All())
+{
+    root.Add(command);
+}
+
+ParseResult parsed = root.Parse(args);
+if (parsed.Errors.Count > 0)
+{
+    foreach (var error in parsed.Errors)
+    {
+        Console.Error.WriteLine("fieldsolve: " + error.Message);
+    }
+
+    Console.Error.WriteLine("Try 'fieldsolve --help'.");
+    return ExitCode.WrongInput;
+}
+
+try
+{
+    return await parsed.InvokeAsync(new InvocationConfiguration
+    {
+        EnableDefaultExceptionHandler = false,
+        ProcessTerminationTimeout = TimeSpan.FromSeconds(20),
+    });
+}
+catch (OperationCanceledException)
+{
+    Console.Error.WriteLine("fieldsolve: cancelled before the first row was finished; nothing was written");
+    return ExitCode.Cancelled;
+}
+catch (Exception e) when (e is IOException or UnauthorizedAccessException)
+{
+    Console.Error.WriteLine("fieldsolve: " + e.Message.ReplaceLineEndings(" "));
+    return ExitCode.WrongInput;
+}

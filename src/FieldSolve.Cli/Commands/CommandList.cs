@@ -1,0 +1,13 @@
+using System.CommandLine;
+
+namespace FieldSolve.Cli.Commands;
+
+/// <summary>All commands; a new one is one file and one line here.</summary>
+internal static class CommandList
+{
+    public static IEnumerable<Command> All() =>
+    [
+        CheckCommand.Create(),
+        DriveCommand.Create(),
+    ];
+}

@@ -1,0 +1,99 @@
+using System.CommandLine;
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Files;
+using FieldSolve.Meshing;
+using FieldSolve.Readings;
+using FieldSolve.Runs;
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Cli.Commands;
+
+/// <summary>fieldsolve drive DEVICE --out DIR.</summary>
+internal static class DriveCommand
+{
+    private sealed record Choices(string Device, string Folder, MapChoice Maps, bool AllSigns, bool Pictures, bool Quiet, bool Json);
+
+    public static Command Create()
+    {
+        Argument<string> device = SharedOptions.Device();
+        Option<string?> folder = SharedOptions.Out();
+        Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        var maps = new Option<string>("--maps")
+        {
+            Description = "Potential maps to write (.vtu): all, last (the last current of each wiring) or none.",
+            HelpName = "all|last|none",
+            DefaultValueFactory = _ => "last",
+        };
+        maps.AcceptOnlyFromAmong("all", "last", "none");
+        var allSigns = new Option<bool>("--all-signs") { Description = "Also write the rows at the reversed currents." };
+        var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; curves, maps and run.json only." };
+        var command = new Command(
+            "drive",
+            "Potential, field, current and probe voltages as the drive increases.\n\n"
+            + "Example: fieldsolve drive meshes/disc-12.toml --out results --maps all")
+        {
+            device, folder, maps, allSigns, noPictures, quiet, json,
+        };
+        command.SetAction((ParseResult parsed, CancellationToken cancel) =>
+        {
+            string path = parsed.GetValue(device)!;
+            return Task.Run(() => Run(
+                new Choices(
+                    path,
+                    parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-drive",
+                    Enum.Parse<MapChoice>(parsed.GetValue(maps)!, ignoreCase: true),
+                    parsed.GetValue(allSigns),
+                    !parsed.GetValue(noPictures),
+                    parsed.GetValue(quiet),
+                    parsed.GetValue(json)),
+                cancel));
+        });
+        return command;
+    }
+
+    private static int Run(Choices choices, CancellationToken cancel)
+    {
+        if (DeviceLoading.Load(choices.Device) is not { } device)
+        {
+            return ExitCode.WrongInput;
+        }
+
+        if (device.Drive is null)
+        {
+            Console.Error.WriteLine(new Fault(
+                choices.Device, 1, 1, "the file has no [drive]; add one, for example: current = { from = \"0 uA\", to = \"100 uA\", steps = 11 }"));
+            return ExitCode.WrongInput;
+        }
+
+        var terminal = new Terminal(choices.Quiet);
+        DriveResult result;
+        try
+        {
+            result = DriveRun.Execute(
+                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, terminal, cancel);
+        }
+        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
+        {
+            terminal.Clear();
+            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
+            return ExitCode.WrongInput;
+        }
+
+        Directory.CreateDirectory(choices.Folder);
+        DriveFiles.Write(result, choices.Folder, choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, terminal, cancel);
+        terminal.Clear();
+        foreach (string text in result.Cautions)
+        {
+            Console.Error.WriteLine("caution: " + text);
+        }
+
+        foreach (string text in result.Warnings)
+        {
+            Console.Error.WriteLine("warning: " + text);
+        }
+
+        terminal.Print(choices.Json ? DriveText.Json(result, choices.Folder) : DriveText.Plain(result, choices.Folder));
+        return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;
+    }
+}

@@ -1,0 +1,121 @@
+using System.Globalization;
+using System.Text;
+using System.Text.Json;
+using System.Text.Json.Nodes;
+using FieldSolve.Device;
+using FieldSolve.Geometry;
+using FieldSolve.Laws;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Cli;
+
+/// <summary>Says what was understood from a device file.</summary>
+internal static class DeviceText
+{
+    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
+
+    public static string Plain(SheetDevice device)
+    {
+        var text = new StringBuilder();
+        void Line(string name, string value) => text.Append(name.PadRight(11)).Append(value).Append('\n');
+        Line("title", device.Title);
+        Line("sheet", $"{device.Shape}, {Engineering.Text(Area(device) * 1e12, "µm²", 6)} conducting, "
+            + $"{Engineering.Text(device.Domain.Size, "m", 4)} across the corners"
+            + (device.DeadEdge > 0 ? $", dead edge {Engineering.Text(device.DeadEdge, "m")}" : "")
+            + (device.Thickness is { } t ? $", {Engineering.Text(t, "m")} thick" : ""));
+        Line("law", LawSummary.Describe(device.Law));
+        Line("axis", string.Create(CultureInfo.InvariantCulture, $"crystal a at {device.Axis * 180 / Math.PI:G6} deg from lab x"));
+        foreach (Contact c in device.Contacts)
+        {
+            Line("contact", $"{c.Name}: {Place(c)}, {Engineering.Text(c.Width, "m")} {(c.Kind == ContactKind.Edge ? "wide" : "across")}{Resistance(c)}");
+        }
+
+        foreach (Tip p in device.Tips)
+        {
+            Line("point", $"{p.Name}: at ({Engineering.Text(p.At.X, "m")}, {Engineering.Text(p.At.Y, "m")})");
+        }
+
+        foreach (Wiring w in device.Wirings)
+        {
+            string pairs = string.Join("", w.Pairs.Select(p => $"; {p.Name} {Name(device, p.Plus)} - {Name(device, p.Minus)}"));
+            Line("wiring", $"{w.Name}: {device.Contacts[w.Source].Name} -> {device.Contacts[w.Drain].Name}{pairs}");
+        }
+
+        if (device.Drive is { } d)
+        {
+            Line("drive", $"{Engineering.Text(d.From, "A")} to {Engineering.Text(d.To, "A")} in {d.Steps} value{(d.Steps == 1 ? "" : "s")}"
+                + (d.BothSigns ? ", both signs" : ", one sign"));
+        }
+
+        Line("accuracy", string.Create(
+            CultureInfo.InvariantCulture,
+            $"error {device.Mesh.Error:G3} of the largest along voltage, even parts to {device.Mesh.EvenError:G3} of themselves, at most {device.Mesh.MaxUnknowns} unknowns"));
+        if (Cautions.OfMeanFreePath(device) is { } caution)
+        {
+            Line("caution", caution);
+        }
+
+        return text.ToString();
+    }
+
+    public static string Json(SheetDevice device)
+    {
+        var json = new JsonObject
+        {
+            ["title"] = device.Title,
+            ["sha256"] = device.Sha256,
+            ["shape"] = device.Shape,
+            ["area_m2"] = Area(device),
+            ["size_m"] = device.Domain.Size,
+            ["law"] = LawSummary.Describe(device.Law),
+            ["axis_deg"] = device.Axis * 180 / Math.PI,
+            ["contacts"] = new JsonArray([.. device.Contacts.Select(c => (JsonNode)new JsonObject
+            {
+                ["name"] = c.Name,
+                ["kind"] = c.Kind == ContactKind.Edge ? "edge" : "pad",
+                ["width_m"] = c.Width,
+                ["x_m"] = c.Middle.X,
+                ["y_m"] = c.Middle.Y,
+                ["line_resistance_ohm_m"] = c.LineResistance,
+                ["resistivity_ohm_m2"] = c.Resistivity,
+            })]),
+            ["points"] = new JsonArray([.. device.Tips.Select(p => (JsonNode)new JsonObject { ["name"] = p.Name, ["x_m"] = p.At.X, ["y_m"] = p.At.Y })]),
+            ["wirings"] = new JsonArray([.. device.Wirings.Select(w => (JsonNode)new JsonObject
+            {
+                ["name"] = w.Name,
+                ["source"] = device.Contacts[w.Source].Name,
+                ["drain"] = device.Contacts[w.Drain].Name,
+                ["pairs"] = new JsonObject(w.Pairs.Select(p => KeyValuePair.Create(
+                    p.Name, (JsonNode?)new JsonArray(Name(device, p.Plus), Name(device, p.Minus))))),
+            })]),
+            ["currents_A"] = new JsonArray([.. (device.Drive?.Currents ?? []).Select(c => (JsonNode)c)]),
+        };
+        return json.ToJsonString(Indented) + "\n";
+    }
+
+    private static string Name(SheetDevice device, Device.Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;
+
+    private static string Place(Contact c) =>
+        $"{(c.Kind == ContactKind.Edge ? "edge" : "pad")} at ({Engineering.Text(c.Middle.X, "m", 4)}, {Engineering.Text(c.Middle.Y, "m", 4)})";
+
+    private static string Resistance(Contact c) => c.LineResistance > 0
+        ? $", {Engineering.Text(c.LineResistance, "ohm m")}"
+        : c.Resistivity > 0 ? $", {Engineering.Text(c.Resistivity, "ohm m²")}" : "";
+
+    // Green's theorem over the rim; exact on arcs.
+    private static double Area(SheetDevice device)
+    {
+        double twice = 0;
+        foreach (DomainEdge e in device.Domain.Edges.Where(e => e.IsRim))
+        {
+            Curve c = e.Curve;
+            twice += Point2.Cross(c.Start, c.End);
+            if (c.IsArc)
+            {
+                twice += c.Radius * c.Radius * (c.Sweep - Math.Sin(c.Sweep));
+            }
+        }
+
+        return twice / 2;
+    }
+}

@@ -1,0 +1,74 @@
+using System.Globalization;
+using System.Text;
+using System.Text.Json;
+using System.Text.Json.Nodes;
+using FieldSolve.Files;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Cli;
+
+/// <summary>The short summary of a drive.</summary>
+internal static class DriveText
+{
+    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
+
+    public static string Plain(DriveResult result, string folder)
+    {
+        var text = new StringBuilder();
+        text.Append(result.Device.Title).Append('\n');
+        foreach (WiringSummary s in result.Summaries)
+        {
+            text.Append(CultureInfo.InvariantCulture, $"\n{s.Wiring} (current at {s.DirectionDegrees:G4} deg)\n");
+            void Line(string name, string value) => text.Append("  ").Append(name.PadRight(44)).Append(value).Append('\n');
+            Line("two-terminal resistance at small drive", Engineering.Text(s.TwoTerminal, "ohm", 6));
+            Line("along resistance at small drive", Engineering.Text(s.Along, "ohm", 6));
+            Line("across resistance at small drive", Engineering.Text(s.Across, "ohm", 6));
+            if (s.Slope is { } line)
+            {
+                Line("V_across_even / V_along_odd²", string.Create(
+                    CultureInfo.InvariantCulture, $"{line.Slope:G6} 1/V +- {line.SlopeError:G2} (R² = {line.RSquared:F6}, {line.Points} rows)"));
+            }
+
+            Line("law left from", s.LeftLawAt is { } left ? Engineering.Text(left, "A") : "nowhere");
+        }
+
+        Dictionary<RowStatus, int> counts = result.Rows.GroupBy(r => r.Status).ToDictionary(g => g.Key, g => g.Count());
+        text.Append('\n').Append(CultureInfo.InvariantCulture, $"{result.Rows.Count} rows: ");
+        text.AppendJoin(", ", Enum.GetValues<RowStatus>().Where(counts.ContainsKey).Select(k => $"{counts[k].ToString(CultureInfo.InvariantCulture)} {CurvesCsv.StatusText(k)}"));
+        text.Append(CultureInfo.InvariantCulture, $"; {result.Figures.Unknowns} unknowns on {result.Figures.Triangles} triangles\n");
+        if (result.Cancelled)
+        {
+            text.Append("cancelled; the rows that were finished are kept\n");
+        }
+
+        return text.Append("results in ").Append(folder).Append('\n').ToString();
+    }
+
+    public static string Json(DriveResult result, string folder)
+    {
+        var json = new JsonObject
+        {
+            ["title"] = result.Device.Title,
+            ["folder"] = folder,
+            ["rows"] = result.Rows.Count,
+            ["ok"] = result.Rows.Count(r => r.Status == RowStatus.Ok),
+            ["cancelled"] = result.Cancelled,
+            ["unknowns"] = result.Figures.Unknowns,
+            ["wirings"] = new JsonArray([.. result.Summaries.Select(s => (JsonNode)new JsonObject
+            {
+                ["name"] = s.Wiring,
+                ["direction_deg"] = s.DirectionDegrees,
+                ["two_terminal_ohm"] = s.TwoTerminal,
+                ["along_ohm"] = s.Along,
+                ["across_ohm"] = s.Across,
+                ["slope_per_V"] = s.Slope?.Slope,
+                ["slope_error_per_V"] = s.Slope?.SlopeError,
+                ["slope_r_squared"] = s.Slope?.RSquared,
+                ["law_left_at_A"] = s.LeftLawAt,
+            })]),
+            ["cautions"] = new JsonArray([.. result.Cautions.Select(c => (JsonNode)c)]),
+            ["warnings"] = new JsonArray([.. result.Warnings.Select(c => (JsonNode)c)]),
+        };
+        return json.ToJsonString(Indented) + "\n";
+    }
+}

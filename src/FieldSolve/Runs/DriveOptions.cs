@@ -1,0 +1,24 @@
+namespace FieldSolve.Runs;
+
+/// <summary>Which potential maps a drive keeps.</summary>
+public enum MapChoice
+{
+    /// <summary>None.</summary>
+    None,
+
+    /// <summary>The largest current of each wiring.</summary>
+    Last,
+
+    /// <summary>Every current.</summary>
+    All,
+}
+
+/// <summary>Choices of a drive that are not part of the device.</summary>
+public sealed record DriveOptions
+{
+    /// <summary>Maps to keep for files. Default: the last current of each wiring.</summary>
+    public MapChoice Maps { get; init; } = MapChoice.Last;
+
+    /// <summary>Also keep the maps that the pictures need (a few currents of each wiring). Default true.</summary>
+    public bool ForPictures { get; init; } = true;
+}

@@ -1,0 +1,59 @@
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Laws;
+using FieldSolve.Readings;
+using FieldSolve.Solving;
+
+namespace FieldSolve.Runs;
+
+/// <summary>
+/// The main job: potential, field, current and probe voltages as the drive increases. Refines a mesh for all wirings at the largest
+/// current, then follows every wiring with both signs on that mesh and its uniform split.
+/// </summary>
+public static class DriveRun
+{
+    /// <summary>Runs the drive of a device.</summary>
+    /// <param name="device">With a drive and at least one wiring.</param>
+    /// <param name="options">What to keep.</param>
+    /// <param name="progress">Told about stages and finished rows; may be null.</param>
+    /// <param name="cancel">When cancelled, the rows finished so far are returned with <see cref="DriveResult.Cancelled"/>;
+    /// before the first mesh stands, the call throws.</param>
+    /// <exception cref="ArgumentException">The device has no drive.</exception>
+    /// <exception cref="OperationCanceledException">Cancelled before the mesh stood.</exception>
+    /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
+    public static DriveResult Execute(SheetDevice device, DriveOptions options, IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(device);
+        ArgumentNullException.ThrowIfNull(options);
+        DriveSpec drive = device.Drive ?? throw new ArgumentException("The device has no [drive].", nameof(device));
+        var clock = new StageClock();
+        var law = new LabLaw(device.Law, device.Axis);
+        ReadingPlan[] plans = [.. device.Wirings.Select(w => new ReadingPlan(w))];
+        double largest = Refinement.Largest(drive.Currents);
+        int total = plans.Length * drive.Currents.Count;
+        Refinement refinement = Refinement.Run(
+            device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel);
+
+        var work = new DriveWork(device, options, refinement.Meshes, plans);
+        bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
+        (List<CurveRow> rows, List<CurveRow> reversed) = work.Rows(new RowMaker(device, largest, refinement.Goals), largest);
+        FieldLevel fine = refinement.Meshes.Fine;
+        return new DriveResult
+        {
+            Device = device,
+            Rows = rows,
+            ReversedRows = reversed,
+            Summaries = Summaries.Of(device, rows),
+            Maps = work.Maps,
+            Mesh = refinement.Meshes.Coarse.Space.Mesh,
+            Levels = refinement.Levels,
+            Cautions = Cautions.Of(device, [.. rows, .. reversed]),
+            Warnings = DriveWarnings.Of(rows, work.Refusals),
+            Figures = new(
+                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
+                work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),
+            Stages = clock.Times,
+            Cancelled = cancelled,
+        };
+    }
+}

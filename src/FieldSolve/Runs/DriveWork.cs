@@ -1,0 +1,169 @@
+using System.Collections.Concurrent;
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Readings;
+using FieldSolve.Solving;
+
+namespace FieldSolve.Runs;
+
+/// <summary>The solves of a drive: wirings and signs run side by side, each with its own state, so the results do not depend on the number of threads.</summary>
+internal sealed class DriveWork
+{
+    private readonly DriveOptions options;
+    private readonly MeshPair meshes;
+    private readonly ReadingPlan[] plans;
+    private readonly IReadOnlyList<double> currents;
+    private readonly bool bothSigns;
+    private readonly bool linear;
+    private readonly StateResult?[,,] states;  // wiring, current, sign
+    private readonly FieldMap?[,] maps;
+    private readonly ConcurrentDictionary<string, string> refusals = new(StringComparer.Ordinal);
+    private int done;
+
+    public DriveWork(SheetDevice device, DriveOptions options, MeshPair meshes, ReadingPlan[] plans)
+    {
+        this.options = options;
+        this.meshes = meshes;
+        this.plans = plans;
+        currents = device.Drive!.Currents;
+        bothSigns = device.Drive.BothSigns;
+        linear = device.Law.IsLinear;
+        states = new StateResult?[plans.Length, currents.Count, 2];
+        maps = new FieldMap?[plans.Length, currents.Count];
+    }
+
+    public IReadOnlyDictionary<string, string> Refusals => refusals;
+
+    public IReadOnlyList<FieldMap> Maps => [.. maps.Cast<FieldMap?>().Where(m => m is not null).Select(m => m!)];
+
+    public NewtonOutcome Total
+    {
+        get
+        {
+            NewtonOutcome sum = default;
+            foreach (StateResult? s in states)
+            {
+                sum = s is null ? sum : sum.Then(s.Outcome);
+            }
+
+            return sum;
+        }
+    }
+
+    public double LargestResidual => states.Cast<StateResult?>().Where(s => s?.Values is not null).Select(s => s!.Outcome.RelativeResidual)
+        .DefaultIfEmpty().Max();
+
+    /// <summary>Solves everything; true when cancelled.</summary>
+    public bool Run(IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
+        int signs = bothSigns && !linear ? 2 : 1;
+        var peaks = new PeakFinder(meshes.Fine.Equations);
+        try
+        {
+            // One thread takes one task at a time; tasks are as long as a whole curve, so hand them out one by one.
+            Parallel.ForEach(
+                Partitioner.Create(Enumerable.Range(0, plans.Length * signs), EnumerablePartitionerOptions.NoBuffering),
+                new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
+                job => Follow(job / signs, job % signs, signs, peaks, progress, cancel));
+        }
+        catch (OperationCanceledException)
+        {
+            return true;
+        }
+        catch (AggregateException e) when (e.InnerExceptions.All(x => x is OperationCanceledException))
+        {
+            return true;
+        }
+
+        return false;
+    }
+
+    /// <summary>The rows whose states are all there.</summary>
+    public (List<CurveRow> Rows, List<CurveRow> Reversed) Rows(RowMaker maker, double largest)
+    {
+        var rows = new List<CurveRow>();
+        var reversed = new List<CurveRow>();
+        for (int w = 0; w < plans.Length; w++)
+        {
+            for (int k = 0; k < currents.Count; k++)
+            {
+                StateResult? plus = states[w, k, 0];
+                StateResult? minus = bothSigns ? linear ? Negated(plus) : states[w, k, 1] : null;
+                if (plus is null || (bothSigns && minus is null))
+                {
+                    continue;
+                }
+
+                double along = AlongScale(k);
+                rows.Add(maker.Make(plans[w], currents[k], plus, minus, along));
+                if (minus is not null)
+                {
+                    reversed.Add(maker.Make(plans[w], -currents[k], minus, plus, along));
+                }
+            }
+        }
+
+        return (rows, reversed);
+    }
+
+    private double AlongScale(int k)
+    {
+        var readings = new List<(bool, double)>();
+        for (int w = 0; w < plans.Length; w++)
+        {
+            if (states[w, k, 0]?.Values is { } values)
+            {
+                readings.AddRange(values.Select((v, p) => (plans[w].Pairs[p] == plans[w].Wiring.Along, v)));
+            }
+        }
+
+        return Refinement.AlongScale(readings);
+    }
+
+    private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
+        var task = new DriveTask(meshes, plans[w], peaks);
+        double failedAt = double.PositiveInfinity;
+        for (int k = 0; k < currents.Count; k++)
+        {
+            double current = sign == 0 ? currents[k] : -currents[k];
+            if (Math.Abs(current) > failedAt)
+            {
+                states[w, k, sign] = new(default, null, null, null, default);
+                continue;
+            }
+
+            int at = k;
+            Action<double[]>? keep = sign == 0 && WantsMap(k)
+                ? u => maps[w, at] = FieldMapBuilder.Build(
+                    meshes.Fine.Space, meshes.Fine.Equations.Law, u, plans[w].Wiring.Drain, plans[w].Wiring.Name, current, at)
+                : null;
+            StateResult result = task.Solve(current, keep, cancel);
+            states[w, k, sign] = result;
+            if (result.Values is null)
+            {
+                failedAt = Math.Abs(current);
+                if (result.Outcome.Refusal is { } why)
+                {
+                    refusals.TryAdd(plans[w].Wiring.Name, why);
+                }
+            }
+
+            progress?.Report(new("solving", Interlocked.Increment(ref done) / signs, plans.Length * currents.Count));
+        }
+    }
+
+    private bool WantsMap(int k)
+    {
+        int last = currents.Count - 1;
+        return options.Maps == MapChoice.All || (k == last && (options.Maps == MapChoice.Last || options.ForPictures))
+            || (options.ForPictures && (k == (last + 2) / 3 || k == ((2 * last) + 2) / 3));
+    }
+
+    private static StateResult? Negated(StateResult? state) => state is null ? null : state with
+    {
+        Outcome = default,
+        Values = state.Values?.Select(v => -v).ToArray(),
+        Difference = state.Difference?.Select(v => -v).ToArray(),
+    };
+}

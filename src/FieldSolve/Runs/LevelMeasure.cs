@@ -1,0 +1,169 @@
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Readings;
+using FieldSolve.Solving;
+
+namespace FieldSolve.Runs;
+
+/// <summary>Estimated error of one reading, or of its even part, on one pair of meshes at the largest current.</summary>
+/// <param name="Plan">Wiring and pairs.</param>
+/// <param name="Pair">Index of the pair.</param>
+/// <param name="IsEven">The even part, else the reading itself.</param>
+/// <param name="Value">V.</param>
+/// <param name="Difference">Fine minus coarse, V.</param>
+/// <param name="Error">Its origin and size; null for an even part that is zero by construction.</param>
+internal sealed record GoalMeasure(ReadingPlan Plan, int Pair, bool IsEven, double Value, double Difference, GoalError Error)
+{
+    /// <summary>Error that was asked for, V; set once all readings are known.</summary>
+    public double Wanted { get; init; }
+}
+
+/// <summary>Estimates the errors of all readings of one wiring at the largest current, by coarse and fine solutions at +I and -I.</summary>
+internal static class LevelMeasure
+{
+    private const int MostAdjointSteps = 6;
+    private const double AdjointTolerance = 1e-3;
+
+    /// <summary>Measures one wiring.</summary>
+    /// <param name="meshes">Coarse and fine mesh.</param>
+    /// <param name="plan">Wiring and pairs.</param>
+    /// <param name="current">Largest current, A; lowered where the sheet cannot carry it.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="cancel">Checked at every step.</param>
+    public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, CancellationToken cancel)
+    {
+        bool linear = meshes.Fine.Equations.Law.IsLinear;
+        State? plus = null, minus = null;
+        double reached = current;
+        for (int halvings = 0; plus is null; halvings++)
+        {
+            cancel.ThrowIfCancellationRequested();
+            plus = State.Solve(meshes, plan, reached, cancel);
+            minus = bothSigns && !linear && plus is not null ? State.Solve(meshes, plan, -reached, cancel) : null;
+            if (plus is null || (bothSigns && !linear && minus is null))
+            {
+                plus = null;
+                reached /= 2;
+                if (halvings == 20)
+                {
+                    return [];
+                }
+            }
+        }
+
+        var list = new List<GoalMeasure>();
+        for (int k = 0; k < plan.Count; k++)
+        {
+            list.Add(new(
+                plan, k, false, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
+                GoalError.Of(meshes.Between, meshes.IsCore, [(1, plus.Residual, plus.Details[k])])));
+            if (minus is not null && plan.HasEven[k])
+            {
+                double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
+                list.Add(new(
+                    plan, k, true, fine, fine - coarse,
+                    GoalError.Of(
+                        meshes.Between, meshes.IsCore,
+                        [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])])));
+            }
+        }
+
+        return list;
+    }
+
+    // A coarse and a fine solution with the fine residual of the coarse one and the details of the adjoints.
+    private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details)
+    {
+        public static State? Solve(MeshPair meshes, ReadingPlan plan, double current, CancellationToken cancel)
+        {
+            (int source, int drain) = (plan.Wiring.Source, plan.Wiring.Drain);
+            double[] coarse = new double[meshes.Coarse.Equations.Length];
+            if (!new DrivePath(meshes.Coarse, source, drain).Solve(current, coarse, null, cancel).Converged)
+            {
+                return null;
+            }
+
+            double[] fine = new double[meshes.Fine.Equations.Length], residual = new double[fine.Length];
+            meshes.Between.Apply(coarse, fine);
+            var path = new DrivePath(meshes.Fine, source, drain);
+            try
+            {
+                meshes.Fine.Equations.Residual(fine, source, drain, current, residual);
+            }
+            catch (LawRefusedException)
+            {
+                return null;
+            }
+
+            if (!path.Solve(current, fine, meshes.Fine.Equations.Law.IsLinear ? null : fine, cancel).Converged)
+            {
+                return null;
+            }
+
+            double[][] vectors = plan.Vectors(meshes.Fine);
+            double[][] details = new double[plan.Count][];
+            double[]? jacobian = null;
+            if (!meshes.Fine.Equations.Law.IsLinear)
+            {
+                jacobian = new double[meshes.Fine.Space.Pattern.Count + 1];
+                meshes.Fine.Equations.Jacobian(fine, jacobian);
+            }
+
+            for (int k = 0; k < plan.Count; k++)
+            {
+                double[] z = jacobian is null ? meshes.Fine.Adjoint(vectors[k]) : Adjoint(meshes.Fine, path.Newton, jacobian, vectors[k]);
+                details[k] = new double[meshes.Between.Parent.Length];
+                meshes.Between.Detail(z, details[k]);
+            }
+
+            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
+        }
+
+        // Adjoint at the state, with whatever factor the iteration ended with as a preconditioner. Three digits are plenty for an error bar.
+        private static double[] Adjoint(FieldLevel level, NewtonSolver newton, double[] jacobian, double[] reading)
+        {
+            int n = level.Space.Size;
+            double[] z = new double[n + 1], r = new double[n], dz = new double[n], best = z;
+            double target = AdjointTolerance * Norm(reading.AsSpan(0, n)), bestNorm = double.PositiveInfinity;
+            for (int step = 0; step <= MostAdjointSteps; step++)
+            {
+                Sparse.SparseProduct.MultiplyTransposed(level.Space.Pattern, jacobian.AsSpan(0, jacobian.Length - 1), z.AsSpan(0, n), r);
+                for (int i = 0; i < n; i++)
+                {
+                    r[i] = reading[i] - r[i];
+                }
+
+                double norm = Norm(r);
+                if (norm < bestNorm)
+                {
+                    bestNorm = norm;
+                    best = (double[])z.Clone();
+                }
+
+                if (norm <= target || norm > 2 * bestNorm)
+                {
+                    break;
+                }
+
+                newton.Factor.SolveTransposed(r, dz);
+                for (int i = 0; i < n; i++)
+                {
+                    z[i] += dz[i];
+                }
+            }
+
+            return best;
+        }
+
+        private static double Norm(ReadOnlySpan<double> v)
+        {
+            double sum = 0;
+            foreach (double x in v)
+            {
+                sum += x * x;
+            }
+
+            return Math.Sqrt(sum);
+        }
+    }
+}

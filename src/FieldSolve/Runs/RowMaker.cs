@@ -1,0 +1,103 @@
+using FieldSolve.Device;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Runs;
+
+/// <summary>Makes rows from states: odd and even parts, error bars, status.</summary>
+internal sealed class RowMaker
+{
+    // Readings are differences of potentials solved to 1e-12 of the residual; nothing below this share of the largest is resolved.
+    private const double RoundingShare = 2e-13;
+
+    private readonly SheetDevice device;
+    private readonly double largest;
+    private readonly IReadOnlyList<GoalMeasure> goals;
+
+    public RowMaker(SheetDevice device, double largest, IReadOnlyList<GoalMeasure> goals)
+    {
+        this.device = device;
+        this.largest = largest == 0 ? 1 : Math.Abs(largest);
+        this.goals = goals;
+    }
+
+    /// <summary>One row.</summary>
+    /// <param name="plan">Wiring and pairs.</param>
+    /// <param name="current">A.</param>
+    /// <param name="here">State at the row's current.</param>
+    /// <param name="opposite">State at the opposite current; null when it was not solved.</param>
+    /// <param name="along">Largest along voltage of all wirings at this current, V.</param>
+    public CurveRow Make(ReadingPlan plan, double current, StateResult here, StateResult? opposite, double along)
+    {
+        int steps = here.Outcome.Steps + (opposite?.Outcome.Steps ?? 0);
+        if (here.Values is null || (opposite is not null && opposite.Values is null))
+        {
+            return new(plan.Wiring.Name, current, [], steps, RowStatus.NotConverged, null, 0, 0);
+        }
+
+        var readings = new List<Reading>();
+        double floor = RoundingShare * here.Values.Max(Math.Abs);
+        for (int k = 0; k < plan.Count; k++)
+        {
+            double error = Bar(plan, k, false, current, here.Difference![k]) + floor;
+            double guard = here.Zone!.ShareSize[k];
+            if (opposite is null)
+            {
+                readings.Add(new(plan.Pairs[k].Name, here.Values[k], error, null, null, null, guard, 0));
+                continue;
+            }
+
+            double odd = (here.Values[k] - opposite.Values![k]) / 2, even = (here.Values[k] + opposite.Values[k]) / 2;
+            double evenError = device.Law.IsLinear
+                ? 0
+                : Bar(plan, k, true, current, (here.Difference[k] + opposite.Difference![k]) / 2) + floor;
+            double evenGuard = (here.Zone.Share[k] + opposite.Zone!.Share[k]) / 2;
+            readings.Add(new(plan.Pairs[k].Name, here.Values[k], error, odd, even, evenError, guard, evenGuard));
+        }
+
+        LawExit? exit = here.Zone!.Exit ?? opposite?.Zone?.Exit;
+        return new(
+            plan.Wiring.Name, current, readings, steps, Judge(plan, readings, along, exit), exit, here.Peak.SheetCurrent, here.Peak.Power);
+    }
+
+    private RowStatus Judge(ReadingPlan plan, List<Reading> readings, double along, LawExit? exit)
+    {
+        double[] evens = [.. readings.Where((r, k) => plan.HasEven[k] && r.Even is not null).Select(r => r.Even!.Value)];
+        bool outside = false, coarse = false;
+        for (int k = 0; k < readings.Count; k++)
+        {
+            Reading r = readings[k];
+            double wanted = Refinement.Wanted(device.Mesh, along, evens, null);
+            outside |= exit is not null && Math.Abs(r.GuardShare) > wanted;
+            coarse |= r.Error > wanted;
+            if (plan.HasEven[k] && r.Even is { } even)
+            {
+                double wantedEven = Refinement.Wanted(device.Mesh, along, evens, even);
+                outside |= exit is not null && Math.Abs(r.EvenGuardShare) > wantedEven;
+                coarse |= r.EvenError > wantedEven;
+            }
+        }
+
+        return outside ? RowStatus.OutsideLaw : coarse && along > 0 ? RowStatus.ErrorAboveWanted : RowStatus.Ok;
+    }
+
+    // The bar at the largest current comes with its origin; at other currents it scales like the reading (I, or I² for the even part), unless
+    // the difference between the two meshes says that it grew faster.
+    private double Bar(ReadingPlan plan, int pair, bool even, double current, double difference)
+    {
+        if (current == 0)
+        {
+            return 0;
+        }
+
+        double ratio = Math.Abs(current) / largest, scale = even ? ratio * ratio : ratio;
+        GoalMeasure? goal = goals.FirstOrDefault(g => g.Plan == plan && g.Pair == pair && g.IsEven == even);
+        if (goal is null)
+        {
+            return Math.Abs(difference);
+        }
+
+        double usual = scale * goal.Error.Bar, expected = scale * Math.Abs(goal.Difference);
+        double excess = Math.Abs(difference) - expected;
+        return usual + (excess > 0 ? excess * Math.Min(1, goal.Error.Bar / Math.Max(Math.Abs(goal.Difference), double.Epsilon)) : 0);
+    }
+}

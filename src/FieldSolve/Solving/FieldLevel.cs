@@ -1,0 +1,80 @@
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Laws;
+using FieldSolve.Meshing;
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Solving;
+
+/// <summary>
+/// Everything that belongs to one mesh: unknowns, equations and the factor of the Jacobian at zero field, which every wiring and
+/// every weak drive shares. Safe for several threads at once.
+/// </summary>
+public sealed class FieldLevel
+{
+    private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero)
+    {
+        Space = space;
+        Equations = equations;
+        Analysis = analysis;
+        AtZero = atZero;
+    }
+
+    /// <summary>Nodes and unknowns.</summary>
+    public FieldSpace Space { get; }
+
+    /// <summary>Residual and Jacobian.</summary>
+    public SheetEquations Equations { get; }
+
+    /// <summary>Ordering and structure of the factors.</summary>
+    public SparseAnalysis Analysis { get; }
+
+    /// <summary>Factor of the Jacobian at zero field.</summary>
+    public SparseLu AtZero { get; }
+
+    /// <summary>Sets up a mesh.</summary>
+    /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
+    /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
+    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    {
+        FieldSpace space = FieldSpace.Build(device, mesh);
+        var equations = new SheetEquations(space, law);
+        (double[] x, double[] y) = space.Places();
+        SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
+        var factor = new SparseLu(analysis);
+        double[] values = new double[space.Pattern.Count + 1];
+        equations.Jacobian(new double[equations.Length], values);
+        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
+        return new(space, equations, analysis, factor);
+    }
+
+    /// <summary>
+    /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.
+    /// </summary>
+    public double[] UnitSolution(int source, int drain)
+    {
+        double[] fed = new double[Equations.Length], u = new double[Equations.Length];
+        fed[Space.ContactUnknown[source]] += 1;
+        fed[Space.ContactUnknown[drain]] -= 1;
+        AtZero.Solve(fed.AsSpan(0, Space.Size), u.AsSpan(0, Space.Size));
+        return u;
+    }
+
+    /// <summary>Potential differences V = phi(plus) - phi(minus) as the derivative with respect to the unknowns.</summary>
+    public double[] ReadingVector(Terminal plus, Terminal minus)
+    {
+        double[] j = new double[Equations.Length];
+        j[Space.UnknownOf(plus)] += 1;
+        j[Space.UnknownOf(minus)] -= 1;
+        j[Space.Size] = 0;
+        return j;
+    }
+
+    /// <summary>The adjoint of a reading at zero field: its response to a current fed in at each unknown, ohm.</summary>
+    public double[] Adjoint(ReadOnlySpan<double> reading)
+    {
+        double[] z = new double[Equations.Length];
+        AtZero.SolveTransposed(reading[..Space.Size], z.AsSpan(0, Space.Size));
+        return z;
+    }
+}

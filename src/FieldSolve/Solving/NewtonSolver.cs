@@ -1,0 +1,201 @@
+using FieldSolve.Fields;
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Solving;
+
+/// <summary>
+/// Newton's iteration for one wiring. A step first tries the factor at hand (at zero field, or of an earlier Jacobian); when that no longer
+/// contracts the residual well, the exact Jacobian is factored and the step is damped by a line search on the residual.
+/// Kept factors change how fast the residual falls, not what it falls to. J. E. Dennis, R. B. Schnabel, Numerical Methods for Unconstrained Optimization
+/// and Nonlinear Equations (1983), chapters 5 and 6. One object per thread.
+/// </summary>
+public sealed class NewtonSolver
+{
+    private const double Tolerance = 1e-12;
+
+    // The rounding of the residual itself; a solve that stalls below this is as good as it gets.
+    private const double StallTolerance = 1e-11;
+
+    // With a kept factor a step costs a tenth or less of one with a new factor, so slow contraction is still cheap.
+    private const double GoodContraction = 0.35;
+    private const int MostSteps = 80;
+    private const int MostHalvings = 12;
+
+    private readonly FieldLevel level;
+    private readonly double[] residual;
+    private readonly double[] trialResidual;
+    private readonly double[] step;
+    private readonly double[] trial;
+    private double[]? values;
+    private SparseLu? own;
+
+    /// <summary>Makes a solver that starts with the factor at zero field.</summary>
+    public NewtonSolver(FieldLevel level)
+    {
+        ArgumentNullException.ThrowIfNull(level);
+        this.level = level;
+        residual = new double[level.Equations.Length];
+        trialResidual = new double[residual.Length];
+        step = new double[residual.Length];
+        trial = new double[residual.Length];
+        Factor = level.AtZero;
+    }
+
+    /// <summary>The factor that the last step used.</summary>
+    public SparseLu Factor { get; private set; }
+
+    /// <summary>Solves R(u) = 0.</summary>
+    /// <param name="u">In: guess; out: the solution when converged, else the best found. The last entry stays 0.</param>
+    /// <param name="source">Contact the current enters the sheet at.</param>
+    /// <param name="drain">Contact it leaves at.</param>
+    /// <param name="current">A.</param>
+    /// <param name="cancel">Checked at every step.</param>
+    public NewtonOutcome Solve(double[] u, int source, int drain, double current, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(u);
+        if (current == 0)
+        {
+            Array.Clear(u);
+            return new(true, 0, 0, 0, 0, null);
+        }
+
+        int steps = 0, factorisations = 0, solves = 0;
+        double scale = Math.Abs(current) * Math.Sqrt(2), norm;
+        NewtonOutcome Outcome(bool converged, string? refusal = null) =>
+            new(converged, steps, norm / scale, factorisations, solves, refusal);
+
+        norm = double.PositiveInfinity;
+        if (!TryResidual(u, source, drain, current, residual, out norm, out string? refused))
+        {
+            return Outcome(false, refused);
+        }
+
+        bool fresh = false;
+        while (norm > Tolerance * scale)
+        {
+            cancel.ThrowIfCancellationRequested();
+            if (steps++ >= MostSteps)
+            {
+                return Outcome(norm <= StallTolerance * scale);
+            }
+
+            Step(u, 1);
+            solves++;
+            bool valid = TryResidual(trial, source, drain, current, trialResidual, out double next, out refused);
+            if (valid && next <= GoodContraction * norm)
+            {
+                norm = Accept(u, next);
+                continue;
+            }
+
+            if (norm <= StallTolerance * scale)
+            {
+                if (valid && next < norm)
+                {
+                    norm = Accept(u, next);
+                }
+
+                return Outcome(true);
+            }
+
+            if (!fresh)
+            {
+                if (!TryFactor(u, cancel))
+                {
+                    return Outcome(false);
+                }
+
+                factorisations++;
+                fresh = true;
+                continue;
+            }
+
+            // A fresh factor and still no good step: damp it.
+            double damp = 1;
+            for (int k = 0; !(valid && next <= (1 - (1e-4 * damp)) * norm); k++)
+            {
+                if (k == MostHalvings)
+                {
+                    return Outcome(false, refused);
+                }
+
+                damp /= 2;
+                Step(u, damp);
+                valid = TryResidual(trial, source, drain, current, trialResidual, out next, out refused);
+            }
+
+            norm = Accept(u, next);
+            fresh = false;
+        }
+
+        return Outcome(true);
+    }
+
+    /// <summary>Forgets the factor of an earlier Jacobian and starts again with the one at zero field.</summary>
+    public void Restart() => Factor = level.AtZero;
+
+    private void Step(double[] u, double damp)
+    {
+        int n = level.Space.Size;
+        if (damp == 1)
+        {
+            Factor.Solve(residual.AsSpan(0, n), step.AsSpan(0, n));
+        }
+
+        for (int i = 0; i < n; i++)
+        {
+            trial[i] = u[i] - (damp * step[i]);
+        }
+    }
+
+    private double Accept(double[] u, double norm)
+    {
+        trial.CopyTo(u, 0);
+        trialResidual.CopyTo(residual, 0);
+        return norm;
+    }
+
+    private bool TryResidual(
+        double[] at, int source, int drain, double current, double[] result, out double norm, out string? refusal)
+    {
+        try
+        {
+            level.Equations.Residual(at, source, drain, current, result);
+        }
+        catch (LawRefusedException e)
+        {
+            norm = double.PositiveInfinity;
+            refusal = e.Message;
+            return false;
+        }
+
+        double sum = 0;
+        for (int i = 0; i < result.Length; i++)
+        {
+            sum += result[i] * result[i];
+        }
+
+        norm = Math.Sqrt(sum);
+        refusal = null;
+        return double.IsFinite(norm);
+    }
+
+    private bool TryFactor(double[] u, CancellationToken cancel)
+    {
+        values ??= new double[level.Space.Pattern.Count + 1];
+        own ??= new SparseLu(level.Analysis);
+        try
+        {
+            level.Equations.Jacobian(u, values);
+            own.Factor(values.AsSpan(0, level.Space.Pattern.Count), cancel);
+        }
+        catch (Exception e) when (e is PivotException or LawRefusedException)
+        {
+            Factor = level.AtZero;
+            return false;
+        }
+
+        Factor = own;
+        return true;
+    }
+}

@@ -132,7 +132,7 @@ public static class Samples
 
     /// <summary>
     /// Quadratic triangles on a grid of cells x cells squares, each cut in two; all nodes of a triangle are coupled by a singular
-    /// element matrix, plus an antisymmetric part of 0.3, plus a support of 1e-3 at the first node. Rows are shuffled. With a
+    /// element matrix with an antisymmetric part, plus a <paramref name="support"/> at the first node. Rows are shuffled. With a
     /// <paramref name="grading"/> below 1 the cells shrink by that factor from one to the next.
     /// </summary>
     public static Sample Mesh(int cells, double grading = 1, double support = 1e-3, bool hub = false)
@@ -185,18 +185,24 @@ public static class Samples
         }
         SymmetricPattern pattern = Pattern(n, pairs);
         double[] values = new double[pattern.Count];
+        double lastOdd = 0;
         foreach (int[] t in triangles)
         {
             for (int a = 0; a < 6; a++)
             {
                 for (int b = 0; b < a; b++)
                 {
-                    double even = -0.5 - random.NextDouble(), odd = 0.3 * (2 * random.NextDouble() - 1);
-                    values[Place(pattern, t[a], t[b])] += even + odd;
-                    values[Place(pattern, t[b], t[a])] += even - odd;
+                    double even = -0.5 - random.NextDouble();
+                    values[Place(pattern, t[a], t[b])] += even;
+                    values[Place(pattern, t[b], t[a])] += even;
                     values[Place(pattern, t[a], t[a])] -= even;
                     values[Place(pattern, t[b], t[b])] -= even;
                 }
+                int next = a % 3 == 2 ? a - 2 : a + 1;   // around the corners and around the middles: rows still sum to 0
+                double odd = a % 3 == 0 ? 0.6 * (2 * random.NextDouble() - 1) : lastOdd;
+                values[Place(pattern, t[a], t[next])] += odd;
+                values[Place(pattern, t[next], t[a])] -= odd;
+                lastOdd = odd;
             }
         }
         for (int i = 0; hub && i < side; i++)

@@ -7,15 +7,14 @@ namespace FieldSolve.Tests.GeometryTests;
 /// <summary>Large layouts take about a second; the bounds here only catch a search of all pairs.</summary>
 public class LargeLayoutTests(ITestOutputHelper output)
 {
-    private const double Bound = 20; // seconds; all pairs of these would take minutes
+    private const double Bound = 60; // seconds on a busy machine; all pairs of these would take minutes
 
     [Fact]
     public void Fifty_thousand_corners()
     {
-        Outline star = RandomLayouts.Star(new Random(1), 50_000);
-        Timed("build outline", () => star = RandomLayouts.Star(new Random(1), 50_000));
-        Timed("validate", () => Assert.Empty(star.Validate()));
-        Outline wavy = Wavy(50_000);
+        Outline wavy = Wavy(100);
+        Timed("outline", () => wavy = Wavy(50_000));
+        Timed("validate", () => Assert.Empty(wavy.Validate()));
         Timed("inset", () => Assert.True(wavy.Inset(1e-3).Pieces.Length > 1000));
         double length = wavy.LoopLength(0) / 1000;
         ContactPlacement[] contacts = [.. Enumerable.Range(0, 1000).Select(k => Shapes.Edge(0, k * length, length / 2))];
@@ -43,8 +42,13 @@ public class LargeLayoutTests(ITestOutputHelper output)
 
     private static Point2[] Square(double x, double y) => Shapes.Rectangle(x, y, x + 0.4, y + 0.4);
 
-    private static Outline Wavy(int corners) => Shapes.Simple(
-        [.. Enumerable.Range(0, corners).Select(k => 2 * Math.PI * k / corners).Select(a => (1 + (0.1 * Math.Sin(37 * a))) * new Point2(1, 0).Turned(a))]);
+    // A coast with bays, rough down to the last corner.
+    private static Outline Wavy(int corners)
+    {
+        var random = new Random(1);
+        return Shapes.Simple([.. Enumerable.Range(0, corners).Select(k => 2 * Math.PI * k / corners)
+            .Select(a => (1 + (0.1 * Math.Sin(37 * a)) + (1e-4 * random.NextDouble())) * new Point2(1, 0).Turned(a))]);
+    }
 
     private void Timed(string what, Action action)
     {

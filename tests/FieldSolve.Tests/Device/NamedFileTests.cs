@@ -71,7 +71,7 @@ public sealed class NamedFileTests : IDisposable
         SheetDevice d = DeviceTexts.Good(Device + "[[contact]]\nname = \"x\"\npad = { file = \"pads.geojson\", name = \"b\" }\n", folder);
         Assert.True(Point2.Distance(new(8.5e-6, 1.5e-6), d.Named("x").Middle) < 1e-13);
         AssertOnly(
-            Device + "[[contact]]\nname = \"x\"\npad = { file = \"pads.geojson\", name = \"bb\" }\n", "d.toml", 19, 39, "no polygon named 'bb'; did you mean 'b'?");
+            Device + "[[contact]]\nname = \"x\"\npad = { file = \"pads.geojson\", name = \"bb\" }\n", "d.toml", 19, 39, "no polygon named 'bb'; there are 'a' and 'b'");
     }
 
     [Theory]

@@ -120,7 +120,7 @@ public sealed unsafe partial class SparseLu
             int refused = FrontKernels.Factor(u, l, width, stride, smallest);
             if (refused >= 0)
             {
-                throw new PivotException(tree.Order[first + refused], u[(nint)refused * stride + refused]);
+                throw new PivotException(a.Order[first + refused], u[(nint)refused * stride + refused]);
             }
         }
         if (rest > 0)

@@ -287,10 +287,11 @@ internal sealed class DissectionOrdering
 
     private double Quantile(ReadOnlySpan<double> px, ReadOnlySpan<double> py, Direction direction, double fraction)
     {
-        int wanted = Math.Clamp(px.Length / 4, 64, Samples), step = Math.Max(1, px.Length / wanted), m = 0;
-        for (int i = 0; i < px.Length && m < wanted; i += step)
+        int m = Math.Min(px.Length, Math.Clamp(px.Length / 4, 64, Samples));
+        for (int k = 0; k < m; k++)
         {
-            sample[m++] = direction.Of(px[i], py[i]);
+            int i = Scattered(k, px.Length);
+            sample[k] = direction.Of(px[i], py[i]);
         }
         return QuickSelect.Of(sample.AsSpan(0, m), Math.Clamp((int)(fraction * m), 0, m - 1));
     }
@@ -298,12 +299,13 @@ internal sealed class DissectionOrdering
     // Vertices below the value with a neighbour at or above it, counted on a sample of the vertices, up to a limit.
     private long Crossing(GraphPiece piece, Direction direction, double middle, long limit)
     {
-        int n = piece.Count, step = Math.Max(1, n / Math.Clamp(n / 2, 512, 4096));
+        int n = piece.Count, m = Math.Min(n, Math.Clamp(n / 2, 512, 4096));
         long count = 0;
         ReadOnlySpan<double> px = pieces.X(piece), py = pieces.Y(piece);
         ReadOnlySpan<int> start = pieces.Start(piece), neighbour = pieces.Neighbour(piece);
-        for (int i = 0; i < n && count < limit; i += step)
+        for (int k = 0; k < m && count < limit; k++)
         {
+            int i = m == n ? k : Scattered(k, n);
             if (direction.Of(px[i], py[i]) >= middle)
             {
                 continue;
@@ -319,6 +321,9 @@ internal sealed class DissectionOrdering
         }
         return count;
     }
+
+    // Spreads k = 0, 1, 2, … evenly over 0 .. n - 1 by multiples of the golden ratio: equal steps would beat with the numbering of a grid.
+    private static int Scattered(int k, int n) => (int)(((ulong)((uint)k * 2654435769u) * (ulong)n) >> 32);
 
     // a x + b y, or the squared distance from (cx, cy).
     private readonly record struct Direction(double A, double B, double Round, double Cx, double Cy)

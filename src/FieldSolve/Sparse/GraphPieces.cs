@@ -13,11 +13,11 @@ internal readonly record struct GraphPiece(int Count, int Vertex, int Start, int
 /// </summary>
 internal sealed class GraphPieces(int vertices, int edges, bool places)
 {
-    private int[] vertex = new int[2 * vertices + 64];
-    private int[] start = new int[2 * vertices + 256];
-    private int[] neighbour = new int[2 * edges + 64];
-    private double[] x = new double[places ? 2 * vertices + 64 : 0];
-    private double[] y = new double[places ? 2 * vertices + 64 : 0];
+    private int[] vertex = GC.AllocateUninitializedArray<int>(2 * vertices + 64);
+    private int[] start = GC.AllocateUninitializedArray<int>(2 * vertices + 256);
+    private int[] neighbour = GC.AllocateUninitializedArray<int>(2 * edges + 64);
+    private double[] x = GC.AllocateUninitializedArray<double>(places ? 2 * vertices + 64 : 0);
+    private double[] y = GC.AllocateUninitializedArray<double>(places ? 2 * vertices + 64 : 0);
 
     /// <summary>Row of the pattern of each vertex of a piece.</summary>
     public Span<int> Vertex(GraphPiece p) => vertex.AsSpan(p.Vertex, p.Count);

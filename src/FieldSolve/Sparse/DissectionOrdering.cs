@@ -76,6 +76,7 @@ internal sealed class DissectionOrdering
         var pieces = new GraphPieces(sparse, pattern.Count, hasPlaces);
         var top = new GraphPiece(sparse, 0, 0, 0);
         Span<int> vertex = pieces.Vertex(top), starts = pieces.Start(top), neighbour = pieces.Neighbour(top);
+        starts[0] = 0;
         int count = 0, edges = 0;
         for (int i = 0; i < n; i++)
         {

@@ -9,14 +9,17 @@ internal sealed class WiringReader
 
     private readonly Section root;
     private readonly FaultList faults;
-    private readonly bool namesComplete;
+    private readonly bool namesComplete; // false if a name may have been lost to a fault
     private readonly Dictionary<string, Terminal> terminals = [];
     private readonly List<string> contactNames = [];
     private readonly List<string> allNames = [];
 
     public WiringReader(Section root, ContactReader contacts)
     {
-        (this.root, faults, namesComplete) = (root, root.Faults, contacts.NamesComplete);
+        (this.root, faults) = (root, root.Faults);
+
+        // Without any contact that is the fault, not each name.
+        namesComplete = contacts.NamesComplete && contacts.Contacts.Count > 0;
         Dictionary<string, Place> first = [];
         Place? reported = null;
         IEnumerable<(string? Name, Place At, Terminal Terminal)> all =
@@ -40,7 +43,8 @@ internal sealed class WiringReader
                     faults.Add(at, string.Create(CultureInfo.InvariantCulture, $"the name '{name}' is already taken in line {first[name].Line}; contacts and points need different names"));
                 }
 
-                reported = at;
+                // One of the two was meant to be called otherwise.
+                (reported, namesComplete) = (at, false);
                 continue;
             }
 

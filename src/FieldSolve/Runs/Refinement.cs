@@ -57,6 +57,10 @@ internal sealed class Refinement
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
         IReadOnlyList<GoalMeasure> goals = [];
+
+        // All currents zero: the errors are zero too, but one ampere tells whether the mesh is any good. A wiring that cannot carry the largest current
+        // is measured at what it carried on the mesh before.
+        double[] currents = [.. plans.Select(_ => largest == 0 ? 1 : largest)];
         for (int level = 0; ; level++)
         {
             TriangleMesh mesh = clock.Time("mesh", () => Mesher.Generate(device.Domain, size, null, cancel));
@@ -67,7 +71,7 @@ internal sealed class Refinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, largest, bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, bothSigns, cancel));
             (best, goals) = (meshes, measured);
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));
@@ -82,14 +86,17 @@ internal sealed class Refinement
     }
 
     private static List<GoalMeasure> Measure(
-        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, CancellationToken cancel)
+        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double[] currents, bool bothSigns, CancellationToken cancel)
     {
-        // All currents zero: the errors are zero too, but one ampere tells whether the mesh is any good.
-        double current = largest == 0 ? 1 : largest;
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
-            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], current, bothSigns, cancel));
+            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], currents[k], bothSigns, cancel));
+        for (int k = 0; k < plans.Count; k++)
+        {
+            currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];
+        }
+
         double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
         var all = new List<GoalMeasure>();

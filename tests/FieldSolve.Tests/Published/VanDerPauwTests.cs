@@ -1,0 +1,71 @@
+using FieldSolve.Readings;
+using FieldSolve.Tests.PublishedTests.References;
+using Xunit.Abstractions;
+
+namespace FieldSolve.Tests.PublishedTests;
+
+/// <summary>
+/// The theorem exp(-pi R_AB,CD / Rs) + exp(-pi R_BC,DA / Rs) = 1 and the errors that contacts of finite width bring: L. J. van der Pauw, Philips
+/// Res. Rep. 13 (1958) 1 and Philips Tech. Rev. 20 (1958/59) 220.
+/// </summary>
+public class VanDerPauwTests(ITestOutputHelper output)
+{
+    private const double Radius = 5e-4, Current = 1e-3;
+    private readonly Honesty honesty = new(output);
+
+    // Uneven places and small arcs, which the theorem takes for points: each arc costs about (width / diameter)² / (16 ln 2) of Rs, 7e-6 here, more where
+    // neighbours are close. An anisotropic sheet answers with sqrt(rho_a rho_b) and a Hall part drops out (W. L. V. Price, Solid-State Electron. 16 (1973) 753):
+    // with a Hall part rho is the symmetric part of the resistivity.
+    [Theory]
+    [InlineData(2e-3, 2e-3, 0)]
+    [InlineData(4e-3, 1e-3, 1.5e-3)]
+    public void The_theorem_gives_the_sheet_resistance(double a, double b, double hall)
+    {
+        double half = 0.5;
+        DriveResult r = TestDrive.Run(DeviceText.Disc(Radius, DeviceText.Ohmic(a, b, hall, 20))
+            .Arc("a", 10, half, Radius).Arc("b", 65, half, Radius).Arc("c", 180, half, Radius).Arc("d", 290, half, Radius)
+            .Wiring("ab", "a", "b", "d c").Wiring("bc", "b", "c", "a d").Wiring("ca", "c", "a", null, null, "bd: b d").Drive(Current));
+        double abcd = r.Rows[0].Of("along")!.Value / Current, bcda = r.Rows[1].Of("along")!.Value / Current;
+        double expected = Math.Sqrt(a * b) / ((a * b) + (hall * hall));
+        double low = expected / 2, high = 2 * expected;
+        for (int i = 0; i < 60; i++)
+        {
+            double rs = (low + high) / 2;
+            (low, high) = Math.Exp(-Math.PI * abcd / rs) + Math.Exp(-Math.PI * bcda / rs) < 1 ? (rs, high) : (low, rs);
+        }
+
+        output.WriteLine(FormattableString.Invariant($"theorem: Rs off by {(low / expected) - 1:E2}"));
+        Assert.InRange(low / expected, 1 - 3e-4, 1 + 3e-4);
+    }
+
+    // One wide arc at A, the others points: by reciprocity the current goes through C and D, whose own width of 0.5 degrees takes 2e-6 of Rs each.
+    [Theory]
+    [InlineData(0.2)]
+    public void One_wide_contact_lowers_the_reading(double lengthOverDiameter)
+    {
+        double small = 0.25, rs = 500;
+        DriveResult r = TestDrive.Run(DeviceText.Disc(Radius, DeviceText.Ohmic(1 / rs, 1 / rs))
+            .Arc("a", 0, lengthOverDiameter * 180 / Math.PI, Radius).RimTip("b", 90, Radius).Arc("c", 180, small, Radius).Arc("d", 270, small, Radius)
+            .Wiring("cd", "c", "d", "b a").Drive(Current));
+        double exact = rs * Math.Log(2) / Math.PI * (1 + PointContacts.OneArcError(lengthOverDiameter)) * Current;
+        honesty.Reading("van der Pauw, one arc l/D = 0.2", r, "along", exact, 1e-5 * exact);
+    }
+
+    [Theory]
+    [InlineData(2.5)]
+    [InlineData(10)]
+    [InlineData(30)]
+    public void Four_equal_arcs(double half)
+    {
+        double rs = 250, unit = rs * Current;
+        var exact = new FourArcs(half);
+        DriveResult r = TestDrive.Run(DeviceText.Disc(Radius, DeviceText.Ohmic(1 / rs, 1 / rs))
+            .Arc("a", 0, half, Radius).Arc("b", 90, half, Radius).Arc("c", 180, half, Radius).Arc("d", 270, half, Radius)
+            .Wiring("ab", "a", "b", "d c").Wiring("ac", "a", "c", null, "b d").Drive(Current));
+        string name = $"four arcs {half} deg";
+        honesty.Reading(name, r, "along", unit * exact.VanDerPauw);
+        honesty.Reading(name + ", neighbours", r, "source", unit * exact.Adjacent);
+        honesty.Reading(name + ", opposite", r, r.Rows[1], "source", unit * exact.Opposite);
+        honesty.Reading(name + ", opposite", r, r.Rows[1], "across", 0);
+    }
+}

@@ -26,7 +26,7 @@ public class OrderTests(ITestOutputHelper output)
             .Whole("out", "rim", "outer").Whole("in", "rim", "inner").Wiring("w", "in", "out").Drive(1e-6));
         TriangleMesh mesh = Mesher.Generate(device.Domain, new GradedSize(Inner, []));
         var law = new LabLaw(device.Law, device.Axis);
-        double exact = Ring.Resistance(Inner, Outer, Sigma);
+        double exact = ConcentricRing.Resistance(Inner, Outer, Sigma);
         var errors = new List<(double Potential, double Resistance)>();
         for (int level = 0; level < 4; level++, mesh = UniformSplit.Split(mesh))
         {

@@ -24,7 +24,7 @@ public class HardCaseTests(ITestOutputHelper output)
         Assert.Contains(r.Warnings, w => w.Contains("not converge", StringComparison.Ordinal));
         foreach (CurveRow row in r.Rows.Take(3))
         {
-            double exact = Ring.Voltage(Inner, Outer, row.Current, Ring.Saturating(Sigma, Field, 2));
+            double exact = ConcentricRing.Voltage(Inner, Outer, row.Current, ConcentricRing.Saturating(Sigma, Field, 2));
             Assert.Equal(1, row.Of("source")!.Value / exact, 1e-3);
         }
     }
@@ -36,7 +36,7 @@ public class HardCaseTests(ITestOutputHelper output)
         double c = 1e3 * Sigma / (Field * Field), current = 2 * Math.PI * Inner * Sigma * Field * 10;
         string law = DeviceText.Law("cubic", Sigma, Sigma, 0, ("c11", c, "A m^2/V^3"), ("c12", c, "A m^2/V^3"), ("c21", c, "A m^2/V^3"), ("c22", c, "A m^2/V^3"));
         DriveResult r = TestDrive.Run(RingDevice(law).Drive(current));
-        honesty.Reading("ring, cubic, one stride", r, "source", Ring.Voltage(Inner, Outer, current, Ring.Cubic(Sigma, c)));
+        honesty.Reading("ring, cubic, one stride", r, "source", ConcentricRing.Voltage(Inner, Outer, current, ConcentricRing.Cubic(Sigma, c)));
     }
 
     // At ideal contact ends the field exceeds every bound: driven hard, a quadratic law without a limit must say that the guard decides, and where; a limit helps.
@@ -80,7 +80,7 @@ public class HardCaseTests(ITestOutputHelper output)
             foreach (CurveRow row in r.Rows.Take(2))
             {
                 // Piecewise cubics on 40 steps: 1e-4 of the cubic part at most.
-                double exact = Ring.Voltage(Inner, Outer, row.Current, Ring.Cubic(Sigma, C));
+                double exact = ConcentricRing.Voltage(Inner, Outer, row.Current, ConcentricRing.Cubic(Sigma, C));
                 honesty.Reading("ring, table", r, row, "source", exact, 1e-4 * exact);
             }
 

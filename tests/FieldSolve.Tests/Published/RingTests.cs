@@ -16,7 +16,7 @@ public class RingTests(ITestOutputHelper output)
     public void Constant_tensor(double hallAngle)
     {
         DriveResult r = TestDrive.Run(Device(DeviceText.Ohmic(Sigma, Sigma, Sigma * Math.Tan(hallAngle))).Drive(1e-4));
-        double exact = 1e-4 * Ring.Resistance(Inner, Outer, Sigma);
+        double exact = 1e-4 * ConcentricRing.Resistance(Inner, Outer, Sigma);
         honesty.Reading($"ring, Hall angle {hallAngle}", r, "source", exact);
         honesty.Reading($"ring, Hall angle {hallAngle}", r, "along", exact * Math.Log(2) / Math.Log(3));
         honesty.Reading($"ring, Hall angle {hallAngle}", r, "across", 0);
@@ -32,12 +32,12 @@ public class RingTests(ITestOutputHelper output)
         double full = 2 * Math.PI * Inner * Sigma * Field;
         string law = DeviceText.Law("saturating", Sigma, Sigma, 25, ("field_a", Field, "V/m"), ("field_b", Field, "V/m"), ("sharpness", sharpness, ""));
         DriveResult r = TestDrive.Run(Device(law).Drive(0.3 * full, 0.9 * full, 3, bothSigns: true));
-        Func<double, double> fieldOf = Ring.Saturating(Sigma, Field, sharpness);
+        Func<double, double> fieldOf = ConcentricRing.Saturating(Sigma, Field, sharpness);
         foreach (CurveRow row in r.Rows)
         {
             string name = FormattableString.Invariant($"ring, saturating m = {sharpness}, {row.Current / full:F1} of the limit");
-            honesty.Reading(name, r, row, "source", Ring.Voltage(Inner, Outer, row.Current, fieldOf));
-            honesty.Reading(name, r, row, "along", Ring.Voltage(Inner, 2 * Inner, row.Current, fieldOf));
+            honesty.Reading(name, r, row, "source", ConcentricRing.Voltage(Inner, Outer, row.Current, fieldOf));
+            honesty.Reading(name, r, row, "along", ConcentricRing.Voltage(Inner, 2 * Inner, row.Current, fieldOf));
             Assert.InRange(Math.Abs(row.Of("source")!.Even!.Value), 0, 1e-10 * row.Of("source")!.Value);
         }
     }
@@ -56,7 +56,7 @@ public class RingTests(ITestOutputHelper output)
         {
             string name = FormattableString.Invariant($"ring, cubic c = {cubic}, i = {row.Current / unit:G3}");
             Assert.Equal(RowStatus.Ok, row.Status);
-            honesty.Reading(name, r, row, "source", Ring.Voltage(Inner, Outer, row.Current, Ring.Cubic(Sigma, c)));
+            honesty.Reading(name, r, row, "source", ConcentricRing.Voltage(Inner, Outer, row.Current, ConcentricRing.Cubic(Sigma, c)));
         }
 
         Assert.Equal(0, r.Rows[0].Of("source")!.Value);

@@ -169,10 +169,10 @@ public class ReferenceTests
     public void Ring_with_a_saturating_law(double part, int sharpness, double voltage)
     {
         double current = 2 * Math.PI * part;
-        Near(voltage, Ring.Voltage(1, 3, current, Ring.Saturating(1, 1, sharpness)));
+        Near(voltage, ConcentricRing.Voltage(1, 3, current, ConcentricRing.Saturating(1, 1, sharpness)));
         if (sharpness < 3)
         {
-            Near(voltage, Ring.SaturatingVoltage(1, 3, current, 1, 1, sharpness));
+            Near(voltage, ConcentricRing.SaturatingVoltage(1, 3, current, 1, 1, sharpness));
         }
     }
 
@@ -182,10 +182,10 @@ public class ReferenceTests
     [InlineData(2, -0.01, 2.2354481385)]
     public void Ring_with_a_cubic_law(double current, double c, double voltage)
     {
-        Near(voltage, Ring.Voltage(1, 3, 2 * Math.PI * current, Ring.Cubic(1, c)));
+        Near(voltage, ConcentricRing.Voltage(1, 3, 2 * Math.PI * current, ConcentricRing.Cubic(1, c)));
         if (c > 0)
         {
-            Near(voltage, Ring.CubicVoltage(1, 3, 2 * Math.PI * current, 1, c));
+            Near(voltage, ConcentricRing.CubicVoltage(1, 3, 2 * Math.PI * current, 1, c));
         }
     }
 

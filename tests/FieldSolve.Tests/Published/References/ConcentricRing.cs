@@ -4,7 +4,7 @@ namespace FieldSolve.Tests.PublishedTests.References;
 /// A ring with ideal contacts over its inner and outer rim: O. M. Corbino, Phys. Z. 12 (1911) 561. Radial by symmetry, so K = I / (2 pi r) and the voltage is a single integral.
 /// SI units.
 /// </summary>
-internal static class Ring
+internal static class ConcentricRing
 {
     /// <summary>Ohmic sheet with a Hall part: no field along the circles, so only sigma_xx counts.</summary>
     public static double Resistance(double inner, double outer, double sigma) => Math.Log(outer / inner) / (2 * Math.PI * sigma);

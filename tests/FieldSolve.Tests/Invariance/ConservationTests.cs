@@ -20,7 +20,7 @@ public class ConservationTests
     {
         string law = kind switch
         {
-            "saturating" => DeviceText.Law(kind, 2e-3, 1e-3, 20, ("field_a", 1e4, "V/m"), ("field_b", 2e4, "V/m"), ("sharpness", 2, "")),
+            "saturating" => DeviceText.Law(kind, 2e-3, 1e-3, 20, ("field_a", 1e5, "V/m"), ("field_b", 2e5, "V/m"), ("sharpness", 2, "")),
             "cubic" => DeviceText.Law(kind, 2e-3, 1e-3, 20, ("hall", 1e-3, "S"), ("d12", 1e-8, "A m/V^2"), ("c11", 1e-12, "A m^2/V^3"), ("field_limit", 1e5, "V/m")),
             _ => DeviceText.Law(kind, 2e-3, 1e-3, 20, ("hall", 1e-3, "S")),
         };
@@ -41,7 +41,7 @@ public class ConservationTests
             Assert.Equal(expected[c], contacts[c], 1e-10 * Current);
         }
 
-        // The second contact is resistive and the current through it really passes the sheet: it dissipates.
+        // Contact b is resistive; a positive current needs its metal below the source's.
         Assert.True(u[level.Space.ContactUnknown[2]] > u[level.Space.ContactUnknown[1]]);
     }
 

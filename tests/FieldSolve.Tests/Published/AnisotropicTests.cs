@@ -37,7 +37,7 @@ public class AnisotropicTests(ITestOutputHelper output)
     {
         DriveResult r = Disc(0.5, direction, ratio);
         LogChord chord = RimChords.Anisotropic(ratio);
-        double finiteWidth = 4 * Math.Pow(RimChords.Radians(0.5), 2) * Mean * Current;
+        double finiteWidth = 5 * Math.Pow(RimChords.Radians(0.5), 2) * Mean * Current;
         double along = PointContacts.Disc(direction + 180, direction, direction + 150, direction + 30, chord);
         double across = PointContacts.Disc(direction + 180, direction, direction + 90, direction - 90, chord);
         string name = $"point series, ratio {ratio}, direction {direction} deg";
@@ -54,13 +54,10 @@ public class AnisotropicTests(ITestOutputHelper output)
         const double Side = 1e-3, Small = Side / 500, H = Side / 2;
         DriveResult r = TestDrive.Run(DeviceText.Bar(Side, Side, DeviceText.Ohmic(2 / Mean, 0.5 / Mean))
             .Stretch("sw", -H, -H + Small, -H, -H).Stretch("se", H, -H, H, -H + Small).Stretch("nw", -H, H, -H, H - Small).Tip("ne", H, H)
-            .Wiring("x", "sw", "se", "nw ne").Drive(Current));
-        DriveResult s = TestDrive.Run(DeviceText.Bar(Side, Side, DeviceText.Ohmic(2 / Mean, 0.5 / Mean))
-            .Stretch("sw", -H, -H + Small, -H, -H).Stretch("se", H, -H, H, -H + Small).Stretch("nw", -H, H, -H, H - Small).Tip("ne", H, H)
-            .Wiring("y", "sw", "nw", "se ne").Drive(Current));
+            .Wiring("x", "sw", "se", "nw ne").Wiring("y", "sw", "nw", "se ne").Drive(Current));
         double x = Mean * Current * PointContacts.Rectangle(1, 2), y = Mean * Current * PointContacts.Rectangle(2, 1);
-        honesty.Reading("Montgomery square, current along the easy axis", r, "along", x, 1e-4 * x);
-        honesty.Reading("Montgomery square, current along the hard axis", s, "along", y, 1e-4 * y);
+        honesty.Reading("Montgomery square, easy axis", r, r.Rows[0], "along", x, 1e-4 * x);
+        honesty.Reading("Montgomery square, hard axis", r, r.Rows[1], "along", y, 1e-4 * y);
     }
 
     private static DriveResult Disc(double half, double direction, double ratio)

@@ -18,14 +18,14 @@ public class HardCaseTests(ITestOutputHelper output)
     {
         double full = 2 * Math.PI * Inner * Sigma * Field;
         string law = DeviceText.Law("saturating", Sigma, Sigma, 0, ("field_a", Field, "V/m"), ("field_b", Field, "V/m"), ("sharpness", 2, ""));
-        DriveResult r = TestDrive.Run(RingDevice(law).Drive(0.3 * full, 1.5 * full, 5));
+        DriveResult r = TestDrive.Run(RingDevice(law).Drive(0.3 * full, 1.5 * full, 5).Wanted(1e-2));
         Assert.Equal([RowStatus.NotConverged, RowStatus.NotConverged], r.Rows.Skip(3).Select(row => row.Status));
         Assert.All(r.Rows.Skip(3), row => Assert.Empty(row.Readings));
         Assert.Contains(r.Warnings, w => w.Contains("not converge", StringComparison.Ordinal));
         foreach (CurveRow row in r.Rows.Take(3))
         {
             double exact = ConcentricRing.Voltage(Inner, Outer, row.Current, ConcentricRing.Saturating(Sigma, Field, 2));
-            Assert.Equal(1, row.Of("source")!.Value / exact, 1e-3);
+            Assert.Equal(1, row.Of("source")!.Value / exact, 1e-2);
         }
     }
 

@@ -17,8 +17,10 @@ internal static class MeshSizes
     private const double Growth = 0.7;
 
     // Share of the wanted error that regular triangles and singular points may use; the rest is for what the prediction misses.
-    private const double RegularBudget = 0.35;
-    private const double CoreBudget = 0.15;
+    private const double RegularBudget = 0.5;
+    private const double CoreBudget = 0.2;
+
+    private const double LessEachLevel = 0.65;
 
     /// <summary>Sizes of the first mesh.</summary>
     public static ISizeField First(SheetDevice device)
@@ -35,8 +37,9 @@ internal static class MeshSizes
     /// <summary>Sizes of the next mesh.</summary>
     /// <param name="meshes">The meshes that were measured.</param>
     /// <param name="goals">Errors with what was wanted.</param>
+    /// <param name="level">Level of the mesh that was measured; a prediction that failed before gets less of the wanted error.</param>
     /// <param name="mostTriangles">Most triangles of the next coarse mesh.</param>
-    public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int mostTriangles)
+    public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level, int mostTriangles)
     {
         TriangleMesh mesh = meshes.Coarse.Space.Mesh;
         double[] load = Loads(mesh, goals);
@@ -45,7 +48,7 @@ internal static class MeshSizes
         var regular = new List<double>();
         for (int t = 0; t < load.Length; t++)
         {
-            if (meshes.IsCore[t])
+            if (meshes.Vertex[t] >= 0)
             {
                 coreLoad += load[t];
                 cores++;
@@ -56,25 +59,36 @@ internal static class MeshSizes
             }
         }
 
-        double even = Equidistribution(regular, mostTriangles);
-        double[] size = new double[mesh.VertexCount];
+        double cancelling = Cancelling(regular.Sum() + coreLoad, goals) * Math.Pow(LessEachLevel, level);
+        double even = Equidistribution(regular, RegularBudget * cancelling, mostTriangles);
+        double[] inside = new double[load.Length], size = new double[mesh.VertexCount];
         Array.Fill(size, double.PositiveInfinity);
         for (int t = 0; t < load.Length; t++)
         {
-            double factor = meshes.IsCore[t]
-                ? Math.Clamp(CoreBudget / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1e-3, 2)
+            int vertex = meshes.Vertex[t];
+            double factor = vertex >= 0
+                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / meshes.Exponent[vertex]), 1e-3, 2)
                 : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
-            double edge = LongestEdge(mesh, t);
+            double edge = EquilateralEdge(mesh, t);
+
+            // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
+            inside[t] = (vertex >= 0 ? Math.Max(factor, 1) : factor) * edge;
             for (int k = 0; k < 3; k++)
             {
-                // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
                 int v = mesh.Corners[(3 * t) + k];
-                bool mayShrink = !meshes.IsCore[t] || v < mesh.Domain.Vertices.Count;
-                size[v] = Math.Min(size[v], (mayShrink ? factor : Math.Max(factor, 1)) * edge);
+                size[v] = Math.Min(size[v], vertex == v ? factor * edge : inside[t]);
             }
         }
 
-        return new VertexSize(mesh, size, Growth);
+        return new TriangleSize(mesh, inside, size, Growth);
+    }
+
+    // The loads count every contribution positive and take the worst reading in each triangle; how much more that is than the worst reading's own
+    // bar is much the same on the next mesh.
+    private static double Cancelling(double total, IReadOnlyList<GoalMeasure> goals)
+    {
+        double worst = goals.Max(g => g.Error.Bar / g.Wanted);
+        return worst > 0 ? Math.Clamp(total / worst, 1, 20) : 1;
     }
 
     // Per triangle, the largest share of a wanted error over all readings.
@@ -94,7 +108,7 @@ internal static class MeshSizes
 
     // The error per triangle goes like size^6 (density size^4 times area), so the cheapest mesh has equal errors. Find that
     // common error: with N(e) = sum of (load/e)^(1/3) triangles, e N(e) is the budget.
-    private static double Equidistribution(List<double> load, int mostTriangles)
+    private static double Equidistribution(List<double> load, double budget, int mostTriangles)
     {
         double sum = load.Sum(x => Math.Cbrt(x));
         if (sum == 0)
@@ -102,21 +116,16 @@ internal static class MeshSizes
             return 1;
         }
 
-        double even = Math.Pow(RegularBudget / sum, 1.5);
+        double even = Math.Pow(budget / sum, 1.5);
         double count = sum / Math.Cbrt(even);
         return count > mostTriangles ? Math.Pow(sum / mostTriangles, 3) : even;
     }
 
-    private static double LongestEdge(TriangleMesh mesh, int t)
+    // The mesher makes about as many triangles as equilateral ones of the wanted edge would be.
+    private static double EquilateralEdge(TriangleMesh mesh, int t)
     {
-        double longest = 0;
-        for (int k = 0; k < 3; k++)
-        {
-            int a = mesh.Corners[(3 * t) + k], b = mesh.Corners[(3 * t) + ((k + 1) % 3)];
-            double dx = mesh.X[b] - mesh.X[a], dy = mesh.Y[b] - mesh.Y[a];
-            longest = Math.Max(longest, (dx * dx) + (dy * dy));
-        }
-
-        return Math.Sqrt(longest);
+        int a = mesh.Corners[3 * t], b = mesh.Corners[(3 * t) + 1], c = mesh.Corners[(3 * t) + 2];
+        double area = 0.5 * (((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.X[c] - mesh.X[a]) * (mesh.Y[b] - mesh.Y[a])));
+        return Math.Sqrt(4 / Math.Sqrt(3) * area);
     }
 }

@@ -26,6 +26,7 @@ public sealed class NewtonSolver
     private readonly double[] trialResidual;
     private readonly double[] step;
     private readonly double[] trial;
+    private readonly StepMixer mixer;
     private double[]? values;
     private SparseLu? own;
 
@@ -38,6 +39,7 @@ public sealed class NewtonSolver
         trialResidual = new double[residual.Length];
         step = new double[residual.Length];
         trial = new double[residual.Length];
+        mixer = new StepMixer(level.Space.Size);
         Factor = level.AtZero;
     }
 
@@ -71,6 +73,7 @@ public sealed class NewtonSolver
         }
 
         bool fresh = false;
+        mixer.Reset();
         while (norm > Tolerance * scale)
         {
             cancel.ThrowIfCancellationRequested();
@@ -79,12 +82,14 @@ public sealed class NewtonSolver
                 return Outcome(norm <= StallTolerance * scale);
             }
 
-            Step(u, 1);
+            // A step with a kept factor is combined with the steps before it; one with a fresh factor is Newton's own.
+            Step(u, 1, mix: !fresh);
             solves++;
             bool valid = TryResidual(trial, source, drain, current, trialResidual, out double next, out refused);
             if (valid && next <= GoodContraction * norm)
             {
                 norm = Accept(u, next);
+                fresh = false;
                 continue;
             }
 
@@ -107,6 +112,7 @@ public sealed class NewtonSolver
 
                 factorisations++;
                 fresh = true;
+                mixer.Reset();
                 continue;
             }
 
@@ -120,7 +126,7 @@ public sealed class NewtonSolver
                 }
 
                 damp /= 2;
-                Step(u, damp);
+                Step(u, damp, mix: false);
                 valid = TryResidual(trial, source, drain, current, trialResidual, out next, out refused);
             }
 
@@ -134,17 +140,26 @@ public sealed class NewtonSolver
     /// <summary>Forgets the factor of an earlier Jacobian and starts again with the one at zero field.</summary>
     public void Restart() => Factor = level.AtZero;
 
-    private void Step(double[] u, double damp)
+    private void Step(double[] u, double damp, bool mix)
     {
         int n = level.Space.Size;
         if (damp == 1)
         {
             Factor.Solve(residual.AsSpan(0, n), step.AsSpan(0, n));
+            for (int i = 0; i < n; i++)
+            {
+                step[i] = -step[i];
+            }
+
+            if (mix)
+            {
+                mixer.Mix(u, step.AsSpan(0, n));
+            }
         }
 
         for (int i = 0; i < n; i++)
         {
-            trial[i] = u[i] - (damp * step[i]);
+            trial[i] = u[i] + (damp * step[i]);
         }
     }
 

@@ -16,8 +16,12 @@ public sealed class NewtonSolver
     // The rounding of the residual itself; a solve that stalls below this is as good as it gets.
     private const double StallTolerance = 1e-11;
 
-    // With a kept factor a step costs a tenth or less of one with a new factor, so slow contraction is still cheap.
+    // A step that does not bring the residual down to this share of itself calls for a new factor, or for damping.
     private const double GoodContraction = 0.35;
+
+    // A new Jacobian with its factor costs about as much as three steps with a kept one and then saves all but three or four steps (measured on
+    // 32,000 unknowns: residual 0.9 ms, solve 3 ms, Jacobian 3.3 ms, factor 5.5 ms).
+    private const double WorthNewFactor = 7;
     private const int MostSteps = 80;
     private const int MostHalvings = 12;
 
@@ -88,8 +92,16 @@ public sealed class NewtonSolver
             bool valid = TryResidual(trial, source, drain, current, trialResidual, out double next, out refused);
             if (valid && next <= GoodContraction * norm)
             {
+                double stepsLeft = Math.Log(Tolerance * scale / next) / Math.Log(next / norm);
                 norm = Accept(u, next);
                 fresh = false;
+                if (stepsLeft > WorthNewFactor && TryFactor(u, cancel))
+                {
+                    factorisations++;
+                    fresh = true;
+                    mixer.Reset();
+                }
+
                 continue;
             }
 

@@ -39,6 +39,28 @@ public class HardCaseTests(ITestOutputHelper output)
         honesty.Reading("ring, cubic, one stride", r, "source", ConcentricRing.Voltage(Inner, Outer, current, ConcentricRing.Cubic(Sigma, c)));
     }
 
+    // Step by step or at once, the last current reads the same.
+    [Fact]
+    public void A_warm_start_ends_where_a_cold_one_does()
+    {
+        const string Second = "A m/V^2";
+        string law = DeviceText.Law("quadratic", 2e-3, 1e-3, 20, ("d11", -6e-9, Second), ("d12", -4e-9, Second), ("d26", -3e-9, Second), ("field_limit", 1e5, "V/m"));
+        DriveResult Drive(int steps) => TestDrive.Run(DeviceText.Bar(12e-6, 6e-6, law)
+            .Whole("in", "end", "left").Whole("out", "end", "right").Tip("p", -2e-6, 3e-6).Tip("q", 2e-6, 3e-6).Tip("l", 0, 3e-6).Tip("r", 0, -3e-6)
+            .Wiring("w", "in", "out", "p q", "l r").Drive(steps == 1 ? 1e-3 : 0, 1e-3, steps).Wanted(1e-3));
+        CurveRow cold = Drive(1).Rows[0], warm = Drive(9).Rows[^1];
+        Assert.Equal(RowStatus.Ok, warm.Status);
+        foreach (Reading reading in cold.Readings)
+        {
+            Assert.Equal(reading.Value, warm.Of(reading.Pair)!.Value, 1e-10 * cold.Of("source")!.Value);
+        }
+
+        // The law matters here: without it along would be far off.
+        CurveRow weak = Drive(9).Rows[1];
+        double growth = warm.Of("across")!.Value / weak.Of("across")!.Value / (warm.Current / weak.Current);
+        Assert.True(Math.Abs(growth - 1) > 0.05, FormattableString.Invariant($"{growth}"));
+    }
+
     // At ideal contact ends the field exceeds every bound: driven hard, a quadratic law without a limit must say that the guard decides, and where; a limit helps.
     [Fact]
     public void A_quadratic_law_driven_beyond_itself_says_so()

@@ -55,6 +55,40 @@ public class VanDerPauwTests(ITestOutputHelper output)
     }
 
     [Theory]
+    [InlineData(0.05)]
+    public void A_contact_inside_the_rim_lowers_the_reading(double depthOverDiameter)
+    {
+        double small = 0.25, rs = 500;
+        DriveResult r = TestDrive.Run(DeviceText.Disc(Radius, DeviceText.Ohmic(1 / rs, 1 / rs))
+            .Tip("a", Radius * (1 - (2 * depthOverDiameter)), 0).RimTip("b", 90, Radius).Arc("c", 180, small, Radius).Arc("d", 270, small, Radius)
+            .Wiring("cd", "c", "d", "b a").Drive(Current));
+        double exact = rs * Math.Log(2) / Math.PI * (1 + PointContacts.BuriedPointError(depthOverDiameter)) * Current;
+        honesty.Reading("van der Pauw, buried point l/D = 0.05", r, "along", exact, 1e-5 * exact);
+    }
+
+    // Current through B and D, Hall voltage between A and C: a wide A loses 2 l / (pi² D) of the Hall voltage at weak field (from memory), 0.018575 for l/D = 0.1 at a
+    // Hall angle of 0.5 (exact field, recomputed). Against the same sheet with a point at A, so that the small arcs B and D drop out; they leave 0.2 % of the loss.
+    [Theory]
+    [InlineData(0.05, 0.020295)]
+    [InlineData(0.5, 0.018575)]
+    public void One_wide_contact_lowers_the_Hall_voltage(double hallAngle, double loss)
+    {
+        const double Small = 0.25, Sigma = 2e-3, LengthOverDiameter = 0.1;
+        double Hall(bool wide)
+        {
+            DeviceText text = DeviceText.Disc(Radius, DeviceText.Ohmic(Sigma, Sigma, Sigma * Math.Tan(hallAngle)))
+                .Arc("b", 90, Small, Radius).Arc("d", 270, Small, Radius).RimTip("c", 180, Radius);
+            text = wide ? text.Arc("a", 0, LengthOverDiameter * 180 / Math.PI, Radius) : text.RimTip("a", 0, Radius);
+            return TestDrive.Run(text.Wiring("bd", "b", "d", null, "a c").Drive(Current)).Rows[0].Of("across")!.Value;
+        }
+
+        double found = 1 - (Hall(true) / Hall(false));
+        output.WriteLine(FormattableString.Invariant($"loss of Hall voltage {found:F6}, exact {loss}"));
+        Assert.Equal(loss, found, 5e-3 * loss);
+        Assert.Equal(2 * LengthOverDiameter / (Math.PI * Math.PI), found, 0.1 * loss);
+    }
+
+    [Theory]
     [InlineData(2.5)]
     [InlineData(10)]
     [InlineData(30)]

@@ -43,4 +43,11 @@ internal static class PointContacts
         double t = Math.Tan(length / 2);
         return (Math.Log(1 + Math.Sqrt(1 - (t * t))) / Math.Log(2)) - 1;
     }
+
+    /// <summary>The same for one point contact at a depth (in diameters) inside the rim; to leading order -depth² / (2 ln 2).</summary>
+    public static double BuriedPointError(double depth)
+    {
+        double eta = depth / (1 - depth);
+        return -Math.Log(1 + (eta * eta)) / (2 * Math.Log(2));
+    }
 }

@@ -82,6 +82,11 @@ public class ReferenceTests
     }
 
     [Theory]
+    [InlineData(0.02, -0.0003003737376)]
+    [InlineData(0.2, -0.04373142063)]
+    public void One_buried_point_contact(double depth, double error) => Near(error, PointContacts.BuriedPointError(depth), 1e-9);
+
+    [Theory]
     [InlineData(1, 0.2206356001527, 0.2206356001527)]
     [InlineData(1.5, 0.04575644867215, 0.640027561834)]
     [InlineData(4, 1.776088877611e-5, 3.117466479787)]

@@ -36,9 +36,10 @@ internal static class LevelMeasure
     /// <param name="meshes">Coarse and fine mesh.</param>
     /// <param name="plan">Wiring and pairs.</param>
     /// <param name="current">Largest current, A; lowered where the sheet cannot carry it.</param>
+    /// <param name="lower">The drive's currents by size, the largest first: where to look when the sheet cannot carry <paramref name="current"/>.</param>
     /// <param name="bothSigns">Measure the even parts too.</param>
     /// <param name="cancel">Checked at every step.</param>
-    public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, CancellationToken cancel)
+    public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel)
     {
         State weak = State.Weak(meshes, plan);
         GoalError[] weakErrors = [.. weak.Details.Select(d => GoalError.Of(meshes.Between, meshes.Remaining, 1, [(1, weak.Residual, d)]))];
@@ -56,7 +57,8 @@ internal static class LevelMeasure
         {
             if (halvings > 0)
             {
-                reached /= 2;
+                double next = lower.FirstOrDefault(c => c < 0.99 * Math.Abs(reached));
+                reached = next > 0 ? Math.CopySign(next, reached) : reached / 2;
             }
 
             if (halvings == MostHalvings)

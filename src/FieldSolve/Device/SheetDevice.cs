@@ -42,6 +42,9 @@ public sealed record SheetDevice
     /// <summary>The drive; null when the file has none (only <c>check</c> works then).</summary>
     public DriveSpec? Drive { get; init; }
 
+    /// <summary>How the directions of a turn come about; null when the file does not say.</summary>
+    public TurnSpec? Turn { get; init; }
+
     /// <summary>Wanted accuracy.</summary>
     public MeshSpec Mesh { get; init; } = new();
 

@@ -1,0 +1,69 @@
+using FieldSolve.Geometry;
+
+namespace FieldSolve.Device;
+
+/// <summary>A contact as read, before it is known whether the whole device is sound.</summary>
+/// <param name="Name">Null if it has none, or a faulty one.</param>
+/// <param name="NameAt">Where the name stands.</param>
+/// <param name="Table">Where its table starts; the members of a ring share it.</param>
+/// <param name="At">Where what places it stands.</param>
+internal sealed record ContactDraft(string? Name, Place NameAt, Place Table, Place At)
+{
+    /// <summary>The stretch of rim; null for a pad or if faulty.</summary>
+    public RimSpan? Span { get; init; }
+
+    /// <summary>The corners of a pad, metres; null for an edge contact or if faulty.</summary>
+    public IReadOnlyList<Point2>? Pad { get; init; }
+
+    /// <summary>Ohm metre.</summary>
+    public double LineResistance { get; init; }
+
+    /// <summary>Ohm square metre.</summary>
+    public double Resistivity { get; init; }
+
+    public ContactPlacement? Placement => Span is null && Pad is null ? null : new(Span, Pad, Pad is not null && Resistivity == 0);
+
+    /// <summary>The contact on a live rim.</summary>
+    public Contact Build(Outline live)
+    {
+        if (Span is { } span)
+        {
+            return new Contact(Name!, ContactKind.Edge, LineResistance, 0, live.Stretch(span), span.Length)
+            {
+                Middle = live.At(span.Loop, span.From + (span.Length / 2)),
+            };
+        }
+
+        (double area, Point2 middle) = Measure(Pad!);
+        return new Contact(Name!, ContactKind.Pad, 0, Resistivity, OutlinePolygons.Segments(Pad!), Math.Sqrt(area)) { Middle = middle };
+    }
+
+    /// <summary>Area and centre of mass of a polygon, from its triangles with the first corner.</summary>
+    private static (double Area, Point2 Middle) Measure(IReadOnlyList<Point2> corners)
+    {
+        double twice = 0;
+        Point2 moment = default;
+        for (int k = 2; k < corners.Count; k++)
+        {
+            Point2 a = corners[k - 1] - corners[0], b = corners[k] - corners[0];
+            double cross = Point2.Cross(a, b);
+            twice += cross;
+            moment += cross * (a + b);
+        }
+
+        return (Math.Abs(twice) / 2, corners[0] + (1 / (3 * twice) * moment));
+    }
+}
+
+/// <summary>A point tip as read.</summary>
+/// <param name="Name">Null if it has none, or a faulty one.</param>
+/// <param name="NameAt">Where the name stands.</param>
+/// <param name="Place">Where its co-ordinates stand.</param>
+/// <param name="At">Metres; null if faulty.</param>
+internal sealed record TipDraft(string? Name, Place NameAt, Place Place, Point2? At);
+
+/// <summary>A ring of equal contacts as read.</summary>
+/// <param name="Prefix">What the names start with.</param>
+/// <param name="First">Index of its first contact.</param>
+/// <param name="Count">Number of contacts.</param>
+internal sealed record RingDraft(string Prefix, int First, int Count);

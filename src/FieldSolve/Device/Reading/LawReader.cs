@@ -1,0 +1,120 @@
+using FieldSolve.Laws;
+using FieldSolve.Quantities;
+
+namespace FieldSolve.Device;
+
+/// <summary>Reads [law].</summary>
+internal static class LawReader
+{
+    /// <returns>The law, null with faults if it is no good, and the angle from lab x to crystal a in radians.</returns>
+    public static (ISheetLaw? Law, double Axis) Read(Section root, FileSource files)
+    {
+        if (root.Header("law") is not { } section)
+        {
+            if (root.Table.Find("law") is null)
+            {
+                root.MissingUnlessMisspelt("the file has no [law], which says how the sheet conducts, for example kind = \"ohmic\", a = \"4 mS\", b = \"1 mS\"", "law");
+            }
+
+            return (null, 0);
+        }
+
+        double axis = section.Quantity("axis", Dimension.Angle, Range.Any) ?? 0;
+        string[] names = [.. LawCatalogue.Kinds.Select(k => k.Name)];
+        TomlText? name = section.Text("kind", names[0], required: true);
+        LawKind? kind = name is null ? null : LawCatalogue.Find(name.Value);
+        if (kind is null)
+        {
+            if (name is not null)
+            {
+                section.Faults.Add(name.At, $"unknown law '{Values.Short(name.Value)}'{Suggest.Hint(name.Value, names)}");
+            }
+
+            // Which keys belong here is anyone's guess without the kind: know them all.
+            foreach (LawParameter p in LawCatalogue.Kinds.SelectMany(k => k.Parameters))
+            {
+                section.Take(p.Key);
+            }
+
+            section.Finish();
+            return (null, axis);
+        }
+
+        ISheetLaw? law = Build(kind, section, files);
+        section.Finish();
+        return (law, axis);
+    }
+
+    private static ISheetLaw? Build(LawKind kind, Section section, FileSource files)
+    {
+        Dictionary<string, double> numbers = [];
+        Dictionary<string, LawFile> texts = [];
+        Place fileAt = section.At;
+        bool complete = true;
+        foreach (LawParameter p in kind.Parameters)
+        {
+            TomlEntry? entry = p.Required ? section.Need(p.Key, Example(p)) : section.Take(p.Key);
+            if (entry is null)
+            {
+                complete &= !p.Required;
+            }
+            else if (p.IsFile)
+            {
+                fileAt = entry.Value.At;
+                TomlText? name = Values.Text(entry.Value, $"'{p.Key}'", "law.csv", section.Faults);
+                string? text = name is null ? null : files.Read(name);
+                complete &= text is not null;
+                texts[p.Key] = new(name is null ? "" : files.Shown(name.Value), text ?? "");
+            }
+            else if (Number(p, entry.Value, section.Faults) is { } value)
+            {
+                numbers[p.Key] = value;
+            }
+            else
+            {
+                complete = false;
+            }
+        }
+
+        if (!complete)
+        {
+            return null;
+        }
+
+        try
+        {
+            return kind.Build(new LawValues(kind, numbers, texts));
+        }
+        catch (LawException e) when (e.File is not null)
+        {
+            foreach (LawFileFault f in e.Faults)
+            {
+                section.Faults.AddElsewhere(fileAt, e.File, f.Line, f.Column, f.Message);
+            }
+        }
+        catch (LawException e)
+        {
+            section.Faults.Add(section.At, $"[law]: {e.Message}");
+        }
+
+        return null;
+    }
+
+    private static double? Number(LawParameter p, TomlValue value, FaultList faults)
+    {
+        string what = $"'{p.Key}'";
+        double? number = p.Dimension == Dimension.None
+            ? Values.Number(value, what, Range.Any, integer: false, faults)
+            : Values.Quantity(value, what, p.Dimension, Range.Any, faults);
+        if (number is null || p.Allows(number.Value))
+        {
+            return number;
+        }
+
+        faults.Add(value.At, $"{what} ({p.Meaning}) must be {p.BoundText}");
+        return null;
+    }
+
+    private static string Example(LawParameter p) =>
+        p.IsFile ? "\"law.csv\"" : p.Dimension == Dimension.None ? p.Dimension.Example : $"\"{p.Dimension.Example}\"";
+}

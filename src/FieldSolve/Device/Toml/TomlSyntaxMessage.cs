@@ -1,0 +1,82 @@
+using System.Text.RegularExpressions;
+
+namespace FieldSolve.Device;
+
+/// <summary>Turns what the TOML parser says into what the user should do.</summary>
+internal static partial class TomlSyntaxMessage
+{
+    private const string Quotes = "text and quantities stand in quotes, for example \"5 um\"";
+
+    public static string Of(string message)
+    {
+        if (Expecting().Match(message) is { Success: true } m)
+        {
+            return m.Groups[1].Value == "`<eof>`" || m.Groups[1].Value.Length == 0
+                ? "unexpected end of the line"
+                : $"{Quoted(m.Groups[1].Value)} may not follow here; a line holds one key = value, and {Quotes}";
+        }
+
+        if (NoValue().Match(message) is { Success: true } v)
+        {
+            return v.Groups[1].Value == "`<eof>`" ? "the value is missing" : $"{Quoted(v.Groups[1].Value)} is no value; {Quotes}";
+        }
+
+        if (message.Contains("`=` after a key", StringComparison.Ordinal))
+        {
+            return "'=' is missing after the key; write key = value";
+        }
+
+        if (message.Contains("string literal", StringComparison.Ordinal) || message.Contains("newline in a string", StringComparison.Ordinal))
+        {
+            return "the closing quote is missing";
+        }
+
+        if (message.Contains("multi-line string", StringComparison.Ordinal))
+        {
+            return "the three closing quotes are missing";
+        }
+
+        if (message.Contains("to separate items", StringComparison.Ordinal))
+        {
+            return "a comma is missing between the items of a list";
+        }
+
+        if (message.Contains("while parsing inline table", StringComparison.Ordinal))
+        {
+            return "the closing '}' is missing, or something other than key = value stands between the braces";
+        }
+
+        if (message.Contains("closing `]`", StringComparison.Ordinal) || message.Contains("expecting `]`", StringComparison.Ordinal))
+        {
+            return "the closing ']' is missing";
+        }
+
+        if (message.Contains("expecting `]]`", StringComparison.Ordinal))
+        {
+            return "the closing ']]' is missing";
+        }
+
+        return Unexpected().Match(message) is { Success: true } u
+            ? $"'{u.Groups[1].Value}' is not expected here; a line is a [table], a key = value or a # comment"
+            : TokenNames().Replace(message, "").Replace('`', '\'');
+    }
+
+    private static string Quoted(string token)
+    {
+        const int Longest = 40;
+        string bare = token.Trim('`');
+        return bare.Length > Longest ? $"'{bare[..Longest]}…'" : $"'{bare}'";
+    }
+
+    [GeneratedRegex("^Unexpected token found (`.*?`).* while expecting token `newline`", RegexOptions.Singleline)]
+    private static partial Regex Expecting();
+
+    [GeneratedRegex("^Unexpected token (`.*`) for a value", RegexOptions.Singleline)]
+    private static partial Regex NoValue();
+
+    [GeneratedRegex(@"^Unexpected token \[(.*)\] found", RegexOptions.Singleline)]
+    private static partial Regex Unexpected();
+
+    [GeneratedRegex(@" \(token: [^)]*\)")]
+    private static partial Regex TokenNames();
+}

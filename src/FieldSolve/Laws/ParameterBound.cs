@@ -1,0 +1,17 @@
+namespace FieldSolve.Laws;
+
+/// <summary>Which numbers a law's parameter may take; all must be finite.</summary>
+public enum ParameterBound
+{
+    /// <summary>Any finite number.</summary>
+    Any,
+
+    /// <summary>Greater than zero.</summary>
+    Positive,
+
+    /// <summary>Zero or greater.</summary>
+    NonNegative,
+
+    /// <summary>One or greater.</summary>
+    AtLeastOne,
+}

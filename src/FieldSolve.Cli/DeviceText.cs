@@ -4,6 +4,7 @@ using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Device;
 using FieldSolve.Geometry;
+using FieldSolve.Laws;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Cli;
@@ -22,7 +23,7 @@ internal static class DeviceText
             + $"{Engineering.Text(device.Domain.Size, "m", 4)} across the corners"
             + (device.DeadEdge > 0 ? $", dead edge {Engineering.Text(device.DeadEdge, "m")}" : "")
             + (device.Thickness is { } t ? $", {Engineering.Text(t, "m")} thick" : ""));
-        Line("law", device.Law.Describe());
+        Line("law", LawSummary.Describe(device.Law));
         Line("axis", string.Create(CultureInfo.InvariantCulture, $"crystal a at {device.Axis * 180 / Math.PI:G6} deg from lab x"));
         foreach (Contact c in device.Contacts)
         {
@@ -66,7 +67,7 @@ internal static class DeviceText
             ["shape"] = device.Shape,
             ["area_m2"] = Area(device),
             ["size_m"] = device.Domain.Size,
-            ["law"] = device.Law.Describe(),
+            ["law"] = LawSummary.Describe(device.Law),
             ["axis_deg"] = device.Axis * 180 / Math.PI,
             ["contacts"] = new JsonArray([.. device.Contacts.Select(c => (JsonNode)new JsonObject
             {

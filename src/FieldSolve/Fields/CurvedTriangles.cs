@@ -6,6 +6,7 @@ namespace FieldSolve.Fields;
 internal sealed class CurvedTriangles
 {
     private const int Q = TriangleRule.Count;
+    private readonly FieldSpace space;
     private readonly int[] triangle;
     private readonly int[] unknown;     // 6 per triangle
     private readonly int[] place;       // 36 per triangle
@@ -14,6 +15,7 @@ internal sealed class CurvedTriangles
 
     public CurvedTriangles(FieldSpace space, MatrixPlaces places)
     {
+        this.space = space;
         triangle = [.. Enumerable.Range(0, space.Mesh.TriangleCount).Where(t => space.Curved[t])];
         unknown = new int[6 * triangle.Length];
         place = new int[36 * triangle.Length];
@@ -57,7 +59,15 @@ internal sealed class CurvedTriangles
         for (int e = 0; e < triangle.Length; e++)
         {
             Field(e, u, ex, ey);
-            law.Evaluate(ex, ey, kx, ky);
+            try
+            {
+                law.Evaluate(ex, ey, kx, ky);
+            }
+            catch (FieldOutsideTableException o)
+            {
+                throw Refused(e, o);
+            }
+
             r.Clear();
             for (int q = 0; q < Q; q++)
             {
@@ -84,7 +94,15 @@ internal sealed class CurvedTriangles
         for (int e = 0; e < triangle.Length; e++)
         {
             Field(e, u, ex, ey);
-            law.Evaluate(ex, ey, kx, ky, xx, xy, yx, yy);
+            try
+            {
+                law.Evaluate(ex, ey, kx, ky, xx, xy, yx, yy);
+            }
+            catch (FieldOutsideTableException o)
+            {
+                throw Refused(e, o);
+            }
+
             block.Clear();
             for (int q = 0; q < Q; q++)
             {
@@ -122,6 +140,12 @@ internal sealed class CurvedTriangles
                 }
             }
         }
+    }
+
+    private LawRefusedException Refused(int e, FieldOutsideTableException inner)
+    {
+        (double x, double y) = PointGradient.Place(space, triangle[e], inner.Index);
+        return new(x, y, inner);
     }
 
     private void Field(int e, ReadOnlySpan<double> u, Span<double> ex, Span<double> ey)

@@ -47,7 +47,7 @@ public sealed class SheetEquations
     /// <param name="drain">Contact it leaves at.</param>
     /// <param name="current">A.</param>
     /// <param name="residual">Filled, A; its last entry is set to 0.</param>
-    /// <exception cref="FieldOutsideTableException">A table law was asked beyond its grid.</exception>
+    /// <exception cref="LawRefusedException">A table law was asked beyond its grid.</exception>
     public void Residual(ReadOnlySpan<double> u, int source, int drain, double current, Span<double> residual)
     {
         residual.Clear();
@@ -62,7 +62,7 @@ public sealed class SheetEquations
     /// <summary>Values of the Jacobian dR/du in the order of the space's pattern.</summary>
     /// <param name="u">Potentials, V.</param>
     /// <param name="values">Filled; length <c>Pattern.Count + 1</c>, the last entry is scrap.</param>
-    /// <exception cref="FieldOutsideTableException">A table law was asked beyond its grid.</exception>
+    /// <exception cref="LawRefusedException">A table law was asked beyond its grid.</exception>
     public void Jacobian(ReadOnlySpan<double> u, Span<double> values)
     {
         values.Clear();

@@ -12,6 +12,7 @@ internal sealed class StraightTriangles
 {
     private const int Q = TriangleRule.Count;
     private const int Block = 32;       // triangles per call of the law; a multiple of every vector length
+    private readonly FieldSpace space;
     private readonly int count;
     private readonly int padded;
     private readonly int[] triangle;
@@ -23,6 +24,7 @@ internal sealed class StraightTriangles
 
     public StraightTriangles(FieldSpace space, MatrixPlaces places)
     {
+        this.space = space;
         triangle = [.. Enumerable.Range(0, space.Mesh.TriangleCount).Where(t => !space.Curved[t])];
         count = triangle.Length;
         padded = (count + Block - 1) / Block * Block;
@@ -60,7 +62,7 @@ internal sealed class StraightTriangles
         for (int first = 0; first < padded; first += Block)
         {
             Field(first, u, nodal, ex, ey);
-            law.Evaluate(ex, ey, kx, ky);
+            Evaluate(law, first, ex, ey, kx, ky);
             r.Clear();
             for (int q = 0; q < Q; q++)
             {
@@ -103,7 +105,15 @@ internal sealed class StraightTriangles
         for (int first = 0; first < padded; first += Block)
         {
             Field(first, u, nodal, ex, ey);
-            law.Evaluate(ex, ey, kx, ky, xx, xy, yx, yy);
+            try
+            {
+                law.Evaluate(ex, ey, kx, ky, xx, xy, yx, yy);
+            }
+            catch (FieldOutsideTableException e)
+            {
+                throw Refused(first, e);
+            }
+
             block.Clear();
             for (int q = 0; q < Q; q++)
             {
@@ -143,6 +153,24 @@ internal sealed class StraightTriangles
                 }
             }
         }
+    }
+
+    private void Evaluate(LabLaw law, int first, ReadOnlySpan<double> ex, ReadOnlySpan<double> ey, Span<double> kx, Span<double> ky)
+    {
+        try
+        {
+            law.Evaluate(ex, ey, kx, ky);
+        }
+        catch (FieldOutsideTableException e)
+        {
+            throw Refused(first, e);
+        }
+    }
+
+    private LawRefusedException Refused(int first, FieldOutsideTableException e)
+    {
+        (double x, double y) = PointGradient.Place(space, triangle[Math.Min(first + (e.Index % Block), count - 1)], e.Index / Block);
+        return new(x, y, e);
     }
 
     // J[i,j] += w area (grad N_i)' D grad N_j, through T[k,l] = w area (grad lambda_k)' D grad lambda_l.

@@ -1,4 +1,5 @@
 using FieldSolve.Device;
+using FieldSolve.Fields;
 using FieldSolve.Readings;
 using FieldSolve.Solving;
 
@@ -89,7 +90,7 @@ internal static class LevelMeasure
             {
                 meshes.Fine.Equations.Residual(fine, source, drain, current, residual);
             }
-            catch (Laws.FieldOutsideTableException)
+            catch (LawRefusedException)
             {
                 return null;
             }

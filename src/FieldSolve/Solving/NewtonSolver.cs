@@ -1,4 +1,4 @@
-using FieldSolve.Laws;
+using FieldSolve.Fields;
 using FieldSolve.Sparse;
 
 namespace FieldSolve.Solving;
@@ -162,7 +162,7 @@ public sealed class NewtonSolver
         {
             level.Equations.Residual(at, source, drain, current, result);
         }
-        catch (FieldOutsideTableException e)
+        catch (LawRefusedException e)
         {
             norm = double.PositiveInfinity;
             refusal = e.Message;
@@ -189,7 +189,7 @@ public sealed class NewtonSolver
             level.Equations.Jacobian(u, values);
             own.Factor(values.AsSpan(0, level.Space.Pattern.Count), cancel);
         }
-        catch (PivotException)
+        catch (Exception e) when (e is PivotException or LawRefusedException)
         {
             Factor = level.AtZero;
             return false;

@@ -1,0 +1,102 @@
+using FieldSolve.Geometry;
+
+namespace FieldSolve.Meshing;
+
+/// <summary>
+/// Finds where edges of the domain meet at less than 60 degrees and says where such edges may be split: on circles about
+/// the sharp corner with radii in powers of two, the same on all edges, so that splits on one edge never force splits on the other.
+/// J. Ruppert, J. Algorithms 18 (1995) 548 (concentric shells); G. L. Miller, S. E. Pav, N. J. Walkington, "When and why Ruppert's
+/// algorithm works", 12th Int. Meshing Roundtable (2003) 91 (which triangles to leave alone).
+/// </summary>
+internal sealed class SharpCorners
+{
+    private const double SharpCosine = 0.5;
+    private readonly Domain domain;
+    private readonly bool[] sharpStart;
+    private readonly bool[] sharpEnd;
+    private readonly bool[] sharpVertex;
+
+    public SharpCorners(Domain domain)
+    {
+        this.domain = domain;
+        sharpStart = new bool[domain.Edges.Count];
+        sharpEnd = new bool[domain.Edges.Count];
+        sharpVertex = new bool[domain.Vertices.Count];
+        List<(int Edge, bool AtStart, Point2 Away)>?[] at = new List<(int, bool, Point2)>?[domain.Vertices.Count];
+        for (int e = 0; e < domain.Edges.Count; e++)
+        {
+            DomainEdge edge = domain.Edges[e];
+            (at[edge.From] ??= []).Add((e, true, edge.Curve.Tangent(0)));
+            (at[edge.To] ??= []).Add((e, false, -edge.Curve.Tangent(1)));
+        }
+
+        for (int v = 0; v < at.Length; v++)
+        {
+            List<(int Edge, bool AtStart, Point2 Away)>? fan = at[v];
+            for (int i = 0; fan != null && i < fan.Count; i++)
+            {
+                for (int j = 0; j < fan.Count; j++)
+                {
+                    if (i != j && Point2.Dot(fan[i].Away, fan[j].Away) > SharpCosine)
+                    {
+                        (fan[i].AtStart ? sharpStart : sharpEnd)[fan[i].Edge] = true;
+                        sharpVertex[v] = true;
+                    }
+                }
+            }
+        }
+    }
+
+    /// <summary>Whether either end of an edge is a sharp corner.</summary>
+    public bool IsSharp(int edge) => sharpStart[edge] || sharpEnd[edge];
+
+    /// <summary>Whether a vertex of the mesh is a sharp corner.</summary>
+    public bool IsSharpVertex(int vertex) => vertex < sharpVertex.Length && sharpVertex[vertex];
+
+    /// <summary>Where to split the part of an edge between two parameters.</summary>
+    public double SplitAt(int edge, double from, double to)
+    {
+        bool start = sharpStart[edge], end = sharpEnd[edge];
+        double middle = (from + to) / 2;
+        if ((!start && !end) || (start && end && from == 0 && to == 1))
+        {
+            return middle;
+        }
+
+        Curve curve = domain.Edges[edge].Curve;
+        bool aboutStart = start && (!end || to <= 0.5);
+        Point2 apex = aboutStart ? curve.Start : curve.End;
+        double near = aboutStart ? from : 1 - to, far = aboutStart ? to : 1 - from;
+        double radiusFar = Point2.Distance(apex, curve.At(aboutStart ? far : 1 - far));
+        double radius = near == 0
+            ? Math.ScaleB(1, (int)Math.Round(Math.Log2(radiusFar / 2)))
+            : (Point2.Distance(apex, curve.At(aboutStart ? near : 1 - near)) + radiusFar) / 2;
+        double along = curve.IsArc
+            ? 2 * Math.Asin(Math.Min(1, radius / (2 * curve.Radius))) / Math.Abs(curve.Sweep)
+            : radius / curve.Length;
+        double t = aboutStart ? along : 1 - along;
+        return t > from && t < to ? t : middle;
+    }
+
+    /// <summary>
+    /// Whether two points, each inside an edge, face each other on the same circle about a sharp corner both edges share. The short
+    /// edge between them is the corner's doing, so triangles on it cannot be improved.
+    /// </summary>
+    public bool FaceEachOther(int edgeP, int edgeQ, Point2 p, Point2 q)
+    {
+        if (edgeP == edgeQ || !IsSharp(edgeP) || !IsSharp(edgeQ))
+        {
+            return false;
+        }
+
+        DomainEdge a = domain.Edges[edgeP], b = domain.Edges[edgeQ];
+        return (sharpStart[edgeP] && (a.From == b.From || a.From == b.To) && SameRadius(a.Curve.Start, p, q))
+            || (sharpEnd[edgeP] && (a.To == b.From || a.To == b.To) && SameRadius(a.Curve.End, p, q));
+    }
+
+    private static bool SameRadius(Point2 apex, Point2 p, Point2 q)
+    {
+        double rp = Point2.Distance(apex, p), rq = Point2.Distance(apex, q);
+        return Math.Abs(rp - rq) <= 1e-3 * rp;
+    }
+}

@@ -1,0 +1,173 @@
+using System.Runtime.CompilerServices;
+
+namespace FieldSolve.Sparse;
+
+/// <summary>
+/// Direct factorisation A = L U (rows and columns permuted alike) of a matrix with a symmetric pattern whose symmetric part is
+/// positive definite; such a matrix needs no pivoting. The storage is allocated once and used again by each factorisation.
+/// </summary>
+/// <remarks>
+/// Multifrontal method: I. S. Duff and J. K. Reid, ACM Trans. Math. Softw. 9 (1983) 302-325. Stability without pivoting:
+/// G. H. Golub and C. Van Loan, Linear Algebra Appl. 28 (1979) 85-98.
+/// Same matrix, same bits. Solves may run on several threads at once; a factorisation needs the object for itself.
+/// </remarks>
+public sealed unsafe partial class SparseLu
+{
+    /// <summary>Pivots below this part of the diagonal entry they came from are rounding noise.</summary>
+    private const double PivotTolerance = 1e-13;
+
+    private readonly SparseAnalysis analysis;
+    private readonly double[] panelStore;
+    private readonly double[] updateStore;
+    private readonly double* panels;
+    private readonly double* updates;
+    private readonly double[] floor;
+    private bool factored;
+
+    /// <summary>Allocates the storage for factors of the analysed pattern.</summary>
+    /// <exception cref="ArgumentException">The factor would have more than 2·10⁹ entries.</exception>
+    public SparseLu(SparseAnalysis analysis)
+    {
+        ArgumentNullException.ThrowIfNull(analysis);
+        this.analysis = analysis;
+        panelStore = Allocate(analysis.PanelStart[^1]);
+        updateStore = Allocate(analysis.UpdateLength);
+        panels = Aligned(panelStore);
+        updates = Aligned(updateStore);
+        floor = GC.AllocateUninitializedArray<double>(Math.Max(analysis.Pattern.Size, 1), pinned: true);
+    }
+
+    /// <summary>The analysis the storage was made for.</summary>
+    public SparseAnalysis Analysis => analysis;
+
+    /// <summary>Factors a matrix. An earlier factor is overwritten; after an exception there is none.</summary>
+    /// <param name="values">One value per place of the pattern.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <exception cref="ArgumentException">The number of values does not match the pattern.</exception>
+    /// <exception cref="PivotException">A pivot is not finite, not positive or negligible.</exception>
+    /// <exception cref="OperationCanceledException">Cancelled.</exception>
+    public void Factor(ReadOnlySpan<double> values, CancellationToken cancel = default)
+    {
+        SparseAnalysis a = analysis;
+        if (values.Length != a.Pattern.Count)
+        {
+            throw new ArgumentException($"The pattern has {a.Pattern.Count} places, but {values.Length} values were given.", nameof(values));
+        }
+        factored = false;
+        for (int j = 0; j < a.Pattern.Size; j++)
+        {
+            floor[j] = PivotTolerance * Math.Abs(values[a.Diagonal[j]]);
+        }
+        for (int t = 0; t < a.Tree.Count; t++)
+        {
+            if ((t & 255) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
+            Front(t, values);
+        }
+        factored = true;
+        GC.KeepAlive(panelStore);
+        GC.KeepAlive(updateStore);
+    }
+
+    private static double[] Allocate(long length)
+    {
+        // Slack: alignment in front, and kernels read a few doubles behind the last row.
+        if (length + 16 > Array.MaxLength)
+        {
+            throw new ArgumentException($"The factor would take {length} entries; at most {Array.MaxLength} fit. Use a coarser mesh.", nameof(length));
+        }
+        double[] store = GC.AllocateUninitializedArray<double>((int)length + 16, pinned: true);
+        store.AsSpan((int)length).Clear();
+        return store;
+    }
+
+    // The store is pinned, so its address stays.
+    private static double* Aligned(double[] store) => (double*)(((nint)Unsafe.AsPointer(ref store[0]) + 63) & -64);
+
+    // Assembles and eliminates one supernode.
+    private void Front(int t, ReadOnlySpan<double> values)
+    {
+        SparseAnalysis a = analysis;
+        SupernodeTree tree = a.Tree;
+        int first = tree.First[t], width = tree.Width(t), rest = tree.Height(t) - width, stride = a.Stride(t);
+        double* u = panels + a.PanelStart[t], l = u + (nint)width * stride;
+        new Span<double>(u, 2 * width * stride).Clear();
+        for (int j = 0; j < width; j++)
+        {
+            double* uj = u + (nint)j * stride, lj = l + (nint)j * stride;
+            uj[j] = values[a.Diagonal[first + j]];
+            for (int e = a.EntryStart[first + j]; e < a.EntryStart[first + j + 1]; e++)
+            {
+                int place = a.EntryPlace[e];
+                uj[place] = values[a.EntryRight[e]];
+                lj[place] = values[a.EntryBelow[e]];
+            }
+        }
+        double* c = updates + a.UpdateStart[t];
+        int ldc = a.UpdateStride(t), skip = width & 7, padded = (rest + 3) & -4;
+        if (rest > 0)
+        {
+            new Span<double>(c, padded * ldc).Clear();
+        }
+        for (int child = a.ChildStart[t]; child < a.ChildStart[t + 1]; child++)
+        {
+            Extend(a.Children[child], u, l, stride, width, c + skip - width, ldc);
+        }
+        fixed (double* smallest = &floor[first])
+        {
+            int refused = FrontKernels.Factor(u, l, width, stride, smallest);
+            if (refused >= 0)
+            {
+                throw new PivotException(tree.Order[first + refused], u[(nint)refused * stride + refused]);
+            }
+        }
+        if (rest > 0)
+        {
+            FrontKernels.Subtract(l + width, stride, u + (width & -8), c, ldc, width, padded, ldc);
+        }
+    }
+
+    // Adds the update matrix of a child to the panels and the update matrix of its parent. c is shifted so that place j of the
+    // parent's front is column j.
+    private void Extend(int child, double* u, double* l, int stride, int width, double* c, int ldc)
+    {
+        SparseAnalysis a = analysis;
+        int start = a.Tree.RowStart[child], count = a.Tree.RowStart[child + 1] - start, ld = a.UpdateStride(child);
+        double* from = updates + a.UpdateStart[child] + (a.Tree.Width(child) & 7);
+        fixed (int* place = &a.RowPlace[start])
+        {
+            int inside = 0;   // rows of the child that the parent eliminates
+            while (inside < count && place[inside] < width)
+            {
+                inside++;
+            }
+            for (int i = 0; i < inside; i++)
+            {
+                double* row = from + (nint)i * ld, into = u + (nint)place[i] * stride;
+                for (int j = i; j < count; j++)
+                {
+                    into[place[j]] += row[j];
+                }
+            }
+            for (int i = 1; i < count; i++)
+            {
+                double* row = from + (nint)i * ld, into = l + place[i];
+                int left = Math.Min(i, inside);
+                for (int j = 0; j < left; j++)
+                {
+                    into[(nint)place[j] * stride] += row[j];
+                }
+            }
+            for (int i = inside; i < count; i++)
+            {
+                double* row = from + (nint)i * ld, into = c + (nint)(place[i] - width) * ldc;
+                for (int j = inside; j < count; j++)
+                {
+                    into[place[j]] += row[j];
+                }
+            }
+        }
+    }
+}

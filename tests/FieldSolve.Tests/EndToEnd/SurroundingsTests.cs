@@ -1,0 +1,149 @@
+using System.Diagnostics;
+
+namespace FieldSolve.Tests.EndToEndTests;
+
+/// <summary>Interrupts, closed pipes, locales, folders that cannot be written.</summary>
+[Collection(SampleRuns.Collection)]
+public class SurroundingsTests(SampleRuns runs)
+{
+    [Theory]
+    [InlineData(0.3)]
+    [InlineData(2.0)]
+    public void An_interrupt_ends_with_130_and_leaves_whole_rows_or_nothing(double seconds)
+    {
+        if (!OperatingSystem.IsLinux())
+        {
+            return; // signals as kill sends them
+        }
+
+        using var folder = new TempFolder();
+        string text = File.ReadAllText(Repository.Sample("disc-12.toml")).Replace("steps = 11", "steps = 4001", StringComparison.Ordinal);
+        using Process process = Command.Start(["drive", folder.Write("long.toml", text), "--out", folder["out"], "--no-pictures"]);
+        Thread.Sleep(TimeSpan.FromSeconds(seconds));
+        Process.Start("kill", ["-INT", process.Id.ToString(System.Globalization.CultureInfo.InvariantCulture)]).WaitForExit();
+        CommandResult result = Command.Finish(process);
+        Assert.Equal(130, result.Exit);
+        if (File.Exists(folder["out/curves.csv"]))
+        {
+            CsvTable curves = CsvTable.Read(folder["out/curves.csv"]);
+            Assert.InRange(curves.Rows, 1, 3 * 4001 - 1);
+            Assert.All(Enumerable.Range(0, curves.Rows), row => Assert.NotEqual("", curves.Text(row, "v_along_V")));
+            Assert.Contains("cancelled", result.Out, StringComparison.Ordinal);
+        }
+        else
+        {
+            Assert.Equal(["long.toml"], folder.Files);
+            Assert.Contains("cancelled", result.Error, StringComparison.Ordinal);
+        }
+    }
+
+    [Fact]
+    public void An_output_folder_that_cannot_be_made_is_named()
+    {
+        using var folder = new TempFolder();
+        string blocked = folder.Write("blocked", "a file, not a folder");
+        CommandResult result = Command.Run("drive", folder.Write("bar.toml", SmallDevice.Text), "--out", Path.Combine(blocked, "out"), "--no-pictures");
+        Assert.Equal(2, result.Exit);
+        Assert.Single(result.ErrorLines);
+        Assert.Contains("blocked", result.Error, StringComparison.Ordinal);
+        Assert.DoesNotContain("   at ", result.Error, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void A_closed_standard_output_is_no_fault()
+    {
+        if (OperatingSystem.IsWindows())
+        {
+            return; // needs a POSIX shell
+        }
+
+        using var folder = new TempFolder();
+        string device = folder.Write("bar.toml", SmallDevice.Text);
+        var start = new ProcessStartInfo("sh", ["-c", "dotnet \"$0\" drive \"$1\" --out \"$2\" --no-pictures >&-", Command.Assembly, device, folder["out"]])
+        {
+            RedirectStandardError = true,
+            RedirectStandardOutput = true,
+        };
+        using Process process = Process.Start(start)!;
+        CommandResult result = Command.Finish(process);
+        Assert.Equal((0, ""), (result.Exit, result.Error));
+        Assert.True(File.Exists(folder["out/curves.csv"]));
+    }
+
+    [Fact]
+    public void A_locale_with_decimal_commas_changes_no_byte()
+    {
+        using var folder = new TempFolder();
+        string device = folder.Write("bar.toml", SmallDevice.Text);
+        var german = new Dictionary<string, string> { ["LC_ALL"] = "de_DE.UTF-8", ["LANG"] = "de_DE.UTF-8", ["DOTNET_SYSTEM_GLOBALIZATION_INVARIANT"] = "0" };
+        CommandResult one = Command.Run(["drive", device, "--out", folder["one"], "--no-pictures"], german);
+        CommandResult two = Command.Run(["drive", device, "--out", folder["two"], "--no-pictures"], null);
+        Assert.Equal((0, 0), (one.Exit, two.Exit));
+        Assert.Equal(two.Out.Replace(folder["two"], "", StringComparison.Ordinal), one.Out.Replace(folder["one"], "", StringComparison.Ordinal));
+        Same(folder["one"], folder["two"]);
+    }
+
+    [Fact]
+    public void Two_runs_give_the_same_bytes()
+    {
+        using var folder = new TempFolder();
+        var oneProcessor = new Dictionary<string, string> { ["DOTNET_PROCESSOR_COUNT"] = "1" };
+        CommandResult result = Command.Run(["drive", Repository.Sample("disc-12.toml"), "--out", folder["again"]], oneProcessor);
+        Assert.Equal(0, result.Exit);
+        Same(runs.Of("disc-12").Folder, folder["again"]);
+    }
+
+    [Fact]
+    public void The_default_folder_is_named_after_the_device_and_the_command()
+    {
+        using var folder = new TempFolder();
+        folder.Write("bar.toml", SmallDevice.Text);
+        CommandResult result = Command.Run(["drive", "bar.toml", "--no-pictures", "--maps", "none"], null, folder.Path);
+        Assert.Equal(0, result.Exit);
+        Assert.Equal(["bar-drive/curves.csv", "bar-drive/run.json", "bar.toml"], folder.Files);
+    }
+
+    [Theory]
+    [InlineData("--help")]
+    [InlineData("check", "--help")]
+    [InlineData("drive", "--help")]
+    public void Help_shows_an_example(params string[] arguments)
+    {
+        CommandResult result = Command.Run(arguments);
+        Assert.Equal((0, ""), (result.Exit, result.Error));
+        Assert.Contains("Example: fieldsolve ", result.Out, StringComparison.Ordinal);
+    }
+
+    [Theory]
+    [InlineData("drvie", "disc.toml")]
+    [InlineData("drive")]
+    [InlineData("drive", "disc.toml", "--maps", "some")]
+    [InlineData("drive", "disc.toml", "--otu", "x")]
+    public void Wrong_arguments_end_with_2(params string[] arguments)
+    {
+        CommandResult result = Command.Run(arguments);
+        Assert.Equal((2, ""), (result.Exit, result.Out));
+        Assert.NotEmpty(result.ErrorLines);
+    }
+
+    // The wall times in run.json differ, and the paths in it; nothing else.
+    private static void Same(string one, string two)
+    {
+        IReadOnlyList<string> files = TempFolder.FilesIn(one);
+        Assert.Equal(files, TempFolder.FilesIn(two));
+        foreach (string file in files)
+        {
+            if (file is "run.json" or "report.html")
+            {
+                Assert.Equal(WithoutTimes(Path.Combine(one, file)), WithoutTimes(Path.Combine(two, file)));
+            }
+            else
+            {
+                Assert.True(File.ReadAllBytes(Path.Combine(one, file)).AsSpan().SequenceEqual(File.ReadAllBytes(Path.Combine(two, file))), file);
+            }
+        }
+    }
+
+    private static string WithoutTimes(string path) => System.Text.RegularExpressions.Regex.Replace(
+        File.ReadAllText(path), "(\"wall_s\": |<td class=\"seconds\">)[-+0-9.eE]+", "$1?");
+}

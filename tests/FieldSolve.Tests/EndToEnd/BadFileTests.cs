@@ -61,7 +61,7 @@ public class BadFileTests
         { "pad outside", "edge = { at = \"45 deg\", width = \"0.5 um\" }", "pad = [[\"9 um\", \"0 um\"], [\"10 um\", \"0 um\"], [\"9 um\", \"1 um\"]]", "pad = ", "outside" },
         { "pad of two corners", "edge = { at = \"45 deg\", width = \"0.5 um\" }", "pad = [[\"0 um\", \"0 um\"], [\"1 um\", \"0 um\"]]", "pad = ", "three corners" },
         { "pad crosses itself", "edge = { at = \"45 deg\", width = \"0.5 um\" }", "pad = [[\"0 um\", \"0 um\"], [\"2 um\", \"2 um\"], [\"2 um\", \"0 um\"], [\"0 um\", \"1 um\"]]", "pad = ", "crosses" },
-        { "tip outside", "[\"1 um\", \"0 um\"]", "[\"5 um\", \"0 um\"]", "at = [", "outside" },
+        { "tip outside", "[\"1 um\", \"0 um\"]", "[\"5 um\", \"0 um\"]", "at = [", "off the sheet" },
         { "same name twice", "name = \"p\"", "name = \"w\"", "name = \"w\"\nat", "already taken" },
         { "absent contact", "drain = \"c1\"", "drain = \"c11\"", "drain", "unknown contact 'c11'" },
         { "absent name in a pair", "[\"c2\", \"c4\"]", "[\"c2\", \"c44\"]", "across", "did you mean 'c4'" },

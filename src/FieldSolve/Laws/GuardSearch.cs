@@ -123,7 +123,9 @@ internal sealed class GuardSearch
         {
             double least = Least(new(aa[j], ab[j], ba[j], bb[j]), out double most);
             holds &= least >= Asked * smallest;
-            lost |= !(least >= (scan.LossShare * smallest) - (1e-12 * most));
+
+            // Rounding: that of the eigenvalue itself and that of a Hall part which cancels in the symmetric part.
+            lost |= !(least >= (scan.LossShare * smallest) - (1e-12 * most) - (1e-15 * Math.Abs(s.Ab)));
         }
 
         return holds;

@@ -103,7 +103,7 @@ public sealed class GuardedLaw : ILawDetail
                 AddOhmicRest(ea1, eb1, ua, ub, ka1, kb1);
                 for (int i = 0; i < n; i++)
                 {
-                    double f = double.Hypot(ea1[i], eb1[i]);
+                    double f = Math.Sqrt((ea1[i] * ea1[i]) + (eb1[i] * eb1[i]));
                     if (f > guard.From)
                     {
                         GuardBend bend = new(guard, f);
@@ -151,7 +151,7 @@ public sealed class GuardedLaw : ILawDetail
     {
         for (int i = 0; i < ea.Length; i++)
         {
-            double f = double.Hypot(ea[i], eb[i]);
+            double f = Math.Sqrt((ea[i] * ea[i]) + (eb[i] * eb[i]));
             double h = f > guard.From ? new GuardBend(guard, f).Ratio : 1;
             ua[i] = h * ea[i];
             ub[i] = h * eb[i];

@@ -32,9 +32,13 @@ internal struct VectorSlope
     }
 }
 
-/// <summary>Runs a formula over spans of any length; the last, partial vector is padded with zero field.</summary>
+/// <summary>
+/// Runs a formula over spans of any length; the last, partial vector is padded with zero field. Never inlined: inside a caller's try
+/// block the vectors would live in memory instead of registers.
+/// </summary>
 internal static class VectorLoop
 {
+    [MethodImpl(MethodImplOptions.NoInlining)]
     public static void Value<TFormula>(
         in TFormula formula, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb)
         where TFormula : struct, IVectorFormula
@@ -57,6 +61,7 @@ internal static class VectorLoop
         }
     }
 
+    [MethodImpl(MethodImplOptions.NoInlining)]
     public static void Slope<TFormula>(
         in TFormula formula, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb,
         Span<double> daa, Span<double> dab, Span<double> dba, Span<double> dbb)

@@ -3,14 +3,15 @@ using FieldSolve.Geometry;
 namespace FieldSolve.Meshing;
 
 /// <summary>
-/// Finds where edges of the domain meet at less than 60 degrees and says where such edges may be split: on circles about
+/// Finds where edges of the domain meet at less than 60 degrees within the sheet and says where such edges may be split: on circles about
 /// the sharp corner with radii in powers of two, the same on all edges, so that splits on one edge never force splits on the other.
 /// J. Ruppert, J. Algorithms 18 (1995) 548 (concentric shells); G. L. Miller, S. E. Pav, N. J. Walkington, "When and why Ruppert's
 /// algorithm works", 12th Int. Meshing Roundtable (2003) 91 (which triangles to leave alone).
 /// </summary>
 internal sealed class SharpCorners
 {
-    private const double SharpCosine = 0.5;
+    private const double Sharp = (Math.PI / 3) - Noise;
+    private const double Noise = 1e-9;
     private readonly Domain domain;
     private readonly bool[] sharpStart;
     private readonly bool[] sharpEnd;
@@ -35,16 +36,38 @@ internal sealed class SharpCorners
             List<(int Edge, bool AtStart, Point2 Away)>? fan = at[v];
             for (int i = 0; fan != null && i < fan.Count; i++)
             {
+                // The wedge counter-clockwise from this edge to the next one; the sheet lies left of a rim edge that leaves.
+                if (domain.Edges[fan[i].Edge].IsRim && !fan[i].AtStart)
+                {
+                    continue;
+                }
+
+                int next = -1;
+                double wedge = 2 * Math.PI;
                 for (int j = 0; j < fan.Count; j++)
                 {
-                    if (i != j && Point2.Dot(fan[i].Away, fan[j].Away) > SharpCosine)
+                    double turn = j == i ? 2 * Math.PI : Turn(fan[i].Away, fan[j].Away);
+                    if (turn < wedge)
                     {
-                        (fan[i].AtStart ? sharpStart : sharpEnd)[fan[i].Edge] = true;
-                        sharpVertex[v] = true;
+                        (next, wedge) = (j, turn);
                     }
+                }
+
+                if (wedge < Sharp)
+                {
+                    (fan[i].AtStart ? sharpStart : sharpEnd)[fan[i].Edge] = true;
+                    (fan[next].AtStart ? sharpStart : sharpEnd)[fan[next].Edge] = true;
+                    sharpVertex[v] = true;
                 }
             }
         }
+    }
+
+    // Counter-clockwise angle from a to b, 0 to 2 pi.
+    private static double Turn(Point2 a, Point2 b)
+    {
+        double turn = Math.Atan2(Point2.Cross(a, b), Point2.Dot(a, b));
+        return turn >= -Noise ? Math.Max(0, turn) : turn + (2 * Math.PI);
     }
 
     /// <summary>Whether either end of an edge is a sharp corner.</summary>

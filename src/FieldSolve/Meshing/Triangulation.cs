@@ -76,6 +76,19 @@ internal sealed partial class Triangulation
     /// <summary>Half-edge from vertex a to vertex b, or -1.</summary>
     public int Find(int a, int b)
     {
+        int h = FindAround(a, b);
+        if (h >= 0)
+        {
+            return h;
+        }
+
+        // The turn about a corner of the rectangle ends at its rim.
+        int g = FindAround(b, a);
+        return g < 0 ? -1 : Twin[g];
+    }
+
+    private int FindAround(int a, int b)
+    {
         int t = At[a], start = t;
         do
         {

@@ -64,11 +64,13 @@ internal static class MeshSizes
             double factor = meshes.IsCore[t]
                 ? Math.Clamp(CoreBudget / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1e-3, 2)
                 : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
-            double wanted = factor * LongestEdge(mesh, t);
+            double edge = LongestEdge(mesh, t);
             for (int k = 0; k < 3; k++)
             {
+                // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
                 int v = mesh.Corners[(3 * t) + k];
-                size[v] = Math.Min(size[v], wanted);
+                bool mayShrink = !meshes.IsCore[t] || v < mesh.Domain.Vertices.Count;
+                size[v] = Math.Min(size[v], (mayShrink ? factor : Math.Max(factor, 1)) * edge);
             }
         }
 

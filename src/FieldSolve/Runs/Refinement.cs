@@ -67,7 +67,7 @@ internal sealed class Refinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            IReadOnlyList<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, largest, bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, largest, bothSigns, cancel));
             (best, goals) = (meshes, measured);
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));

@@ -103,7 +103,7 @@ internal sealed class VertexCut
         int head = 0, tail = 0;
         for (int b = 0; b < count; b++)
         {
-            if ((Touches[b] & 1) != 0 && previous[b] != Source)
+            if ((Touches[b] & 1) != 0)   // only vertices have a capacity, the ways between them have none
             {
                 levels[2 * b] = 0;
                 queue[tail++] = 2 * b;
@@ -140,7 +140,7 @@ internal sealed class VertexCut
             for (int k = Start[b]; k < Start[b + 1]; k++)
             {
                 int w = Neighbour[k];
-                if (levels[2 * w] < 0 && w != next[b])
+                if (levels[2 * w] < 0)
                 {
                     levels[2 * w] = after;
                     queue[tail++] = 2 * w;
@@ -181,7 +181,7 @@ internal sealed class VertexCut
                 for (; k < Start[b + 1]; k++)
                 {
                     int w = Neighbour[k];
-                    if (level[2 * w] == wanted && w != next[b])
+                    if (level[2 * w] == wanted)
                     {
                         step = 2 * w;
                         break;
@@ -237,7 +237,7 @@ internal sealed class VertexCut
         int head = 0, tail = 0;
         for (int b = 0; b < count; b++)
         {
-            if ((Touches[b] & 2) != 0 && next[b] != Sink)
+            if ((Touches[b] & 2) != 0)
             {
                 levels[2 * b + 1] = 0;
                 queue[tail++] = 2 * b + 1;
@@ -264,7 +264,7 @@ internal sealed class VertexCut
             for (int k = Start[b]; k < Start[b + 1]; k++)
             {
                 int w = Neighbour[k];
-                if (levels[2 * w + 1] < 0 && next[w] != b)
+                if (levels[2 * w + 1] < 0)
                 {
                     levels[2 * w + 1] = 0;
                     queue[tail++] = 2 * w + 1;

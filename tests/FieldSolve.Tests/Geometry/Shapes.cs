@@ -15,6 +15,9 @@ internal static class Shapes
 
     public static Point2[] Rectangle(double x0, double y0, double x1, double y1) => [new(x0, y0), new(x1, y0), new(x1, y1), new(x0, y1)];
 
+    /// <summary>A polygon without holes.</summary>
+    public static Outline Simple(Point2[] corners) => Polygon([corners]);
+
     public static Outline Polygon(params Point2[][] loops) => new([.. loops.Select(Loop)]);
 
     public static Curve[] Loop(Point2[] corners) =>

@@ -5,9 +5,8 @@ namespace FieldSolve.Device;
 /// <summary>A contact as read, before it is known whether the whole device is sound.</summary>
 /// <param name="Name">Null if it has none, or a faulty one.</param>
 /// <param name="NameAt">Where the name stands.</param>
-/// <param name="Table">Where its table starts; the members of a ring share it.</param>
-/// <param name="At">Where what places it stands.</param>
-internal sealed record ContactDraft(string? Name, Place NameAt, Place Table, Place At)
+/// <param name="At">Where what places it stands; the members of a ring share it.</param>
+internal sealed record ContactDraft(string? Name, Place NameAt, Place At)
 {
     /// <summary>The stretch of rim; null for a pad or if faulty.</summary>
     public RimSpan? Span { get; init; }

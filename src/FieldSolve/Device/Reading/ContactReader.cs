@@ -8,6 +8,8 @@ namespace FieldSolve.Device;
 internal sealed class ContactReader(Section root, SheetReading sheet, FileSource files)
 {
     private const int MostInRing = 1000;
+    private const int MostContacts = 1000;
+    private static readonly string[] Kinds = ["contact", "contacts", "point"];
 
     private readonly FaultList faults = root.Faults;
     private readonly EdgeReader edges = new(sheet, root.Faults);
@@ -24,7 +26,7 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
     public IReadOnlyList<RingDraft> Rings => rings;
 
     /// <summary>False if a name may have been lost to a fault, so that one that seems absent may be there.</summary>
-    public bool NamesComplete { get; private set; } = !root.Table.Damaged;
+    public bool NamesComplete { get; private set; } = !root.Table.Damaged && !root.Table.Entries.Any(IsLost);
 
     public void Read()
     {
@@ -36,6 +38,13 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
         foreach ((TomlTable table, bool ring) in tables.OrderBy(t => t.Table.At.Line).ThenBy(t => t.Table.At.Column))
         {
             NamesComplete &= !table.Damaged;
+            if (contacts.Count > MostContacts)
+            {
+                faults.Add(table.At, string.Create(CultureInfo.InvariantCulture, $"there are more than {MostContacts} contacts; no sheet takes so many"));
+                NamesComplete = false;
+                break;
+            }
+
             if (ring)
             {
                 Ring(new Section(table, "[[contacts]]", faults));
@@ -60,15 +69,8 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
     private void Contact(Section section)
     {
         (string? name, Place nameAt) = Name(section, "w");
-        double? resistance = section.Quantity("resistance", Dimension.LineResistance, Range.NonNegative);
-        double? resistivity = section.Quantity("resistivity", Dimension.ContactResistivity, Range.NonNegative);
-        double? shift = section.Quantity("shift", Dimension.Length, Range.Coordinate, example: "50 nm");
         TomlEntry? edge = section.Take("edge"), pad = section.Take("pad");
-        ContactDraft draft = new(name, nameAt, section.At, (edge ?? pad)?.Value.At ?? section.At)
-        {
-            LineResistance = resistance ?? 0,
-            Resistivity = resistivity ?? 0,
-        };
+        ContactDraft draft = new(name, nameAt, (edge ?? pad)?.Value.At ?? section.At);
         if (edge is not null && pad is not null)
         {
             TomlEntry later = (edge.At.Line, edge.At.Column).CompareTo((pad.At.Line, pad.At.Column)) > 0 ? edge : pad;
@@ -77,18 +79,17 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
         else if (edge is not null)
         {
             Misplaced(section, "resistivity", "is for a pad; an edge contact takes 'resistance', for example \"120 ohm um\"");
-            bool sound = shift is not null || section.Take("shift") is null;
-            if (section.Inner("edge", "{ at = \"180 deg\", width = \"0.7 um\" }") is { } inner
-                && edges.Read(inner, shift ?? 0) is { } span && sound)
-            {
-                draft = draft with { Span = span };
-            }
+            draft = Edge(section, draft);
         }
         else if (pad is not null)
         {
             Misplaced(section, "resistance", "is for an edge contact; a pad takes 'resistivity', for example \"1e-7 ohm cm^2\"");
             Misplaced(section, "shift", "is for an edge contact; move the pad's corners instead");
-            draft = draft with { Pad = new PadReader(sheet, files, faults).Read(pad) };
+            draft = draft with
+            {
+                Resistivity = section.Quantity("resistivity", Dimension.ContactResistivity, Range.NonNegative) ?? 0,
+                Pad = new PadReader(sheet, files, faults).Read(pad),
+            };
         }
         else
         {
@@ -96,14 +97,31 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
                 "[[contact]] needs 'edge' or 'pad', for example edge = { at = \"180 deg\", width = \"0.7 um\" }", "edge", "pad");
         }
 
+        foreach (string key in new[] { "resistance", "resistivity", "shift" })
+        {
+            section.Take(key);
+        }
+
         section.Finish();
         contacts.Add(draft);
+    }
+
+    private ContactDraft Edge(Section section, ContactDraft draft)
+    {
+        double? shift = section.Quantity("shift", Dimension.Length, Range.Coordinate, example: "50 nm");
+        bool sound = Sound(section, "shift", shift);
+        RimSpan? span = section.Inner("edge", "{ at = \"180 deg\", width = \"0.7 um\" }") is { } edge ? edges.Read(edge, shift ?? 0) : null;
+        return draft with
+        {
+            LineResistance = section.Quantity("resistance", Dimension.LineResistance, Range.NonNegative) ?? 0,
+            Span = sound ? span : null,
+        };
     }
 
     private void Ring(Section section)
     {
         TomlEntry? ring = section.Need("ring", "12");
-        int count = (int)(section.Number("ring", new(1, MostInRing, "1 to 1000"), integer: true) ?? 0);
+        int count = (int)(section.Number("ring", new(1, MostInRing, "from 1 to 1000"), integer: true) ?? 0);
         double? width = section.Quantity("width", Dimension.Length, Range.Extent, required: true, "0.7 um");
         double? first = section.Quantity("first", Dimension.Angle, Range.Any, example: "0 deg");
         double? resistance = section.Quantity("resistance", Dimension.LineResistance, Range.NonNegative);
@@ -125,7 +143,6 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
             contacts.Add(new(
                 named ? string.Create(CultureInfo.InvariantCulture, $"{prefix!.Value}{k + 1}") : null,
                 prefix?.At ?? section.At,
-                section.At,
                 ring?.Value.At ?? section.At)
             {
                 Span = placed ? edges.Shifted(edges.About((first ?? 0) + (2 * Math.PI * k / count), width!.Value), shift ?? 0) : null,
@@ -170,6 +187,11 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
             faults.Add(entry.At, $"'{key}' {why}");
         }
     }
+
+    /// <summary>Whether a table that looks like one of contacts or points is misspelt or written with single brackets.</summary>
+    private static bool IsLost(TomlEntry entry) => Kinds.Contains(entry.Key)
+        ? entry.Value is not TomlArray
+        : Suggest.Nearest(entry.Key, Kinds) is not null && entry.Value is TomlArray { OfTables: true };
 
     private static bool Sound(Section section, string key, double? value) => value is not null || section.Take(key) is null;
 }

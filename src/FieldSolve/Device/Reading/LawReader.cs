@@ -30,10 +30,13 @@ internal static class LawReader
                 section.Faults.Add(name.At, $"unknown law '{Values.Short(name.Value)}'{Suggest.Hint(name.Value, names)}");
             }
 
-            // Which keys belong here is anyone's guess without the kind: know them all.
-            foreach (LawParameter p in LawCatalogue.Kinds.SelectMany(k => k.Parameters))
+            // Which keys belong here is anyone's guess without the kind: know the keys of all laws.
+            foreach (LawParameter p in LawCatalogue.Kinds.SelectMany(k => k.Parameters).DistinctBy(p => p.Key))
             {
-                section.Take(p.Key);
+                if (section.Take(p.Key) is { } entry && !p.IsFile)
+                {
+                    Number(p, entry.Value, section.Faults);
+                }
             }
 
             section.Finish();

@@ -91,7 +91,7 @@ internal static class RunReader
         double? from = keys.Quantity("from", Dimension.Current, Range.Any, required: true, "0 uA");
         double? to = keys.Quantity("to", Dimension.Current, Range.Any, required: true, "500 uA");
         TomlEntry? entry = keys.Need("steps", "11");
-        double? steps = keys.Number("steps", new(1, MostSteps, "1 to 10000"), integer: true);
+        double? steps = keys.Number("steps", new(1, MostSteps, "from 1 to 10000"), integer: true);
         if (steps == 1 && from is not null && to is not null && from != to)
         {
             keys.Faults.Add(entry!.Value.At, "'steps' counts both ends; one value needs 'from' equal to 'to', two ends need 'steps' of 2 or more");

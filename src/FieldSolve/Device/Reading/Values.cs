@@ -8,6 +8,7 @@ namespace FieldSolve.Device;
 internal static class Values
 {
     private const int LongestName = 64;
+    private const double Nothing = 1e-13; // metres; what is left of rounding is shown as zero
 
     /// <summary>A number with its unit.</summary>
     public static double? Quantity(TomlValue value, string what, Dimension dimension, Range range, FaultList faults, string? example = null)
@@ -128,13 +129,14 @@ internal static class Values
     {
         (double scale, string unit) = Math.Abs(metres) switch
         {
-            0 => (1e-6, "um"),
+            < Nothing => (double.PositiveInfinity, "um"),
             < 1e-6 => (1e-9, "nm"),
             < 1e-3 => (1e-6, "um"),
             < 1 => (1e-3, "mm"),
             _ => (1.0, "m"),
         };
-        return string.Create(CultureInfo.InvariantCulture, $"{metres / scale:0.####} {unit}");
+        string sign = metres <= -Nothing ? "-" : "";
+        return string.Create(CultureInfo.InvariantCulture, $"{sign}{Math.Abs(metres) / scale:0.####} {unit}");
     }
 
     /// <summary>A point as it would be written in the file.</summary>

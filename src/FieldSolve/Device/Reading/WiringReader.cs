@@ -16,7 +16,10 @@ internal sealed class WiringReader
 
     public WiringReader(Section root, ContactReader contacts)
     {
-        (this.root, faults, namesComplete) = (root, root.Faults, contacts.NamesComplete);
+        (this.root, faults) = (root, root.Faults);
+
+        // Without any contact that is the fault, not each name.
+        namesComplete = contacts.NamesComplete && contacts.Contacts.Count > 0;
         Dictionary<string, Place> first = [];
         Place? reported = null;
         IEnumerable<(string? Name, Place At, Terminal Terminal)> all =

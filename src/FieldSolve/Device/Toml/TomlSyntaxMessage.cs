@@ -41,9 +41,11 @@ internal static partial class TomlSyntaxMessage
             return "a comma is missing between the items of a list";
         }
 
-        if (message.Contains("while parsing inline table", StringComparison.Ordinal))
+        if (InTable().Match(message) is { Success: true } t)
         {
-            return "the closing '}' is missing, or something other than key = value stands between the braces";
+            return t.Groups[1].Value is "`<eof>`" or "`\n`"
+                ? "the closing '}' is missing"
+                : $"{Quoted(t.Groups[1].Value)} may not stand here between braces; there stands key = value, and {Quotes}";
         }
 
         if (message.Contains("closing `]`", StringComparison.Ordinal) || message.Contains("expecting `]`", StringComparison.Ordinal))
@@ -73,6 +75,9 @@ internal static partial class TomlSyntaxMessage
 
     [GeneratedRegex("^Unexpected token (`.*`) for a value", RegexOptions.Singleline)]
     private static partial Regex NoValue();
+
+    [GeneratedRegex("while parsing inline table.* instead of (`.*`)", RegexOptions.Singleline)]
+    private static partial Regex InTable();
 
     [GeneratedRegex(@"^Unexpected token \[(.*)\] found", RegexOptions.Singleline)]
     private static partial Regex Unexpected();

@@ -1,0 +1,64 @@
+using System.Globalization;
+using FieldSolve.Device;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>What a drive computed, in sentences.</summary>
+internal static class ReportWords
+{
+    /// <summary>The paragraphs.</summary>
+    public static IEnumerable<string> Of(DriveResult result)
+    {
+        SheetDevice device = result.Device;
+        yield return string.Create(CultureInfo.InvariantCulture, $"{Sheet(device)} It carries {Count(device.Contacts.Count, "contact")}")
+            + (device.Tips.Count > 0 ? $" and {Count(device.Tips.Count, "voltage tip")}" : "")
+            + $". The sheet law is {device.Law.Kind}; crystal axis a lies at {SiScale.Number(Math.Round(device.Axis * 180 / Math.PI, 6), 6)}° from lab x.";
+        if (device.Drive is { } drive)
+        {
+            string range = drive.Steps == 1
+                ? SiScale.Text(drive.From, "A")
+                : $"{drive.Steps.ToString(CultureInfo.InvariantCulture)} values from {SiScale.Text(drive.From, "A")} to {SiScale.Text(drive.To, "A")}";
+            yield return $"{Count(device.Wirings.Count, "wiring")}, current {range}"
+                + (drive.BothSigns
+                    ? ", each solved with both signs on the same mesh: the odd part is half the difference of the two readings, the even part half their sum."
+                    : ", one sign only.")
+                + " Contacts outside a wiring float: each is one potential and carries no net current.";
+        }
+
+        int ok = result.Rows.Count(r => r.Status == RowStatus.Ok);
+        yield return string.Create(
+            CultureInfo.InvariantCulture,
+            $"The finest mesh has {Grouped(result.Figures.Triangles)} quadratic triangles and {Grouped(result.Figures.Unknowns)} unknowns. {ok} of {result.Rows.Count} rows are ok.")
+            + (result.AllOk ? "" : " The others are marked in the tables and ringed in the plots.")
+            + (result.Cancelled ? " The run was cancelled; what follows is what was finished." : "");
+    }
+
+    /// <summary>A whole number with thin spaces between thousands.</summary>
+    public static string Grouped(long number) => number.ToString("N0", CultureInfo.InvariantCulture).Replace(',', '\u202f');
+
+    private static string Sheet(SheetDevice device)
+    {
+        string text = device.Shape switch
+        {
+            "hall_bar" => "The sheet is a Hall bar",
+            "outline" => "The sheet has the outline of a file",
+            _ => $"The sheet is a {device.Shape}",
+        };
+        List<string> details = [];
+        if (device.Thickness is { } thickness)
+        {
+            details.Add($"{SiScale.Text(thickness, "m")} thick");
+        }
+
+        if (device.DeadEdge > 0)
+        {
+            details.Add($"with a dead edge of {SiScale.Text(device.DeadEdge, "m")}");
+        }
+
+        return text + (details.Count > 0 ? ", " + string.Join(", ", details) : "") + ".";
+    }
+
+    private static string Count(int number, string thing) =>
+        number.ToString(CultureInfo.InvariantCulture) + " " + thing + (number == 1 ? "" : "s");
+}

@@ -1,0 +1,37 @@
+using FieldSolve.Geometry;
+using ScottPlot;
+using SkiaSharp;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>Paints the inside of the sheet, holes left out.</summary>
+/// <param name="loops">Closed loops in metres.</param>
+/// <param name="scale">Multiplies metres to give plot units.</param>
+internal sealed class SheetFill(IReadOnlyList<Point2[]> loops, double scale) : IPlottable
+{
+    /// <inheritdoc/>
+    public bool IsVisible { get; set; } = true;
+
+    /// <inheritdoc/>
+    public IAxes Axes { get; set; } = new Axes();
+
+    /// <inheritdoc/>
+    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
+
+    /// <inheritdoc/>
+    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
+
+    /// <inheritdoc/>
+    public void Render(RenderPack rp)
+    {
+        ArgumentNullException.ThrowIfNull(rp);
+        using SKPath path = new() { FillType = SKPathFillType.EvenOdd };
+        foreach (Point2[] loop in loops)
+        {
+            path.AddPoly([.. loop.Select(p => Axes.GetPixel(new(scale * p.X, scale * p.Y))).Select(p => new SKPoint(p.X, p.Y))]);
+        }
+
+        using SKPaint paint = new() { IsAntialias = true, Color = Look.Sheet.ToSKColor() };
+        rp.Canvas.DrawPath(path, paint);
+    }
+}

@@ -50,7 +50,10 @@ internal static class ErrorText
         }
 
         string format = "F" + decimals.ToString(CultureInfo.InvariantCulture);
-        string text = shown.ToString(format, CultureInfo.InvariantCulture).Replace('-', '−');
+
+        // A value that rounds to zero shows no sign.
+        double rounded = Math.Abs(shown) < 0.5 * Math.Pow(10, -decimals) ? 0 : shown;
+        string text = rounded.ToString(format, CultureInfo.InvariantCulture).Replace('-', '−');
         return $"{text} ± {shownError.ToString(format, CultureInfo.InvariantCulture)}";
     }
 }

@@ -82,12 +82,13 @@ internal sealed class MapImage(FineMesh mesh, double[] values, double scale, ICo
             int y0 = Math.Max(0, (int)Math.Ceiling(Math.Min(py[a], Math.Min(py[b], py[c])) - 0.5));
             int y1 = Math.Min(height - 1, (int)Math.Floor(Math.Max(py[a], Math.Max(py[b], py[c])) - 0.5));
             double db = shade[b] - shade[a], dc = shade[c] - shade[a];
+            (ux, uy, vx, vy) = (ux / twice, uy / twice, vx / twice, vy / twice);
             for (int y = y0; y <= y1; y++)
             {
                 double qy = y + 0.5 - py[a];
                 for (int x = x0; x <= x1; x++)
                 {
-                    double qx = x + 0.5 - px[a], wb = ((qx * vy) - (qy * vx)) / twice, wc = ((ux * qy) - (uy * qx)) / twice;
+                    double qx = x + 0.5 - px[a], wb = (qx * vy) - (qy * vx), wc = (ux * qy) - (uy * qx);
                     if (wb >= -1e-6 && wc >= -1e-6 && wb + wc <= 1 + 1e-6)
                     {
                         pixels[(y * width) + x] = shades[Math.Clamp((int)(shade[a] + (wb * db) + (wc * dc)), 0, Shades - 1)];

@@ -19,7 +19,7 @@ internal static class ReportWords
             string range = drive.Steps == 1
                 ? SiScale.Text(drive.From, "A")
                 : $"{drive.Steps.ToString(CultureInfo.InvariantCulture)} values from {SiScale.Text(drive.From, "A")} to {SiScale.Text(drive.To, "A")}";
-            yield return $"{Count(device.Wirings.Count, "wiring")}, current {range}"
+            yield return $"{Count(device.Wirings.Count, "wiring")}, current: {range}"
                 + (drive.BothSigns
                     ? ", each solved with both signs on the same mesh: the odd part is half the difference of the two readings, the even part half their sum."
                     : ", one sign only.")

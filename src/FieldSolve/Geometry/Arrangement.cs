@@ -36,18 +36,20 @@ internal sealed class Arrangement
 
         PlacePads();
         PadCheck.AddMeetings([.. _pads.Select(p => (p.Contact, p.Outline))], live.Tolerance, _problems);
+        _tips = PlaceTips(tips); // before the crossings: a pad's edge along the rim must be cut where a tip cuts the rim
         foreach (PadOutline pad in _pads)
         {
             CrossRim(pad);
         }
 
-        _tips = PlaceTips(tips);
         _edges = new SheetEdges(live, _vertices, _rim, _pads, spans, _problems).All;
         if (_edges.Count == 0)
         {
             int pad = _pads.Find(p => p.IsIdeal)?.Contact ?? 0;
             _problems.Add(new(pad, -1, -1, PlacementFault.NothingLeft, live.Pieces[0].Start));
         }
+
+        AddTipsBetweenPadAndRim(tips);
     }
 
     /// <summary>Contacts before tips, by index.</summary>
@@ -84,6 +86,20 @@ internal sealed class Arrangement
             [.. _edges.Select(e => e with { From = number[e.From], To = number[e.To] })],
             [.. _pads.Where(p => !p.IsIdeal).Select(p => new DomainRegion(p.Contact, p.Corners))],
             [.. _tips.Select(t => number[t])]);
+    }
+
+    // A tip on the edge of an ideal pad where that edge is not in the sheet but runs along rim that the pad covers.
+    private void AddTipsBetweenPadAndRim(IReadOnlyList<Point2> tips)
+    {
+        HashSet<int> used = [.. _edges.SelectMany(e => new[] { e.From, e.To })];
+        for (int i = 0; i < tips.Count; i++)
+        {
+            if (_tips[i] >= 0 && !used.Contains(_tips[i])
+                && _pads.Find(p => p.IsIdeal && p.Outline.SignedDistance(tips[i]) >= -_live.Tolerance) is { } metal)
+            {
+                _problems.Add(new(-1, i, metal.Contact, PlacementFault.TipInPad, tips[i]));
+            }
+        }
     }
 
     private void CutAt(int loop, double s)
@@ -169,6 +185,7 @@ internal sealed class Arrangement
         for (int i = 0; i < tips.Count; i++)
         {
             Point2 p = tips[i];
+            vertices[i] = -1;
             bool finite = double.IsFinite(p.X) && double.IsFinite(p.Y);
             PadOutline? metal = !finite ? null : padTree.Query(Box.Of(p)).Select(k => _pads[k])
                 .FirstOrDefault(pad => pad.IsIdeal && pad.Outline.SignedDistance(p) > _live.Tolerance);

@@ -47,7 +47,14 @@ public static class Mesher
         Triangulation mesh = OutlineTriangulation.Build(domain, division, cancel);
         Sheet.Mark(mesh, domain);
         new Refiner(mesh, domain, sharp, size, options, cancel).Run();
-        return MeshAssembly.Assemble(mesh, domain);
+        TriangleMesh result = MeshAssembly.Assemble(mesh, domain);
+        if (result.TriangleCount > options.MaxTriangles)
+        {
+            throw new MeshException(string.Create(CultureInfo.InvariantCulture,
+                $"The mesh has {result.TriangleCount} triangles, more than the {options.MaxTriangles} allowed. Ask for larger triangles or allow more of them."));
+        }
+
+        return result;
     }
 
     private static void RefuseTooMany(List<double>[] division, MeshOptions options)

@@ -17,8 +17,13 @@ internal static class MeshSizes
     private const double Growth = 0.7;
 
     // Share of the wanted error that regular triangles and singular points may use; the rest is for what the prediction misses.
-    private const double RegularBudget = 0.35;
-    private const double CoreBudget = 0.15;
+    private const double RegularBudget = 0.5;
+    private const double CoreBudget = 0.2;
+
+    private const double LessEachLevel = 0.65;
+
+    // The sizes are those of longest edges; a mesh made for a size has edges of about 0.8 of it.
+    private const double EdgeToSize = 1.2;
 
     /// <summary>Sizes of the first mesh.</summary>
     public static ISizeField First(SheetDevice device)
@@ -35,8 +40,9 @@ internal static class MeshSizes
     /// <summary>Sizes of the next mesh.</summary>
     /// <param name="meshes">The meshes that were measured.</param>
     /// <param name="goals">Errors with what was wanted.</param>
+    /// <param name="level">Level of the mesh that was measured; a prediction that failed before gets less of the wanted error.</param>
     /// <param name="mostTriangles">Most triangles of the next coarse mesh.</param>
-    public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int mostTriangles)
+    public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level, int mostTriangles)
     {
         TriangleMesh mesh = meshes.Coarse.Space.Mesh;
         double[] load = Loads(mesh, goals);
@@ -56,15 +62,16 @@ internal static class MeshSizes
             }
         }
 
-        double even = Equidistribution(regular, mostTriangles);
+        double cancelling = Cancelling(regular.Sum() + coreLoad, goals) * Math.Pow(LessEachLevel, level);
+        double even = Equidistribution(regular, RegularBudget * cancelling, mostTriangles);
         double[] size = new double[mesh.VertexCount];
         Array.Fill(size, double.PositiveInfinity);
         for (int t = 0; t < load.Length; t++)
         {
             double factor = meshes.IsCore[t]
-                ? Math.Clamp(CoreBudget / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1e-3, 2)
+                ? Math.Clamp(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1e-3, 2)
                 : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
-            double edge = LongestEdge(mesh, t);
+            double edge = EdgeToSize * LongestEdge(mesh, t);
             for (int k = 0; k < 3; k++)
             {
                 // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
@@ -75,6 +82,14 @@ internal static class MeshSizes
         }
 
         return new VertexSize(mesh, size, Growth);
+    }
+
+    // The loads count every contribution positive and take the worst reading in each triangle; how much more that is than the worst reading's own
+    // bar is much the same on the next mesh.
+    private static double Cancelling(double total, IReadOnlyList<GoalMeasure> goals)
+    {
+        double worst = goals.Max(g => g.Error.Bar / g.Wanted);
+        return worst > 0 ? Math.Clamp(total / worst, 1, 20) : 1;
     }
 
     // Per triangle, the largest share of a wanted error over all readings.
@@ -94,7 +109,7 @@ internal static class MeshSizes
 
     // The error per triangle goes like size^6 (density size^4 times area), so the cheapest mesh has equal errors. Find that
     // common error: with N(e) = sum of (load/e)^(1/3) triangles, e N(e) is the budget.
-    private static double Equidistribution(List<double> load, int mostTriangles)
+    private static double Equidistribution(List<double> load, double budget, int mostTriangles)
     {
         double sum = load.Sum(x => Math.Cbrt(x));
         if (sum == 0)
@@ -102,7 +117,7 @@ internal static class MeshSizes
             return 1;
         }
 
-        double even = Math.Pow(RegularBudget / sum, 1.5);
+        double even = Math.Pow(budget / sum, 1.5);
         double count = sum / Math.Cbrt(even);
         return count > mostTriangles ? Math.Pow(sum / mostTriangles, 3) : even;
     }

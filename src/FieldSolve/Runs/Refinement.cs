@@ -77,7 +77,7 @@ internal sealed class Refinement
                 return new(best, goals, levels, met);
             }
 
-            size = MeshSizes.Next(meshes, measured, (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle * 0.95));
+            size = MeshSizes.Next(meshes, measured, level, (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle * 0.95));
         }
     }
 

@@ -147,6 +147,20 @@ public class DomainBuilderTests
         Assert.DoesNotContain(d.Edges, e => e.From == d.Tips[5] || e.To == d.Tips[5]);
     }
 
+    [Theory]
+    [InlineData(true)]
+    [InlineData(false)]
+    public void A_tip_beside_a_flush_pad_does_not_part_them(bool ideal)
+    {
+        // The pad's lower edge runs along the rim, past a tip outside it and up to one at its corner; and a tip below a resistive pad.
+        ContactPlacement[] contacts = [new(null, Shapes.Rectangle(-1, -2, 1, 0), ideal)];
+        Point2[] tips = ideal ? [new(1, -2), new(2, -2)] : [new(0, -2), new(1, -2), new(2, -2)];
+        Domain d = DomainBuilder.Build(_bar, contacts, tips);
+        DomainChecks.Sound(d, _bar, contacts);
+        Assert.Equal(ideal ? 28 : 32, DomainChecks.RimArea(d), 12);
+        Assert.Equal(ideal ? 0 : 6, DomainChecks.InnerLength(d), 12);
+    }
+
     [Fact]
     public void Metal_against_the_rim_from_outside_is_part_of_the_contact()
     {

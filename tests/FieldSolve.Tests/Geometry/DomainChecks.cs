@@ -43,6 +43,16 @@ internal static class DomainChecks
         Apart(d.Vertices, tolerance / 2);
         MeetOnlyAtVertices(d);
         SheetOnTheLeft(d, live, contacts);
+
+        // A tip off all edges stands on bare sheet.
+        HashSet<int> joined = [.. d.Edges.SelectMany(e => new[] { e.From, e.To })];
+        PadArea[] metal = [.. contacts.Where(c => c.IdealPad).Select(c => new PadArea(c.Pad!))];
+        foreach (Point2 p in d.Tips.Where(t => !joined.Contains(t)).Select(t => d.Vertices[t]))
+        {
+            Assert.True(live.SignedDistance(p) > tolerance);
+            Point2[] around = [new(1, 0), new(0, 1), new(-1, 0), new(0, -1)];
+            Assert.DoesNotContain(around, step => metal.Any(m => m.Covers(p + (tolerance * step))));
+        }
     }
 
     private static void Apart(IReadOnlyList<Point2> points, double least)

@@ -1,4 +1,5 @@
 using FieldSolve.Geometry;
+using FsCheck;
 using FsCheck.Xunit;
 using NetTopologySuite.Geometries;
 using NetTopologySuite.IO;
@@ -128,9 +129,9 @@ public class OutlineTests
     }
 
     [Property(Replay = "(9,3)", MaxTest = 300)]
-    public void Contains_agrees_with_the_polygon(int seed)
+    public void Contains_agrees_with_the_polygon(DoNotSize<int> seed)
     {
-        var random = new Random(seed);
+        var random = new Random(seed.Item);
         Outline star = RandomLayouts.Star(random, 3 + random.Next(30));
         Polygon polygon = OutlinePolygons.Polygon(star);
         for (int k = 0; k < 20; k++)

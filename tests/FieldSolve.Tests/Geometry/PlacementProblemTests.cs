@@ -95,6 +95,14 @@ public class PlacementProblemTests
     }
 
     [Fact]
+    public void Tip_between_a_flush_ideal_pad_and_the_rim_is_in_the_metal()
+    {
+        PlacementProblem p = Assert.Single(DomainBuilder.Check(_bar, [Pad(true, -1, -2, 1, 0)], [new(0, -2), new(1, -2), new(0, 0)]));
+        Assert.Equal((0, 0, PlacementFault.TipInPad), (p.Tip, p.OtherContact, p.Fault));
+        Assert.Empty(DomainBuilder.Check(_bar, [Pad(false, -1, -2, 1, 0)], [new(0, -2)]));
+    }
+
+    [Fact]
     public void All_problems_come_at_once_and_building_refuses_them()
     {
         ContactPlacement[] contacts = [Pad(true, 9, 9, 10, 10), Shapes.Edge(0, 0, 99), Shapes.Edge(0, 1, 1), Shapes.Edge(0, 1.5, 1)];

@@ -13,7 +13,7 @@ internal static class RandomLayouts
         0 => Shapes.Disc(1),
         1 => Shapes.Ring(0.25, 1),
         2 => Shapes.Bar(2, 1),
-        3 => Shapes.Polygon(StarLoop(random, 3 + random.Next(20)), Shapes.Rectangle(-0.125, -0.125, 0.125, 0.125)),
+        3 => PiercedStar(random),
         _ => Shapes.Polygon(
             [
                 new(-1, -0.5), new(-0.5, -0.5), new(-0.5, -1), new(-0.25, -1), new(-0.25, -0.5), new(1, -0.5),
@@ -45,6 +45,18 @@ internal static class RandomLayouts
         return contacts;
     }
 
+    private static Outline PiercedStar(Random random)
+    {
+        while (true)
+        {
+            Outline star = Shapes.Polygon(StarLoop(random, 3 + random.Next(20)), Shapes.Rectangle(-0.125, -0.125, 0.125, 0.125));
+            if (star.Validate().Count == 0)
+            {
+                return star;
+            }
+        }
+    }
+
     private static Point2[] StarLoop(Random random, int corners) => [.. Enumerable.Range(0, corners)
         .Select(k => (0.3 + (0.7 * random.NextDouble())) * new Point2(1, 0).Turned((k + (0.8 * random.NextDouble())) * 2 * Math.PI / corners))];
 
@@ -52,7 +64,8 @@ internal static class RandomLayouts
     {
         double x = random.Next(-9, 9) / 8.0, y = random.Next(-9, 9) / 8.0;
         double w = random.Next(1, 9) / 8.0, h = random.Next(1, 9) / 8.0;
-        Point2[] corners = Shapes.Rectangle(x, y, x + w, y + h);
+        double off = random.Next(-1, 2) * 2e-10; // a tenth of the tolerance
+        Point2[] corners = Shapes.Rectangle(x + off, y - off, x + w + off, y + h);
         return random.Next(3) == 0 ? corners[..3] : corners;
     }
 

@@ -23,12 +23,20 @@ internal static class Shapes
     public static Curve[] Loop(Point2[] corners) =>
         [.. corners.Select((p, i) => Curve.Segment(p, corners[(i + 1) % corners.Length]))];
 
-    /// <summary>The same outline scaled, then moved.</summary>
-    public static Outline Moved(Outline outline, double scale, Point2 by) => new([.. outline.Loops.Select(l => l.Select(c => Moved(c, scale, by)).ToArray())]);
+    /// <summary>Scaled, turned about the origin, then moved.</summary>
+    public sealed record Motion(double Scale, double Turn, Point2 By)
+    {
+        public Point2 Of(Point2 p) => (Scale * p).Turned(Turn) + By;
 
-    public static Curve Moved(Curve c, double scale, Point2 by) => c.IsArc
-        ? Curve.Arc((scale * c.Centre) + by, scale * c.Radius, c.StartAngle, c.Sweep, (scale * c.Start) + by, (scale * c.End) + by)
-        : Curve.Segment((scale * c.Start) + by, (scale * c.End) + by);
+        public Curve Of(Curve c) => c.IsArc
+            ? Curve.Arc(Of(c.Centre), Scale * c.Radius, c.StartAngle + Turn, c.Sweep, Of(c.Start), Of(c.End))
+            : Curve.Segment(Of(c.Start), Of(c.End));
+
+        public Outline Of(Outline outline) => new([.. outline.Loops.Select(l => l.Select(Of).ToArray())]);
+
+        public ContactPlacement Of(ContactPlacement c) => new(
+            c.Span is { } s ? s with { From = Scale * s.From, Length = Scale * s.Length } : null, c.Pad?.Select(Of).ToArray(), c.IdealPad);
+    }
 
     public static ContactPlacement Edge(int loop, double from, double length) => new(new RimSpan(loop, from, length), null, false);
 

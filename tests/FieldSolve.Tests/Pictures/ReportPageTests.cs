@@ -1,0 +1,91 @@
+using System.Globalization;
+using System.Text.RegularExpressions;
+using FieldSolve.Pictures;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Tests.PicturesTests;
+
+public sealed class ReportPageTests : IDisposable
+{
+    private readonly string folder = Directory.CreateTempSubdirectory("report-").FullName;
+
+    public void Dispose() => Directory.Delete(folder, recursive: true);
+
+    private string Page(DriveResult result, bool pictures = false)
+    {
+        IReadOnlyList<PictureFile> files = pictures ? DrivePictures.Write(result, folder, CancellationToken.None) : [];
+        string path = Path.Combine(folder, "report.html");
+        ReportPage.Write(result, files, path);
+        return File.ReadAllText(path);
+    }
+
+    [Fact]
+    public void The_page_is_whole_and_refers_to_nothing_outside()
+    {
+        string page = Page(SyntheticDrive.Make(rings: 4, mapSteps: [10]), pictures: true);
+        Assert.Contains("http-equiv=\"Content-Security-Policy\" content=\"default-src 'none'; img-src data:; style-src 'unsafe-inline';", page, StringComparison.Ordinal);
+        Assert.DoesNotMatch("https?:", page);
+        Assert.DoesNotContain("<script", page, StringComparison.OrdinalIgnoreCase);
+        Assert.DoesNotContain("<link", page, StringComparison.OrdinalIgnoreCase);
+        Assert.DoesNotMatch(@"url\(|@import", page);
+        MatchCollection sources = Regex.Matches(page, "src=\"([^\"]{0,30})");
+        Assert.Equal(14, sources.Count);
+        Assert.All(sources, m => Assert.StartsWith("data:image/svg+xml;base64,", m.Groups[1].Value, StringComparison.Ordinal));
+    }
+
+    [Fact]
+    public void Text_of_the_device_file_is_escaped()
+    {
+        DriveResult evil = SyntheticDrive.Make("<script>alert('x')</script> & \"more\"", rings: 2, mapSteps: []);
+        evil = evil with { Warnings = ["<img src=x onerror=alert(1)>"] };
+        string page = Page(evil, pictures: true);
+        Assert.DoesNotContain("<script", page, StringComparison.OrdinalIgnoreCase);
+        Assert.DoesNotContain("<img src=x", page, StringComparison.Ordinal);
+        Assert.Contains("<h1>&lt;script&gt;alert(&#39;x&#39;)&lt;/script&gt; &amp; &quot;more&quot;</h1>", page, StringComparison.Ordinal);
+        Assert.Contains("&lt;img src=x onerror=alert(1)&gt;", page, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void Tables_show_values_at_the_digits_of_their_errors_and_mark_doubtful_rows()
+    {
+        DriveResult result = SyntheticDrive.Make(rings: 2, mapSteps: []);
+        string page = Page(result);
+
+        // V_along at 500 µA: 46.05 mV + 3e-5 * 46.05 mV² with an error of 46.05 nV.
+        Assert.Contains("<td>46.050064 &#177; 0.000046</td>", page, StringComparison.Ordinal);
+        Assert.Contains("<tr class=\"doubt\"><td>500</td>", page, StringComparison.Ordinal);
+        Assert.Contains("outside-law", page, StringComparison.Ordinal);
+        Assert.Contains("4.2 MV/m", page, StringComparison.Ordinal);
+        Assert.Contains(result.Cautions[0].Split(';')[0], page, StringComparison.Ordinal);
+        Assert.Contains(new string('a', 64), page, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void The_page_does_not_depend_on_the_culture()
+    {
+        DriveResult result = SyntheticDrive.Make(rings: 2, mapSteps: [10]);
+        string plain = Page(result, pictures: true);
+        CultureInfo before = CultureInfo.CurrentCulture;
+        try
+        {
+            CultureInfo german = (CultureInfo)CultureInfo.InvariantCulture.Clone();
+            german.NumberFormat.NumberDecimalSeparator = ",";
+            german.NumberFormat.NumberGroupSeparator = ".";
+            CultureInfo.CurrentCulture = german;
+            Assert.Equal(plain, Page(result, pictures: true));
+        }
+        finally
+        {
+            CultureInfo.CurrentCulture = before;
+        }
+    }
+
+    [Fact]
+    public void An_empty_run_still_gives_a_page()
+    {
+        DriveResult result = SyntheticDrive.Make(rings: 2, mapSteps: []);
+        string page = Page(result with { Rows = [], ReversedRows = [], Levels = [], Summaries = [], Cautions = [], Warnings = [], Cancelled = true });
+        Assert.Contains("cancelled", page, StringComparison.Ordinal);
+        Assert.DoesNotContain("NaN", page, StringComparison.Ordinal);
+    }
+}

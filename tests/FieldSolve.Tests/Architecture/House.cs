@@ -1,4 +1,3 @@
-using System.Reflection;
 using ArchUnitNET.Domain;
 using ArchUnitNET.Domain.Extensions;
 using ArchUnitNET.Loader;
@@ -15,7 +14,7 @@ internal static class House
     ];
 
     private static readonly ArchUnitNET.Domain.Architecture Code = new ArchLoader()
-        .LoadAssemblies(Assembly.Load("FieldSolve"), Assembly.Load("FieldSolve.Pictures"), Assembly.Load("FieldSolve.Cli"))
+        .LoadAssemblies(System.Reflection.Assembly.Load("FieldSolve"), System.Reflection.Assembly.Load("FieldSolve.Pictures"), System.Reflection.Assembly.Load("FieldSolve.Cli"))
         .Build();
 
     /// <summary>Full names of the types in a namespace and below it.</summary>

@@ -18,13 +18,12 @@ public class DriveTests
         Assert.Equal(4, curves.Rows);
         for (int row = 1; row < 4; row++)
         {
-            // Isotropic, hall > 0, I > 0: along positive, across (left probe first) negative. In the middle of a long bar
-            // V_along = rho_xx I L/W and V_across = -rho_yx I with rho = sigma^-1, here a/(a²+h²) and h/(a²+h²).
+            // Isotropic, hall > 0, I > 0: along positive, across (left probe first) negative. In the middle of a long bar with point
+            // probes V_along = rho_xx I L/W and V_across = -rho_yx I with rho = sigma^-1, here a/(a²+h²) and h/(a²+h²); L = W here.
+            // The metal ends and the width of the probes short-circuit part of both.
             double current = curves.Number(row, "current_A"), det = 1e-6 + 0.09e-6;
-            Assert.True(curves.Number(row, "v_along_V") > 0);
-            Assert.True(curves.Number(row, "v_across_V") < 0);
-            Assert.Equal(-0.3e-3 / det * current, curves.Number(row, "v_across_V"), 0.1 * 275 * current);
-            Assert.Equal(1e-3 / det * current, curves.Number(row, "v_along_V"), 0.15 * 917 * current);
+            Assert.InRange(curves.Number(row, "v_across_V") / (-0.3e-3 / det * current), 0.8, 1);
+            Assert.InRange(curves.Number(row, "v_along_V") / (1e-3 / det * current), 0.8, 1.05);
             Assert.True(curves.Number(row, "pair_half_V") > 0);
             Assert.Equal(0, curves.Number(row, "v_across_even_V"), 1e-9 * current);
         }

@@ -23,6 +23,9 @@ public readonly record struct Point2(double X, double Y)
     /// <summary>The vector turned by +90 degrees (to its left).</summary>
     public Point2 Left => new(-Y, X);
 
+    /// <summary>(x, y) in round-trip digits. The record's own text would follow <see cref="Left"/> without end.</summary>
+    public override string ToString() => string.Create(System.Globalization.CultureInfo.InvariantCulture, $"({X:R}, {Y:R})");
+
     /// <summary>Scalar product.</summary>
     public static double Dot(Point2 a, Point2 b) => (a.X * b.X) + (a.Y * b.Y);
 

@@ -13,7 +13,8 @@ internal static class Division
     private const double LongestArc = Math.PI / 4;
 
     /// <summary>For each edge the parameters 0 = t0 &lt; t1 &lt; ... = 1 between its pieces.</summary>
-    public static List<double>[] Divide(Domain domain, ISizeField size, SharpCorners sharp, CancellationToken cancel)
+    /// <exception cref="MeshException">An edge needs more pieces than <paramref name="most"/>.</exception>
+    public static List<double>[] Divide(Domain domain, ISizeField size, SharpCorners sharp, int most, CancellationToken cancel)
     {
         List<double>[] coarse = ArcSeparation.Split(domain, sharp, LongestArc);
         List<double>[] result = new List<double>[domain.Edges.Count];
@@ -26,11 +27,11 @@ internal static class Division
             {
                 if (sharp.IsSharp(e))
                 {
-                    Bisect(curve, e, size, sharp, ts, coarse[e][k - 1], coarse[e][k]);
+                    Bisect(curve, e, size, sharp, ts, most, coarse[e][k - 1], coarse[e][k]);
                 }
                 else
                 {
-                    Equidistribute(curve, size, ts, coarse[e][k - 1], coarse[e][k]);
+                    Equidistribute(curve, size, ts, most, coarse[e][k - 1], coarse[e][k]);
                 }
             }
 
@@ -42,8 +43,9 @@ internal static class Division
 
     private static double At(ISizeField size, Point2 p) => size.At(p.X, p.Y);
 
-    private static void Bisect(Curve curve, int edge, ISizeField size, SharpCorners sharp, List<double> ts, double from, double to)
+    private static void Bisect(Curve curve, int edge, ISizeField size, SharpCorners sharp, List<double> ts, int most, double from, double to)
     {
+        RefuseTooMany(ts.Count, most, curve);
         double middle = sharp.SplitAt(edge, from, to);
         double wanted = Math.Min(At(size, curve.At(middle)), Math.Min(At(size, curve.At(from)), At(size, curve.At(to))));
         if (curve.Length * (to - from) <= 1.3 * wanted || !(middle > from && middle < to))
@@ -52,15 +54,15 @@ internal static class Division
             return;
         }
 
-        Bisect(curve, edge, size, sharp, ts, from, middle);
-        Bisect(curve, edge, size, sharp, ts, middle, to);
+        Bisect(curve, edge, size, sharp, ts, most, from, middle);
+        Bisect(curve, edge, size, sharp, ts, most, middle, to);
     }
 
     // Places points so that each piece holds the same integral of 1/h, which is the number of edges wanted.
-    private static void Equidistribute(Curve curve, ISizeField size, List<double> ts, double from, double to)
+    private static void Equidistribute(Curve curve, ISizeField size, List<double> ts, int most, double from, double to)
     {
         List<double> at = [from], sum = [0];
-        Integrate(curve, size, at, sum, from, to, At(size, curve.At(from)), At(size, curve.At(to)));
+        Integrate(curve, size, at, sum, most, from, to, At(size, curve.At(from)), At(size, curve.At(to)));
         double total = sum[^1];
         int n = Math.Max(1, (int)Math.Ceiling(total - Slack));
         int k = 1;
@@ -83,8 +85,10 @@ internal static class Division
     }
 
     private static void Integrate(
-        Curve curve, ISizeField size, List<double> at, List<double> sum, double from, double to, double sizeFrom, double sizeTo)
+        Curve curve, ISizeField size, List<double> at, List<double> sum, int most, double from, double to, double sizeFrom, double sizeTo)
     {
+        // There are two to five samples per piece.
+        RefuseTooMany(at.Count / 8, most, curve);
         double middle = (from + to) / 2, sizeMiddle = At(size, curve.At(middle));
         double length = curve.Length * (to - from);
         double smallest = Math.Min(sizeMiddle, Math.Min(sizeFrom, sizeTo));
@@ -95,7 +99,16 @@ internal static class Division
             return;
         }
 
-        Integrate(curve, size, at, sum, from, middle, sizeFrom, sizeMiddle);
-        Integrate(curve, size, at, sum, middle, to, sizeMiddle, sizeTo);
+        Integrate(curve, size, at, sum, most, from, middle, sizeFrom, sizeMiddle);
+        Integrate(curve, size, at, sum, most, middle, to, sizeMiddle, sizeTo);
+    }
+
+    private static void RefuseTooMany(int pieces, int most, Curve curve)
+    {
+        if (pieces > most)
+        {
+            throw new MeshException(FormattableString.Invariant(
+                $"The edge of the outline from ({curve.Start.X:G9}, {curve.Start.Y:G9}) m alone needs more than the {most} triangles allowed. Ask for larger triangles or allow more of them."));
+        }
     }
 }

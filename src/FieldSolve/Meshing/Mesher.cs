@@ -20,7 +20,8 @@ public static class Mesher
     /// <param name="size">Wanted edge length. Called on this thread only. Lengths below what a double resolves at the place are raised.</param>
     /// <param name="options">Limits; null for the defaults.</param>
     /// <param name="cancel">Stops the work.</param>
-    /// <returns>Triangles no larger than the field wants, up to about a quarter, and no sharper than the options say except at sharp corners.</returns>
+    /// <returns>About as many triangles as equilateral ones of the wanted edge length would be (a longest edge may exceed it by half), none with an angle
+    /// under the limit except at sharp corners.</returns>
     /// <exception cref="MeshException">The outline is inconsistent, or more triangles are needed than allowed.</exception>
     /// <exception cref="ArgumentOutOfRangeException">The smallest angle is not in 0 to 33 degrees, or no triangles are allowed.</exception>
     /// <exception cref="OperationCanceledException">The work was stopped.</exception>
@@ -42,7 +43,7 @@ public static class Mesher
         DomainGuard.Check(domain);
         size = new ResolvedSize(size, domain);
         SharpCorners sharp = new(domain);
-        List<double>[] division = Division.Divide(domain, size, sharp, cancel);
+        List<double>[] division = Division.Divide(domain, size, sharp, options.MaxTriangles, cancel);
         RefuseTooMany(division, options);
         Triangulation mesh = OutlineTriangulation.Build(domain, division, cancel);
         Sheet.Mark(mesh, domain);

@@ -12,9 +12,13 @@ internal sealed class Refiner
 {
     // An equilateral triangle of edge h has circumradius h/sqrt(3). A triangle is too large beyond this many times that; when
     // curing it would split a piece of outline that is short enough already, it is let pass up to the second figure.
-    private const double TooLarge = 1.2;
+    // The first figure makes the number of triangles come out as for equilateral ones of edge h, within some per cent.
+    private const double TooLarge = 1.3;
     private const double LetPass = 1.75;
     private const double LongPiece = 1.25;
+
+    // An edge longer than this many times the wanted length is no front to build on.
+    private const double LongFront = 1.2;
 
     private readonly Triangulation mesh;
     private readonly Domain domain;
@@ -150,7 +154,7 @@ internal sealed class Refiner
 
         Point2 m = domain.Edges[p.Edge[s]].Curve.At(t);
         Point2 a = new(mesh.X[p.A[s]], mesh.Y[p.A[s]]), b = new(mesh.X[p.B[s]], mesh.Y[p.B[s]]);
-        double room = 256 * double.Epsilon + (1e-14 * Math.Max(Math.Abs(m.X), Math.Abs(m.Y)));
+        double room = 1e-14 * Math.Max(Math.Abs(m.X), Math.Abs(m.Y));
         if (Math.Min(Point2.Distance(a, m), Point2.Distance(m, b)) < room)
         {
             return false;
@@ -290,7 +294,7 @@ internal sealed class Refiner
         double h = size.At(shape.MiddleX, shape.MiddleY);
         wait = false;
         double height = Math.Min(toCentre, offCentre * shortest);
-        if (shortest > 1.5 * h)
+        if (shortest > LongFront * h)
         {
             // Not at the front: better wait until the front has come here.
             wait = !isLate && !sharpAngle;

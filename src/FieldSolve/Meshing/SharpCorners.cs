@@ -12,11 +12,13 @@ internal sealed class SharpCorners
 {
     private const double Sharp = (Math.PI / 3) - Noise;
     private const double Noise = 1e-9;
+    private const double Cusp = 1e-6;
     private readonly Domain domain;
     private readonly bool[] sharpStart;
     private readonly bool[] sharpEnd;
     private readonly bool[] sharpVertex;
 
+    /// <exception cref="MeshException">The sheet has a corner of zero angle.</exception>
     public SharpCorners(Domain domain)
     {
         this.domain = domain;
@@ -36,12 +38,7 @@ internal sealed class SharpCorners
             List<(int Edge, bool AtStart, Point2 Away)>? fan = at[v];
             for (int i = 0; fan != null && i < fan.Count; i++)
             {
-                // The wedge counter-clockwise from this edge to the next one; the sheet lies left of a rim edge that leaves.
-                if (domain.Edges[fan[i].Edge].IsRim && !fan[i].AtStart)
-                {
-                    continue;
-                }
-
+                // The wedge counter-clockwise from this edge to the next one.
                 int next = -1;
                 double wedge = 2 * Math.PI;
                 for (int j = 0; j < fan.Count; j++)
@@ -53,7 +50,16 @@ internal sealed class SharpCorners
                     }
                 }
 
-                if (wedge < Sharp)
+                // The sheet lies left of a rim edge that leaves.
+                bool inSheet = !domain.Edges[fan[i].Edge].IsRim || fan[i].AtStart;
+                if (inSheet && wedge < Cusp)
+                {
+                    Point2 p = domain.Vertices[v];
+                    throw new MeshException(FormattableString.Invariant(
+                        $"The sheet runs out into a point of no angle at ({p.X:G9}, {p.Y:G9}) m. Cut the point off, or let the edges meet at an angle."));
+                }
+
+                if (inSheet && wedge < Sharp)
                 {
                     (fan[i].AtStart ? sharpStart : sharpEnd)[fan[i].Edge] = true;
                     (fan[next].AtStart ? sharpStart : sharpEnd)[fan[next].Edge] = true;

@@ -12,7 +12,7 @@ public static class UniformSplit
     /// The split mesh. Old vertices keep their indices; one new vertex per edge follows, in the order of first occurrence going through
     /// the triangles and their edges 01, 12, 20. The middle of a piece of an arc lies on the true arc, at the mean parameter.
     /// </summary>
-    /// <remarks>Splitting keeps angles except at arcs. Straight chords that are re-entrant arcs move into their triangles by a small part of their length.</remarks>
+    /// <remarks>Splitting keeps angles except at arcs, where the middle moves off the chord by an eighth of the piece's length times its angle.</remarks>
     public static TriangleMesh Split(TriangleMesh mesh) => Split(mesh, out _);
 
     /// <inheritdoc cref="Split(TriangleMesh)"/>

@@ -9,53 +9,31 @@ namespace FieldSolve.Readings;
 /// </summary>
 internal sealed class GoalError
 {
-    // A split divides the error of a smooth part by 2^4 (quadratic elements, functional), so 1/15 of the difference remains on the fine mesh;
-    // allow for a rate that is not yet reached.
-    private const double RegularShare = 1.0 / 10;
-
-    // In the triangles at a contact end the error of a linear reading halves (potential ~ r^(1/2), adjoint alike): as much as the difference remains.
-    private const double CoreShare = 1;
-
     // Contributions of both signs cancel; a bar that trusted the cancellation fully would now and then be far too small.
     private const double Distrust = 0.1;
 
-    private GoalError(double core, double regular, double coreSum, double regularSum, double[] perTriangle)
+    private GoalError(double bar, double[] perTriangle)
     {
-        Core = core;
-        Regular = regular;
-        CoreSum = coreSum;
-        RegularSum = regularSum;
+        Bar = bar;
         PerTriangle = perTriangle;
     }
 
-    /// <summary>Signed sum over nodes at singular points, V.</summary>
-    public double Core { get; }
-
-    /// <summary>Signed sum over all other nodes, V.</summary>
-    public double Regular { get; }
-
-    /// <summary>Sum of absolute values at singular points, V.</summary>
-    public double CoreSum { get; }
-
-    /// <summary>Sum of absolute values elsewhere, V.</summary>
-    public double RegularSum { get; }
+    /// <summary>Estimated error on the fine mesh, V.</summary>
+    public double Bar { get; }
 
     /// <summary>What remains on the fine mesh, in absolute value, by coarse triangle, V.</summary>
     public double[] PerTriangle { get; }
 
-    /// <summary>Estimated error on the fine mesh, V.</summary>
-    public double Bar =>
-        (CoreShare * (Math.Abs(Core) + (Distrust * CoreSum))) + (RegularShare * (Math.Abs(Regular) + (Distrust * RegularSum)));
-
     /// <summary>Collects the contributions.</summary>
     /// <param name="between">Coarse and fine space.</param>
-    /// <param name="core">Per coarse triangle: whether it touches a singular point.</param>
+    /// <param name="remaining">Per coarse triangle: error left on the fine mesh, as a share of the difference.</param>
     /// <param name="terms">Pairs of fine residual (A) of the coarse solution and adjoint detail (ohm), with a factor each.</param>
     public static GoalError Of(
-        Prolongation between, bool[] core, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
+        Prolongation between, double[] remaining, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
     {
-        double coreSigned = 0, regularSigned = 0, coreSum = 0, regularSum = 0;
-        double[] perTriangle = new double[core.Length];
+        double smooth = 0, smoothSize = 0, singular = 0, singularSize = 0;
+        double[] perTriangle = new double[remaining.Length];
+        double usual = remaining.Length > 0 ? remaining.Min() : 0;
         for (int k = 0; k < between.Parent.Length; k++)
         {
             int unknown = between.UnknownOf(k);
@@ -66,18 +44,18 @@ internal sealed class GoalError
             }
 
             int first = between.Parent[k], second = between.Second[k];
+            double share = second < 0 ? remaining[first] : Math.Max(remaining[first], remaining[second]);
+            eta *= share;
             double size = Math.Abs(eta);
-            if (core[first] || (second >= 0 && core[second]))
+            if (share > usual)
             {
-                coreSigned += eta;
-                coreSum += size;
-                size *= CoreShare;
+                singular += eta;
+                singularSize += size;
             }
             else
             {
-                regularSigned += eta;
-                regularSum += size;
-                size *= RegularShare;
+                smooth += eta;
+                smoothSize += size;
             }
 
             perTriangle[first] += second < 0 ? size : size / 2;
@@ -87,6 +65,7 @@ internal sealed class GoalError
             }
         }
 
-        return new(coreSigned, regularSigned, coreSum, regularSum, perTriangle);
+        // The two kinds converge at different rates, so their cancellation is not counted on.
+        return new(Math.Abs(smooth) + Math.Abs(singular) + (Distrust * (smoothSize + singularSize)), perTriangle);
     }
 }

@@ -56,14 +56,14 @@ internal static class LevelMeasure
         {
             list.Add(new(
                 plan, k, false, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
-                GoalError.Of(meshes.Between, meshes.IsCore, [(1, plus.Residual, plus.Details[k])])));
+                GoalError.Of(meshes.Between, meshes.Remaining, [(1, plus.Residual, plus.Details[k])])));
             if (minus is not null && plan.HasEven[k])
             {
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
                 list.Add(new(
                     plan, k, true, fine, fine - coarse,
                     GoalError.Of(
-                        meshes.Between, meshes.IsCore,
+                        meshes.Between, meshes.Remaining,
                         [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])])));
             }
         }

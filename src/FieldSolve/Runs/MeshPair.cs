@@ -1,5 +1,6 @@
 using FieldSolve.Device;
 using FieldSolve.Fields;
+using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Meshing;
 using FieldSolve.Solving;
@@ -14,7 +15,9 @@ internal sealed class MeshPair
         Coarse = coarse;
         Fine = fine;
         Between = new Prolongation(coarse.Space, fine.Space);
-        IsCore = Cores(coarse.Space.Mesh);
+        Exponent = Exponents(coarse.Space.Mesh.Domain);
+        Vertex = DomainVertices(coarse.Space.Mesh);
+        Remaining = Remainders();
     }
 
     public FieldLevel Coarse { get; }
@@ -23,8 +26,14 @@ internal sealed class MeshPair
 
     public Prolongation Between { get; }
 
-    /// <summary>Per coarse triangle: it touches a vertex of the domain (contact end, corner, tip), where the field may be singular.</summary>
-    public bool[] IsCore { get; }
+    /// <summary>Per coarse triangle: the vertex of the domain it touches (contact end, corner, tip), the most singular one; -1 for most triangles.</summary>
+    public int[] Vertex { get; }
+
+    /// <summary>Per vertex of the domain: the error of a reading from the triangles around it goes like their size to this power.</summary>
+    public double[] Exponent { get; }
+
+    /// <summary>Per coarse triangle: error that remains on the fine mesh, as a share of the difference between the two meshes.</summary>
+    public double[] Remaining { get; }
 
     public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
     {
@@ -36,15 +45,50 @@ internal sealed class MeshPair
         return new(coarse!, fine!);
     }
 
-    private static bool[] Cores(TriangleMesh mesh)
+    private int[] DomainVertices(TriangleMesh mesh)
     {
-        int special = mesh.Domain.Vertices.Count;
-        bool[] core = new bool[mesh.TriangleCount];
-        for (int t = 0; t < core.Length; t++)
+        int[] vertex = new int[mesh.TriangleCount];
+        for (int t = 0; t < vertex.Length; t++)
         {
-            core[t] = mesh.Corners[3 * t] < special || mesh.Corners[(3 * t) + 1] < special || mesh.Corners[(3 * t) + 2] < special;
+            vertex[t] = -1;
+            for (int k = 0; k < 3; k++)
+            {
+                int v = mesh.Corners[(3 * t) + k];
+                if (v < mesh.Domain.Vertices.Count && (vertex[t] < 0 || Exponent[v] < Exponent[vertex[t]]))
+                {
+                    vertex[t] = v;
+                }
+            }
         }
 
-        return core;
+        return vertex;
+    }
+
+    // Potential and adjoint both go like r^x at a singular point, so the reading's error goes like h^(2x). At other vertices of the domain (tips, where the
+    // adjoint is logarithmic, and blunt corners) second order is on the safe side.
+    private static double[] Exponents(Domain domain)
+    {
+        double[] exponent = new double[domain.Vertices.Count];
+        Array.Fill(exponent, 2);
+        foreach (SingularPoint p in SingularPoints.Of(domain))
+        {
+            exponent[p.Vertex] = Math.Clamp(2 * p.Exponent, 0.5, 2);
+        }
+
+        return exponent;
+    }
+
+    // With an error like h^p, halving h leaves 1/(2^p - 1) of the difference. Smooth parts have p = 4 (quadratic elements, functional), 1/15; a tenth
+    // allows for a rate that is not reached yet.
+    private double[] Remainders()
+    {
+        const double Smooth = 0.1;
+        double[] share = new double[Vertex.Length];
+        for (int t = 0; t < share.Length; t++)
+        {
+            share[t] = Vertex[t] < 0 ? Smooth : 1 / (Math.Pow(2, Exponent[Vertex[t]]) - 1);
+        }
+
+        return share;
     }
 }

@@ -22,9 +22,6 @@ internal static class MeshSizes
 
     private const double LessEachLevel = 0.65;
 
-    // The sizes are those of longest edges; a mesh made for a size has edges of about 0.8 of it.
-    private const double EdgeToSize = 1.2;
-
     /// <summary>Sizes of the first mesh.</summary>
     public static ISizeField First(SheetDevice device)
     {
@@ -51,7 +48,7 @@ internal static class MeshSizes
         var regular = new List<double>();
         for (int t = 0; t < load.Length; t++)
         {
-            if (meshes.IsCore[t])
+            if (meshes.Vertex[t] >= 0)
             {
                 coreLoad += load[t];
                 cores++;
@@ -64,24 +61,26 @@ internal static class MeshSizes
 
         double cancelling = Cancelling(regular.Sum() + coreLoad, goals) * Math.Pow(LessEachLevel, level);
         double even = Equidistribution(regular, RegularBudget * cancelling, mostTriangles);
-        double[] size = new double[mesh.VertexCount];
+        double[] inside = new double[load.Length], size = new double[mesh.VertexCount];
         Array.Fill(size, double.PositiveInfinity);
         for (int t = 0; t < load.Length; t++)
         {
-            double factor = meshes.IsCore[t]
-                ? Math.Clamp(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1e-3, 2)
+            int vertex = meshes.Vertex[t];
+            double factor = vertex >= 0
+                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / meshes.Exponent[vertex]), 1e-3, 2)
                 : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
-            double edge = EdgeToSize * LongestEdge(mesh, t);
+            double edge = EquilateralEdge(mesh, t);
+
+            // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
+            inside[t] = (vertex >= 0 ? Math.Max(factor, 1) : factor) * edge;
             for (int k = 0; k < 3; k++)
             {
-                // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
                 int v = mesh.Corners[(3 * t) + k];
-                bool mayShrink = !meshes.IsCore[t] || v < mesh.Domain.Vertices.Count;
-                size[v] = Math.Min(size[v], (mayShrink ? factor : Math.Max(factor, 1)) * edge);
+                size[v] = Math.Min(size[v], vertex == v ? factor * edge : inside[t]);
             }
         }
 
-        return new VertexSize(mesh, size, Growth);
+        return new TriangleSize(mesh, inside, size, Growth);
     }
 
     // The loads count every contribution positive and take the worst reading in each triangle; how much more that is than the worst reading's own
@@ -122,16 +121,11 @@ internal static class MeshSizes
         return count > mostTriangles ? Math.Pow(sum / mostTriangles, 3) : even;
     }
 
-    private static double LongestEdge(TriangleMesh mesh, int t)
+    // The mesher makes about as many triangles as equilateral ones of the wanted edge would be.
+    private static double EquilateralEdge(TriangleMesh mesh, int t)
     {
-        double longest = 0;
-        for (int k = 0; k < 3; k++)
-        {
-            int a = mesh.Corners[(3 * t) + k], b = mesh.Corners[(3 * t) + ((k + 1) % 3)];
-            double dx = mesh.X[b] - mesh.X[a], dy = mesh.Y[b] - mesh.Y[a];
-            longest = Math.Max(longest, (dx * dx) + (dy * dy));
-        }
-
-        return Math.Sqrt(longest);
+        int a = mesh.Corners[3 * t], b = mesh.Corners[(3 * t) + 1], c = mesh.Corners[(3 * t) + 2];
+        double area = 0.5 * (((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.X[c] - mesh.X[a]) * (mesh.Y[b] - mesh.Y[a])));
+        return Math.Sqrt(4 / Math.Sqrt(3) * area);
     }
 }

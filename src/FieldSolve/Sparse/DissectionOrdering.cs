@@ -8,15 +8,18 @@ namespace FieldSolve.Sparse;
 /// <remarks>A. George, Nested dissection of a regular finite element mesh, SIAM J. Numer. Anal. 10 (1973) 345-363.</remarks>
 internal sealed class DissectionOrdering
 {
-    private const int LeafSize = 128;
+    private const int LeafSize = 256;
     private const int Samples = 512;
 
-    private readonly SymmetricPattern pattern;
+    /// <summary>Vertices across the band in which the smallest cut is sought, for a round piece.</summary>
+    private const double BandLayers = 6;
+
     private readonly CancellationToken cancel;
     private readonly int[] order;
     private readonly bool hasPlaces;
     private readonly LeafOrdering leaves;
     private readonly VertexCut cut = new();
+    private readonly GraphPieces pieces;
     private readonly double[] sample = new double[Samples];
 
     // Scratch over the vertices of the piece at hand.
@@ -26,12 +29,12 @@ internal sealed class DissectionOrdering
     private readonly int[] bandVertex;
     private readonly int[] queue;
 
-    private DissectionOrdering(SymmetricPattern pattern, int size, bool hasPlaces, int[] order, CancellationToken cancel)
+    private DissectionOrdering(SymmetricPattern pattern, GraphPieces pieces, int size, bool hasPlaces, int[] order, CancellationToken cancel)
     {
-        this.pattern = pattern;
         this.cancel = cancel;
         this.order = order;
         this.hasPlaces = hasPlaces;
+        this.pieces = pieces;
         leaves = new LeafOrdering(pattern);
         projection = new double[size];
         side = new byte[size];
@@ -54,7 +57,7 @@ internal sealed class DissectionOrdering
         // Rows coupled to very many others (a contact) would spoil every cut: they go last.
         long dense = Math.Max(100, 10L * pattern.Count / Math.Max(n, 1));
         int[] number = new int[n];
-        int sparse = 0, last = n;
+        int sparse = 0;
         for (int i = 0; i < n; i++)
         {
             number[i] = start[i + 1] - start[i] > dense ? -1 : sparse++;
@@ -63,15 +66,17 @@ internal sealed class DissectionOrdering
         {
             int[] rows = [.. Enumerable.Range(0, n).Where(i => number[i] < 0).OrderBy(i => start[i + 1] - start[i])];
             rows.CopyTo(order.AsSpan(sparse));
-            last = sparse;
         }
-        if (last == 0)
+        if (sparse == 0)
         {
             return order;
         }
 
-        bool hasPlaces = x.Length == n && y.Length == n && n > 0;
-        var top = new Piece(sparse, pattern.Count, hasPlaces);
+        bool hasPlaces = x.Length == n;
+        var pieces = new GraphPieces(sparse, pattern.Count, hasPlaces);
+        var top = new GraphPiece(sparse, 0, 0, 0);
+        Span<int> vertex = pieces.Vertex(top), starts = pieces.Start(top), neighbour = pieces.Neighbour(top);
+        starts[0] = 0;
         int count = 0, edges = 0;
         for (int i = 0; i < n; i++)
         {
@@ -79,113 +84,68 @@ internal sealed class DissectionOrdering
             {
                 continue;
             }
-            top.Vertex[count] = i;
+            vertex[count] = i;
             if (hasPlaces)
             {
-                top.X[count] = x[i];
-                top.Y[count] = y[i];
+                pieces.X(top)[count] = x[i];
+                pieces.Y(top)[count] = y[i];
             }
             for (int k = start[i]; k < start[i + 1]; k++)
             {
                 int w = column[k];
                 if (w != i && number[w] >= 0)
                 {
-                    top.Neighbour[edges++] = number[w];
+                    neighbour[edges++] = number[w];
                 }
             }
-            top.Start[++count] = edges;
+            starts[++count] = edges;
         }
-        new DissectionOrdering(pattern, sparse, hasPlaces, order, cancel).Dissect(top, 0);
+        new DissectionOrdering(pattern, pieces, sparse, hasPlaces, order, cancel).Dissect(top, 0);
         return order;
     }
 
-    private void Dissect(Piece piece, int first)
+    private void Dissect(GraphPiece piece, int first)
     {
         cancel.ThrowIfCancellationRequested();
         int n = piece.Count;
         if (n <= LeafSize || !(hasPlaces && SplitByPlace(piece) || SplitByRank(piece)))
         {
-            piece.Vertex.AsSpan(0, n).CopyTo(order.AsSpan(first));
+            pieces.Vertex(piece).CopyTo(order.AsSpan(first));
             leaves.Order(order.AsSpan(first, n));
             return;
         }
-        int before = 0, behind = 0, inCut = 0, edgesBefore = 0, edgesBehind = 0;
-        for (int i = 0; i < n; i++)
-        {
-            int edges = piece.Start[i + 1] - piece.Start[i];
-            switch (side[i])
-            {
-                case VertexCut.Before:
-                    number[i] = before++;
-                    edgesBefore += edges;
-                    break;
-                case VertexCut.Behind:
-                    number[i] = behind++;
-                    edgesBehind += edges;
-                    break;
-                default:
-                    inCut++;
-                    break;
-            }
-        }
-        int place = first + before + behind;
-        for (int i = 0; i < n; i++)
+        int before = 0, behind = 0, last = first + n;
+        Span<int> vertex = pieces.Vertex(piece);
+        for (int i = n - 1; i >= 0; i--)
         {
             if (side[i] == VertexCut.Cut)
             {
-                order[place++] = piece.Vertex[i];
+                order[--last] = vertex[i];
             }
         }
-        Piece a = Part(piece, VertexCut.Before, before, edgesBefore), b = Part(piece, VertexCut.Behind, behind, edgesBehind);
-        piece.Release();
-        Dissect(a, first);
-        Dissect(b, first + before);
-    }
-
-    private Piece Part(Piece piece, byte which, int count, int edges)
-    {
-        var part = new Piece(count, edges, hasPlaces);
-        int v = 0, e = 0;
-        int[] start = piece.Start, neighbour = piece.Neighbour;
-        for (int i = 0; i < piece.Count; i++)
+        for (int i = 0; i < n; i++)
         {
-            if (side[i] != which)
-            {
-                continue;
-            }
-            part.Vertex[v] = piece.Vertex[i];
-            if (hasPlaces)
-            {
-                part.X[v] = piece.X[i];
-                part.Y[v] = piece.Y[i];
-            }
-            for (int k = start[i]; k < start[i + 1]; k++)
-            {
-                int w = neighbour[k];
-                if (side[w] == which)
-                {
-                    part.Neighbour[e++] = number[w];
-                }
-            }
-            part.Start[++v] = e;
+            number[i] = side[i] == VertexCut.Before ? before++ : behind;
+            behind += side[i] == VertexCut.Behind ? 1 : 0;
         }
-        return part;
+        (GraphPiece a, GraphPiece b) = pieces.Split(piece, side, number, VertexCut.Before, before, VertexCut.Behind, behind);
+        Dissect(b, first + before);
+        Dissect(a, first);
     }
 
     // The straight line or circle that cuts fewest vertices, judged on a sample, then the smallest cut of its band.
-    private bool SplitByPlace(Piece piece)
+    private bool SplitByPlace(GraphPiece piece)
     {
         int n = piece.Count;
-        double[] px = piece.X, py = piece.Y;
-        double cx = Median(px, n), cy = Median(py, n);
+        ReadOnlySpan<double> px = pieces.X(piece), py = pieces.Y(piece);
+        double cx = Quantile(px, py, new(1, 0, 0, 0, 0), 0.5), cy = Quantile(px, py, new(0, 1, 0, 0, 0), 0.5);
         long least = long.MaxValue;
         Direction best = default;
         ReadOnlySpan<Direction> candidates =
             [new(1, 0, 0, cx, cy), new(0, 1, 0, cx, cy), new(1, 1, 0, cx, cy), new(1, -1, 0, cx, cy), new(0, 0, 1, cx, cy)];
         foreach (Direction candidate in candidates)
         {
-            double middle = Quantile(piece, candidate, 0.5);
-            long crossing = Crossing(piece, candidate, middle);
+            long crossing = Crossing(piece, candidate, Quantile(px, py, candidate, 0.5), least);
             if (crossing < least)
             {
                 least = crossing;
@@ -197,11 +157,11 @@ internal sealed class DissectionOrdering
             projection[i] = best.Of(px[i], py[i]);
         }
         double half = HalfBand(n);
-        return CutBand(piece, Quantile(piece, best, 0.5 - half), Quantile(piece, best, 0.5 + half));
+        return CutBand(piece, Quantile(px, py, best, 0.5 - half), Quantile(px, py, best, 0.5 + half));
     }
 
     // Without coordinates: rank in a breadth-first sweep from a vertex at the rim, one component after the other.
-    private bool SplitByRank(Piece piece)
+    private bool SplitByRank(GraphPiece piece)
     {
         int n = piece.Count;
         int from = 0;
@@ -214,8 +174,9 @@ internal sealed class DissectionOrdering
     }
 
     // Ranks all vertices; returns the last vertex of the first component.
-    private int Sweep(Piece piece, int from)
+    private int Sweep(GraphPiece piece, int from)
     {
+        ReadOnlySpan<int> start = pieces.Start(piece), neighbour = pieces.Neighbour(piece);
         int n = piece.Count, head = 0, tail = 0, far = from;
         projection.AsSpan(0, n).Fill(-1);
         for (int seed = -1; seed < n; seed++)
@@ -230,9 +191,8 @@ internal sealed class DissectionOrdering
             while (head < tail)
             {
                 int v = queue[head++];
-                for (int k = piece.Start[v]; k < piece.Start[v + 1]; k++)
+                foreach (int w in neighbour[start[v]..start[v + 1]])
                 {
-                    int w = piece.Neighbour[k];
                     if (projection[w] < 0)
                     {
                         projection[w] = tail;
@@ -248,19 +208,22 @@ internal sealed class DissectionOrdering
         return far;
     }
 
-    private static double HalfBand(int n) => 0.5 * Math.Clamp(12 / Math.Sqrt(n), 0.08, 0.4);
+    private static double HalfBand(int n) => 0.5 * Math.Clamp(BandLayers / Math.Sqrt(n), 0.07, 0.35);
 
     // Sets side[]: vertices with a projection below low come before, above high behind; the smallest cut of the rest parts them.
-    private bool CutBand(Piece piece, double low, double high)
+    private bool CutBand(GraphPiece piece, double low, double high)
     {
         int n = piece.Count, before = 0, behind = 0, band = 0, bandEdges = 0;
-        int[] start = piece.Start, neighbour = piece.Neighbour;
+        ReadOnlySpan<int> start = pieces.Start(piece), neighbour = pieces.Neighbour(piece);
+        Span<byte> sides = side.AsSpan(0, n);
+        Span<int> numbers = number.AsSpan(0, n);
         for (int i = 0; i < n; i++)
         {
-            byte s = projection[i] < low ? VertexCut.Before : projection[i] > high ? VertexCut.Behind : VertexCut.Cut;
-            side[i] = s;
-            before += s == VertexCut.Before ? 1 : 0;
-            behind += s == VertexCut.Behind ? 1 : 0;
+            double p = projection[i];
+            int isBefore = p < low ? 1 : 0, isBehind = p > high ? 1 : 0;
+            sides[i] = (byte)(VertexCut.Cut - 2 * isBefore - isBehind);
+            before += isBefore;
+            behind += isBehind;
         }
         if (before == 0 || behind == 0)
         {
@@ -269,57 +232,53 @@ internal sealed class DissectionOrdering
         // A vertex that reaches across the whole band belongs to the band.
         for (int i = 0; i < n; i++)
         {
-            if (side[i] == VertexCut.Before)
+            if (sides[i] == VertexCut.Before)
             {
-                for (int k = start[i]; k < start[i + 1]; k++)
+                foreach (int w in neighbour[start[i]..start[i + 1]])
                 {
-                    if (side[neighbour[k]] == VertexCut.Behind)
+                    if (sides[w] == VertexCut.Behind)
                     {
-                        side[i] = VertexCut.Cut;
+                        sides[i] = VertexCut.Cut;
                         before--;
                         break;
                     }
                 }
             }
-            if (side[i] == VertexCut.Cut)
+            if (sides[i] == VertexCut.Cut)
             {
-                number[i] = band;
+                numbers[i] = band;
                 bandVertex[band++] = i;
                 bandEdges += start[i + 1] - start[i];
             }
         }
         cut.Reserve(band, bandEdges);
         int edges = 0;
+        int[] cutStart = cut.Start, cutNeighbour = cut.Neighbour;
         for (int b = 0; b < band; b++)
         {
             int i = bandVertex[b];
-            byte touches = 0;
-            cut.Start[b] = edges;
-            for (int k = start[i]; k < start[i + 1]; k++)
+            int touches = 0;
+            cutStart[b] = edges;
+            foreach (int w in neighbour[start[i]..start[i + 1]])
             {
-                int w = neighbour[k];
-                switch (side[w])
+                if (sides[w] == VertexCut.Cut)
                 {
-                    case VertexCut.Before:
-                        touches |= 1;
-                        break;
-                    case VertexCut.Behind:
-                        touches |= 2;
-                        break;
-                    default:
-                        cut.Neighbour[edges++] = number[w];
-                        break;
+                    cutNeighbour[edges++] = numbers[w];
+                }
+                else
+                {
+                    touches |= 1 << sides[w];
                 }
             }
-            cut.Touches[b] = touches;
+            cut.Touches[b] = (byte)touches;
         }
-        cut.Start[band] = edges;
+        cutStart[band] = edges;
         cut.Solve(band, before, behind);
         int partBefore = before, partBehind = behind;
         for (int b = 0; b < band; b++)
         {
             byte s = cut.Side[b];
-            side[bandVertex[b]] = s;
+            sides[bandVertex[b]] = s;
             partBefore += s == VertexCut.Before ? 1 : 0;
             partBehind += s == VertexCut.Behind ? 1 : 0;
         }
@@ -327,43 +286,33 @@ internal sealed class DissectionOrdering
         return Math.Min(partBefore, partBehind) >= n / 16;
     }
 
-    private double Median(double[] values, int n)
+    private double Quantile(ReadOnlySpan<double> px, ReadOnlySpan<double> py, Direction direction, double fraction)
     {
-        int step = Math.Max(1, n / Samples), m = 0;
-        for (int i = 0; i < n && m < Samples; i += step)
+        int m = Math.Min(px.Length, Math.Clamp(px.Length / 4, 64, Samples));
+        for (int k = 0; k < m; k++)
         {
-            sample[m++] = values[i];
+            int i = Scattered(k, px.Length);
+            sample[k] = direction.Of(px[i], py[i]);
         }
-        Array.Sort(sample, 0, m);
-        return sample[m / 2];
+        return QuickSelect.Of(sample.AsSpan(0, m), Math.Clamp((int)(fraction * m), 0, m - 1));
     }
 
-    private double Quantile(Piece piece, Direction direction, double fraction)
+    // Vertices below the value with a neighbour at or above it, counted on a sample of the vertices, up to a limit.
+    private long Crossing(GraphPiece piece, Direction direction, double middle, long limit)
     {
-        int step = Math.Max(1, piece.Count / Samples), m = 0;
-        for (int i = 0; i < piece.Count && m < Samples; i += step)
-        {
-            sample[m++] = direction.Of(piece.X[i], piece.Y[i]);
-        }
-        Array.Sort(sample, 0, m);
-        return sample[Math.Clamp((int)(fraction * m), 0, m - 1)];
-    }
-
-    // Vertices below the value with a neighbour at or above it, counted on a sample of the vertices.
-    private static long Crossing(Piece piece, Direction direction, double middle)
-    {
-        int step = Math.Max(1, piece.Count / 4096);
+        int n = piece.Count, m = Math.Min(n, Math.Clamp(n / 2, 512, 4096));
         long count = 0;
-        double[] px = piece.X, py = piece.Y;
-        for (int i = 0; i < piece.Count; i += step)
+        ReadOnlySpan<double> px = pieces.X(piece), py = pieces.Y(piece);
+        ReadOnlySpan<int> start = pieces.Start(piece), neighbour = pieces.Neighbour(piece);
+        for (int k = 0; k < m && count < limit; k++)
         {
+            int i = m == n ? k : Scattered(k, n);
             if (direction.Of(px[i], py[i]) >= middle)
             {
                 continue;
             }
-            for (int k = piece.Start[i]; k < piece.Start[i + 1]; k++)
+            foreach (int w in neighbour[start[i]..start[i + 1]])
             {
-                int w = piece.Neighbour[k];
                 if (direction.Of(px[w], py[w]) >= middle)
                 {
                     count++;
@@ -374,30 +323,13 @@ internal sealed class DissectionOrdering
         return count;
     }
 
+    // Spreads k = 0, 1, 2, … evenly over 0 .. n - 1 by multiples of the golden ratio: equal steps would beat with the numbering of a grid.
+    private static int Scattered(int k, int n) => (int)(((ulong)((uint)k * 2654435769u) * (ulong)n) >> 32);
+
     // a x + b y, or the squared distance from (cx, cy).
     private readonly record struct Direction(double A, double B, double Round, double Cx, double Cy)
     {
         public double Of(double x, double y) =>
             Round == 0 ? A * x + B * y : (x - Cx) * (x - Cx) + (y - Cy) * (y - Cy);
-    }
-
-    /// <summary>A piece of the graph with its own numbering, so that deep pieces sit together in the cache.</summary>
-    private sealed class Piece(int count, int edges, bool places)
-    {
-        public int Count { get; } = count;
-        public int[] Vertex { get; private set; } = new int[count];
-        public int[] Start { get; private set; } = new int[count + 1];
-        public int[] Neighbour { get; private set; } = new int[edges];
-        public double[] X { get; private set; } = places ? new double[count] : [];
-        public double[] Y { get; private set; } = places ? new double[count] : [];
-
-        public void Release()
-        {
-            Vertex = [];
-            Start = [];
-            Neighbour = [];
-            X = [];
-            Y = [];
-        }
     }
 }

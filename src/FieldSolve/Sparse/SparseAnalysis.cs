@@ -9,11 +9,13 @@ public sealed class SparseAnalysis
     /// <summary>Doubles of one vector register; rows of panels and fronts are padded to it.</summary>
     internal const int Lanes = 8;
 
-    private SparseAnalysis(SymmetricPattern pattern, SupernodeTree tree)
+    private SparseAnalysis(
+        SymmetricPattern pattern, SupernodeTree tree, SymmetricPattern permuted, int[] order, int[] source, int[] mirror)
     {
         Pattern = pattern;
         Tree = tree;
-        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(pattern, tree);
+        Order = Array.ConvertAll(tree.Order, k => order[k]);
+        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, permuted, source, mirror);
         RowPlace = RowPlaces(tree);
         (ChildStart, Children) = ChildLists(tree);
 
@@ -51,6 +53,9 @@ public sealed class SparseAnalysis
         + 4L * (2L * Tree.Rows.Length + 3L * EntryPlace.Length + 4L * Pattern.Size + 8L * Tree.Count);
 
     internal SupernodeTree Tree { get; }
+
+    /// <summary>Row of the pattern eliminated at each step.</summary>
+    internal int[] Order { get; }
 
     /// <summary>Non-zeros to the right of (and below) the diagonal, by elimination step: one entry more at the end.</summary>
     internal int[] EntryStart { get; }
@@ -107,20 +112,23 @@ public sealed class SparseAnalysis
         {
             throw new ArgumentException($"The coordinates must be empty or {n} each, but are {x.Length} and {y.Length}.", nameof(x));
         }
-        CheckPattern(pattern);
+        int[] mirror = Mirror(pattern);
         int[] order = DissectionOrdering.Order(pattern, x, y, cancel);
-        return new SparseAnalysis(pattern, SupernodeTree.Build(pattern, order, cancel));
+        SymmetricPattern permuted = Permute(pattern, order, out int[] source);
+        SupernodeTree tree = SupernodeTree.Build(permuted, cancel);
+        return new SparseAnalysis(pattern, tree, permuted, order, source, mirror);
     }
 
-    private static void CheckPattern(SymmetricPattern pattern)
+    // Checks the pattern and gives for each entry its mirror image. Rows come in ascending order, so the mirror images in each
+    // row are met in ascending order too.
+    private static int[] Mirror(SymmetricPattern pattern)
     {
-        int[] start = pattern.Start, column = pattern.Column;
+        int[] start = pattern.Start, column = pattern.Column, mirror = new int[column.Length];
         int n = pattern.Size;
         if (start[0] != 0 || start[n] != column.Length)
         {
             throw new ArgumentException("The row starts do not span the columns of the pattern.", nameof(pattern));
         }
-        // Rows come in ascending order, so the mirror images in each row are met in ascending order too.
         int[] next = start.AsSpan(0, n).ToArray();
         for (int i = 0; i < n; i++)
         {
@@ -133,36 +141,58 @@ public sealed class SparseAnalysis
                     throw new ArgumentException($"Row {i} of the pattern is not in ascending order or leaves the matrix.", nameof(pattern));
                 }
                 diagonal |= c == i;
-                if (next[c] >= start[c + 1] || column[next[c]] != i)
+                int image = next[c]++;
+                if (image >= start[c + 1] || column[image] != i)
                 {
                     throw new ArgumentException($"The pattern is not symmetric: row {i} and column {c}.", nameof(pattern));
                 }
-                next[c]++;
+                mirror[k] = image;
             }
             if (!diagonal)
             {
                 throw new ArgumentException($"Row {i} of the pattern has no diagonal entry.", nameof(pattern));
             }
         }
+        return mirror;
     }
 
-    private static (int[] Start, int[] Place, int[] Right, int[] Below, int[] Diagonal) Entries(SymmetricPattern pattern, SupernodeTree tree)
+    // The pattern with rows and columns in elimination order, so that later passes run through memory; columns do not ascend.
+    // source: the entry of the pattern behind each entry.
+    private static SymmetricPattern Permute(SymmetricPattern pattern, int[] order, out int[] source)
     {
-        int n = pattern.Size;
-        int[] start = pattern.Start, column = pattern.Column, mirror = new int[column.Length], next = start.AsSpan(0, n).ToArray();
-        for (int i = 0; i < n; i++)
+        int n = pattern.Size, e = 0;
+        int[] step = SupernodeTree.Inverse(order), start = new int[n + 1];
+        int[] column = GC.AllocateUninitializedArray<int>(pattern.Count);
+        source = GC.AllocateUninitializedArray<int>(pattern.Count);
+        for (int j = 0; j < n; j++)
         {
-            for (int k = start[i]; k < start[i + 1]; k++)
+            int row = order[j];
+            for (int k = pattern.Start[row]; k < pattern.Start[row + 1]; k++)
             {
-                mirror[k] = next[column[k]]++;
+                column[e] = step[pattern.Column[k]];
+                source[e++] = k;
             }
+            start[j + 1] = e;
         }
+        return new SymmetricPattern(start, column);
+    }
+
+    private static (int[] Start, int[] Place, int[] Right, int[] Below, int[] Diagonal) Entries(
+        SupernodeTree tree, SymmetricPattern permuted, int[] source, int[] mirror)
+    {
+        int n = permuted.Size;
+        int[] start = permuted.Start, column = permuted.Column;
         int half = (column.Length - n) / 2, e = 0;
-        int[] entryStart = new int[n + 1], place = new int[half], right = new int[half], below = new int[half], diagonal = new int[n];
-        int[] local = new int[n];
+        int[] entryStart = new int[n + 1], diagonal = new int[n], local = new int[n];
+        int[] place = GC.AllocateUninitializedArray<int>(half), right = GC.AllocateUninitializedArray<int>(half);
+        int[] below = GC.AllocateUninitializedArray<int>(half);
         for (int t = 0; t < tree.Count; t++)
         {
             int first = tree.First[t], width = tree.Width(t), rows = tree.RowStart[t];
+            for (int j = first; j < first + width; j++)
+            {
+                local[j] = j - first;
+            }
             for (int r = rows; r < tree.RowStart[t + 1]; r++)
             {
                 local[tree.Rows[r]] = width + r - rows;
@@ -173,15 +203,15 @@ public sealed class SparseAnalysis
                 for (int k = start[row]; k < start[row + 1]; k++)
                 {
                     int i = tree.Step[column[k]];
-                    if (i == j)
+                    if (i > j)
                     {
-                        diagonal[j] = k;
+                        place[e] = local[i];
+                        right[e] = source[k];
+                        below[e++] = mirror[source[k]];
                     }
-                    else if (i > j)
+                    else if (i == j)
                     {
-                        place[e] = i < first + width ? i - first : local[i];
-                        right[e] = k;
-                        below[e++] = mirror[k];
+                        diagonal[j] = source[k];
                     }
                 }
                 entryStart[j + 1] = e;

@@ -64,7 +64,7 @@ public sealed unsafe partial class SparseLu
         {
             space = GC.AllocateUninitializedArray<double>(n + analysis.LargestFront + 16, pinned: true);
         }
-        int[] order = analysis.Tree.Order;
+        int[] order = analysis.Order;
         for (int k = 0; k < n; k++)
         {
             space[k] = b[order[k]];
@@ -228,7 +228,7 @@ public sealed unsafe partial class SparseLu
     {
         Check(b, x, count);
         int n = analysis.Pattern.Size;
-        int[] order = analysis.Tree.Order;
+        int[] order = analysis.Order;
         for (int done = 0; done < count; done += Together)
         {
             int now = Math.Min(Together, count - done);

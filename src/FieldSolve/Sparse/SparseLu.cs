@@ -13,9 +13,6 @@ namespace FieldSolve.Sparse;
 /// </remarks>
 public sealed unsafe partial class SparseLu
 {
-    /// <summary>Pivots below this part of the diagonal entry they came from are rounding noise.</summary>
-    private const double PivotTolerance = 1e-13;
-
     private readonly SparseAnalysis analysis;
     private readonly double[] panelStore;
     private readonly double[] updateStore;
@@ -54,9 +51,12 @@ public sealed unsafe partial class SparseLu
             throw new ArgumentException($"The pattern has {a.Pattern.Count} places, but {values.Length} values were given.", nameof(values));
         }
         factored = false;
+        // Rounding leaves a singular mesh matrix of n unknowns a last pivot of up to about n/14 roundings of its diagonal (measured,
+        // n from 1e3 to 3e5), of either sign: less than this is noise, and would answer with few digits or none.
+        double noise = Math.ScaleB(1, -52) * (200 + a.Pattern.Size / 2);
         for (int j = 0; j < a.Pattern.Size; j++)
         {
-            floor[j] = PivotTolerance * Math.Abs(values[a.Diagonal[j]]);
+            floor[j] = noise * Math.Abs(values[a.Diagonal[j]]);
         }
         for (int t = 0; t < a.Tree.Count; t++)
         {
@@ -120,7 +120,7 @@ public sealed unsafe partial class SparseLu
             int refused = FrontKernels.Factor(u, l, width, stride, smallest);
             if (refused >= 0)
             {
-                throw new PivotException(tree.Order[first + refused], u[(nint)refused * stride + refused]);
+                throw new PivotException(a.Order[first + refused], u[(nint)refused * stride + refused]);
             }
         }
         if (rest > 0)

@@ -10,7 +10,7 @@ namespace FieldSolve.Sparse;
 /// </remarks>
 internal sealed class SupernodeTree
 {
-    /// <summary>Row of the matrix eliminated at each step.</summary>
+    /// <summary>Row of the pattern eliminated at each step.</summary>
     public required int[] Order { get; init; }
 
     /// <summary>Inverse of <see cref="Order"/>.</summary>
@@ -37,11 +37,13 @@ internal sealed class SupernodeTree
     /// <summary>Order of the front of a supernode.</summary>
     public int Height(int t) => First[t + 1] - First[t] + RowStart[t + 1] - RowStart[t];
 
-    /// <summary>Builds the forest for an elimination order.</summary>
-    public static SupernodeTree Build(SymmetricPattern pattern, int[] order, CancellationToken cancel)
+    /// <summary>Builds the forest for the elimination of a pattern in about its own order: only steps that commute change places.</summary>
+    /// <param name="pattern">The graph, already in a fill-reducing order; the columns of a row need not ascend.</param>
+    /// <param name="cancel">Stops the work.</param>
+    public static SupernodeTree Build(SymmetricPattern pattern, CancellationToken cancel)
     {
-        int n = order.Length;
-        int[] step = Inverse(order);
+        int n = pattern.Size;
+        int[] order = [.. Enumerable.Range(0, n)], step = order;
         int[] parent = EliminationTree.Parents(pattern, order, step);
         int[] post = EliminationTree.Postorder(parent);
         int[] place = Inverse(post), steps = new int[n], above = new int[n];
@@ -184,7 +186,8 @@ internal sealed class SupernodeTree
         return new SupernodeTree { Order = newOrder, Step = step, First = start, Parent = parent, RowStart = rowStart, Rows = rows };
     }
 
-    private static int[] Inverse(int[] permutation)
+    /// <summary>Inverse of a permutation.</summary>
+    public static int[] Inverse(int[] permutation)
     {
         int[] inverse = new int[permutation.Length];
         for (int i = 0; i < permutation.Length; i++)

@@ -99,11 +99,15 @@ internal sealed class VertexCut
     private bool SetLevels(int count)
     {
         Span<int> levels = level.AsSpan(0, 2 * count);
+        ReadOnlySpan<int> start = Start.AsSpan(0, count + 1), neighbour = Neighbour.AsSpan(0, start[count]);
+        ReadOnlySpan<int> previous = this.previous.AsSpan(0, count), next = this.next.AsSpan(0, count);
+        ReadOnlySpan<byte> touches = Touches.AsSpan(0, count);
+        Span<int> queue = this.queue.AsSpan(0, 2 * count);
         levels.Fill(-1);
         int head = 0, tail = 0;
         for (int b = 0; b < count; b++)
         {
-            if ((Touches[b] & 1) != 0)   // only vertices have a capacity, the ways between them have none
+            if ((touches[b] & 1) != 0)   // only vertices have a capacity, the ways between them have none
             {
                 levels[2 * b] = 0;
                 queue[tail++] = 2 * b;
@@ -127,7 +131,7 @@ internal sealed class VertexCut
                 }
                 continue;
             }
-            if ((Touches[b] & 2) != 0 && next[b] != Sink)
+            if ((touches[b] & 2) != 0 && next[b] != Sink)
             {
                 last = after;
                 continue;
@@ -137,9 +141,8 @@ internal sealed class VertexCut
                 levels[2 * b] = after;
                 queue[tail++] = 2 * b;
             }
-            for (int k = Start[b]; k < Start[b + 1]; k++)
+            foreach (int w in neighbour[start[b]..start[b + 1]])
             {
-                int w = Neighbour[k];
                 if (levels[2 * w] < 0)
                 {
                     levels[2 * w] = after;
@@ -153,6 +156,9 @@ internal sealed class VertexCut
     // Depth-first along rising levels; a state that leads nowhere loses its level for this phase.
     private bool Augment(int from)
     {
+        int[] level = this.level, previous = this.previous, next = this.next, arc = this.arc, path = this.path;
+        int[] start = Start, neighbour = Neighbour;
+        byte[] touches = Touches;
         int depth = 0;
         path[0] = 2 * from;
         while (true)
@@ -166,7 +172,7 @@ internal sealed class VertexCut
                     step = other;
                 }
             }
-            else if ((Touches[b] & 2) != 0 && next[b] != Sink)
+            else if ((touches[b] & 2) != 0 && next[b] != Sink)
             {
                 Apply(depth);
                 return true;
@@ -177,10 +183,10 @@ internal sealed class VertexCut
             }
             else
             {
-                int k = arc[b];
-                for (; k < Start[b + 1]; k++)
+                int k = arc[b], end = start[b + 1];
+                for (; k < end; k++)
                 {
-                    int w = Neighbour[k];
+                    int w = neighbour[k];
                     if (level[2 * w] == wanted)
                     {
                         step = 2 * w;
@@ -233,6 +239,9 @@ internal sealed class VertexCut
     private void SetBackLevels(int count)
     {
         Span<int> levels = backLevel.AsSpan(0, 2 * count);
+        ReadOnlySpan<int> start = Start.AsSpan(0, count + 1), neighbour = Neighbour.AsSpan(0, start[count]);
+        ReadOnlySpan<int> previous = this.previous.AsSpan(0, count), next = this.next.AsSpan(0, count);
+        Span<int> queue = this.queue.AsSpan(0, 2 * count);
         levels.Fill(-1);
         int head = 0, tail = 0;
         for (int b = 0; b < count; b++)
@@ -261,9 +270,8 @@ internal sealed class VertexCut
                 levels[2 * b + 1] = 0;
                 queue[tail++] = 2 * b + 1;
             }
-            for (int k = Start[b]; k < Start[b + 1]; k++)
+            foreach (int w in neighbour[start[b]..start[b + 1]])
             {
-                int w = Neighbour[k];
                 if (levels[2 * w + 1] < 0)
                 {
                     levels[2 * w + 1] = 0;

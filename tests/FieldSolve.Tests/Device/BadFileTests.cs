@@ -25,7 +25,8 @@ public class BadFileTests
         { "\"4 mS\"", "inf", 6, 5, "no unit" },
         { "\"4 mS\"", "\"4 furlong\"", 6, 5, "unknown unit 'furlong'" },
         { "\"4 mS\"", "4 mS", 6, 7, "quotes" },
-        { "\"4 mS\"", "\"4 mS", 6, 10, "closing quote" },
+        { "\"4 mS\"", "\"4 mS", 6, 9, "closing quote" },
+        { "a = \"4 mS\"", "a = \"4 mS\\", 6, 1, "a backslash ends the text" },
         { "a = \"4 mS\"", "a \"4 mS\"", 6, 3, "'=' is missing" },
         { "[law]", "[law", 4, 5, "closing ']'" },
         { "title = \"Disc\"", "title = 5", 1, 9, "'title' is a number" },
@@ -39,16 +40,16 @@ public class BadFileTests
         { "disc = { diameter = \"8 um\" }", "disc = \"8 um\"", 3, 8, "'disc' is text; write disc = {" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"175 deg\", width = \"0.7 um\" }", 13, 8, "'e' overlaps 'w'" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", width = \"26 um\" }", 13, 8, "more than the 25.1327 um of its rim" },
-        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", width = \"0 um\" }", 13, 25, "greater than zero" },
+        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", width = \"0 um\" }", 13, 32, "greater than zero" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\" }", 13, 8, "needs 'width'" },
-        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", widht = \"0.7 um\" }", 13, 17, "did you mean 'width'" },
+        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", widht = \"0.7 um\" }", 13, 24, "did you mean 'width'" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = 0, width = \"0.7 um\" }", 13, 15, "0 has no unit; an angle is wanted" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ end = \"left\" }", 13, 10, "a disc has no ends" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ rim = \"inner\" }", 13, 10, "for a ring" },
-        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", width = \"1 um\", end = \"left\" }", 13, 33, "cannot stand together" },
+        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ at = \"0 deg\", width = \"1 um\", end = \"left\" }", 13, 40, "cannot stand together" },
         { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ }", 13, 8, "'edge' needs { at, width } or { from, to }" },
-        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ from = [\"4 um\", \"0 um\"], to = [\"2 um\", \"1 um\"] }", 13, 33, "off the edge" },
-        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ from = [\"4 um\", \"0 um\"], to = [\"4 um\", \"0 um\"] }", 13, 33, "the same place" },
+        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ from = [\"4 um\", \"0 um\"], to = [\"2 um\", \"1 um\"] }", 13, 40, "off the edge" },
+        { "{ at = \"0 deg\", width = \"0.7 um\" }", "{ from = [\"4 um\", \"0 um\"], to = [\"4 um\", \"0 um\"] }", 13, 40, "the same place" },
         { "edge = { at = \"0 deg\", width = \"0.7 um\" }\n", "", 11, 1, "needs 'edge' or 'pad'" },
         { "name = \"e\"", "name = \"w\"", 12, 8, "the name 'w' is already taken in line 9" },
         { "name = \"p\"", "name = \"n\"", 18, 8, "the name 'n' is already taken in line 15" },
@@ -95,7 +96,7 @@ public class BadFileTests
         { "[[contact]]\nname = \"n\"", "[contact]\nname = \"n\"", 14, 1, "'contact' is set twice" },
         { "[[point]]", "[[contacts]]\nring = 12\nwidth = \"3 um\"\nprefix = \"c\"\n[[point]]", 18, 8, "do not fit" },
         { "[[point]]", "[[contacts]]\nring = 0\nwidth = \"1 nm\"\nprefix = \"c\"\n[[point]]", 18, 8, "must be from 1 to 1000" },
-        { "[[point]]", "[[contacts]]\nring = 3\nwidth = \"1 nm\"\nfirst = \"1 deg\"\nprefix = \"\"\n[[point]]", 21, 10, "'prefix' is empty" },
+        { "[[point]]", "[[contacts]]\nring = 3\nwidth = \"1 nm\"\nfirst = \"45 deg\"\nprefix = \"\"\n[[point]]", 21, 10, "'prefix' is empty" },
     };
 
     [Theory]
@@ -130,10 +131,10 @@ public class BadFileTests
     }
 
     [Theory]
-    [InlineData("[\"-8 um\", \"-7.5 um\"]", 99, "arm 2 overlaps arm 1")]
-    [InlineData("[\"-8 um\", \"14.8 um\"]", 99, "beyond the end of the bar")]
-    [InlineData("[]", 88, "must list")]
-    [InlineData("[\"1 deg\"]", 89, "is an angle; a length is wanted")]
+    [InlineData("[\"-8 um\", \"-7.5 um\"]", 108, "arm 2 overlaps arm 1")]
+    [InlineData("[\"-8 um\", \"14.8 um\"]", 108, "beyond the end of the bar")]
+    [InlineData("[]", 98, "must list")]
+    [InlineData("[\"1 deg\"]", 99, "is an angle; a length is wanted")]
     public void Arms_must_fit(string arms, int column, string fragment) => AssertOnly(
         $"[sheet]\nhall_bar = {{length = \"30 um\", width = \"6 um\", arm_width = \"1 um\", arm_length = \"3 um\", arms_at = {arms}}}\n" + DeviceTexts.Rest
         + "[[contact]]\nname = \"s\"\nedge = { end = \"left\" }\n[[contact]]\nname = \"d\"\nedge = { arm = 1, side = \"top\" }\n",
@@ -157,7 +158,7 @@ public class BadFileTests
     {
         const string Text = "[sheet]\nbar = { length = \"30 um\" width = \"6 um\" }\n[law]\nkind = \"ohmic\"\na = [1,\nb = \"1 mA\"\n[[contact]\nname = \"l\"\n";
         IReadOnlyList<Fault> faults = DeviceFile.Parse(Text, "d.toml", "").Faults;
-        Assert.Equal([(2, 26), (5, 8), (6, 5), (7, 10)], faults.Select(f => (f.Line, f.Column)));
+        Assert.Equal([(2, 26), (5, 1), (6, 5), (7, 10)], faults.Select(f => (f.Line, f.Column)));
     }
 
     [Fact]

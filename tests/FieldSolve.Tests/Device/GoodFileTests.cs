@@ -279,5 +279,5 @@ public class GoodFileTests
     }
 
     private static void AssertNear(Point2 wanted, Point2 got) =>
-        Assert.True(Point2.Distance(wanted, got) < 1e-13, $"wanted {wanted}, got {got}");
+        Assert.True(Point2.Distance(wanted, got) < 1e-13, $"wanted ({wanted.X}, {wanted.Y}), got ({got.X}, {got.Y})");
 }

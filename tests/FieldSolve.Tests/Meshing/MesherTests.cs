@@ -104,7 +104,7 @@ public class MesherTests
         TestDomains.Builder b = new();
         b.Polygon([new(0, 0), new(1, 0), new(1, 1), new(0, 1)], [(0, 0.1, 0.2)]);
         b.Pad([new(0.3, 0.3), new(0.6, 0.35), new(0.55, 0.6)], 1);
-        b.Pad([new(0.7, 0.7), new(0.9, 0.7), new(0.9, 0.70001), new(0.7, 0.70001)], 2);
+        b.Pad([new(0.7, 0.7), new(0.9, 0.7), new(0.9, 0.7001), new(0.7, 0.7001)], 2);
         TriangleMesh mesh = Sound(b.Build(null), new UniformSize(0.05));
         double first = 0;
         for (int t = 0; t < mesh.TriangleCount; t++)
@@ -236,6 +236,10 @@ public class MesherTests
         open.Segment(square[0], square[1]);
         open.Segment(square[1], square[2]);
         Refused(open.Build(null), "does not close");
+        TestDomains.Builder cusp = new();
+        cusp.Circle(default, 1, [], false, 0);
+        cusp.Circle(new(0.5, 0), 0.5, [], true, 0);
+        Refused(cusp.Build(null), "no angle");
         Domain good = TestDomains.Polygon(square);
         Refused(good with { Vertices = [.. good.Vertices, new(0, 0)] }, "coincide");
         Refused(good with { Vertices = [.. good.Vertices.Select(p => p + new Point2(1e-12, 0))] }, "bit for bit");
@@ -252,7 +256,7 @@ public class MesherTests
     {
         Domain disc = TwelveContacts();
         Assert.Throws<MeshException>(() => Mesher.Generate(disc, new UniformSize(0.01), new MeshOptions { MaxTriangles = 5000 }));
-        Assert.Throws<MeshException>(() => Mesher.Generate(disc, new UniformSize(1e-5), new MeshOptions { MaxTriangles = 5000 }));
+        Assert.Throws<MeshException>(() => Mesher.Generate(disc, new UniformSize(1e-9), new MeshOptions { MaxTriangles = 5000 }));
         Assert.Throws<ArgumentOutOfRangeException>(() => Mesher.Generate(disc, new UniformSize(1), new MeshOptions { MinimumAngleDegrees = 40 }));
         Assert.Throws<ArgumentOutOfRangeException>(() => Mesher.Generate(disc, new UniformSize(1), new MeshOptions { MaxTriangles = 0 }));
         using CancellationTokenSource stop = new();

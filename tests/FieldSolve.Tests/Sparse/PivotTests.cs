@@ -7,6 +7,8 @@ public class PivotTests
     [Theory]
     [InlineData(2)]
     [InlineData(10)]
+    [InlineData(17)]
+    [InlineData(36)]
     [InlineData(75)]
     public void Unsupported_mesh_is_singular(int cells)
     {

@@ -9,7 +9,7 @@ internal sealed class WiringReader
 
     private readonly Section root;
     private readonly FaultList faults;
-    private readonly bool namesComplete;
+    private readonly bool namesComplete; // false if a name may have been lost to a fault
     private readonly Dictionary<string, Terminal> terminals = [];
     private readonly List<string> contactNames = [];
     private readonly List<string> allNames = [];
@@ -43,7 +43,8 @@ internal sealed class WiringReader
                     faults.Add(at, string.Create(CultureInfo.InvariantCulture, $"the name '{name}' is already taken in line {first[name].Line}; contacts and points need different names"));
                 }
 
-                reported = at;
+                // One of the two was meant to be called otherwise.
+                (reported, namesComplete) = (at, false);
                 continue;
             }
 

@@ -86,6 +86,14 @@ internal static class TomlDocument
             return false;
         }
 
+        catch (ArgumentOutOfRangeException)
+        {
+            // What the parser does when the text ends right after a backslash.
+            document = null;
+            message = "a backslash ends the text; write \\\\ for a backslash, and close the quote";
+            return false;
+        }
+
         if (!document.HasErrors)
         {
             return true;

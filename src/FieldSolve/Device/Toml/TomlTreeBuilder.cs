@@ -21,6 +21,10 @@ internal sealed class TomlTreeBuilder(FaultList faults, IReadOnlyList<(int Line,
                 starts.Add((At(t).Line, table));
                 Fill(table, t.Items);
             }
+            else
+            {
+                root.Damaged = true; // what stands below the refused header is lost
+            }
         }
 
         int k = 0;

@@ -53,6 +53,9 @@ public sealed class VertexSize : ISizeField
     /// <summary>The lengths after smoothing, one per vertex of the old mesh, metres.</summary>
     public ReadOnlySpan<double> Sizes => size;
 
+    /// <summary>The look-up of triangles, for other sizes on the same mesh.</summary>
+    internal TriangleIndex Index => index;
+
     /// <inheritdoc/>
     public double At(double x, double y)
     {

@@ -9,8 +9,7 @@ namespace FieldSolve.Readings;
 /// </summary>
 /// <param name="Exit">Place, field and size; null when the law was not left.</param>
 /// <param name="Share">Signed influence on each reading, V.</param>
-/// <param name="ShareSize">The same with all contributions counted positive, V.</param>
-internal sealed record GuardZone(LawExit? Exit, double[] Share, double[] ShareSize)
+internal sealed record GuardZone(LawExit? Exit, double[] Share)
 {
     /// <summary>Measures the zone of a state.</summary>
     /// <param name="equations">Equations of the fine mesh.</param>
@@ -18,10 +17,10 @@ internal sealed record GuardZone(LawExit? Exit, double[] Share, double[] ShareSi
     /// <param name="adjoints">Adjoint of each reading, ohm.</param>
     public static GuardZone Measure(SheetEquations equations, ReadOnlySpan<double> u, IReadOnlyList<double[]> adjoints)
     {
-        double[] share = new double[adjoints.Count], size = new double[adjoints.Count];
+        double[] share = new double[adjoints.Count];
         if (equations.Law.Guard is not { } guard)
         {
-            return new(null, share, size);
+            return new(null, share);
         }
 
         double area = 0, strongest = 0, atX = 0, atY = 0;
@@ -40,14 +39,12 @@ internal sealed record GuardZone(LawExit? Exit, double[] Share, double[] ShareSi
             for (int k = 0; k < adjoints.Count; k++)
             {
                 (double zx, double zy) = PointGradient.Of(equations.Space, triangle, point, adjoints[k]);
-                double part = weight * ((dx * zx) + (dy * zy));
-                share[k] += part;
-                size[k] += Math.Abs(part);
+                share[k] += weight * ((dx * zx) + (dy * zy));
             }
         });
         return area == 0
-            ? new(null, share, size)
-            : new(new LawExit(atX, atY, strongest, guard.From, Math.Sqrt(area / Math.PI)), share, size);
+            ? new(null, share)
+            : new(new LawExit(atX, atY, strongest, guard.From, Math.Sqrt(area / Math.PI)), share);
     }
 
     private sealed class PointScratch

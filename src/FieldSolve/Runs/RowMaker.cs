@@ -39,7 +39,7 @@ internal sealed class RowMaker
         for (int k = 0; k < plan.Count; k++)
         {
             double error = Bar(plan, k, false, current, here.Difference![k]) + floor;
-            double guard = here.Zone!.ShareSize[k];
+            double guard = here.Zone!.Share[k];
             if (opposite is null)
             {
                 readings.Add(new(plan.Pairs[k].Name, here.Values[k], error, null, null, null, guard, 0));

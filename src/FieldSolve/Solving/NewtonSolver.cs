@@ -16,8 +16,12 @@ public sealed class NewtonSolver
     // The rounding of the residual itself; a solve that stalls below this is as good as it gets.
     private const double StallTolerance = 1e-11;
 
-    // With a kept factor a step costs a tenth or less of one with a new factor, so slow contraction is still cheap.
+    // A step that does not bring the residual down to this share of itself calls for a new factor, or for damping.
     private const double GoodContraction = 0.35;
+
+    // A new Jacobian with its factor costs about as much as three steps with a kept one and then saves all but three or four steps (measured on
+    // 32,000 unknowns: residual 0.9 ms, solve 3 ms, Jacobian 3.3 ms, factor 5.5 ms).
+    private const double WorthNewFactor = 7;
     private const int MostSteps = 80;
     private const int MostHalvings = 12;
 
@@ -26,6 +30,7 @@ public sealed class NewtonSolver
     private readonly double[] trialResidual;
     private readonly double[] step;
     private readonly double[] trial;
+    private readonly StepMixer mixer;
     private double[]? values;
     private SparseLu? own;
 
@@ -38,6 +43,7 @@ public sealed class NewtonSolver
         trialResidual = new double[residual.Length];
         step = new double[residual.Length];
         trial = new double[residual.Length];
+        mixer = new StepMixer(level.Space.Size);
         Factor = level.AtZero;
     }
 
@@ -71,6 +77,7 @@ public sealed class NewtonSolver
         }
 
         bool fresh = false;
+        mixer.Reset();
         while (norm > Tolerance * scale)
         {
             cancel.ThrowIfCancellationRequested();
@@ -79,12 +86,22 @@ public sealed class NewtonSolver
                 return Outcome(norm <= StallTolerance * scale);
             }
 
-            Step(u, 1);
+            // A step with a kept factor is combined with the steps before it; one with a fresh factor is Newton's own.
+            Step(u, 1, mix: !fresh);
             solves++;
             bool valid = TryResidual(trial, source, drain, current, trialResidual, out double next, out refused);
             if (valid && next <= GoodContraction * norm)
             {
+                double stepsLeft = Math.Log(Tolerance * scale / next) / Math.Log(next / norm);
                 norm = Accept(u, next);
+                fresh = false;
+                if (stepsLeft > WorthNewFactor && TryFactor(u, cancel))
+                {
+                    factorisations++;
+                    fresh = true;
+                    mixer.Reset();
+                }
+
                 continue;
             }
 
@@ -107,6 +124,7 @@ public sealed class NewtonSolver
 
                 factorisations++;
                 fresh = true;
+                mixer.Reset();
                 continue;
             }
 
@@ -120,7 +138,7 @@ public sealed class NewtonSolver
                 }
 
                 damp /= 2;
-                Step(u, damp);
+                Step(u, damp, mix: false);
                 valid = TryResidual(trial, source, drain, current, trialResidual, out next, out refused);
             }
 
@@ -134,17 +152,26 @@ public sealed class NewtonSolver
     /// <summary>Forgets the factor of an earlier Jacobian and starts again with the one at zero field.</summary>
     public void Restart() => Factor = level.AtZero;
 
-    private void Step(double[] u, double damp)
+    private void Step(double[] u, double damp, bool mix)
     {
         int n = level.Space.Size;
         if (damp == 1)
         {
             Factor.Solve(residual.AsSpan(0, n), step.AsSpan(0, n));
+            for (int i = 0; i < n; i++)
+            {
+                step[i] = -step[i];
+            }
+
+            if (mix)
+            {
+                mixer.Mix(u, step.AsSpan(0, n));
+            }
         }
 
         for (int i = 0; i < n; i++)
         {
-            trial[i] = u[i] - (damp * step[i]);
+            trial[i] = u[i] + (damp * step[i]);
         }
     }
 

@@ -34,7 +34,7 @@ public class DriveBenchmark
     [Benchmark(Description = "read the device file")]
     public DeviceReading Read() => DeviceFile.Read(Sample.Path);
 
-    [Benchmark(Description = "mesh, refine and solve", Baseline = true)]
+    [Benchmark(Description = "mesh, refine and solve")]
     public DriveResult Solve() => DriveRun.Execute(device, new DriveOptions(), null, CancellationToken.None);
 
     [Benchmark(Description = "draw the pictures")]

@@ -17,7 +17,7 @@ internal static class Sample
     /// <summary>A size field of equilateral triangles that would make about the wanted number, graded towards the contact ends.</summary>
     public static ISizeField Size(SheetDevice device, int triangles)
     {
-        double edge = 0.5 * device.Domain.Size / Math.Sqrt(triangles);
+        double edge = device.Domain.Size / Math.Sqrt(triangles);
         IEnumerable<SizePoint> ends = SingularPoints.Of(device.Domain)
             .Select(p => new SizePoint(device.Domain.Vertices[p.Vertex].X, device.Domain.Vertices[p.Vertex].Y, edge / 50, 0.5));
         return new GradedSize(edge, ends);

@@ -21,10 +21,13 @@ public static class Summaries
         CurveRow? smallest = solved.FirstOrDefault();
         double? Resistance(string pair) => smallest?.Of(pair) is { } r ? (r.Odd ?? r.Value) / smallest.Current : null;
         Point2 direction = device.Contacts[wiring.Drain].Middle - device.Contacts[wiring.Source].Middle;
-        double degrees = Math.Atan2(direction.Y, direction.X) * 180 / Math.PI;
+
+        // Places are known to rounding only: 360.0000000000001 degrees is 0.
+        double degrees = Math.Round(Math.Atan2(direction.Y, direction.X) * 180 / Math.PI, 9);
+        degrees = degrees < 0 ? degrees + 360 : degrees == 0 ? 0 : degrees;
         List<double> left = [.. solved.Where(r => r.Status == RowStatus.OutsideLaw).Select(r => Math.Abs(r.Current))];
         return new(
-            wiring.Name, degrees < -1e-9 ? degrees + 360 : Math.Max(degrees, 0),
+            wiring.Name, degrees,
             Resistance("source"), Resistance("along"), Resistance("across"), Line(solved),
             left.Count > 0 ? left[0] : null, solved.Count > 0 ? Math.Abs(solved[^1].Current) : 0);
     }

@@ -32,7 +32,7 @@ public class DriveBenchmark
     public void CleanUp() => Directory.Delete(folder, true);
 
     [Benchmark(Description = "read the device file")]
-    public DeviceReading Read() => DeviceFile.Read(Sample.Path);
+    public DeviceReading Read() => DeviceFile.Read(device.Path);
 
     [Benchmark(Description = "mesh, refine and solve")]
     public DriveResult Solve() => DriveRun.Execute(device, new DriveOptions(), null, CancellationToken.None);

@@ -104,7 +104,7 @@ internal sealed class RowMaker
         double size = Math.Abs(current), weak = goal.WeakBar * size, strong = goal.Error.Bar * ratio;
         double towards = (goal.Difference * ratio * Math.Sign(goal.Current)) - (goal.WeakDifference * size);
         double here = (difference * Math.Sign(current)) - (goal.WeakDifference * size);
-        double along = towards == 0 ? 1 : Math.Abs(here / towards);
-        return Math.Max(weak, weak + (Math.Min(along, Math.Max(1, ratio)) * (strong - weak)));
+        double along = towards == 0 ? 1 : Math.Min(Math.Abs(here / towards), Math.Max(1, ratio));
+        return Math.Max(weak + (along * (strong - weak)), Math.Min(weak, strong));
     }
 }

@@ -24,6 +24,9 @@ internal sealed class GoalError
     /// <summary>What remains on the fine mesh, in absolute value, by coarse triangle, V.</summary>
     public double[] PerTriangle { get; }
 
+    /// <summary>The same for a larger or smaller drive of a linear sheet.</summary>
+    public GoalError Times(double factor) => new(factor * Bar, [.. PerTriangle.Select(e => factor * e)]);
+
     /// <summary>Collects the contributions.</summary>
     /// <param name="between">Coarse and fine space.</param>
     /// <param name="remaining">Per coarse triangle: error left on the fine mesh, as a share of the difference.</param>

@@ -2,6 +2,7 @@ using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Readings;
 using FieldSolve.Solving;
+using FieldSolve.Sparse;
 
 namespace FieldSolve.Runs;
 
@@ -28,9 +29,7 @@ internal static class LevelMeasure
     // The even part weighs the strong fields at contact ends more than a linear reading does, and converges more slowly there; measured on the sample
     // devices against meshes fifty times finer in error.
     private const double EvenAllowance = 1.6;
-    private const int MostAdjointSteps = 6;
     private const int MostHalvings = 20;
-    private const double AdjointTolerance = 1e-3;
 
     /// <summary>Measures one wiring.</summary>
     /// <param name="meshes">Coarse and fine mesh.</param>
@@ -142,64 +141,36 @@ internal static class LevelMeasure
                 return null;
             }
 
-            double[][] vectors = plan.Vectors(meshes.Fine);
-            double[][] details = new double[plan.Count][];
-            double[] jacobian = new double[meshes.Fine.Space.Pattern.Count + 1];
+            return AdjointDetails(meshes, plan, fine, cancel) is { } details
+                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details)
+                : null;
+        }
+
+        // The adjoints at the state itself: its Jacobian, transposed. Null when it is not positive definite.
+        private static double[][]? AdjointDetails(MeshPair meshes, ReadingPlan plan, double[] fine, CancellationToken cancel)
+        {
+            int n = meshes.Fine.Space.Size;
+            double[] jacobian = new double[meshes.Fine.Space.Pattern.Count + 1], z = new double[n + 1];
             meshes.Fine.Equations.Jacobian(fine, jacobian);
+            var factor = new SparseLu(meshes.Fine.Analysis);
+            try
+            {
+                factor.Factor(jacobian.AsSpan(0, jacobian.Length - 1), cancel);
+            }
+            catch (PivotException)
+            {
+                return null;
+            }
+
+            double[][] vectors = plan.Vectors(meshes.Fine), details = new double[plan.Count][];
             for (int k = 0; k < plan.Count; k++)
             {
+                factor.SolveTransposed(vectors[k].AsSpan(0, n), z.AsSpan(0, n));
                 details[k] = new double[meshes.Between.Parent.Length];
-                meshes.Between.Detail(Adjoint(meshes.Fine, path.Newton, jacobian, vectors[k]), details[k]);
+                meshes.Between.Detail(z, details[k]);
             }
 
-            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
-        }
-
-        // Adjoint at the state, with whatever factor the iteration ended with as a preconditioner. Three digits are plenty for an error bar.
-        private static double[] Adjoint(FieldLevel level, NewtonSolver newton, double[] jacobian, double[] reading)
-        {
-            int n = level.Space.Size;
-            double[] z = new double[n + 1], r = new double[n], dz = new double[n], best = z;
-            double target = AdjointTolerance * Norm(reading.AsSpan(0, n)), bestNorm = double.PositiveInfinity;
-            for (int step = 0; step <= MostAdjointSteps; step++)
-            {
-                Sparse.SparseProduct.MultiplyTransposed(level.Space.Pattern, jacobian.AsSpan(0, jacobian.Length - 1), z.AsSpan(0, n), r);
-                for (int i = 0; i < n; i++)
-                {
-                    r[i] = reading[i] - r[i];
-                }
-
-                double norm = Norm(r);
-                if (norm < bestNorm)
-                {
-                    bestNorm = norm;
-                    best = (double[])z.Clone();
-                }
-
-                if (norm <= target || norm > 2 * bestNorm)
-                {
-                    break;
-                }
-
-                newton.Factor.SolveTransposed(r, dz);
-                for (int i = 0; i < n; i++)
-                {
-                    z[i] += dz[i];
-                }
-            }
-
-            return best;
-        }
-
-        private static double Norm(ReadOnlySpan<double> v)
-        {
-            double sum = 0;
-            foreach (double x in v)
-            {
-                sum += x * x;
-            }
-
-            return Math.Sqrt(sum);
+            return details;
         }
     }
 }

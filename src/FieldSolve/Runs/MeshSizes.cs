@@ -18,7 +18,7 @@ internal static class MeshSizes
     private const double Growth = 0.7;
 
     // Share of the wanted error that regular triangles and singular points may use; the rest is for what the prediction misses.
-    private const double RegularBudget = 0.5;
+    private const double RegularBudget = 0.6;
     private const double CoreBudget = 0.2;
 
     private const double LessEachLevel = 0.65;
@@ -72,7 +72,7 @@ internal static class MeshSizes
         {
             int vertex = meshes.Vertex[t];
             double factor = vertex >= 0
-                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / meshes.Exponent[vertex]), 1e-3, 2)
+                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / meshes.Exponent[vertex]), 1e-6, 2)
                 : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
             double edge = EquilateralEdge(mesh, t);
 

@@ -1,5 +1,4 @@
 using System.CommandLine;
-using FieldSolve.Cli;
 using FieldSolve.Cli.Commands;
 
 // Paths may be printed in any script; the names of quantities carry µ and Ω.

@@ -1,4 +1,5 @@
 using System.CommandLine;
+using FieldSolve.Cli.Output;
 using FieldSolve.Device;
 
 namespace FieldSolve.Cli.Commands;
@@ -22,7 +23,7 @@ internal static class CheckCommand
                 return ExitCode.WrongInput;
             }
 
-            new Terminal(parsed.GetValue(quiet)).Print(parsed.GetValue(json) ? DeviceText.Json(read) : DeviceText.Plain(read));
+            new Screen(parsed.GetValue(quiet)).Print(parsed.GetValue(json) ? DeviceText.Json(read) : DeviceText.Plain(read));
             return ExitCode.Done;
         });
         return command;

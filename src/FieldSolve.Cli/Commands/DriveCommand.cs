@@ -1,4 +1,5 @@
 using System.CommandLine;
+using FieldSolve.Cli.Output;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Files;
@@ -70,17 +71,24 @@ internal static class DriveCommand
             return ExitCode.WrongInput;
         }
 
+        // Said before the solve, not after it.
+        if (File.Exists(choices.Folder))
+        {
+            Console.Error.WriteLine($"fieldsolve: --out '{choices.Folder}' is a file; name a folder");
+            return ExitCode.WrongInput;
+        }
+
         if (choices.Quick)
         {
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
         }
 
-        var terminal = new Terminal(choices.Quiet);
+        var screen = new Screen(choices.Quiet);
         DriveResult result;
         try
         {
             result = DriveRun.Execute(
-                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, terminal, cancel);
+                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, screen, cancel);
             if (choices.Quick)
             {
                 result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
@@ -88,15 +96,15 @@ internal static class DriveCommand
         }
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
         {
-            terminal.Clear();
+            screen.Clear();
             Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
         }
 
         Directory.CreateDirectory(choices.Folder);
         DriveFiles.Write(
-            result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick), terminal, cancel);
-        terminal.Clear();
+            result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick), screen, cancel);
+        screen.Clear();
         foreach (string text in result.Cautions)
         {
             Console.Error.WriteLine("caution: " + text);
@@ -107,7 +115,7 @@ internal static class DriveCommand
             Console.Error.WriteLine("warning: " + text);
         }
 
-        terminal.Print(choices.Json ? DriveText.Json(result, choices.Folder) : DriveText.Plain(result, choices.Folder));
+        screen.Print(choices.Json ? DriveText.Json(result, choices.Folder) : DriveText.Plain(result, choices.Folder));
         return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;
     }
 }

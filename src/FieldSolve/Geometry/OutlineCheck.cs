@@ -42,7 +42,7 @@ internal static class OutlineCheck
             }
             else if (Math.Abs(Outline.SignedArea(loop)) <= LeastArea * outline.Size * outline.Size)
             {
-                problems.Add(new("the outline encloses no area", loop[0].Start));
+                problems.Add(new("the outline crosses itself or encloses no area", loop[0].Start));
             }
         }
 

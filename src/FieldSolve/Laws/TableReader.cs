@@ -9,6 +9,10 @@ namespace FieldSolve.Laws;
 internal sealed class TableReader
 {
     private const int MostFaults = 50;
+
+    // Fields and currents beyond this are slips; products of far larger ones would overflow in the spline.
+    private const double MostNumber = 1e30;
+
     private static readonly string[] Columns = ["ea_V_per_m", "eb_V_per_m", "ka_A_per_m", "kb_A_per_m"];
 
     private readonly List<LawFileFault> faults = [];
@@ -97,6 +101,12 @@ internal sealed class TableReader
             if (!double.TryParse(field, NumberStyles.Float, CultureInfo.InvariantCulture, out double value) || !double.IsFinite(value))
             {
                 faults.Add(new(line, column, $"'{Shorten(field)}' is not a finite number ({Columns[order![cell]]})."));
+                return;
+            }
+
+            if (Math.Abs(value) > MostNumber)
+            {
+                faults.Add(new(line, column, $"'{Shorten(field)}' is too large ({Columns[order![cell]]}); is the unit right?"));
                 return;
             }
 

@@ -16,15 +16,15 @@ public class MeshCheckerTests
 
     private static TriangleMesh With(
         TriangleMesh m, Domain? domain = null, double[]? x = null, int[]? corners = null, int[]? neighbours = null, int[]? region = null, MeshEdge[]? edges = null) => new()
-    {
-        Domain = domain ?? m.Domain,
-        X = x ?? m.X,
-        Y = m.Y,
-        Corners = corners ?? m.Corners,
-        Neighbours = neighbours ?? m.Neighbours,
-        Region = region ?? m.Region,
-        Edges = edges ?? m.Edges,
-    };
+        {
+            Domain = domain ?? m.Domain,
+            X = x ?? m.X,
+            Y = m.Y,
+            Corners = corners ?? m.Corners,
+            Neighbours = neighbours ?? m.Neighbours,
+            Region = region ?? m.Region,
+            Edges = edges ?? m.Edges,
+        };
 
     private static T[] Changed<T>(T[] array, int i, T value)
     {

@@ -123,7 +123,7 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
         TomlEntry? ring = section.Need("ring", "12");
         int count = (int)(section.Number("ring", new(1, MostInRing, "from 1 to 1000"), integer: true) ?? 0);
         double? width = section.Quantity("width", Dimension.Length, Range.Extent, required: true, "0.7 um");
-        double? first = section.Quantity("first", Dimension.Angle, Range.Any, example: "0 deg");
+        double? first = section.Quantity("first", Dimension.Angle, Range.Angle, example: "0 deg");
         double? resistance = section.Quantity("resistance", Dimension.LineResistance, Range.NonNegative);
         double? shift = section.Quantity("shift", Dimension.Length, Range.Coordinate, example: "50 nm");
         TomlText? prefix = section.Text("prefix", "c", required: true);

@@ -66,7 +66,7 @@ internal sealed class EdgeReader(SheetReading sheet, FaultList faults)
     private RimSpan? ByAngle(Section edge)
     {
         TomlEntry? entry = edge.Need("at", "\"180 deg\"");
-        double? at = edge.Quantity("at", Dimension.Angle, Range.Any);
+        double? at = edge.Quantity("at", Dimension.Angle, Range.Angle);
         double? width = edge.Quantity("width", Dimension.Length, Range.Extent, required: true, "0.7 um");
         if (entry is null || sheet.Plan is null)
         {

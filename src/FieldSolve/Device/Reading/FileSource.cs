@@ -63,6 +63,14 @@ internal sealed class FileSource(string folder, FaultList faults)
                 return null;
             }
 
+            // Pipes and devices show no length: opening a pipe may block for ever, and a device may have no end.
+            info = info.ResolveLinkTarget(true) as FileInfo ?? info;
+            if (info.Length == 0)
+            {
+                error = "is empty, or no plain file";
+                return null;
+            }
+
             if (info.Length > LargestFile)
             {
                 error = "is larger than 64 MB; was another file meant?";

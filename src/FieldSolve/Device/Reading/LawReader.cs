@@ -19,7 +19,7 @@ internal static class LawReader
             return (null, 0);
         }
 
-        double axis = section.Quantity("axis", Dimension.Angle, Range.Any) ?? 0;
+        double axis = section.Quantity("axis", Dimension.Angle, Range.Angle) ?? 0;
         string[] names = [.. LawCatalogue.Kinds.Select(k => k.Name)];
         TomlText? name = section.Text("kind", names[0], required: true);
         LawKind? kind = name is null ? null : LawCatalogue.Find(name.Value);

@@ -11,7 +11,12 @@ internal readonly record struct Range(double Least, double Most, string Text)
 
     private const double ShortestLength = 1e-15;
 
+    private const double MostTurns = 1000;
+
     public static Range Any { get; } = new(double.MinValue, double.MaxValue, "finite");
+
+    /// <summary>An angle, radians: a thousand turns are a slip, and beyond far more the direction is lost in rounding.</summary>
+    public static Range Angle { get; } = new(-MostTurns * 2 * Math.PI, MostTurns * 2 * Math.PI, "at most 360000 deg either way");
 
     public static Range Positive { get; } = new(double.Epsilon, double.MaxValue, "greater than zero");
 

@@ -92,7 +92,8 @@ internal static class Values
     {
         string? wrong = string.IsNullOrWhiteSpace(name) ? "is empty"
             : name.Length > LongestName ? string.Create(CultureInfo.InvariantCulture, $"is longer than {LongestName} characters")
-            : name.Any(c => char.IsControl(c) || c is '\u2028' or '\u2029') ? "contains a control character"
+            : name.Any(c => char.IsControl(c) || c is '\u2028' or '\u2029' || char.GetUnicodeCategory(c) == UnicodeCategory.Format)
+                ? "contains a control character, or one that cannot be seen"
             : null;
         if (wrong is not null)
         {

@@ -1,4 +1,4 @@
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Commands;
 
 /// <summary>Exit statuses of every command.</summary>
 internal static class ExitCode

@@ -5,7 +5,7 @@ using System.Text.Json.Nodes;
 using FieldSolve.Files;
 using FieldSolve.Readings;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Output;
 
 /// <summary>The short summary of a drive.</summary>
 internal static class DriveText

@@ -1,6 +1,6 @@
 using System.Globalization;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Output;
 
 /// <summary>Numbers with SI prefixes for the terminal.</summary>
 internal static class Engineering

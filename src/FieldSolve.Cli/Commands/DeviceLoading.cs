@@ -1,6 +1,6 @@
 using FieldSolve.Device;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Commands;
 
 /// <summary>Reads a device file and shows its faults.</summary>
 internal static class DeviceLoading

@@ -7,7 +7,7 @@ using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Readings;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Output;
 
 /// <summary>Says what was understood from a device file.</summary>
 internal static class DeviceText
@@ -93,7 +93,7 @@ internal static class DeviceText
         return json.ToJsonString(Indented) + "\n";
     }
 
-    private static string Name(SheetDevice device, Device.Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;
+    private static string Name(SheetDevice device, Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;
 
     private static string Place(SheetDevice device, Contact c)
     {

@@ -5,7 +5,7 @@ using FieldSolve.Pictures;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Output;
 
 /// <summary>Writes the results of a drive into its folder; each file appears whole or not at all.</summary>
 internal static class DriveFiles
@@ -14,15 +14,15 @@ internal static class DriveFiles
     internal sealed record Choices(MapChoice Maps, bool AllSigns, bool Pictures, bool Quick);
 
     public static void Write(
-        DriveResult result, string folder, Choices choices, Terminal terminal, CancellationToken cancel)
+        DriveResult result, string folder, Choices choices, Screen screen, CancellationToken cancel)
     {
         CurvesCsv.Write(
             Path.Combine(folder, "curves.csv"), result.Device.Wirings, result.Rows, choices.AllSigns ? result.ReversedRows : null);
         var clock = new StageClock();
-        clock.Time("maps", () => Maps(result, folder, choices.Maps, terminal));
+        clock.Time("maps", () => Maps(result, folder, choices.Maps, screen));
         if (choices.Pictures)
         {
-            terminal.Report(new("drawing pictures", 0, 0));
+            screen.Report(new("drawing pictures", 0, 0));
             clock.Time("pictures", () =>
             {
                 IReadOnlyList<PictureFile> drawn = DrivePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
@@ -43,7 +43,7 @@ internal static class DriveFiles
             });
     }
 
-    private static void Maps(DriveResult result, string folder, MapChoice maps, Terminal terminal)
+    private static void Maps(DriveResult result, string folder, MapChoice maps, Screen screen)
     {
         if (maps == MapChoice.None)
         {
@@ -57,7 +57,7 @@ internal static class DriveFiles
             return;
         }
 
-        terminal.Report(new("writing maps", 0, 0));
+        screen.Report(new("writing maps", 0, 0));
         string into = Path.Combine(folder, "maps");
         Directory.CreateDirectory(into);
         IReadOnlyList<string> names = SafeNames.Of(result.Device.Wirings.Select(w => w.Name));

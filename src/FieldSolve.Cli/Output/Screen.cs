@@ -1,9 +1,9 @@
 using FieldSolve.Runs;
 
-namespace FieldSolve.Cli;
+namespace FieldSolve.Cli.Output;
 
 /// <summary>What goes to the terminal: progress to standard error when it is one, the summary to standard output.</summary>
-internal sealed class Terminal(bool quiet) : IProgress<RunProgress>
+internal sealed class Screen(bool quiet) : IProgress<RunProgress>
 {
     private readonly bool live = !quiet && !Console.IsErrorRedirected;
     private readonly Lock gate = new();

@@ -20,6 +20,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         double[] values = [.. volts.Select(v => v * scale.Factor)];
         double low = values.Min(), high = values.Max(), step = Levels.Step(high - low, 22);
         SheetFrame frame = Frame("Potential");
+        frame.AddPadMetal(device);
         MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Viridis(), low, high);
         frame.Plot.PlottableList.Add(image);
         List<Point2[]> lines = [];
@@ -45,6 +46,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         double bottom = Math.Log10(floor * scale.Factor), top = high > floor ? Math.Log10(high * scale.Factor) : bottom + 1;
         double[] values = [.. field.Select(e => Math.Log10(Math.Max(e, 0.5 * floor) * scale.Factor))];
         SheetFrame frame = Frame("Field");
+        frame.AddPadMetal(device);
         MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Magma(), bottom, top);
         frame.Plot.PlottableList.Add(image);
         IReadOnlyList<Point2[]> lines = Streamlines.Of(mesh, finder, mesh.Straight(map.Kx), mesh.Straight(map.Ky), frame.Size / 32);
@@ -61,7 +63,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     }
 
     private SheetFrame Frame(string what) => SheetFrame.Around(
-        device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, MapMargin, MapSize);
+        device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
     private static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
     {
@@ -75,6 +77,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         bar.Axis.TickLabelStyle.FontSize = Look.TickSize;
         bar.Axis.TickLabelStyle.FontName = EmbeddedFont.Family;
         bar.Axis.TickLabelStyle.ForeColor = Look.Ink;
+        bar.Axis.TickLabelStyle.OffsetY = Look.TickDrop;
         if (ticks is not null)
         {
             bar.Axis.TickGenerator = ticks;

@@ -68,7 +68,7 @@ public static class DrivePictures
             () => CurvePicture.Draw(result));
         yield return new(
             "even", null, "even",
-            "Even part of the transverse voltage against the square of the odd longitudinal one, with the straight line fitted at small drive.",
+            "Even part of V_across against the square of the odd part of V_along, with a straight line fitted to all rows that are ok.",
             () => EvenPicture.Draw(result));
 
         IReadOnlyList<string> names = SafeNames.Of(device.Wirings.Select(w => w.Name));

@@ -15,7 +15,7 @@ internal static class MeshPicture
     {
         TriangleMesh mesh = result.Mesh;
         string title = string.Create(System.Globalization.CultureInfo.InvariantCulture, $"Mesh: {mesh.TriangleCount:N0} triangles").Replace(',', '\u202f');
-        SheetFrame frame = SheetFrame.Around(result.Device, title, false, 0.05, 560);
+        SheetFrame frame = SheetFrame.Around(result.Device, title, false, (0.05, 0.05), 560);
         foreach (DomainRegion region in result.Device.Domain.Regions)
         {
             ScottPlot.Plottables.Polygon pad = frame.Plot.Add.Polygon(

@@ -44,11 +44,14 @@ internal static class DevicePicture
         return figure.WithKeyAt(key, panels[0].Width + 90, figure.Height - (panels[0].Height / 2f) - (key.Count * KeyEntry.LineHeight / 2));
     }
 
-    // Room for the longest name beside the sheet, as a share of the sheet.
+    // Room for the longest name of a contact at the left or right side, as a share of the sheet.
     private static double Margin(SheetDevice device, Wiring wiring, double target)
     {
+        double[] x = [.. device.Contacts.SelectMany(c => SheetFrame.Points(c.Shape)).Select(p => p.X).DefaultIfEmpty(0)];
+        (double left, double right) = (x.Min(), x.Max());
+        double middle = (left + right) / 2;
         IEnumerable<string> names = device.Contacts.Select((c, k) => (Contact: c, Name: c.Name + Role(wiring, new(false, k))))
-            .Where(c => c.Contact.Kind == ContactKind.Edge && !SheetFrame.IsLoop(c.Contact)).Select(c => c.Name);
+            .Where(c => !SheetFrame.IsLoop(c.Contact) && Math.Abs(c.Contact.Middle.X - middle) > 0.3 * (right - left)).Select(c => c.Name);
         double share = Math.Min(0.3, (14 + names.Select(TextWidth).DefaultIfEmpty(0).Max()) / target);
         return Math.Max(0.12, share / (1 - (2 * share)));
     }

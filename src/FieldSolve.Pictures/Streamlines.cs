@@ -5,17 +5,18 @@ namespace FieldSolve.Pictures;
 /// <summary>
 /// Lines along a vector field with roughly even spacing, after B. Jobard and W. Lefer, "Creating evenly-spaced streamlines of
 /// arbitrary density", Visualization in Scientific Computing '97, 43-56: a line starts only where no other is nearer than the
-/// spacing and stops when it comes nearer than a share of it. Seeds stand on a fixed hexagonal grid, nearest to the middle first.
+/// spacing and stops when it comes nearer than a share of it. Seeds stand on a fixed hexagonal grid, nearest to the middle first; none where the
+/// sheet is almost at rest.
 /// </summary>
 internal sealed class Streamlines
 {
-    private const double Nearest = 0.45, Tightest = 0.12;
+    private const double Nearest = 0.45, Tightest = 0.12, Stagnant = 0.03;
     private const int MostSteps = 4000;
 
     private readonly FineMesh mesh;
     private readonly TriangleFinder finder;
     private readonly double[] vx, vy;
-    private readonly double spacing, tiny;
+    private readonly double spacing, tiny, weak;
     private readonly Dictionary<(int, int), List<Point2>> taken = [];
 
     private Streamlines(FineMesh mesh, TriangleFinder finder, double[] vx, double[] vy, double spacing)
@@ -28,6 +29,16 @@ internal sealed class Streamlines
         }
 
         tiny = 1e-9 * largest;
+        (double flow, double all) = (0, 0);
+        for (int t = 0; t < mesh.Count; t++)
+        {
+            (int a, int b, int c) = (mesh.Triangles[3 * t], mesh.Triangles[(3 * t) + 1], mesh.Triangles[(3 * t) + 2]);
+            double area = Math.Abs(((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.Y[b] - mesh.Y[a]) * (mesh.X[c] - mesh.X[a])));
+            flow += area * new Point2(vx[a] + vx[b] + vx[c], vy[a] + vy[b] + vy[c]).Length / 3;
+            all += area;
+        }
+
+        weak = Stagnant * flow / all;
     }
 
     /// <summary>The lines, each in the direction of the field.</summary>
@@ -56,7 +67,7 @@ internal sealed class Streamlines
         List<Point2[]> lines = [];
         foreach (Point2 seed in seeds.OrderBy(s => Point2.Distance(s, middle)))
         {
-            if (IsFree(seed, spacing) && Direction(seed) is not null)
+            if (IsFree(seed, spacing) && Strength(seed) > weak)
             {
                 List<Point2> back = Follow(seed, -1), line = [.. Enumerable.Reverse(back), seed, .. Follow(seed, 1)];
                 double length = 0;

@@ -107,7 +107,7 @@ public sealed class DrivePicturesTests : IDisposable
     public void All_panels_of_the_device_have_the_same_ticks()
     {
         string[] texts = Texts(DrivePictures.Write(Disc with { Maps = [] }, folder, CancellationToken.None)[0]);
-        Assert.All(texts.Where(t => double.TryParse(t.Replace('−', '-'), CultureInfo.InvariantCulture, out _)).CountBy(t => t), t => Assert.Equal(6, t.Value));
+        Assert.All(texts.Where(t => double.TryParse(t.Replace('−', '-'), CultureInfo.InvariantCulture, out _)).CountBy(t => t), t => Assert.Equal(0, t.Value % 3));
         Assert.Contains("−2", texts);
     }
 

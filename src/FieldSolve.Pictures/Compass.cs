@@ -9,6 +9,9 @@ internal sealed class Compass(double axis) : IPlottable
 {
     private const float Arm = 24, Inset = 42;
 
+    /// <summary>The square it needs within a frame.</summary>
+    public static SKRect Place(PixelRect frame) => new(frame.Left, frame.Bottom - (2 * Inset), frame.Left + (2 * Inset), frame.Bottom);
+
     /// <inheritdoc/>
     public bool IsVisible { get; set; } = true;
 

@@ -10,11 +10,19 @@ internal static class DevicePicture
     /// <summary>Most wirings shown.</summary>
     public const int MostPanels = 6;
 
+    private const double MarginY = 0.12;
+
+    private static readonly int[] Diagonals = [45, 135, 315, 225];
+
     /// <summary>Draws the picture.</summary>
     public static Figure Draw(SheetDevice device)
     {
         Wiring[] wirings = [.. device.Wirings.Take(MostPanels)];
-        SheetFrame[] panels = [.. wirings.Select(w => Panel(device, w, wirings.Length == 1 ? 520 : 380))];
+        double target = wirings.Length == 1 ? 520 : 380;
+
+        // All panels share one frame, so the sheet has the same size and place in each.
+        (double X, double Y) margin = (wirings.Max(w => Margin(device, w, target)), MarginY);
+        SheetFrame[] panels = [.. wirings.Select(w => Panel(device, w, margin, target))];
         Figure figure = Figure.Rows([.. panels.Select(p => p.Plot)], wirings.Length == 1 ? 1 : 2, panels[0].Width, panels[0].Height);
         if (wirings.Length < 3 || wirings.Length % 2 == 0)
         {
@@ -36,109 +44,129 @@ internal static class DevicePicture
         return figure.WithKeyAt(key, panels[0].Width + 90, figure.Height - (panels[0].Height / 2f) - (key.Count * KeyEntry.LineHeight / 2));
     }
 
-    // Room for the longest name beside the sheet, as a share of the sheet.
+    // Room for the longest name of a contact at the left or right side, as a share of the sheet.
     private static double Margin(SheetDevice device, Wiring wiring, double target)
     {
-        IEnumerable<string> names = device.Contacts.Where(c => c.Kind == ContactKind.Edge).Select((c, k) => c.Name + Role(wiring, new(false, k)));
-        double share = Math.Min(0.3, (12 + names.Select(TextWidth).DefaultIfEmpty(0).Max()) / target);
-        return Math.Max(0.1, share / (1 - (2 * share)));
+        double[] x = [.. device.Contacts.SelectMany(c => SheetFrame.Points(c.Shape)).Select(p => p.X).DefaultIfEmpty(0)];
+        (double left, double right) = (x.Min(), x.Max());
+        double middle = (left + right) / 2;
+        IEnumerable<string> names = device.Contacts.Select((c, k) => (Contact: c, Name: c.Name + Role(wiring, new(false, k))))
+            .Where(c => !SheetFrame.IsLoop(c.Contact) && Math.Abs(c.Contact.Middle.X - middle) > 0.3 * (right - left)).Select(c => c.Name);
+        double share = Math.Min(0.3, (14 + names.Select(TextWidth).DefaultIfEmpty(0).Max()) / target);
+        return Math.Max(0.12, share / (1 - (2 * share)));
     }
 
     private static double TextWidth(string text) => KeyEntry.WidthOf([new(text, Look.Ink, 0, null, MarkerShape.None)]) - KeyEntry.WidthOf([]);
 
-    private static SheetFrame Panel(SheetDevice device, Wiring wiring, double target)
+    private static SheetFrame Panel(SheetDevice device, Wiring wiring, (double X, double Y) margin, double target)
     {
-        SheetFrame frame = SheetFrame.Around(device, Look.Short(wiring.Name), false, Margin(device, wiring, target), target);
+        SheetFrame frame = SheetFrame.Around(device, Look.Short(wiring.Name), false, margin, target);
         Plot plot = frame.Plot;
         double f = frame.Scale.Factor;
+        IReadOnlyList<Point2[]> rim = SheetFrame.RimLoops(device.Domain);
+        plot.PlottableList.Add(new SheetFill(rim, f));
+        frame.AddPadMetal(device);
         foreach (IReadOnlyList<Curve> loop in device.DeadEdge > 0 ? device.Drawn : [])
         {
             frame.AddLines([SheetFrame.Points(loop)], Look.Metal, 1, dashed: true);
         }
 
-        IReadOnlyList<Point2[]> rim = SheetFrame.RimLoops(device.Domain);
-        plot.PlottableList.Add(new SheetFill(rim, f));
         frame.AddLines(rim, Look.Ink, 1.2f);
+        List<Point2[]> lines = [.. rim];
+        List<NameTag> tags = [];
         for (int k = 0; k < device.Contacts.Count; k++)
         {
-            Color colour = ColourOf(wiring, new(false, k));
-            frame.AddContact(device.Contacts[k], colour, colour == Look.Metal ? 5 : 7);
-            AddName(frame, device.Contacts[k], Role(wiring, new(false, k)), colour);
+            Color[] colours = ColoursOf(wiring, new(false, k));
+            frame.AddContact(device.Contacts[k], colours[0], colours[0] == Look.Metal ? 5 : 7);
+            if (colours.Length > 1)
+            {
+                frame.AddLines([SheetFrame.Points(device.Contacts[k].Shape)], colours[1], device.Contacts[k].Kind == ContactKind.Pad ? 2.2f : 7, dashed: true);
+            }
+
+            lines.Add(SheetFrame.Points(device.Contacts[k].Shape));
+            tags.Add(TagOf(device.Contacts[k], Role(wiring, new(false, k)), colours[0]));
         }
 
         for (int k = 0; k < device.Tips.Count; k++)
         {
             Tip tip = device.Tips[k];
-            Color colour = ColourOf(wiring, new(true, k));
+            Color colour = ColoursOf(wiring, new(true, k))[0];
             plot.Add.Marker(f * tip.At.X, f * tip.At.Y, MarkerShape.FilledCircle, 7, colour);
-            AddText(frame, tip.Name + Role(wiring, new(true, k)), tip.At, new(0.7, 0.7), colour, 6);
+            tags.Add(new(tip.Name + Role(wiring, new(true, k)), TextColour(colour), [(tip.At, default)], [], false));
         }
 
-        AddArrow(frame, device.Contacts[wiring.Source].Middle, device.Contacts[wiring.Drain].Middle);
+        Contact source = device.Contacts[wiring.Source], drain = device.Contacts[wiring.Drain];
+        if (!SheetFrame.IsLoop(source) && !SheetFrame.IsLoop(drain))
+        {
+            (Point2 from, Point2 to) = AddArrow(frame, source.Middle, drain.Middle);
+            lines.Add([from, to]);
+            tags.Add(new("I", Look.Source, [(0.5 * (from + to), (to - from).Left)], [], false));
+        }
+
         plot.PlottableList.Add(new Compass(device.Axis));
+        plot.PlottableList.Add(new NameTags(tags, lines, rim, f));
         return frame;
     }
 
-    private static Color ColourOf(Wiring wiring, Terminal terminal) => Role(wiring, terminal) switch
+    private static Color TextColour(Color colour) => colour == Look.Metal ? Look.Ink : colour;
+
+    // What a terminal does in a wiring; one contact may serve both pairs.
+    private static List<(string Sign, Color Colour)> Duties(Wiring wiring, Terminal t)
     {
-        " (I+)" => Look.Source,
-        " (I−)" => Look.Drain,
-        " (∥+)" or " (∥−)" => Look.Along,
-        " (⊥+)" or " (⊥−)" => Look.Across,
-        _ => Look.Metal,
-    };
+        List<(string, Color)> duties = [];
+        void Add(Terminal? other, string sign, Color colour)
+        {
+            if (t == other)
+            {
+                duties.Add((sign, colour));
+            }
+        }
+
+        Add(new Terminal(false, wiring.Source), "I+", Look.Source);
+        Add(new Terminal(false, wiring.Drain), "I−", Look.Drain);
+        Add(wiring.Along?.Plus, "∥+", Look.Along);
+        Add(wiring.Along?.Minus, "∥−", Look.Along);
+        Add(wiring.Across?.Plus, "⊥+", Look.Across);
+        Add(wiring.Across?.Minus, "⊥−", Look.Across);
+        return duties;
+    }
 
     private static string Role(Wiring wiring, Terminal t) =>
-        t == new Terminal(false, wiring.Source) ? " (I+)"
-        : t == new Terminal(false, wiring.Drain) ? " (I−)"
-        : t == wiring.Along?.Plus ? " (∥+)"
-        : t == wiring.Along?.Minus ? " (∥−)"
-        : t == wiring.Across?.Plus ? " (⊥+)"
-        : t == wiring.Across?.Minus ? " (⊥−)"
-        : "";
+        Duties(wiring, t) is { Count: > 0 } duties ? $" ({string.Join(", ", duties.Select(d => d.Sign))})" : "";
 
-    private static void AddName(SheetFrame frame, Contact contact, string role, Color colour)
+    private static Color[] ColoursOf(Wiring wiring, Terminal t) =>
+        Duties(wiring, t) is { Count: > 0 } duties ? [.. duties.Select(d => d.Colour).Distinct()] : [Look.Metal];
+
+    private static NameTag TagOf(Contact contact, string role, Color colour)
     {
+        string text = contact.Name + role;
+        Point2[] points = SheetFrame.Points(contact.Shape);
         if (contact.Kind == ContactKind.Pad)
         {
-            AddText(frame, contact.Name + role, contact.Middle, default, colour, 0);
-            return;
+            // Beside the middle of an edge, away from the pad.
+            IEnumerable<(Point2, Point2)> sides = Enumerable.Range(1, points.Length - 1)
+                .Select(k => 0.5 * (points[k - 1] + points[k])).Select(m => (m, Unit(m - contact.Middle)));
+            return new(text, TextColour(colour), [.. sides], points, true);
+        }
+
+        if (SheetFrame.IsLoop(contact))
+        {
+            // Along the diagonals, where the axes are far; inside when the loop is the rim of a hole.
+            Point2 centre = new((points.Min(p => p.X) + points.Max(p => p.X)) / 2, (points.Min(p => p.Y) + points.Max(p => p.Y)) / 2);
+            IEnumerable<(Point2, Point2)> corners = Diagonals.Select(d => new Point2(1, 0).Turned(d * Math.PI / 180))
+                .Select(d => (points.MaxBy(p => Point2.Dot(p - centre, d)), d));
+            double area = Enumerable.Range(1, points.Length - 1).Sum(k => Point2.Cross(points[k - 1] - centre, points[k] - centre));
+            return new(text, TextColour(colour), [.. corners], area < 0 ? points : [], true);
         }
 
         // The sheet lies to the left of the direction of travel, so the name goes to the right.
         Curve middle = contact.Shape[contact.Shape.Count / 2];
-        AddText(frame, contact.Name + role, contact.Middle, -middle.Tangent(middle.Nearest(contact.Middle)).Left, colour, 9);
+        return new(text, TextColour(colour), [(contact.Middle, -middle.Tangent(middle.Nearest(contact.Middle)).Left)], [], true);
     }
 
-    private static void AddText(SheetFrame frame, string text, Point2 at, Point2 outward, Color colour, float distance)
-    {
-        ScottPlot.Plottables.Text label = frame.Plot.Add.Text(text, frame.Scale.Factor * at.X, frame.Scale.Factor * at.Y);
-        label.LabelFontSize = 13;
-        label.LabelFontName = EmbeddedFont.Family;
-        label.LabelFontColor = colour == Look.Metal ? Look.Ink : colour;
-        label.OffsetX = (float)(distance * outward.X);
-        label.OffsetY = (float)(-distance * outward.Y);
-        int side = outward.X > 0.38 ? 1 : outward.X < -0.38 ? -1 : 0, up = outward.Y > 0.38 ? 1 : outward.Y < -0.38 ? -1 : 0;
-        label.LabelAlignment = (side, up) switch
-        {
-            (1, 1) => Alignment.LowerLeft,
-            (1, 0) => Alignment.MiddleLeft,
-            (1, -1) => Alignment.UpperLeft,
-            (0, 1) => Alignment.LowerCenter,
-            (0, -1) => Alignment.UpperCenter,
-            (-1, 1) => Alignment.LowerRight,
-            (-1, 0) => Alignment.MiddleRight,
-            (-1, -1) => Alignment.UpperRight,
-            _ => Alignment.MiddleCenter,
-        };
-        if (distance == 0)
-        {
-            label.LabelBackgroundColor = Colors.White.WithAlpha(0.8);
-            label.LabelPadding = 2;
-        }
-    }
+    private static Point2 Unit(Point2 p) => p.Length > 0 ? 1 / p.Length * p : new(1, 0);
 
-    private static void AddArrow(SheetFrame frame, Point2 source, Point2 drain)
+    private static (Point2 From, Point2 To) AddArrow(SheetFrame frame, Point2 source, Point2 drain)
     {
         double f = frame.Scale.Factor;
         Point2 from = source + (0.15 * (drain - source)), to = source + (0.85 * (drain - source));
@@ -149,13 +177,6 @@ internal static class DevicePicture
         arrow.ArrowheadLength = 16;
         arrow.ArrowheadAxisLength = 16;
         arrow.ArrowFillColor = Look.Source;
-        ScottPlot.Plottables.Text label = frame.Plot.Add.Text("I", f * (from.X + to.X) / 2, f * (from.Y + to.Y) / 2);
-        label.LabelFontName = EmbeddedFont.Family;
-        label.LabelFontSize = 15;
-        label.LabelFontColor = Look.Source;
-        Point2 left = (drain - source).Left, unit = 1 / left.Length * left;
-        label.LabelAlignment = Alignment.MiddleCenter;
-        label.OffsetX = (float)(13 * unit.X);
-        label.OffsetY = (float)(-13 * unit.Y);
+        return (from, to);
     }
 }

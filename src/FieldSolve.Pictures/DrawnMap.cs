@@ -8,7 +8,7 @@ namespace FieldSolve.Pictures;
 /// <summary>The map of a wiring prepared for drawing; all its pictures share it.</summary>
 internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, TriangleFinder finder)
 {
-    private const double MapMargin = 0.06, MapSize = 560;
+    private const double MapMargin = 0.06, MapSize = 560, LeastField = 0.01;
 
     private Wiring Wiring => device.Wirings.First(w => w.Name == map.Wiring);
 
@@ -20,6 +20,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         double[] values = [.. volts.Select(v => v * scale.Factor)];
         double low = values.Min(), high = values.Max(), step = Levels.Step(high - low, 22);
         SheetFrame frame = Frame("Potential");
+        frame.AddPadMetal(device);
         MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Viridis(), low, high);
         frame.Plot.PlottableList.Add(image);
         List<Point2[]> lines = [];
@@ -34,17 +35,18 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         return Figure.Of(frame.Plot, frame.Width, frame.Height);
     }
 
-    /// <summary>Magnitude of the field in colour (logarithmic, between the 1st and the 99th percentile by area) with current streamlines.</summary>
+    /// <summary>Magnitude of the field in colour (logarithmic, between the 1st and the 99th percentile by area, at most two decades) with current streamlines.</summary>
     public Figure Field()
     {
         double[] ex = mesh.Straight(map.Ex), ey = mesh.Straight(map.Ey);
         double[] field = [.. ex.Zip(ey, (x, y) => Math.Sqrt((x * x) + (y * y)))];
         (double low, double high) = Percentiles(field);
         SiScale scale = SiScale.For(high, "V/m");
-        double floor = high > 0 ? Math.Max(low, 1e-4 * high) : 1;
+        double floor = high > 0 ? Math.Max(low, LeastField * high) : 1;
         double bottom = Math.Log10(floor * scale.Factor), top = high > floor ? Math.Log10(high * scale.Factor) : bottom + 1;
         double[] values = [.. field.Select(e => Math.Log10(Math.Max(e, 0.5 * floor) * scale.Factor))];
         SheetFrame frame = Frame("Field");
+        frame.AddPadMetal(device);
         MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Magma(), bottom, top);
         frame.Plot.PlottableList.Add(image);
         IReadOnlyList<Point2[]> lines = Streamlines.Of(mesh, finder, mesh.Straight(map.Kx), mesh.Straight(map.Ky), frame.Size / 32);
@@ -61,7 +63,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     }
 
     private SheetFrame Frame(string what) => SheetFrame.Around(
-        device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, MapMargin, MapSize);
+        device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
     private static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
     {
@@ -75,6 +77,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         bar.Axis.TickLabelStyle.FontSize = Look.TickSize;
         bar.Axis.TickLabelStyle.FontName = EmbeddedFont.Family;
         bar.Axis.TickLabelStyle.ForeColor = Look.Ink;
+        bar.Axis.TickLabelStyle.OffsetY = Look.TickDrop;
         if (ticks is not null)
         {
             bar.Axis.TickGenerator = ticks;

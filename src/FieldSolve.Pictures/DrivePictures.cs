@@ -68,7 +68,7 @@ public static class DrivePictures
             () => CurvePicture.Draw(result));
         yield return new(
             "even", null, "even",
-            "Even part of the transverse voltage against the square of the odd longitudinal one, with the straight line fitted at small drive.",
+            "Even part of V_across against the square of the odd part of V_along, with a straight line fitted to all rows that are ok.",
             () => EvenPicture.Draw(result));
 
         IReadOnlyList<string> names = SafeNames.Of(device.Wirings.Select(w => w.Name));
@@ -104,7 +104,7 @@ public static class DrivePictures
                 () => new DrawnMap(device, last, made.Value.Mesh, made.Value.Finder).Potential());
             yield return new(
                 "field", wiring, "field-" + names[w],
-                "Magnitude of the field on a logarithmic scale that spans the 1st to the 99th percentile of the sheet's area, and lines of the sheet current.",
+                "Magnitude of the field on a logarithmic scale that spans the 1st to the 99th percentile of the sheet's area, at most two decades, and lines of the sheet current.",
                 () => new DrawnMap(device, last, made.Value.Mesh, made.Value.Finder).Field());
             yield return new(
                 "sections", wiring, "sections-" + names[w],

@@ -8,7 +8,7 @@ internal static class EvenPicture
 {
     private const int MostNamed = 12;
 
-    /// <summary>Draws the picture; null when no wiring has both parts.</summary>
+    /// <summary>Draws the picture; null when the law is linear (the even parts are then rounding) or no wiring has both parts.</summary>
     public static Figure? Draw(DriveResult result)
     {
         (string Wiring, RowStatus Status, double X, double Y, double Error)[] points =
@@ -18,7 +18,7 @@ internal static class EvenPicture
                 .Where(p => p.X is not null && p.Y is not null)
                 .Select(p => (p.Wiring, p.Status, p.X!.Value * p.X.Value, p.Y!.Value, p.Error ?? 0)),
         ];
-        if (points.Length == 0)
+        if (result.Device.Law.IsLinear || points.Length == 0)
         {
             return null;
         }
@@ -26,7 +26,7 @@ internal static class EvenPicture
         SiScale scaleX = SiScale.For(points.Max(p => p.X), "V", power: 2), scaleY = SiScale.For(points.Max(p => Math.Abs(p.Y)), "V");
         double range = scaleY.Factor * (points.Max(p => p.Y) - points.Min(p => p.Y));
         Plot plot = Look.NewPlot(
-            "Even transverse voltage", $"(V_along, odd part)² ({scaleX.Unit})", $"V_across, even part ({scaleY.Unit})");
+            "Even part of V_across", $"(V_along, odd part)² ({scaleX.Unit})", $"V_across, even part ({scaleY.Unit})");
         List<KeyEntry> key = [];
         for (int w = 0; w < result.Device.Wirings.Count; w++)
         {

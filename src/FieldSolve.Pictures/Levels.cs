@@ -27,6 +27,19 @@ internal static class Levels
         return levels;
     }
 
+    /// <summary>Labelled ticks at the multiples of a step, both ends of the range included.</summary>
+    public static ScottPlot.TickGenerators.NumericManual EvenTicks(double low, double high, double step)
+    {
+        ScottPlot.TickGenerators.NumericManual ticks = new();
+        foreach (double at in Between(low - (1e-9 * step), high + (1e-9 * step), step))
+        {
+            // Adding zero turns a negative zero into a plain one.
+            ticks.AddMajor(at, SiScale.Number((Math.Round(at / step) * step) + 0.0, 6));
+        }
+
+        return ticks;
+    }
+
     /// <summary>Ticks on a logarithmic axis whose coordinates are log10 of the values: decades, and 2 and 5 between when there are few.</summary>
     /// <returns>Positions and labels; the label of a minor tick is empty.</returns>
     public static ScottPlot.TickGenerators.NumericManual LogTicks(double low, double high)
@@ -66,8 +79,6 @@ internal static class Levels
             return SiScale.Number(lead * Math.Pow(10, exponent), 6);
         }
 
-        string power = exponent.ToString(System.Globalization.CultureInfo.InvariantCulture);
-        string raised = string.Concat(power.Select(c => c == '-' ? '⁻' : "⁰¹²³⁴⁵⁶⁷⁸⁹"[c - '0']));
-        return lead == 1 ? $"10{raised}" : $"{lead}·10{raised}";
+        return $"{(lead == 1 ? "" : $"{lead}·")}10{SiScale.Raised(exponent)}";
     }
 }

@@ -10,7 +10,7 @@ namespace FieldSolve.Pictures;
 internal sealed class MapImage(FineMesh mesh, double[] values, double scale, IColormap colours, double low, double high)
     : IPlottable, IHasColorAxis, IDisposable
 {
-    private const int Oversampling = 2, Shades = 1024;
+    private const int Oversampling = 2, Shades = 1024, Compression = 4;
 
     private SKImage? image;
     private (PixelRect Place, AxisLimits Limits) made;
@@ -99,7 +99,12 @@ internal sealed class MapImage(FineMesh mesh, double[] values, double scale, ICo
 
         SKImageInfo info = new(width, height, SKColorType.Rgba8888, SKAlphaType.Premul);
         ReadOnlySpan<byte> bytes = System.Runtime.InteropServices.MemoryMarshal.AsBytes(pixels.AsSpan());
-        return SKImage.FromPixelCopy(info, bytes);
+        using SKImage raw = SKImage.FromPixelCopy(info, bytes);
+        using SKPixmap? pixmap = raw.PeekPixels();
+        SKData? data = pixmap?.Encode(new SKPngEncoderOptions(SKPngEncoderFilterFlags.Sub, Compression));
+
+        // An image that knows its PNG is put into an SVG as it is, instead of being compressed again.
+        return data is null ? throw new InvalidOperationException("The map could not be encoded as PNG.") : SKImage.FromEncodedData(data);
     }
 
     private static uint Rgba(Color c) => BitConverter.IsLittleEndian

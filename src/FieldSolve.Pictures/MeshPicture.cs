@@ -15,15 +15,8 @@ internal static class MeshPicture
     {
         TriangleMesh mesh = result.Mesh;
         string title = string.Create(System.Globalization.CultureInfo.InvariantCulture, $"Mesh: {mesh.TriangleCount:N0} triangles").Replace(',', '\u202f');
-        SheetFrame frame = SheetFrame.Around(result.Device, title, false, 0.05, 560);
-        foreach (DomainRegion region in result.Device.Domain.Regions)
-        {
-            ScottPlot.Plottables.Polygon pad = frame.Plot.Add.Polygon(
-                [.. region.Corners.Select(p => new Coordinates(frame.Scale.Factor * p.X, frame.Scale.Factor * p.Y))]);
-            pad.FillColor = Color.FromHex("#E69F00").WithAlpha(0.25);
-            pad.LineWidth = 0;
-        }
-
+        SheetFrame frame = SheetFrame.Around(result.Device, title, false, (0.05, 0.05), 560);
+        frame.AddPadMetal(result.Device);
         frame.Plot.PlottableList.Add(new MeshLines(mesh, frame.Scale.Factor));
         frame.AddDevice(result.Device, null);
         return Figure.Of(frame.Plot, frame.Width, frame.Height);

@@ -13,8 +13,10 @@ internal static class ReportTables
     /// <summary>One row per wiring.</summary>
     public static void Summary(Html page, DriveResult result)
     {
+        // With a linear law the even parts are rounding, and so would be their slope.
+        EvenSlope? Fit(WiringSummary s) => result.Device.Law.IsLinear ? null : s.Slope;
         page.Table(
-            "Resistances are voltage over current at the smallest current that is not zero. Slope: even part of V_across against the square of the odd part of V_along, fitted at small drive.",
+            "Resistances are voltage over current at the smallest current that is not zero. Slope: even part of V_across against the square of the odd part of V_along, over the rows within the law; without an error when two rows are all there is.",
             ["wiring", "direction", "two-terminal", "along", "across", "slope (1/V)", "R²", "left its law at", "largest current"],
             [.. result.Summaries.Select(s => new[]
             {
@@ -23,8 +25,8 @@ internal static class ReportTables
                 Ohms(s.TwoTerminal),
                 Ohms(s.Along),
                 Ohms(s.Across),
-                ErrorText.In(new(1, ""), s.Slope?.Slope, s.Slope?.SlopeError),
-                s.Slope is { } fit && double.IsFinite(fit.RSquared) ? SiScale.Number(fit.RSquared, 6) : None,
+                ErrorText.In(new(1, ""), Fit(s)?.Slope, Fit(s)?.SlopeError),
+                Fit(s) is { } fit && double.IsFinite(fit.RSquared) ? SiScale.Number(fit.RSquared, 6) : None,
                 s.LeftLawAt is { } current ? SiScale.Text(current, "A") : "never",
                 SiScale.Text(s.Largest, "A"),
             })],

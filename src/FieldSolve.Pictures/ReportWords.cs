@@ -1,5 +1,6 @@
 using System.Globalization;
 using FieldSolve.Device;
+using FieldSolve.Files;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Pictures;
@@ -30,9 +31,13 @@ internal static class ReportWords
         yield return string.Create(
             CultureInfo.InvariantCulture,
             $"The finest mesh has {Grouped(result.Figures.Triangles)} quadratic triangles and {Grouped(result.Figures.Unknowns)} unknowns. {ok} of {result.Rows.Count} rows are ok.")
-            + (result.AllOk ? "" : " The others are marked in the tables and ringed in the plots.")
+            + (result.AllOk ? "" : $" Not ok: {Others(result)}; they are marked in the tables and ringed in the plots.")
             + (result.Cancelled ? " The run was cancelled; what follows is what was finished." : "");
     }
+
+    private static string Others(DriveResult result) => string.Join(", ", result.Rows.Where(r => r.Status != RowStatus.Ok)
+        .GroupBy(r => r.Status).OrderBy(g => g.Key)
+        .Select(g => string.Create(CultureInfo.InvariantCulture, $"{g.Count()} {CurvesCsv.StatusText(g.Key)}")));
 
     /// <summary>A whole number with thin spaces between thousands.</summary>
     public static string Grouped(long number) => number.ToString("N0", CultureInfo.InvariantCulture).Replace(',', '\u202f');

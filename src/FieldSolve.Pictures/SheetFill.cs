@@ -4,11 +4,14 @@ using SkiaSharp;
 
 namespace FieldSolve.Pictures;
 
-/// <summary>Paints the inside of the sheet, holes left out.</summary>
+/// <summary>Paints the inside of loops with one colour: the sheet, its holes left out, or the metal of pads.</summary>
 /// <param name="loops">Closed loops in metres.</param>
 /// <param name="scale">Multiplies metres to give plot units.</param>
 internal sealed class SheetFill(IReadOnlyList<Point2[]> loops, double scale) : IPlottable
 {
+    /// <summary>The colour.</summary>
+    public Color Colour { get; init; } = Look.Sheet;
+
     /// <inheritdoc/>
     public bool IsVisible { get; set; } = true;
 
@@ -31,7 +34,7 @@ internal sealed class SheetFill(IReadOnlyList<Point2[]> loops, double scale) : I
             path.AddPoly([.. loop.Select(p => Axes.GetPixel(new(scale * p.X, scale * p.Y))).Select(p => new SKPoint(p.X, p.Y))]);
         }
 
-        using SKPaint paint = new() { IsAntialias = true, Color = Look.Sheet.ToSKColor() };
+        using SKPaint paint = new() { IsAntialias = true, Color = Colour.ToSKColor() };
         rp.Canvas.DrawPath(path, paint);
     }
 }

@@ -7,7 +7,7 @@ namespace FieldSolve.Pictures;
 /// <summary>A plot of the plane of the sheet with equal scales in x and y, and the parts of the device that go on top of it.</summary>
 internal sealed class SheetFrame
 {
-    private const float Left = 74, Bottom = 58, Top = 40, PlainRight = 22, BarRight = 116;
+    private const float Left = 74, Bottom = 58, Top = 40, PlainRight = 22, BarRight = 116, TickDistance = 52;
 
     private SheetFrame(Plot plot, SiScale scale, double size, int width, int height)
     {
@@ -33,14 +33,14 @@ internal sealed class SheetFrame
     /// <param name="device">The device; its drawn rim and pads are in view.</param>
     /// <param name="title">Title.</param>
     /// <param name="colourBar">True to leave room for one at the right.</param>
-    /// <param name="margin">Room around the sheet as a share of its larger side.</param>
+    /// <param name="margin">Room beside, and above and below the sheet, as shares of its larger side.</param>
     /// <param name="target">Wanted size of the larger side of the frame.</param>
-    public static SheetFrame Around(SheetDevice device, string title, bool colourBar, double margin, double target)
+    public static SheetFrame Around(SheetDevice device, string title, bool colourBar, (double X, double Y) margin, double target)
     {
         (Point2 low, Point2 high) = Bounds(device);
-        double w = high.X - low.X, h = high.Y - low.Y, room = margin * Math.Max(w, h);
+        double w = high.X - low.X, h = high.Y - low.Y, side = Math.Max(w, h);
         SiScale scale = SiScale.For(Math.Max(w, h) / 2, "m");
-        double spanX = w + (2 * room), spanY = h + (2 * room), pixel = Math.Max(spanX, spanY) / target;
+        double spanX = w + (2 * margin.X * side), spanY = h + (2 * margin.Y * side), pixel = Math.Max(spanX, spanY) / target;
         double dataWidth = Math.Max(0.5 * target, spanX / pixel), dataHeight = Math.Max(0.32 * target, spanY / pixel);
         (spanX, spanY) = (dataWidth * pixel, dataHeight * pixel);
 
@@ -50,6 +50,9 @@ internal sealed class SheetFrame
         double cx = (low.X + high.X) / 2, cy = (low.Y + high.Y) / 2, f = scale.Factor;
         plot.Axes.SetLimits(f * (cx - (spanX / 2)), f * (cx + (spanX / 2)), f * (cy - (spanY / 2)), f * (cy + (spanY / 2)));
         plot.HideGrid();
+        double step = Levels.Step(f * target * pixel, (int)(target / TickDistance));
+        plot.Axes.Bottom.TickGenerator = Levels.EvenTicks(f * (cx - (spanX / 2)), f * (cx + (spanX / 2)), step);
+        plot.Axes.Left.TickGenerator = Levels.EvenTicks(f * (cy - (spanY / 2)), f * (cy + (spanY / 2)), step);
         return new(
             plot, scale, new Point2(w, h).Length,
             (int)Math.Ceiling(dataWidth + Left + right), (int)Math.Ceiling(dataHeight + Top + Bottom));
@@ -124,6 +127,19 @@ internal sealed class SheetFrame
             AddContact(device.Contacts[k], colour, k == wiring?.Source || k == wiring?.Drain ? 7 : 4);
         }
     }
+
+    /// <summary>The metal of pads, to be drawn under a map: it shows where the map leaves the metal out.</summary>
+    public void AddPadMetal(SheetDevice device)
+    {
+        foreach (Contact pad in device.Contacts.Where(c => c.Kind == ContactKind.Pad))
+        {
+            Plot.PlottableList.Add(new SheetFill([Points(pad.Shape)], Scale.Factor) { Colour = Look.PadMetal });
+        }
+    }
+
+    /// <summary>True for an edge contact that covers a whole loop of the rim.</summary>
+    public static bool IsLoop(Contact contact) => contact.Kind == ContactKind.Edge && contact.Shape.Count > 0
+        && Point2.Distance(contact.Shape[0].Start, contact.Shape[^1].End) <= 1e-9 * contact.Width;
 
     /// <summary>One contact: a thick stretch of rim, or the outline of a pad.</summary>
     public void AddContact(Contact contact, Color colour, float width)

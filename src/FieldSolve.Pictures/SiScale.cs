@@ -30,10 +30,24 @@ internal readonly record struct SiScale(double Factor, string Unit)
         return string.Create(CultureInfo.InvariantCulture, $"{Number(value * scale.Factor, digits)} {scale.Unit}");
     }
 
+    /// <summary>A whole number in raised digits.</summary>
+    public static string Raised(int number) => string.Concat(
+        number.ToString(CultureInfo.InvariantCulture).Select(c => c == '-' ? '⁻' : "⁰¹²³⁴⁵⁶⁷⁸⁹"[c - '0']));
+
     /// <summary>A number at so many significant digits, without needless zeros, with a true minus sign.</summary>
     public static string Number(double value, int digits = 4)
     {
         string text = value.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+        int mark = text.IndexOf('E', StringComparison.Ordinal);
+        if (mark > 0)
+        {
+            // A few digits of a number below a million need no power of ten: 190, not 1.9E+02.
+            int exponent = int.Parse(text.AsSpan(mark + 1), CultureInfo.InvariantCulture);
+            text = exponent is > 0 and < 6
+                ? double.Parse(text, CultureInfo.InvariantCulture).ToString("F0", CultureInfo.InvariantCulture)
+                : $"{text[..mark]}·10{Raised(exponent)}";
+        }
+
         return text.Replace('-', '−');
     }
 }

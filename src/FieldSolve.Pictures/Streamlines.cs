@@ -5,17 +5,18 @@ namespace FieldSolve.Pictures;
 /// <summary>
 /// Lines along a vector field with roughly even spacing, after B. Jobard and W. Lefer, "Creating evenly-spaced streamlines of
 /// arbitrary density", Visualization in Scientific Computing '97, 43-56: a line starts only where no other is nearer than the
-/// spacing and stops when it comes nearer than a share of it. Seeds stand on a fixed hexagonal grid, nearest to the middle first.
+/// spacing and stops when it comes nearer than a share of it. Seeds stand on a fixed hexagonal grid, nearest to the middle first; none where the
+/// sheet is almost at rest.
 /// </summary>
 internal sealed class Streamlines
 {
-    private const double Nearest = 0.45;
+    private const double Nearest = 0.45, Tightest = 0.12, Stagnant = 0.03;
     private const int MostSteps = 4000;
 
     private readonly FineMesh mesh;
     private readonly TriangleFinder finder;
     private readonly double[] vx, vy;
-    private readonly double spacing, tiny;
+    private readonly double spacing, tiny, weak;
     private readonly Dictionary<(int, int), List<Point2>> taken = [];
 
     private Streamlines(FineMesh mesh, TriangleFinder finder, double[] vx, double[] vy, double spacing)
@@ -28,6 +29,16 @@ internal sealed class Streamlines
         }
 
         tiny = 1e-9 * largest;
+        (double flow, double all) = (0, 0);
+        for (int t = 0; t < mesh.Count; t++)
+        {
+            (int a, int b, int c) = (mesh.Triangles[3 * t], mesh.Triangles[(3 * t) + 1], mesh.Triangles[(3 * t) + 2]);
+            double area = Math.Abs(((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.Y[b] - mesh.Y[a]) * (mesh.X[c] - mesh.X[a])));
+            flow += area * new Point2(vx[a] + vx[b] + vx[c], vy[a] + vy[b] + vy[c]).Length / 3;
+            all += area;
+        }
+
+        weak = Stagnant * flow / all;
     }
 
     /// <summary>The lines, each in the direction of the field.</summary>
@@ -56,7 +67,7 @@ internal sealed class Streamlines
         List<Point2[]> lines = [];
         foreach (Point2 seed in seeds.OrderBy(s => Point2.Distance(s, middle)))
         {
-            if (IsFree(seed, spacing) && Direction(seed) is not null)
+            if (IsFree(seed, spacing) && Strength(seed) > weak)
             {
                 List<Point2> back = Follow(seed, -1), line = [.. Enumerable.Reverse(back), seed, .. Follow(seed, 1)];
                 double length = 0;
@@ -79,6 +90,11 @@ internal sealed class Streamlines
     // Runge-Kutta of fourth order on the unit direction, in steps well below the spacing.
     private List<Point2> Follow(Point2 from, int sign)
     {
+        double strength = Strength(from);
+
+        // Tubes between lines narrow as the current grows denser, so lines may draw together on their way to a contact.
+        double Room(Point2 p) => Nearest * spacing * Math.Clamp(strength / Strength(p), Tightest, 1);
+
         List<Point2> line = [];
         double h = sign * spacing / 6;
         Point2 at = from;
@@ -91,7 +107,7 @@ internal sealed class Streamlines
             }
 
             Point2 next = at + (h / 6 * (k1 + (2 * k2) + (2 * k3) + k4));
-            if (Direction(next) is null || !IsFree(next, Nearest * spacing) || (k > 12 && Point2.Distance(next, from) < Math.Abs(h)))
+            if (Direction(next) is null || !IsFree(next, Room(next)) || (k > 12 && Point2.Distance(next, from) < Math.Abs(h)))
             {
                 break;
             }
@@ -103,7 +119,7 @@ internal sealed class Streamlines
         // A last short step up to the rim, by halving.
         for (double part = 0.5; part > 0.05 && line.Count < MostSteps; part /= 2)
         {
-            if (Direction(at) is { } d && Direction(at + (part * h * d)) is not null && IsFree(at + (part * h * d), Nearest * spacing))
+            if (Direction(at) is { } d && Direction(at + (part * h * d)) is not null && IsFree(at + (part * h * d), Room(at + (part * h * d))))
             {
                 at += part * h * d;
                 line.Add(at);
@@ -113,7 +129,11 @@ internal sealed class Streamlines
         return line;
     }
 
-    private Point2? Direction(Point2 p)
+    private Point2? Direction(Point2 p) => Vector(p) is { } v && v.Length > tiny ? 1 / v.Length * v : null;
+
+    private double Strength(Point2 p) => Math.Max(tiny, Vector(p)?.Length ?? 0);
+
+    private Point2? Vector(Point2 p)
     {
         if (!finder.Find(p.X, p.Y, out int t, out double wa, out double wb, out double wc))
         {
@@ -121,8 +141,7 @@ internal sealed class Streamlines
         }
 
         (int a, int b, int c) = (mesh.Triangles[3 * t], mesh.Triangles[(3 * t) + 1], mesh.Triangles[(3 * t) + 2]);
-        Point2 v = new((wa * vx[a]) + (wb * vx[b]) + (wc * vx[c]), (wa * vy[a]) + (wb * vy[b]) + (wc * vy[c]));
-        return v.Length > tiny ? 1 / v.Length * v : null;
+        return new((wa * vx[a]) + (wb * vx[b]) + (wc * vx[c]), (wa * vy[a]) + (wb * vy[b]) + (wc * vy[c]));
     }
 
     private (int I, int J) Box(Point2 p) => ((int)Math.Floor(p.X / spacing), (int)Math.Floor(p.Y / spacing));

@@ -1,6 +1,9 @@
 using System.Buffers.Binary;
+using System.Globalization;
 using System.Text.RegularExpressions;
 using System.Xml.Linq;
+using FieldSolve.Device;
+using FieldSolve.Geometry;
 using FieldSolve.Pictures;
 using FieldSolve.Readings;
 using SkiaSharp;
@@ -76,6 +79,55 @@ public sealed class DrivePicturesTests : IDisposable
     }
 
     [Fact]
+    public void A_linear_law_has_no_picture_of_even_parts()
+    {
+        DriveResult linear = SyntheticDrive.Make(rings: 2, mapSteps: [], linear: true);
+        Assert.Equal(
+            ["device", "curves", "mesh", "convergence"], DrivePictures.Write(linear, folder, CancellationToken.None).Select(p => p.Kind));
+    }
+
+    [Fact]
+    public void A_contact_in_both_pairs_shows_both_and_a_terminal_in_none_shows_its_bare_name()
+    {
+        Wiring first = Disc.Device.Wirings[0];
+        DriveResult shared = Disc with
+        {
+            Device = Disc.Device with { Wirings = [first with { Across = new("across", first.Along!.Plus, first.Across!.Minus) }] },
+            Maps = [],
+        };
+        string[] texts = Texts(DrivePictures.Write(shared, folder, CancellationToken.None)[0]);
+        Assert.Contains("c6 (∥+, ⊥+)", texts);
+        Assert.Contains("c10 (⊥−)", texts);
+        Assert.Contains("c4", texts);
+        Assert.Contains("p1", texts);
+        Assert.Contains("I", texts);
+    }
+
+    [Fact]
+    public void All_panels_of_the_device_have_the_same_ticks()
+    {
+        string[] texts = Texts(DrivePictures.Write(Disc with { Maps = [] }, folder, CancellationToken.None)[0]);
+        Assert.All(texts.Where(t => double.TryParse(t.Replace('−', '-'), CultureInfo.InvariantCulture, out _)).CountBy(t => t), t => Assert.Equal(0, t.Value % 3));
+        Assert.Contains("−2", texts);
+    }
+
+    [Fact]
+    public void A_contact_round_a_whole_loop_has_no_arrow_and_its_name_stands_in_the_hole()
+    {
+        DriveResult ring = SyntheticDrive.Make(inner: 1.5e-6, rings: 2, mapSteps: []);
+        Curve hole = Curve.Arc(default, 1.5e-6, 0, -2 * Math.PI);
+        Contact[] contacts = [.. ring.Device.Contacts];
+        contacts[6] = new("inner", ContactKind.Edge, 0, 0, [hole], hole.Length) { Middle = hole.At(0.5) };
+        Assert.True(SheetFrame.IsLoop(contacts[6]));
+        Assert.False(SheetFrame.IsLoop(contacts[0]));
+        ring = ring with { Device = ring.Device with { Contacts = contacts, Wirings = [ring.Device.Wirings[0]] } };
+        PictureFile picture = DrivePictures.Write(ring, folder, CancellationToken.None)[0];
+        string[] texts = Texts(picture);
+        Assert.Contains("inner (I+)", texts);
+        Assert.DoesNotContain("I", texts);
+    }
+
+    [Fact]
     public void A_drive_at_zero_current_draws()
     {
         DriveResult zero = SyntheticDrive.Make(rings: 4, mapSteps: [0]);
@@ -110,6 +162,9 @@ public sealed class DrivePicturesTests : IDisposable
         using SKFont font = new(EmbeddedFont.Typeface, 12);
         Assert.All("µΩ²∥⊥−±°…·⁻⁰¹³⁴⁹\u202f", c => Assert.True(font.ContainsGlyph(c), $"U+{(int)c:X4}"));
     }
+
+    private static string[] Texts(PictureFile picture) =>
+        [.. XDocument.Load(picture.SvgPath).Descendants().Where(e => e.Name.LocalName == "text").Select(e => e.Value.Trim())];
 
     // Images are base64, where any letters may meet.
     private static string DrawnText(string svg) => Regex.Replace(svg, "base64,[^\"]*", "");

@@ -25,6 +25,14 @@ public class NumberTextTests
     }
 
     [Theory]
+    [InlineData(186.4, 2, "190")]
+    [InlineData(0.00012345, 3, "0.000123")]
+    [InlineData(-4.2e7, 2, "−4.2·10⁷")]
+    [InlineData(9.9e-13, 2, "9.9·10⁻¹³")]
+    public void Numbers_are_written_without_computer_powers(double value, int digits, string expected) =>
+        Assert.Equal(expected, SiScale.Number(value, digits));
+
+    [Theory]
     [InlineData(2.1e-3, "mV²", 1e6)]
     [InlineData(3e-8, "µV²", 1e12)]
     [InlineData(2.5, "V²", 1)]

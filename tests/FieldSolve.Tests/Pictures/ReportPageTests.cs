@@ -61,6 +61,16 @@ public sealed class ReportPageTests : IDisposable
     }
 
     [Fact]
+    public void A_linear_law_shows_no_slope_and_the_page_counts_rows_that_are_not_ok()
+    {
+        string bent = Page(SyntheticDrive.Make(rings: 2, mapSteps: [])), linear = Page(SyntheticDrive.Make(rings: 2, mapSteps: [], linear: true));
+        Assert.Contains("<td>&#8722;0.023400 &#177; 0.000023</td>".Replace("&#8722;", "−", StringComparison.Ordinal), bent, StringComparison.Ordinal);
+        Assert.DoesNotContain("0.023400", linear, StringComparison.Ordinal);
+        Assert.Contains("32 of 33 rows are ok. Not ok: 1 outside-law;", bent, StringComparison.Ordinal);
+        Assert.DoesNotContain("transverse", bent, StringComparison.OrdinalIgnoreCase);
+    }
+
+    [Fact]
     public void The_page_does_not_depend_on_the_culture()
     {
         DriveResult result = SyntheticDrive.Make(rings: 2, mapSteps: [10]);

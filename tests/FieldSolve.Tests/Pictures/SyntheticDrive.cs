@@ -21,9 +21,10 @@ internal static class SyntheticDrive
     /// <param name="inner">Radius of the hole in metres; 0 for a disc.</param>
     /// <param name="rings">Rings of triangles from the centre to the rim.</param>
     /// <param name="mapSteps">Positions in the drive at which each wiring has a map.</param>
-    public static DriveResult Make(string title = "Disc with twelve arms", double inner = 0, int rings = 16, int[]? mapSteps = null)
+    /// <param name="linear">What the law says of itself.</param>
+    public static DriveResult Make(string title = "Disc with twelve arms", double inner = 0, int rings = 16, int[]? mapSteps = null, bool linear = false)
     {
-        SheetDevice device = Device(title, inner);
+        SheetDevice device = Device(title, inner, linear);
         TriangleMesh mesh = Mesh(device.Domain, inner, rings);
         IReadOnlyList<double> currents = device.Drive!.Currents;
         List<CurveRow> rows = [], reversed = [];
@@ -89,7 +90,7 @@ internal static class SyntheticDrive
         ])),
     ];
 
-    private static SheetDevice Device(string title, double inner)
+    private static SheetDevice Device(string title, double inner, bool linear)
     {
         double half = ContactWidth / Radius / 2;
         List<Point2> vertices = [];
@@ -138,7 +139,7 @@ internal static class SyntheticDrive
             Domain = new(vertices, edges, [], [vertices.Count - 1]),
             Shape = inner > 0 ? "ring" : "disc",
             Drawn = drawn,
-            Law = new PlainLaw(),
+            Law = new PlainLaw(linear),
             Axis = Math.PI / 6,
             Contacts = contacts,
             Tips = [tip],
@@ -258,11 +259,11 @@ internal static class SyntheticDrive
         };
     }
 
-    private sealed class PlainLaw : ISheetLaw
+    private sealed class PlainLaw(bool linear) : ISheetLaw
     {
         public string Kind => "ohmic";
 
-        public bool IsLinear => true;
+        public bool IsLinear => linear;
 
         public Tensor2 AtZeroField => new(Conductance, 0, 0, Conductance);
 

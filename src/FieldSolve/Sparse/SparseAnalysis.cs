@@ -44,6 +44,9 @@ public sealed class SparseAnalysis
     /// <summary>Stored non-zeros of L and U together (the unit diagonal of L not counted), explicit zeros of merged supernodes included.</summary>
     public long FactorNonZeros { get; }
 
+    /// <summary>Non-zeros of L and U in the order chosen, without the explicit zeros; both diagonals counted.</summary>
+    internal long ExactNonZeros => Tree.ExactNonZeros;
+
     /// <summary>Additions and multiplications of one factorisation.</summary>
     public double Flops { get; }
 

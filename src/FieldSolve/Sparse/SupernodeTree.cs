@@ -28,6 +28,9 @@ internal sealed class SupernodeTree
     /// <summary>Steps below the block of each supernode, ascending.</summary>
     public required int[] Rows { get; init; }
 
+    /// <summary>Non-zeros of L and U without the explicit zeros of merged supernodes, both diagonals counted.</summary>
+    public required long ExactNonZeros { get; init; }
+
     /// <summary>Number of supernodes.</summary>
     public int Count => Parent.Length;
 
@@ -81,7 +84,7 @@ internal sealed class SupernodeTree
             height[t] = count[first[t]];
         }
         int[] group = Merge(nodeParent, width, height);
-        return Renumber(pattern, order, first, nodeParent, group, height, width, cancel);
+        return Renumber(pattern, order, first, nodeParent, group, height, width, 2 * count.Sum(c => (long)c), cancel);
     }
 
     // Merges children into parents where the time model says that one larger block is faster, in spite of its zeros.
@@ -122,7 +125,8 @@ internal sealed class SupernodeTree
     }
 
     private static SupernodeTree Renumber(
-        SymmetricPattern pattern, int[] order, List<int> first, int[] nodeParent, int[] group, int[] height, int[] width, CancellationToken cancel)
+        SymmetricPattern pattern, int[] order, List<int> first, int[] nodeParent, int[] group, int[] height, int[] width, long exact,
+        CancellationToken cancel)
     {
         int n = order.Length, nodes = nodeParent.Length, groups = 0;
         int[] number = new int[nodes];
@@ -183,7 +187,7 @@ internal sealed class SupernodeTree
                 }
             }
         }
-        return new SupernodeTree { Order = newOrder, Step = step, First = start, Parent = parent, RowStart = rowStart, Rows = rows };
+        return new SupernodeTree { Order = newOrder, Step = step, First = start, Parent = parent, RowStart = rowStart, Rows = rows, ExactNonZeros = exact };
     }
 
     /// <summary>Inverse of a permutation.</summary>

@@ -1,3 +1,4 @@
+using FieldSolve.Fields;
 using FieldSolve.Geometry;
 using FieldSolve.Meshing;
 using FieldSolve.Meshing.SizeFields;
@@ -51,7 +52,15 @@ internal sealed record DiscMatrix(SymmetricPattern Pattern, double[] Values, dou
             rim.Add(e.B);
         }
 
-        var middles = new Dictionary<long, int>();
+        int[] edge = [];
+        if (quadratic)
+        {
+            (edge, int edges) = EdgeNumbers.Of(mesh);
+            nodes += edges;
+            x.AddRange(new double[edges]);
+            y.AddRange(new double[edges]);
+        }
+
         for (int t = 0; t < mesh.TriangleCount; t++)
         {
             for (int k = 0; k < 3; k++)
@@ -62,23 +71,17 @@ internal sealed record DiscMatrix(SymmetricPattern Pattern, double[] Values, dou
                     continue;
                 }
 
-                long key = ((long)Math.Min(a, b) << 32) + Math.Max(a, b);
-                if (!middles.TryGetValue(key, out int m))
-                {
-                    middles[key] = m = nodes++;
-                    x.Add(0.5 * (x[a] + x[b]));
-                    y.Add(0.5 * (y[a] + y[b]));
-                }
-
+                int m = mesh.VertexCount + edge[(3 * t) + k];
+                (x[m], y[m]) = (0.5 * (x[a] + x[b]), 0.5 * (y[a] + y[b]));
                 node[(per * t) + 3 + k] = m;
             }
         }
 
         foreach (MeshEdge e in mesh.Edges)
         {
-            if (middles.TryGetValue(((long)Math.Min(e.A, e.B) << 32) + Math.Max(e.A, e.B), out int m))
+            if (quadratic)
             {
-                rim.Add(m);
+                rim.Add(mesh.VertexCount + edge[(3 * e.LeftTriangle) + EdgeNumbers.LocalEdge(mesh, e.LeftTriangle, e.A, e.B)]);
             }
         }
 

@@ -23,11 +23,11 @@ internal static class DeviceText
             + $"{Engineering.Text(device.Domain.Size, "m", 4)} across the corners"
             + (device.DeadEdge > 0 ? $", dead edge {Engineering.Text(device.DeadEdge, "m")}" : "")
             + (device.Thickness is { } t ? $", {Engineering.Text(t, "m")} thick" : ""));
-        Line("law", LawSummary.Describe(device.Law));
+        Line("law", LawSummary.Describe(device.Law).ReplaceLineEndings("\n" + new string(' ', 11)));
         Line("axis", string.Create(CultureInfo.InvariantCulture, $"crystal a at {device.Axis * 180 / Math.PI:G6} deg from lab x"));
         foreach (Contact c in device.Contacts)
         {
-            Line("contact", $"{c.Name}: {Place(c)}, {Engineering.Text(c.Width, "m")} {(c.Kind == ContactKind.Edge ? "wide" : "across")}{Resistance(c)}");
+            Line("contact", $"{c.Name}: {Place(device, c)}, {Engineering.Text(c.Width, "m")} {(c.Kind == ContactKind.Edge ? "wide" : "across")}{Resistance(c)}");
         }
 
         foreach (Tip p in device.Tips)
@@ -95,8 +95,12 @@ internal static class DeviceText
 
     private static string Name(SheetDevice device, Device.Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;
 
-    private static string Place(Contact c) =>
-        $"{(c.Kind == ContactKind.Edge ? "edge" : "pad")} at ({Engineering.Text(c.Middle.X, "m", 4)}, {Engineering.Text(c.Middle.Y, "m", 4)})";
+    private static string Place(SheetDevice device, Contact c)
+    {
+        // Rounding leaves 1e-22 m where 0 is meant.
+        string Text(double x) => Engineering.Text(Math.Abs(x) < 1e-9 * device.Domain.Size ? 0 : x, "m", 4);
+        return $"{(c.Kind == ContactKind.Edge ? "edge" : "pad")} at ({Text(c.Middle.X)}, {Text(c.Middle.Y)})";
+    }
 
     private static string Resistance(Contact c) => c.LineResistance > 0
         ? $", {Engineering.Text(c.LineResistance, "ohm m")}"

@@ -10,14 +10,17 @@ namespace FieldSolve.Cli;
 /// <summary>Writes the results of a drive into its folder; each file appears whole or not at all.</summary>
 internal static class DriveFiles
 {
+    /// <summary>What to write, and what run.json says about how it came about.</summary>
+    internal sealed record Choices(MapChoice Maps, bool AllSigns, bool Pictures, bool Quick);
+
     public static void Write(
-        DriveResult result, string folder, MapChoice maps, bool allSigns, bool pictures, Terminal terminal, CancellationToken cancel)
+        DriveResult result, string folder, Choices choices, Terminal terminal, CancellationToken cancel)
     {
         CurvesCsv.Write(
-            Path.Combine(folder, "curves.csv"), result.Device.Wirings, result.Rows, allSigns ? result.ReversedRows : null);
+            Path.Combine(folder, "curves.csv"), result.Device.Wirings, result.Rows, choices.AllSigns ? result.ReversedRows : null);
         var clock = new StageClock();
-        clock.Time("maps", () => Maps(result, folder, maps, terminal));
-        if (pictures)
+        clock.Time("maps", () => Maps(result, folder, choices.Maps, terminal));
+        if (choices.Pictures)
         {
             terminal.Report(new("drawing pictures", 0, 0));
             clock.Time("pictures", () =>
@@ -33,9 +36,10 @@ internal static class DriveFiles
             "drive",
             new Dictionary<string, string>
             {
-                ["maps"] = maps.ToString().ToLower(CultureInfo.InvariantCulture),
-                ["all-signs"] = allSigns ? "true" : "false",
-                ["pictures"] = pictures ? "true" : "false",
+                ["maps"] = choices.Maps.ToString().ToLower(CultureInfo.InvariantCulture),
+                ["all-signs"] = choices.AllSigns ? "true" : "false",
+                ["pictures"] = choices.Pictures ? "true" : "false",
+                ["quick"] = choices.Quick ? "true" : "false",
             });
     }
 

@@ -26,7 +26,7 @@ internal static class DriveText
             if (s.Slope is { } line)
             {
                 Line("V_across_even / V_along_odd²", string.Create(
-                    CultureInfo.InvariantCulture, $"{line.Slope:G6} 1/V +- {line.SlopeError:G2} (R² = {line.RSquared:F6}, {line.Points} rows)"));
+                    CultureInfo.InvariantCulture, $"{line.Slope:G6} 1/V{(line.Points > 2 ? FormattableString.Invariant($" +- {line.SlopeError:G2}") : "")} (R² = {line.RSquared:F6}, {line.Points} rows)"));
             }
 
             Line("law left from", s.LeftLawAt is { } left ? Engineering.Text(left, "A") : "nowhere");

@@ -51,9 +51,9 @@ internal sealed class Terminal(bool quiet) : IProgress<RunProgress>
             Console.Out.Write(text);
             Console.Out.Flush();
         }
-        catch (IOException)
+        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
         {
-            // The reader went away, for example "| head"; the results are in the files.
+            // The reader went away, for example "| head", or standard output was closed from the start; the results are in the files.
         }
     }
 }

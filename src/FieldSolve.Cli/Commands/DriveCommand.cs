@@ -12,7 +12,9 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve drive DEVICE --out DIR.</summary>
 internal static class DriveCommand
 {
-    private sealed record Choices(string Device, string Folder, MapChoice Maps, bool AllSigns, bool Pictures, bool Quiet, bool Json);
+    private const double QuickFactor = 10;
+
+    private sealed record Choices(string Device, string Folder, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json);
 
     public static Command Create()
     {
@@ -28,12 +30,13 @@ internal static class DriveCommand
         maps.AcceptOnlyFromAmong("all", "last", "none");
         var allSigns = new Option<bool>("--all-signs") { Description = "Also write the rows at the reversed currents." };
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; curves, maps and run.json only." };
+        var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
         var command = new Command(
             "drive",
             "Potential, field, current and probe voltages as the drive increases.\n\n"
             + "Example: fieldsolve drive meshes/disc-12.toml --out results --maps all")
         {
-            device, folder, maps, allSigns, noPictures, quiet, json,
+            device, folder, maps, allSigns, noPictures, quick, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -45,6 +48,7 @@ internal static class DriveCommand
                     Enum.Parse<MapChoice>(parsed.GetValue(maps)!, ignoreCase: true),
                     parsed.GetValue(allSigns),
                     !parsed.GetValue(noPictures),
+                    parsed.GetValue(quick),
                     parsed.GetValue(quiet),
                     parsed.GetValue(json)),
                 cancel));
@@ -66,12 +70,21 @@ internal static class DriveCommand
             return ExitCode.WrongInput;
         }
 
+        if (choices.Quick)
+        {
+            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+        }
+
         var terminal = new Terminal(choices.Quiet);
         DriveResult result;
         try
         {
             result = DriveRun.Execute(
                 device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, terminal, cancel);
+            if (choices.Quick)
+            {
+                result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
+            }
         }
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
         {
@@ -81,7 +94,8 @@ internal static class DriveCommand
         }
 
         Directory.CreateDirectory(choices.Folder);
-        DriveFiles.Write(result, choices.Folder, choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, terminal, cancel);
+        DriveFiles.Write(
+            result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick), terminal, cancel);
         terminal.Clear();
         foreach (string text in result.Cautions)
         {

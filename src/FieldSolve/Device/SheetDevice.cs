@@ -148,7 +148,7 @@ public sealed record DriveSpec(double From, double To, int Steps, bool BothSigns
     /// <summary>The list of currents, A.</summary>
     public IReadOnlyList<double> Currents { get; } = Steps == 1
         ? [From]
-        : [.. Enumerable.Range(0, Steps).Select(k => k == Steps - 1 ? To : From + ((To - From) * k / (Steps - 1)))];
+        : [.. Enumerable.Range(0, Steps).Select(k => ((From * (Steps - 1 - k)) + (To * k)) / (Steps - 1))];
 }
 
 /// <summary>Wanted numerical accuracy.</summary>

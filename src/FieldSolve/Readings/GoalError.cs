@@ -24,12 +24,16 @@ internal sealed class GoalError
     /// <summary>What remains on the fine mesh, in absolute value, by coarse triangle, V.</summary>
     public double[] PerTriangle { get; }
 
+    /// <summary>The same for a larger or smaller drive of a linear sheet.</summary>
+    public GoalError Times(double factor) => new(factor * Bar, [.. PerTriangle.Select(e => factor * e)]);
+
     /// <summary>Collects the contributions.</summary>
     /// <param name="between">Coarse and fine space.</param>
     /// <param name="remaining">Per coarse triangle: error left on the fine mesh, as a share of the difference.</param>
+    /// <param name="allowance">Factor on all contributions, for what the known rates of convergence do not cover.</param>
     /// <param name="terms">Pairs of fine residual (A) of the coarse solution and adjoint detail (ohm), with a factor each.</param>
     public static GoalError Of(
-        Prolongation between, double[] remaining, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
+        Prolongation between, double[] remaining, double allowance, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
     {
         double smooth = 0, smoothSize = 0, singular = 0, singularSize = 0;
         double[] perTriangle = new double[remaining.Length];
@@ -45,7 +49,7 @@ internal sealed class GoalError
 
             int first = between.Parent[k], second = between.Second[k];
             double share = second < 0 ? remaining[first] : Math.Max(remaining[first], remaining[second]);
-            eta *= share;
+            eta *= share * allowance;
             double size = Math.Abs(eta);
             if (share > usual)
             {

@@ -36,7 +36,7 @@ public static class DriveRun
 
         var work = new DriveWork(device, options, refinement.Meshes, plans);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
-        (List<CurveRow> rows, List<CurveRow> reversed) = work.Rows(new RowMaker(device, largest, refinement.Goals), largest);
+        (List<CurveRow> rows, List<CurveRow> reversed) = work.Rows(new RowMaker(device, refinement.Goals));
         FieldLevel fine = refinement.Meshes.Fine;
         return new DriveResult
         {

@@ -79,7 +79,7 @@ internal sealed class DriveWork
     }
 
     /// <summary>The rows whose states are all there.</summary>
-    public (List<CurveRow> Rows, List<CurveRow> Reversed) Rows(RowMaker maker, double largest)
+    public (List<CurveRow> Rows, List<CurveRow> Reversed) Rows(RowMaker maker)
     {
         var rows = new List<CurveRow>();
         var reversed = new List<CurveRow>();

@@ -1,5 +1,6 @@
 using FieldSolve.Device;
 using FieldSolve.Geometry;
+using FieldSolve.Laws;
 using FieldSolve.Meshing;
 using FieldSolve.Meshing.SizeFields;
 
@@ -26,10 +27,14 @@ internal static class MeshSizes
     public static ISizeField First(SheetDevice device)
     {
         Domain domain = device.Domain;
-        double background = domain.Size / FirstAcross;
+
+        // An anisotropic sheet is an isotropic one stretched by the square root of its ratio (J. D. Wasscher, Philips Res. Rep. 16, 301 (1961)).
+        Tensor2 tensor = device.Law.AtZeroField;
+        double stretch = Math.Clamp(Math.Pow(Math.Max(tensor.Aa / tensor.Bb, tensor.Bb / tensor.Aa), 0.25), 1, 2);
+        double background = domain.Size / (FirstAcross * stretch);
         var points = SingularPoints.Of(domain)
             .Select(p => new SizePoint(
-                domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ContactEndFirst * p.Reach), FirstGrowth))
+                domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ContactEndFirst * p.Reach / stretch), FirstGrowth))
             .ToList();
         return new GradedSize(background, points);
     }

@@ -1,6 +1,7 @@
 using FieldSolve.Device;
 using FieldSolve.Laws;
 using FieldSolve.Meshing;
+using FieldSolve.Meshing.SizeFields;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -12,6 +13,10 @@ internal sealed class Refinement
 
     // Quadratic triangles have about two nodes each, and the split has four times as many triangles.
     private const double UnknownsPerCoarseTriangle = 8.2;
+
+    // A level that brings the worst reading down to no less than this share of what it was is a stall; two in a row end the refinement.
+    private const double StallShare = 0.8;
+    private const int MostStalls = 2;
 
     // Even parts below this share of the along voltage are zero for all purposes (often by symmetry); do not chase them.
     private const double EvenFloor = 1e-8;
@@ -57,39 +62,82 @@ internal sealed class Refinement
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
         IReadOnlyList<GoalMeasure> goals = [];
+
+        // All currents zero: the errors are zero too, but one ampere tells whether the mesh is any good. A wiring that cannot carry the largest current
+        // is measured at what it carried on the mesh before.
+        double[] currents = [.. plans.Select(_ => largest == 0 ? 1 : largest)];
+        double[] lower = [.. device.Drive!.Currents.Select(Math.Abs).Where(c => c > 0).Distinct().OrderDescending()];
+        int mostTriangles = (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle);
+        double worst = double.PositiveInfinity;
+        int stalls = 0;
         for (int level = 0; ; level++)
         {
-            TriangleMesh mesh = clock.Time("mesh", () => Mesher.Generate(device.Domain, size, null, cancel));
-            if (best is not null && UnknownsPerCoarseTriangle * mesh.TriangleCount > device.Mesh.MaxUnknowns)
+            TriangleMesh? mesh = clock.Time("mesh", () => Mesh(device, size, best is null ? int.MaxValue : mostTriangles, cancel));
+            if (mesh is null)
             {
-                return new(best, goals, levels, false);
+                return new(best!, goals, levels, false);
             }
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, largest, bothSigns, cancel));
-            (best, goals) = (meshes, measured);
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, lower, bothSigns, cancel));
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));
-            bool met = measured.All(g => g.Error.Bar <= g.Wanted);
-            if (met || level == MostLevels - 1 || measured.Count == 0)
+            double now = measured.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
+            if (best is null || now <= worst)
             {
-                return new(best, goals, levels, met);
+                (best, goals) = (meshes, measured);
             }
 
-            size = MeshSizes.Next(meshes, measured, level, (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle * 0.95));
+            stalls = now > StallShare * worst ? stalls + 1 : 0;
+            worst = Math.Min(worst, now);
+            if (now <= 1 || level == MostLevels - 1 || stalls == MostStalls)
+            {
+                return new(best, goals, levels, worst <= 1);
+            }
+
+            size = MeshSizes.Next(meshes, measured, level, (int)(0.95 * mostTriangles));
         }
     }
 
-    private static List<GoalMeasure> Measure(
-        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, CancellationToken cancel)
+    // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
+    private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
     {
-        // All currents zero: the errors are zero too, but one ampere tells whether the mesh is any good.
-        double current = largest == 0 ? 1 : largest;
+        double stretch = 1;
+        for (int attempt = 0; attempt < 4; attempt++)
+        {
+            try
+            {
+                TriangleMesh mesh = Mesher.Generate(device.Domain, stretch == 1 ? size : new StretchedSize(size, stretch), null, cancel);
+                if (mesh.TriangleCount <= mostTriangles)
+                {
+                    return mesh;
+                }
+
+                stretch *= Math.Sqrt(1.1 * mesh.TriangleCount / mostTriangles);
+            }
+            catch (MeshException) when (mostTriangles < int.MaxValue)
+            {
+                // The sizes ask for more triangles than any mesh may have.
+                stretch *= 4;
+            }
+        }
+
+        return null;
+    }
+
+    private static List<GoalMeasure> Measure(
+        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double[] currents, double[] lower, bool bothSigns, CancellationToken cancel)
+    {
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
-            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], current, bothSigns, cancel));
+            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], currents[k], lower, bothSigns, cancel));
+        for (int k = 0; k < plans.Count; k++)
+        {
+            currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];
+        }
+
         double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
         var all = new List<GoalMeasure>();

@@ -10,13 +10,11 @@ internal sealed class RowMaker
     private const double RoundingShare = 2e-13;
 
     private readonly SheetDevice device;
-    private readonly double largest;
     private readonly IReadOnlyList<GoalMeasure> goals;
 
-    public RowMaker(SheetDevice device, double largest, IReadOnlyList<GoalMeasure> goals)
+    public RowMaker(SheetDevice device, IReadOnlyList<GoalMeasure> goals)
     {
         this.device = device;
-        this.largest = largest == 0 ? 1 : Math.Abs(largest);
         this.goals = goals;
     }
 
@@ -80,8 +78,8 @@ internal sealed class RowMaker
         return outside ? RowStatus.OutsideLaw : coarse && along > 0 ? RowStatus.ErrorAboveWanted : RowStatus.Ok;
     }
 
-    // The bar at the largest current comes with its origin; at other currents it scales like the reading (I, or I² for the even part), unless
-    // the difference between the two meshes says that it grew faster.
+    // The bar is known in the limit of small drive and at the largest current. In between it follows the difference of the two meshes: where that
+    // difference still is the one of small drive, so is the bar; an even part goes like I² and its bar no lower than a third of that.
     private double Bar(ReadingPlan plan, int pair, bool even, double current, double difference)
     {
         if (current == 0)
@@ -89,15 +87,24 @@ internal sealed class RowMaker
             return 0;
         }
 
-        double ratio = Math.Abs(current) / largest, scale = even ? ratio * ratio : ratio;
         GoalMeasure? goal = goals.FirstOrDefault(g => g.Plan == plan && g.Pair == pair && g.IsEven == even);
         if (goal is null)
         {
             return Math.Abs(difference);
         }
 
-        double usual = scale * goal.Error.Bar, expected = scale * Math.Abs(goal.Difference);
-        double excess = Math.Abs(difference) - expected;
-        return usual + (excess > 0 ? excess * Math.Min(1, goal.Error.Bar / Math.Max(Math.Abs(goal.Difference), double.Epsilon)) : 0);
+        double ratio = Math.Abs(current / goal.Current);
+        if (even)
+        {
+            double expected = ratio * ratio * Math.Abs(goal.Difference);
+            double share = expected > 0 ? Math.Abs(difference) / expected : 1;
+            return ratio * ratio * goal.Error.Bar * Math.Clamp(share, 1.0 / 3, Math.Max(1, ratio));
+        }
+
+        double size = Math.Abs(current), weak = goal.WeakBar * size, strong = goal.Error.Bar * ratio;
+        double towards = (goal.Difference * ratio * Math.Sign(goal.Current)) - (goal.WeakDifference * size);
+        double here = (difference * Math.Sign(current)) - (goal.WeakDifference * size);
+        double along = towards == 0 ? 1 : Math.Min(Math.Abs(here / towards), Math.Max(1, ratio));
+        return Math.Max(weak + (along * (strong - weak)), Math.Min(weak, strong));
     }
 }

@@ -6,7 +6,7 @@ namespace FieldSolve.Solving;
 /// </summary>
 public sealed class DrivePath
 {
-    private const int MostHalvings = 10;
+    private const int MostHalvings = 5;
     private const int MostPast = 4;
 
     private readonly FieldLevel level;

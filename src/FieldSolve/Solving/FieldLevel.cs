@@ -12,12 +12,15 @@ namespace FieldSolve.Solving;
 /// </summary>
 public sealed class FieldLevel
 {
-    private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero)
+    private readonly double[] atZeroValues;
+
+    private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
     {
         Space = space;
         Equations = equations;
         Analysis = analysis;
         AtZero = atZero;
+        this.atZeroValues = atZeroValues;
     }
 
     /// <summary>Nodes and unknowns.</summary>
@@ -45,7 +48,7 @@ public sealed class FieldLevel
         double[] values = new double[space.Pattern.Count + 1];
         equations.Jacobian(new double[equations.Length], values);
         factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
-        return new(space, equations, analysis, factor);
+        return new(space, equations, analysis, factor, values);
     }
 
     /// <summary>
@@ -58,6 +61,13 @@ public sealed class FieldLevel
         fed[Space.ContactUnknown[drain]] -= 1;
         AtZero.Solve(fed.AsSpan(0, Space.Size), u.AsSpan(0, Space.Size));
         return u;
+    }
+
+    /// <summary>The Jacobian at zero field times a vector of potentials, A.</summary>
+    public void ZeroFieldProduct(ReadOnlySpan<double> u, Span<double> current)
+    {
+        SparseProduct.Multiply(Space.Pattern, atZeroValues.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
+        current[Space.Size] = 0;
     }
 
     /// <summary>Potential differences V = phi(plus) - phi(minus) as the derivative with respect to the unknowns.</summary>

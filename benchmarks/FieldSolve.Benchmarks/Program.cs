@@ -1,0 +1,18 @@
+using BenchmarkDotNet.Configs;
+using BenchmarkDotNet.Exporters;
+using BenchmarkDotNet.Jobs;
+using BenchmarkDotNet.Running;
+using BenchmarkDotNet.Toolchains.InProcess.Emit;
+
+// "accuracy" prints benchmarks/accuracy.md instead of timing anything.
+if (args is ["accuracy"])
+{
+    FieldSolve.Benchmarks.AccuracyTables.Print(Console.Out);
+    return;
+}
+
+// Short runs inside this process: a whole round takes a few minutes. "--filter *Mesher*" picks one question, "--list flat" shows them all.
+ManualConfig config = ManualConfig.Create(DefaultConfig.Instance)
+    .AddJob(Job.ShortRun.WithToolchain(InProcessEmitToolchain.Instance))
+    .AddExporter(MarkdownExporter.GitHub);
+BenchmarkSwitcher.FromAssembly(typeof(FieldSolve.Benchmarks.Sample).Assembly).Run(args.Length == 0 ? ["--filter", "*"] : args, config);

@@ -76,7 +76,7 @@ internal static unsafe partial class Cholmod
 
         cholmod_finish(common);
         NativeMemory.Free(common);
-        return new(CpuClock.Median(analyse), CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes);
+        return new(CpuClock.Median(analyse), CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes, 0);
     }
 
     [StructLayout(LayoutKind.Sequential)]
@@ -97,13 +97,13 @@ internal static unsafe partial class Cholmod
     }
 
     [LibraryImport(Library)]
-    private static partial int cholmod_version(int* version);
+    private static partial void cholmod_version(int* version);
 
     [LibraryImport(Library)]
-    private static partial int cholmod_start(void* common);
+    private static partial void cholmod_start(void* common);
 
     [LibraryImport(Library)]
-    private static partial int cholmod_finish(void* common);
+    private static partial void cholmod_finish(void* common);
 
     [LibraryImport(Library)]
     private static partial void* cholmod_analyze(SparseMatrix* a, void* common);
@@ -115,8 +115,8 @@ internal static unsafe partial class Cholmod
     private static partial DenseMatrix* cholmod_solve(int system, void* factor, DenseMatrix* b, void* common);
 
     [LibraryImport(Library)]
-    private static partial int cholmod_free_dense(DenseMatrix** dense, void* common);
+    private static partial void cholmod_free_dense(DenseMatrix** dense, void* common);
 
     [LibraryImport(Library)]
-    private static partial int cholmod_free_factor(void** factor, void* common);
+    private static partial void cholmod_free_factor(void** factor, void* common);
 }

@@ -5,5 +5,6 @@ namespace FieldSolve.Benchmarks.Native;
 /// <param name="Factor">Seconds of the numeric phase.</param>
 /// <param name="Solve">Seconds of one solve without refinement.</param>
 /// <param name="NonZeros">Non-zeros of L and U, or of L and its transpose.</param>
-/// <param name="Bytes">Memory of the factor; 0 where the library does not tell.</param>
-internal sealed record Peer(double Analyse, double Factor, double Solve, double NonZeros, double Bytes);
+/// <param name="Bytes">Memory of the factor.</param>
+/// <param name="PeakBytes">Most memory of analysis and numeric phase together; 0 where the library does not tell.</param>
+internal sealed record Peer(double Analyse, double Factor, double Solve, double NonZeros, double Bytes, double PeakBytes);

@@ -13,13 +13,13 @@ internal static unsafe partial class Umfpack
     public static Peer Run(DiscMatrix matrix, bool metis, int runs)
     {
         // Places in the control and information arrays are those of version 5.
-        const int Ordering = 10, Strategy = 5, Steps = 7, Unit = 3, Size = 40, L = 43, U = 44;
+        const int Ordering = 10, Strategy = 5, Steps = 7, Unit = 3, Size = 40, Peak = 41, L = 43, U = 44;
         double* control = stackalloc double[20], info = stackalloc double[90];
         umfpack_di_defaults(control);
         (control[Strategy], control[Ordering], control[Steps]) = (3, metis ? 3 : 1, 0);
         int n = matrix.Size;
         double[] analyse = new double[runs], factor = new double[runs], solve = new double[runs], x = new double[n];
-        double nonZeros = 0, bytes = 0;
+        double nonZeros = 0, bytes = 0, peak = 0;
         fixed (int* start = matrix.Pattern.Start, column = matrix.Pattern.Column)
         fixed (double* values = matrix.Values, b = matrix.B, px = x)
         {
@@ -34,6 +34,7 @@ internal static unsafe partial class Umfpack
                 factor[r] = CpuClock.Now() - at;
                 nonZeros = info[L] + info[U];
                 bytes = info[Size] * info[Unit];
+                peak = info[Peak] * info[Unit];
                 at = CpuClock.Now();
                 Check(umfpack_di_solve(0, start, column, values, px, b, numeric, control, info));
                 solve[r] = CpuClock.Now() - at;
@@ -42,7 +43,7 @@ internal static unsafe partial class Umfpack
             }
         }
 
-        return new(CpuClock.Median(analyse), CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes);
+        return new(CpuClock.Median(analyse), CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes, peak);
     }
 
     private static void Check(int status)

@@ -11,6 +11,14 @@ if (args is ["accuracy"])
     return;
 }
 
+// "native" compares with SuiteSparse where it is installed; a second word is the largest number of unknowns.
+if (args is ["native", ..])
+{
+    int most = args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 1_000_000;
+    FieldSolve.Benchmarks.Native.NativeComparison.Print(Console.Out, most);
+    return;
+}
+
 // Short runs inside this process: a whole round takes a few minutes. "--filter *Mesher*" picks one question, "--list flat" shows them all.
 ManualConfig config = ManualConfig.Create(DefaultConfig.Instance)
     .AddJob(Job.ShortRun.WithToolchain(InProcessEmitToolchain.Instance))

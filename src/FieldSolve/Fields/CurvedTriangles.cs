@@ -9,16 +9,14 @@ internal sealed class CurvedTriangles
     private readonly FieldSpace space;
     private readonly int[] triangle;
     private readonly int[] unknown;     // 6 per triangle
-    private readonly int[] place;       // 36 per triangle
     private readonly double[] gradient; // per triangle and point: 6 pairs (dN/dx, dN/dy)
     private readonly double[] weight;   // per triangle and point, m²
 
-    public CurvedTriangles(FieldSpace space, MatrixPlaces places)
+    public CurvedTriangles(FieldSpace space)
     {
         this.space = space;
-        triangle = [.. Enumerable.Range(0, space.Mesh.TriangleCount).Where(t => space.Curved[t])];
+        triangle = space.TrianglesThatAre(curved: true);
         unknown = new int[6 * triangle.Length];
-        place = new int[36 * triangle.Length];
         gradient = new double[12 * Q * triangle.Length];
         weight = new double[Q * triangle.Length];
         Span<double> slope = stackalloc double[12];
@@ -29,7 +27,6 @@ internal sealed class CurvedTriangles
                 unknown[(6 * e) + i] = space.Unknown[space.Nodes[(6 * triangle[e]) + i]];
             }
 
-            places.Fill(unknown.AsSpan(6 * e, 6), place.AsSpan(36 * e, 36));
             for (int q = 0; q < Q; q++)
             {
                 QuadraticShape.Slopes(TriangleRule.Lambda[3 * q], TriangleRule.Lambda[(3 * q) + 1], TriangleRule.Lambda[(3 * q) + 2], slope);
@@ -121,7 +118,7 @@ internal sealed class CurvedTriangles
 
             for (int k = 0; k < 36; k++)
             {
-                values[place[(36 * e) + k]] += block[k];
+                values[space.TrianglePlaces[(36 * triangle[e]) + k]] += block[k];
             }
         }
     }

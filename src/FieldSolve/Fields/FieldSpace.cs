@@ -35,7 +35,7 @@ public sealed class FieldSpace
 
         Curved = BendRim(edge);
         (Unknown, ContactUnknown, Size) = Number(edge);
-        Pattern = UnknownPattern.Build(this);
+        (Pattern, TrianglePlaces) = UnknownPattern.Build(this);
     }
 
     /// <summary>The triangles.</summary>
@@ -74,6 +74,12 @@ public sealed class FieldSpace
     /// <summary>Places of the matrix's non-zeros.</summary>
     public SymmetricPattern Pattern { get; }
 
+    /// <summary>
+    /// 36 per triangle: where the entries of its block (rows and columns as in <see cref="Nodes"/>, row by row) stand among the values of the
+    /// pattern; those in the row or column of the zero of the potential have the place behind the last value.
+    /// </summary>
+    internal int[] TrianglePlaces { get; }
+
     /// <summary>Builds the space.</summary>
     /// <param name="device">Gives the contacts.</param>
     /// <param name="mesh">Triangles of the device's domain.</param>
@@ -98,6 +104,20 @@ public sealed class FieldSpace
     /// <summary>The node in the middle of a rim piece or inner edge.</summary>
     internal int MiddleOf(MeshEdge e) =>
         Nodes[(6 * e.LeftTriangle) + 3 + EdgeNumbers.LocalEdge(Mesh, e.LeftTriangle, e.A, e.B)];
+
+    /// <summary>The straight or the curved triangles, ascending.</summary>
+    internal int[] TrianglesThatAre(bool curved)
+    {
+        int[] found = new int[Curved.Length];
+        int count = 0;
+        for (int t = 0; t < found.Length; t++)
+        {
+            found[count] = t;
+            count += Curved[t] == curved ? 1 : 0;
+        }
+
+        return found[..count];
+    }
 
     /// <summary>Coordinates of the unknowns for the ordering; a contact's metal stands at its middle.</summary>
     internal (double[] X, double[] Y) Places()

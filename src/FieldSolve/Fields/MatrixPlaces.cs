@@ -10,13 +10,6 @@ internal sealed class MatrixPlaces(FieldSpace space)
     public int[] Of(ReadOnlySpan<int> group)
     {
         int[] place = new int[group.Length * group.Length];
-        Fill(group, place);
-        return place;
-    }
-
-    /// <summary>As <see cref="Of"/>, into existing storage.</summary>
-    public void Fill(ReadOnlySpan<int> group, Span<int> place)
-    {
         int[] start = space.Pattern.Start, column = space.Pattern.Column;
         for (int i = 0; i < group.Length; i++)
         {
@@ -27,5 +20,7 @@ internal sealed class MatrixPlaces(FieldSpace space)
                     : Array.BinarySearch(column, start[group[i]], start[group[i] + 1] - start[group[i]], group[j]);
             }
         }
+
+        return place;
     }
 }

@@ -24,8 +24,8 @@ public sealed class SheetEquations
         Space = space;
         Law = law;
         var places = new MatrixPlaces(space);
-        straight = new StraightTriangles(space, places);
-        curved = new CurvedTriangles(space, places);
+        straight = new StraightTriangles(space);
+        curved = new CurvedTriangles(space);
         metals = MetalCoupling.Of(space);
         metalPlaces = [.. metals.Select(m => places.Of(Group(m)))];
     }

@@ -7,7 +7,7 @@ internal static class SheetParts
     /// <exception cref="FieldSpaceException">They do not.</exception>
     public static void RequireOne(FieldSpace space)
     {
-        int nodes = space.NodeCount;
+        int nodes = space.Mesh.VertexCount;   // the middles of edges hang on them
         int[] parent = new int[nodes + space.Contacts.Count];
         for (int i = 0; i < parent.Length; i++)
         {
@@ -26,7 +26,7 @@ internal static class SheetParts
 
         for (int t = 0; t < space.Mesh.TriangleCount; t++)
         {
-            for (int k = 1; k < 6; k++)
+            for (int k = 1; k < 3; k++)
             {
                 parent[Root(space.Nodes[(6 * t) + k])] = Root(space.Nodes[6 * t]);
             }

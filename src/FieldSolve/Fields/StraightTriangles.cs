@@ -17,33 +17,29 @@ internal sealed class StraightTriangles
     private readonly int padded;
     private readonly int[] triangle;
     private readonly int[] unknown;     // [i * padded + e], i = 0..5
-    private readonly int[] place;       // [36 e + k]
     private readonly double[] gx;       // [k * padded + e], d lambda_k / dx
     private readonly double[] gy;
     private readonly double[] area;     // m²; 0 in the padding
 
-    public StraightTriangles(FieldSpace space, MatrixPlaces places)
+    public StraightTriangles(FieldSpace space)
     {
         this.space = space;
-        triangle = [.. Enumerable.Range(0, space.Mesh.TriangleCount).Where(t => !space.Curved[t])];
+        triangle = space.TrianglesThatAre(curved: false);
         count = triangle.Length;
         padded = (count + Block - 1) / Block * Block;
         unknown = new int[6 * padded];
         Array.Fill(unknown, space.Size);
-        place = new int[36 * count];
         gx = new double[3 * padded];
         gy = new double[3 * padded];
         area = new double[padded];
-        Span<int> group = stackalloc int[6];
         for (int e = 0; e < count; e++)
         {
             ReadOnlySpan<int> nodes = space.Nodes.AsSpan(6 * triangle[e], 6);
             for (int i = 0; i < 6; i++)
             {
-                group[i] = unknown[(i * padded) + e] = space.Unknown[nodes[i]];
+                unknown[(i * padded) + e] = space.Unknown[nodes[i]];
             }
 
-            places.Fill(group, place.AsSpan(36 * e, 36));
             double x1 = space.NodeX[nodes[1]] - space.NodeX[nodes[0]], y1 = space.NodeY[nodes[1]] - space.NodeY[nodes[0]];
             double x2 = space.NodeX[nodes[2]] - space.NodeX[nodes[0]], y2 = space.NodeY[nodes[2]] - space.NodeY[nodes[0]];
             double twice = (x1 * y2) - (x2 * y1);
@@ -126,7 +122,7 @@ internal sealed class StraightTriangles
             int last = Math.Min(Block, count - first);
             for (int e = 0; e < last; e++)
             {
-                ReadOnlySpan<int> to = place.AsSpan(36 * (first + e), 36);
+                ReadOnlySpan<int> to = space.TrianglePlaces.AsSpan(36 * triangle[first + e], 36);
                 for (int k = 0; k < 36; k++)
                 {
                     values[to[k]] += block[(k * Block) + e];

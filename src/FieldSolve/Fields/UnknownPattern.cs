@@ -2,105 +2,162 @@ using FieldSolve.Sparse;
 
 namespace FieldSolve.Fields;
 
-/// <summary>Finds which unknowns couple: those that share a triangle or a metal.</summary>
+/// <summary>Finds which unknowns couple (those that share a triangle or a metal), and where the triangles' entries stand in the matrix.</summary>
 internal static class UnknownPattern
 {
-    /// <summary>The pattern of the Jacobian.</summary>
-    public static SymmetricPattern Build(FieldSpace space)
+    /// <summary>The pattern of the Jacobian, and 36 places per triangle: those of its 6 x 6 block, row by row.</summary>
+    /// <remarks>
+    /// Entries in the row or column of the zero of the potential have the place behind the last value.
+    /// </remarks>
+    public static (SymmetricPattern Pattern, int[] Places) Build(FieldSpace space)
     {
-        int n = space.Size;
-        int groups = space.Mesh.TriangleCount;
+        int n = space.Size, inTriangles = space.Nodes.Length;
         MetalCoupling[] metals = MetalCoupling.Of(space);
 
-        // Members of group g: unknowns of a triangle, or of a metal block with its contact.
-        int[] first = new int[groups + metals.Length + 1];
-        var members = new List<int>((6 * groups) + (7 * metals.Length));
-        void Add(int unknown, int from)
+        // Slots: six per triangle, then the nodes of each metal block with its contact. Group g of a metal block starts at first[g].
+        int[] first = new int[metals.Length + 1];
+        first[0] = inTriangles;
+        for (int g = 0; g < metals.Length; g++)
         {
-            if (unknown < n && members.IndexOf(unknown, from) < 0)
-            {
-                members.Add(unknown);
-            }
+            first[g + 1] = first[g] + metals[g].Nodes.Length + 1;
         }
 
-        for (int g = 0; g < first.Length - 1; g++)
+        int[] member = GC.AllocateUninitializedArray<int>(first[^1]), metalOf = new int[first[^1] - inTriangles];
+        for (int s = 0; s < inTriangles; s++)
         {
-            int from = first[g] = members.Count;
-            if (g < groups)
-            {
-                for (int i = 0; i < 6; i++)
-                {
-                    Add(space.Unknown[space.Nodes[(6 * g) + i]], from);
-                }
-            }
-            else
-            {
-                MetalCoupling m = metals[g - groups];
-                foreach (int node in m.Nodes)
-                {
-                    Add(space.Unknown[node], from);
-                }
-
-                Add(space.ContactUnknown[m.Contact], from);
-            }
+            member[s] = space.Unknown[space.Nodes[s]];
         }
 
-        first[^1] = members.Count;
-        (int[] start, int[] group) = Transpose(n, first, members);
-        return Join(n, first, members, start, group);
+        for (int g = 0; g < metals.Length; g++)
+        {
+            int s = first[g];
+            foreach (int node in metals[g].Nodes)
+            {
+                member[s++] = space.Unknown[node];
+            }
+
+            member[s] = space.ContactUnknown[metals[g].Contact];
+            metalOf.AsSpan(first[g] - inTriangles, first[g + 1] - first[g]).Fill(g);
+        }
+
+        (int[] start, int[] slot) = Slots(n, member);
+        (int[] rowStart, int[] unsorted) = Rows(n, inTriangles, member, start, slot, first, metalOf);
+        int[] column = Sorted(rowStart, unsorted);
+        return (new(rowStart, column), Places(n, inTriangles, member, start, slot, rowStart, column));
     }
 
-    private static (int[] Start, int[] Group) Transpose(int n, int[] first, List<int> members)
+    // The slots of each unknown.
+    private static (int[] Start, int[] Slot) Slots(int n, int[] member)
     {
-        int[] start = new int[n + 1];
-        foreach (int m in members)
+        int[] start = new int[n + 2];
+        foreach (int m in member)
         {
             start[m + 1]++;
         }
 
-        for (int i = 0; i < n; i++)
+        for (int i = 0; i <= n; i++)
         {
             start[i + 1] += start[i];
         }
 
-        int[] at = start[..n], group = new int[members.Count];
-        for (int g = 0; g < first.Length - 1; g++)
+        int[] at = start[..(n + 1)], slot = GC.AllocateUninitializedArray<int>(member.Length);
+        for (int s = 0; s < member.Length; s++)
         {
-            for (int k = first[g]; k < first[g + 1]; k++)
-            {
-                group[at[members[k]]++] = g;
-            }
+            slot[at[member[s]]++] = s;
         }
 
-        return (start, group);
+        return (start, slot);
     }
 
-    private static SymmetricPattern Join(int n, int[] first, List<int> members, int[] start, int[] group)
+    // The columns of each row in the order in which they are met.
+    private static (int[] Start, int[] Column) Rows(
+        int n, int inTriangles, int[] member, int[] start, int[] slot, int[] first, int[] metalOf)
     {
-        int[] rowStart = new int[n + 1], seen = new int[n];
-        Array.Fill(seen, -1);
-        var columns = new List<int>(12 * n);
+        int[] rowStart = new int[n + 1], seen = new int[n + 1], column = GC.AllocateUninitializedArray<int>(Math.Max(16, 12 * n));
+        int count = 0;
         for (int i = 0; i < n; i++)
         {
-            seen[i] = i;
-            columns.Add(i);
+            seen[i] = i + 1;
+            seen[n] = i + 1;
+            if (count == column.Length)
+            {
+                Array.Resize(ref column, 2 * count);
+            }
+
+            column[count++] = i;
             for (int k = start[i]; k < start[i + 1]; k++)
             {
-                for (int m = first[group[k]]; m < first[group[k] + 1]; m++)
+                int s = slot[k], from = s - (s % 6), to = from + 6;
+                if (s >= inTriangles)
                 {
-                    int j = members[m];
-                    if (seen[j] != i)
+                    int g = metalOf[s - inTriangles];
+                    (from, to) = (first[g], first[g + 1]);
+                }
+
+                if (column.Length - count < to - from)
+                {
+                    Array.Resize(ref column, 2 * (count + to - from));
+                }
+
+                for (int m = from; m < to; m++)
+                {
+                    int j = member[m];
+                    if (seen[j] != i + 1)
                     {
-                        seen[j] = i;
-                        columns.Add(j);
+                        seen[j] = i + 1;
+                        column[count++] = j;
                     }
                 }
             }
 
-            System.Runtime.InteropServices.CollectionsMarshal.AsSpan(columns)[rowStart[i]..].Sort();
-            rowStart[i + 1] = columns.Count;
+            rowStart[i + 1] = count;
         }
 
-        return new(rowStart, [.. columns]);
+        return (rowStart, column);
+    }
+
+    // The pattern is symmetric: going through the rows in ascending order, each row is met by its columns in ascending order.
+    private static int[] Sorted(int[] rowStart, int[] unsorted)
+    {
+        int n = rowStart.Length - 1;
+        int[] at = rowStart[..n], column = GC.AllocateUninitializedArray<int>(rowStart[n]);
+        for (int i = 0; i < n; i++)
+        {
+            foreach (int j in unsorted.AsSpan(rowStart[i]..rowStart[i + 1]))
+            {
+                column[at[j]++] = i;
+            }
+        }
+
+        return column;
+    }
+
+    private static int[] Places(int n, int inTriangles, int[] member, int[] start, int[] slot, int[] rowStart, int[] column)
+    {
+        int[] places = GC.AllocateUninitializedArray<int>(6 * inTriangles), where = new int[n + 1];
+        where[n] = column.Length;
+        for (int i = 0; i < n; i++)
+        {
+            for (int k = rowStart[i]; k < rowStart[i + 1]; k++)
+            {
+                where[column[k]] = k;
+            }
+
+            for (int k = start[i]; k < start[i + 1] && slot[k] < inTriangles; k++)
+            {
+                int s = slot[k], from = s - (s % 6);
+                for (int b = 0; b < 6; b++)
+                {
+                    places[(6 * s) + b] = where[member[from + b]];
+                }
+            }
+        }
+
+        for (int k = start[n]; k < start[n + 1] && slot[k] < inTriangles; k++)
+        {
+            places.AsSpan(6 * slot[k], 6).Fill(column.Length);
+        }
+
+        return places;
     }
 }

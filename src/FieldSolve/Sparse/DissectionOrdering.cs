@@ -10,14 +10,15 @@ internal sealed class DissectionOrdering
 {
     private const int LeafSize = 256;
     private const int Samples = 512;
+    private const int Dense = -1;
 
     /// <summary>Vertices across the band in which the smallest cut is sought, for a round piece.</summary>
     private const double BandLayers = 6;
 
     private readonly CancellationToken cancel;
-    private readonly int[] order;
+    private readonly int leafSize;
+    private readonly DissectionTree tree;
     private readonly bool hasPlaces;
-    private readonly LeafOrdering leaves;
     private readonly VertexCut cut = new();
     private readonly GraphPieces pieces;
     private readonly double[] sample = new double[Samples];
@@ -29,13 +30,13 @@ internal sealed class DissectionOrdering
     private readonly int[] bandVertex;
     private readonly int[] queue;
 
-    private DissectionOrdering(SymmetricPattern pattern, GraphPieces pieces, int size, bool hasPlaces, int[] order, CancellationToken cancel)
+    private DissectionOrdering(GraphPieces pieces, int size, int leafSize, bool hasPlaces, DissectionTree tree, CancellationToken cancel)
     {
         this.cancel = cancel;
-        this.order = order;
+        this.leafSize = leafSize;
         this.hasPlaces = hasPlaces;
         this.pieces = pieces;
-        leaves = new LeafOrdering(pattern);
+        this.tree = tree;
         projection = new double[size];
         side = new byte[size];
         number = new int[size];
@@ -51,7 +52,6 @@ internal sealed class DissectionOrdering
     public static int[] Order(SymmetricPattern pattern, ReadOnlySpan<double> x, ReadOnlySpan<double> y, CancellationToken cancel)
     {
         int n = pattern.Size;
-        int[] order = new int[n];
         int[] start = pattern.Start, column = pattern.Column;
 
         // Rows coupled to very many others (a contact) would spoil every cut: they go last.
@@ -60,22 +60,23 @@ internal sealed class DissectionOrdering
         int sparse = 0;
         for (int i = 0; i < n; i++)
         {
-            number[i] = start[i + 1] - start[i] > dense ? -1 : sparse++;
-        }
-        if (sparse < n)
-        {
-            int[] rows = [.. Enumerable.Range(0, n).Where(i => number[i] < 0).OrderBy(i => start[i + 1] - start[i])];
-            rows.CopyTo(order.AsSpan(sparse));
+            number[i] = start[i + 1] - start[i] > dense ? Dense : sparse++;
         }
         if (sparse == 0)
         {
-            return order;
+            return RowsByDegree(pattern, number);
+        }
+        int[] followers = Followers.Find(pattern, number);
+        int kept = 0;
+        for (int i = 0; i < n; i++)
+        {
+            number[i] = number[i] == Dense || number[i] == Followers.Mark ? number[i] : kept++;
         }
 
         bool hasPlaces = x.Length == n;
-        var pieces = new GraphPieces(sparse, pattern.Count, hasPlaces);
-        var top = new GraphPiece(sparse, 0, 0, 0);
-        Span<int> vertex = pieces.Vertex(top), starts = pieces.Start(top), neighbour = pieces.Neighbour(top);
+        var pieces = new GraphPieces(kept, kept < sparse ? pattern.Count / 3 : pattern.Count, hasPlaces);
+        var top = new GraphPiece(kept, 0, 0, 0);
+        Span<int> vertex = pieces.Vertex(top), starts = pieces.Start(top);
         starts[0] = 0;
         int count = 0, edges = 0;
         for (int i = 0; i < n; i++)
@@ -90,47 +91,63 @@ internal sealed class DissectionOrdering
                 pieces.X(top)[count] = x[i];
                 pieces.Y(top)[count] = y[i];
             }
+            Span<int> neighbour = pieces.Room(edges, start[i + 1] - start[i]);
+            int degree = 0;
             for (int k = start[i]; k < start[i + 1]; k++)
             {
                 int w = column[k];
                 if (w != i && number[w] >= 0)
                 {
-                    neighbour[edges++] = number[w];
+                    neighbour[degree++] = number[w];
                 }
             }
+            edges += degree;
             starts[++count] = edges;
         }
-        new DissectionOrdering(pattern, pieces, sparse, hasPlaces, order, cancel).Dissect(top, 0);
+        var tree = new DissectionTree(n);
+        int leafSize = Math.Max(16, (int)((long)LeafSize * kept / sparse));
+        new DissectionOrdering(pieces, kept, leafSize, hasPlaces, tree, cancel).Dissect(top, -1);
+        tree.Follow(pattern, followers, number);
+        int[] order = RowsByDegree(pattern, number);
+        tree.Fill(pattern, order, cancel);
         return order;
     }
 
-    private void Dissect(GraphPiece piece, int first)
+    // An order with the dense rows at its end, fewest neighbours first; the rest is still open.
+    private static int[] RowsByDegree(SymmetricPattern pattern, int[] number)
+    {
+        int[] order = new int[pattern.Size];
+        int[] rows = [.. Enumerable.Range(0, order.Length).Where(i => number[i] == Dense).OrderBy(i => pattern.Start[i + 1] - pattern.Start[i])];
+        rows.CopyTo(order.AsSpan(order.Length - rows.Length));
+        return order;
+    }
+
+    private void Dissect(GraphPiece piece, int parent)
     {
         cancel.ThrowIfCancellationRequested();
         int n = piece.Count;
-        if (n <= LeafSize || !(hasPlaces && SplitByPlace(piece) || SplitByRank(piece)))
+        Span<int> vertex = pieces.Vertex(piece);
+        if (n <= leafSize || !(hasPlaces && SplitByPlace(piece) || SplitByRank(piece)))
         {
-            pieces.Vertex(piece).CopyTo(order.AsSpan(first));
-            leaves.Order(order.AsSpan(first, n));
+            tree.AddLeaf(parent, vertex);
             return;
         }
-        int before = 0, behind = 0, last = first + n;
-        Span<int> vertex = pieces.Vertex(piece);
-        for (int i = n - 1; i >= 0; i--)
-        {
-            if (side[i] == VertexCut.Cut)
-            {
-                order[--last] = vertex[i];
-            }
-        }
+        int node = tree.AddCut(parent), before = 0, behind = 0;
         for (int i = 0; i < n; i++)
         {
-            number[i] = side[i] == VertexCut.Before ? before++ : behind;
-            behind += side[i] == VertexCut.Behind ? 1 : 0;
+            byte s = side[i];
+            number[i] = s == VertexCut.Before ? before : behind;
+            before += s == VertexCut.Before ? 1 : 0;
+            behind += s == VertexCut.Behind ? 1 : 0;
+            if (s == VertexCut.Cut)
+            {
+                tree.Put(vertex[i], node);
+            }
         }
         (GraphPiece a, GraphPiece b) = pieces.Split(piece, side, number, VertexCut.Before, before, VertexCut.Behind, behind);
-        Dissect(b, first + before);
-        Dissect(a, first);
+        Dissect(b, node);
+        Dissect(a, node);
+        tree.Close(node);
     }
 
     // The straight line or circle that cuts fewest vertices, judged on a sample, then the smallest cut of its band.

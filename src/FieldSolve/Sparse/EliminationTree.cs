@@ -4,22 +4,19 @@ namespace FieldSolve.Sparse;
 internal static class EliminationTree
 {
     /// <summary>Parent of each step of the elimination; -1 for a root.</summary>
-    /// <param name="pattern">The graph.</param>
-    /// <param name="order">Row eliminated at each step.</param>
-    /// <param name="step">Inverse of <paramref name="order"/>.</param>
+    /// <param name="graph">The graph, in elimination order.</param>
     /// <remarks>J. W. H. Liu, ACM Trans. Math. Softw. 12 (1986) 127-148: links to the roots found so far, with compressed paths.</remarks>
-    public static int[] Parents(SymmetricPattern pattern, int[] order, int[] step)
+    public static int[] Parents(EliminationGraph graph)
     {
-        int n = order.Length;
+        int n = graph.Size;
         int[] parent = new int[n], ancestor = new int[n];
         for (int j = 0; j < n; j++)
         {
             parent[j] = -1;
             ancestor[j] = -1;
-            int row = order[j];
-            for (int k = pattern.Start[row]; k < pattern.Start[row + 1]; k++)
+            foreach (int earlier in graph.Before(j))
             {
-                int i = step[pattern.Column[k]];
+                int i = earlier;
                 while (i >= 0 && i < j)
                 {
                     int above = ancestor[i];
@@ -71,9 +68,13 @@ internal static class EliminationTree
         return post;
     }
 
-    /// <summary>Non-zeros of each column of L, the diagonal included. The order must be a postorder of its tree.</summary>
+    /// <summary>Non-zeros of each column of L, the diagonal included, for an equivalent order that is a postorder of its tree.</summary>
+    /// <param name="graph">The graph, in elimination order.</param>
+    /// <param name="order">Vertex of the graph eliminated at each step.</param>
+    /// <param name="step">Inverse of <paramref name="order"/>.</param>
+    /// <param name="parent">Parent of each step.</param>
     /// <remarks>J. R. Gilbert, E. G. Ng and B. W. Peyton, SIAM J. Matrix Anal. Appl. 15 (1994) 1075-1091: leaves of the row subtrees.</remarks>
-    public static int[] ColumnCounts(SymmetricPattern pattern, int[] order, int[] step, int[] parent)
+    public static int[] ColumnCounts(EliminationGraph graph, int[] order, int[] step, int[] parent)
     {
         int n = order.Length;
         int[] count = new int[n], first = new int[n], lastFirst = new int[n], lastLeaf = new int[n], set = new int[n];
@@ -101,11 +102,10 @@ internal static class EliminationTree
             {
                 count[parent[j]]--;
             }
-            int row = order[j];
-            for (int k = pattern.Start[row]; k < pattern.Start[row + 1]; k++)
+            foreach (int later in graph.After(order[j]))
             {
-                int i = step[pattern.Column[k]];
-                if (i <= j || first[j] <= lastFirst[i])
+                int i = step[later];
+                if (first[j] <= lastFirst[i])
                 {
                     continue;
                 }

@@ -8,6 +8,12 @@ namespace FieldSolve.Sparse;
 /// </summary>
 internal static unsafe class FrontKernels
 {
+    /// <summary>Multiplications per row from which on a second thread is worth calling.</summary>
+    private const int WorthDividing = 16_384;
+
+    /// <summary>Rows of C computed at a time in a large front; a multiple of four.</summary>
+    private const int Strip = 96;
+
     /// <summary>C −= Aᵀ B for A depth x rows, B depth x columns, C rows x columns, all by rows.</summary>
     /// <param name="a">A; row p begins at p·lda. Rows are read in fours: up to 3 doubles behind the last are touched, not used.</param>
     /// <param name="lda">Distance of rows of A and of B.</param>
@@ -66,8 +72,10 @@ internal static unsafe class FrontKernels
     /// <param name="width">Steps to eliminate.</param>
     /// <param name="stride">Distance of rows, a multiple of eight.</param>
     /// <param name="floor">Smallest pivot accepted at each step.</param>
+    /// <param name="team">Threads that may help, or null.</param>
+    /// <param name="cancel">Stops the work between blocks.</param>
     /// <returns>-1, or the step whose pivot is refused.</returns>
-    public static int Factor(double* u, double* l, int width, int stride, double* floor)
+    public static int Factor(double* u, double* l, int width, int stride, double* floor, WorkTeam? team, CancellationToken cancel)
     {
         const int Outer = 32;
         for (int k = 0; k < width; k += 4)
@@ -77,8 +85,16 @@ internal static unsafe class FrontKernels
             if (k == outer && k > 0)
             {
                 int many = Math.Min(Outer, width - k);
-                Subtract(l + k, stride, u + k, uk + k, stride, k, many, columns);
-                Subtract(u + k, stride, l + k, lk + k, stride, k, many, columns);
+                cancel.ThrowIfCancellationRequested();
+                if (team is not null && (long)k * columns > WorthDividing)
+                {
+                    Both(team, u, l, k, stride, many);
+                }
+                else
+                {
+                    Subtract(l + k, stride, u + k, uk + k, stride, k, many, columns);
+                    Subtract(u + k, stride, l + k, lk + k, stride, k, many, columns);
+                }
             }
             if (k > outer)
             {
@@ -95,6 +111,49 @@ internal static unsafe class FrontKernels
             }
         }
         return -1;
+    }
+
+    /// <summary>C −= Aᵀ B as <see cref="Subtract"/>, in strips of rows: cancellable, and with the help of idle threads.</summary>
+    public static void SubtractInStrips(
+        double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, WorkTeam? team, CancellationToken cancel)
+    {
+        if ((long)depth * columns * rows < 64L * WorthDividing)
+        {
+            Subtract(a, lda, b, c, ldc, depth, rows, columns);
+            return;
+        }
+        if (team is not null)
+        {
+            Together(team, a, lda, b, c, ldc, depth, rows, columns, cancel);
+            return;
+        }
+        for (int from = 0; from < rows; from += Strip)
+        {
+            cancel.ThrowIfCancellationRequested();
+            Subtract(a + from, lda, b, c + from * ldc, ldc, depth, Math.Min(Strip, rows - from), columns);
+        }
+    }
+
+    private static void Together(
+        WorkTeam team, double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, CancellationToken cancel) =>
+        team.Divide((rows + Strip - 1) / Strip, i =>
+        {
+            cancel.ThrowIfCancellationRequested();
+            int from = i * Strip;
+            Subtract(a + from, lda, b, c + from * ldc, ldc, depth, Math.Min(Strip, rows - from), columns);
+        });
+
+    // The part of all earlier steps in the next few rows of U and of L, by strips of columns.
+    private static void Both(WorkTeam team, double* u, double* l, int k, int stride, int many)
+    {
+        const int Wide = 256;
+        int columns = stride - k, strips = (columns + Wide - 1) / Wide;
+        team.Divide(2 * strips, i =>
+        {
+            int from = i / 2 * Wide;
+            double* own = (i & 1) == 0 ? u : l, other = (i & 1) == 0 ? l : u;
+            Subtract(other + k, stride, own + k + from, own + (nint)k * stride + k + from, stride, k, many, Math.Min(Wide, columns - from));
+        });
     }
 
     private static bool Refused(double pivot, double floor) => !(pivot > floor) || !double.IsFinite(pivot) || !double.IsFinite(1 / pivot);

@@ -28,6 +28,13 @@ internal sealed class GraphPieces(int vertices, int edges, bool places)
     /// <summary>Neighbours, in the numbering of the piece; to the end of the stack.</summary>
     public Span<int> Neighbour(GraphPiece p) => neighbour.AsSpan(p.Edge);
 
+    /// <summary>Place for more neighbours, from an index on.</summary>
+    public Span<int> Room(int from, int count)
+    {
+        Grow(ref neighbour, from + count);
+        return neighbour.AsSpan(from, count);
+    }
+
     /// <summary>First coordinates.</summary>
     public Span<double> X(GraphPiece p) => x.AsSpan(p.Vertex, p.Count);
 

@@ -1,4 +1,6 @@
 using System.Numerics;
+using System.Runtime.InteropServices;
+using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
 
@@ -17,6 +19,8 @@ internal sealed class LeafOrdering
     private int[] outside = new int[256];
     private ulong[] bits = new ulong[4096];
     private int[] degree = new int[256];
+    private int[] done = [];
+    private short[] key = [];
 
     public LeafOrdering(SymmetricPattern pattern)
     {
@@ -94,30 +98,27 @@ internal sealed class LeafOrdering
 
     private void Eliminate(Span<int> piece, Span<ulong> rows, int words)
     {
-        int n = piece.Length;
-        Span<int> left = n <= 256 ? stackalloc int[n] : new int[n];   // not yet eliminated
-        Span<int> done = n <= 256 ? stackalloc int[n] : new int[n];
+        int n = piece.Length, insideWords = (n + 63) >> 6, padded = (n + 31) & -32;
+        if (key.Length < padded)
+        {
+            key = new short[2 * padded];
+            done = new int[2 * padded];
+        }
+        Span<short> keys = key.AsSpan(0, padded);
+        keys.Fill(short.MaxValue);
         for (int i = 0; i < n; i++)
         {
-            left[i] = i;
+            keys[i] = (short)Math.Min(degree[i], short.MaxValue - 1);
         }
-        int count = n, insideWords = (n + 63) >> 6;
         for (int step = 0; step < n; step++)
         {
-            int at = 0;
-            for (int i = 1; i < count; i++)
-            {
-                if (degree[left[i]] < degree[left[at]])
-                {
-                    at = i;
-                }
-            }
-            int p = left[at];
-            left[(at + 1)..count].CopyTo(left[at..]);
-            count--;
+            int p = First(keys);
+            keys[p] = short.MaxValue;
             done[step] = piece[p];
 
             Span<ulong> pivot = rows.Slice(p * words, words);
+            int own = p >> 6;
+            ulong without = ~(1UL << p);
             for (int word = 0; word < insideWords; word++)
             {
                 ulong set = pivot[word];
@@ -137,23 +138,42 @@ internal sealed class LeafOrdering
                         row[k] = merged;
                         sum += BitOperations.PopCount(merged);
                     }
-                    row[u >> 6] &= ~(1UL << u);
-                    row[p >> 6] &= ~(1UL << p);
-                    degree[u] = sum - 2;   // without u itself and p
+                    row[word] &= ~(1UL << u);
+                    row[own] &= without;
+                    keys[u] = (short)Math.Min(sum - 2, short.MaxValue - 1);   // without u itself and p
                 }
             }
         }
-        done.CopyTo(piece);
+        done.AsSpan(0, n).CopyTo(piece);
+    }
+
+    // Index of the first of the smallest keys; the length is a multiple of 32.
+    private static int First(ReadOnlySpan<short> keys)
+    {
+        ref short start = ref MemoryMarshal.GetReference(keys);
+        Vector512<short> least = Vector512.LoadUnsafe(ref start);
+        for (int i = 32; i < keys.Length; i += 32)
+        {
+            least = Vector512.Min(least, Vector512.LoadUnsafe(ref start, (nuint)i));
+        }
+        Vector256<short> half = Vector256.Min(least.GetLower(), least.GetUpper());
+        Vector128<short> quarter = Vector128.Min(half.GetLower(), half.GetUpper());
+        short smallest = short.MaxValue;
+        for (int i = 0; i < 8; i++)
+        {
+            smallest = Math.Min(smallest, quarter.GetElement(i));
+        }
+        return keys.IndexOf(smallest);
     }
 
     private void OrderByDegree(Span<int> piece)
     {
         int[] start = pattern.Start;
-        long[] key = new long[piece.Length];
-        for (int i = 0; i < key.Length; i++)
+        long[] keys = new long[piece.Length];
+        for (int i = 0; i < keys.Length; i++)
         {
-            key[i] = ((long)(start[piece[i] + 1] - start[piece[i]]) << 32) + i;
+            keys[i] = ((long)(start[piece[i] + 1] - start[piece[i]]) << 32) + i;
         }
-        key.AsSpan().Sort(piece);
+        keys.AsSpan().Sort(piece);
     }
 }

@@ -9,13 +9,15 @@ public sealed class SparseAnalysis
     /// <summary>Doubles of one vector register; rows of panels and fronts are padded to it.</summary>
     internal const int Lanes = 8;
 
+    private ParallelPlan? plan;
+
     private SparseAnalysis(
-        SymmetricPattern pattern, SupernodeTree tree, SymmetricPattern permuted, int[] order, int[] source, int[] mirror)
+        SymmetricPattern pattern, SupernodeTree tree, EliminationGraph graph, int[] order, int[] mirror)
     {
         Pattern = pattern;
         Tree = tree;
         Order = Array.ConvertAll(tree.Order, k => order[k]);
-        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, permuted, source, mirror);
+        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror);
         RowPlace = RowPlaces(tree);
         (ChildStart, Children) = ChildLists(tree);
 
@@ -29,13 +31,12 @@ public sealed class SparseAnalysis
             int s = tree.Width(t), m = tree.Height(t);
             PanelStart[t + 1] = PanelStart[t] + 2L * s * Stride(t);
             nonZeros += 2L * s * m - (long)s * s;
-            double r = m - s;
-            flops += 2.0 * s * r * r + 2.0 * s * s * r + 2.0 / 3 * s * s * s;
+            flops += FlopsOf(t);
             LargestFront = Math.Max(LargestFront, Stride(t));
         }
         FactorNonZeros = nonZeros;
         Flops = flops;
-        UpdateLength = PlaceUpdates();
+        UpdateLength = PlaceUpdates(0, count, 0, UpdateStart);
     }
 
     /// <summary>The pattern analysed.</summary>
@@ -43,6 +44,9 @@ public sealed class SparseAnalysis
 
     /// <summary>Stored non-zeros of L and U together (the unit diagonal of L not counted), explicit zeros of merged supernodes included.</summary>
     public long FactorNonZeros { get; }
+
+    /// <summary>Non-zeros of L and U in the order chosen, without the explicit zeros; both diagonals counted.</summary>
+    internal long ExactNonZeros => Tree.ExactNonZeros;
 
     /// <summary>Additions and multiplications of one factorisation.</summary>
     public double Flops { get; }
@@ -90,11 +94,21 @@ public sealed class SparseAnalysis
 
     internal int LargestFront { get; }
 
+    /// <summary>Division of the work for several threads, made when first asked for.</summary>
+    internal ParallelPlan Plan => LazyInitializer.EnsureInitialized(ref plan, () => new ParallelPlan(this));
+
     /// <summary>Padded length of a row of the front of a supernode.</summary>
     internal int Stride(int t) => (Tree.Height(t) + Lanes - 1) & -Lanes;
 
     /// <summary>Padded length of a row of the update matrix of a supernode.</summary>
     internal int UpdateStride(int t) => Stride(t) - (Tree.Width(t) & -Lanes);
+
+    /// <summary>Additions and multiplications in the front of a supernode.</summary>
+    internal double FlopsOf(int t)
+    {
+        double s = Tree.Width(t), r = Tree.Height(t) - s;
+        return 2 * s * r * r + 2 * s * s * r + 2.0 / 3 * s * s * s;
+    }
 
     /// <summary>Analyses a pattern: order, elimination tree, supernodes, storage.</summary>
     /// <param name="pattern">Symmetric pattern with the whole diagonal, columns ascending within a row.</param>
@@ -114,9 +128,9 @@ public sealed class SparseAnalysis
         }
         int[] mirror = Mirror(pattern);
         int[] order = DissectionOrdering.Order(pattern, x, y, cancel);
-        SymmetricPattern permuted = Permute(pattern, order, out int[] source);
-        SupernodeTree tree = SupernodeTree.Build(permuted, cancel);
-        return new SparseAnalysis(pattern, tree, permuted, order, source, mirror);
+        var graph = new EliminationGraph(pattern, order);
+        SupernodeTree tree = SupernodeTree.Build(graph, cancel);
+        return new SparseAnalysis(pattern, tree, graph, order, mirror);
     }
 
     // Checks the pattern and gives for each entry its mirror image. Rows come in ascending order, so the mirror images in each
@@ -156,33 +170,10 @@ public sealed class SparseAnalysis
         return mirror;
     }
 
-    // The pattern with rows and columns in elimination order, so that later passes run through memory; columns do not ascend.
-    // source: the entry of the pattern behind each entry.
-    private static SymmetricPattern Permute(SymmetricPattern pattern, int[] order, out int[] source)
-    {
-        int n = pattern.Size, e = 0;
-        int[] step = SupernodeTree.Inverse(order), start = new int[n + 1];
-        int[] column = GC.AllocateUninitializedArray<int>(pattern.Count);
-        source = GC.AllocateUninitializedArray<int>(pattern.Count);
-        for (int j = 0; j < n; j++)
-        {
-            int row = order[j];
-            for (int k = pattern.Start[row]; k < pattern.Start[row + 1]; k++)
-            {
-                column[e] = step[pattern.Column[k]];
-                source[e++] = k;
-            }
-            start[j + 1] = e;
-        }
-        return new SymmetricPattern(start, column);
-    }
-
     private static (int[] Start, int[] Place, int[] Right, int[] Below, int[] Diagonal) Entries(
-        SupernodeTree tree, SymmetricPattern permuted, int[] source, int[] mirror)
+        SupernodeTree tree, EliminationGraph graph, int[] mirror)
     {
-        int n = permuted.Size;
-        int[] start = permuted.Start, column = permuted.Column;
-        int half = (column.Length - n) / 2, e = 0;
+        int n = graph.Size, half = graph.Pairs, e = 0;
         int[] entryStart = new int[n + 1], diagonal = new int[n], local = new int[n];
         int[] place = GC.AllocateUninitializedArray<int>(half), right = GC.AllocateUninitializedArray<int>(half);
         int[] below = GC.AllocateUninitializedArray<int>(half);
@@ -200,20 +191,14 @@ public sealed class SparseAnalysis
             for (int j = first; j < first + width; j++)
             {
                 int row = tree.Order[j];
-                for (int k = start[row]; k < start[row + 1]; k++)
+                ReadOnlySpan<int> after = graph.After(row), source = graph.SourceAfter(row);
+                for (int k = 0; k < after.Length; k++)
                 {
-                    int i = tree.Step[column[k]];
-                    if (i > j)
-                    {
-                        place[e] = local[i];
-                        right[e] = source[k];
-                        below[e++] = mirror[source[k]];
-                    }
-                    else if (i == j)
-                    {
-                        diagonal[j] = source[k];
-                    }
+                    place[e] = local[tree.Step[after[k]]];
+                    right[e] = source[k];
+                    below[e++] = mirror[source[k]];
                 }
+                diagonal[j] = graph.Diagonal[row];
                 entryStart[j + 1] = e;
             }
         }
@@ -276,34 +261,36 @@ public sealed class SparseAnalysis
 
     // Update matrices live from their own elimination to that of the parent. In postorder those of even depth form one stack and
     // those of odd depth another, so that a parent is placed while its children still stand. Returns the doubles needed.
-    private long PlaceUpdates()
+    // The range is one subtree, or the whole forest; places start at an offset.
+    internal long PlaceUpdates(int from, int to, long offset, long[] start)
     {
-        int count = Tree.Count;
-        int[] depth = new int[count];
-        for (int t = count - 1; t >= 0; t--)
+        int[] depth = new int[to - from];
+        for (int t = to - 1; t >= from; t--)
         {
-            depth[t] = Tree.Parent[t] < 0 ? 0 : depth[Tree.Parent[t]] + 1;
+            int parent = Tree.Parent[t];
+            depth[t - from] = parent < 0 || parent >= to ? 0 : depth[parent - from] + 1;
         }
         Span<long> top = [0, 0], peak = [0, 0];
-        for (int t = 0; t < count; t++)
+        for (int t = from; t < to; t++)
         {
-            int own = depth[t] & 1;
-            UpdateStart[t] = top[own];
+            int own = depth[t - from] & 1;
+            start[t] = top[own];
             top[own] += UpdateSize(t);
             peak[own] = Math.Max(peak[own], top[own]);
             if (ChildStart[t] < ChildStart[t + 1])
             {
-                top[1 - own] = UpdateStart[Children[ChildStart[t]]];
+                top[1 - own] = start[Children[ChildStart[t]]];
             }
         }
-        for (int t = 0; t < count; t++)
+        for (int t = from; t < to; t++)
         {
-            UpdateStart[t] += (depth[t] & 1) == 0 ? 0 : peak[0];
+            start[t] += offset + ((depth[t - from] & 1) == 0 ? 0 : peak[0]);
         }
         return peak[0] + peak[1];
     }
 
-    private long UpdateSize(int t)
+    /// <summary>Doubles of the update matrix of a supernode.</summary>
+    internal long UpdateSize(int t)
     {
         int r = Tree.Height(t) - Tree.Width(t);
         return r == 0 ? 0 : (long)((r + 3) & -4) * UpdateStride(t);

@@ -19,6 +19,7 @@ public sealed unsafe partial class SparseLu
     private readonly double* panels;
     private readonly double* updates;
     private readonly double[] floor;
+    private double[] parallelStore = [];
     private bool factored;
 
     /// <summary>Allocates the storage for factors of the analysed pattern.</summary>
@@ -43,8 +44,21 @@ public sealed unsafe partial class SparseLu
     /// <exception cref="ArgumentException">The number of values does not match the pattern.</exception>
     /// <exception cref="PivotException">A pivot is not finite, not positive or negligible.</exception>
     /// <exception cref="OperationCanceledException">Cancelled.</exception>
-    public void Factor(ReadOnlySpan<double> values, CancellationToken cancel = default)
+    public void Factor(ReadOnlySpan<double> values, CancellationToken cancel = default) => Factor(values, 1, cancel);
+
+    /// <summary>
+    /// Factors a matrix on several threads, with the same bits as on one. Worth it where no other factorisation runs at the same time; takes more room
+    /// for work space.
+    /// </summary>
+    /// <param name="values">One value per place of the pattern.</param>
+    /// <param name="degree">Most threads, at least 1; the calling one is among them.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <exception cref="ArgumentException">The number of values does not match the pattern, or there is no thread.</exception>
+    /// <exception cref="PivotException">A pivot is not finite, not positive or negligible.</exception>
+    /// <exception cref="OperationCanceledException">Cancelled.</exception>
+    public void Factor(ReadOnlySpan<double> values, int degree, CancellationToken cancel = default)
     {
+        ArgumentOutOfRangeException.ThrowIfLessThan(degree, 1);
         SparseAnalysis a = analysis;
         if (values.Length != a.Pattern.Count)
         {
@@ -58,13 +72,24 @@ public sealed unsafe partial class SparseLu
         {
             floor[j] = noise * Math.Abs(values[a.Diagonal[j]]);
         }
-        for (int t = 0; t < a.Tree.Count; t++)
+        fixed (double* pinned = values)
         {
-            if ((t & 255) == 0)
+            if (degree == 1 || a.Flops < WorthThreads)
             {
-                cancel.ThrowIfCancellationRequested();
+                var room = new Room(updates, a.UpdateStart, pinned, null, cancel);
+                for (int t = 0; t < a.Tree.Count; t++)
+                {
+                    if ((t & 255) == 0)
+                    {
+                        cancel.ThrowIfCancellationRequested();
+                    }
+                    Front(t, room);
+                }
             }
-            Front(t, values);
+            else
+            {
+                FactorTogether(degree, pinned, cancel);
+            }
         }
         factored = true;
         GC.KeepAlive(panelStore);
@@ -87,8 +112,9 @@ public sealed unsafe partial class SparseLu
     private static double* Aligned(double[] store) => (double*)(((nint)Unsafe.AsPointer(ref store[0]) + 63) & -64);
 
     // Assembles and eliminates one supernode.
-    private void Front(int t, ReadOnlySpan<double> values)
+    private void Front(int t, Room room)
     {
+        double* values = room.Values;
         SparseAnalysis a = analysis;
         SupernodeTree tree = a.Tree;
         int first = tree.First[t], width = tree.Width(t), rest = tree.Height(t) - width, stride = a.Stride(t);
@@ -105,7 +131,7 @@ public sealed unsafe partial class SparseLu
                 lj[place] = values[a.EntryBelow[e]];
             }
         }
-        double* c = updates + a.UpdateStart[t];
+        double* c = room.Updates + room.UpdateStart[t];
         int ldc = a.UpdateStride(t), skip = width & 7, padded = (rest + 3) & -4;
         if (rest > 0)
         {
@@ -113,11 +139,11 @@ public sealed unsafe partial class SparseLu
         }
         for (int child = a.ChildStart[t]; child < a.ChildStart[t + 1]; child++)
         {
-            Extend(a.Children[child], u, l, stride, width, c + skip - width, ldc);
+            Extend(a.Children[child], room, u, l, stride, width, c + skip - width, ldc);
         }
         fixed (double* smallest = &floor[first])
         {
-            int refused = FrontKernels.Factor(u, l, width, stride, smallest);
+            int refused = FrontKernels.Factor(u, l, width, stride, smallest, room.Team, room.Cancel);
             if (refused >= 0)
             {
                 throw new PivotException(a.Order[first + refused], u[(nint)refused * stride + refused]);
@@ -125,17 +151,17 @@ public sealed unsafe partial class SparseLu
         }
         if (rest > 0)
         {
-            FrontKernels.Subtract(l + width, stride, u + (width & -8), c, ldc, width, padded, ldc);
+            FrontKernels.SubtractInStrips(l + width, stride, u + (width & -8), c, ldc, width, padded, ldc, room.Team, room.Cancel);
         }
     }
 
     // Adds the update matrix of a child to the panels and the update matrix of its parent. c is shifted so that place j of the
     // parent's front is column j.
-    private void Extend(int child, double* u, double* l, int stride, int width, double* c, int ldc)
+    private void Extend(int child, Room room, double* u, double* l, int stride, int width, double* c, int ldc)
     {
         SparseAnalysis a = analysis;
         int start = a.Tree.RowStart[child], count = a.Tree.RowStart[child + 1] - start, ld = a.UpdateStride(child);
-        double* from = updates + a.UpdateStart[child] + (a.Tree.Width(child) & 7);
+        double* from = room.Updates + room.UpdateStart[child] + (a.Tree.Width(child) & 7);
         fixed (int* place = &a.RowPlace[start])
         {
             int inside = 0;   // rows of the child that the parent eliminates

@@ -10,7 +10,7 @@ namespace FieldSolve.Sparse;
 /// </remarks>
 internal sealed class SupernodeTree
 {
-    /// <summary>Row of the pattern eliminated at each step.</summary>
+    /// <summary>Vertex of the graph eliminated at each step.</summary>
     public required int[] Order { get; init; }
 
     /// <summary>Inverse of <see cref="Order"/>.</summary>
@@ -28,6 +28,9 @@ internal sealed class SupernodeTree
     /// <summary>Steps below the block of each supernode, ascending.</summary>
     public required int[] Rows { get; init; }
 
+    /// <summary>Non-zeros of L and U without the explicit zeros of merged supernodes, both diagonals counted.</summary>
+    public required long ExactNonZeros { get; init; }
+
     /// <summary>Number of supernodes.</summary>
     public int Count => Parent.Length;
 
@@ -37,26 +40,21 @@ internal sealed class SupernodeTree
     /// <summary>Order of the front of a supernode.</summary>
     public int Height(int t) => First[t + 1] - First[t] + RowStart[t + 1] - RowStart[t];
 
-    /// <summary>Builds the forest for the elimination of a pattern in about its own order: only steps that commute change places.</summary>
-    /// <param name="pattern">The graph, already in a fill-reducing order; the columns of a row need not ascend.</param>
+    /// <summary>Builds the forest for the elimination of a graph in about its own order: only steps that commute change places.</summary>
+    /// <param name="graph">The graph, in a fill-reducing order.</param>
     /// <param name="cancel">Stops the work.</param>
-    public static SupernodeTree Build(SymmetricPattern pattern, CancellationToken cancel)
+    public static SupernodeTree Build(EliminationGraph graph, CancellationToken cancel)
     {
-        int n = pattern.Size;
-        int[] order = [.. Enumerable.Range(0, n)], step = order;
-        int[] parent = EliminationTree.Parents(pattern, order, step);
-        int[] post = EliminationTree.Postorder(parent);
-        int[] place = Inverse(post), steps = new int[n], above = new int[n];
+        int n = graph.Size;
+        int[] parent = EliminationTree.Parents(graph);
+        int[] order = EliminationTree.Postorder(parent), step = Inverse(order), above = new int[n];
         for (int k = 0; k < n; k++)
         {
-            steps[k] = order[post[k]];
-            int p = parent[post[k]];
-            above[k] = p < 0 ? -1 : place[p];
+            int p = parent[order[k]];
+            above[k] = p < 0 ? -1 : step[p];
         }
-        order = steps;
-        step = Inverse(order);
         cancel.ThrowIfCancellationRequested();
-        int[] count = EliminationTree.ColumnCounts(pattern, order, step, above);
+        int[] count = EliminationTree.ColumnCounts(graph, order, step, above);
         cancel.ThrowIfCancellationRequested();
 
         // Largest runs of steps with nested columns.
@@ -81,7 +79,7 @@ internal sealed class SupernodeTree
             height[t] = count[first[t]];
         }
         int[] group = Merge(nodeParent, width, height);
-        return Renumber(pattern, order, first, nodeParent, group, height, width, cancel);
+        return Renumber(graph, order, first, nodeParent, group, height, width, 2 * count.Sum(c => (long)c), cancel);
     }
 
     // Merges children into parents where the time model says that one larger block is faster, in spite of its zeros.
@@ -122,7 +120,8 @@ internal sealed class SupernodeTree
     }
 
     private static SupernodeTree Renumber(
-        SymmetricPattern pattern, int[] order, List<int> first, int[] nodeParent, int[] group, int[] height, int[] width, CancellationToken cancel)
+        EliminationGraph graph, int[] order, List<int> first, int[] nodeParent, int[] group, int[] height, int[] width, long exact,
+        CancellationToken cancel)
     {
         int n = order.Length, nodes = nodeParent.Length, groups = 0;
         int[] number = new int[nodes];
@@ -168,22 +167,16 @@ internal sealed class SupernodeTree
         for (int i = 0; i < n; i++)
         {
             mark[nodeOf[i]] = i;
-            int row = newOrder[i];
-            for (int k = pattern.Start[row]; k < pattern.Start[row + 1]; k++)
+            foreach (int earlier in graph.Before(newOrder[i]))
             {
-                int j = step[pattern.Column[k]];
-                if (j >= i)
-                {
-                    continue;
-                }
-                for (int t = nodeOf[j]; mark[t] != i; t = parent[t])
+                for (int t = nodeOf[step[earlier]]; mark[t] != i; t = parent[t])
                 {
                     mark[t] = i;
                     rows[fill[t]++] = i;
                 }
             }
         }
-        return new SupernodeTree { Order = newOrder, Step = step, First = start, Parent = parent, RowStart = rowStart, Rows = rows };
+        return new SupernodeTree { Order = newOrder, Step = step, First = start, Parent = parent, RowStart = rowStart, Rows = rows, ExactNonZeros = exact };
     }
 
     /// <summary>Inverse of a permutation.</summary>

@@ -1,0 +1,87 @@
+using System.Diagnostics;
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Tests.SparseTests;
+
+public class ThreadTests
+{
+    private static readonly Lazy<Sample> Disc = new(() => DiscWorkload.Build(25_000));
+
+    [Theory]
+    [InlineData(2)]
+    [InlineData(3)]
+    [InlineData(8)]
+    public void Any_number_of_threads_gives_the_same_bits(int degree)
+    {
+        Sample disc = Disc.Value;
+        SparseAnalysis analysis = SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y);
+        Assert.True(analysis.Plan.Roots.Length > degree, "no work to divide");
+        double[] b = Samples.Vector(disc.Size, 1), one = new double[disc.Size], many = new double[disc.Size];
+        var lu = new SparseLu(analysis);
+        lu.Factor(disc.Values);
+        lu.Solve(b, one);
+        for (int run = 0; run < 3; run++)
+        {
+            lu.Factor(disc.Values, degree);
+            lu.Solve(b, many);
+            Assert.Equal(one, many);
+        }
+    }
+
+    [Fact]
+    public void Every_supernode_belongs_to_one_job()
+    {
+        Sample disc = Disc.Value;
+        SparseAnalysis analysis = SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y);
+        ParallelPlan plan = analysis.Plan;
+        int[] jobs = new int[analysis.Tree.Count];
+        foreach (int root in plan.Roots)
+        {
+            for (int t = plan.First[root]; t <= root; t++)
+            {
+                jobs[t]++;
+            }
+        }
+        Assert.All(Enumerable.Range(0, jobs.Length), t => Assert.Equal(1, jobs[t] + (plan.IsAbove[t] ? 1 : 0)));
+    }
+
+    [Fact]
+    public void Threads_refuse_the_same_pivot_as_one()
+    {
+        Sample disc = Disc.Value;
+        SparseAnalysis analysis = SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y);
+        double[] values = [.. disc.Values];
+        for (int i = 100; i < disc.Size; i += 1000)
+        {
+            values[Samples.Place(disc.Pattern, i, i)] = -1;
+        }
+        PivotException one = Assert.Throws<PivotException>(() => new SparseLu(analysis).Factor(values));
+        PivotException many = Assert.Throws<PivotException>(() => new SparseLu(analysis).Factor(values, 3));
+        Assert.Equal((one.Unknown, one.Pivot), (many.Unknown, many.Pivot));
+    }
+
+    [Theory]
+    [InlineData(1)]
+    [InlineData(2)]
+    public void Cancellation_reaches_a_factorisation_soon(int degree)
+    {
+        Sample disc = Disc.Value;
+        var lu = new SparseLu(SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y));
+        lu.Factor(disc.Values, degree);
+        using var cancel = new CancellationTokenSource();
+        // From this thread's own work: until the moment of cancelling the factorisation is repeated.
+        var clock = new Stopwatch();
+        using CancellationTokenRegistration noted = cancel.Token.Register(clock.Start);
+        cancel.CancelAfter(30);
+        Assert.ThrowsAny<OperationCanceledException>(() =>
+        {
+            for (int k = 0; k < 100_000; k++)
+            {
+                lu.Factor(disc.Values, degree, cancel.Token);
+            }
+        });
+        // 100 ms on a machine of one's own; ten times that where others work on it as well.
+        Assert.InRange(clock.Elapsed.TotalMilliseconds, 0, 1000);
+        Assert.Throws<InvalidOperationException>(() => lu.Solve(new double[disc.Size], new double[disc.Size]));
+    }
+}

@@ -71,13 +71,6 @@ internal static class DriveCommand
             return ExitCode.WrongInput;
         }
 
-        // Said before the solve, not after it.
-        if (File.Exists(choices.Folder))
-        {
-            Console.Error.WriteLine($"fieldsolve: --out '{choices.Folder}' is a file; name a folder");
-            return ExitCode.WrongInput;
-        }
-
         if (choices.Quick)
         {
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
@@ -102,7 +95,7 @@ internal static class DriveCommand
         }
 
         Directory.CreateDirectory(choices.Folder);
-        DriveFiles.Write(
+        result = DriveFiles.Write(
             result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick), screen, cancel);
         screen.Clear();
         foreach (string text in result.Cautions)

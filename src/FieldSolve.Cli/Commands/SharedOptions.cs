@@ -7,11 +7,35 @@ internal static class SharedOptions
 {
     public static Argument<string> Device() => new("DEVICE") { Description = "The device file (TOML; see meshes/README.md)." };
 
-    public static Option<string?> Out() => new("--out")
+    public static Option<string?> Out()
     {
-        Description = "Folder for the results; made when missing. Default: <device>-<command> in the current folder.",
-        HelpName = "DIR",
-    };
+        var option = new Option<string?>("--out")
+        {
+            Description = "Folder for the results; made when missing. Default: <device>-<command> in the current folder.",
+            HelpName = "DIR",
+        };
+
+        // Said before the solve, not after it.
+        option.Validators.Add(given =>
+        {
+            string? folder = given.GetValueOrDefault<string?>();
+            if (folder is not null && string.IsNullOrWhiteSpace(folder))
+            {
+                given.AddError("--out is empty; name a folder");
+                return;
+            }
+
+            for (string? path = folder is null ? null : Path.GetFullPath(folder); path is not null; path = Path.GetDirectoryName(path))
+            {
+                if (File.Exists(path))
+                {
+                    given.AddError($"--out '{folder}': '{path}' is a file; name a folder");
+                    return;
+                }
+            }
+        });
+        return option;
+    }
 
     public static Option<bool> Quiet() => new("--quiet") { Description = "No summary and no progress; warnings and faults are still shown." };
 

@@ -13,7 +13,8 @@ internal static class DriveFiles
     /// <summary>What to write, and what run.json says about how it came about.</summary>
     internal sealed record Choices(MapChoice Maps, bool AllSigns, bool Pictures, bool Quick);
 
-    public static void Write(
+    /// <returns>The result; marked as cancelled if that came while the pictures were drawn: all else is written then.</returns>
+    public static DriveResult Write(
         DriveResult result, string folder, Choices choices, Screen screen, CancellationToken cancel)
     {
         CurvesCsv.Write(
@@ -23,11 +24,18 @@ internal static class DriveFiles
         if (choices.Pictures)
         {
             screen.Report(new("drawing pictures", 0, 0));
-            clock.Time("pictures", () =>
+            try
             {
-                IReadOnlyList<PictureFile> drawn = DrivePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                ReportPage.Write(result, drawn, Path.Combine(folder, "report.html"));
-            });
+                clock.Time("pictures", () =>
+                {
+                    IReadOnlyList<PictureFile> drawn = DrivePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+                    ReportPage.Write(result, drawn, Path.Combine(folder, "report.html"));
+                });
+            }
+            catch (OperationCanceledException)
+            {
+                result = result with { Cancelled = true };
+            }
         }
 
         RunRecord.Write(
@@ -41,6 +49,7 @@ internal static class DriveFiles
                 ["pictures"] = choices.Pictures ? "true" : "false",
                 ["quick"] = choices.Quick ? "true" : "false",
             });
+        return result;
     }
 
     private static void Maps(DriveResult result, string folder, MapChoice maps, Screen screen)

@@ -47,15 +47,19 @@ public class SurroundingsTests
         Assert.Contains("\"cancelled\": true", File.ReadAllText(folder["out/run.json"]), StringComparison.Ordinal);
     }
 
-    [Fact]
-    public void An_output_folder_that_cannot_be_made_is_named()
+    [Theory]
+    [InlineData("blocked")]
+    [InlineData("blocked/out")]
+    [InlineData("")]
+    public void An_output_folder_that_cannot_be_made_is_named_before_the_solve(string name)
     {
         using var folder = new TempFolder();
-        string blocked = folder.Write("blocked", "a file, not a folder");
-        CommandResult result = Command.Run("drive", folder.Write("bar.toml", SmallDevice.Text), "--out", Path.Combine(blocked, "out"), "--no-pictures");
+        folder.Write("blocked", "a file, not a folder");
+        CommandResult result = Command.Run(
+            "drive", folder.Write("bar.toml", SmallDevice.Text), "--out", name.Length == 0 ? "" : folder[name], "--no-pictures");
         Assert.Equal(2, result.Exit);
-        Assert.Single(result.ErrorLines);
-        Assert.Contains("blocked", result.Error, StringComparison.Ordinal);
+        Assert.StartsWith("fieldsolve: --out", result.ErrorLines[0], StringComparison.Ordinal);
+        Assert.Contains("name a folder", result.ErrorLines[0], StringComparison.Ordinal);
         Assert.DoesNotContain("   at ", result.Error, StringComparison.Ordinal);
     }
 

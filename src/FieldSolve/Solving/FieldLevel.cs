@@ -70,6 +70,28 @@ public sealed class FieldLevel
         current[Space.Size] = 0;
     }
 
+    /// <summary>
+    /// Norm of the rounding errors of a residual at u, A: every current between two unknowns is a conductance times potentials that are
+    /// themselves rounded. N. J. Higham, Accuracy and Stability of Numerical Algorithms (2002), section 3.5.
+    /// </summary>
+    internal double ResidualRounding(ReadOnlySpan<double> u)
+    {
+        int[] start = Space.Pattern.Start, column = Space.Pattern.Column;
+        double squares = 0;
+        for (int i = 0; i < Space.Size; i++)
+        {
+            double sum = 0;
+            for (int k = start[i]; k < start[i + 1]; k++)
+            {
+                sum += Math.Abs(atZeroValues[k] * u[column[k]]);
+            }
+
+            squares += sum * sum;
+        }
+
+        return Math.ScaleB(Math.Sqrt(squares), -52);
+    }
+
     /// <summary>Potential differences V = phi(plus) - phi(minus) as the derivative with respect to the unknowns.</summary>
     public double[] ReadingVector(Terminal plus, Terminal minus)
     {

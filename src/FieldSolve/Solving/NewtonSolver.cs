@@ -13,8 +13,10 @@ public sealed class NewtonSolver
 {
     private const double Tolerance = 1e-12;
 
-    // The rounding of the residual itself; a solve that stalls below this is as good as it gets.
+    // A solve that stalls below this, or below the rounding of its own residual, is as good as it gets. That rounding is large beside the current
+    // where the sheet lies far above the drain behind a large contact resistance, or conducts far better one way than the other.
     private const double StallTolerance = 1e-11;
+    private const double MostRounding = 1e-6;
 
     // A step that does not bring the residual down to this share of itself calls for a new factor, or for damping.
     private const double GoodContraction = 0.35;
@@ -83,7 +85,7 @@ public sealed class NewtonSolver
             cancel.ThrowIfCancellationRequested();
             if (steps++ >= MostSteps)
             {
-                return Outcome(norm <= StallTolerance * scale);
+                return Outcome(norm <= Floor(u, scale));
             }
 
             // A step with a kept factor is combined with the steps before it; one with a fresh factor is Newton's own.
@@ -105,7 +107,7 @@ public sealed class NewtonSolver
                 continue;
             }
 
-            if (norm <= StallTolerance * scale)
+            if (norm <= Floor(u, scale))
             {
                 if (valid && next < norm)
                 {
@@ -174,6 +176,10 @@ public sealed class NewtonSolver
             trial[i] = u[i] + (damp * step[i]);
         }
     }
+
+    // Norm of the residual, A, below which a stalled iteration has nothing left to gain.
+    private double Floor(double[] u, double scale) =>
+        Math.Max(StallTolerance * scale, Math.Min(MostRounding * scale, level.ResidualRounding(u)));
 
     private double Accept(double[] u, double norm)
     {

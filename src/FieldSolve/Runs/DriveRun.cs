@@ -29,9 +29,9 @@ public static class DriveRun
         var clock = new StageClock();
         var law = new LabLaw(device.Law, device.Axis);
         ReadingPlan[] plans = [.. device.Wirings.Select(w => new ReadingPlan(w))];
-        double largest = Refinement.Largest(drive.Currents);
+        double largest = MeshRefinement.Largest(drive.Currents);
         int total = plans.Length * drive.Currents.Count;
-        Refinement refinement = Refinement.Run(
+        MeshRefinement refinement = MeshRefinement.Run(
             device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel);
 
         var work = new DriveWork(device, options, refinement.Meshes, plans);

@@ -117,7 +117,7 @@ internal sealed class DriveWork
             }
         }
 
-        return Refinement.AlongScale(readings);
+        return MeshRefinement.AlongScale(readings);
     }
 
     private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)

@@ -6,7 +6,7 @@ namespace FieldSolve.Runs;
 /// <summary>Makes rows from states: odd and even parts, error bars, status.</summary>
 internal sealed class RowMaker
 {
-    // Readings are differences of potentials solved to 1e-12 of the residual; nothing below this share of the largest is resolved.
+    // Readings are differences of potentials; nothing below this share of the largest, and below what the iteration left over, is resolved.
     private const double RoundingShare = 2e-13;
 
     private readonly SheetDevice device;
@@ -33,7 +33,8 @@ internal sealed class RowMaker
         }
 
         var readings = new List<Reading>();
-        double floor = RoundingShare * here.Values.Max(Math.Abs);
+        double rest = Math.Max(here.Outcome.RelativeResidual, opposite?.Outcome.RelativeResidual ?? 0);
+        double floor = (RoundingShare + rest) * here.Values.Max(Math.Abs);
         for (int k = 0; k < plan.Count; k++)
         {
             double error = Bar(plan, k, false, current, here.Difference![k]) + floor;
@@ -64,12 +65,12 @@ internal sealed class RowMaker
         for (int k = 0; k < readings.Count; k++)
         {
             Reading r = readings[k];
-            double wanted = Refinement.Wanted(device.Mesh, along, evens, null);
+            double wanted = MeshRefinement.Wanted(device.Mesh, along, evens, null);
             outside |= exit is not null && Math.Abs(r.GuardShare) > wanted;
             coarse |= r.Error > wanted;
             if (plan.HasEven[k] && r.Even is { } even)
             {
-                double wantedEven = Refinement.Wanted(device.Mesh, along, evens, even);
+                double wantedEven = MeshRefinement.Wanted(device.Mesh, along, evens, even);
                 outside |= exit is not null && Math.Abs(r.EvenGuardShare) > wantedEven;
                 coarse |= r.EvenError > wantedEven;
             }

@@ -7,7 +7,7 @@ using FieldSolve.Readings;
 namespace FieldSolve.Runs;
 
 /// <summary>Meshes, measures and meshes again until every reading meets its wanted error or the limit of unknowns is reached.</summary>
-internal sealed class Refinement
+internal sealed class MeshRefinement
 {
     private const int MostLevels = 12;
 
@@ -21,7 +21,7 @@ internal sealed class Refinement
     // Even parts below this share of the along voltage are zero for all purposes (often by symmetry); do not chase them.
     private const double EvenFloor = 1e-8;
 
-    private Refinement(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, IReadOnlyList<RefinementLevel> levels, bool isMet)
+    private MeshRefinement(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, IReadOnlyList<RefinementLevel> levels, bool isMet)
     {
         Meshes = meshes;
         Goals = goals;
@@ -54,7 +54,7 @@ internal sealed class Refinement
         : Math.Max(spec.EvenError * Math.Max(Math.Abs(even.Value), 0.1 * evens.Max(Math.Abs)), EvenFloor * along);
 
     /// <summary>Runs the loop.</summary>
-    public static Refinement Run(
+    public static MeshRefinement Run(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, Action<string> tell,
         StageClock clock, CancellationToken cancel)
     {

@@ -14,6 +14,9 @@ internal sealed class MeshRefinement
     // Quadratic triangles have about two nodes each, and the split has four times as many triangles.
     private const double UnknownsPerCoarseTriangle = 8.2;
 
+    // The first mesh knows nothing of the solution, so its estimate is trusted only when it is well below what is wanted.
+    private const double TrustOfFirst = 0.3;
+
     // A level that brings the worst reading down to no less than this share of what it was is a stall; two in a row end the refinement.
     private const double StallShare = 0.8;
     private const int MostStalls = 2;
@@ -91,7 +94,7 @@ internal sealed class MeshRefinement
 
             stalls = now > StallShare * worst ? stalls + 1 : 0;
             worst = Math.Min(worst, now);
-            if (now <= 1 || level == MostLevels - 1 || stalls == MostStalls)
+            if (now <= (level == 0 ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
             {
                 return new(best, goals, levels, worst <= 1);
             }

@@ -14,6 +14,9 @@ internal sealed class MeshRefinement
     // Quadratic triangles have about two nodes each, and the split has four times as many triangles.
     private const double UnknownsPerCoarseTriangle = 8.2;
 
+    // A voltage beside which the along voltage is tiny (a source behind megaohms) is resolved to nine digits of itself, no further.
+    private const double ResolvedShare = 1e-9;
+
     // The first mesh knows nothing of the solution, so its estimate is trusted only when it is well below what is wanted.
     private const double TrustOfFirst = 0.3;
 
@@ -47,14 +50,20 @@ internal sealed class MeshRefinement
     /// <summary>Largest current of a list by size, with its sign.</summary>
     public static double Largest(IReadOnlyList<double> currents) => currents.MaxBy(Math.Abs);
 
-    /// <summary>Wanted errors at one current.</summary>
+    /// <summary>Wanted error of a reading, V.</summary>
     /// <param name="spec">What the device file asks for.</param>
-    /// <param name="along">Largest |along voltage| of all wirings, V (or of the source where nothing is read along).</param>
+    /// <param name="along">Largest |along voltage| of all wirings, V (or of any reading where nothing is read along).</param>
+    /// <param name="value">The reading, V.</param>
+    public static double Wanted(MeshSpec spec, double along, double value) =>
+        Math.Max(spec.Error * along, ResolvedShare * Math.Abs(value));
+
+    /// <summary>Wanted error of an even part, V.</summary>
+    /// <param name="spec">What the device file asks for.</param>
+    /// <param name="along">Largest |along voltage|, V.</param>
     /// <param name="evens">Even parts of the row, V.</param>
-    /// <param name="even">The even part in question, V; null for a reading itself.</param>
-    public static double Wanted(MeshSpec spec, double along, IEnumerable<double> evens, double? even) => even is null
-        ? spec.Error * along
-        : Math.Max(spec.EvenError * Math.Max(Math.Abs(even.Value), 0.1 * evens.Max(Math.Abs)), EvenFloor * along);
+    /// <param name="even">The even part in question, V.</param>
+    public static double WantedEven(MeshSpec spec, double along, IEnumerable<double> evens, double even) =>
+        Math.Max(spec.EvenError * Math.Max(Math.Abs(even), 0.1 * evens.Max(Math.Abs)), EvenFloor * along);
 
     /// <summary>Runs the loop.</summary>
     public static MeshRefinement Run(
@@ -147,7 +156,9 @@ internal sealed class MeshRefinement
         foreach (IReadOnlyList<GoalMeasure> goals in perPlan)
         {
             double[] evens = [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
-            all.AddRange(goals.Select(g => g with { Wanted = Wanted(device.Mesh, along, evens, g.IsEven ? g.Value : null) }));
+            all.AddRange(goals.Select(g => g with { Wanted = g.IsEven
+                ? WantedEven(device.Mesh, along, evens, g.Value)
+                : Wanted(device.Mesh, along, g.Value) }));
         }
 
         return all;

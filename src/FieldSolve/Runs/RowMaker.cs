@@ -34,9 +34,12 @@ internal sealed class RowMaker
 
         var readings = new List<Reading>();
         double rest = Math.Max(here.Outcome.RelativeResidual, opposite?.Outcome.RelativeResidual ?? 0);
-        double floor = (RoundingShare + rest) * here.Values.Max(Math.Abs);
         for (int k = 0; k < plan.Count; k++)
         {
+            // A left-over current moves a reading by its share of what the reading's own resistance makes of the current: the sheet's for probes, with
+            // the contacts' for the source.
+            double own = plan.Pairs[k].Name == ReadingPlan.Source ? Math.Abs(here.Values[k]) : along;
+            double floor = (RoundingShare * here.Values.Max(Math.Abs)) + (rest * own);
             double error = Bar(plan, k, false, current, here.Difference![k]) + floor;
             double guard = here.Zone!.Share[k];
             if (opposite is null)
@@ -65,12 +68,12 @@ internal sealed class RowMaker
         for (int k = 0; k < readings.Count; k++)
         {
             Reading r = readings[k];
-            double wanted = MeshRefinement.Wanted(device.Mesh, along, evens, null);
+            double wanted = MeshRefinement.Wanted(device.Mesh, along, r.Value);
             outside |= exit is not null && Math.Abs(r.GuardShare) > wanted;
             coarse |= r.Error > wanted;
             if (plan.HasEven[k] && r.Even is { } even)
             {
-                double wantedEven = MeshRefinement.Wanted(device.Mesh, along, evens, even);
+                double wantedEven = MeshRefinement.WantedEven(device.Mesh, along, evens, even);
                 outside |= exit is not null && Math.Abs(r.EvenGuardShare) > wantedEven;
                 coarse |= r.EvenError > wantedEven;
             }

@@ -156,9 +156,12 @@ internal sealed class MeshRefinement
         foreach (IReadOnlyList<GoalMeasure> goals in perPlan)
         {
             double[] evens = [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
-            all.AddRange(goals.Select(g => g with { Wanted = g.IsEven
+            all.AddRange(goals.Select(g => g with
+            {
+                Wanted = g.IsEven
                 ? WantedEven(device.Mesh, along, evens, g.Value)
-                : Wanted(device.Mesh, along, g.Value) }));
+                : Wanted(device.Mesh, along, g.Value)
+            }));
         }
 
         return all;

@@ -79,7 +79,7 @@ public class VanDerPauwTests(ITestOutputHelper output)
             DeviceText text = DeviceText.Disc(Radius, DeviceText.Ohmic(Sigma, Sigma, Sigma * Math.Tan(hallAngle)))
                 .Arc("b", 90, Small, Radius).Arc("d", 270, Small, Radius).RimTip("c", 180, Radius);
             text = wide ? text.Arc("a", 0, LengthOverDiameter * 180 / Math.PI, Radius) : text.RimTip("a", 0, Radius);
-            
+
             // The loss is a small part of a voltage that is itself small beside the source's, which the wanted error counts from.
             return TestDrive.Run(text.Wiring("bd", "b", "d", null, "a c").Drive(Current).Wanted(2e-6)).Rows[0].Of("across")!.Value;
         }

@@ -148,7 +148,16 @@ public sealed record DriveSpec(double From, double To, int Steps, bool BothSigns
     /// <summary>The list of currents, A.</summary>
     public IReadOnlyList<double> Currents { get; } = Steps == 1
         ? [From]
-        : [.. Enumerable.Range(0, Steps).Select(k => ((From * (Steps - 1 - k)) + (To * k)) / (Steps - 1))];
+        : [.. Enumerable.Range(0, Steps).Select(k => k == 0 ? From : k == Steps - 1 ? To : Between(From, To, k, Steps - 1))];
+
+    // In decimals where they reach, so that 25 uA is written 2.5E-05 and not 2.5000000000000005E-05.
+    private static double Between(double from, double to, int k, int n)
+    {
+        double largest = Math.Max(Math.Abs(from), Math.Abs(to));
+        return largest is > 1e-12 and < 1e12
+            ? (double)((((decimal)from * (n - k)) + ((decimal)to * k)) / n)
+            : ((from * (n - k)) + (to * k)) / n;
+    }
 }
 
 /// <summary>Wanted numerical accuracy.</summary>

@@ -45,6 +45,7 @@ public static class Summaries
     {
         var points = rows
             .Where(r => r.Status is RowStatus.Ok or RowStatus.ErrorAboveWanted && r.Of("along")?.Odd is not null && r.Of("across")?.Even is not null)
+            .DistinctBy(r => Math.Abs(r.Current))
             .Select(r => (X: r.Of("along")!.Odd!.Value * r.Of("along")!.Odd!.Value, Y: r.Of("across")!.Even!.Value))
             .DistinctBy(p => p.X)
             .ToList();

@@ -26,8 +26,8 @@ internal sealed record GoalMeasure(
 /// <summary>Estimates the errors of all readings of one wiring at the largest current, by coarse and fine solutions at +I and -I.</summary>
 internal static class LevelMeasure
 {
-    // The even part weighs the strong fields at contact ends more than a linear reading does, and converges more slowly there; measured on the sample
-    // devices against meshes fifty times finer in error.
+    // The even part weighs the strong fields at contact ends more than a linear reading does, and converges more slowly there. Chosen so that the
+    // second-order disc with 45 degree arcs, whose exact value is known (benchmarks/accuracy.md), stays within twice its bar on every mesh.
     private const double EvenAllowance = 2;
     private const int MostHalvings = 20;
 

@@ -89,7 +89,7 @@ public class QuantityTests
     [InlineData("5 m^0", 6, "small integer")]
     [InlineData("5 m2", 4, "'2' is not expected")]
     [InlineData("5 6 um", 3, "'6' is not expected")]
-    [InlineData("2 1/m", 3, "'1' is not expected")]
+    [InlineData("2 1 m", 3, "'1' is not expected")]
     [InlineData("5 (um)", 3, "'(' is not expected")]
     [InlineData("5 A//m", 5, "'/' is not expected")]
     public void What_is_no_quantity(string text, int column, string fragment)

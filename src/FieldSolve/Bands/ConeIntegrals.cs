@@ -14,7 +14,6 @@ internal sealed class ConeIntegrals
     private readonly LineMoments lines;
     private readonly int[] groups;
     private readonly CancellationToken cancel;
-    private bool reached = true;
 
     private ConeIntegrals(BandModel model, Cone cone, CancellationToken cancel)
     {
@@ -34,9 +33,7 @@ internal sealed class ConeIntegrals
     /// <param name="cancel">Stops the quadrature.</param>
     public static IntegralSet Of(BandModel model, Cone cone, CancellationToken cancel)
     {
-        var work = new ConeIntegrals(model, cone, cancel);
-        IntegralSet set = work.OverEnergy();
-        return set with { Reached = set.Reached && work.reached && work.lines.Reached };
+        return new ConeIntegrals(model, cone, cancel).OverEnergy();
     }
 
     private IntegralSet OverEnergy()
@@ -46,7 +43,7 @@ internal sealed class ConeIntegrals
         {
             double[] values = new double[groups.Length], errors = new double[groups.Length];
             AtEnergy(level, 1, values, errors);
-            return new(values, errors, true);
+            return new(values, errors);
         }
 
         // In x = (E - µ) / kT the weight is 1 / (4 cosh²(x/2)). Band edges and the node are where the integrand is not smooth.
@@ -88,7 +85,6 @@ internal sealed class ConeIntegrals
                 lines.Add(ConeSlice.At(cone, kappa), energy - (tc * kappa), inPlane, thickness / (2 * Math.PI * hc), v, e);
             },
             breaks, groups, 0.3 * model.Error, cancel);
-        reached &= cuts.Reached;
         for (int c = 0; c < values.Length; c++)
         {
             values[c] += factor * cuts.Values[c];

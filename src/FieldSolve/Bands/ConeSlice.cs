@@ -10,11 +10,12 @@ namespace FieldSolve.Bands;
 /// <param name="TiltB">t_b = w_b / v_b.</param>
 /// <param name="Mass">≥ 0, J.</param>
 /// <param name="Berry">Mass with the sign that the Berry curvature follows; 0 where the bands have none.</param>
-internal readonly record struct ConeSlice(double VelocityA, double VelocityB, double TiltA, double TiltB, double Mass, double Berry)
+/// <param name="IsCut">Through a three-dimensional cone.</param>
+internal readonly record struct ConeSlice(double VelocityA, double VelocityB, double TiltA, double TiltB, double Mass, double Berry, bool IsCut)
 {
     /// <summary>A two-dimensional cone.</summary>
     public static ConeSlice Of(Cone c) => new(
-        c.VelocityA, c.VelocityB, c.TiltA / c.VelocityA, c.TiltB / c.VelocityB, 0.5 * c.Gap, 0.5 * c.Gap * c.Chirality);
+        c.VelocityA, c.VelocityB, c.TiltA / c.VelocityA, c.TiltB / c.VelocityB, 0.5 * c.Gap, 0.5 * c.Gap * c.Chirality, false);
 
     /// <summary>
     /// The cut at κ = ħ v_c k_c. κ acts as a mass. Without a gap the cone is a Weyl cone, whose cuts have the Berry curvature of this
@@ -22,7 +23,7 @@ internal readonly record struct ConeSlice(double VelocityA, double VelocityB, do
     /// </summary>
     public static ConeSlice At(Cone c, double kappa) => new(
         c.VelocityA, c.VelocityB, c.TiltA / c.VelocityA, c.TiltB / c.VelocityB,
-        Math.Sqrt((0.25 * c.Gap * c.Gap) + (kappa * kappa)), c.Gap > 0 ? 0 : c.Chirality * kappa);
+        Math.Sqrt((0.25 * c.Gap * c.Gap) + (kappa * kappa)), c.Gap > 0 ? 0 : c.Chirality * kappa, true);
 
     /// <summary>|t|.</summary>
     public double Tilt => Math.Sqrt((TiltA * TiltA) + (TiltB * TiltB));

@@ -9,17 +9,37 @@ internal delegate void Integrand(double x, Span<double> values, Span<double> err
 /// <summary>Integrals of several components and their estimated errors.</summary>
 /// <param name="Values">Integrals.</param>
 /// <param name="Errors">Estimated errors: of the rule, plus the integral of the integrand's own errors.</param>
-/// <param name="Reached">False when the wanted error was not reached.</param>
-internal sealed record IntegralSet(double[] Values, double[] Errors, bool Reached);
+internal sealed record IntegralSet(double[] Values, double[] Errors)
+{
+    /// <summary>True when every error is within a share of the largest value of the component's group.</summary>
+    public bool Meets(double share, int[] groups)
+    {
+        double[] scale = Scales(Values, groups);
+        return Enumerable.Range(0, groups.Length).All(c => Errors[c] <= share * scale[groups[c]]);
+    }
+
+    /// <summary>Largest size of each group.</summary>
+    public static double[] Scales(double[] values, int[] groups)
+    {
+        double[] scale = new double[groups.Max() + 1];
+        for (int c = 0; c < groups.Length; c++)
+        {
+            scale[groups[c]] = Math.Max(scale[groups[c]], Math.Abs(values[c]));
+        }
+
+        return scale;
+    }
+}
 
 /// <summary>
 /// Adaptive Gauss-Kronrod quadrature (7 and 15 points) of several components at once: the piece with the largest error is
 /// halved until every component is within the wanted share of the largest one of its group. Rule and error estimate: R. Piessens
-/// et al., QUADPACK, Springer 1983.
+/// et al., QUADPACK, Springer 1983. Between two breaks the variable is x = from + (to - from)(3s² - 2s³), which makes square roots at
+/// the breaks (band edges, ends of a contour) smooth in s.
 /// </summary>
 internal static class GaussKronrod
 {
-    private const int MostPieces = 600;
+    private const int MostPieces = 300;
     private const double Rounding = 1e-15;
 
     private static readonly double[] Nodes =
@@ -39,7 +59,14 @@ internal static class GaussKronrod
     private static readonly double[] Gauss =
         [0.129484966168869693270611432679082, 0.279705391489276667901467771423780, 0.381830050505118944950369775488975, 0.417959183673469387755102040816327];
 
-    private sealed record Piece(double From, double To, double[] Values, double[] RuleErrors, double[] OwnErrors);
+    private readonly record struct Stretch(double From, double To)
+    {
+        public double At(double s) => From + ((To - From) * s * s * (3 - (2 * s)));
+
+        public double Slope(double s) => 6 * (To - From) * s * (1 - s);
+    }
+
+    private sealed record Piece(Stretch Of, double From, double To, double[] Values, double[] RuleErrors, double[] OwnErrors);
 
     /// <summary>Integrates over the pieces between neighbouring breaks.</summary>
     /// <param name="f">The integrand; it is not asked at the breaks.</param>
@@ -54,36 +81,24 @@ internal static class GaussKronrod
         {
             if (breaks[k] > breaks[k - 1])
             {
-                pieces.Add(Apply(f, breaks[k - 1], breaks[k], groups.Length));
+                pieces.Add(Apply(f, new(breaks[k - 1], breaks[k]), 0, 1, groups.Length));
             }
         }
 
-        double[] scale = new double[groups.Length == 0 ? 0 : groups.Max() + 1];
         while (true)
         {
             cancel.ThrowIfCancellationRequested();
             IntegralSet sum = Sum(pieces, groups.Length);
-            Array.Clear(scale);
-            for (int c = 0; c < groups.Length; c++)
-            {
-                scale[groups[c]] = Math.Max(scale[groups[c]], Math.Abs(sum.Values[c]));
-            }
-
-            (int worst, bool reached) = Worst(pieces, groups, scale, error);
+            (int worst, bool reached) = Worst(pieces, groups, IntegralSet.Scales(sum.Values, groups), error);
             if (reached || pieces.Count >= MostPieces)
             {
-                return sum with { Reached = reached };
+                return sum;
             }
 
             Piece old = pieces[worst];
             double middle = 0.5 * (old.From + old.To);
-            if (!(middle > old.From && middle < old.To))
-            {
-                return sum with { Reached = false };
-            }
-
-            pieces[worst] = Apply(f, old.From, middle, groups.Length);
-            pieces.Insert(worst + 1, Apply(f, middle, old.To, groups.Length));
+            pieces[worst] = Apply(f, old.Of, old.From, middle, groups.Length);
+            pieces.Insert(worst + 1, Apply(f, old.Of, middle, old.To, groups.Length));
         }
     }
 
@@ -125,10 +140,10 @@ internal static class GaussKronrod
             }
         }
 
-        return new(values, errors, true);
+        return new(values, errors);
     }
 
-    private static Piece Apply(Integrand f, double from, double to, int count)
+    private static Piece Apply(Integrand f, Stretch of, double from, double to, int count)
     {
         double middle = 0.5 * (from + to), half = 0.5 * (to - from);
         double[][] at = new double[15][];
@@ -138,12 +153,14 @@ internal static class GaussKronrod
             int node = k < 8 ? k : 14 - k;
             at[k] = new double[count];
             Array.Clear(errors);
-            f(middle + (half * (k < 7 ? -Nodes[node] : Nodes[node])), at[k], errors);
+            double s = middle + (half * (k < 7 ? -Nodes[node] : Nodes[node])), slope = of.Slope(s);
+            f(of.At(s), at[k], errors);
             for (int c = 0; c < count; c++)
             {
+                at[k][c] *= slope;
                 kronrod[c] += half * Kronrod[node] * at[k][c];
                 gauss[c] += node % 2 == 1 ? half * Gauss[node / 2] * at[k][c] : 0;
-                own[c] += half * Kronrod[node] * errors[c];
+                own[c] += half * Kronrod[node] * slope * errors[c];
             }
         }
 
@@ -160,6 +177,6 @@ internal static class GaussKronrod
             rule[c] = spread[c] > 0 && difference > 0 ? spread[c] * Math.Min(1, Math.Pow(200 * difference / spread[c], 1.5)) : difference;
         }
 
-        return new(from, to, kronrod, rule, own);
+        return new(of, from, to, kronrod, rule, own);
     }
 }

@@ -3,8 +3,8 @@ namespace FieldSolve.Bands;
 /// <summary>Integrals of <see cref="Moment"/> over the contour of one slice at one energy.</summary>
 internal sealed class LineMoments
 {
-    private const int FirstPoints = 32, MostPoints = 1 << 16;
-    private const double Rounding = 4e-16;
+    private const int FirstPoints = 32, MostPoints = 1 << 15;
+    private const double Rounding = 4e-16, Stalled = 1e-5;
 
     private readonly (double A, double B)[] across;
     private readonly int[] groups;
@@ -25,9 +25,6 @@ internal sealed class LineMoments
         inner = Moment.Profile;
     }
 
-    /// <summary>False once a line has missed the wanted error.</summary>
-    public bool Reached { get; private set; } = true;
-
     /// <summary>Adds the moments of a contour.</summary>
     /// <param name="slice">The cone or its cut.</param>
     /// <param name="energy">From the node, J.</param>
@@ -40,7 +37,6 @@ internal sealed class LineMoments
         foreach (FermiLine line in FermiLine.At(slice, energy, Math.Min(cut, cutOff)))
         {
             IntegralSet sums = line.IsClosed ? Closed(line, slice) : Open(line, slice);
-            Reached &= sums.Reached;
             for (int c = 0; c < inner; c++)
             {
                 values[c] += factor * sums.Values[c];
@@ -62,6 +58,7 @@ internal sealed class LineMoments
     // A smooth periodic integrand: equal steps converge faster than any power, and halving them reuses what is there.
     private IntegralSet Closed(FermiLine line, ConeSlice slice)
     {
+        double last = double.PositiveInfinity;
         double[] sum = new double[inner], previous = new double[inner], at = new double[inner], errors = new double[inner];
         for (int points = FirstPoints; ; points *= 2)
         {
@@ -77,24 +74,22 @@ internal sealed class LineMoments
                 }
             }
 
-            bool reached = !first;
-            double[] scale = new double[groups.Max() + 1];
+            double worst = 0;
+            double[] now = [.. sum.Select(v => step * v)], scale = IntegralSet.Scales(now, groups[..inner]);
             for (int c = 0; c < inner; c++)
             {
-                scale[groups[c]] = Math.Max(scale[groups[c]], Math.Abs(step * sum[c]));
+                errors[c] = Math.Abs(now[c] - previous[c]) + (Rounding * scale[groups[c]]);
+                worst = Math.Max(worst, scale[groups[c]] > 0 ? errors[c] / scale[groups[c]] : 0);
             }
 
-            for (int c = 0; c < inner; c++)
+            // Close to a band edge rounding is all that is left to see; more points would not help.
+            bool stalled = worst < Stalled && worst > 0.5 * last;
+            if (!first && (worst <= Math.Max(error, 4 * Rounding) || stalled || points >= MostPoints))
             {
-                errors[c] = Math.Abs((step * sum[c]) - previous[c]) + (Rounding * scale[groups[c]]);
-                reached &= errors[c] <= Math.Max(error, 4 * Rounding) * scale[groups[c]] || scale[groups[c]] == 0;
-                previous[c] = step * sum[c];
+                return new(now, errors);
             }
 
-            if (reached || points >= MostPoints)
-            {
-                return new(previous, errors, reached);
-            }
+            (previous, last) = (now, first ? double.PositiveInfinity : worst);
         }
     }
 
@@ -128,10 +123,14 @@ internal sealed class LineMoments
         m[Moment.Masses + 3] += w * mab * va;
         m[Moment.Masses + 4] += w * mbb * vb;
         m[Moment.Masses + 5] += w * 0.5 * ((mab * vb) + (mbb * va));
-        m[Moment.Masses + 6] += w * (Math.Abs(maa) + Math.Abs(mab) + Math.Abs(mbb)) * speed;
+        m[Moment.Masses + 6] += w * Math.Abs(maa + mbb) * speed; // one sign, and smooth: |m_ab| is no larger
         m[Moment.Dipole] += w * curvature * SiConstants.ReducedPlanck * va;
         m[Moment.Dipole + 1] += w * curvature * SiConstants.ReducedPlanck * vb;
         m[Moment.Dipole + 2] += w * Math.Abs(curvature) * SiConstants.ReducedPlanck * speed;
-        m[Moment.Flux] += s.Berry == 0 ? 0 : 0.5 * Math.Sign(s.Berry) * ((qa * db) - (qb * da)) / (e * (e + s.Mass));
+        if (!s.IsCut && s.Berry != 0)
+        {
+            m[Moment.Flux] += 0.5 * Math.Sign(s.Berry) * ((qa * db) - (qb * da)) / (e * (e + s.Mass));
+            m[Moment.Flux + 1] += 0.5;
+        }
     }
 }

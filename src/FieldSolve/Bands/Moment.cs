@@ -21,13 +21,13 @@ internal static class Moment
     /// <summary>Ω ħ v_a and Ω ħ v_b; then the sizes that bound them.</summary>
     public const int Dipole = 12;
 
-    /// <summary>½ ∮ (1 - |mass|/ε) dφ with the sign of the mass: the Berry flux of the states between node and contour.</summary>
+    /// <summary>½ ∮ (1 - |mass|/ε) dφ with the sign of the mass: the Berry flux of the states between node and contour; then the size that bounds it.</summary>
     public const int Flux = 15;
 
     /// <summary>First of the widths of the profile: half the variation of k across each direction, 1/m.</summary>
-    public const int Profile = 16;
+    public const int Profile = 17;
 
     /// <summary>Group of each component: those of a group share the scale of their error.</summary>
     public static int[] Groups(int directions) =>
-        [0, 1, 2, 2, 2, 3, 3, 3, 3, 3, 3, 3, 4, 4, 4, 5, .. Enumerable.Repeat(6, directions)];
+        [0, 1, 2, 2, 2, 3, 3, 3, 3, 3, 3, 3, 4, 4, 4, 5, 5, .. Enumerable.Repeat(6, directions)];
 }

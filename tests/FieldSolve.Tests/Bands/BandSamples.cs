@@ -43,6 +43,6 @@ internal static class BandSamples
     public static void Close(double expected, Estimate got, double relative)
     {
         Assert.Equal(expected, got.Value, Math.Abs(expected) * relative);
-        Assert.True(Math.Abs(expected - got.Value) <= got.Error + (1e-11 * Math.Abs(expected)), $"{got.Value} ± {got.Error} misses {expected}");
+        Assert.True(Math.Abs(expected - got.Value) <= got.Error + (1e-10 * Math.Abs(expected)), $"{got.Value} ± {got.Error} misses {expected}");
     }
 }

@@ -156,7 +156,11 @@ public class SecondOrderTests
     // Even part in E of the current of the upper band, from the shifted velocity and from the anomalous velocity.
     private static (double Ka, double Kb, double Ha, double Hb) EvenCurrent(Cone c, double kt, double ea, double eb)
     {
-        double delta = c.Gap / 2, reach = 1.6 * Level / (Hbar * Math.Min(c.VelocityA, c.VelocityB)), step = reach / 110;
+        double delta = c.Gap / 2, fast = Hbar * Math.Max(c.VelocityA, c.VelocityB);
+        double reach = (Level + (25 * kt)) / ((1 - c.Tilt) * Hbar * Math.Min(c.VelocityA, c.VelocityB));
+
+        // Equal steps over a smooth integrand that falls off; the poles of f lie πkT away, which gives errors of e^(-2π² kT / step).
+        double step = 0.6 * kt / fast;
 
         // Gauss-Laguerre, five points, for ∫ e^-x g(x) dx (M. Abramowitz, I. A. Stegun, table 25.9): exact for all orders that matter.
         double[] x = [0.263560319718, 1.413403059107, 3.596425771041, 7.085810005859, 12.640800844276];
@@ -169,7 +173,7 @@ public class SecondOrderTests
             return -c.Chirality * 0.5 * Hbar * Hbar * c.VelocityA * c.VelocityB * delta / (e * e * e);
         }
 
-        double h = 1e-3 * step;
+        double h = 1e-2 * step;
         double ka = 0, kb = 0, omega = 0;
         for (double a = -reach; a <= reach; a += step)
         {

@@ -81,7 +81,7 @@ public static class BandPictures
             reach = sheet.Factor * response.Profile.Max(p => p.Sheet.Value);
             Plot boltzmann = Square("Sheet conductance n·σ·n", $"x part ({sheet.Unit})", $"y part ({sheet.Unit})", reach);
             AddPolar(boltzmann, reach);
-            Add(boltzmann, Closed(response.Profile.Select(p => Polar(p.Direction, p.Sheet.Value))), sheet.Factor, computed);
+            Add(boltzmann, Around(d => AlongDirection(result.Law, d)), sheet.Factor, computed);
             return Figure.Rows([ballistic, boltzmann], 2, Width, Height).WithKeyRight([computed, fitted with { Name = "tensor (cos 2θ)" }]);
         }
 
@@ -150,6 +150,9 @@ public static class BandPictures
             Add(plot, [(-x, -y), (x, y)], 1, thin);
         }
     }
+
+    private static double AlongDirection(BandLaw law, double direction) =>
+        law.B + ((law.A - law.B) * Math.Pow(Math.Cos(direction - law.Axis), 2));
 
     private static IEnumerable<(double X, double Y)> Around(Func<double, double> value) =>
         Enumerable.Range(0, 361).Select(k => Polar(k * Math.PI / 180, value(k * Math.PI / 180)));

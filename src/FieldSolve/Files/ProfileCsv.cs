@@ -34,7 +34,7 @@ public static class ProfileCsv
         for (int k = 0; k < profile.Values.Count; k++)
         {
             double v = profile.Values[k], fit = result.Fit.Fitted[k];
-            Line(new double?[] { profile.Directions[k] * 180 / Math.PI, v, profile.Errors?[k], fit, v - fit }.Select(Digits.Of));
+            Line(new double?[] { Math.Round(profile.Directions[k] * 180 / Math.PI, 10), v, profile.Errors?[k], fit, v - fit }.Select(Digits.Of));
         }
 
         return text.ToString();

@@ -24,6 +24,7 @@ internal static class BandsText
         Line("sheet conductance along b", Engineering.Text(law.B, "S", 6));
         if (result.Response is { } r)
         {
+            Line("relative error of their quadrature", Text($"{Math.Max(r.A.Error / r.A.Value, r.B.Error / r.B.Value):G2}"));
             Line("Hall sheet conductance", r.Hall is null ? "not known, left at 0" : Engineering.Text(law.Hall, "S", 6));
             foreach ((string name, Estimate sum) in r.Total.Elements.Where(e => law.IsQuadratic && !e.Number.IsZero))
             {

@@ -105,7 +105,7 @@ public static class BandSolver
             FieldLimit = model.Shift * Hbar * smallest / (Charge * tau),
             Profile = Profile(model, widths, principal, axis),
             Shares = shares,
-            Reached = sets.All(s => s.Meets(model.Error, Moment.Groups(widths.Length))),
+            Reached = sets.All(s => s.Meets(Moment.Shares(model.Error, model.CutOff is not null), Moment.Groups(widths.Length))),
         };
     }
 

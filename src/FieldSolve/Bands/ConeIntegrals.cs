@@ -23,7 +23,8 @@ internal sealed class ConeIntegrals
             (double sin, double cos) = Math.SinCos((2 * Math.PI * k / model.Directions) - model.Axis - cone.Angle);
             return (-sin, cos);
         })];
-        lines = new(across, 0.1 * model.Error, model.CutOff ?? double.PositiveInfinity, cancel);
+        // What is inside has to be better than what is outside, whose rule would take its error for structure.
+        lines = new(across, 0.02 * model.Error, model.CutOff ?? double.PositiveInfinity, cancel);
         groups = Moment.Groups(across.Length);
     }
 
@@ -59,7 +60,7 @@ internal sealed class ConeIntegrals
                 double cosh = Math.Cosh(0.5 * x);
                 AtEnergy(level + (kT * x), 0.25 / (cosh * cosh), values, errors);
             },
-            breaks, groups, model.Error, cancel);
+            breaks, groups, Moment.Shares(0.5 * model.Error, model.CutOff is not null), cancel);
     }
 
     private void AtEnergy(double energy, double factor, Span<double> values, Span<double> errors)
@@ -84,7 +85,7 @@ internal sealed class ConeIntegrals
                 double kc = kappa / hc, inPlane = double.IsPositiveInfinity(cutOff) ? cutOff : Math.Sqrt(Math.Max(0, (cutOff - kc) * (cutOff + kc)));
                 lines.Add(ConeSlice.At(cone, kappa), energy - (tc * kappa), inPlane, thickness / (2 * Math.PI * hc), v, e);
             },
-            breaks, groups, 0.3 * model.Error, cancel);
+            breaks, groups, Moment.Shares(0.1 * model.Error, model.CutOff is not null), cancel);
         for (int c = 0; c < values.Length; c++)
         {
             values[c] += factor * cuts.Values[c];

@@ -6,8 +6,8 @@ namespace FieldSolve.Bands;
 /// </summary>
 internal sealed class FermiLine
 {
-    private const int ScanSteps = 512;
-    private const int Halvings = 60;
+    private const int ScanSteps = 160;
+    private const int Halvings = 50;
 
     private readonly ConeSlice slice;
     private readonly (double A, double B) c, e1, e2;

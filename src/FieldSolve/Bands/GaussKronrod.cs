@@ -11,11 +11,11 @@ internal delegate void Integrand(double x, Span<double> values, Span<double> err
 /// <param name="Errors">Estimated errors: of the rule, plus the integral of the integrand's own errors.</param>
 internal sealed record IntegralSet(double[] Values, double[] Errors)
 {
-    /// <summary>True when every error is within a share of the largest value of the component's group.</summary>
-    public bool Meets(double share, int[] groups)
+    /// <summary>True when every error is within a share, given for each group, of the largest value of the group.</summary>
+    public bool Meets(double[] shares, int[] groups)
     {
         double[] scale = Scales(Values, groups);
-        return Enumerable.Range(0, groups.Length).All(c => Errors[c] <= share * scale[groups[c]]);
+        return Enumerable.Range(0, groups.Length).All(c => Errors[c] <= shares[groups[c]] * scale[groups[c]]);
     }
 
     /// <summary>Largest size of each group.</summary>
@@ -41,6 +41,9 @@ internal static class GaussKronrod
 {
     private const int MostPieces = 300;
     private const double Rounding = 1e-15;
+
+    /// <summary>Differences of the two rules up to this many times the integrand's own error are that error: halving does not help.</summary>
+    private const double Noise = 5;
 
     private static readonly double[] Nodes =
     [
@@ -72,9 +75,9 @@ internal static class GaussKronrod
     /// <param name="f">The integrand; it is not asked at the breaks.</param>
     /// <param name="breaks">Ascending; places where the integrand is not smooth belong to them.</param>
     /// <param name="groups">Group of each component, from 0 on.</param>
-    /// <param name="error">Wanted error over the largest integral of the group.</param>
+    /// <param name="shares">Wanted error of each group over its largest integral.</param>
     /// <param name="cancel">Stops between pieces.</param>
-    public static IntegralSet Integrate(Integrand f, IReadOnlyList<double> breaks, int[] groups, double error, CancellationToken cancel)
+    public static IntegralSet Integrate(Integrand f, IReadOnlyList<double> breaks, int[] groups, double[] shares, CancellationToken cancel)
     {
         List<Piece> pieces = [];
         for (int k = 1; k < breaks.Count; k++)
@@ -89,7 +92,7 @@ internal static class GaussKronrod
         {
             cancel.ThrowIfCancellationRequested();
             IntegralSet sum = Sum(pieces, groups.Length);
-            (int worst, bool reached) = Worst(pieces, groups, IntegralSet.Scales(sum.Values, groups), error);
+            (int worst, bool reached) = Worst(pieces, groups, IntegralSet.Scales(sum.Values, groups), shares);
             if (reached || pieces.Count >= MostPieces)
             {
                 return sum;
@@ -102,9 +105,25 @@ internal static class GaussKronrod
         }
     }
 
-    private static (int Piece, bool Reached) Worst(List<Piece> pieces, int[] groups, double[] scale, double error)
+    private static (int Piece, bool Reached) Worst(List<Piece> pieces, int[] groups, double[] scale, double[] shares)
     {
-        double[] total = new double[groups.Length];
+        double[] total = new double[groups.Length], allowed = new double[groups.Length];
+        foreach (Piece p in pieces)
+        {
+            for (int c = 0; c < groups.Length; c++)
+            {
+                total[c] += p.RuleErrors[c];
+                allowed[c] += Noise * p.OwnErrors[c];
+            }
+        }
+
+        bool reached = true;
+        for (int c = 0; c < groups.Length; c++)
+        {
+            allowed[c] = Math.Max(allowed[c], shares[groups[c]] * scale[groups[c]]);
+            reached &= total[c] <= allowed[c];
+        }
+
         int worst = 0;
         double most = -1;
         for (int p = 0; p < pieces.Count; p++)
@@ -112,17 +131,10 @@ internal static class GaussKronrod
             double share = 0;
             for (int c = 0; c < groups.Length; c++)
             {
-                total[c] += pieces[p].RuleErrors[c];
-                share = Math.Max(share, scale[groups[c]] > 0 ? pieces[p].RuleErrors[c] / scale[groups[c]] : 0);
+                share = total[c] > allowed[c] ? Math.Max(share, allowed[c] > 0 ? pieces[p].RuleErrors[c] / allowed[c] : pieces[p].RuleErrors[c] > 0 ? double.MaxValue : 0) : share;
             }
 
             (worst, most) = share > most ? (p, share) : (worst, most);
-        }
-
-        bool reached = true;
-        for (int c = 0; c < groups.Length; c++)
-        {
-            reached &= total[c] <= error * scale[groups[c]];
         }
 
         return (worst, reached);
@@ -174,7 +186,7 @@ internal static class GaussKronrod
             }
 
             double difference = Math.Abs(kronrod[c] - gauss[c]);
-            rule[c] = spread[c] > 0 && difference > 0 ? spread[c] * Math.Min(1, Math.Pow(200 * difference / spread[c], 1.5)) : difference;
+            rule[c] = spread[c] > 0 && difference > Noise * own[c] ? spread[c] * Math.Min(1, Math.Pow(200 * difference / spread[c], 1.5)) : difference;
         }
 
         return new(of, from, to, kronrod, rule, own);

@@ -9,6 +9,7 @@ internal sealed class LineMoments
     private readonly (double A, double B)[] across;
     private readonly int[] groups;
     private readonly int inner;
+    private readonly double[] shares;
     private readonly double error;
     private readonly double cutOff;
     private readonly CancellationToken cancel;
@@ -23,6 +24,7 @@ internal sealed class LineMoments
         (this.across, this.error, this.cutOff, this.cancel) = (across, error, cutOff, cancel);
         groups = Moment.Groups(across.Length);
         inner = Moment.Profile;
+        shares = Moment.Shares(error, false);
     }
 
     /// <summary>Adds the moments of a contour.</summary>
@@ -94,7 +96,7 @@ internal sealed class LineMoments
     }
 
     private IntegralSet Open(FermiLine line, ConeSlice slice) => GaussKronrod.Integrate(
-        (u, values, _) => At(line, slice, u, values), [line.Start, 0.5 * (line.Start + line.End), line.End], groups[..inner], error, cancel);
+        (u, values, _) => At(line, slice, u, values), [line.Start, 0.5 * (line.Start + line.End), line.End], groups[..inner], shares, cancel);
 
     private static void At(FermiLine line, ConeSlice s, double u, Span<double> m)
     {

@@ -30,4 +30,18 @@ internal static class Moment
     /// <summary>Group of each component: those of a group share the scale of their error.</summary>
     public static int[] Groups(int directions) =>
         [0, 1, 2, 2, 2, 3, 3, 3, 3, 3, 3, 3, 4, 4, 4, 5, 5, .. Enumerable.Repeat(6, directions)];
+
+    /// <summary>
+    /// Wanted error of each group. With a cut-off the widths of the profile have a kink wherever an end of the contour passes the
+    /// outermost point, for each direction elsewhere: a ten-thousandth is asked for there.
+    /// </summary>
+    /// <param name="error">Wanted relative error of the rest.</param>
+    /// <param name="cutOff">A cut-off is given.</param>
+    public static double[] Shares(double error, bool cutOff) =>
+        [error, cutOff ? Coarse(error) : error, error, error, error, error, cutOff ? Coarse(error) : error];
+
+    // A hundred times the rest, up to a ten-thousandth at the outermost integral.
+    private static double Coarse(double error) => Math.Max(error, Math.Min(100 * error, LeastOfCut));
+
+    private const double LeastOfCut = 1e-4;
 }

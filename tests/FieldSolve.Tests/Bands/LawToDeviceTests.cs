@@ -42,8 +42,8 @@ public class LawToDeviceTests
         current = { from = "50 uA", to = "50 uA", steps = 1 }
         both_signs = true
         [mesh]
-        error = 1e-3
-        even_error = 1e-2
+        error = 2e-3
+        even_error = 3e-2
         """;
 
     [Fact]

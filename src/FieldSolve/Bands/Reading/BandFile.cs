@@ -9,6 +9,15 @@ public static class BandFile
 {
     private const int FewestDirections = 8, MostDirections = 3600, MostCones = 100;
 
+    /// <summary>Energies beyond this are slips; squares of far larger ones would overflow.</summary>
+    internal static readonly Range Energy = new(-1e3 * SiConstants.Charge, 1e3 * SiConstants.Charge, "at most 1 keV either way");
+
+    private static readonly Range Temperature = new(0, 1e5, "from 0 K to 100000 K");
+
+    private static readonly Range Time = new(1e-18, 1, "from 1e-18 s to 1 s");
+
+    private static readonly Range WaveNumber = new(1, 1e12, "from 1 1/m to 1e12 1/m");
+
     private static readonly InputWords Words = new(
         "a bands file",
         "a bands file has at least a [[cone]], 'chemical_potential' and 'relaxation_time', or a [profile]",
@@ -96,7 +105,7 @@ public static class BandFile
     private static BandModel? Model(Section root, string title, double axis)
     {
         double? thickness = root.Quantity("thickness", Dimension.Length, Range.Extent);
-        double? cutOff = root.Quantity("cut_off", Dimension.WaveNumber, Range.Positive);
+        double? cutOff = root.Quantity("cut_off", Dimension.WaveNumber, WaveNumber);
         IReadOnlyList<TomlTable> tables = root.Tables("cone");
         if (tables.Count > MostCones)
         {
@@ -112,11 +121,11 @@ public static class BandFile
         ConeReader reader = new(root.Faults, thickness is not null || root.Take("thickness") is not null, cutOff is not null || root.Take("cut_off") is not null);
         Cone?[] cones = [.. tables.Select(reader.Read)];
         TomlEntry? levelEntry = root.Take("chemical_potential");
-        double? level = root.Quantity("chemical_potential", Dimension.Energy, Range.Any, required: true);
-        double? tau = root.Quantity("relaxation_time", Dimension.Time, Range.Positive, required: true, "0.2 ps");
-        double temperature = root.Quantity("temperature", Dimension.Temperature, Range.NonNegative) ?? 0;
+        double? level = root.Quantity("chemical_potential", Dimension.Energy, Energy, required: true);
+        double? tau = root.Quantity("relaxation_time", Dimension.Time, Time, required: true, "0.2 ps");
+        double temperature = root.Quantity("temperature", Dimension.Temperature, Temperature) ?? 0;
         double shift = root.Number("shift", new(1e-6, 1, "between 1e-6 and 1")) ?? 0.1;
-        double error = root.Number("error", new(1e-12, 1e-2, "between 1e-12 and 1e-2")) ?? 1e-8;
+        double error = root.Number("error", new(1e-12, 1e-2, "between 1e-12 and 1e-2")) ?? (cutOff is null ? 1e-8 : thickness is null ? 1e-6 : 1e-3);
         TomlEntry? directionsEntry = root.Take("directions");
         double directions = root.Number("directions", new(FewestDirections, MostDirections, "from 8 to 3600"), integer: true) ?? 72;
         if (directions % 2 != 0)
@@ -131,7 +140,7 @@ public static class BandFile
         }
 
         double reach = ConeIntegrals.Tail * SiConstants.Boltzmann * temperature;
-        if (good.All(c => Math.Abs(mu - c.Offset) + reach <= c.BandEdge))
+        if (good.All(c => c.Tilt < 1 && Math.Abs(mu - c.Offset) + reach <= c.BandEdge))
         {
             root.Faults.Add(
                 levelEntry!.Value.At,

@@ -15,6 +15,8 @@ internal sealed class ConeReader(FaultList faults, bool isFilm, bool hasCutOff)
 
     private static readonly Range Velocity = new(1, SpeedOfLight, "from 1 m/s to the speed of light");
 
+    private static readonly Range Gap = new(0, 1e3 * SiConstants.Charge, "zero or greater (to 1 keV)");
+
     private static readonly Range TiltVelocity = new(-SpeedOfLight, SpeedOfLight, "below the speed of light");
 
     private static readonly Range TiltRatio = new(-1e3, 1e3, "at most 1000 either way");
@@ -41,8 +43,8 @@ internal sealed class ConeReader(FaultList faults, bool isFilm, bool hasCutOff)
         double? vc = isFilm ? section.Quantity("v_c", Dimension.Velocity, Velocity, required: true) : NotInPlane(section, "v_c");
         double ta = Tilt(section, "tilt_a", va), tb = Tilt(section, "tilt_b", vb);
         double tc = isFilm ? Tilt(section, "tilt_c", vc) : NotInPlane(section, "tilt_c") ?? 0;
-        double offset = section.Quantity("offset", Dimension.Energy, Range.Any) ?? 0;
-        double gap = section.Quantity("gap", Dimension.Energy, Range.NonNegative) ?? 0;
+        double offset = section.Quantity("offset", Dimension.Energy, BandFile.Energy) ?? 0;
+        double gap = section.Quantity("gap", Dimension.Energy, Gap) ?? 0;
         double degeneracy = section.Number("degeneracy", new(1e-6, 1e6, "greater than zero (1e-6 to 1e6)")) ?? 1;
         double angle = section.Quantity("angle", Dimension.Angle, Range.Angle) ?? 0;
         int chirality = Chirality(section);

@@ -35,13 +35,13 @@ internal sealed class MeshPair
     /// <summary>Per coarse triangle: error that remains on the fine mesh, as a share of the difference between the two meshes.</summary>
     public double[] Remaining { get; }
 
-    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
         FieldLevel? coarse = null, fine = null;
         Parallel.Invoke(
             new ParallelOptions { CancellationToken = cancel },
-            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel),
-            () => coarse = FieldLevel.Build(device, mesh, law, cancel));
+            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground),
+            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground));
         return new(coarse!, fine!);
     }
 

@@ -1,0 +1,97 @@
+using FieldSolve.Readings;
+using FieldSolve.Runs;
+
+namespace FieldSolve.Lockin;
+
+/// <summary>Harmonics of all readings of one wiring at one amplitude, quasi-static, with their errors. Arrays by reading, then harmonic 0 to 5.</summary>
+internal sealed class CycleMeasure
+{
+    // As for the even part of a drive: what is not linear in the drive weighs the strong fields at contact ends more and converges more slowly there.
+    private const double NonLinearAllowance = 2;
+
+    // Readings are differences of potentials; nothing below this share of the largest is resolved.
+    private const double RoundingShare = 2e-13;
+
+    private CycleMeasure(CycleStates cycle, int readings)
+    {
+        Cycle = cycle;
+        Amplitude = Table(readings, PhaseNodes.Doubled.Intervals + 1);
+        Error = Table(readings, PhaseNodes.HighestHarmonic + 1);
+        Guard = Table(readings, PhaseNodes.HighestHarmonic + 1);
+        Shift = new (double, double)[readings][];
+    }
+
+    public CycleStates Cycle { get; private set; }
+
+    /// <summary>Peak amplitudes along cos(k (pi/2 - theta)), V; up to the highest order that the doubled phases give.</summary>
+    public double[][] Amplitude { get; }
+
+    /// <summary>Estimated error of the peak amplitude, V.</summary>
+    public double[][] Error { get; }
+
+    /// <summary>Influence of the law's guard on the peak amplitude, V.</summary>
+    public double[][] Guard { get; }
+
+    /// <summary>Parts along sin and cos, peak, that the gate's charge adds per radian per second, to first order; V s.</summary>
+    public (double Sine, double Cosine)[][] Shift { get; }
+
+    public static CycleMeasure Of(MeshPair meshes, ReadingPlan plan, CycleStates cycle)
+    {
+        PhaseNodes few = PhaseNodes.Base, many = PhaseNodes.Doubled;
+        IReadOnlyList<PhaseState> states = cycle.Base;
+        var measure = new CycleMeasure(cycle, plan.Count);
+        for (int k = 0; k < plan.Count; k++)
+        {
+            double[] fine = [.. states.Select(s => s.FineValues[k])];
+            double[] coarse = [.. states.Select(s => s.CoarseValues[k])], doubled = [.. cycle.States.Select(s => s.CoarseValues[k])];
+
+            // A left-over residual moves a reading by its share of the reading's own resistance, and no further than the source's voltage.
+            double floor = (RoundingShare + cycle.LargestResidual) * states.Max(s => s.FineValues.Max(Math.Abs));
+            for (int h = 0; h <= many.Intervals; h++)
+            {
+                double phases = many.Amplitude(h, doubled) - (h < few.Intervals ? few.Amplitude(h, coarse) : 0);
+                measure.Amplitude[k][h] = (h < few.Intervals ? few.Amplitude(h, fine) : 0) + phases;
+                if (h > PhaseNodes.HighestHarmonic)
+                {
+                    continue;
+                }
+
+                var terms = new (double, double[], double[])[states.Count];
+                for (int j = 0; j < terms.Length; j++)
+                {
+                    terms[j] = (few.Weight(h, j), states[j].Residual, states[j].Details[k]);
+                    measure.Guard[k][h] += few.Weight(h, j) * states[j].GuardShare[k];
+                }
+
+                GoalError error = GoalError.Of(meshes.Between, meshes.Remaining, h == 1 ? 1 : NonLinearAllowance, terms);
+                measure.Error[k][h] = error.Bar + Math.Abs(phases) + floor;
+            }
+
+            measure.Shift[k] = states[0].Lag.Length == 0 ? [] : Shifts(cycle, k);
+        }
+
+        return measure;
+    }
+
+    /// <summary>The same without the potentials.</summary>
+    public CycleMeasure WithoutStates()
+    {
+        Cycle = Cycle with { States = [] };
+        return this;
+    }
+
+    // V_1(theta) = lag(I(theta)) dI/dt: harmonics of the product over the whole cycle, by the trapezoidal rule.
+    private static (double Sine, double Cosine)[] Shifts(CycleStates cycle, int reading)
+    {
+        PhaseNodes few = PhaseNodes.Base;
+        double[] rate = new double[few.Phases];
+        for (int m = 0; m < rate.Length; m++)
+        {
+            rate[m] = cycle.Base[few.NodeAt(m)].Lag[reading] * cycle.Amplitude * Math.Cos(2 * Math.PI * m / rate.Length);
+        }
+
+        return [.. Enumerable.Range(0, PhaseNodes.HighestHarmonic + 1).Select(h => CycleTransform.Harmonic(rate, h))];
+    }
+
+    private static double[][] Table(int rows, int columns) => [.. Enumerable.Range(0, rows).Select(_ => new double[columns])];
+}

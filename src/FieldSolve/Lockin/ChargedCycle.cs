@@ -1,4 +1,6 @@
+using FieldSolve.Device;
 using FieldSolve.Runs;
+using FieldSolve.Solving;
 using FieldSolve.Sparse;
 
 namespace FieldSolve.Lockin;
@@ -8,6 +10,10 @@ internal sealed class ChargedCycle
 {
     // Below this shift of the source's first harmonic, relative to itself, the first order in the frequency is all: the second is its square.
     private const double FirstOrderIsEnough = 1e-5;
+
+    // The phases may take this share of a wanted error.
+    private const double PhaseShare = 0.2;
+    private const double EvenFloor = 1e-8;
 
     private ChargedCycle(int readings)
     {
@@ -34,9 +40,11 @@ internal sealed class ChargedCycle
     /// <param name="plan">Wiring and pairs.</param>
     /// <param name="measure">The quasi-static harmonics.</param>
     /// <param name="frequency">Hz.</param>
+    /// <param name="wanted">How fine the phases must be.</param>
     /// <param name="cancel">Checked at every sweep.</param>
     public static ChargedCycle? Of(
-        MeshPair meshes, ChargedSheet coarse, ChargedSheet fine, ReadingPlan plan, CycleMeasure measure, double frequency, CancellationToken cancel)
+        MeshPair meshes, ChargedSheet coarse, ChargedSheet fine, ReadingPlan plan, CycleMeasure measure, double frequency, MeshSpec wanted,
+        CancellationToken cancel)
     {
         double omega = 2 * Math.PI * frequency;
         var result = new ChargedCycle(plan.Count);
@@ -60,7 +68,7 @@ internal sealed class ChargedCycle
 
         try
         {
-            return result.Balance(meshes, coarse, fine, plan, measure.Cycle, omega, cancel) ? result : null;
+            return result.Balance(meshes, coarse, fine, plan, measure.Cycle, omega, wanted, cancel) ? result : null;
         }
         catch (PivotException)
         {
@@ -98,42 +106,92 @@ internal sealed class ChargedCycle
     }
 
     private bool Balance(
-        MeshPair meshes, ChargedSheet coarse, ChargedSheet fine, ReadingPlan plan, CycleStates cycle, double omega, CancellationToken cancel)
+        MeshPair meshes, ChargedSheet coarse, ChargedSheet fine, ReadingPlan plan, CycleStates cycle, double omega, MeshSpec wanted, CancellationToken cancel)
     {
-        PhaseNodes few = PhaseNodes.Base, many = PhaseNodes.Doubled;
-        double[][][] readings = new double[3][][];
-        for (int run = 0; run < 3; run++)
+        PhaseNodes few = PhaseNodes.Base;
+        double[][] onFine = [.. Enumerable.Range(0, few.Phases).Select(m => (double[])cycle.Base[few.NodeAt(m)].Fine.Clone())];
+        double[][] u = [.. Enumerable.Range(0, few.Phases).Select(m => (double[])cycle.Base[few.NodeAt(m)].Coarse.Clone())];
+        if (!Run(fine, plan, cycle, omega, onFine, cancel) || !Run(coarse, plan, cycle, omega, u, cancel))
         {
-            PhaseNodes nodes = run == 2 ? many : few;
-            PhaseState[] states = [.. Enumerable.Range(0, nodes.Phases).Select(m => (run == 2 ? cycle.States : cycle.Base)[nodes.NodeAt(m)])];
-            double[][] u = [.. states.Select(s => (double[])(run == 0 ? s.Fine : s.Coarse).Clone())];
-            var balance = new HarmonicBalance(run == 0 ? fine : coarse, plan.Wiring.Source, plan.Wiring.Drain, omega, u);
-            bool done = balance.Solve(u, [.. states.Select(s => s.Current)], cancel);
-            Sweeps += balance.Sweeps;
-            if (!done)
+            return false;
+        }
+
+        Fine = onFine;
+        double[][] fineQuiet = [.. cycle.Base.Select(s => s.FineValues)];
+        (double Sine, double Cosine)[][] first = Added(meshes.Fine, plan, onFine, fineQuiet);
+        (double Sine, double Cosine)[][] before = Added(meshes.Coarse, plan, u, cycle.CoarseValues[0]), coarseFirst = before, last = before;
+
+        // The phases are doubled on the coarse mesh until that changes little enough.
+        for (int doubling = 1; u.Length < 2 * CycleSolver.MostIntervals; doubling++)
+        {
+            u = Resampled(u);
+            if (!Run(coarse, plan, cycle, omega, u, cancel))
             {
                 return false;
             }
 
-            // Readings of the periodic state minus the quasi-static ones at the same phases.
-            readings[run] = [.. u.Select((v, m) => plan.Read(run == 0 ? meshes.Fine : meshes.Coarse, v)
-                .Zip(run == 0 ? states[m].FineValues : states[m].CoarseValues, (a, b) => a - b).ToArray())];
-            Fine = run == 0 ? u : Fine;
+            (before, last) = (last, Added(meshes.Coarse, plan, u, cycle.CoarseValues[Math.Min(doubling, cycle.CoarseValues.Count - 1)]));
+            if (IsFine(before, last, cycle, wanted))
+            {
+                break;
+            }
         }
 
         for (int k = 0; k < plan.Count; k++)
         {
             for (int h = 0; h <= PhaseNodes.HighestHarmonic; h++)
             {
-                (double Sine, double Cosine)[] part = [.. readings.Select(r => CycleTransform.Harmonic([.. r.Select(v => v[k])], h))];
-                Shift[k][h] = (part[0].Sine + part[2].Sine - part[1].Sine, part[0].Cosine + part[2].Cosine - part[1].Cosine);
-                Error[k][h] = Size(part[0].Sine - part[1].Sine, part[0].Cosine - part[1].Cosine)
-                    + Size(part[2].Sine - part[1].Sine, part[2].Cosine - part[1].Cosine);
+                Shift[k][h] = (first[k][h].Sine + last[k][h].Sine - coarseFirst[k][h].Sine, first[k][h].Cosine + last[k][h].Cosine - coarseFirst[k][h].Cosine);
+                Error[k][h] = Distance(first[k][h], coarseFirst[k][h]) + Distance(last[k][h], before[k][h]);
             }
         }
 
         return true;
     }
 
-    private static double Size(double a, double b) => Math.Sqrt((a * a) + (b * b));
+    private bool Run(ChargedSheet sheet, ReadingPlan plan, CycleStates cycle, double omega, double[][] u, CancellationToken cancel)
+    {
+        double[] currents = [.. Enumerable.Range(0, u.Length).Select(m => cycle.Offset + (cycle.Amplitude * CycleTransform.At(1, m, u.Length).Sine))];
+        var balance = new HarmonicBalance(sheet, plan.Wiring.Source, plan.Wiring.Drain, omega, u);
+        bool done = balance.Solve(u, currents, cancel);
+        Sweeps += balance.Sweeps;
+        return done;
+    }
+
+    // Harmonics of the periodic state minus those of the quasi-static readings, from as many phases where these are known.
+    private static (double Sine, double Cosine)[][] Added(FieldLevel level, ReadingPlan plan, double[][] u, double[][] quiet)
+    {
+        double[][] read = [.. u.Select(v => plan.Read(level, v))];
+        var nodes = new PhaseNodes(quiet.Length - 1);
+        return [.. Enumerable.Range(0, plan.Count).Select(k => Enumerable.Range(0, PhaseNodes.HighestHarmonic + 1).Select(h =>
+        {
+            (double sine, double cosine) = CycleTransform.Harmonic([.. read.Select(v => v[k])], h);
+            (int s, int c) = PhaseNodes.Direction(h);
+            double amplitude = nodes.Amplitude(h, [.. quiet.Select(v => v[k])]);
+            return (sine - (s * amplitude), cosine - (c * amplitude));
+        }).ToArray())];
+    }
+
+    private static bool IsFine((double Sine, double Cosine)[][] before, (double Sine, double Cosine)[][] last, CycleStates cycle, MeshSpec wanted)
+    {
+        var nodes = new PhaseNodes(cycle.CoarseValues[^1].Length - 1);
+        for (int k = 0; k < last.Length; k++)
+        {
+            double[] values = [.. cycle.CoarseValues[^1].Select(v => v[k])];
+            double first = wanted.Error * Math.Abs(nodes.Amplitude(1, values)), second = wanted.EvenError * Math.Abs(nodes.Amplitude(2, values));
+            for (int h = 0; h <= PhaseNodes.HighestHarmonic; h++)
+            {
+                double may = h is 0 or 2 && second > EvenFloor * first ? Math.Min(first, second) : first;
+                if (Distance(before[k][h], last[k][h]) > PhaseShare * may && may > 0)
+                {
+                    return false;
+                }
+            }
+        }
+
+        return true;
+    }
+
+    private static double Distance((double Sine, double Cosine) a, (double Sine, double Cosine) b) =>
+        Math.Sqrt(((a.Sine - b.Sine) * (a.Sine - b.Sine)) + ((a.Cosine - b.Cosine) * (a.Cosine - b.Cosine)));
 }

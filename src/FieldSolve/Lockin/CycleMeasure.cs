@@ -35,19 +35,20 @@ internal sealed class CycleMeasure
     /// <summary>Parts along sin and cos, peak, that the gate's charge adds per radian per second, to first order; V s.</summary>
     public (double Sine, double Cosine)[][] Shift { get; }
 
-    public static CycleMeasure Of(MeshPair meshes, ReadingPlan plan, CycleStates cycle)
+    public static CycleMeasure Of(MeshPair meshes, ReadingPlan plan, CycleStates cycle, AdjointSet adjoints)
     {
-        PhaseNodes few = PhaseNodes.Base, many = PhaseNodes.Doubled;
+        PhaseNodes few = PhaseNodes.Base, many = new(cycle.CoarseValues[^1].Length - 1), before = new(many.Intervals / 2);
         IReadOnlyList<PhaseState> states = cycle.Base;
         var measure = new CycleMeasure(cycle, plan.Count);
+        double[][][] details = [.. states.Select(s => adjoints.Details(s.Current))];
         for (int k = 0; k < plan.Count; k++)
         {
             double[] fine = [.. states.Select(s => s.FineValues[k])];
-            double[] coarse = [.. states.Select(s => s.CoarseValues[k])], doubled = [.. cycle.States.Select(s => s.CoarseValues[k])];
+            double[] coarse = Values(cycle, 0, k), last = Values(cycle, cycle.CoarseValues.Count - 2, k), doubled = Values(cycle, cycle.CoarseValues.Count - 1, k);
 
             // A left-over residual moves a reading by its share of the reading's own resistance, and no further than the source's voltage.
             double floor = (RoundingShare + cycle.LargestResidual) * states.Max(s => s.FineValues.Max(Math.Abs));
-            for (int h = 0; h <= many.Intervals; h++)
+            for (int h = 0; h < measure.Amplitude[k].Length; h++)
             {
                 double phases = many.Amplitude(h, doubled) - (h < few.Intervals ? few.Amplitude(h, coarse) : 0);
                 measure.Amplitude[k][h] = (h < few.Intervals ? few.Amplitude(h, fine) : 0) + phases;
@@ -59,15 +60,15 @@ internal sealed class CycleMeasure
                 var terms = new (double, double[], double[])[states.Count];
                 for (int j = 0; j < terms.Length; j++)
                 {
-                    terms[j] = (few.Weight(h, j), states[j].Residual, states[j].Details[k]);
+                    terms[j] = (few.Weight(h, j), states[j].Residual, details[j][k]);
                     measure.Guard[k][h] += few.Weight(h, j) * states[j].GuardShare[k];
                 }
 
                 GoalError error = GoalError.Of(meshes.Between, meshes.Remaining, h == 1 ? 1 : NonLinearAllowance, terms);
-                measure.Error[k][h] = error.Bar + Math.Abs(phases) + floor;
+                measure.Error[k][h] = error.Bar + Math.Abs(many.Amplitude(h, doubled) - before.Amplitude(h, last)) + floor;
             }
 
-            measure.Shift[k] = states[0].Lag.Length == 0 ? [] : Shifts(cycle, k);
+            measure.Shift[k] = adjoints.HasLag ? Shifts(cycle, adjoints, k) : [];
         }
 
         return measure;
@@ -81,17 +82,20 @@ internal sealed class CycleMeasure
     }
 
     // V_1(theta) = lag(I(theta)) dI/dt: harmonics of the product over the whole cycle, by the trapezoidal rule.
-    private static (double Sine, double Cosine)[] Shifts(CycleStates cycle, int reading)
+    private static (double Sine, double Cosine)[] Shifts(CycleStates cycle, AdjointSet adjoints, int reading)
     {
         PhaseNodes few = PhaseNodes.Base;
+        IReadOnlyList<PhaseState> states = cycle.Base;
         double[] rate = new double[few.Phases];
         for (int m = 0; m < rate.Length; m++)
         {
-            rate[m] = cycle.Base[few.NodeAt(m)].Lag[reading] * cycle.Amplitude * Math.Cos(2 * Math.PI * m / rate.Length);
+            rate[m] = adjoints.Lag(states[few.NodeAt(m)].Current, reading) * cycle.Amplitude * Math.Cos(2 * Math.PI * m / rate.Length);
         }
 
         return [.. Enumerable.Range(0, PhaseNodes.HighestHarmonic + 1).Select(h => CycleTransform.Harmonic(rate, h))];
     }
+
+    private static double[] Values(CycleStates cycle, int level, int reading) => [.. cycle.CoarseValues[level].Select(v => v[reading])];
 
     private static double[][] Table(int rows, int columns) => [.. Enumerable.Range(0, rows).Select(_ => new double[columns])];
 }

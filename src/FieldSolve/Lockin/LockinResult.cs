@@ -87,4 +87,21 @@ public sealed record LockinResult
 
     /// <summary>True when every reading is ok.</summary>
     public bool AllOk => Points.All(p => p.Status == RowStatus.Ok);
+
+    /// <summary>What every run has (device, mesh, work, one row per point without readings) in the form of a drive's result, for records and reports.</summary>
+    public DriveResult Common() => new()
+    {
+        Device = Device,
+        Rows = [.. Points.Select(p => new CurveRow(p.Wiring, p.CurrentRms, [], p.Steps, p.Status, p.Exit, p.PeakSheetCurrent, p.PeakPower))],
+        ReversedRows = [],
+        Summaries = [],
+        Maps = [],
+        Mesh = Mesh,
+        Levels = Levels,
+        Cautions = Cautions,
+        Warnings = Warnings,
+        Figures = Figures,
+        Stages = Stages,
+        Cancelled = Cancelled,
+    };
 }

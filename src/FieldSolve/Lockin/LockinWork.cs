@@ -149,10 +149,14 @@ internal sealed class LockinWork
         ReadingPlan plan = plans[w];
         MeshPair meshes = charged?.Meshes ?? shared;
         var cycles = new CycleSolver(
-            () => new PhasePath(meshes, plan, ReferenceEquals(meshes, shared) ? peaks : new PeakFinder(meshes.Fine.Equations), charged?.Fine.Charge), device.Law.IsLinear, odd, device.Drive!.Offset);
+            () => new PhasePath(meshes, plan, ReferenceEquals(meshes, shared) ? peaks : new PeakFinder(meshes.Fine.Equations)), device.Law.IsLinear, odd,
+            device.Drive!.Offset, device.Mesh);
         int largest = Array.IndexOf(currents, currents.Max());
         double failedAt = double.PositiveInfinity;
-        foreach (int i in Enumerable.Range(0, currents.Length).OrderBy(i => currents[i]))
+        AdjointSet? adjoints = null;
+
+        // The largest cycle first: its adjoints serve the smaller ones. Should it fail, each has its own.
+        foreach (int i in Enumerable.Range(0, currents.Length).OrderBy(i => i == largest ? -1 : currents[i]))
         {
             cancel.ThrowIfCancellationRequested();
             bool wantsFrames = options.Frames && i == largest;
@@ -172,12 +176,16 @@ internal sealed class LockinWork
             }
             else
             {
-                CycleMeasure measure = CycleMeasure.Of(meshes, plan, states);
+                adjoints = i == largest || failedAt < double.PositiveInfinity || adjoints is null
+                    ? new AdjointSet(meshes, plan, states, charged?.Fine.Charge, cancel)
+                    : adjoints;
+                CycleMeasure measure = CycleMeasure.Of(meshes, plan, states, adjoints);
                 (outcomes[w, i], residuals[w, i]) = (states.Outcome, states.LargestResidual);
                 ChargedCycle? last = null;
                 for (int f = 0; f < frequencies.Length; f++)
                 {
-                    last = charged is null ? null : ChargedCycle.Of(meshes, charged.Coarse, charged.Fine, plan, measure, frequencies[f]!.Value, cancel);
+                    last = charged is null ? null : ChargedCycle.Of(meshes, charged.Coarse, charged.Fine, plan, measure, frequencies[f]!.Value,
+                        device.Mesh, cancel);
                     answers[w, i, f] = charged is not null && last is null
                         ? CycleAnswer.None(plan, currents[i], frequencies[f])
                         : Answer(plan, measure, frequencies[f], last);

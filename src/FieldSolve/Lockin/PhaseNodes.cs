@@ -17,11 +17,14 @@ internal sealed class PhaseNodes
     /// <summary>Twice as many phases, for the error of the rule.</summary>
     public static readonly PhaseNodes Doubled = new(12);
 
-    private PhaseNodes(int intervals)
+    public PhaseNodes(int intervals)
     {
         Intervals = intervals;
         Sine = [.. Enumerable.Range(0, intervals + 1).Select(j => 2 * j == intervals ? 0 : Math.Cos(j * Math.PI / intervals))];
     }
+
+    /// <summary>The same with twice as many phases.</summary>
+    public PhaseNodes Doubling() => new(2 * Intervals);
 
     /// <summary>n.</summary>
     public int Intervals { get; }

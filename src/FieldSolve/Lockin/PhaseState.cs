@@ -27,9 +27,6 @@ internal sealed record PhaseState
     /// <summary>Fine residual of the coarse solution, A; empty where errors are not measured.</summary>
     public double[] Residual { get; init; } = [];
 
-    /// <summary>Per reading: what the fine adjoint at this state adds to its coarse interpolant, ohm.</summary>
-    public double[][] Details { get; init; } = [];
-
     /// <summary>Influence of the law's guard on each reading, V.</summary>
     public double[] GuardShare { get; init; } = [];
 
@@ -38,9 +35,6 @@ internal sealed record PhaseState
 
     /// <summary>Largest |K| and E.K.</summary>
     public (double SheetCurrent, double Power) Peak { get; init; }
-
-    /// <summary>Per reading: voltage per rate of change of the current that the gate's charge adds, ohm second; empty without a gate.</summary>
-    public double[] Lag { get; init; } = [];
 
     /// <summary>The state at another current of a sheet for which it is proportional (a linear law, or the opposite sign of an odd one).</summary>
     public PhaseState Times(double factor) => this with

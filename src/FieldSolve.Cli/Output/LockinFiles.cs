@@ -1,5 +1,6 @@
 using FieldSolve.Files;
 using FieldSolve.Lockin;
+using FieldSolve.Pictures;
 using FieldSolve.Runs;
 
 namespace FieldSolve.Cli.Output;
@@ -12,6 +13,23 @@ internal static class LockinFiles
     {
         HarmonicsCsv.Write(Path.Combine(folder, "harmonics.csv"), result.Device.Wirings, result.Points);
         var clock = new StageClock();
+        if (pictures)
+        {
+            screen.Report(new("drawing pictures", 0, 0));
+            try
+            {
+                clock.Time("pictures", () =>
+                {
+                    IReadOnlyList<PictureFile> drawn = LockinPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+                    LockinReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+                });
+            }
+            catch (OperationCanceledException)
+            {
+                result = result with { Cancelled = true };
+            }
+        }
+
         LockinRecord.Write(
             Path.Combine(folder, "run.json"),
             result with { Stages = [.. result.Stages, .. clock.Times] },

@@ -6,11 +6,11 @@ using ScottPlot;
 
 namespace FieldSolve.Pictures;
 
-/// <summary>Potential and field of a wiring at four phases of the cycle, each row on one colour scale.</summary>
+/// <summary>Potential and field of a wiring at three phases of the cycle, each row on one colour scale.</summary>
 internal static class CyclePicture
 {
     private const double MapMargin = 0.06, MapSize = 230, LeastField = 0.01;
-    private static readonly double[] Phases = [30, 90, 210, 270];
+    private static readonly double[] Phases = [30, 90, 270];
 
     /// <summary>Draws a wiring; null when it has no frames.</summary>
     public static Figure? Draw(LockinResult result, string wiring)

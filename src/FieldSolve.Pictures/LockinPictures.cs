@@ -81,7 +81,7 @@ public static class LockinPictures
                 () => SpectrumPicture.Draw(result, wiring));
             yield return new(
                 "cycle", wiring, "cycle-" + names[w],
-                "Potential and magnitude of the field at four phases of the cycle, largest current; each row on one scale, that of the field logarithmic.",
+                "Potential and magnitude of the field at three phases of the cycle, largest current; each row on one scale, that of the field logarithmic.",
                 () => CyclePicture.Draw(result, wiring));
         }
 

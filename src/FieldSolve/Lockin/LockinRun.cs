@@ -13,10 +13,6 @@ namespace FieldSolve.Lockin;
 /// </summary>
 public static class LockinRun
 {
-    // The refinement looks at the largest peak alone. At weaker drive a law's fade leaves more of the singular field at contact ends, and the relative error
-    // of the second harmonic is up to this much larger (measured on disc-12 at a fifth of the drive).
-    private const double EvenMargin = 0.4;
-
     /// <summary>What keeps a device from an AC run, with the place in its file; null when nothing does.</summary>
     public static Fault? Missing(SheetDevice device)
     {
@@ -58,9 +54,15 @@ public static class LockinRun
         double peak = (Math.Sqrt(2) * drive.Currents.Max()) + Math.Abs(drive.Offset);
         double largest = drive.Offset < 0 ? -peak : peak;
         int total = plans.Length * drive.Currents.Count;
-        MeshSpec wanted = device.Mesh with { EvenError = EvenMargin * device.Mesh.EvenError };
-        MeshRefinement refinement = MeshRefinement.Run(
-            device with { Mesh = wanted }, law, plans, largest, !device.Law.IsLinear, stage => progress?.Report(new(stage, 0, total)), clock, cancel);
+        void Tell(string stage) => progress?.Report(new(stage, 0, total));
+        bool bothSigns = !device.Law.IsLinear;
+        MeshRefinement refinement = MeshRefinement.Run(device, law, plans, largest, bothSigns, Tell, clock, cancel);
+        double weakest = Math.Sqrt(2) * drive.Currents.Where(i => i > 0).DefaultIfEmpty(0).Min();
+        if (bothSigns && weakest > 0 && weakest < peak)
+        {
+            refinement = refinement.Extended(device, law, plans, weakest, bothSigns, Tell, clock, cancel);
+        }
+
 
         var work = new LockinWork(device, options, refinement.Meshes, plans, law);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));

@@ -5,12 +5,11 @@ using FieldSolve.Sparse;
 namespace FieldSolve.Lockin;
 
 /// <summary>
-/// Adjoints of the readings of one wiring along its current: solved at the base phases of one cycle, by polynomials of the current between them (barycentric
-/// formula on Chebyshev points: J.-P. Berrut, L. N. Trefethen, SIAM Review 46, 501 (2004)). They weigh errors and give the first order of the gate's charge.
+/// Adjoints of the readings of one wiring along its current: solved at the base phases of one cycle, by polynomials of the current between
+/// them. They weigh errors and give the first order of the gate's charge.
 /// </summary>
 internal sealed class AdjointSet
 {
-    private readonly PhaseNodes nodes = PhaseNodes.Base;
     private readonly double[] currents;
     private readonly double[][][] details;   // node, reading
     private readonly double[][] lags;
@@ -48,7 +47,7 @@ internal sealed class AdjointSet
     /// <summary>Per reading: what the fine adjoint adds to its coarse interpolant, ohm.</summary>
     public double[][] Details(double current)
     {
-        double[] weight = Weights(current);
+        double[] weight = PhaseNodes.Interpolation(currents, current);
         int readings = details[0].Length, length = details[0][0].Length;
         double[][] sum = new double[readings][];
         for (int k = 0; k < readings; k++)
@@ -77,7 +76,7 @@ internal sealed class AdjointSet
     /// <summary>Voltage per rate of change of the current that the gate's charge adds to a reading, ohm second.</summary>
     public double Lag(double current, int reading)
     {
-        double[] weight = Weights(current);
+        double[] weight = PhaseNodes.Interpolation(currents, current);
         double sum = 0;
         for (int j = 0; j < weight.Length; j++)
         {
@@ -85,28 +84,6 @@ internal sealed class AdjointSet
         }
 
         return sum;
-    }
-
-    // A node itself has weight 1 and the others none.
-    private double[] Weights(double current)
-    {
-        double[] weight = new double[currents.Length];
-        double near = 1e-12 * currents.Max(Math.Abs);
-        int hit = Array.FindIndex(currents, c => Math.Abs(c - current) <= near);
-        if (hit >= 0)
-        {
-            weight[hit] = 1;
-            return weight;
-        }
-
-        double sum = 0;
-        for (int j = 0; j < weight.Length; j++)
-        {
-            weight[j] = (j % 2 == 0 ? 1 : -1) * (j == 0 || j == nodes.Intervals ? 0.5 : 1) / (current - currents[j]);
-            sum += weight[j];
-        }
-
-        return [.. weight.Select(w => w / sum)];
     }
 
     // Where the Jacobian is not positive definite (beyond the law), the one at zero field has to do.

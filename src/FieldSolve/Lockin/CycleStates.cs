@@ -13,6 +13,24 @@ internal sealed record CycleStates(double CurrentRms, double Offset, PhaseState[
     /// <summary>The states at the base phases, which are solved on the fine mesh too.</summary>
     public IReadOnlyList<PhaseState> Base => [.. States.Where((_, j) => j % 2 == 0)];
 
+    /// <summary>Potentials at a current inside the cycle, by a polynomial through its states, V.</summary>
+    public double[] Guess(double current, bool fine)
+    {
+        PhaseState[] nodes = fine && States.Any(s => s.Fine.Length == 0) ? [.. Base] : States;
+        double[] weight = PhaseNodes.Interpolation([.. nodes.Select(s => s.Current)], current);
+        double[] sum = new double[(fine ? nodes[0].Fine : nodes[0].Coarse).Length];
+        for (int j = 0; j < nodes.Length; j++)
+        {
+            double[] u = fine ? nodes[j].Fine : nodes[j].Coarse;
+            for (int i = 0; i < sum.Length && weight[j] != 0; i++)
+            {
+                sum[i] += weight[j] * u[i];
+            }
+        }
+
+        return sum;
+    }
+
     /// <summary>Peak of the alternating part, A.</summary>
     public double Amplitude => Math.Sqrt(2) * CurrentRms;
 
@@ -49,8 +67,9 @@ internal sealed class CycleSolver
     /// <summary>The states of a cycle; null when the sheet cannot carry one of the currents.</summary>
     /// <param name="rms">A.</param>
     /// <param name="maps">Solve every node on the fine mesh, for the frames.</param>
+    /// <param name="near">A larger cycle to guess from; may be null.</param>
     /// <param name="cancel">Checked at every step.</param>
-    public CycleStates? Solve(double rms, bool maps, CancellationToken cancel)
+    public CycleStates? Solve(double rms, bool maps, CycleStates? near, CancellationToken cancel)
     {
         PhaseNodes nodes = PhaseNodes.Doubled;
         double[] currents = [.. nodes.Sine.Select(s => offset + (Math.Sqrt(2) * rms * s))];
@@ -59,7 +78,7 @@ internal sealed class CycleSolver
         if (linear)
         {
             double largest = MeshRefinement.Largest(currents);
-            if (paths[0].Value.Solve(largest == 0 ? 1 : largest, PhaseUse.Measure, cancel) is not { } one)
+            if (paths[0].Value.Solve(largest == 0 ? 1 : largest, PhaseUse.Measure, null, cancel) is not { } one)
             {
                 return null;
             }
@@ -69,7 +88,7 @@ internal sealed class CycleSolver
             return new(rms, offset, scaled, Levels(scaled));
         }
 
-        Fill(currents, states, Use, cancel);
+        Fill(currents, states, Use, near, cancel);
         if (states.Any(s => s is null))
         {
             return null;
@@ -82,7 +101,7 @@ internal sealed class CycleSolver
             nodes = nodes.Doubling();
             double[] more = [.. nodes.Sine.Select(s => offset + (Math.Sqrt(2) * rms * s))];
             var between = new PhaseState?[nodes.Intervals / 2];
-            Fill([.. more.Where((_, j) => j % 2 == 1)], between, _ => PhaseUse.Coarse, cancel);
+            Fill([.. more.Where((_, j) => j % 2 == 1)], between, _ => PhaseUse.Coarse, near, cancel);
             if (between.Any(s => s is null))
             {
                 return null;
@@ -99,13 +118,13 @@ internal sealed class CycleSolver
         [[.. states.Where((_, j) => j % 2 == 0).Select(s => s.CoarseValues)], [.. states.Select(s => s.CoarseValues)]];
 
     // Solves at currents that are symmetric about the offset, from the smallest on, with one path for each sign.
-    private void Fill(double[] currents, PhaseState?[] states, Func<int, PhaseUse> use, CancellationToken cancel)
+    private void Fill(double[] currents, PhaseState?[] states, Func<int, PhaseUse> use, CycleStates? near, CancellationToken cancel)
     {
         void Follow(bool negative)
         {
             foreach (int j in Enumerable.Range(0, currents.Length).Where(j => currents[j] < 0 == negative).OrderBy(j => Math.Abs(currents[j])))
             {
-                states[j] = paths[negative ? 1 : 0].Value.Solve(currents[j], use(j), cancel);
+                states[j] = paths[negative ? 1 : 0].Value.Solve(currents[j], use(j), near, cancel);
                 if (states[j] is null)
                 {
                     return;

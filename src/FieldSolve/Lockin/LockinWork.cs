@@ -154,13 +154,14 @@ internal sealed class LockinWork
         int largest = Array.IndexOf(currents, currents.Max());
         double failedAt = double.PositiveInfinity;
         AdjointSet? adjoints = null;
+        CycleStates? reference = null;
 
         // The largest cycle first: its adjoints serve the smaller ones. Should it fail, each has its own.
         foreach (int i in Enumerable.Range(0, currents.Length).OrderBy(i => i == largest ? -1 : currents[i]))
         {
             cancel.ThrowIfCancellationRequested();
             bool wantsFrames = options.Frames && i == largest;
-            CycleStates? states = currents[i] > failedAt ? null : cycles.Solve(currents[i], wantsFrames, cancel);
+            CycleStates? states = currents[i] > failedAt ? null : cycles.Solve(currents[i], wantsFrames, reference, cancel);
             if (states is null)
             {
                 failedAt = Math.Min(failedAt, currents[i]);
@@ -179,6 +180,7 @@ internal sealed class LockinWork
                 adjoints = i == largest || failedAt < double.PositiveInfinity || adjoints is null
                     ? new AdjointSet(meshes, plan, states, charged?.Fine.Charge, cancel)
                     : adjoints;
+                reference ??= i == largest ? states : null;
                 CycleMeasure measure = CycleMeasure.Of(meshes, plan, states, adjoints);
                 (outcomes[w, i], residuals[w, i]) = (states.Outcome, states.LargestResidual);
                 ChargedCycle? last = null;

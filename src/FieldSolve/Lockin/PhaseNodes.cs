@@ -63,6 +63,33 @@ internal sealed class PhaseNodes
         return j <= Intervals ? j : Phases - j;
     }
 
+    /// <summary>
+    /// Weights of the values at nodes in the polynomial through them, at another current: the barycentric formula on Chebyshev points, J.-P. Berrut,
+    /// L. N. Trefethen, SIAM Review 46, 501 (2004). A node itself has weight 1 and the others none.
+    /// </summary>
+    /// <param name="currents">At the nodes, A.</param>
+    /// <param name="current">A.</param>
+    public static double[] Interpolation(double[] currents, double current)
+    {
+        double[] weight = new double[currents.Length];
+        double near = 1e-12 * currents.Max(Math.Abs);
+        int hit = Array.FindIndex(currents, c => Math.Abs(c - current) <= near);
+        if (hit >= 0)
+        {
+            weight[hit] = 1;
+            return weight;
+        }
+
+        double sum = 0;
+        for (int j = 0; j < weight.Length; j++)
+        {
+            weight[j] = (j % 2 == 0 ? 1 : -1) * (j == 0 || j == weight.Length - 1 ? 0.5 : 1) / (current - currents[j]);
+            sum += weight[j];
+        }
+
+        return [.. weight.Select(w => w / sum)];
+    }
+
     /// <summary>Parts along sin(k theta) and cos(k theta) of cos(k (pi/2 - theta)).</summary>
     public static (int Sine, int Cosine) Direction(int harmonic) => (harmonic & 3) switch
     {

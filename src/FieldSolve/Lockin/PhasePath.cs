@@ -57,10 +57,14 @@ internal sealed class PhasePath
     public string? Refusal { get; private set; }
 
     /// <summary>The state at a current; null when there is none.</summary>
-    public PhaseState? Solve(double current, PhaseUse use, CancellationToken cancel)
+    /// <param name="current">A.</param>
+    /// <param name="use">What it is wanted for.</param>
+    /// <param name="near">A cycle that holds the current, to guess from; may be null.</param>
+    /// <param name="cancel">Checked at every step.</param>
+    public PhaseState? Solve(double current, PhaseUse use, CycleStates? near, CancellationToken cancel)
     {
         double[] coarse = new double[meshes.Coarse.Equations.Length];
-        NewtonOutcome outcome = coarsePath.Solve(current, coarse, null, cancel);
+        NewtonOutcome outcome = coarsePath.Solve(current, coarse, near?.Guess(current, fine: false), cancel);
         if (!outcome.Converged)
         {
             Refusal = outcome.Refusal;
@@ -74,8 +78,8 @@ internal sealed class PhasePath
         }
 
         meshes.Between.Apply(coarse, carried);
-        double[] fine = new double[carried.Length], residual = [];
-        for (int i = 0; i < fine.Length; i++)
+        double[] fine = near?.Guess(current, fine: true) ?? new double[carried.Length], residual = [];
+        for (int i = 0; i < fine.Length && near is null; i++)
         {
             fine[i] = carried[i] + (current * surplus[i]);
         }
@@ -101,7 +105,7 @@ internal sealed class PhasePath
             return null;
         }
 
-        if (current != 0)
+        if (current != 0 && near is null)
         {
             for (int i = 0; i < fine.Length; i++)
             {

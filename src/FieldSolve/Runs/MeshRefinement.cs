@@ -114,7 +114,8 @@ internal sealed class MeshRefinement
 
     /// <summary>
     /// Refines further until the readings at a smaller current meet their wanted errors as well, with some room. Even parts can be relatively less
-    /// exact at a weak drive than at a strong one: where a law fades, the weak drive keeps more of the singular field at contact ends.
+    /// exact at a weak drive than at a strong one: where a law fades, the weak drive keeps more of the singular field at contact ends. The last level is not
+    /// measured again; <see cref="Goals"/> are those of the mesh before.
     /// </summary>
     public MeshRefinement Extended(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double current, bool bothSigns, Action<string> tell,
@@ -144,14 +145,7 @@ internal sealed class MeshRefinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair next = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> goals = clock.Time(
-                "estimate", () => Measure(device, next, plans, [.. plans.Select(p => now.Goals.FirstOrDefault(g => g.Plan == p)?.Current ?? current)], [], bothSigns, cancel));
-            double worst = goals.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
-            now = new(
-                next, goals,
-                [.. now.Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [.. goals.Select(g => new LevelEstimate(
-                    g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))])],
-                worst <= 1);
+            now = new(next, now.Goals, [.. now.Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [])], now.IsMet);
         }
 
         return now;

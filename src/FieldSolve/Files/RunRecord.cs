@@ -17,8 +17,10 @@ public static class RunRecord
     /// <param name="result">The run.</param>
     /// <param name="command">Command word, for example "drive".</param>
     /// <param name="options">Options as the user gave them; written in the order of their names.</param>
+    /// <param name="figures">Further figures of the command, by name; none when null.</param>
     /// <remarks>Numbers that are not finite are written as null.</remarks>
-    public static string Text(DriveResult result, string command, IReadOnlyDictionary<string, string> options)
+    public static string Text(
+        DriveResult result, string command, IReadOnlyDictionary<string, string> options, IReadOnlyDictionary<string, double>? figures = null)
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(options);
@@ -37,6 +39,7 @@ public static class RunRecord
             WriteRows(json, result);
             WriteLevels(json, result);
             WriteSolver(json, result.Figures);
+            WriteFigures(json, figures);
             WriteStages(json, result.Stages);
             WriteTexts(json, "warnings", result.Warnings);
             WriteTexts(json, "cautions", result.Cautions);
@@ -49,8 +52,9 @@ public static class RunRecord
     /// <summary>Writes the record to a file as a whole. Parameters as in <see cref="Text"/>.</summary>
     /// <exception cref="IOException">The file cannot be written.</exception>
     /// <exception cref="UnauthorizedAccessException">The file may not be written.</exception>
-    public static void Write(string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options) =>
-        WholeFile.WriteText(path, Text(result, command, options));
+    public static void Write(
+        string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options, IReadOnlyDictionary<string, double>? figures = null) =>
+        WholeFile.WriteText(path, Text(result, command, options, figures));
 
     private static void WriteDevice(Utf8JsonWriter json, DriveResult result)
     {
@@ -133,6 +137,22 @@ public static class RunRecord
         json.WriteNumber("solves", figures.Solves);
         json.WriteNumber("newton_steps", figures.NewtonSteps);
         WriteNumber(json, "largest_residual", figures.LargestResidual);
+        json.WriteEndObject();
+    }
+
+    private static void WriteFigures(Utf8JsonWriter json, IReadOnlyDictionary<string, double>? figures)
+    {
+        if (figures is null)
+        {
+            return;
+        }
+
+        json.WriteStartObject("figures");
+        foreach ((string name, double value) in figures.OrderBy(f => f.Key, StringComparer.Ordinal))
+        {
+            WriteNumber(json, name, value);
+        }
+
         json.WriteEndObject();
     }
 

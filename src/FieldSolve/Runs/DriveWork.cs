@@ -160,7 +160,8 @@ internal sealed class DriveWork
             || (options.ForPictures && (k == (last + 2) / 3 || k == ((2 * last) + 2) / 3));
     }
 
-    private static StateResult? Negated(StateResult? state) => state is null ? null : state with
+    /// <summary>The state of a linear sheet at the opposite current.</summary>
+    internal static StateResult? Negated(StateResult? state) => state is null ? null : state with
     {
         Outcome = default,
         Values = state.Values?.Select(v => -v).ToArray(),

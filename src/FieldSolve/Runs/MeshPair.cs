@@ -20,6 +20,13 @@ internal sealed class MeshPair
         Remaining = Remainders();
     }
 
+    private MeshPair(MeshPair other, LabLaw law, CancellationToken cancel)
+    {
+        (Between, Exponent, Vertex, Remaining) = (other.Between, other.Exponent, other.Vertex, other.Remaining);
+        Coarse = other.Coarse.WithLaw(law, cancel);
+        Fine = other.Fine.WithLaw(law, cancel);
+    }
+
     public FieldLevel Coarse { get; }
 
     public FieldLevel Fine { get; }
@@ -44,6 +51,9 @@ internal sealed class MeshPair
             () => coarse = FieldLevel.Build(device, mesh, law, cancel));
         return new(coarse!, fine!);
     }
+
+    /// <summary>The same two meshes under another law.</summary>
+    public MeshPair WithLaw(LabLaw law, CancellationToken cancel) => new(this, law, cancel);
 
     private int[] DomainVertices(TriangleMesh mesh)
     {

@@ -66,9 +66,18 @@ internal sealed class MeshRefinement
         Math.Max(spec.EvenError * Math.Max(Math.Abs(even), 0.1 * evens.Max(Math.Abs)), EvenFloor * along);
 
     /// <summary>Runs the loop.</summary>
+    /// <param name="device">Sheet, contacts and wanted errors.</param>
+    /// <param name="law">Law of the meshes that come out.</param>
+    /// <param name="plans">What is read.</param>
+    /// <param name="largest">Largest current, A.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="tell">Told about each level.</param>
+    /// <param name="clock">Adds up the stages.</param>
+    /// <param name="cancel">Checked between and within levels.</param>
+    /// <param name="laws">The law of each plan, where they differ; null when all have <paramref name="law"/>.</param>
     public static MeshRefinement Run(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, Action<string> tell,
-        StageClock clock, CancellationToken cancel)
+        StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null)
     {
         ISizeField size = MeshSizes.First(device);
         var levels = new List<RefinementLevel>();
@@ -92,7 +101,7 @@ internal sealed class MeshRefinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, lower, bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel));
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));
             double now = measured.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
@@ -139,12 +148,14 @@ internal sealed class MeshRefinement
     }
 
     private static List<GoalMeasure> Measure(
-        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double[] currents, double[] lower, bool bothSigns, CancellationToken cancel)
+        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<LabLaw>? laws, double[] currents, double[] lower, bool bothSigns,
+        CancellationToken cancel)
     {
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
-            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], currents[k], lower, bothSigns, cancel));
+            k => perPlan[k] = LevelMeasure.Of(
+                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel));
         for (int k = 0; k < plans.Count; k++)
         {
             currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];

@@ -1,0 +1,141 @@
+using System.Collections.Concurrent;
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Laws;
+using FieldSolve.Readings;
+using FieldSolve.Runs;
+using FieldSolve.Solving;
+
+namespace FieldSolve.Turning;
+
+/// <summary>
+/// The solves of a turned crystal axis. Each axis has its own factors at zero field and its own error estimate; mesh, unknowns and ordering are shared. Axes run
+/// side by side and drop their factors when they are done.
+/// </summary>
+internal sealed class AxisWork
+{
+    private readonly SheetDevice device;
+    private readonly MeshPair meshes;
+    private readonly IReadOnlyList<TurnPlace> places;
+    private readonly IReadOnlyCollection<int> mapped;
+    private readonly ReadingPlan[] plans;
+    private readonly IReadOnlyList<double> currents;
+    private readonly StateResult?[,,] states;    // direction, current, sign
+    private readonly IReadOnlyList<GoalMeasure>?[] goals;
+    private readonly FieldMap?[] maps;
+    private readonly ConcurrentDictionary<string, string> refusals = new(StringComparer.Ordinal);
+    private int done;
+
+    public AxisWork(SheetDevice device, MeshPair meshes, IReadOnlyList<TurnPlace> places, IReadOnlyCollection<int> mapped)
+    {
+        (this.device, this.meshes, this.places, this.mapped) = (device, meshes, places, mapped);
+        plans = [.. places.Select(p => new ReadingPlan(p.Wiring))];
+        currents = device.Drive!.Currents;
+        states = new StateResult?[places.Count, currents.Count, 2];
+        goals = new IReadOnlyList<GoalMeasure>?[places.Count];
+        maps = new FieldMap?[places.Count];
+    }
+
+    public IReadOnlyDictionary<string, string> Refusals => refusals;
+
+    public FieldMap? MapOf(int place) => maps[place];
+
+    public IEnumerable<StateResult> States => states.Cast<StateResult?>().Where(s => s is not null).Select(s => s!);
+
+    /// <summary>Solves everything; true when cancelled.</summary>
+    public bool Run(IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
+        try
+        {
+            Parallel.ForEach(
+                Partitioner.Create(Enumerable.Range(0, places.Count), EnumerablePartitionerOptions.NoBuffering),
+                new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
+                place => Follow(place, progress, cancel));
+        }
+        catch (OperationCanceledException)
+        {
+            return true;
+        }
+        catch (AggregateException e) when (e.InnerExceptions.All(x => x is OperationCanceledException))
+        {
+            return true;
+        }
+
+        return false;
+    }
+
+    /// <summary>The rows whose states are all there, with the place of each; those at the reversed currents apart.</summary>
+    public (List<(int Place, CurveRow Row)> Rows, List<CurveRow> Reversed) Rows()
+    {
+        var maker = new RowMaker(device, [.. goals.Where(g => g is not null).SelectMany(g => g!)]);
+        var rows = new List<(int, CurveRow)>();
+        var reversed = new List<CurveRow>();
+        bool both = device.Drive!.BothSigns;
+        double[] along = [.. currents.Select((_, k) => AlongScale(k))];
+        for (int p = 0; p < places.Count; p++)
+        {
+            for (int k = 0; k < currents.Count; k++)
+            {
+                StateResult? plus = states[p, k, 0];
+                StateResult? minus = both ? device.Law.IsLinear ? DriveWork.Negated(plus) : states[p, k, 1] : null;
+                if (plus is null || goals[p] is null || (both && minus is null))
+                {
+                    continue;
+                }
+
+                rows.Add((p, maker.Make(plans[p], currents[k], plus, minus, along[k])));
+                if (minus is not null)
+                {
+                    reversed.Add(maker.Make(plans[p], -currents[k], minus, plus, along[k]));
+                }
+            }
+        }
+
+        return (rows, reversed);
+    }
+
+    private double AlongScale(int k) => MeshRefinement.AlongScale(Enumerable.Range(0, places.Count).Where(p => states[p, k, 0]?.Values is not null)
+        .SelectMany(p => states[p, k, 0]!.Values!.Select((v, i) => (plans[p].Pairs[i] == plans[p].Wiring.Along, v))));
+
+    private void Follow(int place, IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
+        MeshPair own = meshes.WithLaw(new LabLaw(device.Law, device.Axis + places[place].Turn), cancel);
+        double largest = MeshRefinement.Largest(currents);
+        double[] lower = [.. currents.Select(Math.Abs).Where(c => c > 0).Distinct().OrderDescending()];
+        bool both = device.Drive!.BothSigns;
+        goals[place] = LevelMeasure.Of(own, plans[place], largest == 0 ? 1 : largest, lower, both, cancel);
+        var peaks = new PeakFinder(own.Fine.Equations);
+        for (int sign = 0; sign < (both && !device.Law.IsLinear ? 2 : 1); sign++)
+        {
+            var task = new DriveTask(own, plans[place], peaks);
+            double failedAt = double.PositiveInfinity;
+            for (int k = 0; k < currents.Count; k++)
+            {
+                double current = sign == 0 ? currents[k] : -currents[k];
+                if (Math.Abs(current) > failedAt)
+                {
+                    states[place, k, sign] = new(default, null, null, null, default);
+                    continue;
+                }
+
+                int at = k;
+                Action<double[]>? keep = sign == 0 && k == currents.Count - 1 && mapped.Contains(place)
+                    ? u => maps[place] = FieldMapBuilder.Build(
+                        own.Fine.Space, own.Fine.Equations.Law, u, plans[place].Wiring.Drain, plans[place].Wiring.Name, current, at)
+                    : null;
+                StateResult result = task.Solve(current, keep, cancel);
+                states[place, k, sign] = result;
+                if (result.Values is null)
+                {
+                    failedAt = Math.Abs(current);
+                    if (result.Outcome.Refusal is { } why)
+                    {
+                        refusals.TryAdd(plans[place].Wiring.Name, why);
+                    }
+                }
+            }
+        }
+
+        progress?.Report(new("solving", Interlocked.Add(ref done, currents.Count), places.Count * currents.Count));
+    }
+}

@@ -57,6 +57,9 @@ public sealed record AngleFit
     /// <summary>The uniform-strip formulas; null when the data do not suffice.</summary>
     public required FittedTensor? Strip { get; init; }
 
+    /// <summary>The strip fit as formulas; null without the fit, or where the directions have strips of different shape.</summary>
+    public required StripFormula? StripCurve { get; init; }
+
     /// <summary>The finite-element response of this device; null when the data do not suffice.</summary>
     public required FittedTensor? Geometry { get; init; }
 

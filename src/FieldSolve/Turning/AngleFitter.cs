@@ -21,6 +21,7 @@ internal static class AngleFitter
             Law = law,
             LawSecond = LawSecondOrder.Of(device.Law),
             Strip = strip,
+            StripCurve = strip?.Sheet is { } sheet ? Curve(device, data, sheet) : null,
             Geometry = geometry,
             Mirror = strip?.Sheet is { } s ? StripFit.Mirror(device, data, s) : null,
             StripSecond = strip?.Sheet is { } t ? StripFit.Second(device, data, t) : null,
@@ -28,6 +29,14 @@ internal static class AngleFitter
             Harmonics = HarmonicFit.Of(data, device.Axis),
             Directions = data.Count,
         };
+    }
+
+    private static StripFormula? Curve(SheetDevice device, IReadOnlyList<AngleDatum> data, PrincipalSheet sheet)
+    {
+        StripGeometry[] strips = [.. data.Select(d => StripGeometry.Of(device, d.Wiring, d.Direction))];
+        const double Alike = 0.01;
+        bool same = strips.All(s => Math.Abs(s.Length - strips[0].Length) <= Alike * strips[0].Width && Math.Abs(s.Width - strips[0].Width) <= Alike * strips[0].Width);
+        return same ? new(sheet, strips[0].Length, strips[0].Width) : null;
     }
 
     // The strip's answer, or the isotropic sheet that any reading suggests: the law itself is what is looked for.

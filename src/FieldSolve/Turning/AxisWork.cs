@@ -10,7 +10,8 @@ namespace FieldSolve.Turning;
 
 /// <summary>
 /// The solves of a turned crystal axis. Each axis has its own factors at zero field and its own error estimate; mesh, unknowns and ordering are shared. Axes run
-/// side by side and drop their factors when they are done.
+/// side by side and drop their factors when they are done. A turn by 180 degrees makes K(E) into -K(-E), so the sheet answers a current as it answered the
+/// reversed one before, with the opposite sign: of an even number of steps only the first half is solved.
 /// </summary>
 internal sealed class AxisWork
 {
@@ -23,7 +24,8 @@ internal sealed class AxisWork
     private readonly StateResult?[,,] states;    // direction, current, sign
     private readonly IReadOnlyList<GoalMeasure>?[] goals;
     private readonly FieldMap?[] maps;
-    private readonly ConcurrentDictionary<string, string> refusals = new(StringComparer.Ordinal);
+    private readonly string?[] refusals;
+    private readonly int solved;
     private int done;
 
     public AxisWork(SheetDevice device, MeshPair meshes, IReadOnlyList<TurnPlace> places, IReadOnlyCollection<int> mapped)
@@ -34,21 +36,42 @@ internal sealed class AxisWork
         states = new StateResult?[places.Count, currents.Count, 2];
         goals = new IReadOnlyList<GoalMeasure>?[places.Count];
         maps = new FieldMap?[places.Count];
+        refusals = new string?[places.Count];
+        solved = places.Count % 2 == 0 && (device.Drive.BothSigns || device.Law.IsLinear) ? places.Count / 2 : places.Count;
     }
 
-    public IReadOnlyDictionary<string, string> Refusals => refusals;
+    /// <summary>How many of the directions are solved for; the others follow from them.</summary>
+    public int SolvedPlaces => solved;
+
+    /// <summary>Why the law refused, by wiring: that of the first direction.</summary>
+    public IReadOnlyDictionary<string, string> Refusals => refusals.FirstOrDefault(r => r is not null) is { } why
+        ? new Dictionary<string, string> { [places[0].Wiring.Name] = why }
+        : new Dictionary<string, string>();
 
     public FieldMap? MapOf(int place) => maps[place];
 
-    public IEnumerable<StateResult> States => states.Cast<StateResult?>().Where(s => s is not null).Select(s => s!);
+    /// <summary>What was solved.</summary>
+    public IEnumerable<StateResult> States => Enumerable.Range(0, solved).SelectMany(p => Enumerable.Range(0, currents.Count)
+        .SelectMany(k => new[] { states[p, k, 0], states[p, k, 1] })).OfType<StateResult>();
 
     /// <summary>Solves everything; true when cancelled.</summary>
     public bool Run(IProgress<RunProgress>? progress, CancellationToken cancel)
     {
+        bool cancelled = Solve(progress, cancel);
+        for (int p = solved; p < places.Count; p++)
+        {
+            Reverse(p - solved, p);
+        }
+
+        return cancelled;
+    }
+
+    private bool Solve(IProgress<RunProgress>? progress, CancellationToken cancel)
+    {
         try
         {
             Parallel.ForEach(
-                Partitioner.Create(Enumerable.Range(0, places.Count), EnumerablePartitionerOptions.NoBuffering),
+                Partitioner.Create(Enumerable.Range(0, solved), EnumerablePartitionerOptions.NoBuffering),
                 new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
                 place => Follow(place, progress, cancel));
         }
@@ -94,6 +117,22 @@ internal sealed class AxisWork
         return (rows, reversed);
     }
 
+    private void Reverse(int from, int to)
+    {
+        static StateResult? Opposite(StateResult? state) => state is null ? null : state with
+        {
+            Values = state.Values?.Select(v => -v).ToArray(),
+            Difference = state.Difference?.Select(v => -v).ToArray(),
+            Zone = state.Zone is null ? null : state.Zone with { Share = [.. state.Zone.Share.Select(v => -v)] },
+        };
+        goals[to] = goals[from] is { } known ? [.. known.Select(g => g with { Plan = plans[to] })] : null;
+        for (int k = 0; k < currents.Count; k++)
+        {
+            states[to, k, 0] = device.Law.IsLinear ? states[from, k, 0] : Opposite(states[from, k, 1]);
+            states[to, k, 1] = Opposite(states[from, k, 0]);
+        }
+    }
+
     private double AlongScale(int k) => MeshRefinement.AlongScale(Enumerable.Range(0, places.Count).Where(p => states[p, k, 0]?.Values is not null)
         .SelectMany(p => states[p, k, 0]!.Values!.Select((v, i) => (plans[p].Pairs[i] == plans[p].Wiring.Along, v))));
 
@@ -128,14 +167,11 @@ internal sealed class AxisWork
                 if (result.Values is null)
                 {
                     failedAt = Math.Abs(current);
-                    if (result.Outcome.Refusal is { } why)
-                    {
-                        refusals.TryAdd(plans[place].Wiring.Name, why);
-                    }
+                    refusals[place] ??= result.Outcome.Refusal;
                 }
             }
         }
 
-        progress?.Report(new("solving", Interlocked.Add(ref done, currents.Count), places.Count * currents.Count));
+        progress?.Report(new("solving", Interlocked.Add(ref done, currents.Count), solved * currents.Count));
     }
 }

@@ -1,3 +1,4 @@
+using System.Globalization;
 using FieldSolve.Laws;
 
 namespace FieldSolve.Turning;
@@ -31,15 +32,19 @@ internal static class LawSecondOrder
             double largest = evenA.Concat(evenB).Max(Math.Abs), odd = ka.Concat(kb).Max(Math.Abs);
             if (largest >= Share * odd)
             {
-                double square = field * field;
+                double Element(double even) => Math.Abs(even) < 1e-8 * largest ? 0 : Rounded(even / (field * field));
                 return new(
-                    evenA[0] / square, evenA[1] / square, (evenA[2] - evenA[0] - evenA[1]) / (2 * square),
-                    evenB[0] / square, evenB[1] / square, (evenB[2] - evenB[0] - evenB[1]) / (2 * square));
+                    Element(evenA[0]), Element(evenA[1]), Element((evenA[2] - evenA[0] - evenA[1]) / 2),
+                    Element(evenB[0]), Element(evenB[1]), Element((evenB[2] - evenB[0] - evenB[1]) / 2));
             }
         }
 
         return default;
     }
+
+    // No more digits than the differences hold.
+    private static double Rounded(double value) =>
+        double.Parse(value.ToString("G7", CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
 
     private static double[] Even(double[] k) => [(k[0] + k[1]) / 2, (k[2] + k[3]) / 2, (k[4] + k[5]) / 2];
 }

@@ -56,17 +56,7 @@ internal static class StripFit
         {
             AngleDatum d = data[k];
             StripGeometry strip = StripGeometry.Of(device, d.Wiring, d.Direction);
-            (double s, double c) = Math.SinCos(d.Seen - sheet.Axis);
-            double ea = sheet.RhoA * c, eb = sheet.RhoB * s;
-
-            // V_across = +W n_perp . rho K2, V_along = -L n . rho K2, with K = I / W.
-            double onA = along ? -c * sheet.RhoA : -s * sheet.RhoA, onB = along ? -s * sheet.RhoB : c * sheet.RhoB;
-            double factor = along ? strip.Length / (strip.Width * strip.Width) : 1 / strip.Width;
-            return
-            [
-                factor * onA * ea * ea, factor * onA * eb * eb, factor * onA * 2 * ea * eb,
-                factor * onB * ea * ea, factor * onB * eb * eb, factor * onB * 2 * ea * eb,
-            ];
+            return new StripFormula(sheet, strip.Length, strip.Width).Even(d.Seen - sheet.Axis, along);
         });
     }
 

@@ -17,7 +17,7 @@ public static class TurnRun
 {
     // A mesh made for a few axes is used for all: it gets less of the wanted error.
     private const double AxisShare = 0.6;
-    private const int MostRefinedAxes = 6;
+    private const int MostRefinedAxes = 12;
 
     /// <summary>Runs the turn of a device.</summary>
     /// <param name="device">With a drive and at least one wiring.</param>
@@ -61,7 +61,7 @@ public static class TurnRun
             }
         }
 
-        int nonZero = device.Drive.Currents.Count(c => c != 0), points = solved.Places.Count * nonZero * (device.Drive.BothSigns ? 2 : 1);
+        int nonZero = device.Drive.Currents.Count(c => c != 0), points = solved.SolvedPlaces * nonZero * (device.Drive.BothSigns ? 2 : 1);
         return new()
         {
             Mode = options.AxisSteps > 0 ? TurnMode.Axis : device.Turn?.Around is not null ? TurnMode.Ring : TurnMode.Wirings,
@@ -76,7 +76,8 @@ public static class TurnRun
     }
 
     private sealed record Solved(
-        DriveResult Drive, MeshPair Meshes, IReadOnlyList<TurnPlace> Places, IReadOnlyList<IReadOnlyList<CurveRow>> Rows, IReadOnlyList<TurnMap> Maps);
+        DriveResult Drive, MeshPair Meshes, IReadOnlyList<TurnPlace> Places, IReadOnlyList<IReadOnlyList<CurveRow>> Rows, IReadOnlyList<TurnMap> Maps,
+        int SolvedPlaces);
 
     private static Solved TurnTheCurrent(
         SheetDevice device, TurnOptions options, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
@@ -89,7 +90,7 @@ public static class TurnRun
         TurnMap[] maps = [.. Mapped(places).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
             ? new TurnMap(places[k].DirectionDegrees, places[k].AxisDegrees(device), map)
             : null).OfType<TurnMap>()];
-        return new(result with { Maps = [] }, meshes, places, rows, maps);
+        return new(result with { Maps = [] }, meshes, places, rows, maps, places.Length);
     }
 
     private static Solved TurnTheAxis(
@@ -135,7 +136,7 @@ public static class TurnRun
             Warnings = DriveWarnings.Of(all, work.Refusals),
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
-                total.Factorisations + (2 * refinement.Levels.Count * laws.Length) + (2 * places.Length), total.Solves, total.Steps,
+                total.Factorisations + (2 * refinement.Levels.Count * laws.Length) + (2 * work.SolvedPlaces), total.Solves, total.Steps,
                 work.States.Where(s => s.Values is not null).Select(s => s.Outcome.RelativeResidual).DefaultIfEmpty().Max()),
             Stages = [],
             Cancelled = cancelled,
@@ -143,7 +144,7 @@ public static class TurnRun
         List<CurveRow>[] perPlace = [.. places.Select((_, k) => rows.Where(r => r.Place == k).Select(r => r.Row).ToList())];
         TurnMap[] maps = [.. Mapped(places).Where(k => work.MapOf(k) is not null)
             .Select(k => new TurnMap(direction, places[k].AxisDegrees(device), work.MapOf(k)!))];
-        return new(result, refinement.Meshes, places, perPlace, maps);
+        return new(result, refinement.Meshes, places, perPlace, maps, work.SolvedPlaces);
     }
 
     // The first direction, and those nearest to 45 and 90 degrees further on: along an axis, between the axes and along the other axis if the first is on one.

@@ -9,6 +9,10 @@ namespace FieldSolve.Pictures;
 internal static class AnglePicture
 {
     private const int MostCurrents = 5;
+
+    /// <summary>More points than this are a line.</summary>
+    public const int MostMarked = 36;
+
     private const int FormulaPoints = 181;
     private const double VisibleError = 0.004;
 
@@ -23,7 +27,8 @@ internal static class AnglePicture
 
         double[] currents = Currents(result);
         Plot[] panels = [.. quantities.Select(q => Panel(result, q, currents))];
-        List<KeyEntry> key = [.. currents.Select((i, k) => KeyEntry.Curve(k, SiScale.Text(i, "A")))];
+        bool marked = quantities[0].Points(result, currents[0]).Count <= MostMarked;
+        List<KeyEntry> key = [.. currents.Select((i, k) => KeyEntry.Curve(k, SiScale.Text(i, "A"), marked))];
         if (HasFormula(result))
         {
             key.Add(Formula);
@@ -40,7 +45,7 @@ internal static class AnglePicture
             return null;
         }
 
-        KeyEntry[] key = [.. result.Ratios.Select((r, k) => KeyEntry.Curve(k, "ratio " + SiScale.Number(r.Ratio, 4), r.Points.Count <= 36))];
+        KeyEntry[] key = [.. result.Ratios.Select((r, k) => KeyEntry.Curve(k, "ratio " + SiScale.Number(r.Ratio, 4), r.Points.Count <= MostMarked))];
         Plot[] panels = [.. new[] { ("along", (Func<RatioPoint, (double Value, double Error)?>)(p => p.Along)), ("across", p => p.Across) }
             .Where(q => result.Ratios[0].Points.Any(p => q.Item2(p) is not null))
             .Select(q =>
@@ -63,6 +68,8 @@ internal static class AnglePicture
 
     /// <summary>The strip formulas' line in every picture.</summary>
     public static KeyEntry Formula { get; } = new("strip formulas, fitted", Look.Metal, 1.2f, [2, 3], MarkerShape.None);
+
+    private static KeyEntry CrystalAxis { get; } = new("", Look.Metal, 1, [1, 3], MarkerShape.None);
 
     /// <summary>True when the formulas can be drawn.</summary>
     public static bool HasFormula(TurnResult result) => result.Fit?.StripCurve is not null;
@@ -91,7 +98,7 @@ internal static class AnglePicture
                 continue;
             }
 
-            KeyEntry style = KeyEntry.Curve(k, "", points.Count <= 36);
+            KeyEntry style = KeyEntry.Curve(k, "", points.Count <= MostMarked);
             plot.PlottableList.Add(new CurveLine([Closed([.. points.Select(p => new Coordinates(p.Angle, scale.Factor * p.Value))])]) { Style = style });
             double range = points.Max(p => p.Value) - points.Min(p => p.Value);
             if (points.Max(p => p.Error) > VisibleError * range)
@@ -136,9 +143,8 @@ internal static class AnglePicture
                 if (at <= 360)
                 {
                     bool isA = Math.Abs(Math.IEEERemainder(at - a, 180)) < 1;
-                    ScottPlot.Plottables.VerticalLine line = plot.Add.VerticalLine(at, 1, Look.Metal.WithAlpha(0.6), LinePattern.Dotted);
-                    line.LabelText = "";
-                    ScottPlot.Plottables.Text text = plot.Add.Text(isA ? "a" : "b", at, high + (0.92 * room));
+                    plot.PlottableList.Add(new CurveLine([[new(at, low - room), new(at, high + room)]]) { Style = CrystalAxis });
+                    ScottPlot.Plottables.Text text = plot.Add.Text(isA ? "a" : "b", at + 3, high + (0.95 * room));
                     text.LabelFontName = EmbeddedFont.Family;
                     text.LabelFontSize = Look.TickSize;
                     text.LabelFontColor = Look.Ink;

@@ -20,9 +20,11 @@ internal static class PolarPicture
             return null;
         }
 
+        bool marked = quantities[0].Points(result, TurnQuantity.Largest(result)).Count <= AnglePicture.MostMarked;
         List<KeyEntry> key =
         [
-            new("positive", Look.Line(0), 1.8f, null, MarkerShape.FilledCircle), new("negative", Look.Line(1), 1.8f, Negative, MarkerShape.OpenCircle),
+            new("positive", Look.Line(0), 1.8f, null, marked ? MarkerShape.FilledCircle : MarkerShape.None),
+            new("negative", Look.Line(1), 1.8f, Negative, marked ? MarkerShape.OpenCircle : MarkerShape.None),
         ];
         if (AnglePicture.HasFormula(result))
         {
@@ -41,7 +43,11 @@ internal static class PolarPicture
         double step = Levels.Step(scale.Factor * largest, Rings), outer = step * Math.Max(1, Math.Ceiling(scale.Factor * largest / step));
         Plot plot = Look.NewPlot($"{quantity.Name(result)} ({scale.Unit}), I = {SiScale.Text(current, "A")}", "", "");
         plot.HideGrid();
-        plot.Axes.Frameless();
+        foreach (IAxis axis in plot.Axes.GetAxes())
+        {
+            axis.IsVisible = false;
+        }
+
         plot.Layout.Fixed(new PixelPadding(10, 10, 10, 40));
         AddGrid(plot, result, step, outer);
         if (quantity.Formula(result, current, 0) is not null)
@@ -51,7 +57,7 @@ internal static class PolarPicture
                 .Select(c => Clipped(c, 1.08 * outer))]]) { Style = AnglePicture.Formula });
         }
 
-        bool marked = points.Count <= 36;
+        bool marked = points.Count <= AnglePicture.MostMarked;
         KeyEntry positive = new("", Look.Line(0), 1.8f, null, marked ? MarkerShape.FilledCircle : MarkerShape.None);
         KeyEntry negative = new("", Look.Line(1), 1.8f, Negative, marked ? MarkerShape.OpenCircle : MarkerShape.None);
         foreach (bool above in new[] { true, false })

@@ -38,7 +38,8 @@ public static class DriveRun
         double largest = MeshRefinement.Largest(drive.Currents);
         int total = plans.Length * drive.Currents.Count;
         MeshRefinement refinement = MeshRefinement.Run(
-            device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel);
+            device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel,
+            oneCurve: options.OneCurve);
 
         var work = new DriveWork(device, options, refinement.Meshes, plans);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));

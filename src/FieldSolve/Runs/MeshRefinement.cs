@@ -75,11 +75,14 @@ internal sealed class MeshRefinement
     /// <param name="clock">Adds up the stages.</param>
     /// <param name="cancel">Checked between and within levels.</param>
     /// <param name="laws">The law of each plan, where they differ; null when all have <paramref name="law"/>.</param>
+    /// <param name="start">Sizes of the first mesh, from earlier measures; null to start from the shape.</param>
+    /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
     public static MeshRefinement Run(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, Action<string> tell,
-        StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null)
+        StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null, ISizeField? start = null,
+        bool oneCurve = false)
     {
-        ISizeField size = MeshSizes.First(device);
+        ISizeField size = start ?? MeshSizes.First(device);
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
         IReadOnlyList<GoalMeasure> goals = [];
@@ -101,7 +104,7 @@ internal sealed class MeshRefinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve));
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));
             double now = measured.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
@@ -112,7 +115,7 @@ internal sealed class MeshRefinement
 
             stalls = now > StallShare * worst ? stalls + 1 : 0;
             worst = Math.Min(worst, now);
-            if (now <= (level == 0 ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
+            if (now <= (level == 0 && start is null ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
             {
                 return new(best, goals, levels, worst <= 1);
             }
@@ -120,6 +123,10 @@ internal sealed class MeshRefinement
             size = MeshSizes.Next(meshes, measured, level, (int)(0.95 * mostTriangles));
         }
     }
+
+    /// <summary>Sizes for the next mesh after measures of one's own.</summary>
+    public static ISizeField NextSizes(SheetDevice device, MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level) =>
+        MeshSizes.Next(meshes, goals, level, (int)(0.95 * device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle));
 
     // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
@@ -147,9 +154,19 @@ internal sealed class MeshRefinement
         return null;
     }
 
-    private static List<GoalMeasure> Measure(
+    /// <summary>Errors of all readings on a pair of meshes, with what is wanted of each.</summary>
+    /// <param name="device">For the wanted errors.</param>
+    /// <param name="meshes">Under the law of the first plan.</param>
+    /// <param name="plans">What is read.</param>
+    /// <param name="laws">The law of each plan; null when all have that of the meshes.</param>
+    /// <param name="currents">Current of each plan, A; lowered where the sheet cannot carry it.</param>
+    /// <param name="lower">The drive's currents by size, the largest first.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="cancel">Checked at every step.</param>
+    /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
+    public static List<GoalMeasure> Measure(
         SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<LabLaw>? laws, double[] currents, double[] lower, bool bothSigns,
-        CancellationToken cancel)
+        CancellationToken cancel, bool oneCurve = false)
     {
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
@@ -163,10 +180,11 @@ internal sealed class MeshRefinement
 
         double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
+        double[] curve = oneCurve ? [.. perPlan.SelectMany(g => g).Where(g => g.IsEven).Select(g => g.Value)] : [];
         var all = new List<GoalMeasure>();
         foreach (IReadOnlyList<GoalMeasure> goals in perPlan)
         {
-            double[] evens = [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
+            double[] evens = oneCurve ? curve : [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
             all.AddRange(goals.Select(g => g with
             {
                 Wanted = g.IsEven

@@ -8,7 +8,7 @@ namespace FieldSolve.Turning;
 internal static class AngleFitter
 {
     // Every direction of a turned axis needs factors of its own; so many determine the four unknowns many times over.
-    private const int MostTurnsInGeometry = 12;
+    private const int MostTurnsInGeometry = 8;
 
     public static AngleFit Of(SheetDevice device, FieldLevel level, IReadOnlyList<AngleDatum> data, CancellationToken cancel)
     {

@@ -9,7 +9,7 @@ using FieldSolve.Solving;
 namespace FieldSolve.Turning;
 
 /// <summary>
-/// The solves of a turned crystal axis. Each axis has its own factors at zero field and its own error estimate; mesh, unknowns and ordering are shared. Axes run
+/// The solves of a turned crystal axis. Each axis has its own factors at zero field; mesh, unknowns and ordering are shared. Axes run
 /// side by side and drop their factors when they are done. A turn by 180 degrees makes K(E) into -K(-E), so the sheet answers a current as it answered the
 /// reversed one before, with the opposite sign: of an even number of steps only the first half is solved.
 /// </summary>
@@ -28,16 +28,20 @@ internal sealed class AxisWork
     private readonly int solved;
     private int done;
 
-    public AxisWork(SheetDevice device, MeshPair meshes, IReadOnlyList<TurnPlace> places, IReadOnlyCollection<int> mapped)
+    public AxisWork(SheetDevice device, IReadOnlyList<TurnPlace> places, AxisMesh measured, IReadOnlyCollection<int> mapped)
     {
-        (this.device, this.meshes, this.places, this.mapped) = (device, meshes, places, mapped);
-        plans = [.. places.Select(p => new ReadingPlan(p.Wiring))];
+        (this.device, meshes, this.places, this.mapped) = (device, measured.Meshes, places, mapped);
+        solved = measured.Plans.Count;
+        plans = [.. measured.Plans, .. places.Skip(solved).Select(p => new ReadingPlan(p.Wiring))];
         currents = device.Drive!.Currents;
         states = new StateResult?[places.Count, currents.Count, 2];
         goals = new IReadOnlyList<GoalMeasure>?[places.Count];
         maps = new FieldMap?[places.Count];
         refusals = new string?[places.Count];
-        solved = places.Count % 2 == 0 && (device.Drive.BothSigns || device.Law.IsLinear) ? places.Count / 2 : places.Count;
+        for (int p = 0; p < solved; p++)
+        {
+            goals[p] = [.. measured.Goals.Where(g => g.Plan == plans[p])];
+        }
     }
 
     /// <summary>How many of the directions are solved for; the others follow from them.</summary>
@@ -95,6 +99,7 @@ internal sealed class AxisWork
         var reversed = new List<CurveRow>();
         bool both = device.Drive!.BothSigns;
         double[] along = [.. currents.Select((_, k) => AlongScale(k))];
+        double[] even = [.. currents.Select((_, k) => RowMaker.EvenScale(Enumerable.Range(0, places.Count).Select(p => (plans[p], states[p, k, 0], states[p, k, 1]))))];
         for (int p = 0; p < places.Count; p++)
         {
             for (int k = 0; k < currents.Count; k++)
@@ -106,10 +111,10 @@ internal sealed class AxisWork
                     continue;
                 }
 
-                rows.Add((p, maker.Make(plans[p], currents[k], plus, minus, along[k])));
+                rows.Add((p, maker.Make(plans[p], currents[k], plus, minus, along[k], even[k])));
                 if (minus is not null)
                 {
-                    reversed.Add(maker.Make(plans[p], -currents[k], minus, plus, along[k]));
+                    reversed.Add(maker.Make(plans[p], -currents[k], minus, plus, along[k], even[k]));
                 }
             }
         }
@@ -139,10 +144,7 @@ internal sealed class AxisWork
     private void Follow(int place, IProgress<RunProgress>? progress, CancellationToken cancel)
     {
         MeshPair own = meshes.WithLaw(new LabLaw(device.Law, device.Axis + places[place].Turn), cancel);
-        double largest = MeshRefinement.Largest(currents);
-        double[] lower = [.. currents.Select(Math.Abs).Where(c => c > 0).Distinct().OrderDescending()];
         bool both = device.Drive!.BothSigns;
-        goals[place] = LevelMeasure.Of(own, plans[place], largest == 0 ? 1 : largest, lower, both, cancel);
         var peaks = new PeakFinder(own.Fine.Equations);
         for (int sign = 0; sign < (both && !device.Law.IsLinear ? 2 : 1); sign++)
         {

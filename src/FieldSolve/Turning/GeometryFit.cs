@@ -14,7 +14,7 @@ internal sealed class GeometryFit
 {
     private const int MostSteps = 25;
     private const int MostHalvings = 8;
-    private const double SmallStep = 1e-11;
+    private const double SmallStep = 1e-8;
 
     private readonly SheetDevice device;
     private readonly FieldLevel level;

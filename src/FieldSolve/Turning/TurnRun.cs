@@ -1,8 +1,6 @@
 using System.Globalization;
 using FieldSolve.Device;
 using FieldSolve.Fields;
-using FieldSolve.Laws;
-using FieldSolve.Meshing;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Solving;
@@ -15,10 +13,6 @@ namespace FieldSolve.Turning;
 /// </summary>
 public static class TurnRun
 {
-    // A mesh made for a few axes is used for all: it gets less of the wanted error.
-    private const double AxisShare = 0.6;
-    private const int MostRefinedAxes = 12;
-
     /// <summary>Runs the turn of a device.</summary>
     /// <param name="device">With a drive and at least one wiring.</param>
     /// <param name="options">What to turn, and what to keep.</param>
@@ -84,7 +78,7 @@ public static class TurnRun
     {
         SheetDevice turned = device with { Wirings = Directions.Of(device) };
         TurnPlace[] places = [.. turned.Wirings.Select(w => new TurnPlace(w, CurrentDirection.Degrees(device, w), 0))];
-        var drive = new DriveOptions { Maps = options.ForPictures ? MapChoice.Last : MapChoice.None, ForPictures = false };
+        var drive = new DriveOptions { Maps = options.ForPictures ? MapChoice.Last : MapChoice.None, ForPictures = false, OneCurve = true };
         (DriveResult result, MeshPair meshes) = DriveRun.Run(turned, drive, progress, clock, cancel);
         List<CurveRow>[] rows = [.. places.Select(p => result.Rows.Where(r => r.Wiring == p.Wiring.Name).ToList())];
         TurnMap[] maps = [.. Mapped(places).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
@@ -105,22 +99,12 @@ public static class TurnRun
         double direction = CurrentDirection.Degrees(device, wiring);
         TurnPlace[] places = [.. Enumerable.Range(0, options.AxisSteps).Select(k => new TurnPlace(wiring, direction, 360.0 * k / options.AxisSteps))];
 
-        // A turn by 180 degrees is the same sheet with the current reversed; the mesh need only be made for half the circle.
-        int refined = Math.Min(MostRefinedAxes, options.AxisSteps);
-        LabLaw[] laws = [.. Enumerable.Range(0, refined).Select(j => places[j * options.AxisSteps / (2 * refined)].Turn).Distinct()
-            .Select(t => new LabLaw(device.Law, device.Axis + t))];
-        SheetDevice stricter = one with
-        {
-            Mesh = one.Mesh with { Error = AxisShare * one.Mesh.Error, EvenError = AxisShare * one.Mesh.EvenError },
-        };
         DriveSpec drive = device.Drive!;
-        MeshRefinement refinement = MeshRefinement.Run(
-            stricter, laws[0], [.. laws.Select(_ => new ReadingPlan(wiring))], MeshRefinement.Largest(drive.Currents), drive.BothSigns,
-            stage => progress?.Report(new(stage, 0, places.Length * drive.Currents.Count)), clock, cancel, laws);
-        var work = new AxisWork(one, refinement.Meshes, places, options.ForPictures ? Mapped(places) : []);
+        AxisMesh mesh = AxisMesh.Make(one, places, stage => progress?.Report(new(stage, 0, places.Length * drive.Currents.Count)), clock, cancel);
+        var work = new AxisWork(one, places, mesh, options.ForPictures ? Mapped(places) : []);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
         (List<(int Place, CurveRow Row)> rows, List<CurveRow> reversed) = work.Rows();
-        FieldLevel fine = refinement.Meshes.Fine;
+        FieldLevel fine = mesh.Meshes.Fine;
         NewtonOutcome total = work.States.Aggregate(default(NewtonOutcome), (sum, s) => sum.Then(s.Outcome));
         CurveRow[] all = [.. rows.Select(r => r.Row)];
         var result = new DriveResult
@@ -130,13 +114,13 @@ public static class TurnRun
             ReversedRows = reversed,
             Summaries = [],
             Maps = [],
-            Mesh = refinement.Meshes.Coarse.Space.Mesh,
-            Levels = refinement.Levels,
+            Mesh = mesh.Meshes.Coarse.Space.Mesh,
+            Levels = mesh.Levels,
             Cautions = Cautions.Of(one, [.. all, .. reversed]),
             Warnings = DriveWarnings.Of(all, work.Refusals),
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
-                total.Factorisations + (2 * refinement.Levels.Count * laws.Length) + (2 * work.SolvedPlaces), total.Solves, total.Steps,
+                total.Factorisations + (2 * mesh.Levels.Count) + (2 * work.SolvedPlaces), total.Solves, total.Steps,
                 work.States.Where(s => s.Values is not null).Select(s => s.Outcome.RelativeResidual).DefaultIfEmpty().Max()),
             Stages = [],
             Cancelled = cancelled,
@@ -144,7 +128,7 @@ public static class TurnRun
         List<CurveRow>[] perPlace = [.. places.Select((_, k) => rows.Where(r => r.Place == k).Select(r => r.Row).ToList())];
         TurnMap[] maps = [.. Mapped(places).Where(k => work.MapOf(k) is not null)
             .Select(k => new TurnMap(direction, places[k].AxisDegrees(device), work.MapOf(k)!))];
-        return new(result, refinement.Meshes, places, perPlace, maps, work.SolvedPlaces);
+        return new(result, mesh.Meshes, places, perPlace, maps, work.SolvedPlaces);
     }
 
     // The first direction, and those nearest to 45 and 90 degrees further on: along an axis, between the axes and along the other axis if the first is on one.

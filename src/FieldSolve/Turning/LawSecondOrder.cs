@@ -7,7 +7,7 @@ namespace FieldSolve.Turning;
 internal static class LawSecondOrder
 {
     // The even part is looked at where it is this share of the odd one: far above rounding, far below where a law fades.
-    private const double Share = 1e-6;
+    private const double Share = 1e-7;
 
     public static SecondOrder Of(ISheetLaw law)
     {

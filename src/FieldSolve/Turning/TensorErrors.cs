@@ -6,7 +6,7 @@ internal static class TensorErrors
     // A difference of the principal resistivities below so many of its errors leaves the axis undetermined.
     private const double Significant = 2;
 
-    /// <summary>Condenses a fit.</summary>
+    /// <summary>Condenses a fit. A sheet that is isotropic within its errors gets the file's axis.</summary>
     /// <param name="fit">For the errors.</param>
     /// <param name="at">Values of the unknowns.</param>
     /// <param name="near">The file's axis, radians.</param>
@@ -44,8 +44,11 @@ internal static class TensorErrors
         Fitted? axis = Quantity(p => Math.IEEERemainder(p.Axis - near, Math.PI), 180 / Math.PI);
         Fitted? plain = byLabel is { } f ? new(ratio, found.A >= found.B ? f.Error : f.Error * ratio * ratio) : null;
         bool isotropic = plain is not { } r || r.Value - 1 <= Significant * Math.Max(r.Error, 1e-9);
+
+        // A direction that is only noise must not become the frame of the second-order elements: the file's axis is.
+        double mean = Math.Sqrt(found.A * found.B);
         return new(
-            found, plain, byLabel, isotropic || axis is not { } x ? null : new(Degrees.Wrapped((near * 180 / Math.PI) + x.Value), x.Error),
+            isotropic ? new(mean, mean, near, found.Hall) : found, plain, byLabel, isotropic || axis is not { } x ? null : new(Degrees.Wrapped((near * 180 / Math.PI) + x.Value), x.Error),
             Quantity(p => p.SheetResistance), Quantity(p => p.HallResistance), fit.Misfit, fit.Signal);
     }
 }

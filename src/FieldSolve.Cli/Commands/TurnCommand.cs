@@ -62,7 +62,7 @@ internal static class TurnCommand
             "Voltages against the direction of the current, and what they say about the sheet.\n\n"
             + "Steps the first wiring round the ring that [turn] around names, or takes every [[wiring]] as one direction,\n"
             + "or turns the crystal under one wiring (--turn-axis).\n\n"
-            + "Example: fieldsolve turn meshes/disc-turn.toml --out results --ratio 1,2,4,8")
+            + "Example: fieldsolve turn meshes/disc-12.toml --out results --ratio 1,2,4,8")
         {
             device, folder, steps, wiring, ratios, noPictures, quick, quiet, json,
         };

@@ -39,7 +39,7 @@ public class TurnedDiscTests(ITestOutputHelper output)
     [InlineData(9)]
     public void Point_contacts_have_the_exact_fourier_content(double ratio)
     {
-        TurnResult r = TestTurn.Run(Disc(0.5, ratio, 20, 0), 24);
+        TurnResult r = TestTurn.Run(Disc(0.5, ratio, 20, 0), 14);
         double root = Math.Sqrt(ratio), difference = Mean * (root - (1 / root)), q = (root - 1) / (root + 1);
         double finiteWidth = 5 * Math.Pow(RimChords.Radians(0.5), 2) * Mean + 1e-4 * Mean * root;
         Assert.Equal(2 / Math.PI * difference, TestTurn.Harmonic(r, "across_odd", 2).Sin, finiteWidth);
@@ -71,11 +71,10 @@ public class TurnedDiscTests(ITestOutputHelper output)
         var level = FieldSolve.Solving.FieldLevel.Build(coarse.Drive.Device, FieldSolve.Meshing.UniformSplit.Split(coarse.Drive.Mesh), law, default);
         FittedTensor? geometry = new GeometryFit(coarse.Drive.Device, level, data, default).Linear(new(1e-3, 1.2e-3, 0.1, 0));
         Assert.NotNull(geometry);
-        Assert.Equal(4, geometry.AnisotropyRatio!.Value.Value, 2e-2);
-        Assert.Equal(20, geometry.AxisDegrees!.Value.Value, 0.1);
-        Assert.Equal(Mean, geometry.SheetResistance!.Value.Value, 3);
-        Assert.Equal(0, geometry.HallResistance!.Value.Value, 1);
-        Assert.InRange(Math.Abs(geometry.AnisotropyRatio.Value.Value - 4), 0, 2 * geometry.AnisotropyRatio.Value.Error);
+        Assert.Equal(4, geometry.AnisotropyRatio!.Value.Value, 4e-3);
+        Assert.Equal(20, geometry.AxisDegrees!.Value.Value, 0.05);
+        Assert.Equal(Mean, geometry.SheetResistance!.Value.Value, 1.0);
+        Assert.Equal(0, geometry.HallResistance!.Value.Value, 1.0);
 
         // The uniform-field formulas are far off on a disc.
         FittedTensor? strip = StripFit.Linear(coarse.Drive.Device, data);

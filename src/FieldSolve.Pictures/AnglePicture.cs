@@ -87,7 +87,8 @@ internal static class AnglePicture
         if (quantity.Formula(result, currents[0], 0) is not null)
         {
             plot.PlottableList.Add(new CurveLine([[.. Enumerable.Range(0, FormulaPoints).Select(k => 360.0 * k / (FormulaPoints - 1))
-                .Select(a => new Coordinates(a, scale.Factor * quantity.Formula(result, currents[0], a)!.Value))]]) { Style = Formula });
+                .Select(a => new Coordinates(a, scale.Factor * quantity.Formula(result, currents[0], a)!.Value))]])
+            { Style = Formula });
         }
 
         for (int k = 0; k < currents.Length; k++)

@@ -54,7 +54,8 @@ internal static class PolarPicture
         {
             plot.PlottableList.Add(new CurveLine([[.. Enumerable.Range(0, FormulaPoints).Select(k => 360.0 * k / (FormulaPoints - 1))
                 .Select(a => At(a, scale.Factor * Math.Abs(quantity.Formula(result, current, a)!.Value)))
-                .Select(c => Clipped(c, 1.08 * outer))]]) { Style = AnglePicture.Formula });
+                .Select(c => Clipped(c, 1.08 * outer))]])
+            { Style = AnglePicture.Formula });
         }
 
         bool marked = points.Count <= AnglePicture.MostMarked;

@@ -46,14 +46,21 @@ public sealed class FieldLevel
     public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
         FieldSpace space = FieldSpace.Build(device, mesh, ground);
-        var equations = new SheetEquations(space, law);
         (double[] x, double[] y) = space.Places();
-        SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
+        return AtRest(new SheetEquations(space, law), SparseAnalysis.Analyse(space.Pattern, x, y, cancel), cancel);
+    }
+
+    /// <summary>The same mesh under another law: equations and factor at zero field are new, unknowns, geometry and ordering are shared.</summary>
+    /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
+    public FieldLevel WithLaw(LabLaw law, CancellationToken cancel) => AtRest(Equations.WithLaw(law), Analysis, cancel);
+
+    private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
+    {
         var factor = new SparseLu(analysis);
-        double[] values = new double[space.Pattern.Count + 1];
+        double[] values = new double[equations.Space.Pattern.Count + 1];
         equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
-        return new(space, equations, analysis, factor, values);
+        factor.Factor(values.AsSpan(0, equations.Space.Pattern.Count), cancel);
+        return new(equations.Space, equations, analysis, factor, values);
     }
 
     /// <summary>

@@ -29,7 +29,8 @@ public sealed class SparseAnalysis
         for (int t = 0; t < count; t++)
         {
             int s = tree.Width(t), m = tree.Height(t);
-            PanelStart[t + 1] = PanelStart[t] + 2L * s * Stride(t);
+            PanelStart[t + 1] = PanelStart[t] + (long)s * (s + 1) / 2 + (long)s * (m - s);
+            LargestPanel = Math.Max(LargestPanel, (long)s * Stride(t));
             nonZeros += 2L * s * m - (long)s * s;
             flops += FlopsOf(t);
             LargestFront = Math.Max(LargestFront, Stride(t));
@@ -51,10 +52,8 @@ public sealed class SparseAnalysis
     /// <summary>Additions and multiplications of one factorisation.</summary>
     public double Flops { get; }
 
-    /// <summary>Bytes one <see cref="SparseLu"/> of this analysis takes, the analysis included.</summary>
-    public long MemoryBytes =>
-        8 * (PanelStart[^1] + UpdateLength)
-        + 4L * (2L * Tree.Rows.Length + 3L * EntryPlace.Length + 4L * Pattern.Size + 8L * Tree.Count);
+    /// <summary>Bytes of the analysis itself.</summary>
+    public long MemoryBytes => 4L * (2L * Tree.Rows.Length + 3L * EntryPlace.Length + 4L * Pattern.Size + 8L * Tree.Count);
 
     internal SupernodeTree Tree { get; }
 
@@ -83,7 +82,10 @@ public sealed class SparseAnalysis
 
     internal int[] Children { get; }
 
-    /// <summary>Where the panels of each supernode begin: U by rows, then L by columns, each Width x Stride.</summary>
+    /// <summary>
+    /// Where the panel of each supernode begins when there is one per supernode (L D Lᵀ); twice that for two (L and U). A panel has the triangle of the
+    /// block, then Width rows of the rest.
+    /// </summary>
     internal long[] PanelStart { get; }
 
     /// <summary>Where the update matrix of each supernode begins in the work space.</summary>
@@ -93,6 +95,9 @@ public sealed class SparseAnalysis
     internal long UpdateLength { get; }
 
     internal int LargestFront { get; }
+
+    /// <summary>Most doubles of one padded panel.</summary>
+    internal long LargestPanel { get; }
 
     /// <summary>Division of the work for several threads, made when first asked for.</summary>
     internal ParallelPlan Plan => LazyInitializer.EnsureInitialized(ref plan, () => new ParallelPlan(this));

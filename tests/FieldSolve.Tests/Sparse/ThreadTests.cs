@@ -8,16 +8,18 @@ public class ThreadTests
     private static readonly Lazy<Sample> Disc = new(() => DiscWorkload.Build(25_000));
 
     [Theory]
-    [InlineData(2)]
-    [InlineData(3)]
-    [InlineData(8)]
-    public void Any_number_of_threads_gives_the_same_bits(int degree)
+    [InlineData(2, false)]
+    [InlineData(3, false)]
+    [InlineData(8, false)]
+    [InlineData(2, true)]
+    [InlineData(8, true)]
+    public void Any_number_of_threads_gives_the_same_bits(int degree, bool symmetric)
     {
-        Sample disc = Disc.Value;
+        Sample disc = symmetric ? Disc.Value.Symmetrised() : Disc.Value;
         SparseAnalysis analysis = SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y);
         Assert.True(analysis.Plan.Roots.Length > degree, "no work to divide");
         double[] b = Samples.Vector(disc.Size, 1), one = new double[disc.Size], many = new double[disc.Size];
-        var lu = new SparseLu(analysis);
+        var lu = new SparseLu(analysis, symmetric);
         lu.Factor(disc.Values);
         lu.Solve(b, one);
         for (int run = 0; run < 3; run++)

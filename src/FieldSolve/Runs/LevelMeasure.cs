@@ -152,10 +152,10 @@ internal static class LevelMeasure
             int n = meshes.Fine.Space.Size;
             double[] jacobian = new double[meshes.Fine.Space.Pattern.Count + 1], z = new double[n + 1];
             meshes.Fine.Equations.Jacobian(fine, jacobian);
-            var factor = new SparseLu(meshes.Fine.Analysis);
+            SparseLu factor = meshes.Fine.NewFactor();
             try
             {
-                factor.Factor(jacobian.AsSpan(0, jacobian.Length - 1), cancel);
+                SharedCores.Factor(factor, jacobian.AsSpan(0, jacobian.Length - 1), cancel);
             }
             catch (PivotException)
             {

@@ -44,12 +44,15 @@ public sealed class FieldLevel
         var equations = new SheetEquations(space, law);
         (double[] x, double[] y) = space.Places();
         SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
-        var factor = new SparseLu(analysis);
+        var factor = new SparseLu(analysis, law.IsSymmetricAtZero);
         double[] values = new double[space.Pattern.Count + 1];
         equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
+        SharedCores.Factor(factor, values.AsSpan(0, space.Pattern.Count), cancel);
         return new(space, equations, analysis, factor, values);
     }
+
+    /// <summary>Room for a factor of the Jacobian at any field.</summary>
+    public SparseLu NewFactor() => new(Analysis, Equations.Law.HasPotential);
 
     /// <summary>
     /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.

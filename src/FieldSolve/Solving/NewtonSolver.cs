@@ -216,11 +216,11 @@ public sealed class NewtonSolver
     private bool TryFactor(double[] u, CancellationToken cancel)
     {
         values ??= new double[level.Space.Pattern.Count + 1];
-        own ??= new SparseLu(level.Analysis);
+        own ??= level.NewFactor();
         try
         {
             level.Equations.Jacobian(u, values);
-            own.Factor(values.AsSpan(0, level.Space.Pattern.Count), cancel);
+            SharedCores.Factor(own, values.AsSpan(0, level.Space.Pattern.Count), cancel);
         }
         catch (Exception e) when (e is PivotException or LawRefusedException)
         {

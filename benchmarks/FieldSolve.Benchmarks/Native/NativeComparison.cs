@@ -108,6 +108,9 @@ internal static class NativeComparison
         {
             Threads(table, name, "LU", factor, matrix.Values);
             Threads(table, name, "LDL^T", half, even.Values);
+            Cancel(table, name, "analysis", analyse, token => SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y, token));
+            Cancel(table, name, "numeric LU", numeric, token => factor.Factor(matrix.Values, token));
+            Cancel(table, name, "numeric LU, two threads", numeric / 2, token => factor.Factor(matrix.Values, 2, token));
         }
     }
 
@@ -130,6 +133,32 @@ internal static class NativeComparison
             factor.Factor(values, degree);
             return Stopwatch.GetElapsedTime(from).TotalSeconds;
         }
+    }
+
+    // From the moment a token is set, at several moments of the work, until the work has ended.
+    private static void Cancel(ComparisonTable table, string name, string work, double seconds, Action<CancellationToken> action)
+    {
+        var times = new List<double>();
+        for (double share = 0.05; share < 1; share += 0.1)
+        {
+            using var source = new CancellationTokenSource();
+            var clock = new Stopwatch();
+            using CancellationTokenRegistration noted = source.Token.Register(clock.Start);
+            source.CancelAfter(TimeSpan.FromSeconds(share * seconds));
+            try
+            {
+                action(source.Token);
+            }
+            catch (OperationCanceledException)
+            {
+                times.Add(clock.Elapsed.TotalMilliseconds);
+            }
+        }
+
+        times.Sort();
+        table.Plain(
+            name, $"{work}, from cancelling to the end, median and worst (wall)", "100 ms",
+            times.Count == 0 ? "-" : ComparisonTable.Text($"{times[times.Count / 2]:F0} ms, {times[^1]:F0} ms of {times.Count}"));
     }
 
     // Residual and Jacobian of the sample's law, which has a second-order part and a field limit, against one LU of the same matrix.

@@ -52,6 +52,7 @@ public static class DriveRun
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.AtZero.NonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),
+            Points = work.Points,
             Stages = clock.Times,
             Cancelled = cancelled,
         };

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
@@ -5,6 +6,7 @@ namespace FieldSolve.Sparse;
 // Pieces of C −= Aᵀ B that are held in registers.
 internal static unsafe partial class FrontKernels
 {
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static void Block4x32(double* a, nint lda, double* b, double* c, nint ldc, int depth)
     {
         Vector512<double> c00 = default, c01 = default, c02 = default, c03 = default;
@@ -58,6 +60,7 @@ internal static unsafe partial class FrontKernels
         (Vector512.Load(c + 24) - c33).Store(c + 24);
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static void Block4x16(double* a, nint lda, double* b, double* c, nint ldc, int depth)
     {
         Vector512<double> c00 = default, c01 = default, c10 = default, c11 = default;
@@ -94,6 +97,7 @@ internal static unsafe partial class FrontKernels
     }
 
     // Half registers: also the only block on machines without 512-bit ones, where eight accumulators and two rows of B just fit.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static void Block4x8(double* a, nint lda, double* b, double* c, nint ldc, int depth)
     {
         Vector256<double> c00 = default, c01 = default, c10 = default, c11 = default;
@@ -129,6 +133,7 @@ internal static unsafe partial class FrontKernels
         (Vector256.Load(c + 4) - c31).Store(c + 4);
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static void Block1x8(double* a, nint lda, double* b, double* c, int depth)
     {
         Vector512<double> sum = default;

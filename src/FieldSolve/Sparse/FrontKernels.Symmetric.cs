@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
@@ -65,6 +66,7 @@ internal static unsafe partial class FrontKernels
         });
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int FinishFewSymmetric(double* u, double* l, int k, int from, int stride, double* floor, int rows)
     {
         for (int i = 0; i < rows; i++)
@@ -94,6 +96,7 @@ internal static unsafe partial class FrontKernels
     }
 
     // Four rows that depend on each other: first the 4 x 4 block, then all columns with its factors.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int Finish4Symmetric(double* u, double* l, int k, int from, int stride, double* floor)
     {
         double* u0 = u, u1 = u + stride, u2 = u1 + stride, u3 = u2 + stride;

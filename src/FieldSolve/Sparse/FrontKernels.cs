@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
@@ -190,6 +191,7 @@ internal static unsafe partial class FrontKernels
     private static bool Refused(double pivot, double floor) => !(pivot > floor) || !double.IsFinite(pivot) || !double.IsFinite(1 / pivot);
 
     // One to three rows that depend on each other.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int FinishFew(double* u, double* l, int k, int from, int stride, double* floor, int rows)
     {
         for (int i = 0; i < rows; i++)
@@ -220,6 +222,7 @@ internal static unsafe partial class FrontKernels
     }
 
     // Four rows that depend on each other: first the 4 x 4 block, then all columns with its factors.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int Finish4(double* u, double* l, int k, int from, int stride, double* floor)
     {
         double* u0 = u, u1 = u + stride, u2 = u1 + stride, u3 = u2 + stride;

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Collections.Concurrent;
 using System.Runtime.Intrinsics;
 
@@ -99,6 +100,7 @@ public sealed unsafe partial class SparseLu
     // The panel that solves for the steps of a supernode: U, or L for the transposed or the symmetric matrix.
     private double* BackwardPanel(int t, bool transposed) => ForwardPanel(t, !transposed);
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Forward(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;
@@ -186,6 +188,7 @@ public sealed unsafe partial class SparseLu
         }
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Backward(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;

@@ -194,6 +194,7 @@ public sealed unsafe partial class SparseLu
     }
 
     // The entries of the matrix itself.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Enter(int t, double* values, double* u, double* l, int stride)
     {
         SparseAnalysis a = analysis;
@@ -231,6 +232,7 @@ public sealed unsafe partial class SparseLu
     }
 
     // A panel as the solves read it: the triangle by rows, each from its diagonal on, then the rest by rows.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static void Keep(double* panel, double* kept, int width, int rest, int stride)
     {
         for (int k = 0; k < width; k++)
@@ -269,6 +271,7 @@ public sealed unsafe partial class SparseLu
 
     // Adds the update matrix of a child to the panels and the update matrix of its parent. c is shifted so that place j of the
     // parent's front is column j. Of a symmetric one only the part right of the diagonal holds anything.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Extend(int child, Room room, double* u, double* l, int stride, int width, double* c, int ldc)
     {
         SparseAnalysis a = analysis;

@@ -86,4 +86,34 @@ public class ThreadTests
         Assert.InRange(clock.Elapsed.TotalMilliseconds, 0, 1000);
         Assert.Throws<InvalidOperationException>(() => lu.Solve(new double[disc.Size], new double[disc.Size]));
     }
+
+    // How long it takes where the work is large is in benchmarks/performance.md: a clock would judge the machine here.
+    [Theory]
+    [InlineData("factor")]
+    [InlineData("factor, symmetric")]
+    [InlineData("analyse")]
+    public void Cancelled_work_stops_and_can_be_done_again(string work)
+    {
+        Sample disc = Disc.Value;
+        SparseAnalysis analysis = SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y);
+        bool symmetric = work.EndsWith("symmetric", StringComparison.Ordinal);
+        var lu = new SparseLu(analysis, symmetric);
+        double[] values = symmetric ? disc.Symmetrised().Values : disc.Values;
+        lu.Factor(values);
+        using var cancel = new CancellationTokenSource();
+        cancel.Cancel();
+        Assert.Throws<OperationCanceledException>(() =>
+        {
+            if (work == "analyse")
+            {
+                SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y, cancel.Token);
+            }
+            else
+            {
+                lu.Factor(values, cancel.Token);
+            }
+        });
+        lu.Factor(values);
+        lu.Solve(new double[disc.Size], new double[disc.Size]);
+    }
 }

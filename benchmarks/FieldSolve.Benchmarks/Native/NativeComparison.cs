@@ -119,13 +119,13 @@ internal static class NativeComparison
     {
         double one = double.PositiveInfinity, two = double.PositiveInfinity;
         factor.Factor(values, 2);
-        for (int k = 0; k < 12; k++)
+        for (int k = 0; k < 8; k++)
         {
             one = Math.Min(one, Wall(1));
             two = Math.Min(two, Wall(2));
         }
 
-        table.Seconds(name, $"numeric {kind}, two threads (wall, least of 12)", "one thread", 0.62, two, one);
+        table.Seconds(name, $"numeric {kind}, two threads (wall, least of 8)", "one thread", 0.62, two, one);
 
         double Wall(int degree)
         {
@@ -139,7 +139,7 @@ internal static class NativeComparison
     private static void Cancel(ComparisonTable table, string name, string work, double seconds, Action<CancellationToken> action)
     {
         var times = new List<double>();
-        for (double share = 0.05; share < 1; share += 0.1)
+        for (double share = 0.05; share < 1; share += 0.15)
         {
             using var source = new CancellationTokenSource();
             var clock = new Stopwatch();

@@ -53,6 +53,25 @@ internal sealed class DriveTask
         surpluses = new CurrentSeries([.. surplus]);
     }
 
+    /// <summary>Starts from what the refinement solved at a current, if it did.</summary>
+    public void Know(double current)
+    {
+        if (meshes.Known(plan, current) is not { } known)
+        {
+            return;
+        }
+
+        coarsePath.Know(current, known.Coarse);
+        double[] difference = new double[fine.Length];
+        meshes.Between.Apply(known.Coarse, difference);
+        for (int i = 0; i < fine.Length; i++)
+        {
+            difference[i] = known.Fine[i] - difference[i];
+        }
+
+        surpluses.Anchor(current, difference);
+    }
+
     /// <summary>Solves at a current.</summary>
     /// <param name="current">A.</param>
     /// <param name="keep">Receives the fine solution when it converged.</param>

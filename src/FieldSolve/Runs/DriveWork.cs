@@ -145,6 +145,8 @@ internal sealed class DriveWork
     private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)
     {
         var task = new DriveTask(meshes, plans[w], peaks);
+        double largest = MeshRefinement.Largest(currents);
+        task.Know(sign == 0 ? largest : -largest);
         double failedAt = double.PositiveInfinity;
         for (int k = 0; k < currents.Count; k++)
         {

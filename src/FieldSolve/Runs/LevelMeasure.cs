@@ -141,7 +141,13 @@ internal static class LevelMeasure
 
             double[][]? details = path.Solve(current, fine, fine, cancel).Converged ? AdjointDetails(meshes, plan, path.Newton, fine, cancel) : null;
             path.Newton.Release();
-            return details is null ? null : new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
+            if (details is null)
+            {
+                return null;
+            }
+
+            meshes.Keep(plan, current, coarse, fine);
+            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
         }
 
         // The adjoints at the state itself: its Jacobian, transposed. Null when it is not positive definite.

@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Geometry;
@@ -10,6 +11,8 @@ namespace FieldSolve.Runs;
 /// <summary>A mesh and its uniform split. Answers come from the split; the difference between the two is the evidence for their error.</summary>
 internal sealed class MeshPair
 {
+    private readonly ConcurrentDictionary<(ReadingPlan, double), (double[] Coarse, double[] Fine)> known = new();
+
     private MeshPair(FieldLevel coarse, FieldLevel fine)
     {
         Coarse = coarse;
@@ -34,6 +37,13 @@ internal sealed class MeshPair
 
     /// <summary>Per coarse triangle: error that remains on the fine mesh, as a share of the difference between the two meshes.</summary>
     public double[] Remaining { get; }
+
+    /// <summary>Keeps the solutions of a wiring at a current, V.</summary>
+    public void Keep(ReadingPlan plan, double current, double[] coarse, double[] fine) => known[(plan, current)] = (coarse, fine);
+
+    /// <summary>The solutions kept of a wiring at a current, V; null where there are none.</summary>
+    public (double[] Coarse, double[] Fine)? Known(ReadingPlan plan, double current) =>
+        known.TryGetValue((plan, current), out (double[] Coarse, double[] Fine) found) ? found : null;
 
     public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
     {

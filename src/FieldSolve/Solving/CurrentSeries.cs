@@ -10,6 +10,7 @@ internal sealed class CurrentSeries
 
     private readonly double[] unit;
     private readonly List<(double Current, double[] Value)> past = [];
+    private readonly List<(double Current, double[] Value)> anchors = [];
 
     /// <param name="unit">The vector per ampere in the limit of small currents.</param>
     public CurrentSeries(double[] unit) => this.unit = unit;
@@ -17,10 +18,19 @@ internal sealed class CurrentSeries
     /// <summary>The current remembered last; 0 when there is none.</summary>
     public double LastCurrent => past.Count > 0 ? past[^1].Current : 0;
 
+    /// <summary>Keeps the vector at a current for good.</summary>
+    public void Anchor(double current, double[] value)
+    {
+        if (current != 0)
+        {
+            anchors.Add((current, value));
+        }
+    }
+
     /// <summary>Keeps a copy of the vector at a current; the oldest of many is forgotten.</summary>
     public void Remember(double current, ReadOnlySpan<double> value)
     {
-        if (current == 0 || past.Any(p => p.Current == current))
+        if (current == 0 || past.Concat(anchors).Any(p => p.Current == current))
         {
             return;
         }
@@ -40,7 +50,7 @@ internal sealed class CurrentSeries
     {
         value.Clear();
         AddTerm(0, unit, current, value);
-        foreach ((double at, double[] known) in past)
+        foreach ((double at, double[] known) in past.Concat(anchors))
         {
             AddTerm(at, known, current, value);
         }
@@ -49,12 +59,12 @@ internal sealed class CurrentSeries
     private void AddTerm(double at, double[] known, double current, Span<double> value)
     {
         double weight = at == 0 ? current : current / at * (current / at);
-        foreach ((double other, _) in past)
+        foreach ((double other, _) in past.Concat(anchors))
         {
             weight *= other == at ? 1 : (current - other) / (at - other);
         }
 
-        for (int i = 0; i < value.Length; i++)
+        for (int i = 0; weight != 0 && i < value.Length; i++)
         {
             value[i] += weight * known[i];
         }

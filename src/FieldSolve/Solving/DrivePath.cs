@@ -33,6 +33,9 @@ public sealed class DrivePath
     /// <summary>The iteration, for its factor.</summary>
     public NewtonSolver Newton => newton;
 
+    /// <summary>Takes over a solution that is known already; guesses pass through it.</summary>
+    public void Know(double current, double[] u) => past.Anchor(current, u);
+
     /// <summary>Solves at a current.</summary>
     /// <param name="current">A.</param>
     /// <param name="u">Out: potentials.</param>

@@ -67,6 +67,7 @@ internal sealed class DissectionOrdering
             return RowsByDegree(pattern, number);
         }
         int[] followers = Followers.Find(pattern, number);
+        cancel.ThrowIfCancellationRequested();
         int kept = 0;
         for (int i = 0; i < n; i++)
         {
@@ -107,7 +108,9 @@ internal sealed class DissectionOrdering
         var tree = new DissectionTree(n);
         int leafSize = Math.Max(16, (int)((long)LeafSize * kept / sparse));
         new DissectionOrdering(pieces, kept, leafSize, hasPlaces, tree, cancel).Dissect(top, -1);
+        cancel.ThrowIfCancellationRequested();
         tree.Follow(pattern, followers, number);
+        cancel.ThrowIfCancellationRequested();
         int[] order = RowsByDegree(pattern, number);
         tree.Fill(pattern, order, cancel);
         return order;

@@ -12,12 +12,13 @@ public sealed class SparseAnalysis
     private ParallelPlan? plan;
 
     private SparseAnalysis(
-        SymmetricPattern pattern, SupernodeTree tree, EliminationGraph graph, int[] order, int[] mirror)
+        SymmetricPattern pattern, SupernodeTree tree, EliminationGraph graph, int[] order, int[] mirror, CancellationToken cancel)
     {
         Pattern = pattern;
         Tree = tree;
         Order = Array.ConvertAll(tree.Order, k => order[k]);
         (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror);
+        cancel.ThrowIfCancellationRequested();
         RowPlace = RowPlaces(tree);
         (ChildStart, Children) = ChildLists(tree);
 
@@ -132,10 +133,13 @@ public sealed class SparseAnalysis
             throw new ArgumentException($"The coordinates must be empty or {n} each, but are {x.Length} and {y.Length}.", nameof(x));
         }
         int[] mirror = Mirror(pattern);
+        cancel.ThrowIfCancellationRequested();
         int[] order = DissectionOrdering.Order(pattern, x, y, cancel);
         var graph = new EliminationGraph(pattern, order);
+        cancel.ThrowIfCancellationRequested();
         SupernodeTree tree = SupernodeTree.Build(graph, cancel);
-        return new SparseAnalysis(pattern, tree, graph, order, mirror);
+        cancel.ThrowIfCancellationRequested();
+        return new SparseAnalysis(pattern, tree, graph, order, mirror, cancel);
     }
 
     // Checks the pattern and gives for each entry its mirror image. Rows come in ascending order, so the mirror images in each

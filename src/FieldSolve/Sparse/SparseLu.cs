@@ -213,6 +213,7 @@ public sealed unsafe partial class SparseLu
                     double right = values[a.EntryRight[e]], below = values[a.EntryBelow[e]];
                     uj[a.EntryPlace[e]] = 0.5 * (right + below);
                     apart += Math.Abs(right - below);
+                    size += Math.Abs(right) + Math.Abs(below);
                 }
             }
             else

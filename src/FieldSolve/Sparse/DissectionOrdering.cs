@@ -66,7 +66,7 @@ internal sealed class DissectionOrdering
         {
             return RowsByDegree(pattern, number);
         }
-        int[] followers = Followers.Find(pattern, number);
+        int[] followers = Followers.Find(pattern, number, cancel);
         cancel.ThrowIfCancellationRequested();
         int kept = 0;
         for (int i = 0; i < n; i++)
@@ -147,6 +147,7 @@ internal sealed class DissectionOrdering
                 tree.Put(vertex[i], node);
             }
         }
+        cancel.ThrowIfCancellationRequested();
         (GraphPiece a, GraphPiece b) = pieces.Split(piece, side, number, VertexCut.Before, before, VertexCut.Behind, behind);
         Dissect(b, node);
         Dissect(a, node);
@@ -176,6 +177,7 @@ internal sealed class DissectionOrdering
         {
             projection[i] = best.Of(px[i], py[i]);
         }
+        cancel.ThrowIfCancellationRequested();
         double half = HalfBand(n);
         return CutBand(piece, Quantile(px, py, best, 0.5 - half), Quantile(px, py, best, 0.5 + half));
     }
@@ -293,6 +295,7 @@ internal sealed class DissectionOrdering
             cut.Touches[b] = (byte)touches;
         }
         cutStart[band] = edges;
+        cancel.ThrowIfCancellationRequested();
         cut.Solve(band, before, behind);
         int partBefore = before, partBehind = behind;
         for (int b = 0; b < band; b++)

@@ -17,7 +17,7 @@ public sealed class SparseAnalysis
         Pattern = pattern;
         Tree = tree;
         Order = Array.ConvertAll(tree.Order, k => order[k]);
-        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror);
+        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror, cancel);
         cancel.ThrowIfCancellationRequested();
         RowPlace = RowPlaces(tree);
         (ChildStart, Children) = ChildLists(tree);
@@ -132,10 +132,10 @@ public sealed class SparseAnalysis
         {
             throw new ArgumentException($"The coordinates must be empty or {n} each, but are {x.Length} and {y.Length}.", nameof(x));
         }
-        int[] mirror = Mirror(pattern);
+        int[] mirror = Mirror(pattern, cancel);
         cancel.ThrowIfCancellationRequested();
         int[] order = DissectionOrdering.Order(pattern, x, y, cancel);
-        var graph = new EliminationGraph(pattern, order);
+        var graph = new EliminationGraph(pattern, order, cancel);
         cancel.ThrowIfCancellationRequested();
         SupernodeTree tree = SupernodeTree.Build(graph, cancel);
         cancel.ThrowIfCancellationRequested();
@@ -144,7 +144,7 @@ public sealed class SparseAnalysis
 
     // Checks the pattern and gives for each entry its mirror image. Rows come in ascending order, so the mirror images in each
     // row are met in ascending order too.
-    private static int[] Mirror(SymmetricPattern pattern)
+    private static int[] Mirror(SymmetricPattern pattern, CancellationToken cancel)
     {
         int[] start = pattern.Start, column = pattern.Column, mirror = new int[column.Length];
         int n = pattern.Size;
@@ -155,6 +155,10 @@ public sealed class SparseAnalysis
         int[] next = start.AsSpan(0, n).ToArray();
         for (int i = 0; i < n; i++)
         {
+            if ((i & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             bool diagonal = false;
             for (int k = start[i]; k < start[i + 1]; k++)
             {
@@ -180,7 +184,7 @@ public sealed class SparseAnalysis
     }
 
     private static (int[] Start, int[] Place, int[] Right, int[] Below, int[] Diagonal) Entries(
-        SupernodeTree tree, EliminationGraph graph, int[] mirror)
+        SupernodeTree tree, EliminationGraph graph, int[] mirror, CancellationToken cancel)
     {
         int n = graph.Size, half = graph.Pairs, e = 0;
         int[] entryStart = new int[n + 1], diagonal = new int[n], local = new int[n];
@@ -188,6 +192,10 @@ public sealed class SparseAnalysis
         int[] below = GC.AllocateUninitializedArray<int>(half);
         for (int t = 0; t < tree.Count; t++)
         {
+            if ((t & 0xFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             int first = tree.First[t], width = tree.Width(t), rows = tree.RowStart[t];
             for (int j = first; j < first + width; j++)
             {

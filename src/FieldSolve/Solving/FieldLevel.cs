@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Laws;
@@ -13,6 +14,7 @@ namespace FieldSolve.Solving;
 public sealed class FieldLevel
 {
     private readonly double[] atZeroValues;
+    private readonly ConcurrentBag<JacobianRoom> spare = [];
 
     private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
     {
@@ -56,12 +58,20 @@ public sealed class FieldLevel
 
     private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
     {
-        var factor = new SparseLu(analysis);
+        var factor = new SparseLu(analysis, equations.Law.IsSymmetricAtZero);
         double[] values = new double[equations.Space.Pattern.Count + 1];
         equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, equations.Space.Pattern.Count), cancel);
+        SharedCores.Factor(factor, values.AsSpan(0, equations.Space.Pattern.Count), cancel);
         return new(equations.Space, equations, analysis, factor, values);
     }
+
+    /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
+    internal JacobianRoom Rent() => spare.TryTake(out JacobianRoom? room)
+        ? room
+        : new(new double[Space.Pattern.Count + 1], new SparseLu(Analysis, Equations.Law.HasPotential));
+
+    /// <summary>Takes room back for others.</summary>
+    internal void Return(JacobianRoom room) => spare.Add(room);
 
     /// <summary>
     /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.

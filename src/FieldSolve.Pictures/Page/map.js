@@ -1,0 +1,666 @@
+// The live map: colours, level lines and lines of current of one frame of one wiring, a cursor that reads values, and the crossing lines.
+
+const QUANTITIES = {
+  phi: { label: 'potential φ', unit: 'V', table: 'shore', log: false },
+  e: { label: 'field |E|', unit: 'V/m', table: 'ember', log: true },
+  k: { label: 'current density |K|', unit: 'A/m', table: 'ember', log: true },
+  p: { label: 'power density E·K', unit: 'W/m²', table: 'ember', log: true },
+  a: { label: 'anisotropy of dK/dE', unit: '', table: 'dusk', log: false },
+};
+
+/** Ratio of the larger to the smaller eigenvalue of the symmetric part of a tensor (xx, xy, yx, yy from index 2 on). */
+function anisotropy(d) {
+  const mean = (d[2] + d[5]) / 2, half = (d[2] - d[5]) / 2, off = (d[3] + d[4]) / 2, r = Math.hypot(half, off);
+  return mean > r ? (mean + r) / (mean - r) : Infinity;
+}
+
+/** Values of one frame at the nodes, worked out when they are first asked for. */
+class FrameFields {
+  constructor(mesh, law, frame) {
+    Object.assign(this, { mesh, law, frame });
+  }
+
+  get phi() {
+    if (!this.potential) {
+      const { frame, mesh } = this, phi = new Float64Array(mesh.count).fill(frame.low);
+      if (frame.phi) {
+        const raw = new Uint32Array(bytesOf(frame.phi).buffer), step = (frame.high - frame.low) / 4294967295;
+        for (let i = 0; i < raw.length; i++) {
+          phi[i] = frame.low + raw[i] * step;
+        }
+        frame.phi = null;
+      }
+      this.potential = phi;
+    }
+    return this.potential;
+  }
+
+  get potentialFloats() {
+    return this.floats ??= Float32Array.from(this.phi);
+  }
+
+  get field() {
+    return this.nodeField ??= this.mesh.nodeFields(this.phi);
+  }
+
+  get current() {
+    if (!this.nodeCurrent) {
+      const { ex, ey } = this.field, kx = new Float64Array(ex.length), ky = new Float64Array(ex.length), out = new Float64Array(6);
+      for (let i = 0; i < ex.length; i++) {
+        this.law.at(ex[i], ey[i], out);
+        kx[i] = out[0];
+        ky[i] = out[1];
+      }
+      this.nodeCurrent = { kx, ky };
+    }
+    return this.nodeCurrent;
+  }
+
+  /** Node values of a quantity. */
+  values(name) {
+    this.cache ??= {};
+    return this.cache[name] ??= this.#make(name);
+  }
+
+  #make(name) {
+    if (name === 'phi') {
+      return this.potentialFloats;
+    }
+    const { ex, ey } = this.field, out = new Float32Array(ex.length);
+    if (name === 'e') {
+      for (let i = 0; i < out.length; i++) {
+        out[i] = Math.hypot(ex[i], ey[i]);
+      }
+    } else if (name === 'a') {
+      const d = new Float64Array(6);
+      for (let i = 0; i < out.length; i++) {
+        this.law.at(ex[i], ey[i], d, true);
+        out[i] = Math.min(1e6, anisotropy(d));
+      }
+    } else {
+      const { kx, ky } = this.current;
+      for (let i = 0; i < out.length; i++) {
+        out[i] = name === 'k' ? Math.hypot(kx[i], ky[i]) : ex[i] * kx[i] + ey[i] * ky[i];
+      }
+    }
+    return out;
+  }
+
+  /** Everything at a located point, from the quadratic element itself. */
+  at(place) {
+    const [ex, ey] = this.mesh.field(this.phi, place), out = new Float64Array(6);
+    this.law.at(ex, ey, out, true);
+    return { phi: this.mesh.value(this.phi, place), ex, ey, kx: out[0], ky: out[1], e: Math.hypot(ex, ey), k: Math.hypot(out[0], out[1]), p: ex * out[0] + ey * out[1], a: anisotropy(out) };
+  }
+
+  /** Range of colours: percentiles of the area, for logarithmic scales at most two decades. */
+  range(name) {
+    this.ranges ??= {};
+    return this.ranges[name] ??= this.#range(name);
+  }
+
+  #range(name) {
+    if (name === 'phi') {
+      return [this.frame.low, this.frame.high];
+    }
+    const [low, high] = this.mesh.percentiles(this.values(name), [0.01, 0.99]);
+    return QUANTITIES[name].log ? [Math.max(low, 0.01 * high), high] : [low, high];
+  }
+
+  lines(spacing) {
+    const { kx, ky } = this.current;
+    return this.flow ??= streamlines(this.mesh, kx, ky, spacing);
+  }
+}
+
+class LiveMap {
+  /** @param host element; maps that share this view; meshes and laws of the page. */
+  constructor(host, maps, meshes, laws, changed) {
+    Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, zoom: 1, panX: 0, panY: 0, cursor: null });
+    this.sets = maps.map(m => m.frames.map(f => new FrameFields(meshes[m.mesh], laws[m.law], f)));
+    this.mapIndex = 0;
+    this.frameIndex = maps[0].frames.length - 1;
+    this.mesh = meshes[maps[0].mesh];
+    this.crossing = new Crossing(this.mesh, maps[0].direction);
+    this.#build();
+    this.draw = perFrame(() => this.drawNow());
+    this.drawProfiles = perFrame(() => this.drawProfilesNow());
+    this.#select();
+    this.#size();
+    new ResizeObserver(perFrame(() => this.#size())).observe(this.stage.parentElement);
+  }
+
+  get map() { return this.maps[this.mapIndex]; }
+
+  get fields() { return this.sets[this.mapIndex][this.frameIndex]; }
+
+  get caption() { return `${this.map.title}, ${this.map.by} ${this.map.frames[this.frameIndex].label}`; }
+
+  /** Shows a frame of a map given by its name in the page. */
+  show(id, frame) {
+    this.mapIndex = Math.max(0, this.maps.findIndex(m => m.id === id));
+    this.frameIndex = frame;
+    this.#select();
+  }
+
+  #build() {
+    const { maps } = this, bar = html('div', { class: 'bar' });
+    this.wiring = choice('Wiring', maps.map((m, k) => [String(k), m.title]), '0', k => {
+      this.mapIndex = Number(k);
+      this.frameIndex = Math.min(this.frameIndex, this.map.frames.length - 1);
+      this.#select();
+    });
+    this.quantity = choice('Quantity', Object.entries(QUANTITIES).map(([k, q]) => [k, q.label]), this.name, k => {
+      this.name = k;
+      this.draw();
+      this.drawProfiles();
+    });
+    bar.append(this.wiring, this.quantity,
+      choice('Colours span', [['all', 'the whole drive'], ['one', 'the shown value']], 'all', v => { this.wholeDrive = v === 'all'; this.draw(); }),
+      tick('equipotentials', this.levels, on => { this.levels = on; this.draw(); }),
+      tick('current lines', this.flow, on => { this.flow = on; this.draw(); }));
+    this.slider = html('input', { type: 'range', min: 0, step: 1, class: 'slide', oninput: () => { this.frameIndex = Number(this.slider.value); this.#select(); } });
+    this.playButton = html('button', { type: 'button', class: 'play', 'aria-label': 'Play', onclick: () => this.play(!this.timer) }, '▶');
+    this.valueText = html('output', { class: 'value' });
+    const drive = html('div', { class: 'bar drive' }, this.playButton, html('label', { class: 'grow' }, html('span', { class: 'spoken-only' }, 'Drive value'), this.slider), this.valueText);
+
+    this.canvas = html('canvas', { 'aria-hidden': 'true' });
+    this.window = svg('rect', null);
+    this.inside = svg('g', { 'clip-path': 'url(#map-clip)' });
+    this.axes = svg('g', null);
+    this.handles = svg('g', { class: 'screen' });
+    this.overlay = svg('svg', { class: 'overlay' }, svg('defs', null, svg('clipPath', { id: 'map-clip' }, this.window)), this.inside, this.axes, this.handles);
+    this.stage = html('div', {
+      class: 'stage', tabindex: 0, role: 'application', 'aria-roledescription': 'map', onkeydown: e => this.#key(e),
+      onpointermove: e => this.#hover(e), onpointerdown: e => this.#down(e), onpointerup: e => this.#up(e), onpointercancel: e => this.#up(e),
+      onpointerleave: e => { if (e.pointerType === 'mouse' && !this.dragging) { this.#read(null); } },
+    }, this.canvas, this.overlay);
+    this.stage.addEventListener('wheel', e => {
+      if (e.ctrlKey || document.activeElement === this.stage) {
+        e.preventDefault();
+        const box = this.stage.getBoundingClientRect();
+        this.zoomBy(Math.exp(-e.deltaY / 400), e.clientX - box.left, e.clientY - box.top);
+      }
+    }, { passive: false });
+    this.readout = html('output', { class: 'readout', 'aria-live': 'polite' });
+    this.legend = svg('svg', { class: 'legend', role: 'img' });
+    const tools = html('div', { class: 'bar tools' },
+      html('span', { role: 'group', 'aria-label': 'Zoom' },
+        html('button', { type: 'button', class: 'small', 'aria-label': 'Zoom in', onclick: () => this.zoomBy(1.5) }, '+'),
+        html('button', { type: 'button', class: 'small', 'aria-label': 'Zoom out', onclick: () => this.zoomBy(1 / 1.5) }, '−'),
+        html('button', { type: 'button', class: 'small', onclick: () => { this.zoom = 1; this.panX = this.panY = 0; this.draw(); } }, 'whole sheet')),
+      saveButtons({ label: () => 'map', name: () => fileName(document.title, this.map.title, this.map.frames[this.frameIndex].label, this.name) }, () => this.#paper(), () => this.#csv()));
+
+    const numberBox = (label, step, read) => {
+      const input = html('input', { type: 'number', step, inputmode: 'decimal', onchange: () => this.cross(read(Number(input.value))) });
+      return { box: html('label', { class: 'choice' }, html('span', null, label), input), input };
+    };
+    this.unit = scaleFor(this.mesh.box.diagonal / 2, 'm');
+    this.crossX = numberBox(`x (${this.unit.unit})`, 'any', v => ({ x: v / this.unit.factor }));
+    this.crossY = numberBox(`y (${this.unit.unit})`, 'any', v => ({ y: v / this.unit.factor }));
+    this.crossA = numberBox('angle (°)', 'any', v => ({ angle: v }));
+    this.profiles = [new ProfilePlot('Line 1'), new ProfilePlot('Line 2')];
+    const crossBar = html('div', { class: 'bar' }, this.crossX.box, this.crossY.box, this.crossA.box,
+      saveButtons({ label: () => 'profiles', name: () => fileName(document.title, this.map.title, 'profiles', this.name) }, () => this.#profilePaper(), () => this.#profileCsv()));
+    this.noteLine = html('p', { class: 'note-line' });
+    this.metalBox = html('details', { class: 'metal-box' }, html('summary', null, 'Potential of each contact'), html('div', { class: 'wide' }));
+    this.left = html('div', { class: 'left' }, html('div', { class: 'stage-frame' }, this.stage), this.legend, this.readout, tools);
+    this.right = html('div', { class: 'right' },
+      html('h3', null, 'Profiles along the two lines'),
+      html('p', { class: 'note-line' }, 'Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: the other values of the drive, darker for smaller ones.'),
+      crossBar, this.profiles[0].plot, this.profiles[1].plot, this.metalBox);
+    this.host.append(bar, drive, html('div', { class: 'pair' }, this.left, this.right), this.noteLine);
+    this.view = new MeshCanvas(this.canvas, this.mesh, new URLSearchParams(location.hash.slice(1)).get('draw') ?? '');
+    const handle = (label, move) => {
+      const node = svg('circle', { r: 8, tabindex: 0, role: 'slider', class: 'handle screen', 'aria-label': label, onpointerdown: e => this.#grab(e, move), onkeydown: e => this.#handleKey(e, move) });
+      return node;
+    };
+    this.moveHandle = handle('Crossing of the two lines; arrow keys move it', 'move');
+    this.turnHandle = handle('Direction of line 1; left and right arrow turn it', 'turn');
+    this.handles.append(this.moveHandle, this.turnHandle);
+  }
+
+  #size() {
+    const width = Math.max(220, this.stage.parentElement.clientWidth), { box } = this.mesh, margin = { left: 52, right: 10, top: 12, bottom: 38 };
+    const room = width - margin.left - margin.right, scale = Math.min((room - 24) / box.width, Math.max(260, Math.min(620, innerHeight * 0.72)) / box.height);
+    const inner = { width: room, height: Math.max(150, Math.round(box.height * scale + 24)) };
+    Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
+    fill(this.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
+    for (const [name, value] of [['width', inner.width], ['height', inner.height], ['left', margin.left], ['top', margin.top]]) {
+      this.canvas.style[name] = value + 'px';
+    }
+    this.stage.style.height = this.height + 'px';
+    this.drawNow();
+    this.drawProfilesNow();
+  }
+
+  /** Pixels of the stage for a place, and back. */
+  toScreen(x, y) {
+    const s = this.fit * this.zoom, { box } = this.mesh;
+    return [this.margin.left + this.inner.width / 2 + this.panX + s * (x - box.cx), this.margin.top + this.inner.height / 2 + this.panY - s * (y - box.cy)];
+  }
+
+  toPlace(u, v) {
+    const s = this.fit * this.zoom, { box } = this.mesh;
+    return [box.cx + (u - this.margin.left - this.inner.width / 2 - this.panX) / s, box.cy - (v - this.margin.top - this.inner.height / 2 - this.panY) / s];
+  }
+
+  /** Zooms about a point of the stage; the middle by default. */
+  zoomBy(factor, u = this.margin.left + this.inner.width / 2, v = this.margin.top + this.inner.height / 2) {
+    const [x, y] = this.toPlace(u, v);
+    this.zoom = Math.max(1, Math.min(4000, this.zoom * factor));
+    if (this.zoom === 1) {
+      this.panX = this.panY = 0;
+    } else {
+      const [u1, v1] = this.toScreen(x, y);
+      this.panX += u - u1;
+      this.panY += v - v1;
+    }
+    this.draw();
+  }
+
+  #select() {
+    const { map } = this;
+    if (this.meshes[map.mesh] !== this.mesh) {
+      this.mesh = this.meshes[map.mesh];
+      this.crossing = new Crossing(this.mesh, map.direction);
+      const fresh = html('canvas', { 'aria-hidden': 'true' });
+      this.canvas.replaceWith(fresh);
+      this.canvas = fresh;
+      this.view = new MeshCanvas(fresh, this.mesh, this.view.kind === 'plain' ? 'plain' : '');
+      if (this.fit) {
+        this.#size();
+      }
+    }
+    this.slider.max = map.frames.length - 1;
+    this.slider.value = this.frameIndex;
+    const { label } = map.frames[this.frameIndex];
+    this.slider.setAttribute('aria-valuetext', label);
+    this.wiring.select.value = String(this.mapIndex);
+    this.valueText.textContent = `${map.by} ${label}`;
+    this.noteLine.textContent = map.note;
+    this.#metal();
+    if (this.fit) {
+      this.draw();
+      this.drawProfiles();
+    }
+    this.changed?.(map.id, this.frameIndex);
+  }
+
+  #metal() {
+    const { map } = this, frame = map.frames[this.frameIndex], largest = Math.max(...frame.metal.map(Math.abs), 0), scale = scaleFor(largest, 'V');
+    const body = html('tbody', null), table = html('table', null, html('thead', null, html('tr', null, html('th', null, 'contact'), html('th', null, `potential (${scale.unit})`))), body);
+    frame.metal.forEach((v, k) => {
+      const { name, role } = map.contacts[k];
+      body.append(html('tr', null, html('td', null, role ? `${name} (${role.replace('+', ' +').replace('-', ' −')})` : name), html('td', null, number(v * scale.factor, 6))));
+    });
+    this.metalBox.lastChild.replaceChildren(table);
+  }
+
+  /** Plays the frames once through, or stops. */
+  play(on) {
+    clearInterval(this.timer);
+    this.timer = 0;
+    this.playButton.textContent = on ? '❚❚' : '▶';
+    this.playButton.setAttribute('aria-label', on ? 'Stop' : 'Play');
+    if (on) {
+      const last = this.map.frames.length - 1, round = this.map.by !== 'current';
+      if (this.frameIndex >= last) {
+        this.frameIndex = 0;
+        this.#select();
+      }
+      this.timer = setInterval(() => {
+        this.frameIndex = round ? (this.frameIndex + 1) % (last + 1) : Math.min(last, this.frameIndex + 1);
+        this.#select();
+        if (!round && this.frameIndex >= last) {
+          this.play(false);
+        }
+      }, round ? 250 : 500);
+    }
+  }
+
+  /** Moves or turns the crossing lines. */
+  cross(change) {
+    if (Object.values(change).every(Number.isFinite)) {
+      this.crossing.set(change);
+    }
+    this.draw();
+    this.drawProfiles();
+  }
+
+  #range() {
+    const sets = this.sets[this.mapIndex], q = QUANTITIES[this.name];
+    if (!this.wholeDrive) {
+      return this.fields.range(this.name);
+    }
+    // The frame with the largest potential has the largest field too; the anisotropy wants its range over all.
+    const strongest = sets.reduce((best, f) => f.frame.high - f.frame.low > best.frame.high - best.frame.low ? f : best);
+    if (this.name === 'phi') {
+      return [Math.min(...sets.map(f => f.frame.low)), Math.max(...sets.map(f => f.frame.high))];
+    }
+    const [low, high] = strongest.range(this.name);
+    return q.log ? [0.01 * high, high] : [Math.min(low, this.fields.range(this.name)[0]), Math.max(high, this.fields.range(this.name)[1])];
+  }
+
+  drawNow() {
+    const { fields, name, view, inner, margin } = this, q = QUANTITIES[name];
+    let [low, high] = this.#range();
+    let values = fields.values(name);
+    const ends = [low, high];
+    if (q.log && high > 0) {
+      const shown = fields.logs ??= {};
+      values = shown[name] ??= values.map(v => Math.log10(Math.max(v, 1e-30)));
+      [low, high] = [Math.log10(low), Math.log10(high)];
+    } else if (q.log) {
+      [low, high] = [0, 1];
+    }
+    const all = this.sets[this.mapIndex], span = this.wholeDrive ? Math.max(...all.map(f => f.frame.high - f.frame.low)) : fields.frame.high - fields.frame.low;
+    this.step = roundStep(span, 20);
+    view.show({ values, low, high, table: RAMPS[q.table], potential: this.levels && fields.frame.high > fields.frame.low ? fields.potentialFloats : null, step: this.step });
+    const [u, v] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy);
+    view.look(inner.width, inner.height, Math.min(2, devicePixelRatio || 1), this.fit * this.zoom, u - margin.left, v - margin.top);
+    view.draw();
+    this.#drawOverlay();
+    this.#drawLegend(ends, q);
+    this.stage.setAttribute('aria-label', `Map of ${q.label}, ${this.caption}. Arrow keys move the reading point, with Shift in small steps; plus and minus zoom.`);
+    if (this.cursor) {
+      this.#write();
+    }
+    if (this.flow) {
+      // The lines of current follow when the slider rests.
+      clearTimeout(this.flowTimer);
+      if (!fields.flow) {
+        this.flowTimer = setTimeout(() => {
+          fields.lines(this.mesh.box.diagonal / 42);
+          this.#drawOverlay();
+        }, 90);
+      }
+    }
+  }
+
+  #path(points) {
+    let d = '';
+    for (let i = 0; i < points.length; i += 2) {
+      const [u, v] = this.toScreen(points[i], points[i + 1]);
+      d += `${i ? 'L' : 'M'}${u.toFixed(1)} ${v.toFixed(1)}`;
+    }
+    return d;
+  }
+
+  #drawOverlay() {
+    const { map, margin, inner, fields, inside, axes } = this, right = margin.left + inner.width, bottom = margin.top + inner.height;
+    fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
+    inside.replaceChildren();
+    axes.replaceChildren();
+    if (this.flow && fields.flow) {
+      const d = fields.flow.map(line => this.#path(line)).join(''), arrows = fields.flow.map(line => this.#arrow(line)).join('');
+      inside.append(
+        svg('path', { d, fill: 'none', stroke: '#000', 'stroke-opacity': 0.45, 'stroke-width': 3 }), svg('path', { d, fill: 'none', stroke: '#fff', 'stroke-width': 1.3 }),
+        svg('path', { d: arrows, fill: '#fff', stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 0.7 }));
+    }
+    for (const loop of map.rim) {
+      inside.append(svg('path', { class: 'rim', d: this.#path(loop) }));
+    }
+    const names = svg('g', { class: 'names' });
+    for (const c of map.contacts) {
+      const role = c.role.replace(/[+-]$/, ''), sign = c.role.endsWith('+') ? '+' : c.role.endsWith('-') ? '−' : '';
+      const d = c.kind === 'tip' ? null : this.#path(c.points), [u, v] = this.toScreen(...c.middle);
+      if (d) {
+        inside.append(svg('path', { class: 'halo', 'stroke-width': c.kind === 'pad' ? 4 : role ? 9 : 7, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': c.kind === 'pad' ? 2 : role ? 6.5 : 4, d }));
+      } else {
+        inside.append(svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: 4 }));
+      }
+      // Names go inwards, where there is room.
+      const [mu, mv] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy), far = Math.hypot(mu - u, mv - v) || 1, away = c.kind === 'edge' ? 17 : 12;
+      const word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
+      names.append(svg('text', {
+        class: `tag ${role}`, x: (u + (mu - u) / far * away * (c.kind === 'edge' ? 1 : -1)).toFixed(1), y: (v + (mv - v) / far * away * (c.kind === 'edge' ? 1 : -1) + 4).toFixed(1), 'text-anchor': 'middle',
+      }, c.name + word + sign));
+    }
+    inside.append(names);
+    this.#drawCrossing(inside);
+    this.#drawAxes(axes, right, bottom);
+    if (this.cursor) {
+      const [u, v] = this.toScreen(this.cursor.x, this.cursor.y);
+      inside.append(svg('path', { class: 'cross screen', d: `M${u - 12} ${v}H${u - 4}M${u + 4} ${v}H${u + 12}M${u} ${v - 12}V${v - 4}M${u} ${v + 4}V${v + 12}` }));
+    }
+  }
+
+  #arrow(line) {
+    const k = 2 * Math.floor(line.length / 4);
+    if (k < 2 || k + 2 >= line.length) {
+      return '';
+    }
+    const [u, v] = this.toScreen(line[k], line[k + 1]), [u0, v0] = this.toScreen(line[k - 2], line[k - 1]), size = Math.hypot(u - u0, v - v0) || 1;
+    const c = (u - u0) / size, s = (v - v0) / size, at = (p, q) => `${(u + p * c - q * s).toFixed(1)} ${(v + p * s + q * c).toFixed(1)}`;
+    return `M${at(6, 0)}L${at(-5, 4.5)}L${at(-2.5, 0)}L${at(-5, -4.5)}Z`;
+  }
+
+  #drawCrossing(inside) {
+    const { crossing } = this;
+    [0, 1].forEach(line => {
+      const { points } = crossing.lines[line], a = points[0], b = points[points.length - 1], [u0, v0] = this.toScreen(a.x, a.y), [u1, v1] = this.toScreen(b.x, b.y);
+      const d = `M${u0.toFixed(1)} ${v0.toFixed(1)}L${u1.toFixed(1)} ${v1.toFixed(1)}`, dash = line ? '2 4' : '9 4';
+      inside.append(svg('path', { d, stroke: '#000', 'stroke-opacity': 0.55, 'stroke-width': 3.2, 'stroke-dasharray': dash }), svg('path', { d, stroke: '#fff', 'stroke-width': 1.6, 'stroke-dasharray': dash }));
+      const [c, s] = crossing.along(line), [u, v] = this.toScreen(crossing.x + 0.82 * crossing.lines[line].high * c, crossing.y + 0.82 * crossing.lines[line].high * s);
+      inside.append(svg('text', { class: 'tag', x: (u + 11 * s).toFixed(1), y: (v + 4 + 11 * c).toFixed(1), 'text-anchor': 'middle' }, String(line + 1)));
+    });
+    const [c, s] = crossing.along(0), reach = 0.55 * crossing.lines[0].high;
+    const place = (node, x, y, text) => {
+      const [u, v] = this.toScreen(x, y);
+      node.setAttribute('cx', u.toFixed(1));
+      node.setAttribute('cy', v.toFixed(1));
+      node.setAttribute('aria-valuetext', text);
+    };
+    const mm = v => number(v * this.unit.factor, 4);
+    place(this.moveHandle, crossing.x, crossing.y, `x ${mm(crossing.x)}, y ${mm(crossing.y)} ${this.unit.unit}`);
+    place(this.turnHandle, crossing.x + reach * c, crossing.y + reach * s, `${number(crossing.angle, 5)} degrees`);
+    this.turnHandle.setAttribute('aria-valuenow', crossing.angle.toFixed(2));
+    this.turnHandle.setAttribute('aria-valuemin', 0);
+    this.turnHandle.setAttribute('aria-valuemax', 360);
+    this.moveHandle.setAttribute('aria-valuenow', mm(crossing.x).replace('−', '-'));
+    for (const [box, value] of [[this.crossX, crossing.x * this.unit.factor], [this.crossY, crossing.y * this.unit.factor], [this.crossA, crossing.angle]]) {
+      if (document.activeElement !== box.input) {
+        box.input.value = Number(value.toFixed(4));
+      }
+    }
+  }
+
+  #drawAxes(axes, right, bottom) {
+    const { margin } = this, f = this.unit.factor, [x0, y1] = this.toPlace(margin.left, margin.top), [x1, y0] = this.toPlace(right, bottom), step = roundStep((x1 - x0) * f, 7);
+    for (const v of multiples(x0 * f, x1 * f, step)) {
+      const [u] = this.toScreen(v / f, 0);
+      axes.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} ${bottom}v5` }), svg('text', { x: u.toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
+    }
+    for (const v of multiples(y0 * f, y1 * f, step)) {
+      const [, w] = this.toScreen(0, v / f);
+      axes.append(svg('path', { class: 'frame', d: `M${margin.left} ${w.toFixed(1)}h-5` }), svg('text', { x: margin.left - 8, y: (w + 4).toFixed(1), 'text-anchor': 'end' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
+    }
+    axes.append(
+      svg('path', { class: 'frame', d: `M${margin.left} ${margin.top}V${bottom}H${right}V${margin.top}Z` }),
+      svg('text', { x: right, y: bottom + 34, 'text-anchor': 'end' }, `x (${this.unit.unit})`),
+      svg('text', { transform: `translate(13 ${margin.top + 30}) rotate(-90)`, 'text-anchor': 'middle' }, `y (${this.unit.unit})`));
+  }
+
+  #drawLegend([low, high], q) {
+    const { legend } = this, width = this.width, left = this.margin.left, right = width - 16, table = RAMPS[q.table], defs = svg('linearGradient', { id: 'map-ramp' });
+    for (let k = 0; k <= 32; k++) {
+      defs.append(svg('stop', { offset: k / 32, 'stop-color': rgbText(table, k / 32) }));
+    }
+    const scale = scaleFor(Math.max(Math.abs(low), Math.abs(high)), q.unit), log = q.log && high > 0;
+    const axis = makeAxis(low * scale.factor, (high > low ? high : low + 1) * scale.factor, left, right, log);
+    legend.setAttribute('width', width);
+    legend.setAttribute('height', 54);
+    legend.setAttribute('viewBox', `0 0 ${width} 54`);
+    legend.setAttribute('aria-label', `Colours: ${q.label} from ${quantity(low, q.unit)} to ${quantity(high, q.unit)}`);
+    legend.replaceChildren(svg('defs', null, defs), svg('rect', { x: left, y: 4, width: right - left, height: 13, fill: 'url(#map-ramp)', class: 'frame-line' }));
+    for (const v of axis.ticks) {
+      const u = axis.at(v);
+      if (u >= left - 1 && u <= right + 1) {
+        legend.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} 17v4` }), svg('text', { x: u.toFixed(1), y: 33, 'text-anchor': 'middle' }, number(v, 5)));
+      }
+    }
+    const lines = this.levels && this.fields.frame.high > this.fields.frame.low ? `; lines every ${quantity(this.step, 'V')}` : '';
+    legend.append(svg('text', { x: left, y: 50 }, `${q.label}${scale.unit ? ` (${scale.unit})` : ''}${log ? ', logarithmic' : ''}${lines}`));
+  }
+
+  #curveOf(fields) {
+    const { name } = this;
+    return line => this.crossing.profile(line, place => name === 'phi' ? this.mesh.value(fields.phi, place) : fields.at(place)[name]);
+  }
+
+  drawProfilesNow() {
+    const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.right.clientWidth - 2;
+    // Long lists of frames are thinned for the eye; the file keeps all.
+    const stride = Math.ceil(sets.length / 24), shown = sets.filter((f, k) => k % stride === 0 || k === this.frameIndex);
+    this.profiles.forEach((plot, line) => plot.draw({
+      points: this.crossing.lines[line].points, curves: shown.map(f => this.#curveOf(f)(line)), now: shown.indexOf(this.fields), unit: q.unit, name: q.label, log: q.log,
+      width, angle: this.crossing.angle + 90 * line > 360 ? this.crossing.angle + 90 * line - 360 : this.crossing.angle + 90 * line,
+    }));
+  }
+
+  #where(e) {
+    const box = this.stage.getBoundingClientRect();
+    return [e.clientX - box.left, e.clientY - box.top];
+  }
+
+  #hover(e) {
+    const [u, v] = this.#where(e);
+    if (this.dragging === 'pan') {
+      this.panX += u - this.last[0];
+      this.panY += v - this.last[1];
+      this.last = [u, v];
+      this.draw();
+    } else if (this.dragging) {
+      this.#drag(u, v);
+    } else {
+      this.#read(this.toPlace(u, v));
+    }
+  }
+
+  #down(e) {
+    if (e.button !== 0 || this.dragging) {
+      return;
+    }
+    const [u, v] = this.#where(e);
+    if (this.zoom > 1 && e.pointerType === 'mouse') {
+      this.dragging = 'pan';
+      this.last = [u, v];
+      this.stage.setPointerCapture(e.pointerId);
+    }
+    this.#read(this.toPlace(u, v));
+  }
+
+  #up() {
+    this.dragging = null;
+  }
+
+  #grab(e, what) {
+    e.stopPropagation();
+    e.preventDefault();
+    e.target.focus();
+    this.dragging = what;
+    this.stage.setPointerCapture(e.pointerId);
+  }
+
+  #drag(u, v) {
+    const [x, y] = this.toPlace(u, v);
+    this.cross(this.dragging === 'move' ? { x, y } : { angle: Math.atan2(y - this.crossing.y, x - this.crossing.x) * 180 / Math.PI });
+  }
+
+  #handleKey(e, what) {
+    const { crossing } = this, step = this.mesh.box.diagonal / (e.shiftKey ? 1000 : 100), turn = e.shiftKey ? 0.1 : 1;
+    const change = what === 'move'
+      ? { ArrowLeft: { x: crossing.x - step }, ArrowRight: { x: crossing.x + step }, ArrowUp: { y: crossing.y + step }, ArrowDown: { y: crossing.y - step } }[e.key]
+      : { ArrowLeft: { angle: crossing.angle + turn }, ArrowUp: { angle: crossing.angle + turn }, ArrowRight: { angle: crossing.angle - turn }, ArrowDown: { angle: crossing.angle - turn } }[e.key];
+    if (change) {
+      e.preventDefault();
+      e.stopPropagation();
+      this.cross(change);
+    }
+  }
+
+  #key(e) {
+    if (e.target !== this.stage) {
+      return;
+    }
+    const { box } = this.mesh, step = box.diagonal / this.zoom / (e.shiftKey ? 500 : 50), { x, y } = this.cursor ?? { x: box.cx, y: box.cy };
+    const to = { ArrowLeft: [x - step, y], ArrowRight: [x + step, y], ArrowUp: [x, y + step], ArrowDown: [x, y - step], Home: [box.cx, box.cy] }[e.key];
+    if (to) {
+      this.#read(to);
+    } else if (e.key === '+' || e.key === '=') {
+      this.zoomBy(1.5, ...this.toScreen(x, y));
+    } else if (e.key === '-') {
+      this.zoomBy(1 / 1.5, ...this.toScreen(x, y));
+    } else if (e.key === 'Escape') {
+      this.#read(null);
+    } else {
+      return;
+    }
+    e.preventDefault();
+  }
+
+  /** Puts the reading point at [x, y] in metres; null takes it away. */
+  read(place) {
+    this.#read(place);
+  }
+
+  #read(place) {
+    this.cursor = place ? { x: place[0], y: place[1] } : null;
+    this.#write();
+    (this.redraw ??= perFrame(() => this.#drawOverlay()))();
+  }
+
+  #write() {
+    if (!this.cursor) {
+      this.readout.replaceChildren('Point at the map, touch it, or move over it with the arrow keys to read φ, E and K.');
+      return;
+    }
+    const { x, y } = this.cursor, at = this.mesh.locate(x, y), f = this.unit.factor, fixed = v => v.toFixed(4).replace('-', '−');
+    const item = (name, value) => html('span', { class: 'item' }, html('b', null, name), ' ', html('span', { class: 'num' }, value));
+    const place = item('at', `(${fixed(x * f)}, ${fixed(y * f)}) ${this.unit.unit}`);
+    if (!at) {
+      this.readout.replaceChildren(place, html('span', { class: 'item' }, 'outside the sheet'));
+      return;
+    }
+    const v = this.fields.at(at), range = this.fields.frame.high - this.fields.frame.low, degrees = (p, q) => `${(Math.atan2(q, p) * 180 / Math.PI).toFixed(1).replace('-', '−')}°`;
+    const arrow = (size, unit, p, q) => size > 0 ? `${reading(size, unit, 4)} at ${degrees(p, q)}` : `0 ${unit}`;
+    this.readout.replaceChildren(place, item('φ', reading(v.phi, 'V', 5, 1e-7 * range)), item('E', arrow(v.e, 'V/m', v.ex, v.ey)), item('K', arrow(v.k, 'A/m', v.kx, v.ky)),
+      item('E·K', reading(v.p, 'W/m²', 4)), item('anisotropy', number(v.a, 4)));
+  }
+
+  #paper() {
+    const { width, height, margin, inner } = this;
+    this.drawNow();
+    const raster = this.canvas.toDataURL('image/png'), image = `<image x="${margin.left}" y="${margin.top}" width="${inner.width}" height="${inner.height}" href="${raster}"/>`;
+    const both = svg('svg', { width, height: height + 54, viewBox: `0 0 ${width} ${height + 54}` }), overlay = this.overlay.cloneNode(true), legend = this.legend.cloneNode(true);
+    both.append(...overlay.childNodes);
+    both.append(svg('g', { transform: `translate(0 ${height})` }, ...legend.childNodes));
+    return paperSvg(both, `${QUANTITIES[this.name].label}, ${this.caption}`, image);
+  }
+
+  #csv() {
+    const { mesh, fields } = this, { ex, ey } = fields.field, { kx, ky } = fields.current, rows = [['x_m', 'y_m', 'phi_V', 'ex_V_per_m', 'ey_V_per_m', 'kx_A_per_m', 'ky_A_per_m']];
+    for (let i = 0; i < mesh.count; i++) {
+      rows.push([mesh.x[i], mesh.y[i], fields.phi[i], ex[i], ey[i], kx[i], ky[i]]);
+    }
+    return rows;
+  }
+
+  #profilePaper() {
+    const [a, b] = this.profiles.map(p => p.plot), width = Number(a.getAttribute('width')), h = Number(a.getAttribute('height'));
+    const both = svg('svg', { width, height: 2 * h, viewBox: `0 0 ${width} ${2 * h}` }, svg('g', null, ...a.cloneNode(true).childNodes), svg('g', { transform: `translate(0 ${h})` }, ...b.cloneNode(true).childNodes));
+    return paperSvg(both, this.caption);
+  }
+
+  /** Profiles of all frames: place, then one column per frame. */
+  profileRows(line) {
+    const curves = this.sets[this.mapIndex].map(f => this.#curveOf(f)(line));
+    return this.crossing.lines[line].points.map((p, k) => [line + 1, p.at, p.x, p.y, ...curves.map(c => Number.isFinite(c[k]) ? c[k] : null)]);
+  }
+
+  #profileCsv() {
+    const unit = QUANTITIES[this.name].unit;
+    return [['line', 'distance_m', 'x_m', 'y_m', ...this.map.frames.map(f => `${QUANTITIES[this.name].label} (${unit}) at ${f.value} ${this.map.unit}`)], ...this.profileRows(0), ...this.profileRows(1)];
+  }
+}

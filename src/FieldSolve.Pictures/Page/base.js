@@ -184,3 +184,6 @@ function perFrame(run) {
     }
   };
 }
+
+/** True while the page is dark. */
+const isDark = () => document.documentElement.dataset.theme === 'dark';

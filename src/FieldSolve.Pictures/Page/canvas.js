@@ -26,14 +26,24 @@ void main() {
   colour = vec4(base, 1.0);
 }`;
 
+// A driver that only imitates a graphics card is slower than our own filling.
+let hardware = null;
+function hasHardware() {
+  if (hardware === null) {
+    const gl = html('canvas', { width: 1, height: 1 }).getContext('webgl2', { failIfMajorPerformanceCaveat: true }), info = gl?.getExtension('WEBGL_debug_renderer_info');
+    const name = info ? String(gl.getParameter(info.UNMASKED_RENDERER_WEBGL)) : '';
+    hardware = gl !== null && !/swiftshader|llvmpipe|software|basic render/i.test(name);
+    gl?.getExtension('WEBGL_lose_context')?.loseContext();
+  }
+  return hardware;
+}
+
 class MeshCanvas {
   /** @param kind 'webgl', 'plain' or '' to choose by the machine. */
   constructor(canvas, mesh, kind = '') {
     this.canvas = canvas;
     this.mesh = mesh;
-    const gl = kind === 'plain' ? null : canvas.getContext('webgl2', {
-      alpha: true, antialias: true, preserveDrawingBuffer: true, failIfMajorPerformanceCaveat: kind !== 'webgl',
-    });
+    const gl = kind === 'plain' || (kind !== 'webgl' && !hasHardware()) ? null : canvas.getContext('webgl2', { antialias: true, preserveDrawingBuffer: true });
     this.kind = 'plain';
     if (gl) {
       try {
@@ -46,11 +56,13 @@ class MeshCanvas {
           this.draw();
         });
       } catch {
-        this.kind = 'plain';
+        // A canvas keeps the kind of its first context: go on with a fresh one.
+        this.canvas = canvas.cloneNode();
+        canvas.replaceWith(this.canvas);
       }
     }
     if (this.kind === 'plain') {
-      this.pen = canvas.getContext('2d');
+      this.pen = this.canvas.getContext('2d');
     }
   }
 

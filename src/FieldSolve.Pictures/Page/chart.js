@@ -1,7 +1,8 @@
 // Curves as SVG: error bars, fit lines, log axes, points that can be clicked or reached by the arrow keys.
 
-// Okabe-Ito without the yellow that vanishes on paper (M. Okabe and K. Ito, Color Universal Design, 2008); the seventh is the ink of the page.
-const SERIES = ['#0072B2', '#D55E00', '#009E73', '#CC79A7', '#E69F00', '#56B4E9', 'ink'];
+// Okabe-Ito without the yellow that vanishes on paper (M. Okabe and K. Ito, Color Universal Design, 2008). The style sheet has the same
+// colours, lighter ones for the dark page.
+const SERIES = ['#0072B2', '#D55E00', '#009E73', '#CC79A7', '#E69F00', '#56B4E9', '#222222'];
 const DASHES = ['', '8 4', '2 3', '10 3 2 3', '15 5'];
 const MARKERS = [
   s => `M${-s} 0a${s} ${s} 0 1 0 ${2 * s} 0a${s} ${s} 0 1 0 ${-2 * s} 0z`,
@@ -13,10 +14,10 @@ const MARKERS = [
 const PAPER = `text{font:12px "DejaVu Sans",Verdana,Geneva,sans-serif;fill:#222}.grid{stroke:#ddd}.frame{stroke:#666;fill:none}.ink{stroke:#222}.inkfill{fill:#222}
 .ring{fill:none;stroke:#222;stroke-width:1.3}.now{fill:none;stroke:#222;stroke-width:2}.title{font-weight:600}.tag{paint-order:stroke;stroke:#fff;stroke-width:3px}.rim{fill:none;stroke:#222;stroke-width:1.4}
 .metal{fill:none;stroke:#222;stroke-width:4}.pad{fill:none;stroke-width:2}.halo{fill:none;stroke:#fff}.source{stroke:#D55E00;fill:#D55E00}.drain{stroke:#0072B2;fill:#0072B2}
-.along{stroke:#00795A;fill:#00795A}.across{stroke:#A0517E;fill:#A0517E}.tag.source,.tag.drain,.tag.along,.tag.across{stroke:#fff}path.source,path.drain,path.along,path.across{fill:none}`;
+.along{stroke:#00795A;fill:#00795A}.across{stroke:#A0517E;fill:#A0517E}.tag.source,.tag.drain,.tag.along,.tag.across{stroke:#fff}path.source,path.drain,path.along,path.across{fill:none}` + SERIES.map((c, k) => `.s${k}{stroke:${c}}.f${k}{fill:${c}}`).join('');
 
-const strokeOf = look => SERIES[look % SERIES.length] === 'ink' ? { class: 'ink' } : { stroke: SERIES[look % SERIES.length] };
-const fillOf = look => SERIES[look % SERIES.length] === 'ink' ? { class: 'inkfill' } : { fill: SERIES[look % SERIES.length] };
+const strokeOf = look => ({ class: `s${look % SERIES.length}` });
+const fillOf = look => ({ class: `f${look % SERIES.length}` });
 const markerPath = (look, size) => MARKERS[look % MARKERS.length](size);
 const dashOf = look => DASHES[look % DASHES.length] || null;
 
@@ -172,9 +173,9 @@ class Chart {
       const own = points.filter(p => p.s === s).map(p => ({ ...p, u: ax.at(p.x * sx.factor), v: ay.at(p.y * sy.factor) })).filter(p => Number.isFinite(p.u) && Number.isFinite(p.v));
       this.placed.push(own);
       if (s.line) {
-        const d = [];
+        const d = [], end = own.length ? 1.08 * Math.max(...own.map(p => p.x)) * sx.factor : x1, start = logX ? x0 : 0;
         for (let k = 0; k <= 80; k++) {
-          const shown = logX ? Math.pow(10, Math.log10(x0) + (Math.log10(x1) - Math.log10(x0)) * k / 80) : x0 + (x1 - x0) * k / 80;
+          const shown = logX ? Math.pow(10, Math.log10(start) + (Math.log10(end) - Math.log10(start)) * k / 80) : start + (end - start) * k / 80;
           const y = (s.line[0] * shown / sx.factor + s.line[1]) * sy.factor, v = ay.at(logY ? Math.abs(y) : y);
           if (Number.isFinite(v)) {
             d.push(`${d.length ? 'L' : 'M'}${ax.at(shown).toFixed(1)} ${Math.max(-1e4, Math.min(1e4, v)).toFixed(1)}`);

@@ -211,6 +211,7 @@ class LiveMap {
       crossBar, this.profiles[0].plot, this.profiles[1].plot, this.metalBox);
     this.host.append(bar, drive, html('div', { class: 'pair' }, this.left, this.right), this.noteLine);
     this.view = new MeshCanvas(this.canvas, this.mesh, new URLSearchParams(location.hash.slice(1)).get('draw') ?? '');
+    this.canvas = this.view.canvas;
     const handle = (label, move) => {
       const node = svg('circle', { r: 8, tabindex: 0, role: 'slider', class: 'handle screen', 'aria-label': label, onpointerdown: e => this.#grab(e, move), onkeydown: e => this.#handleKey(e, move) });
       return node;
@@ -268,6 +269,8 @@ class LiveMap {
       this.canvas.replaceWith(fresh);
       this.canvas = fresh;
       this.view = new MeshCanvas(fresh, this.mesh, this.view.kind === 'plain' ? 'plain' : '');
+      this.canvas = this.view.canvas;
+      this.overlayKey = this.legendKey = this.profileKey = null;
       if (this.fit) {
         this.#size();
       }
@@ -388,6 +391,11 @@ class LiveMap {
   }
 
   #drawOverlay() {
+    const key = [this.zoom, this.panX, this.panY, this.width, this.height, this.mapIndex, this.crossing.version, this.flow && this.fields.flow ? this.frameIndex : '', this.cursor?.x, this.cursor?.y].join();
+    if (key === this.overlayKey) {
+      return;
+    }
+    this.overlayKey = key;
     const { map, margin, inner, fields, inside, axes } = this, right = margin.left + inner.width, bottom = margin.top + inner.height;
     fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
     inside.replaceChildren();
@@ -410,15 +418,15 @@ class LiveMap {
       } else {
         inside.append(svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: 4 }));
       }
-      // Names go inwards, where there is room.
-      const [mu, mv] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy), far = Math.hypot(mu - u, mv - v) || 1, away = c.kind === 'edge' ? 17 : 12;
-      const word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
+      // Names go inwards, where there is room: beside the contact or tip, never over the metal.
+      const [mu, mv] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy), far = Math.hypot(mu - u, mv - v) || 1, inwards = c.kind === 'edge' ? 1 : -1;
+      const du = inwards * (mu - u) / far, dv = inwards * (mv - v) / far, word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
       names.append(svg('text', {
-        class: `tag ${role}`, x: (u + (mu - u) / far * away * (c.kind === 'edge' ? 1 : -1)).toFixed(1), y: (v + (mv - v) / far * away * (c.kind === 'edge' ? 1 : -1) + 4).toFixed(1), 'text-anchor': 'middle',
+        class: `tag ${role}`, x: (u + 10 * du).toFixed(1), y: (v + 16 * dv + 4).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
       }, c.name + word + sign));
     }
-    inside.append(names);
     this.#drawCrossing(inside);
+    inside.append(names);
     this.#drawAxes(axes, right, bottom);
     if (this.cursor) {
       const [u, v] = this.toScreen(this.cursor.x, this.cursor.y);
@@ -483,6 +491,11 @@ class LiveMap {
   }
 
   #drawLegend([low, high], q) {
+    const key = [low, high, this.name, this.step, this.levels && this.fields.frame.high > this.fields.frame.low, this.width].join();
+    if (key === this.legendKey) {
+      return;
+    }
+    this.legendKey = key;
     const { legend } = this, width = this.width, left = this.margin.left, right = width - 16, table = RAMPS[q.table], defs = svg('linearGradient', { id: 'map-ramp' });
     for (let k = 0; k <= 32; k++) {
       defs.append(svg('stop', { offset: k / 32, 'stop-color': rgbText(table, k / 32) }));
@@ -510,13 +523,17 @@ class LiveMap {
   }
 
   drawProfilesNow() {
-    const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.right.clientWidth - 2;
-    // Long lists of frames are thinned for the eye; the file keeps all.
-    const stride = Math.ceil(sets.length / 24), shown = sets.filter((f, k) => k % stride === 0 || k === this.frameIndex);
-    this.profiles.forEach((plot, line) => plot.draw({
-      points: this.crossing.lines[line].points, curves: shown.map(f => this.#curveOf(f)(line)), now: shown.indexOf(this.fields), unit: q.unit, name: q.label, log: q.log,
-      width, angle: this.crossing.angle + 90 * line > 360 ? this.crossing.angle + 90 * line - 360 : this.crossing.angle + 90 * line,
-    }));
+    const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.right.clientWidth - 2, { crossing } = this;
+    const key = [crossing.version, this.name, this.mapIndex, width, isDark()].join();
+    if (key !== this.profileKey) {
+      this.profileKey = key;
+      // Long lists of frames are thinned for the eye; the file keeps all.
+      const stride = Math.ceil(sets.length / 24), shown = sets.filter((f, k) => (sets.length - 1 - k) % stride === 0);
+      this.profiles.forEach((plot, line) => plot.draw({
+        points: crossing.lines[line].points, curves: shown.map(f => this.#curveOf(f)(line)), unit: q.unit, name: q.label, log: q.log, width, angle: (crossing.angle + 90 * line) % 360,
+      }));
+    }
+    this.profiles.forEach((plot, line) => plot.shown(this.#curveOf(this.fields)(line)));
   }
 
   #where(e) {

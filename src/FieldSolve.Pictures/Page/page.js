@@ -5,6 +5,7 @@ function theme() {
   const select = choice('Page', [['auto', 'as the system'], ['light', 'light'], ['dark', 'dark']], 'auto', v => apply(v));
   const apply = v => {
     root.dataset.theme = v === 'auto' ? dark.matches ? 'dark' : 'light' : v;
+    window.fieldsolve?.map?.drawProfiles();
   };
   dark.addEventListener('change', () => apply(select.select.value));
   apply('auto');

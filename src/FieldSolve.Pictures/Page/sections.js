@@ -8,6 +8,7 @@ class Crossing {
     this.x = mesh.box.cx;
     this.y = mesh.box.cy;
     this.angle = ((direction % 180) + 180) % 180;
+    this.version = 0;
     this.#locate();
   }
 
@@ -29,6 +30,7 @@ class Crossing {
   // Points over the stretch of each line that crosses the sheet's box, with their triangles: found once, used for all frames.
   #locate() {
     const { box } = this.mesh;
+    this.version++;
     this.lines = [0, 1].map(line => {
       const [c, s] = this.along(line);
       let low = -Infinity, high = Infinity;
@@ -61,11 +63,10 @@ class ProfilePlot {
     this.label = label;
   }
 
-  /** @param data { points, curves: [numbers], now, unit, name, log, width, title } */
+  /** @param data { points, curves: [numbers], unit, name, log, width, angle } */
   draw(data) {
-    const { points, curves, now, unit, name, log } = data, width = Math.max(240, data.width), height = Math.round(Math.max(150, Math.min(210, width * 0.42)));
+    const { points, curves, unit, name, log } = data, width = Math.max(240, data.width), height = Math.round(Math.max(150, Math.min(210, width * 0.42)));
     const { plot } = this, left = 66, right = width - 10, top = 22, bottom = height - 38;
-    this.data = data;
     let low = Infinity, high = -Infinity;
     for (const curve of curves) {
       for (const v of curve) {
@@ -102,17 +103,14 @@ class ProfilePlot {
       svg('text', { transform: `translate(13 ${(top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, `${name} (${sy.unit})`));
     plot.append(grid, svg('path', { class: 'frame', d: `M${left} ${top}V${bottom}H${right}V${top}Z` }), labels);
     const us = points.map(p => ax.at(p.at * sx.factor).toFixed(1));
-    curves.forEach((curve, k) => {
-      if (k !== now) {
-        this.#curve(curve, us, ay, sy.factor, log, { stroke: rgbText(RAMPS.shore, 0.1 + 0.7 * k / Math.max(1, curves.length - 1)), 'stroke-width': 1.1 });
-      }
-    });
-    if (curves[now]) {
-      this.#curve(curves[now], us, ay, sy.factor, log, { class: 'ink', 'stroke-width': 2.2 });
-    }
+    const from = isDark() ? 0.25 : 0.05, to = isDark() ? 1 : 0.72;
+    curves.forEach((curve, k) => plot.append(this.#curve(curve, us, ay, sy.factor, log, { stroke: rgbText(RAMPS.shore, from + (to - from) * k / Math.max(1, curves.length - 1)), 'stroke-width': 1.1 })));
     if (points[0].at <= 0 && points[points.length - 1].at >= 0) {
       plot.append(svg('path', { class: 'ink', 'stroke-dasharray': '2 3', d: `M${ax.at(0).toFixed(1)} ${top}V${bottom}` }));
     }
+    this.strong = svg('path', { fill: 'none', class: 'ink', 'stroke-width': 2.2 });
+    plot.append(this.strong);
+    this.shown = values => this.strong.setAttribute('d', this.#curve(values, us, ay, sy.factor, log, {}).getAttribute('d'));
   }
 
   #curve(values, us, ay, factor, log, look) {
@@ -126,6 +124,6 @@ class ProfilePlot {
       d += `${open ? 'L' : 'M'}${us[k]} ${v.toFixed(1)}`;
       open = true;
     }
-    this.plot.append(svg('path', { d, fill: 'none', ...look }));
+    return svg('path', { d, fill: 'none', ...look });
   }
 }

@@ -117,6 +117,7 @@ public class PageTests(ReportFixture report)
         IPage page = open.Page;
         PotentialFrame frame = report.Result.Frames.Last(f => f.Wiring == report.Result.Device.Wirings[0].Name);
         LabLaw law = new(report.Result.Device.Law, report.Result.Device.Axis);
+        await page.Locator(".stage").ScrollIntoViewIfNeededAsync();
         var box = (await page.Locator(".stage").BoundingBoxAsync())!;
         int read = 0;
         foreach ((double u, double v) in new[] { (0.5, 0.4), (0.3, 0.62), (0.71, 0.3), (0.55, 0.75), (0.12, 0.5), (0.6, 0.06) })
@@ -149,16 +150,19 @@ public class PageTests(ReportFixture report)
     {
         await using OpenReport open = await report.Open();
         IPage page = open.Page;
+        await page.Locator(".stage").ScrollIntoViewIfNeededAsync();
         var move = (await page.Locator(".handle").Nth(0).BoundingBoxAsync())!;
         await page.Mouse.MoveAsync(move.X + (move.Width / 2), move.Y + (move.Height / 2));
         await page.Mouse.DownAsync();
         await page.Mouse.MoveAsync(move.X + 60, move.Y - 45, new() { Steps = 4 });
         await page.Mouse.UpAsync();
+        await page.WaitForTimeoutAsync(100);
         var turn = (await page.Locator(".handle").Nth(1).BoundingBoxAsync())!;
         await page.Mouse.MoveAsync(turn.X + (turn.Width / 2), turn.Y + (turn.Height / 2));
         await page.Mouse.DownAsync();
         await page.Mouse.MoveAsync(turn.X - 30, turn.Y - 90, new() { Steps = 4 });
         await page.Mouse.UpAsync();
+        await page.WaitForTimeoutAsync(100);
         double[] at = await page.EvaluateAsync<double[]>("[fieldsolve.map.crossing.x, fieldsolve.map.crossing.y, fieldsolve.map.crossing.angle]");
         Assert.True(at[0] > 3e-7 && at[1] > 2e-7 && at[2] is > 10 and < 170, $"The lines did not follow: {string.Join(", ", at)}.");
         PotentialFrame[] frames = [.. report.Result.Frames.Where(f => f.Wiring == report.Result.Device.Wirings[0].Name)];
@@ -319,7 +323,7 @@ public class PageTests(ReportFixture report)
         await page.EmulateMediaAsync(new() { Media = Media.Print });
         await page.WaitForTimeoutAsync(300);
         Assert.Equal("rgb(255, 255, 255)", await page.EvaluateAsync<string>("getComputedStyle(document.body).backgroundColor"));
-        Assert.InRange(await page.EvaluateAsync<double>("Math.max(...[...document.querySelectorAll('.live *')].map(e => e.getBoundingClientRect().right))"), 100, 704);
+        Assert.InRange(await page.EvaluateAsync<double>("Math.max(...[...document.querySelectorAll('.live, .live div, .live > * > svg, .live canvas')].map(e => e.getBoundingClientRect().right))"), 100, 704);
         byte[] pdf = await page.PdfAsync(new() { Format = "A4" });
         Assert.InRange(Regex.Count(System.Text.Encoding.Latin1.GetString(pdf), @"/Type\s*/Page[^s]"), 3, 12);
     }

@@ -52,6 +52,7 @@ public sealed class ReportFixture : IAsyncLifetime
     private readonly string folder = Directory.CreateTempSubdirectory("page-").FullName;
     private IPlaywright? playwright;
     private IBrowser? browser;
+    private OpenReport? shared;
 
     internal DriveResult Result { get; private set; } = null!;
 
@@ -97,16 +98,21 @@ public sealed class ReportFixture : IAsyncLifetime
 
     internal void Write(string path) => ReportPage.Write(Result, DrivePictures.Write(Result, Other("pictures"), CancellationToken.None), path);
 
+    /// <summary>An open report for tests that only ask its script; never changed.</summary>
+    internal async Task<IPage> Shared() => (shared ??= await Open()).Page;
+
     /// <summary>Opens the report and waits for its live parts; every request, error and message is kept.</summary>
     internal async Task<OpenReport> Open(string draw = "", BrowserNewContextOptions? options = null)
     {
-        IBrowserContext context = await browser!.NewContextAsync(options ?? new() { ViewportSize = new() { Width = 1200, Height = 1000 } });
+        options ??= new() { ViewportSize = new() { Width = 1200, Height = 1000 } };
+        options.ReducedMotion = ReducedMotion.Reduce;
+        IBrowserContext context = await browser!.NewContextAsync(options);
         await context.SetOfflineAsync(true);
         IPage page = await context.NewPageAsync();
         page.SetDefaultTimeout(120_000);
         var report = new OpenReport(page);
         await page.GotoAsync(new Uri(Path).AbsoluteUri + (draw.Length > 0 ? "#draw=" + draw : ""));
-        if (options?.JavaScriptEnabled != false)
+        if (options.JavaScriptEnabled != false)
         {
             await page.WaitForFunctionAsync("() => document.documentElement.dataset.ready === 'yes'");
         }

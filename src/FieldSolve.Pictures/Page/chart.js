@@ -85,6 +85,9 @@ class Chart {
     }
     this.#makeKey();
     new ResizeObserver(perFrame(() => this.draw())).observe(host);
+    for (const when of ['beforeprint', 'afterprint']) {
+      addEventListener(when, () => this.draw());
+    }
     this.draw();
   }
 

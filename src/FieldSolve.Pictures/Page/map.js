@@ -128,6 +128,9 @@ class LiveMap {
     this.#select();
     this.#size();
     new ResizeObserver(perFrame(() => this.#size())).observe(this.stage.parentElement);
+    for (const when of ['beforeprint', 'afterprint']) {
+      addEventListener(when, () => this.#size());
+    }
   }
 
   get map() { return this.maps[this.mapIndex]; }
@@ -202,6 +205,7 @@ class LiveMap {
     this.profiles = [new ProfilePlot('Line 1'), new ProfilePlot('Line 2')];
     const crossBar = html('div', { class: 'bar' }, this.crossX.box, this.crossY.box, this.crossA.box,
       saveButtons({ label: () => 'profiles', name: () => fileName(document.title, this.map.title, 'profiles', this.name) }, () => this.#profilePaper(), () => this.#profileCsv()));
+    this.printLine = html('p', { class: 'print-only' });
     this.noteLine = html('p', { class: 'note-line' });
     this.metalBox = html('details', { class: 'metal-box' }, html('summary', null, 'Potential of each contact'), html('div', { class: 'wide' }));
     this.left = html('div', { class: 'left' }, html('div', { class: 'stage-frame' }, this.stage), this.legend, this.readout, tools);
@@ -209,7 +213,7 @@ class LiveMap {
       html('h3', null, 'Profiles along the two lines'),
       html('p', { class: 'note-line' }, 'Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: the other values of the drive, darker for smaller ones.'),
       crossBar, this.profiles[0].plot, this.profiles[1].plot, this.metalBox);
-    this.host.append(bar, drive, html('div', { class: 'pair' }, this.left, this.right), this.noteLine);
+    this.host.append(bar, drive, this.printLine, html('div', { class: 'pair' }, this.left, this.right), this.noteLine);
     this.view = new MeshCanvas(this.canvas, this.mesh, new URLSearchParams(location.hash.slice(1)).get('draw') ?? '');
     this.canvas = this.view.canvas;
     const handle = (label, move) => {
@@ -282,6 +286,7 @@ class LiveMap {
     this.wiring.select.value = String(this.mapIndex);
     this.valueText.textContent = `${map.by} ${label}`;
     this.noteLine.textContent = map.note;
+    this.printLine.textContent = this.caption;
     this.#metal();
     if (this.fit) {
       this.draw();

@@ -43,6 +43,9 @@ function start() {
   document.documentElement.dataset.ready = 'yes';
 }
 
+// The columns of the paper before the parts are laid out anew for it.
+addEventListener('beforeprint', () => { document.documentElement.dataset.print = 'yes'; });
+addEventListener('afterprint', () => { delete document.documentElement.dataset.print; });
 theme();
 // After the first paint, so that the answer stands at once.
 requestAnimationFrame(() => setTimeout(start, 0));

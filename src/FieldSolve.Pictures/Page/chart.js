@@ -81,7 +81,7 @@ class Chart {
       saveButtons(what, () => paperSvg(this.plot, `${spec.title}: ${this.view.label}`), () => this.#csv()));
     host.append(html('h3', null, spec.title), bar, this.plot, this.spoken, this.key);
     if (spec.note) {
-      host.append(html('p', { class: 'note-line' }, spec.note, ' Click a point, or go to it with the arrow keys and press Enter, to see its map.'));
+      host.append(html('p', { class: 'note-line' }, spec.note, html('span', { class: 'hint' }, ' Click a point, or go to it with the arrow keys and press Enter, to see its map.')));
     }
     this.#makeKey();
     new ResizeObserver(perFrame(() => this.draw())).observe(host);

@@ -113,6 +113,26 @@ class FrameFields {
   }
 }
 
+/** Smaller side of the box around points. */
+function spanOf(points) {
+  const xs = points.filter((v, k) => k % 2 === 0), ys = points.filter((v, k) => k % 2 === 1);
+  return Math.min(Math.max(...xs) - Math.min(...xs), Math.max(...ys) - Math.min(...ys));
+}
+
+/** Box around the rims, contacts and tips of maps, metres. */
+function extentOf(maps) {
+  let x0 = Infinity, x1 = -Infinity, y0 = Infinity, y1 = -Infinity;
+  for (const points of maps.flatMap(m => [...m.rim, ...m.contacts.map(c => c.points)])) {
+    for (let i = 0; i < points.length; i += 2) {
+      x0 = Math.min(x0, points[i]);
+      x1 = Math.max(x1, points[i]);
+      y0 = Math.min(y0, points[i + 1]);
+      y1 = Math.max(y1, points[i + 1]);
+    }
+  }
+  return { cx: (x0 + x1) / 2, cy: (y0 + y1) / 2, width: x1 - x0, height: y1 - y0 };
+}
+
 class LiveMap {
   /** @param host element; maps that share this view; meshes and laws of the page. */
   constructor(host, maps, meshes, laws, changed) {
@@ -122,6 +142,7 @@ class LiveMap {
     this.frameIndex = maps[0].frames.length - 1;
     this.mesh = meshes[maps[0].mesh];
     this.crossing = new Crossing(this.mesh, maps[0].direction);
+    this.extent = extentOf(maps);
     this.#build();
     this.draw = perFrame(() => this.drawNow());
     this.drawProfiles = perFrame(() => this.drawProfilesNow());
@@ -203,6 +224,7 @@ class LiveMap {
     this.crossY = numberBox(`y (${this.unit.unit})`, 'any', v => ({ y: v / this.unit.factor }));
     this.crossA = numberBox('angle (°)', 'any', v => ({ angle: v }));
     this.profiles = [new ProfilePlot('Line 1'), new ProfilePlot('Line 2')];
+    this.profileBox = html('div', { class: 'profiles' }, html('div', null, this.profiles[0].plot), html('div', null, this.profiles[1].plot));
     const crossBar = html('div', { class: 'bar' }, this.crossX.box, this.crossY.box, this.crossA.box,
       saveButtons({ label: () => 'profiles', name: () => fileName(document.title, this.map.title, 'profiles', this.name) }, () => this.#profilePaper(), () => this.#profileCsv()));
     this.printLine = html('p', { class: 'print-only' });
@@ -212,8 +234,8 @@ class LiveMap {
     this.right = html('div', { class: 'right' },
       html('h3', null, 'Profiles along the two lines'),
       html('p', { class: 'note-line' }, 'Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: the other values of the drive, darker for smaller ones.'),
-      crossBar, this.profiles[0].plot, this.profiles[1].plot, this.metalBox);
-    this.host.append(bar, drive, this.printLine, html('div', { class: 'pair' }, this.left, this.right), this.noteLine);
+      crossBar, this.profileBox, this.metalBox);
+    this.host.append(bar, drive, this.printLine, html('div', { class: this.extent.width > 1.7 * this.extent.height ? 'pair long' : 'pair' }, this.left, this.right), this.noteLine);
     this.view = new MeshCanvas(this.canvas, this.mesh, new URLSearchParams(location.hash.slice(1)).get('draw') ?? '');
     this.canvas = this.view.canvas;
     const handle = (label, move) => {
@@ -226,8 +248,8 @@ class LiveMap {
   }
 
   #size() {
-    const width = Math.max(220, this.stage.parentElement.clientWidth), { box } = this.mesh, margin = { left: 52, right: 10, top: 12, bottom: 38 };
-    const room = width - margin.left - margin.right, scale = Math.min((room - 24) / box.width, Math.max(260, Math.min(620, innerHeight * 0.72)) / box.height);
+    const width = Math.max(220, this.stage.parentElement.clientWidth), box = this.extent, margin = { left: 52, right: 10, top: 12, bottom: 38 };
+    const room = width - margin.left - margin.right, scale = Math.min((room - 24) / box.width, Math.max(260, Math.min(620, innerHeight * 0.72) - (this.extent.width > 1.7 * this.extent.height ? 140 : 0)) / box.height);
     const inner = { width: room, height: Math.max(150, Math.round(box.height * scale + 24)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
     fill(this.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
@@ -241,12 +263,12 @@ class LiveMap {
 
   /** Pixels of the stage for a place, and back. */
   toScreen(x, y) {
-    const s = this.fit * this.zoom, { box } = this.mesh;
+    const s = this.fit * this.zoom, box = this.extent;
     return [this.margin.left + this.inner.width / 2 + this.panX + s * (x - box.cx), this.margin.top + this.inner.height / 2 + this.panY - s * (y - box.cy)];
   }
 
   toPlace(u, v) {
-    const s = this.fit * this.zoom, { box } = this.mesh;
+    const s = this.fit * this.zoom, box = this.extent;
     return [box.cx + (u - this.margin.left - this.inner.width / 2 - this.panX) / s, box.cy - (v - this.margin.top - this.inner.height / 2 - this.panY) / s];
   }
 
@@ -423,9 +445,10 @@ class LiveMap {
       } else {
         inside.append(svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: 4 }));
       }
-      // Names go inwards, where there is room: beside the contact or tip, never over the metal.
-      const [mu, mv] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy), far = Math.hypot(mu - u, mv - v) || 1, inwards = c.kind === 'edge' ? 1 : -1;
-      const du = inwards * (mu - u) / far, dv = inwards * (mv - v) / far, word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
+      // Names of edges and outer tips go inwards, where there is room, those of large pads to their middle.
+      const { extent } = this, [mu, mv] = this.toScreen(extent.cx, extent.cy), far = Math.hypot(mu - u, mv - v) || 1, word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
+      const outer = Math.max(Math.abs(c.middle[0] - extent.cx) / extent.width, Math.abs(c.middle[1] - extent.cy) / extent.height) > 0.3;
+      const size = c.kind === 'pad' ? this.fit * this.zoom * spanOf(c.points) : 0, turn = size > 30 ? 0 : c.kind === 'edge' || outer ? 1 : -1, du = turn * (mu - u) / far, dv = turn * (mv - v) / far;
       names.append(svg('text', {
         class: `tag ${role}`, x: (u + 10 * du).toFixed(1), y: (v + 16 * dv + 4).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
       }, c.name + word + sign));
@@ -453,8 +476,8 @@ class LiveMap {
     const { crossing } = this;
     [0, 1].forEach(line => {
       const { points } = crossing.lines[line], a = points[0], b = points[points.length - 1], [u0, v0] = this.toScreen(a.x, a.y), [u1, v1] = this.toScreen(b.x, b.y);
-      const d = `M${u0.toFixed(1)} ${v0.toFixed(1)}L${u1.toFixed(1)} ${v1.toFixed(1)}`, dash = line ? '2 4' : '9 4';
-      inside.append(svg('path', { d, stroke: '#000', 'stroke-opacity': 0.55, 'stroke-width': 3.2, 'stroke-dasharray': dash }), svg('path', { d, stroke: '#fff', 'stroke-width': 1.6, 'stroke-dasharray': dash }));
+      const d = `M${u0.toFixed(1)} ${v0.toFixed(1)}L${u1.toFixed(1)} ${v1.toFixed(1)}`, dash = line ? '3 4' : '10 4';
+      inside.append(svg('path', { d, stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 3 }), svg('path', { d, stroke: '#fff', 'stroke-width': 1.8, 'stroke-dasharray': dash }));
       const [c, s] = crossing.along(line), [u, v] = this.toScreen(crossing.x + 0.82 * crossing.lines[line].high * c, crossing.y + 0.82 * crossing.lines[line].high * s);
       inside.append(svg('text', { class: 'tag', x: (u + 11 * s).toFixed(1), y: (v + 4 + 11 * c).toFixed(1), 'text-anchor': 'middle' }, String(line + 1)));
     });
@@ -528,7 +551,7 @@ class LiveMap {
   }
 
   drawProfilesNow() {
-    const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.right.clientWidth - 2, { crossing } = this;
+    const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.profileBox.firstChild.clientWidth - 2, { crossing } = this;
     const key = [crossing.version, this.name, this.mapIndex, width, isDark()].join();
     if (key !== this.profileKey) {
       this.profileKey = key;
@@ -645,10 +668,12 @@ class LiveMap {
       this.readout.replaceChildren(place, html('span', { class: 'item' }, 'outside the sheet'));
       return;
     }
-    const v = this.fields.at(at), range = this.fields.frame.high - this.fields.frame.low, degrees = (p, q) => `${(Math.atan2(q, p) * 180 / Math.PI).toFixed(1).replace('-', '−')}°`;
-    const arrow = (size, unit, p, q) => size > 0 ? `${reading(size, unit, 4)} at ${degrees(p, q)}` : `0 ${unit}`;
-    this.readout.replaceChildren(place, item('φ', reading(v.phi, 'V', 5, 1e-7 * range)), item('E', arrow(v.e, 'V/m', v.ex, v.ey)), item('K', arrow(v.k, 'A/m', v.kx, v.ky)),
-      item('E·K', reading(v.p, 'W/m²', 4)), item('anisotropy', number(v.a, 4)));
+    const v = this.fields.at(at), range = this.fields.frame.high - this.fields.frame.low, degrees = (p, q) => `${(Math.atan2(q, p) * 180 / Math.PI).toFixed(1).replace(/^-0\.0$/, '0.0').replace('-', '−')}°`;
+    const arrow = (size, unit, p, q, digits) => size > 0 ? `${reading(size, unit, digits)} at ${degrees(p, q)}` : `0 ${unit}`;
+    // As many digits of K as the form of the law in this page is good for.
+    const known = Math.max(2, Math.min(4, Math.floor(-Math.log10(2 * this.fields.law.error + 1e-9))));
+    this.readout.replaceChildren(place, item('φ', reading(v.phi, 'V', 5, 1e-7 * range)), item('E', arrow(v.e, 'V/m', v.ex, v.ey, 4)), item('K', arrow(v.k, 'A/m', v.kx, v.ky, known)),
+      item('E·K', reading(v.p, 'W/m²', known)), item('anisotropy', number(v.a, 4)));
   }
 
   #paper() {

@@ -7,7 +7,7 @@ class Crossing {
     this.mesh = mesh;
     this.x = mesh.box.cx;
     this.y = mesh.box.cy;
-    this.angle = ((direction % 180) + 180) % 180;
+    this.angle = ((direction % 360) + 360) % 360;
     this.version = 0;
     this.#locate();
   }
@@ -100,7 +100,7 @@ class ProfilePlot {
     labels.append(
       svg('text', { x: left, y: 14 }, `${this.label}, at ${number(Math.round(data.angle * 100) / 100, 5)}°`),
       svg('text', { x: right, y: height - 6, 'text-anchor': 'end' }, `distance from the crossing (${sx.unit})`),
-      svg('text', { transform: `translate(13 ${(top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, `${name} (${sy.unit})`));
+      svg('text', { transform: `translate(13 ${(top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, sy.unit ? `${name} (${sy.unit})` : name));
     plot.append(grid, svg('path', { class: 'frame', d: `M${left} ${top}V${bottom}H${right}V${top}Z` }), labels);
     const us = points.map(p => ax.at(p.at * sx.factor).toFixed(1));
     const from = isDark() ? 0.25 : 0.05, to = isDark() ? 1 : 0.72;

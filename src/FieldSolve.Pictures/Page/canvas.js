@@ -170,13 +170,76 @@ class MeshCanvas {
     gl.drawElements(gl.TRIANGLES, this.mesh.small.length, gl.UNSIGNED_INT, 0);
   }
 
-  // Fills each small triangle with its values straight between its corners.
-  #drawPlain() {
-    const { pen, mesh, canvas, values, table, ratio } = this, w = canvas.width, h = canvas.height, { small, box } = mesh;
-    if (!this.image || this.image.width !== w || this.image.height !== h) {
-      this.image = pen.createImageData(w, h);
-      this.pixels = new Uint32Array(this.image.data.buffer);
+  // Which pixel lies in which small triangle, and where in it, is found once per view; a new frame or quantity then costs a few steps per pixel,
+  // however many triangles there are.
+  #findPixels() {
+    const { mesh, canvas, ratio } = this, w = canvas.width, h = canvas.height, { small, box } = mesh;
+    const key = [w, h, this.scale, this.left, this.top].join();
+    if (key === this.pixelKey) {
+      return this.found;
     }
+    this.pixelKey = key;
+    const k = this.scale * ratio, ox = this.left * ratio - k * box.cx - 0.5, oy = this.top * ratio + k * box.cy - 0.5;
+    const px = this.px ??= new Float64Array(mesh.count), py = this.py ??= new Float64Array(mesh.count);
+    for (let i = 0; i < mesh.count; i++) {
+      px[i] = ox + k * mesh.x[i];
+      py[i] = oy - k * mesh.y[i];
+    }
+    const owner = new Int32Array(w * h).fill(-1), second = new Float32Array(w * h), third = new Float32Array(w * h);
+    let count = 0;
+    for (let s = 0; s < small.length; s += 3) {
+      const a = small[s], b = small[s + 1], c = small[s + 2], ax = px[a], ay = py[a], bx = px[b], by = py[b], cx = px[c], cy = py[c];
+      const y0 = Math.max(0, Math.ceil(Math.min(ay, by, cy))), y1 = Math.min(h - 1, Math.floor(Math.max(ay, by, cy)));
+      const det = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
+      if (y0 > y1 || det === 0) {
+        continue;
+      }
+      const bdx = (cy - ay) / det, bdy = (ax - cx) / det, cdx = (ay - by) / det, cdy = (bx - ax) / det;
+      for (let y = y0; y <= y1; y++) {
+        let from = Infinity, to = -Infinity;
+        // Where the row meets the three sides.
+        if ((ay <= y) !== (by <= y)) {
+          from = to = ax + (y - ay) * (bx - ax) / (by - ay);
+        }
+        if ((by <= y) !== (cy <= y)) {
+          const x = bx + (y - by) * (cx - bx) / (cy - by);
+          from = Math.min(from, x);
+          to = Math.max(to, x);
+        }
+        if ((cy <= y) !== (ay <= y)) {
+          const x = cx + (y - cy) * (ax - cx) / (ay - cy);
+          from = Math.min(from, x);
+          to = Math.max(to, x);
+        }
+        const x1 = Math.min(w - 1, Math.floor(to));
+        for (let x = Math.max(0, Math.ceil(from)), p = y * w + x; x <= x1; x++, p++) {
+          count += owner[p] < 0 ? 1 : 0;
+          owner[p] = s;
+          second[p] = (x - ax) * bdx + (y - ay) * bdy;
+          third[p] = (x - ax) * cdx + (y - ay) * cdy;
+        }
+      }
+    }
+    const found = { pixel: new Int32Array(count), a: new Int32Array(count), b: new Int32Array(count), c: new Int32Array(count), wb: new Float32Array(count), wc: new Float32Array(count) };
+    for (let p = 0, n = 0; p < owner.length; p++) {
+      const s = owner[p];
+      if (s >= 0) {
+        found.pixel[n] = p;
+        found.a[n] = small[s];
+        found.b[n] = small[s + 1];
+        found.c[n] = small[s + 2];
+        found.wb[n] = second[p];
+        found.wc[n++] = third[p];
+      }
+    }
+    this.image = this.pen.createImageData(w, h);
+    this.pixels = new Uint32Array(this.image.data.buffer);
+    this.levels = new Float32Array(w * h).fill(NaN);
+    return this.found = found;
+  }
+
+  #drawPlain() {
+    const { values, table, low } = this, { pixel, a, b, c, wb, wc } = this.#findPixels(), { pixels } = this;
     if (this.wordTable !== table) {
       this.words = new Uint32Array(256);
       for (let i = 0; i < 256; i++) {
@@ -184,62 +247,43 @@ class MeshCanvas {
       }
       this.wordTable = table;
     }
-    const { pixels, words } = this, k = this.scale * ratio, ox = this.left * ratio - k * box.cx, oy = this.top * ratio + k * box.cy;
-    const px = this.px ??= new Float64Array(mesh.count), py = this.py ??= new Float64Array(mesh.count), shade = this.shade ??= new Float32Array(mesh.count);
-    const span = 255 / (this.high - this.low);
-    for (let i = 0; i < mesh.count; i++) {
-      px[i] = ox + k * mesh.x[i] - 0.5;
-      py[i] = oy - k * mesh.y[i] - 0.5;
-      shade[i] = (values[i] - this.low) * span + 0.5;
+    const { words } = this, span = 255 / (this.high - low), base = 0.5 - low * span;
+    for (let n = 0; n < pixel.length; n++) {
+      const va = values[a[n]], v = base + span * (va + wb[n] * (values[b[n]] - va) + wc[n] * (values[c[n]] - va));
+      pixels[pixel[n]] = words[v < 0 ? 0 : v > 255 ? 255 : v | 0];
     }
-    pixels.fill(0);
-    for (let s = 0; s < small.length; s += 3) {
-      const a = small[s], b = small[s + 1], c = small[s + 2], ax = px[a], ay = py[a], bx = px[b], by = py[b], cx = px[c], cy = py[c];
-      const y0 = Math.max(0, Math.ceil(Math.min(ay, by, cy))), y1 = Math.min(h - 1, Math.floor(Math.max(ay, by, cy)));
-      if (y0 > y1) {
-        continue;
-      }
-      const det = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
-      if (det === 0) {
-        continue;
-      }
-      const sa = shade[a], gx = ((shade[b] - sa) * (cy - ay) - (shade[c] - sa) * (by - ay)) / det, gy = ((shade[c] - sa) * (bx - ax) - (shade[b] - sa) * (cx - ax)) / det;
-      for (let y = y0; y <= y1; y++) {
-        let from = Infinity, to = -Infinity;
-        // Where the row meets the three sides.
-        if ((ay <= y) !== (by <= y)) { const x = ax + (y - ay) * (bx - ax) / (by - ay); if (x < from) from = x; if (x > to) to = x; }
-        if ((by <= y) !== (cy <= y)) { const x = bx + (y - by) * (cx - bx) / (cy - by); if (x < from) from = x; if (x > to) to = x; }
-        if ((cy <= y) !== (ay <= y)) { const x = cx + (y - cy) * (ax - cx) / (ay - cy); if (x < from) from = x; if (x > to) to = x; }
-        const x0 = Math.max(0, Math.ceil(from)), x1 = Math.min(w - 1, Math.floor(to));
-        let v = sa + (x0 - ax) * gx + (y - ay) * gy;
-        for (let x = x0, p = y * w + x0; x <= x1; x++, p++, v += gx) {
-          pixels[p] = words[v < 0 ? 0 : v > 255 ? 255 : v | 0];
-        }
-      }
-    }
-    pen.putImageData(this.image, 0, 0);
     if (this.potential) {
-      const pieces = this.#pieces();
-      for (const [colour, thick] of [['rgba(0,0,0,0.28)', 2.2], ['rgba(255,255,255,0.95)', 1]]) {
-        pen.beginPath();
-        for (let i = 0; i < pieces.length; i += 4) {
-          pen.moveTo(ox + k * pieces[i], oy - k * pieces[i + 1]);
-          pen.lineTo(ox + k * pieces[i + 2], oy - k * pieces[i + 3]);
-        }
-        pen.strokeStyle = colour;
-        pen.lineWidth = thick * Math.max(1, ratio);
-        pen.lineCap = 'round';
-        pen.stroke();
-      }
+      this.#drawLevels(this.found);
     }
+    this.pen.putImageData(this.image, 0, 0);
   }
 
-  #pieces() {
-    if (this.piecesOf !== this.potential || this.piecesStep !== this.step) {
-      this.pieces = levelPieces(this.mesh, this.potential, this.step);
-      this.piecesOf = this.potential;
-      this.piecesStep = this.step;
+  // White lines with a dark hem, as the shader draws them: by the distance from a level in pixels.
+  #drawLevels({ pixel, a, b, c, wb, wc }) {
+    const { potential, levels, pixels } = this, w = this.canvas.width, inverse = 1 / (this.step || 1), lines = Math.max(1, this.ratio);
+    for (let n = 0; n < pixel.length; n++) {
+      const v = potential[a[n]];
+      levels[pixel[n]] = inverse * (v + wb[n] * (potential[b[n]] - v) + wc[n] * (potential[c[n]] - v));
     }
-    return this.pieces;
+    for (let n = 0; n < pixel.length; n++) {
+      const p = pixel[n], level = levels[p], off = Math.abs(level - Math.round(level));
+      let dx = Math.abs(levels[p + 1] - level), dy = Math.abs(levels[p + w] - level);
+      // Not a number at the rim: look back instead.
+      dx = dx >= 0 ? dx : Math.abs(level - levels[p - 1]);
+      dy = dy >= 0 ? dy : Math.abs(level - levels[p - w]);
+      const width = (dx >= 0 ? dx : 0) + (dy >= 0 ? dy : 0);
+      if (off < 1.3 * lines * width && width < 0.5) {
+        const away = off / width, fade = 1 - smoothstep(0.25, 0.5, width);
+        const dark = 1 - 0.3 * fade * smoothstep(lines * 1.3, lines * 0.9, away), white = 0.95 * fade * smoothstep(lines * 0.75, lines * 0.35, away);
+        const word = pixels[p], mix = v => Math.round(255 * white + v * dark * (1 - white));
+        pixels[p] = (255 << 24 | mix(word >> 16 & 255) << 16 | mix(word >> 8 & 255) << 8 | mix(word & 255)) >>> 0;
+      }
+    }
   }
+}
+
+/** As in the shading language: 0 at one end, 1 at the other, smooth between; the ends may be given in either order. */
+function smoothstep(from, to, x) {
+  const t = Math.max(0, Math.min(1, (x - from) / (to - from)));
+  return t * t * (3 - 2 * t);
 }

@@ -1,26 +1,4 @@
-// Level lines and lines of current over the small triangles (each quadratic triangle cut into four at its middles).
-
-/** Pieces of the lines where the values equal multiples of a step: x0, y0, x1, y1, … */
-function levelPieces(mesh, values, step) {
-  const out = [], { small, x, y } = mesh;
-  for (let k = 0; k < small.length; k += 3) {
-    const a = small[k], b = small[k + 1], c = small[k + 2], va = values[a] / step, vb = values[b] / step, vc = values[c] / step;
-    const low = Math.min(va, vb, vc), high = Math.max(va, vb, vc);
-    for (let level = Math.ceil(low); level < high; level++) {
-      const cut = [];
-      for (const [p, q, vp, vq] of [[a, b, va, vb], [b, c, vb, vc], [c, a, vc, va]]) {
-        if ((vp < level) !== (vq < level)) {
-          const w = (level - vp) / (vq - vp);
-          cut.push(x[p] + w * (x[q] - x[p]), y[p] + w * (y[q] - y[p]));
-        }
-      }
-      if (cut.length === 4) {
-        out.push(...cut);
-      }
-    }
-  }
-  return out;
-}
+// Lines of current over the sheet.
 
 /**
  * Lines along a vector field with roughly even spacing, after B. Jobard and W. Lefer, "Creating evenly-spaced streamlines of arbitrary

@@ -38,8 +38,8 @@ function start() {
     live = new LiveMap(host, data.maps, meshes, laws, (map, frame) => charts.forEach(c => c.shows(map, frame)));
     live.read(null);
   }
-  // For tests and for the curious: window.fieldsolve.map.fields.at(…) and the like.
-  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law, levelPieces };
+  // For tests and for the curious, on the console.
+  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law };
   document.documentElement.dataset.ready = 'yes';
 }
 

@@ -125,6 +125,33 @@ internal static class DriveLive
                 "even", "Even across voltage against the square of the odd along voltage",
                 "Lines: least squares over the rows within the law.", [even]);
         }
+
+        if (Refinement(result) is { } refinement)
+        {
+            yield return new("refinement", "Error from mesh to mesh", "Ringed: above the wanted error.", [refinement]);
+        }
+    }
+
+    // Largest estimated error over the wanted one, level by level: a straight line down in logarithmic axes.
+    private static LiveView? Refinement(DriveResult result)
+    {
+        List<LiveSeries> all = [];
+        for (int w = 0; w < result.Device.Wirings.Count; w++)
+        {
+            string name = result.Device.Wirings[w].Name;
+            foreach ((string part, string label) in new[] { ("value", "voltages"), ("even", "even parts") })
+            {
+                (double X, double Y)[] points = [.. result.Levels.Select(l => ((double)l.Unknowns, l.Estimates
+                    .Where(e => e.Wiring == name && e.Part == part && e.Wanted > 0).Select(e => e.Error / e.Wanted).Where(double.IsFinite).DefaultIfEmpty(0).Max()))
+                    .Where(p => p.Item2 > 0)];
+                if (points.Length > 0)
+                {
+                    all.Add(new($"{name}, {label}", all.Count, [.. points.Select(p => p.X)], [.. points.Select(p => p.Y)], [], [.. points.Select(p => p.Y > 1)], null, []));
+                }
+            }
+        }
+
+        return all.Count == 0 ? null : new("estimated error over wanted error", "unknowns", "", "largest estimated error over the wanted one", "", all) { Logarithmic = true };
     }
 
     private static LiveView? Even(DriveResult result, Dictionary<string, (string Id, int[] Index)> places, Func<string, IEnumerable<double>, int[]> frames)

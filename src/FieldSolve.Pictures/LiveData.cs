@@ -57,7 +57,22 @@ internal sealed record LiveSeries(
 /// <param name="Y">Likewise.</param>
 /// <param name="YUnit">Likewise.</param>
 /// <param name="Series">The curves.</param>
-internal sealed record LiveView(string Label, string X, string XUnit, string Y, string YUnit, IReadOnlyList<LiveSeries> Series);
+internal sealed record LiveView(string Label, string X, string XUnit, string Y, string YUnit, IReadOnlyList<LiveSeries> Series)
+{
+    /// <summary>
+    /// "curve"; "bars": one bar per series and category, X of the series counts the categories; "histogram": bars between the edges X, one more than Y.
+    /// </summary>
+    public string Kind { get; init; } = "curve";
+
+    /// <summary>Names below the bars.</summary>
+    public IReadOnlyList<string> Categories { get; init; } = [];
+
+    /// <summary>Upright lines with names, such as percentiles; SI.</summary>
+    public IReadOnlyList<(double X, string Name)> Marks { get; init; } = [];
+
+    /// <summary>True to begin with logarithmic axes.</summary>
+    public bool Logarithmic { get; init; }
+}
 
 /// <summary>A live chart.</summary>
 /// <param name="Id">Name inside the page.</param>
@@ -181,6 +196,20 @@ internal sealed class LiveData
             w.WriteString("xUnit", v.XUnit);
             w.WriteString("y", v.Y);
             w.WriteString("yUnit", v.YUnit);
+            w.WriteString("kind", v.Kind);
+            w.WriteBoolean("logarithmic", v.Logarithmic);
+            w.WriteStartArray("categories");
+            foreach (string name in v.Categories)
+            {
+                w.WriteStringValue(name);
+            }
+
+            w.WriteEndArray();
+            Array(w, "marks", v.Marks, (w, m) =>
+            {
+                w.WriteNumber("x", m.X);
+                w.WriteString("name", m.Name);
+            });
             Array(w, "series", v.Series, (w, s) =>
             {
                 w.WriteString("name", s.Name);

@@ -46,7 +46,7 @@ public static class ReportPage
         if (data.Charts.Count > 0)
         {
             page.Element("h2", "Curves").Raw("<div class=\"charts\">");
-            data.Charts.ForEach(c => PageShell.Chart(page, c.Id));
+            data.Charts.Where(c => c.Id != "refinement").ToList().ForEach(c => PageShell.Chart(page, c.Id));
             page.Raw("</div>");
             AddStill(page, pictures.Where(p => p.Kind is "curves" or "even"));
         }
@@ -68,7 +68,9 @@ public static class ReportPage
 
         ReportTables.Refinement(page, result);
         page.Raw("<div class=\"figures\">");
-        AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
+        AddPictures(page, pictures.Where(p => p.Kind == "mesh"));
+        PageShell.Chart(page, "refinement");
+        AddStill(page, pictures.Where(p => p.Kind == "convergence"));
         page.Raw("</div>").Element("h2", "Settings");
         ReportTables.Settings(page, result);
         PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}");

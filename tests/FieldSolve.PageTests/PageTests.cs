@@ -2,6 +2,7 @@ using System.Globalization;
 using System.Text.RegularExpressions;
 using FieldSolve.Fields;
 using FieldSolve.Laws;
+using FieldSolve.Pictures;
 using FieldSolve.Readings;
 using Microsoft.Playwright;
 
@@ -290,6 +291,41 @@ public class PageTests(ReportFixture report)
             Assert.True(bytes.Length > 4000 && bytes[1] == 'P' && bytes[2] == 'N' && bytes[3] == 'G');
         }
 
+        Assert.Empty(open.Complaints);
+    }
+
+    [BrowserFact]
+    public async Task Bars_and_histograms_stand_where_their_numbers_are()
+    {
+        LiveSeries Series(string name, double[] x, double[] y) => new(name, 0, x, y, [], [], null, []);
+        LiveData data = new()
+        {
+            Charts =
+            {
+                new("bars", "Budget", "", [new("share", "contact", "", "share", "V", [Series("shift", [0, 1, 2], [1e-6, -2e-6, 4e-6])]) { Kind = "bars", Categories = ["c1", "<i>c2</i>", "c3"] }]),
+                new("histogram", "Spread", "", [new("spread", "V_along", "V", "runs", "", [Series("runs", [0, 1e-3, 2e-3], [30, 10])]) { Kind = "histogram", Marks = [(5e-4, "median")] }]),
+            },
+        };
+        await using OpenReport open = await report.Open();
+        double[][] boxes = await open.Page.EvaluateAsync<double[][]>(
+            """
+            json => JSON.parse(json).charts.map(spec => {
+              const host = document.createElement('section');
+              document.querySelector('main').prepend(host);
+              host.chart = new fieldsolve.Chart(host, spec, () => {});
+              return [...host.querySelectorAll('.plot rect')].flatMap(r => ['x', 'y', 'width', 'height'].map(a => Number(r.getAttribute(a))));
+            })
+            """,
+            data.Json());
+        double[] b = boxes[0], h = boxes[1];
+        Assert.Equal(12, b.Length);
+        Assert.Equal(2 * b[3], b[7], 0.1);   // heights as 1 : 2 : 4, the second below zero
+        Assert.Equal(4 * b[3], b[11], 0.1);
+        Assert.Equal(b[1] + b[3], b[5], 0.1);
+        Assert.Equal(8, h.Length);
+        Assert.Equal(h[0] + h[2], h[4], 0.1);
+        Assert.Equal(3 * h[7], h[3], 0.1);
+        Assert.Equal("<i>c2</i>", await open.Page.EvaluateAsync<string>("[...document.querySelectorAll('.plot text')].map(t => t.textContent).find(t => t.includes('c2'))"));
         Assert.Empty(open.Complaints);
     }
 

@@ -60,7 +60,8 @@ class Chart {
    * @param pick called with (map, frame) when a point is chosen.
    */
   constructor(host, spec, pick) {
-    Object.assign(this, { spec, pick, view: spec.views[0], logX: false, logY: false, hidden: new Set(), cursor: null, now: {} });
+    const log = spec.views[0].logarithmic;
+    Object.assign(this, { spec, pick, view: spec.views[0], logX: log, logY: log, hidden: new Set(), cursor: null, now: {} });
     const what = { label: () => spec.title, name: () => fileName(document.title, spec.id, this.view.label) };
     this.plot = svg('svg', {
       class: 'plot', tabindex: 0, role: 'application', 'aria-roledescription': 'chart', onkeydown: e => this.#key(e), onblur: () => this.#point(null), onfocus: () => this.#speak(),
@@ -75,13 +76,14 @@ class Chart {
         this.draw();
       }));
     }
-    bar.append(
-      tick('log x', false, on => { this.logX = on; this.draw(); }),
-      tick('log y', false, on => { this.logY = on; this.draw(); }),
-      saveButtons(what, () => paperSvg(this.plot, `${spec.title}: ${this.view.label}`), () => this.#csv()));
-    host.append(html('h3', null, spec.title), bar, this.plot, this.spoken, this.key);
+    if (spec.views.every(v => v.kind === 'curve')) {
+      bar.append(tick('log x', log, on => { this.logX = on; this.draw(); }),
+      tick('log y', log, on => { this.logY = on; this.draw(); }));
+    }
+    bar.append(saveButtons(what, () => paperSvg(this.plot, `${spec.title}: ${this.view.label}`), () => this.#csv()));
+    host.append(html('h3', null, spec.title), bar, html('div', null, this.plot), this.spoken, this.key);
     if (spec.note) {
-      host.append(html('p', { class: 'note-line' }, spec.note, html('span', { class: 'hint' }, ' Click a point, or go to it with the arrow keys and press Enter, to see its map.')));
+      host.append(html('p', { class: 'note-line' }, spec.note, !spec.views.some(v => v.series.some(s => s.map)) ? '' : html('span', { class: 'hint' }, ' Click a point, or go to it with the arrow keys and press Enter, to see its map.')));
     }
     this.#makeKey();
     new ResizeObserver(perFrame(() => this.draw())).observe(host);
@@ -126,6 +128,12 @@ class Chart {
   draw() {
     const width = Math.max(260, Math.round(this.plot.parentElement.clientWidth || 600)), height = Math.round(Math.max(230, Math.min(380, width * 0.56)));
     const { view, logX, logY, plot } = this, series = this.#shown(), points = [];
+    if (view.kind !== 'curve') {
+      this.placed = [];
+      drawBars(plot, view, series, width, height);
+      plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${view.categories.length || series.length} ${view.categories.length ? 'bars' : 'distributions'}; the numbers can be saved as CSV.`);
+      return;
+    }
     for (const s of series) {
       s.x.forEach((x, k) => {
         const px = logX ? Math.abs(x) : x, py = logY ? Math.abs(s.y[k]) : s.y[k];
@@ -161,7 +169,7 @@ class Chart {
       grid.append(svg('path', { d: `M${left} ${ay.at(v).toFixed(1)}H${right}` }));
       labels.append(svg('text', { x: left - 7, y: (ay.at(v) + 4).toFixed(1), 'text-anchor': 'end' }, number(v, 6)));
     }
-    const named = (name, unit, log) => log ? `|${name}| (${unit})` : `${name} (${unit})`;
+    const named = (name, unit, log) => (log ? `|${name}|` : name) + (unit ? ` (${unit})` : '');
     labels.append(
       svg('text', { x: (left + right) / 2, y: height - 8, 'text-anchor': 'middle' }, named(view.x, sx.unit, logX && xs.length && view.series.some(s => s.x.some(v => v < 0)))),
       svg('text', { transform: `translate(15 ${(top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, named(view.y, sy.unit, logY && view.series.some(s => s.y.some(v => v < 0)))));
@@ -271,6 +279,9 @@ class Chart {
 
   #csv() {
     const { view } = this;
+    if (view.kind !== 'curve') {
+      return barRows(view, this.#shown());
+    }
     return [['curve', `${view.x} (${view.xUnit})`, `${view.y} (${view.yUnit})`, `numerical error (${view.yUnit})`, 'ok'],
       ...this.#shown().flatMap(s => s.x.map((x, k) => [s.name, x, s.y[k], s.error[k], s.doubtful[k] ? 'no' : 'yes']))];
   }

@@ -579,6 +579,8 @@ class LiveMap {
     } else if (this.dragging) {
       this.#drag(u, v);
     } else {
+      // Said aloud only when the keys move the point: a mouse would chatter.
+      this.readout.setAttribute('aria-live', 'off');
       this.#read(this.toPlace(u, v));
     }
   }
@@ -631,6 +633,7 @@ class LiveMap {
     }
     const { box } = this.mesh, step = box.diagonal / this.zoom / (e.shiftKey ? 500 : 50), { x, y } = this.cursor ?? { x: box.cx, y: box.cy };
     const to = { ArrowLeft: [x - step, y], ArrowRight: [x + step, y], ArrowUp: [x, y + step], ArrowDown: [x, y - step], Home: [box.cx, box.cy] }[e.key];
+    this.readout.setAttribute('aria-live', 'polite');
     if (to) {
       this.#read(to);
     } else if (e.key === '+' || e.key === '=') {

@@ -39,7 +39,7 @@ function start() {
     live.read(null);
   }
   // For tests and for the curious, on the console.
-  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law };
+  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law, Chart };
   document.documentElement.dataset.ready = 'yes';
 }
 

@@ -102,21 +102,24 @@ internal sealed class LiveData
     /// <summary>Title of the device, for file names and pictures.</summary>
     public string Title { get; init; } = "";
 
-    /// <summary>The data as JSON that may stand inside a script element: no '&lt;' occurs in it.</summary>
+    /// <summary>Writes the data as JSON that may stand inside a script element: no '&lt;' occurs in it.</summary>
+    public void Write(Stream stream)
+    {
+        using Utf8JsonWriter w = new(stream);
+        w.WriteStartObject();
+        w.WriteString("title", Title);
+        Array(w, "meshes", Meshes, Write);
+        Array(w, "laws", Laws, Write);
+        Array(w, "maps", Maps, Write);
+        Array(w, "charts", Charts, Write);
+        w.WriteEndObject();
+    }
+
+    /// <summary>The same as text.</summary>
     public string Json()
     {
         using MemoryStream memory = new();
-        using (Utf8JsonWriter w = new(memory))
-        {
-            w.WriteStartObject();
-            w.WriteString("title", Title);
-            Array(w, "meshes", Meshes, Write);
-            Array(w, "laws", Laws, Write);
-            Array(w, "maps", Maps, Write);
-            Array(w, "charts", Charts, Write);
-            w.WriteEndObject();
-        }
-
+        Write(memory);
         return Encoding.UTF8.GetString(memory.GetBuffer(), 0, (int)memory.Length);
     }
 
@@ -180,6 +183,7 @@ internal sealed class LiveData
             if (high > low)
             {
                 w.WriteBase64String("phi", bytes);
+                w.Flush();
             }
         });
     }

@@ -1,3 +1,6 @@
+using System.Text;
+using FieldSolve.Files;
+
 namespace FieldSolve.Pictures;
 
 /// <summary>Head and end of a report: policy, style, title, data block and script. The parts in between are added by the page itself.</summary>
@@ -25,20 +28,27 @@ internal static class PageShell
     /// <param name="id">Name of the chart, of letters, digits and hyphens.</param>
     public static void Chart(Html page, string id) => page.Raw($"<section class=\"live\" data-chart=\"{id}\" hidden></section>");
 
-    /// <summary>The footer, the data and the script.</summary>
-    /// <param name="page">The page.</param>
+    /// <summary>Adds the footer, the data and the script, and writes the file.</summary>
+    /// <param name="page">The page with all its sections.</param>
     /// <param name="data">What the script shows; null leaves out data and script.</param>
     /// <param name="footer">Last line.</param>
-    public static void End(Html page, LiveData? data, string footer)
+    /// <param name="path">Target file.</param>
+    public static void End(Html page, LiveData? data, string footer, string path)
     {
         page.Raw("</main>").Raw("<footer>").Element("p", footer).Raw("</footer>");
-        if (data is not null)
+        WholeFile.Write(path, stream =>
         {
-            // A block of another type is data: it is neither run nor bound by the policy.
-            page.Raw($"<script type=\"application/json\" id=\"data\">{data.Json()}</script>");
-            page.Raw("<script>" + LiveScript.Script + "</script>");
-        }
+            void Add(string text) => stream.Write(Encoding.UTF8.GetBytes(text));
+            Add(page.ToString());
+            if (data is not null)
+            {
+                // A block of another type is data: it is neither run nor bound by the policy.
+                Add("<script type=\"application/json\" id=\"data\">");
+                data.Write(stream);
+                Add("</script>\n<script>" + LiveScript.Script + "</script>\n");
+            }
 
-        page.Raw("</body>").Raw("</html>");
+            Add("</body>\n</html>\n");
+        });
     }
 }

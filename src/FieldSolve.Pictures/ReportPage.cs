@@ -73,8 +73,7 @@ public static class ReportPage
         AddStill(page, pictures.Where(p => p.Kind == "convergence"));
         page.Raw("</div>").Element("h2", "Settings");
         ReportTables.Settings(page, result);
-        PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}");
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static void AddWirings(Html page, DriveResult result)

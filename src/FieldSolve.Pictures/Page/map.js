@@ -1,124 +1,5 @@
 // The live map: colours, level lines and lines of current of one frame of one wiring, a cursor that reads values, and the crossing lines.
 
-const QUANTITIES = {
-  phi: { label: 'potential φ', unit: 'V', table: 'shore', log: false },
-  e: { label: 'field |E|', unit: 'V/m', table: 'ember', log: true },
-  k: { label: 'current density |K|', unit: 'A/m', table: 'ember', log: true },
-  p: { label: 'power density E·K', unit: 'W/m²', table: 'ember', log: true },
-  a: { label: 'anisotropy of dK/dE', unit: '', table: 'dusk', log: false },
-};
-
-/** Ratio of the larger to the smaller eigenvalue of the symmetric part of a tensor (xx, xy, yx, yy from index 2 on). */
-function anisotropy(d) {
-  const mean = (d[2] + d[5]) / 2, half = (d[2] - d[5]) / 2, off = (d[3] + d[4]) / 2, r = Math.hypot(half, off);
-  return mean > r ? (mean + r) / (mean - r) : Infinity;
-}
-
-/** Values of one frame at the nodes, worked out when they are first asked for. */
-class FrameFields {
-  constructor(mesh, law, frame) {
-    Object.assign(this, { mesh, law, frame });
-  }
-
-  get phi() {
-    if (!this.potential) {
-      const { frame, mesh } = this, phi = new Float64Array(mesh.count).fill(frame.low);
-      if (frame.phi) {
-        const raw = new Uint32Array(bytesOf(frame.phi).buffer), step = (frame.high - frame.low) / 4294967295;
-        for (let i = 0; i < raw.length; i++) {
-          phi[i] = frame.low + raw[i] * step;
-        }
-        frame.phi = null;
-      }
-      this.potential = phi;
-    }
-    return this.potential;
-  }
-
-  get potentialFloats() {
-    return this.floats ??= Float32Array.from(this.phi);
-  }
-
-  get field() {
-    return this.nodeField ??= this.mesh.nodeFields(this.phi);
-  }
-
-  get current() {
-    if (!this.nodeCurrent) {
-      const { ex, ey } = this.field, kx = new Float64Array(ex.length), ky = new Float64Array(ex.length), out = new Float64Array(6);
-      for (let i = 0; i < ex.length; i++) {
-        this.law.at(ex[i], ey[i], out);
-        kx[i] = out[0];
-        ky[i] = out[1];
-      }
-      this.nodeCurrent = { kx, ky };
-    }
-    return this.nodeCurrent;
-  }
-
-  /** Node values of a quantity. */
-  values(name) {
-    this.cache ??= {};
-    return this.cache[name] ??= this.#make(name);
-  }
-
-  #make(name) {
-    if (name === 'phi') {
-      return this.potentialFloats;
-    }
-    const { ex, ey } = this.field, out = new Float32Array(ex.length);
-    if (name === 'e') {
-      for (let i = 0; i < out.length; i++) {
-        out[i] = Math.hypot(ex[i], ey[i]);
-      }
-    } else if (name === 'a') {
-      const d = new Float64Array(6);
-      for (let i = 0; i < out.length; i++) {
-        this.law.at(ex[i], ey[i], d, true);
-        out[i] = Math.min(1e6, anisotropy(d));
-      }
-    } else {
-      const { kx, ky } = this.current;
-      for (let i = 0; i < out.length; i++) {
-        out[i] = name === 'k' ? Math.hypot(kx[i], ky[i]) : ex[i] * kx[i] + ey[i] * ky[i];
-      }
-    }
-    return out;
-  }
-
-  /** Everything at a located point, from the quadratic element itself. */
-  at(place) {
-    const [ex, ey] = this.mesh.field(this.phi, place), out = new Float64Array(6);
-    this.law.at(ex, ey, out, true);
-    return { phi: this.mesh.value(this.phi, place), ex, ey, kx: out[0], ky: out[1], e: Math.hypot(ex, ey), k: Math.hypot(out[0], out[1]), p: ex * out[0] + ey * out[1], a: anisotropy(out) };
-  }
-
-  /** Range of colours: percentiles of the area, for logarithmic scales at most two decades. */
-  range(name) {
-    this.ranges ??= {};
-    return this.ranges[name] ??= this.#range(name);
-  }
-
-  #range(name) {
-    if (name === 'phi') {
-      return [this.frame.low, this.frame.high];
-    }
-    const [low, high] = this.mesh.percentiles(this.values(name), [0.01, 0.99]);
-    return QUANTITIES[name].log ? [Math.max(low, 0.01 * high), high] : [low, high];
-  }
-
-  lines(spacing) {
-    const { kx, ky } = this.current;
-    return this.flow ??= streamlines(this.mesh, kx, ky, spacing);
-  }
-}
-
-/** Smaller side of the box around points. */
-function spanOf(points) {
-  const xs = points.filter((v, k) => k % 2 === 0), ys = points.filter((v, k) => k % 2 === 1);
-  return Math.min(Math.max(...xs) - Math.min(...xs), Math.max(...ys) - Math.min(...ys));
-}
-
 /** Box around the rims, contacts and tips of maps, metres. */
 function extentOf(maps) {
   let x0 = Infinity, x1 = -Infinity, y0 = Infinity, y1 = -Infinity;
@@ -189,16 +70,12 @@ class LiveMap {
     const drive = html('div', { class: 'bar drive' }, this.playButton, html('label', { class: 'grow' }, html('span', { class: 'spoken-only' }, 'Drive value'), this.slider), this.valueText);
 
     this.canvas = html('canvas', { 'aria-hidden': 'true' });
-    this.window = svg('rect', null);
-    this.inside = svg('g', { 'clip-path': 'url(#map-clip)' });
-    this.axes = svg('g', null);
-    this.handles = svg('g', { class: 'screen' });
-    this.overlay = svg('svg', { class: 'overlay' }, svg('defs', null, svg('clipPath', { id: 'map-clip' }, this.window)), this.inside, this.axes, this.handles);
+    this.top = new MapOverlay(this);
     this.stage = html('div', {
       class: 'stage', tabindex: 0, role: 'application', 'aria-roledescription': 'map', onkeydown: e => this.#key(e),
       onpointermove: e => this.#hover(e), onpointerdown: e => this.#down(e), onpointerup: e => this.#up(e), onpointercancel: e => this.#up(e),
       onpointerleave: e => { if (e.pointerType === 'mouse' && !this.dragging) { this.#read(null); } },
-    }, this.canvas, this.overlay);
+    }, this.canvas, this.top.overlay);
     this.stage.addEventListener('wheel', e => {
       if (e.ctrlKey || document.activeElement === this.stage) {
         e.preventDefault();
@@ -207,7 +84,6 @@ class LiveMap {
       }
     }, { passive: false });
     this.readout = html('output', { class: 'readout', 'aria-live': 'polite' });
-    this.legend = svg('svg', { class: 'legend', role: 'img' });
     const tools = html('div', { class: 'bar tools' },
       html('span', { role: 'group', 'aria-label': 'Zoom' },
         html('button', { type: 'button', class: 'small', 'aria-label': 'Zoom in', onclick: () => this.zoomBy(1.5) }, '+'),
@@ -230,7 +106,7 @@ class LiveMap {
     this.printLine = html('p', { class: 'print-only' });
     this.noteLine = html('p', { class: 'note-line' });
     this.metalBox = html('details', { class: 'metal-box' }, html('summary', null, 'Potential of each contact'), html('div', { class: 'wide' }));
-    this.left = html('div', { class: 'left' }, html('div', { class: 'stage-frame' }, this.stage), this.legend, this.readout, tools);
+    this.left = html('div', { class: 'left' }, html('div', { class: 'stage-frame' }, this.stage), this.top.legend, this.readout, tools);
     this.right = html('div', { class: 'right' },
       html('h3', null, 'Profiles along the two lines'),
       html('p', { class: 'note-line' }, 'Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: the other values of the drive, darker for smaller ones.'),
@@ -244,7 +120,8 @@ class LiveMap {
     };
     this.moveHandle = handle('Crossing of the two lines; arrow keys move it', 'move');
     this.turnHandle = handle('Direction of line 1; left and right arrow turn it', 'turn');
-    this.handles.append(this.moveHandle, this.turnHandle);
+    this.top.handles.append(this.moveHandle, this.turnHandle);
+    Object.assign(this.top, { moveHandle: this.moveHandle, turnHandle: this.turnHandle });
   }
 
   #size() {
@@ -252,7 +129,7 @@ class LiveMap {
     const room = width - margin.left - margin.right, scale = Math.min((room - 24) / box.width, Math.max(260, Math.min(620, innerHeight * 0.72) - (this.extent.width > 1.7 * this.extent.height ? 140 : 0)) / box.height);
     const inner = { width: room, height: Math.max(150, Math.round(box.height * scale + 24)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
-    fill(this.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
+    fill(this.top.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
     for (const [name, value] of [['width', inner.width], ['height', inner.height], ['left', margin.left], ['top', margin.top]]) {
       this.canvas.style[name] = value + 'px';
     }
@@ -296,7 +173,8 @@ class LiveMap {
       this.canvas = fresh;
       this.view = new MeshCanvas(fresh, this.mesh, this.view.kind === 'plain' ? 'plain' : '');
       this.canvas = this.view.canvas;
-      this.overlayKey = this.legendKey = this.profileKey = null;
+      this.profileKey = null;
+      this.top.forget();
       if (this.fit) {
         this.#size();
       }
@@ -390,8 +268,8 @@ class LiveMap {
     const [u, v] = this.toScreen(this.mesh.box.cx, this.mesh.box.cy);
     view.look(inner.width, inner.height, Math.min(2, devicePixelRatio || 1), this.fit * this.zoom, u - margin.left, v - margin.top);
     view.draw();
-    this.#drawOverlay();
-    this.#drawLegend(ends, q);
+    this.top.draw();
+    this.top.drawLegend(ends, q);
     this.stage.setAttribute('aria-label', `Map of ${q.label}, ${this.caption}. Arrow keys move the reading point, with Shift in small steps; plus and minus zoom.`);
     if (this.cursor) {
       this.#write();
@@ -402,147 +280,10 @@ class LiveMap {
       if (!fields.flow) {
         this.flowTimer = setTimeout(() => {
           fields.lines(this.mesh.box.diagonal / 42);
-          this.#drawOverlay();
+          this.top.draw();
         }, 90);
       }
     }
-  }
-
-  #path(points) {
-    let d = '';
-    for (let i = 0; i < points.length; i += 2) {
-      const [u, v] = this.toScreen(points[i], points[i + 1]);
-      d += `${i ? 'L' : 'M'}${u.toFixed(1)} ${v.toFixed(1)}`;
-    }
-    return d;
-  }
-
-  #drawOverlay() {
-    const key = [this.zoom, this.panX, this.panY, this.width, this.height, this.mapIndex, this.crossing.version, this.flow && this.fields.flow ? this.frameIndex : '', this.cursor?.x, this.cursor?.y].join();
-    if (key === this.overlayKey) {
-      return;
-    }
-    this.overlayKey = key;
-    const { map, margin, inner, fields, inside, axes } = this, right = margin.left + inner.width, bottom = margin.top + inner.height;
-    fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
-    inside.replaceChildren();
-    axes.replaceChildren();
-    if (this.flow && fields.flow) {
-      const d = fields.flow.map(line => this.#path(line)).join(''), arrows = fields.flow.map(line => this.#arrow(line)).join('');
-      inside.append(
-        svg('path', { d, fill: 'none', stroke: '#000', 'stroke-opacity': 0.45, 'stroke-width': 3 }), svg('path', { d, fill: 'none', stroke: '#fff', 'stroke-width': 1.3 }),
-        svg('path', { d: arrows, fill: '#fff', stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 0.7 }));
-    }
-    for (const loop of map.rim) {
-      inside.append(svg('path', { class: 'rim', d: this.#path(loop) }));
-    }
-    const names = svg('g', { class: 'names' });
-    for (const c of map.contacts) {
-      const role = c.role.replace(/[+-]$/, ''), sign = c.role.endsWith('+') ? '+' : c.role.endsWith('-') ? '−' : '';
-      const d = c.kind === 'tip' ? null : this.#path(c.points), [u, v] = this.toScreen(...c.middle);
-      if (d) {
-        inside.append(svg('path', { class: 'halo', 'stroke-width': c.kind === 'pad' ? 4 : role ? 9 : 7, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': c.kind === 'pad' ? 2 : role ? 6.5 : 4, d }));
-      } else {
-        inside.append(svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: 4 }));
-      }
-      // Names of edges and outer tips go inwards, where there is room, those of large pads to their middle.
-      const { extent } = this, [mu, mv] = this.toScreen(extent.cx, extent.cy), far = Math.hypot(mu - u, mv - v) || 1, word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
-      const outer = Math.max(Math.abs(c.middle[0] - extent.cx) / extent.width, Math.abs(c.middle[1] - extent.cy) / extent.height) > 0.3;
-      const size = c.kind === 'pad' ? this.fit * this.zoom * spanOf(c.points) : 0, turn = size > 30 ? 0 : c.kind === 'edge' || outer ? 1 : -1, du = turn * (mu - u) / far, dv = turn * (mv - v) / far;
-      names.append(svg('text', {
-        class: `tag ${role}`, x: (u + 10 * du).toFixed(1), y: (v + 16 * dv + 4).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
-      }, c.name + word + sign));
-    }
-    this.#drawCrossing(inside);
-    inside.append(names);
-    this.#drawAxes(axes, right, bottom);
-    if (this.cursor) {
-      const [u, v] = this.toScreen(this.cursor.x, this.cursor.y);
-      inside.append(svg('path', { class: 'cross screen', d: `M${u - 12} ${v}H${u - 4}M${u + 4} ${v}H${u + 12}M${u} ${v - 12}V${v - 4}M${u} ${v + 4}V${v + 12}` }));
-    }
-  }
-
-  #arrow(line) {
-    const k = 2 * Math.floor(line.length / 4);
-    if (k < 2 || k + 2 >= line.length) {
-      return '';
-    }
-    const [u, v] = this.toScreen(line[k], line[k + 1]), [u0, v0] = this.toScreen(line[k - 2], line[k - 1]), size = Math.hypot(u - u0, v - v0) || 1;
-    const c = (u - u0) / size, s = (v - v0) / size, at = (p, q) => `${(u + p * c - q * s).toFixed(1)} ${(v + p * s + q * c).toFixed(1)}`;
-    return `M${at(6, 0)}L${at(-5, 4.5)}L${at(-2.5, 0)}L${at(-5, -4.5)}Z`;
-  }
-
-  #drawCrossing(inside) {
-    const { crossing } = this;
-    [0, 1].forEach(line => {
-      const { points } = crossing.lines[line], a = points[0], b = points[points.length - 1], [u0, v0] = this.toScreen(a.x, a.y), [u1, v1] = this.toScreen(b.x, b.y);
-      const d = `M${u0.toFixed(1)} ${v0.toFixed(1)}L${u1.toFixed(1)} ${v1.toFixed(1)}`, dash = line ? '3 4' : '10 4';
-      inside.append(svg('path', { d, stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 3 }), svg('path', { d, stroke: '#fff', 'stroke-width': 1.8, 'stroke-dasharray': dash }));
-      const [c, s] = crossing.along(line), [u, v] = this.toScreen(crossing.x + 0.82 * crossing.lines[line].high * c, crossing.y + 0.82 * crossing.lines[line].high * s);
-      inside.append(svg('text', { class: 'tag', x: (u + 11 * s).toFixed(1), y: (v + 4 + 11 * c).toFixed(1), 'text-anchor': 'middle' }, String(line + 1)));
-    });
-    const [c, s] = crossing.along(0), reach = 0.55 * crossing.lines[0].high;
-    const place = (node, x, y, text) => {
-      const [u, v] = this.toScreen(x, y);
-      node.setAttribute('cx', u.toFixed(1));
-      node.setAttribute('cy', v.toFixed(1));
-      node.setAttribute('aria-valuetext', text);
-    };
-    const mm = v => number(v * this.unit.factor, 4);
-    place(this.moveHandle, crossing.x, crossing.y, `x ${mm(crossing.x)}, y ${mm(crossing.y)} ${this.unit.unit}`);
-    place(this.turnHandle, crossing.x + reach * c, crossing.y + reach * s, `${number(crossing.angle, 5)} degrees`);
-    this.turnHandle.setAttribute('aria-valuenow', crossing.angle.toFixed(2));
-    this.turnHandle.setAttribute('aria-valuemin', 0);
-    this.turnHandle.setAttribute('aria-valuemax', 360);
-    this.moveHandle.setAttribute('aria-valuenow', mm(crossing.x).replace('−', '-'));
-    for (const [box, value] of [[this.crossX, crossing.x * this.unit.factor], [this.crossY, crossing.y * this.unit.factor], [this.crossA, crossing.angle]]) {
-      if (document.activeElement !== box.input) {
-        box.input.value = Number(value.toFixed(4));
-      }
-    }
-  }
-
-  #drawAxes(axes, right, bottom) {
-    const { margin } = this, f = this.unit.factor, [x0, y1] = this.toPlace(margin.left, margin.top), [x1, y0] = this.toPlace(right, bottom), step = roundStep((x1 - x0) * f, 7);
-    for (const v of multiples(x0 * f, x1 * f, step)) {
-      const [u] = this.toScreen(v / f, 0);
-      axes.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} ${bottom}v5` }), svg('text', { x: u.toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
-    }
-    for (const v of multiples(y0 * f, y1 * f, step)) {
-      const [, w] = this.toScreen(0, v / f);
-      axes.append(svg('path', { class: 'frame', d: `M${margin.left} ${w.toFixed(1)}h-5` }), svg('text', { x: margin.left - 8, y: (w + 4).toFixed(1), 'text-anchor': 'end' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
-    }
-    axes.append(
-      svg('path', { class: 'frame', d: `M${margin.left} ${margin.top}V${bottom}H${right}V${margin.top}Z` }),
-      svg('text', { x: right, y: bottom + 34, 'text-anchor': 'end' }, `x (${this.unit.unit})`),
-      svg('text', { transform: `translate(13 ${margin.top + 30}) rotate(-90)`, 'text-anchor': 'middle' }, `y (${this.unit.unit})`));
-  }
-
-  #drawLegend([low, high], q) {
-    const key = [low, high, this.name, this.step, this.levels && this.fields.frame.high > this.fields.frame.low, this.width].join();
-    if (key === this.legendKey) {
-      return;
-    }
-    this.legendKey = key;
-    const { legend } = this, width = this.width, left = this.margin.left, right = width - 16, table = RAMPS[q.table], defs = svg('linearGradient', { id: 'map-ramp' });
-    for (let k = 0; k <= 32; k++) {
-      defs.append(svg('stop', { offset: k / 32, 'stop-color': rgbText(table, k / 32) }));
-    }
-    const scale = scaleFor(Math.max(Math.abs(low), Math.abs(high)), q.unit), log = q.log && high > 0;
-    const axis = makeAxis(low * scale.factor, (high > low ? high : low + 1) * scale.factor, left, right, log);
-    legend.setAttribute('width', width);
-    legend.setAttribute('height', 54);
-    legend.setAttribute('viewBox', `0 0 ${width} 54`);
-    legend.setAttribute('aria-label', `Colours: ${q.label} from ${quantity(low, q.unit)} to ${quantity(high, q.unit)}`);
-    legend.replaceChildren(svg('defs', null, defs), svg('rect', { x: left, y: 4, width: right - left, height: 13, fill: 'url(#map-ramp)', class: 'frame-line' }));
-    for (const v of axis.ticks) {
-      const u = axis.at(v);
-      if (u >= left - 1 && u <= right + 1) {
-        legend.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} 17v4` }), svg('text', { x: u.toFixed(1), y: 33, 'text-anchor': 'middle' }, number(v, 5)));
-      }
-    }
-    const lines = this.levels && this.fields.frame.high > this.fields.frame.low ? `; lines every ${quantity(this.step, 'V')}` : '';
-    legend.append(svg('text', { x: left, y: 50 }, `${q.label}${scale.unit ? ` (${scale.unit})` : ''}${log ? ', logarithmic' : ''}${lines}`));
   }
 
   #curveOf(fields) {
@@ -656,7 +397,7 @@ class LiveMap {
   #read(place) {
     this.cursor = place ? { x: place[0], y: place[1] } : null;
     this.#write();
-    (this.redraw ??= perFrame(() => this.#drawOverlay()))();
+    (this.redraw ??= perFrame(() => this.top.draw()))();
   }
 
   #write() {
@@ -683,7 +424,7 @@ class LiveMap {
     const { width, height, margin, inner } = this;
     this.drawNow();
     const raster = this.canvas.toDataURL('image/png'), image = `<image x="${margin.left}" y="${margin.top}" width="${inner.width}" height="${inner.height}" href="${raster}"/>`;
-    const both = svg('svg', { width, height: height + 54, viewBox: `0 0 ${width} ${height + 54}` }), overlay = this.overlay.cloneNode(true), legend = this.legend.cloneNode(true);
+    const both = svg('svg', { width, height: height + 54, viewBox: `0 0 ${width} ${height + 54}` }), overlay = this.top.overlay.cloneNode(true), legend = this.top.legend.cloneNode(true);
     both.append(...overlay.childNodes);
     both.append(svg('g', { transform: `translate(0 ${height})` }, ...legend.childNodes));
     return paperSvg(both, `${QUANTITIES[this.name].label}, ${this.caption}`, image);

@@ -9,5 +9,6 @@ internal static class CommandList
     [
         CheckCommand.Create(),
         DriveCommand.Create(),
+        BandsCommand.Create(),
     ];
 }

@@ -202,7 +202,7 @@ class LiveMap {
       const { name, role } = map.contacts[k];
       body.append(html('tr', null, html('td', null, role ? `${name} (${role.replace('+', ' +').replace('-', ' −')})` : name), html('td', null, number(v * scale.factor, 6))));
     });
-    this.metalBox.lastChild.replaceChildren(table);
+    this.metalBox.lastChild.replaceChildren(html('p', { class: 'note-line' }, 'As solved on the finest mesh; tables and curves also correct readings by what this mesh is known to lack.'), table);
   }
 
   /** Plays the frames once through, or stops. */

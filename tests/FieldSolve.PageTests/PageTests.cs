@@ -137,6 +137,11 @@ public class PageTests(ReportFixture report)
             double[] kx = [0], ky = [0];
             law.Evaluate([expected.Ex], [expected.Ey], kx, ky);
             SameDigits(double.Hypot(expected.Ex, expected.Ey), shown["E"].Split(" at ")[0], 4);
+            double[] raw = await page.EvaluateAsync<double[]>(
+                "(([x, y]) => { const m = fieldsolve.map, v = m.fields.at(m.mesh.locate(x, y)); return [v.phi, v.ex, v.ey, v.kx, v.ky, m.laws[0].error]; })", place);
+            string all = string.Join(", ", new[] { expected.Phi, expected.Ex, expected.Ey, kx[0], ky[0] }.Zip(raw, (p, q) => $"{p:R} {q:R}")) + $", law {raw[5]:G3}";
+            Assert.True(double.Hypot(raw[1] - expected.Ex, raw[2] - expected.Ey) <= 1e-6 * double.Hypot(expected.Ex, expected.Ey), all);
+            Assert.True(double.Hypot(raw[3] - kx[0], raw[4] - ky[0]) <= 2e-6 * double.Hypot(kx[0], ky[0]), all);
             SameDigits(double.Hypot(kx[0], ky[0]), shown["K"].Split(" at ")[0], 4);
             SameDigits((expected.Ex * kx[0]) + (expected.Ey * ky[0]), shown["E·K"], 4);
             double angle = double.Parse(shown["E"].Split(" at ")[1].TrimEnd('°').Replace('−', '-'), CultureInfo.InvariantCulture);

@@ -30,7 +30,7 @@ public class PageTests(ReportFixture report)
         Assert.True(Math.Abs(value - expected) <= 0.501 * unit, $"The page shows {shown}, the solver has {expected:G9}.");
     }
 
-    private async Task<Dictionary<string, string>> Reading(IPage page)
+    private static async Task<Dictionary<string, string>> Shown(IPage page)
     {
         string text = await page.Locator(".readout").InnerTextAsync();
         Dictionary<string, string> found = [];
@@ -132,7 +132,7 @@ public class PageTests(ReportFixture report)
             }
 
             read++;
-            Dictionary<string, string> shown = await Reading(page);
+            Dictionary<string, string> shown = await Shown(page);
             SameDigits(expected.Phi, shown["φ"], 5);
             double[] kx = [0], ky = [0];
             law.Evaluate([expected.Ex], [expected.Ey], kx, ky);
@@ -290,7 +290,7 @@ public class PageTests(ReportFixture report)
             string picture = await Keep(place, "SVG");
             System.Xml.Linq.XDocument svg = System.Xml.Linq.XDocument.Parse(picture);
             Assert.Equal("svg", svg.Root!.Name.LocalName);
-            Assert.NotEmpty(svg.Descendants().Where(e => e.Name.LocalName == "path"));
+            Assert.Contains(svg.Descendants(), e => e.Name.LocalName == "path");
             IDownload png = await page.RunAndWaitForDownloadAsync(() => page.Locator(place).GetByRole(AriaRole.Button, new() { Name = "PNG", Exact = true }).First.ClickAsync());
             byte[] bytes = await File.ReadAllBytesAsync((await png.PathAsync())!);
             Assert.True(bytes.Length > 4000 && bytes[1] == 'P' && bytes[2] == 'N' && bytes[3] == 'G');

@@ -10,5 +10,7 @@ internal static class CommandList
         CheckCommand.Create(),
         DriveCommand.Create(),
         BandsCommand.Create(),
+        LockinCommand.Create(),
+        TurnCommand.Create(),
     ];
 }

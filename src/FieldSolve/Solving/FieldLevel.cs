@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Laws;
@@ -13,6 +14,7 @@ namespace FieldSolve.Solving;
 public sealed class FieldLevel
 {
     private readonly double[] atZeroValues;
+    private readonly ConcurrentBag<JacobianRoom> spare = [];
 
     private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
     {
@@ -36,20 +38,40 @@ public sealed class FieldLevel
     public SparseLu AtZero { get; }
 
     /// <summary>Sets up a mesh.</summary>
+    /// <param name="device">Gives the contacts.</param>
+    /// <param name="mesh">Triangles of the device's domain.</param>
+    /// <param name="law">In the lab frame.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <param name="ground">Contact whose metal is the zero of the potential.</param>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
     /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
-    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
-        FieldSpace space = FieldSpace.Build(device, mesh);
-        var equations = new SheetEquations(space, law);
+        FieldSpace space = FieldSpace.Build(device, mesh, ground);
         (double[] x, double[] y) = space.Places();
-        SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
-        var factor = new SparseLu(analysis);
-        double[] values = new double[space.Pattern.Count + 1];
-        equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
-        return new(space, equations, analysis, factor, values);
+        return AtRest(new SheetEquations(space, law), SparseAnalysis.Analyse(space.Pattern, x, y, cancel), cancel);
     }
+
+    /// <summary>The same mesh under another law: equations and factor at zero field are new, unknowns, geometry and ordering are shared.</summary>
+    /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
+    public FieldLevel WithLaw(LabLaw law, CancellationToken cancel) => AtRest(Equations.WithLaw(law), Analysis, cancel);
+
+    private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
+    {
+        var factor = new SparseLu(analysis, equations.Law.IsSymmetricAtZero);
+        double[] values = new double[equations.Space.Pattern.Count + 1];
+        equations.Jacobian(new double[equations.Length], values);
+        SharedCores.Factor(factor, values.AsSpan(0, equations.Space.Pattern.Count), cancel);
+        return new(equations.Space, equations, analysis, factor, values);
+    }
+
+    /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
+    internal JacobianRoom Rent() => spare.TryTake(out JacobianRoom? room)
+        ? room
+        : new(new double[Space.Pattern.Count + 1], new SparseLu(Analysis, Equations.Law.HasPotential));
+
+    /// <summary>Takes room back for others.</summary>
+    internal void Return(JacobianRoom room) => spare.Add(room);
 
     /// <summary>
     /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.

@@ -92,10 +92,11 @@ class MapOverlay {
 
   // The crystal axes, in the upper left corner.
   #drawCrystal(names) {
-    const { margin } = this.view, { cos, sin } = this.view.fields.law, u = margin.left + 34, v = margin.top + 34;
-    [[cos, sin, 'a'], [-sin, cos, 'b']].forEach(([c, s, name]) => names.append(
-      svg('path', { class: 'ink', 'stroke-width': 1.5, 'stroke-dasharray': name === 'b' ? '3 3' : null, d: `M${(u - 20 * c).toFixed(1)} ${(v + 20 * s).toFixed(1)}L${(u + 20 * c).toFixed(1)} ${(v - 20 * s).toFixed(1)}` }),
-      svg('text', { class: 'tag', x: (u + 28 * c).toFixed(1), y: (v - 28 * s + 4).toFixed(1), 'text-anchor': 'middle' }, name)));
+    const { margin } = this.view, { cos, sin } = this.view.fields.law, u = margin.left + 34, v = margin.top + 40;
+    [[cos, sin, 'a'], [-sin, cos, 'b']].forEach(([c, s, name]) => {
+      const d = `M${(u - 20 * c).toFixed(1)} ${(v + 20 * s).toFixed(1)}L${(u + 20 * c).toFixed(1)} ${(v - 20 * s).toFixed(1)}`;
+      names.append(svg('path', { class: 'halo', 'stroke-width': 4, d }), svg('path', { class: 'ink', 'stroke-width': 1.5, 'stroke-dasharray': name === 'b' ? '3 3' : null, d }), svg('text', { class: 'tag', x: (u + 28 * c).toFixed(1), y: (v - 28 * s + 4).toFixed(1), 'text-anchor': 'middle' }, name));
+    });
   }
 
   #drawCrossing(inside) {

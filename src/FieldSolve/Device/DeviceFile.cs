@@ -120,6 +120,7 @@ public static class DeviceFile
                 Title = title?.Value ?? Path.GetFileName(path),
                 Path = path,
                 Sha256 = sha256,
+                Layout = new(live, [.. contacts.Contacts.Select(c => c.Placement!)]),
                 Domain = DomainBuilder.Build(live, [.. contacts.Contacts.Select(c => c.Placement!)], [.. contacts.Tips.Select(t => t.At!.Value)]),
                 Shape = sheet.Plan!.Shape,
                 Drawn = sheet.Plan.Drawn.Loops,

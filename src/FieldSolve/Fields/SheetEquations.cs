@@ -30,6 +30,9 @@ public sealed class SheetEquations
         metalPlaces = [.. metals.Select(m => places.Of(Group(m)))];
     }
 
+    /// <summary>Couplings between sheet and resistive metal.</summary>
+    internal IReadOnlyList<MetalCoupling> Metals => metals;
+
     /// <summary>Unknowns and nodes.</summary>
     public FieldSpace Space { get; }
 

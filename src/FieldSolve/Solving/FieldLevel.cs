@@ -12,15 +12,14 @@ namespace FieldSolve.Solving;
 /// </summary>
 public sealed class FieldLevel
 {
-    private readonly double[] atZeroValues;
+    private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
 
-    private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
+    private FieldLevel(FieldSpace space, LabLaw law, SparseAnalysis analysis)
     {
         Space = space;
-        Equations = equations;
+        Equations = new SheetEquations(space, law);
         Analysis = analysis;
-        AtZero = atZero;
-        this.atZeroValues = atZeroValues;
+        atZero = new(() => FactorAtZero(default));
     }
 
     /// <summary>Nodes and unknowns.</summary>
@@ -33,7 +32,7 @@ public sealed class FieldLevel
     public SparseAnalysis Analysis { get; }
 
     /// <summary>Factor of the Jacobian at zero field.</summary>
-    public SparseLu AtZero { get; }
+    public SparseLu AtZero => atZero.Value.Factor;
 
     /// <summary>Sets up a mesh.</summary>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
@@ -41,14 +40,26 @@ public sealed class FieldLevel
     public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
     {
         FieldSpace space = FieldSpace.Build(device, mesh);
-        var equations = new SheetEquations(space, law);
         (double[] x, double[] y) = space.Places();
-        SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
-        var factor = new SparseLu(analysis);
-        double[] values = new double[space.Pattern.Count + 1];
-        equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
-        return new(space, equations, analysis, factor, values);
+        var level = new FieldLevel(space, law, SparseAnalysis.Analyse(space.Pattern, x, y, cancel));
+        _ = level.AtZero;
+        cancel.ThrowIfCancellationRequested();
+        return level;
+    }
+
+    /// <summary>The level of a moved mesh or another law: unknowns, pattern and ordering stay; its own factor is made when first asked for.</summary>
+    /// <param name="device">Its contacts, ideal and resistive ones as before.</param>
+    /// <param name="mesh">Same triangles as this level's mesh, vertices elsewhere; or this level's mesh.</param>
+    /// <param name="law">The law.</param>
+    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(Space.Moved(mesh, device), law, Analysis);
+
+    private (SparseLu Factor, double[] Values) FactorAtZero(CancellationToken cancel)
+    {
+        var factor = new SparseLu(Analysis);
+        double[] values = new double[Space.Pattern.Count + 1];
+        Equations.Jacobian(new double[Equations.Length], values);
+        factor.Factor(values.AsSpan(0, Space.Pattern.Count), cancel);
+        return (factor, values);
     }
 
     /// <summary>
@@ -66,7 +77,7 @@ public sealed class FieldLevel
     /// <summary>The Jacobian at zero field times a vector of potentials, A.</summary>
     public void ZeroFieldProduct(ReadOnlySpan<double> u, Span<double> current)
     {
-        SparseProduct.Multiply(Space.Pattern, atZeroValues.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
+        SparseProduct.Multiply(Space.Pattern, atZero.Value.Values.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
         current[Space.Size] = 0;
     }
 
@@ -77,6 +88,7 @@ public sealed class FieldLevel
     internal double ResidualRounding(ReadOnlySpan<double> u)
     {
         int[] start = Space.Pattern.Start, column = Space.Pattern.Column;
+        double[] atZeroValues = atZero.Value.Values;
         double squares = 0;
         for (int i = 0; i < Space.Size; i++)
         {

@@ -55,6 +55,9 @@ public sealed record SheetDevice
     /// <summary>How the directions of a turn come about; null when the file does not say.</summary>
     public TurnSpec? Turn { get; init; }
 
+    /// <summary>Causes of error and their sizes; null when the file has no [tolerance].</summary>
+    public ToleranceSpec? Tolerance { get; init; }
+
     /// <summary>Wanted accuracy.</summary>
     public MeshSpec Mesh { get; init; } = new();
 

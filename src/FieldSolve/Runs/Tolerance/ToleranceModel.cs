@@ -101,7 +101,7 @@ internal sealed class ToleranceModel
         MeshRefinement refinement = MeshRefinement.Run(device, law, plans, current, true, tell, clock, cancel);
         tell("solving the device as designed");
         var maker = new RowMaker(device, refinement.Goals);
-        DesignState[] states = clock.Time("design", () => States(refinement.Meshes, plans, maker, current, device.Law.IsLinear, cancel));
+        DesignState[] states = clock.Time("design", () => SolveStates(refinement.Meshes, plans, maker, current, device.Law.IsLinear, cancel));
         var bare = new ToleranceModel(device, causes, refinement, current)
         {
             States = states,
@@ -116,7 +116,7 @@ internal sealed class ToleranceModel
         return clock.Time("sensitivities", bare.WithSlopes);
     }
 
-    private static DesignState[] States(
+    private static DesignState[] SolveStates(
         MeshPair meshes, ReadingPlan[] plans, RowMaker maker, double current, bool linear, CancellationToken cancel)
     {
         var peaks = new PeakFinder(meshes.Fine.Equations);

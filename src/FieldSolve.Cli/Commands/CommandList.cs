@@ -9,5 +9,7 @@ internal static class CommandList
     [
         CheckCommand.Create(),
         DriveCommand.Create(),
+        ToleranceCommand.Create(),
+        GatherCommand.Create(),
     ];
 }

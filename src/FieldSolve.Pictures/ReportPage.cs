@@ -27,11 +27,7 @@ public static class ReportPage
 
         SheetDevice device = result.Device;
         Html page = new();
-        page.Raw("<!DOCTYPE html>").Raw("<html lang=\"en\">").Raw("<head>").Raw("<meta charset=\"utf-8\">");
-        page.Raw($"<meta http-equiv=\"Content-Security-Policy\" content=\"{Policy}\">");
-        page.Raw("<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">").Element("title", $"{device.Title} – drive");
-        page.Raw("<style>").Raw(Style()).Raw("</style>").Raw("</head>").Raw("<body>");
-        page.Raw("<header>").Element("h1", device.Title).Element("p", $"Drive of {device.Path}, FieldSolve {RunRecord.Version}").Raw("</header>");
+        Begin(page, $"{device.Title} – drive", device.Title, $"Drive of {device.Path}, FieldSolve {RunRecord.Version}");
 
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
@@ -51,9 +47,23 @@ public static class ReportPage
         AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
         page.Element("h2", "Settings");
         ReportTables.Settings(page, result);
-        page.Raw("<footer>").Element("p", $"SHA-256 of the device file: {device.Sha256}").Raw("</footer>").Raw("</body>").Raw("</html>");
+        End(page, device);
         WholeFile.WriteText(path, page.ToString());
     }
+
+    /// <summary>Head of a page and the header of its body.</summary>
+    internal static void Begin(Html page, string windowTitle, string title, string line)
+    {
+        page.Raw("<!DOCTYPE html>").Raw("<html lang=\"en\">").Raw("<head>").Raw("<meta charset=\"utf-8\">");
+        page.Raw($"<meta http-equiv=\"Content-Security-Policy\" content=\"{Policy}\">");
+        page.Raw("<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">").Element("title", windowTitle);
+        page.Raw("<style>").Raw(Style()).Raw("</style>").Raw("</head>").Raw("<body>");
+        page.Raw("<header>").Element("h1", title).Element("p", line).Raw("</header>");
+    }
+
+    /// <summary>Footer and end of a page.</summary>
+    internal static void End(Html page, SheetDevice device) =>
+        page.Raw("<footer>").Element("p", $"SHA-256 of the device file: {device.Sha256}").Raw("</footer>").Raw("</body>").Raw("</html>");
 
     private static void AddWirings(Html page, DriveResult result, IReadOnlyList<PictureFile> pictures)
     {
@@ -66,7 +76,8 @@ public static class ReportPage
         }
     }
 
-    private static void AddPictures(Html page, IEnumerable<PictureFile> pictures)
+    /// <summary>Pictures with their captions, embedded.</summary>
+    internal static void AddPictures(Html page, IEnumerable<PictureFile> pictures)
     {
         foreach (PictureFile p in pictures)
         {

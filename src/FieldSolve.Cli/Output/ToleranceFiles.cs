@@ -1,5 +1,6 @@
 using System.Globalization;
 using FieldSolve.Files;
+using FieldSolve.Pictures;
 using FieldSolve.Runs;
 
 namespace FieldSolve.Cli.Output;
@@ -19,6 +20,23 @@ internal static class ToleranceFiles
         }
 
         var clock = new StageClock();
+        if (pictures)
+        {
+            screen.Report(new("drawing pictures", 0, 0));
+            try
+            {
+                clock.Time("pictures", () =>
+                {
+                    IReadOnlyList<PictureFile> drawn = TolerancePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+                    ToleranceReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+                });
+            }
+            catch (OperationCanceledException)
+            {
+                result = result with { Cancelled = true };
+            }
+        }
+
         ToleranceRecord.Write(
             Path.Combine(folder, "run.json"),
             result with { Stages = [.. result.Stages, .. clock.Times] },

@@ -59,10 +59,20 @@ internal static class ToleranceAnswers
         }
 
         BudgetEntry first = linear[0];
-        string largest = Text($"{first.Cause.Label} does most of it ({100 * first.Contribution * first.Contribution / all:G2} % of the variance, {Volts(Math.Abs(first.Contribution))} for {Size(first.Cause, first.Cause.Sigma)})");
-        (string Name, double Share)? contact = Dominant(model, linear, all);
-        string who = contact is { } c ? Text($"; contact '{c.Name}' dominates with {100 * c.Share:G2} %") : "";
-        return Text($"the across odd part is {Volts(s.Design)} as designed and scatters by {Volts(spread)} (1 sigma){share}: that much is pick-up by these causes. {Upper(largest)}{who}.");
+        string text = Text($"the across odd part is {Volts(s.Design)} as designed and scatters by {Volts(spread)} (1 sigma){share}. Most of it comes from {first.Cause.Label} ({100 * first.Contribution * first.Contribution / all:G2} % of the variance; {Volts(Math.Abs(first.Contribution))} for {Size(first.Cause, first.Cause.Sigma)}).");
+        BudgetEntry[] placed = [.. linear.Where(e => e.Cause.Kind.Effect == CauseEffect.Motion)];
+        double byPlace = Math.Sqrt(placed.Sum(e => e.Contribution * e.Contribution));
+        if (byPlace == 0)
+        {
+            return text;
+        }
+
+        // One size when all placements share one, as in 50 nm for every contact.
+        double[] sizes = [.. placed.Where(e => e.Cause.Kind is PositionCause or PadShiftCause or LayerShiftCause).Select(e => e.Cause.Sigma).Distinct()];
+        string placement = sizes.Length == 1 ? $"{Scaled(sizes[0], "m")} placement" : "the placement";
+        string part = along != 0 ? Text($" is pick-up of {100 * byPlace / Math.Abs(along):G2} % of along for {placement}") : $" comes from {placement}";
+        string who = Dominant(model, placed, byPlace * byPlace) is { } c ? Text($"; contact '{c.Name}' has the largest part of that ({100 * c.Share:G2} % of the variance)") : "";
+        return Text($"{text} {Volts(byPlace)} of it{part}{who}.");
     }
 
     // The contact whose own causes carry the most variance; null when no contact has causes of its own.
@@ -85,14 +95,16 @@ internal static class ToleranceAnswers
         }
 
         string goal = Text($"{Volts(level)}{(wanted is null ? " (1 % of along)" : "")}");
+        BudgetEntry? largest = moving.FirstOrDefault(e => e.Cause.Kind is PositionCause) ?? moving.FirstOrDefault(e => e.Cause.Kind.Dimension == Quantities.Dimension.Length);
         if (others >= level)
         {
-            return Text($"no placement keeps the scatter under {goal}: the other causes alone make {Volts(others)}.");
+            double alone = level / byPlace;
+            string own = largest is null ? "" : Text($" Placement alone would stay under it with {Size(largest.Cause, alone * largest.Cause.Sigma)} for {largest.Cause.Label} and the others in proportion.");
+            return Text($"no placement keeps the scatter under {goal}: the other causes make {Volts(others)}.{own}");
         }
 
         double factor = Math.Sqrt((level * level) - (others * others)) / byPlace;
-        BudgetEntry? placed = moving.FirstOrDefault(e => e.Cause.Kind is PositionCause) ?? moving.FirstOrDefault(e => e.Cause.Kind.Dimension == Quantities.Dimension.Length);
-        string example = placed is null ? "" : Text($", for instance {Size(placed.Cause, factor * placed.Cause.Sigma)} for {placed.Cause.Label}");
+        string example = largest is null ? "" : Text($", for instance {Size(largest.Cause, factor * largest.Cause.Sigma)} for {largest.Cause.Label}");
         return factor >= 1
             ? Text($"the placement is good enough for {goal}: it could be {factor:G3} times worse{example}.")
             : Text($"to keep the scatter under {goal}, the placement must be {1 / factor:G3} times better{example}.");
@@ -140,8 +152,6 @@ internal static class ToleranceAnswers
         (double size, string prefix) = prefixes.FirstOrDefault(p => Math.Abs(v) >= p.Size * 0.9995, prefixes[^1]);
         return v == 0 ? $"0 {unit}" : Text($"{v / size:G3} {prefix}{unit}");
     }
-
-    private static string Upper(string text) => char.ToUpperInvariant(text[0]) + text[1..];
 
     private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
 }

@@ -13,8 +13,8 @@ namespace FieldSolve.Runs;
 /// </summary>
 internal sealed class SampleSolver(ToleranceModel model)
 {
-    // Residual over current; a reading is then off by about this part of itself.
-    private const double RelativeResidual = 1e-9;
+    /// <summary>Residual over current at which a sample ends; a reading is then off by about this part of itself.</summary>
+    public const double RelativeResidual = 1e-9;
 
     private readonly SheetCause[] order = [.. model.Causes.OrderBy(c => c.Kind.Scope == CauseScope.Sheet ? 0 : 1)];
     private readonly int[] place = [.. model.Causes.Select((c, i) => (c, i)).OrderBy(p => p.c.Kind.Scope == CauseScope.Sheet ? 0 : 1).Select(p => p.i)];

@@ -62,7 +62,7 @@ public sealed record SampleStatistics(
         return new(
             model.Quantities[q], centre, n, new(centre + mean, centre + mean - ofMean, centre + mean + ofMean),
             new(deviation, Math.Max(0, deviation - ofDeviation), deviation + ofDeviation),
-            [.. new[] { 0.05, 0.5, 0.95 }.Select(p => Percentile(sorted, p))], Math.Sqrt(first), model.Errors[q], Math.Sqrt(spread));
+            [Percentile(sorted, 0.05), Percentile(sorted, 0.5), Percentile(sorted, 0.95)], Math.Sqrt(first), model.Errors[q], Math.Sqrt(spread));
     }
 
     private static Estimate Percentile(double[] sorted, double p)

@@ -9,6 +9,8 @@ internal static class CommandList
     [
         CheckCommand.Create(),
         DriveCommand.Create(),
+        BandsCommand.Create(),
+        LockinCommand.Create(),
         ToleranceCommand.Create(),
         GatherCommand.Create(),
     ];

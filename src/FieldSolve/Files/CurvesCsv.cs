@@ -23,10 +23,10 @@ public static class CurvesCsv
 
         string[] pairs = [.. wirings.SelectMany(w => w.Extra).Select(p => p.Name).Distinct(StringComparer.Ordinal)];
         StringBuilder text = new();
-        CsvLines.Add(text, Header(pairs));
+        AddLine(text, Header(pairs));
         foreach (CurveRow row in InOrder(rows, reversed ?? []))
         {
-            CsvLines.Add(text, Cells(row, pairs));
+            AddLine(text, Cells(row, pairs));
         }
 
         return text.ToString();
@@ -89,4 +89,19 @@ public static class CurvesCsv
             row.NewtonSteps.ToString(CultureInfo.InvariantCulture), StatusText(row.Status),
         ];
     }
+
+    internal static void AddLine(StringBuilder text, IEnumerable<string> cells)
+    {
+        bool first = true;
+        foreach (string cell in cells)
+        {
+            text.Append(first ? "" : ",").Append(Quoted(cell));
+            first = false;
+        }
+
+        text.Append("\r\n");
+    }
+
+    private static string Quoted(string cell) =>
+        cell.AsSpan().IndexOfAny(",\"\r\n") < 0 ? cell : $"\"{cell.Replace("\"", "\"\"", StringComparison.Ordinal)}\"";
 }

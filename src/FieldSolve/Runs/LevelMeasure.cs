@@ -15,20 +15,29 @@ namespace FieldSolve.Runs;
 /// <param name="Difference">Fine minus coarse, V.</param>
 /// <param name="Error">Its origin and size.</param>
 /// <param name="WeakDifference">Difference per ampere in the limit of small drive, ohm; 0 for an even part.</param>
-/// <param name="WeakBar">Estimated error per ampere in the limit of small drive, ohm; 0 for an even part.</param>
+/// <param name="WeakError">Origin and size of the error per ampere in the limit of small drive, ohm; null for an even part.</param>
+/// <param name="Exponent">Per vertex of the domain: p of an error like h^p around it.</param>
 internal sealed record GoalMeasure(
-    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, double WeakBar)
+    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, GoalError? WeakError,
+    double[] Exponent)
 {
     /// <summary>Error that was asked for, V; set once all readings are known.</summary>
     public double Wanted { get; init; }
+
+    /// <summary>Value with the correction, V.</summary>
+    public double Corrected => Value + Error.Correction;
+
+    /// <summary>The same with a bar that minds how far the reading moved since the mesh before, where it was measured at the same current.</summary>
+    public GoalMeasure AfterMove(IReadOnlyList<GoalMeasure> before)
+    {
+        GoalMeasure? last = before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven && g.Current == Current);
+        return last is null ? this : this with { Error = Error.AfterMove(last.Error, Corrected - last.Corrected) };
+    }
 }
 
 /// <summary>Estimates the errors of all readings of one wiring at the largest current, by coarse and fine solutions at +I and -I.</summary>
 internal static class LevelMeasure
 {
-    // The even part weighs the strong fields at contact ends more than a linear reading does, and converges more slowly there. Chosen so that the
-    // second-order disc with 45 degree arcs, whose exact value is known (benchmarks/accuracy.md), stays within twice its bar on every mesh.
-    private const double EvenAllowance = 2;
     private const int MostHalvings = 20;
 
     /// <summary>Measures one wiring.</summary>
@@ -41,13 +50,13 @@ internal static class LevelMeasure
     public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel)
     {
         State weak = State.Weak(meshes, plan);
-        GoalError[] weakErrors = [.. weak.Details.Select(d => GoalError.Of(meshes.Between, meshes.Remaining, 1, [(1, weak.Residual, d)]))];
+        GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
+            meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
         if (meshes.Fine.Equations.Law.IsLinear)
         {
-            double size = Math.Abs(current);
             return [.. weakErrors.Select((e, k) => new GoalMeasure(
-                plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(size),
-                weak.Fine[k] - weak.Coarse[k], e.Bar))];
+                plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(current),
+                weak.Fine[k] - weak.Coarse[k], e, meshes.Exponent))];
         }
 
         (State? plus, State? minus) = (null, null);
@@ -70,22 +79,24 @@ internal static class LevelMeasure
             minus = bothSigns && plus is not null ? State.Solve(meshes, plan, -reached, cancel) : null;
         }
 
+        ErrorShares evenShares = meshes.EvenShares(plus.EvenExponent);
         var list = new List<GoalMeasure>();
         for (int k = 0; k < plan.Count; k++)
         {
             list.Add(new(
                 plan, k, false, reached, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
-                GoalError.Of(meshes.Between, meshes.Remaining, 1, [(1, plus.Residual, plus.Details[k])]),
-                weak.Fine[k] - weak.Coarse[k], weakErrors[k].Bar));
+                GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])])
+                    .Beside(weakErrors[k], reached),
+                weak.Fine[k] - weak.Coarse[k], weakErrors[k], meshes.Exponent));
             if (minus is not null && plan.HasEven[k])
             {
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
                 list.Add(new(
                     plan, k, true, reached, fine, fine - coarse,
                     GoalError.Of(
-                        meshes.Between, meshes.Remaining, EvenAllowance,
+                        meshes.Between, evenShares, fine - coarse,
                         [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])]),
-                    0, 0));
+                    0, null, plus.EvenExponent));
             }
         }
 
@@ -93,7 +104,7 @@ internal static class LevelMeasure
     }
 
     // A coarse and a fine solution with the fine residual of the coarse one and the details of the adjoints.
-    private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details)
+    private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details, double[] EvenExponent)
     {
         // In the limit of small drive, for one ampere.
         public static State Weak(MeshPair meshes, ReadingPlan plan)
@@ -112,7 +123,7 @@ internal static class LevelMeasure
                 meshes.Between.Detail(meshes.Fine.Adjoint(j), detail);
                 return detail;
             })];
-            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
+            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, meshes.Exponent);
         }
 
         public static State? Solve(MeshPair meshes, ReadingPlan plan, double current, CancellationToken cancel)
@@ -142,7 +153,7 @@ internal static class LevelMeasure
             }
 
             return AdjointDetails(meshes, plan, fine, cancel) is { } details
-                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details)
+                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, EvenRates.Exponents(meshes, coarse))
                 : null;
         }
 

@@ -11,11 +11,25 @@ if (args is ["accuracy"])
     return;
 }
 
+// "page" times the report: written, shown, and following the slider in a browser.
+if (args is ["page"])
+{
+    await FieldSolve.Benchmarks.PageTimes.Print(Console.Out);
+    return;
+}
+
 // "native" compares with SuiteSparse where it is installed; a second word is the largest number of unknowns.
 if (args is ["native", ..])
 {
     int most = args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 1_000_000;
     FieldSolve.Benchmarks.Native.NativeComparison.Print(Console.Out, most);
+    return;
+}
+
+// What "native" starts for the libraries' side.
+if (args is ["peer", _, _])
+{
+    FieldSolve.Benchmarks.Native.PeerProcess.Serve(args[1], int.Parse(args[2], System.Globalization.CultureInfo.InvariantCulture), Console.Out);
     return;
 }
 

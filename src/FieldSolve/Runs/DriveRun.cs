@@ -52,13 +52,15 @@ public static class DriveRun
             ReversedRows = reversed,
             Summaries = Summaries.Of(device, rows),
             Maps = work.Maps,
+            Frames = work.Frames,
             Mesh = refinement.Meshes.Coarse.Space.Mesh,
             Levels = refinement.Levels,
             Cautions = Cautions.Of(device, [.. rows, .. reversed]),
             Warnings = DriveWarnings.Of(rows, work.Refusals),
             Figures = new(
-                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
+                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.AtZero.NonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),
+            Points = work.Points,
             Stages = clock.Times,
             Cancelled = cancelled,
         };

@@ -13,5 +13,7 @@ internal static class CommandList
         BandsCommand.Create(),
         LockinCommand.Create(),
         TurnCommand.Create(),
+        ToleranceCommand.Create(),
+        GatherCommand.Create(),
     ];
 }

@@ -58,6 +58,7 @@ public sealed class ReportFixture : IAsyncLifetime
 
     private (TurnResult Result, string Path)? ring, axis;
     private (LockinResult Result, string Path)? lockin;
+    private (ToleranceResult Result, string Path)? tolerance;
 
     internal DriveResult Result { get; private set; } = null!;
 
@@ -126,6 +127,27 @@ public sealed class ReportFixture : IAsyncLifetime
         }
     }
 
+    /// <summary>The same disc with a few causes of error and a few sampled devices.</summary>
+    internal (ToleranceResult Result, string Path) Tolerance
+    {
+        get
+        {
+            if (tolerance is null)
+            {
+                SheetDevice device = Read("tolerance.toml", Text.Replace("steps = 5", "steps = 3", StringComparison.Ordinal)
+                    + "\n[tolerance]\naxis = \"1 deg\"\na = \"0.05 mS\"\n[tolerance.contacts]\nposition = \"50 nm\"\n");
+                ToleranceResult result = ToleranceRun.Execute(device, new() { Samples = 32 }, null, null, CancellationToken.None);
+                tolerance = (result, Other("tolerance.html"));
+                WriteTolerance(tolerance.Value.Path);
+            }
+
+            return tolerance.Value;
+        }
+    }
+
+    internal void WriteTolerance(string path) => ToleranceReport.Write(
+        tolerance!.Value.Result, TolerancePictures.Write(tolerance.Value.Result, Other("pictures-of-tolerance"), CancellationToken.None), path);
+
     internal void WriteTurn((TurnResult Result, string Path) turn, string path) =>
         TurnReport.Write(turn.Result, TurnPictures.Write(turn.Result, Other("pictures-of-turn"), CancellationToken.None), path);
 
@@ -134,7 +156,7 @@ public sealed class ReportFixture : IAsyncLifetime
 
     private (TurnResult Result, string Path) Turned(string name, int steps)
     {
-        SheetDevice device = Read(name + ".toml", Text.Replace("steps = 5", "steps = 3", StringComparison.Ordinal) + (steps == 0 ? "[turn]\naround = \"c\"\n" : ""));
+        SheetDevice device = Read(name + ".toml", Text.Replace("steps = 5", "steps = 3", StringComparison.Ordinal) + (steps == 0 ? "\n[turn]\naround = \"c\"\n" : ""));
         TurnResult result = TurnRun.Execute(device, new() { AxisSteps = steps, Ratios = steps == 0 ? [1, 4] : [] }, null, CancellationToken.None);
         (TurnResult, string) turn = (result, Other(name + ".html"));
         WriteTurn(turn, turn.Item2);

@@ -30,7 +30,8 @@ class LiveMap {
     this.sets = maps.map(m => m.frames.reduce((list, f) => [...list, f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f) : list[f.same]], []));
     this.mapIndex = 0;
     this.words = SLIDERS[maps[0].by];
-    this.frameIndex = maps[0].by === 'current' ? maps[0].frames.length - 1 : maps[0].by === 'phase' ? this.sets[0].indexOf(this.#strongest()) : 0;
+    // The last drive value, the crest of a cycle, the first direction.
+    this.frameIndex = { current: maps[0].frames.length - 1, phase: this.sets[0].reduce((best, f, k, all) => f.frame.high > all[best].frame.high ? k : best, 0) }[maps[0].by] ?? 0;
     this.mesh = meshes[maps[0].mesh];
     this.crossing = new Crossing(this.mesh, maps[0].direction);
     this.extent = extentOf(maps);

@@ -176,7 +176,7 @@ class Chart {
     plot.append(
       svg('defs', null, svg('clipPath', { id: clip }, svg('rect', { x: left - 8, y: top - 8, width: right - left + 16, height: bottom - top + 16 }))),
       grid, svg('path', { class: 'frame', d: `M${left} ${top}V${bottom}H${right}V${top}Z` }), labels);
-    const body = svg('g', { 'clip-path': `url(#${clip})` });
+    const body = svg('g', { 'clip-path': `url(#${clip})` }), hits = svg('g', { class: 'screen' });
     for (const m of view.marks) {
       const u = ax.at(m.x * sx.factor).toFixed(1);
       labels.append(svg('path', { class: 'frame', 'stroke-dasharray': '2 4', d: `M${u} ${top}V${bottom}` }), svg('text', { x: u, y: top - 6, 'text-anchor': 'middle' }, m.name));
@@ -215,12 +215,13 @@ class Chart {
         }
         const frame = s.map ? s.frame[p.k] : -1;
         if (frame >= 0) {
-          // A generous target for fingers.
-          body.append(svg('circle', { class: 'hit screen', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 11, 'data-map': s.map, 'data-frame': frame, onclick: () => this.pick(s.map, frame) }, svg('title', null, this.#words(p))));
+          // A generous target for fingers, above all lines.
+          hits.append(svg('circle', { class: 'hit', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 11, 'data-map': s.map, 'data-frame': frame, onclick: () => this.pick(s.map, frame) }, svg('title', null, this.#words(p))));
         }
       }
     }
     this.marks = svg('g', { class: 'screen' });
+    body.append(hits);
     plot.append(this.marks);
     this.#mark();
   }

@@ -113,6 +113,7 @@ public static class RunRecord
                 json.WriteString("pair", e.Pair);
                 json.WriteString("part", e.Part);
                 WriteNumber(json, "value_V", e.Value);
+                WriteNumber(json, "correction_V", e.Correction);
                 WriteNumber(json, "err_V", e.Error);
                 WriteNumber(json, "wanted_V", e.Wanted);
                 json.WriteEndObject();

@@ -17,6 +17,38 @@ public static class SingularPoints
     /// <summary>All points whose exponent is below <paramref name="below"/>, in the order of the domain's vertices.</summary>
     public static IReadOnlyList<SingularPoint> Of(Domain domain, double below = 1.01)
     {
+        var list = new List<SingularPoint>();
+        foreach ((int v, DomainEdge before, DomainEdge after, double angle) in RimVertices(domain))
+        {
+            bool mixed = before.Contact >= 0 != after.Contact >= 0;
+            double exponent = mixed ? Math.PI / (2 * angle) : Math.PI / angle;
+            if (exponent < below && (mixed || exponent < 0.97))
+            {
+                list.Add(new(v, exponent, Math.Min(before.Curve.Length, after.Curve.Length)));
+            }
+        }
+
+        return list;
+    }
+
+    /// <summary>Tips off the rim's corners and vertices of the rim where it runs on without a corner along the same contact or free edge: the field is smooth there.</summary>
+    public static IReadOnlyList<int> SmoothVertices(Domain domain)
+    {
+        const double Straight = 1e-6;
+        var rim = RimVertices(domain).ToList();
+        var onRim = rim.Select(r => r.Vertex).ToHashSet();
+        var inside = domain.Edges.Where(e => !e.IsRim).SelectMany(e => new[] { e.From, e.To }).ToHashSet();
+        return
+        [
+            .. domain.Tips.Where(t => !onRim.Contains(t) && !inside.Contains(t)),
+            .. rim.Where(r => r.Before.Contact == r.After.Contact && Math.Abs(r.Angle - Math.PI) < Straight && !inside.Contains(r.Vertex))
+                .Select(r => r.Vertex),
+        ];
+    }
+
+    // Vertices with the rim stretches before and after them and the interior angle.
+    private static IEnumerable<(int Vertex, DomainEdge Before, DomainEdge After, double Angle)> RimVertices(Domain domain)
+    {
         ArgumentNullException.ThrowIfNull(domain);
         int n = domain.Vertices.Count;
         int[] into = new int[n], from = new int[n];
@@ -31,7 +63,6 @@ public static class SingularPoints
             }
         }
 
-        var list = new List<SingularPoint>();
         for (int v = 0; v < n; v++)
         {
             if (into[v] < 0 || from[v] < 0)
@@ -42,15 +73,7 @@ public static class SingularPoints
             DomainEdge before = domain.Edges[into[v]], after = domain.Edges[from[v]];
             Point2 back = -before.Curve.Tangent(1), ahead = after.Curve.Tangent(0);
             double angle = Math.Atan2(Point2.Cross(ahead, back), Point2.Dot(ahead, back));
-            angle = angle <= 0 ? angle + (2 * Math.PI) : angle;
-            bool mixed = before.Contact >= 0 != after.Contact >= 0;
-            double exponent = mixed ? Math.PI / (2 * angle) : Math.PI / angle;
-            if (exponent < below && (mixed || exponent < 0.97))
-            {
-                list.Add(new(v, exponent, Math.Min(before.Curve.Length, after.Curve.Length)));
-            }
+            yield return (v, before, after, angle <= 0 ? angle + (2 * Math.PI) : angle);
         }
-
-        return list;
     }
 }

@@ -15,10 +15,14 @@ public sealed record RefinementLevel(int Level, int Triangles, int Unknowns, IRe
 /// <param name="Wiring">Name.</param>
 /// <param name="Pair">Name.</param>
 /// <param name="Part">"value" or "even".</param>
-/// <param name="Value">V.</param>
-/// <param name="Error">V.</param>
+/// <param name="Value">With the correction, V.</param>
+/// <param name="Error">What the correction may miss, V.</param>
 /// <param name="Wanted">V.</param>
-public sealed record LevelEstimate(string Wiring, string Pair, string Part, double Value, double Error, double Wanted);
+public sealed record LevelEstimate(string Wiring, string Pair, string Part, double Value, double Error, double Wanted)
+{
+    /// <summary>What the mesh lacked and was added: the estimated error of the uncorrected value, V.</summary>
+    public double Correction { get; init; }
+}
 
 /// <summary>Wall time of a stage.</summary>
 /// <param name="Name">For example "mesh", "factor", "solve".</param>

@@ -5,39 +5,98 @@ namespace FieldSolve.Readings;
 /// <summary>
 /// Where the difference of a reading between a mesh and its uniform split comes from: the residual of the coarse solution on the split mesh, weighted
 /// with what the fine adjoint adds to its coarse interpolant, node by node. R. Becker, R. Rannacher, Acta Numerica 10, 1 (2001), section 3;
-/// the sum by nodes follows T. Richter, T. Wick, J. Comput. Appl. Math. 279, 192 (2015).
+/// the sum by nodes follows T. Richter, T. Wick, J. Comput. Appl. Math. 279, 192 (2015). As the rate of convergence is known place by place, so is what
+/// the fine mesh still lacks (L. F. Richardson's extrapolation, Phil. Trans. R. Soc. A 226, 299 (1927), applied locally): the reading is corrected by
+/// it, and the bar covers what the correction may miss.
 /// </summary>
 internal sealed class GoalError
 {
     // Contributions of both signs cancel; a bar that trusted the cancellation fully would now and then be far too small.
     private const double Distrust = 0.1;
 
-    private GoalError(double bar, double[] perTriangle)
+    // Where singular rates mix nothing is corrected there, and the two signs may belong to different rates.
+    private const double MixedDistrust = 0.2;
+
+    // However badly the correction did on the mesh before, it is not worse than this.
+    private const double MostDoubt = 2;
+
+    // A correction that missed this share of itself on the mesh before may do so again, and somewhat worse.
+    private const double Repeat = 1.25;
+
+    private readonly double corrected;  // sum of the sizes of what the correction consists of
+    private readonly double rest;       // part of the bar that does not depend on how good the correction is
+
+    private readonly double least;      // least doubt
+
+    private GoalError(double correction, double corrected, double rest, double least, double doubt, double[] perTriangle)
     {
-        Bar = bar;
+        this.least = least;
+        Correction = correction;
+        this.corrected = corrected;
+        this.rest = rest;
+        Bar = (doubt * corrected) + rest;
         PerTriangle = perTriangle;
     }
 
-    /// <summary>Estimated error on the fine mesh, V.</summary>
+    /// <summary>What the fine mesh lacks, to the best of our knowledge: exact minus fine, V.</summary>
+    public double Correction { get; }
+
+    /// <summary>Estimated error after the correction, V.</summary>
     public double Bar { get; }
 
-    /// <summary>What remains on the fine mesh, in absolute value, by coarse triangle, V.</summary>
+    /// <summary>Share in the bar, in absolute value, by coarse triangle, V.</summary>
     public double[] PerTriangle { get; }
 
-    /// <summary>The same for a larger or smaller drive of a linear sheet.</summary>
-    public GoalError Times(double factor) => new(factor * Bar, [.. PerTriangle.Select(e => factor * e)]);
+    /// <summary>The same for another drive of a linear sheet.</summary>
+    public GoalError Times(double factor) =>
+        new(
+            factor * Correction, Math.Abs(factor) * corrected, Math.Abs(factor) * rest, least, least,
+            [.. PerTriangle.Select(e => Math.Abs(factor) * e)]);
+
+    /// <summary>
+    /// The same with a wider bar where the law bends the solution so much that the mesh lacks something else than it does in the limit of small drive:
+    /// there the rates are reached later (measured on the ring with a saturating law of benchmarks/accuracy.md).
+    /// </summary>
+    /// <param name="weak">Error per ampere in the limit of small drive.</param>
+    /// <param name="current">A.</param>
+    public GoalError Beside(GoalError weak, double current)
+    {
+        double here = Correction / current;
+        double change = here == 0 ? 0 : Math.Min(1, Math.Abs((here - weak.Correction) / here));
+        return With(least + (change * (1 - least)), true);
+    }
+
+    /// <summary>The same with a bar that trusts the correction no further than to its sign: for a mesh that nothing can be compared with yet.</summary>
+    public GoalError Untried() => With(1);
+
+    /// <summary>
+    /// The same with a wider bar when the corrected value moved by more than could be expected since the mesh before: the rates are not reached
+    /// there, and perhaps not here.
+    /// </summary>
+    /// <param name="before">Error on the mesh before.</param>
+    /// <param name="moved">Corrected value less the corrected value on the mesh before, V.</param>
+    public GoalError AfterMove(GoalError before, double moved)
+    {
+        double missed = Math.Abs(moved) - before.rest;
+        return With(missed > 0 && before.corrected > 0 ? Math.Clamp(Repeat * missed / before.corrected, least, MostDoubt) : least);
+    }
+
+    private GoalError With(double doubt, bool forGood = false)
+    {
+        double wider = Bar > 0 ? ((doubt * corrected) + rest) / Bar : 1;
+        return new(Correction, corrected, rest, forGood ? doubt : least, doubt, [.. PerTriangle.Select(e => wider * e)]);
+    }
 
     /// <summary>Collects the contributions.</summary>
     /// <param name="between">Coarse and fine space.</param>
-    /// <param name="remaining">Per coarse triangle: error left on the fine mesh, as a share of the difference.</param>
-    /// <param name="allowance">Factor on all contributions, for what the known rates of convergence do not cover.</param>
+    /// <param name="shares">Rates of convergence.</param>
+    /// <param name="difference">Fine minus coarse reading, V.</param>
     /// <param name="terms">Pairs of fine residual (A) of the coarse solution and adjoint detail (ohm), with a factor each.</param>
     public static GoalError Of(
-        Prolongation between, double[] remaining, double allowance, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
+        Prolongation between, ErrorShares shares, double difference, ReadOnlySpan<(double Factor, double[] Residual, double[] Detail)> terms)
     {
-        double smooth = 0, smoothSize = 0, singular = 0, singularSize = 0;
-        double[] perTriangle = new double[remaining.Length];
-        double usual = remaining.Length > 0 ? remaining.Min() : 0;
+        double singular = 0, singularLeft = 0, blunt = 0, size = 0;
+        double[] perTriangle = new double[shares.Remaining.Length];
         for (int k = 0; k < between.Parent.Length; k++)
         {
             int unknown = between.UnknownOf(k);
@@ -48,28 +107,41 @@ internal sealed class GoalError
             }
 
             int first = between.Parent[k], second = between.Second[k];
-            double share = second < 0 ? remaining[first] : Math.Max(remaining[first], remaining[second]);
-            eta *= share * allowance;
-            double size = Math.Abs(eta);
-            if (share > usual)
+            int leading = second >= 0 && shares.Remaining[second] > shares.Remaining[first] ? second : first;
+            double left = eta * shares.Remaining[leading], doubt = shares.Doubt + Distrust;
+            switch (shares.Kinds[leading])
             {
-                singular += eta;
-                singularSize += size;
-            }
-            else
-            {
-                smooth += eta;
-                smoothSize += size;
+                case Falloff.Singular:
+                    singular += eta;
+                    singularLeft += left;
+                    size += (shares.SingularIsKnown ? Distrust : MixedDistrust) * Math.Abs(left);
+                    doubt = shares.SingularIsKnown ? doubt : 1 + MixedDistrust;
+                    break;
+                case Falloff.Blunt:
+                    blunt += left;
+                    size += Distrust * Math.Abs(left);
+                    doubt = 1 + Distrust;
+                    break;
+                default:
+                    size += Distrust * Math.Abs(left);
+                    break;
             }
 
-            perTriangle[first] += second < 0 ? size : size / 2;
+            double share = doubt * Math.Abs(left);
+            perTriangle[first] += second < 0 ? share : share / 2;
             if (second >= 0)
             {
-                perTriangle[second] += size / 2;
+                perTriangle[second] += share / 2;
             }
         }
 
-        // The two kinds converge at different rates, so their cancellation is not counted on.
-        return new(Math.Abs(smooth) + Math.Abs(singular) + (Distrust * (smoothSize + singularSize)), perTriangle);
+        // The sum over the nodes misses what the true arc moves between the two meshes; the difference has it, and it goes like h^4 too.
+        double smooth = ErrorShares.Smooth * (difference - singular);
+        double correction = smooth + (shares.SingularIsKnown ? singularLeft : 0);
+
+        // The kinds converge at different rates, so their cancellation is not counted on.
+        double rest = Math.Abs(blunt) + size, corrected = Math.Abs(smooth);
+        (corrected, rest) = shares.SingularIsKnown ? (corrected + Math.Abs(singularLeft), rest) : (corrected, rest + Math.Abs(singularLeft));
+        return new(correction, corrected, rest, shares.Doubt, shares.Doubt, perTriangle);
     }
 }

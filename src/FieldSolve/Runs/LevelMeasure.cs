@@ -15,20 +15,27 @@ namespace FieldSolve.Runs;
 /// <param name="Difference">Fine minus coarse, V.</param>
 /// <param name="Error">Its origin and size.</param>
 /// <param name="WeakDifference">Difference per ampere in the limit of small drive, ohm; 0 for an even part.</param>
-/// <param name="WeakBar">Estimated error per ampere in the limit of small drive, ohm; 0 for an even part.</param>
+/// <param name="WeakError">Origin and size of the error per ampere in the limit of small drive, ohm; null for an even part.</param>
 internal sealed record GoalMeasure(
-    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, double WeakBar)
+    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, GoalError? WeakError)
 {
     /// <summary>Error that was asked for, V; set once all readings are known.</summary>
     public double Wanted { get; init; }
+
+    /// <summary>Value with the correction, V.</summary>
+    public double Corrected => Value + Error.Correction;
+
+    /// <summary>The same with a bar that minds how far the reading moved since the mesh before, where it was measured at the same current.</summary>
+    public GoalMeasure AfterMove(IReadOnlyList<GoalMeasure> before)
+    {
+        GoalMeasure? last = before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven && g.Current == Current);
+        return last is null ? this : this with { Error = Error.AfterMove(last.Error, Corrected - last.Corrected) };
+    }
 }
 
 /// <summary>Estimates the errors of all readings of one wiring at the largest current, by coarse and fine solutions at +I and -I.</summary>
 internal static class LevelMeasure
 {
-    // The even part weighs the strong fields at contact ends more than a linear reading does, and converges more slowly there. Chosen so that the
-    // second-order disc with 45 degree arcs, whose exact value is known (benchmarks/accuracy.md), stays within twice its bar on every mesh.
-    private const double EvenAllowance = 2;
     private const int MostHalvings = 20;
 
     /// <summary>Measures one wiring.</summary>
@@ -41,13 +48,13 @@ internal static class LevelMeasure
     public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel)
     {
         State weak = State.Weak(meshes, plan);
-        GoalError[] weakErrors = [.. weak.Details.Select(d => GoalError.Of(meshes.Between, meshes.Remaining, 1, [(1, weak.Residual, d)]))];
+        GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
+            meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
         if (meshes.Fine.Equations.Law.IsLinear)
         {
-            double size = Math.Abs(current);
             return [.. weakErrors.Select((e, k) => new GoalMeasure(
-                plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(size),
-                weak.Fine[k] - weak.Coarse[k], e.Bar))];
+                plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(current),
+                weak.Fine[k] - weak.Coarse[k], e))];
         }
 
         (State? plus, State? minus) = (null, null);
@@ -75,17 +82,18 @@ internal static class LevelMeasure
         {
             list.Add(new(
                 plan, k, false, reached, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
-                GoalError.Of(meshes.Between, meshes.Remaining, 1, [(1, plus.Residual, plus.Details[k])]),
-                weak.Fine[k] - weak.Coarse[k], weakErrors[k].Bar));
+                GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])])
+                    .Beside(weakErrors[k], reached),
+                weak.Fine[k] - weak.Coarse[k], weakErrors[k]));
             if (minus is not null && plan.HasEven[k])
             {
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
                 list.Add(new(
                     plan, k, true, reached, fine, fine - coarse,
                     GoalError.Of(
-                        meshes.Between, meshes.Remaining, EvenAllowance,
+                        meshes.Between, meshes.EvenShares, fine - coarse,
                         [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])]),
-                    0, 0));
+                    0, null));
             }
         }
 

@@ -73,7 +73,7 @@ internal sealed class MeshRefinement
         ISizeField size = MeshSizes.First(device);
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
-        IReadOnlyList<GoalMeasure> goals = [];
+        IReadOnlyList<GoalMeasure> goals = [], before = [];
 
         // All currents zero: the errors are zero too, but one ampere tells whether the mesh is any good. A wiring that cannot carry the largest current
         // is measured at what it carried on the mesh before.
@@ -93,12 +93,20 @@ internal sealed class MeshRefinement
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
             List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, lower, bothSigns, cancel));
-            levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. measured.Select(g => new LevelEstimate(
-                g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Value, g.Error.Bar, g.Wanted))]));
-            double now = measured.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
+            measured = [.. measured.Select(g => g.AfterMove(before))];
+            before = measured;
+
+            // What is stated; the sizes of the next mesh follow what is expected.
+            List<GoalMeasure> stated = level > 0 ? measured : [.. measured.Select(g => g with { Error = g.Error.Untried() })];
+            levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. stated.Select(g => new LevelEstimate(
+                g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Corrected, g.Error.Bar, g.Wanted)
+            {
+                Correction = g.Error.Correction,
+            })]));
+            double now = stated.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(0).Max();
             if (best is null || now <= worst)
             {
-                (best, goals) = (meshes, measured);
+                (best, goals) = (meshes, stated);
             }
 
             stalls = now > StallShare * worst ? stalls + 1 : 0;

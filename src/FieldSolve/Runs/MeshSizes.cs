@@ -14,14 +14,19 @@ internal static class MeshSizes
     private const double FirstGrowth = 0.6;
     private const double ContactEndFirst = 0.02;
 
+    // Angle of an arc that one element of the first level spans, radians.
+    private const double FirstTurn = 0.25;
+
     // Largest ratio of size to distance from a smaller element, at later levels.
     private const double Growth = 0.7;
 
-    // Share of the wanted error that regular triangles and singular points may use; the rest is for what the prediction misses.
-    private const double RegularBudget = 0.6;
+    // Share of the wanted error that regular triangles and singular points may use. The mesher's triangles are somewhat smaller than asked for, which
+    // leaves room for what the prediction misses.
+    private const double RegularBudget = 0.95;
     private const double CoreBudget = 0.2;
 
-    private const double LessEachLevel = 0.65;
+    // Later predictions start from better meshes, but one that failed should not fail again for a trifle.
+    private const double LessEachLevel = 0.95;
 
     /// <summary>Sizes of the first mesh.</summary>
     public static ISizeField First(SheetDevice device)
@@ -36,6 +41,13 @@ internal static class MeshSizes
             .Select(p => new SizePoint(
                 domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ContactEndFirst * p.Reach / stretch), FirstGrowth))
             .ToList();
+        foreach (Curve arc in domain.Edges.Select(e => e.Curve).Where(c => c.IsArc && FirstTurn * c.Radius < background))
+        {
+            int steps = (int)Math.Ceiling(Math.Abs(arc.Sweep) / FirstTurn);
+            points.AddRange(Enumerable.Range(0, steps + 1).Select(i => arc.At((double)i / steps))
+                .Select(p => new SizePoint(p.X, p.Y, FirstTurn * arc.Radius, FirstGrowth)));
+        }
+
         return new GradedSize(background, points);
     }
 
@@ -47,7 +59,7 @@ internal static class MeshSizes
     public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level, int mostTriangles)
     {
         TriangleMesh mesh = meshes.Coarse.Space.Mesh;
-        double[] load = Loads(mesh, goals);
+        (double[] load, bool[] even) = Loads(mesh, goals);
         double coreLoad = 0;
         int cores = 0;
         var regular = new List<double>();
@@ -64,16 +76,16 @@ internal static class MeshSizes
             }
         }
 
-        double cancelling = Cancelling(regular.Sum() + coreLoad, goals) * Math.Pow(LessEachLevel, level);
-        double even = Equidistribution(regular, RegularBudget * cancelling, mostTriangles);
+        double cancelling = Cancelling(regular.Sum() + coreLoad, goals) * Math.Pow(LessEachLevel, level * level);
+        double equal = Equidistribution(regular, RegularBudget * cancelling, mostTriangles);
         double[] inside = new double[load.Length], size = new double[mesh.VertexCount];
         Array.Fill(size, double.PositiveInfinity);
         for (int t = 0; t < load.Length; t++)
         {
             int vertex = meshes.Vertex[t];
             double factor = vertex >= 0
-                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / meshes.Exponent[vertex]), 1e-6, 2)
-                : Math.Clamp(Math.Pow(even / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
+                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / (even[t] ? meshes.EvenExponent : meshes.Exponent)[vertex]), 1e-6, 2)
+                : Math.Clamp(Math.Pow(equal / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
             double edge = EquilateralEdge(mesh, t);
 
             // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
@@ -96,19 +108,24 @@ internal static class MeshSizes
         return worst > 0 ? Math.Clamp(total / worst, 1, 20) : 1;
     }
 
-    // Per triangle, the largest share of a wanted error over all readings.
-    private static double[] Loads(TriangleMesh mesh, IReadOnlyList<GoalMeasure> goals)
+    // Per triangle, the largest share of a wanted error over all readings, and whether an even part has it.
+    private static (double[] Load, bool[] IsEven) Loads(TriangleMesh mesh, IReadOnlyList<GoalMeasure> goals)
     {
         double[] load = new double[mesh.TriangleCount];
+        bool[] even = new bool[load.Length];
         foreach (GoalMeasure goal in goals)
         {
             for (int t = 0; t < load.Length; t++)
             {
-                load[t] = Math.Max(load[t], goal.Error.PerTriangle[t] / goal.Wanted);
+                double share = goal.Error.PerTriangle[t] / goal.Wanted;
+                if (share > load[t])
+                {
+                    (load[t], even[t]) = (share, goal.IsEven);
+                }
             }
         }
 
-        return load;
+        return (load, even);
     }
 
     // The error per triangle goes like size^6 (density size^4 times area), so the cheapest mesh has equal errors. Find that

@@ -40,20 +40,21 @@ internal sealed class RowMaker
             // the contacts' for the source.
             double own = plan.Pairs[k].Name == ReadingPlan.Source ? Math.Abs(here.Values[k]) : along;
             double floor = (RoundingShare * here.Values.Max(Math.Abs)) + (rest * own);
-            double error = Bar(plan, k, false, current, here.Difference![k]) + floor;
             double guard = here.Zone!.Share[k];
             if (opposite is null)
             {
-                readings.Add(new(plan.Pairs[k].Name, here.Values[k], error, null, null, null, guard, 0));
+                (double missing, double bar) = Estimate(plan, k, current, here.Difference![k], 0);
+                readings.Add(new(plan.Pairs[k].Name, here.Values[k] + missing, bar + floor, null, null, null, guard, 0));
                 continue;
             }
 
             double odd = (here.Values[k] - opposite.Values![k]) / 2, even = (here.Values[k] + opposite.Values[k]) / 2;
-            double evenError = device.Law.IsLinear
-                ? 0
-                : Bar(plan, k, true, current, (here.Difference[k] + opposite.Difference![k]) / 2) + floor;
+            double oddDifference = (here.Difference![k] - opposite.Difference![k]) / 2, evenDifference = (here.Difference[k] + opposite.Difference[k]) / 2;
+            (double missingEven, double evenBar) = device.Law.IsLinear ? (0, -floor) : EstimateEven(plan, k, current, evenDifference);
+            (double missingOdd, double error) = Estimate(plan, k, current, oddDifference, evenDifference);
+            (odd, even) = (odd + missingOdd, even + missingEven);
             double evenGuard = (here.Zone.Share[k] + opposite.Zone!.Share[k]) / 2;
-            readings.Add(new(plan.Pairs[k].Name, here.Values[k], error, odd, even, evenError, guard, evenGuard));
+            readings.Add(new(plan.Pairs[k].Name, odd + even, error + floor, odd, even, evenBar + floor, guard, evenGuard));
         }
 
         LawExit? exit = here.Zone!.Exit ?? opposite?.Zone?.Exit;
@@ -82,33 +83,53 @@ internal sealed class RowMaker
         return outside ? RowStatus.OutsideLaw : coarse && along > 0 ? RowStatus.ErrorAboveWanted : RowStatus.Ok;
     }
 
-    // The bar is known in the limit of small drive and at the largest current. In between it follows the difference of the two meshes: where that
-    // difference still is the one of small drive, so is the bar; an even part goes like I² and its bar no lower than a third of that.
-    private double Bar(ReadingPlan plan, int pair, bool even, double current, double difference)
+    private GoalMeasure? Goal(ReadingPlan plan, int pair, bool even) => goals.FirstOrDefault(g => g.Plan == plan && g.Pair == pair && g.IsEven == even);
+
+    // Error and bar are known in the limit of small drive and at the largest current. In between they follow the difference of the two meshes: where that
+    // difference still is the one of small drive, so are they.
+    private (double Missing, double Bar) Estimate(ReadingPlan plan, int pair, double current, double oddDifference, double evenDifference)
     {
         if (current == 0)
         {
-            return 0;
+            return default;
         }
 
-        GoalMeasure? goal = goals.FirstOrDefault(g => g.Plan == plan && g.Pair == pair && g.IsEven == even);
-        if (goal is null)
+        if (Goal(plan, pair, false) is not { } goal)
         {
-            return Math.Abs(difference);
+            return (0, Math.Abs(oddDifference) + Math.Abs(evenDifference));
         }
 
-        double ratio = Math.Abs(current / goal.Current);
-        if (even)
+        // The measure at the largest current has an even part in it, where one was measured; the odd part is the rest.
+        GoalMeasure? even = Goal(plan, pair, true);
+        double oddMeasured = goal.Difference - (even?.Difference ?? 0), oddCorrection = goal.Error.Correction - (even?.Error.Correction ?? 0);
+        double ratio = Math.Abs(current / goal.Current), weak = goal.WeakError!.Bar * Math.Abs(current), strong = goal.Error.Bar * ratio;
+        double Along(double measured, double difference)
         {
-            double expected = ratio * ratio * Math.Abs(goal.Difference);
-            double share = expected > 0 ? Math.Abs(difference) / expected : 1;
-            return ratio * ratio * goal.Error.Bar * Math.Clamp(share, 1.0 / 3, Math.Max(1, ratio));
+            double towards = (measured * Math.Sign(goal.Current) * ratio) - (goal.WeakDifference * Math.Abs(current));
+            double here = (difference * Math.Sign(current)) - (goal.WeakDifference * Math.Abs(current));
+            return towards == 0 ? 1 : Math.Min(Math.Abs(here / towards), Math.Max(1, ratio));
         }
 
-        double size = Math.Abs(current), weak = goal.WeakBar * size, strong = goal.Error.Bar * ratio;
-        double towards = (goal.Difference * ratio * Math.Sign(goal.Current)) - (goal.WeakDifference * size);
-        double here = (difference * Math.Sign(current)) - (goal.WeakDifference * size);
-        double along = towards == 0 ? 1 : Math.Min(Math.Abs(here / towards), Math.Max(1, ratio));
-        return Math.Max(weak + (along * (strong - weak)), Math.Min(weak, strong));
+        double share = Along(goal.Difference, oddDifference + evenDifference), oddShare = Math.Min(1, Along(oddMeasured, oddDifference));
+        double missing = goal.WeakError.Correction + (oddShare * ((oddCorrection / goal.Current) - goal.WeakError.Correction));
+        return (current * missing, Math.Max(weak + (share * (strong - weak)), Math.Min(weak, strong)));
+    }
+
+    // An even part goes like I², its bar no lower than a third of that.
+    private (double Missing, double Bar) EstimateEven(ReadingPlan plan, int pair, double current, double difference)
+    {
+        if (current == 0)
+        {
+            return default;
+        }
+
+        if (Goal(plan, pair, true) is not { } goal)
+        {
+            return (0, Math.Abs(difference));
+        }
+
+        double ratio = Math.Abs(current / goal.Current), expected = ratio * ratio * Math.Abs(goal.Difference);
+        double share = expected > 0 ? Math.Abs(difference) / expected : 1;
+        return (ratio * ratio * goal.Error.Correction, ratio * ratio * goal.Error.Bar * Math.Clamp(share, 1.0 / 3, Math.Max(1, ratio)));
     }
 }

@@ -11,5 +11,6 @@ internal static class CommandList
         DriveCommand.Create(),
         ToleranceCommand.Create(),
         GatherCommand.Create(),
+        FitCommand.Create(),
     ];
 }

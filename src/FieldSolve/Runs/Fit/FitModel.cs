@@ -29,14 +29,15 @@ internal sealed class FitModel : IFitFunction
     /// <param name="problem">States and data.</param>
     /// <param name="level">Of the device at the numbers the mesh was made for.</param>
     /// <param name="missing">Per datum: what the mesh lacks, V.</param>
-    public FitModel(FitProblem problem, FieldLevel level, double[] missing)
+    /// <param name="before">A model of the same states on the same triangles that lay a little differently: its solutions are good guesses. May be null.</param>
+    public FitModel(FitProblem problem, FieldLevel level, double[] missing, FitModel? before = null)
     {
         this.problem = problem;
         this.missing = missing;
         reference = level;
         mover = new MeshMover(level.Space.Mesh);
         motion = new NodeMotion(mover, level.Space);
-        potentials = new double[problem.States.Count][];
+        potentials = before is not null && before.problem == problem && before.reference.Space.Size == level.Space.Size ? before.potentials : new double[problem.States.Count][];
         byCircuit = [.. Enumerable.Range(0, problem.Plans.Length).Select(c => Enumerable.Range(0, problem.States.Count)
             .Where(s => problem.States[s].Circuit == c).OrderByDescending(s => problem.States[s].Current > 0).ThenBy(s => Math.Abs(problem.States[s].Current)).ToArray())];
     }

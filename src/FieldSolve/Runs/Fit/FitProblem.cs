@@ -17,14 +17,28 @@ internal sealed class FitProblem
     // Nodes over half a period: the n-th harmonic is then exact up to what the (2N - n)-th one holds.
     private const int HarmonicNodes = 8;
 
+    /// <summary>V/I is a smooth function of the current: a polynomial through this many of Chebyshev's points has it well below any noise at weak drive.</summary>
+    public const int FewestNodes = 8;
+
+    /// <summary>From here on every current is solved.</summary>
+    public const int MostNodes = 32;
+
     private readonly SheetDevice device;
     private readonly int[] order;
     private readonly Dictionary<(int, double), int> known = [];
     private readonly List<FitState> states = [];
+    private readonly (double Low, double High)?[] ranges;   // per circuit: currents between which V/I is interpolated; null where every current is solved
 
-    public FitProblem(SheetDevice device, IReadOnlyList<FitParameter> parameters, MeasuredVoltages measured, IReadOnlyList<MeasuredVoltage> data)
+    /// <param name="device">The device.</param>
+    /// <param name="parameters">Free numbers.</param>
+    /// <param name="measured">The table.</param>
+    /// <param name="data">Its rows to fit.</param>
+    /// <param name="nodes">A circuit with more DC currents than these is solved at so many, and V/I interpolated between.</param>
+    public FitProblem(
+        SheetDevice device, IReadOnlyList<FitParameter> parameters, MeasuredVoltages measured, IReadOnlyList<MeasuredVoltage> data, int nodes = FewestNodes)
     {
         this.device = device;
+        Nodes = nodes;
         Parameters = parameters;
         Measured = measured;
         Data = data;
@@ -36,8 +50,12 @@ internal sealed class FitProblem
         double offset = device.Drive?.Offset ?? 0;
         LargestCurrent = data.Select(d => d.Harmonic is null ? Math.Abs(d.Current) : (Math.Sqrt(2) * d.Current) + Math.Abs(offset)).Max();
         Reading = [.. data.Select(d => ReadingOf(measured.Circuits[d.Circuit], Plans[d.Circuit], d.Pair))];
+        ranges = [.. Enumerable.Range(0, Plans.Length).Select(RangeOf)];
         Terms = LargestCurrent > 0 ? [.. data.Select(d => TermsOf(d, offset))] : [];
     }
+
+    /// <summary>Points of the interpolation in the current.</summary>
+    public int Nodes { get; }
 
     public IReadOnlyList<FitParameter> Parameters { get; }
 
@@ -84,7 +102,47 @@ internal sealed class FitProblem
     }
 
     /// <summary>The same with fewer data.</summary>
-    public FitProblem With(IReadOnlyList<MeasuredVoltage> data) => new(device, Parameters, Measured, data);
+    public FitProblem With(IReadOnlyList<MeasuredVoltage> data) => new(device, Parameters, Measured, data, Nodes);
+
+    /// <summary>The same with more points.</summary>
+    public FitProblem With(int nodes) => new(device, Parameters, Measured, Data, nodes);
+
+    /// <summary>Per datum: what the interpolation may miss, V, from the last two terms of its Chebyshev series.</summary>
+    /// <param name="readings">Readings of every state, V.</param>
+    public double[] InterpolationErrors(double[][] readings)
+    {
+        double[] errors = new double[Data.Count];
+        for (int i = 0; i < errors.Length; i++)
+        {
+            MeasuredVoltage d = Data[i];
+            if (Proportional || d.Harmonic is not null || ranges[d.Circuit] is not { } range || d.Current == 0)
+            {
+                continue;
+            }
+
+            double last = 0, before = 0;
+            for (int k = 0; k < Nodes; k++)
+            {
+                double current = Node(range, k), f = readings[known[(d.Circuit, current)]][Reading[i]] / current, t = Math.PI * (k + 0.5) / Nodes;
+                last += 2.0 / Nodes * f * Math.Cos((Nodes - 1) * t);
+                before += 2.0 / Nodes * f * Math.Cos((Nodes - 2) * t);
+            }
+
+            errors[i] = Math.Abs(d.Current) * (Math.Abs(last) + Math.Abs(before));
+        }
+
+        return errors;
+    }
+
+    private (double Low, double High)? RangeOf(int circuit)
+    {
+        double[] currents = [.. Data.Where(d => d.Circuit == circuit && d.Harmonic is null && d.Current != 0).Select(d => d.Current).Distinct()];
+        return Nodes >= MostNodes || currents.Length <= Nodes ? null
+            : currents.Min() < 0 && currents.Max() > 0 ? (-currents.Max(Math.Abs), currents.Max(Math.Abs)) : (currents.Min(), currents.Max());
+    }
+
+    private double Node((double Low, double High) range, int k) =>
+        (0.5 * (range.Low + range.High)) + (0.5 * (range.High - range.Low) * Math.Cos(Math.PI * (k + 0.5) / Nodes));
 
     private static int ReadingOf(MeasuredCircuit circuit, ReadingPlan plan, int pair)
     {
@@ -110,7 +168,7 @@ internal sealed class FitProblem
 
         if (d.Harmonic is not { } n)
         {
-            return d.Current == 0 ? [] : [new(State(d.Circuit, d.Current), 1)];
+            return d.Current == 0 ? [] : ranges[d.Circuit] is { } range ? Interpolated(d, range) : [new(State(d.Circuit, d.Current), 1)];
         }
 
         // V is a function of I = I0 + sqrt(2) I cos(t), t counted from the crest: a series of cos(n t), by Chebyshev's points. Back to the phase counted from
@@ -128,6 +186,27 @@ internal sealed class FitProblem
         }
 
         return [.. terms];
+    }
+
+    // Lagrange's formula for V/I in its barycentric form at Chebyshev's points (J.-P. Berrut, L. N. Trefethen, SIAM Rev. 46, 501 (2004)).
+    private FitTerm[] Interpolated(MeasuredVoltage d, (double Low, double High) range)
+    {
+        double[] weight = new double[Nodes], at = new double[Nodes];
+        double sum = 0;
+        for (int k = 0; k < Nodes; k++)
+        {
+            at[k] = Node(range, k);
+            double apart = d.Current - at[k];
+            if (Math.Abs(apart) <= 1e-12 * Math.Abs(at[k]))
+            {
+                return [new(State(d.Circuit, at[k]), d.Current / at[k])];
+            }
+
+            weight[k] = (k % 2 == 0 ? 1 : -1) * Math.Sin(Math.PI * (k + 0.5) / Nodes) / apart;
+            sum += weight[k];
+        }
+
+        return [.. at.Select((current, k) => new FitTerm(State(d.Circuit, current), weight[k] / sum * d.Current / current))];
     }
 
     private int State(int circuit, double current)

@@ -28,7 +28,7 @@ internal sealed class FitReference
     /// <summary>Per datum: what is to be added to the coarse mesh's value, V.</summary>
     public double[] Missing { get; }
 
-    /// <summary>Per datum: estimated numerical error of the sum, V.</summary>
+    /// <summary>Per datum: estimated numerical error of the sum, V; the interpolation between currents not counted.</summary>
     public double[] Bars { get; }
 
     /// <summary>Largest numerical error over the standard deviation of the datum.</summary>
@@ -53,6 +53,9 @@ internal sealed class FitReference
             LevelMeasure.Of(meshes, problem.Plans[c], problem.LargestCurrent, [problem.LargestCurrent], !device.Law.IsLinear, cancel));
         return new(problem, meshes, [.. found.SelectMany(g => g)]);
     }
+
+    /// <summary>The same for another list of states.</summary>
+    public FitReference For(FitProblem other) => new(other, Meshes, [.. goals.Select(g => g with { Plan = other.Plans[Array.IndexOf(problem.Plans, g.Plan)] })]);
 
     /// <summary>What is missing from the data of another problem on the same plans.</summary>
     public double[] Of(FitProblem other) => [.. other.Data.Select((_, i) => other.Terms[i].Sum(t =>

@@ -19,8 +19,14 @@ public static class FitRun
     // Rounds end when the new correction moves no number by more than this share of its standard error.
     private const double Settled = 0.05;
 
-    // Starts whose sum of squares is within this of the best are as good.
+    // The axis turns by no more than this in one step, rad: beyond, the tensor is far from linear in it.
     private const double LargestTurn = 0.35;
+
+    // Share of the allowed numerical error that the interpolation between currents may take.
+    private const double MostBetween = 0.25;
+
+    // A start that describes the thinned data this well (in standard deviations of chi squared) needs no rivals.
+    private const double GoodStart = 5;
 
     /// <summary>Runs a fit.</summary>
     /// <param name="device">With a [fit] that leaves at least one number free.</param>
@@ -52,9 +58,26 @@ public static class FitRun
         double[] p = problem.Start;
         FitReference reference = Reached(() => FitReference.Refine(problem, p, spec.NumericalShare, Tell, clock, cancel));
         (IReadOnlyList<FitStart> starts, p) = clock.Time("starts", () => Starts(problem, reference, p, options, Tell, cancel));
-        (FitEnd end, FitModel model, reference, (int States, int Adjoints) solves) = Rounds(problem, task, reference, p, spec.NumericalShare, Tell, clock, cancel);
-        Tell("statistics");
-        return clock.Time("statistics", () => Result(device, problem, task, options, end, model, reference, starts, solves, clock, cancel));
+        (int States, int Adjoints) solves = (0, 0);
+        while (true)
+        {
+            (FitEnd end, FitModel model, reference, (int States, int Adjoints) more) = Rounds(problem, task, reference, p, spec.NumericalShare, Tell, clock, cancel);
+            solves = (solves.States + more.States, solves.Adjoints + more.Adjoints);
+
+            // More points in the current where the interpolation would take a good part of the numerical error that is allowed.
+            double[] between = problem.InterpolationErrors(model.ReadingsAt(end.P, cancel));
+            if (problem.Nodes < FitProblem.MostNodes && between.Where((e, i) => e > spec.NumericalShare * MostBetween * problem.Data[i].Sigma).Any())
+            {
+                (problem, p) = (problem.With(2 * problem.Nodes), end.P);
+                reference = reference.For(problem);
+                continue;
+            }
+
+            Tell("statistics");
+            double[] bars = [.. reference.Bars.Zip(between, (a, b) => a + b)];
+            FitResult result = clock.Time("statistics", () => Result(device, problem, task, options, end, model, reference, bars, starts, solves, cancel));
+            return result with { Stages = clock.Times };
+        }
     }
 
     internal static FitTask TaskOf(FitProblem problem, bool robust)
@@ -102,19 +125,22 @@ public static class FitRun
             var model = new FitModel(thin, reference.Meshes.Coarse, reference.Of(thin));
             FitEnd? end = LeastSquares.Run(model, task, from, MostThinSteps, cancel);
             found.Add((new(angles[k], end?.Objective), end?.P ?? from));
+            if (end?.Objective < thin.Data.Count + (GoodStart * Math.Sqrt(2.0 * thin.Data.Count)))
+            {
+                break;
+            }
         }
 
         (FitStart Start, double[] P) best = found.Where(f => f.Start.Objective is not null).OrderBy(f => f.Start.Objective!.Value * (1 + 1e-6)).FirstOrDefault();
         return ([.. found.Select(f => f.Start)], best.P ?? throw new FitException("The model has no solution at any start; begin nearer to the truth (start = …) or drive less."));
     }
 
-    // Of every pair and harmonic the smallest and largest currents of either sign.
+    // Of every pair and harmonic the largest current of either sign.
     private static List<MeasuredVoltage> Thin(IReadOnlyList<MeasuredVoltage> data)
     {
         var kept = new HashSet<MeasuredVoltage>(ReferenceEqualityComparer.Instance);
         foreach (IGrouping<(int, int, int?, bool), MeasuredVoltage> g in data.GroupBy(d => (d.Circuit, d.Pair, d.Harmonic, d.Current > 0)))
         {
-            kept.Add(g.MinBy(d => Math.Abs(d.Current))!);
             kept.Add(g.MaxBy(d => Math.Abs(d.Current))!);
         }
 
@@ -125,10 +151,12 @@ public static class FitRun
         FitProblem problem, FitTask task, FitReference reference, double[] p, double share, Action<string> tell, StageClock clock, CancellationToken cancel)
     {
         (int states, int adjoints) = (0, 0);
+        FitModel? before = null;
         for (int round = 0; ; round++)
         {
             tell(string.Create(CultureInfo.InvariantCulture, $"fit, round {round + 1}"));
-            var model = new FitModel(problem, reference.Meshes.Coarse, reference.Missing);
+            var model = new FitModel(problem, reference.Meshes.Coarse, reference.Missing, before);
+            before = model;
             FitEnd end = clock.Time("fit", () => LeastSquares.Run(model, task, p, MostSteps, cancel))
                 ?? throw new FitException("The model has no solution where the fit starts; begin nearer to the truth (start = …) or drive less.");
             (states, adjoints) = (states + model.Solves, adjoints + model.Adjoints);
@@ -178,8 +206,8 @@ public static class FitRun
     }
 
     private static FitResult Result(
-        SheetDevice device, FitProblem problem, FitTask task, FitOptions options, FitEnd end, FitModel model, FitReference reference, IReadOnlyList<FitStart> starts,
-        (int, int) solves, StageClock clock, CancellationToken cancel)
+        SheetDevice device, FitProblem problem, FitTask task, FitOptions options, FitEnd end, FitModel model, FitReference reference, double[] bars,
+        IReadOnlyList<FitStart> starts, (int, int) solves, CancellationToken cancel)
     {
         IReadOnlyList<FitParameter> q = problem.Parameters;
         SheetDevice fittedDevice = problem.DeviceAt(end.P);
@@ -221,7 +249,8 @@ public static class FitRun
         }
 
         FittedVoltage[] data = [.. problem.Data.Select((d, i) => new FittedVoltage(
-            d, problem.Measured.Circuits[d.Circuit], problem.Measured.Circuits[d.Circuit].Pairs[d.Pair], end.Values[i], reference.Bars[i], end.Weights[i]))];
+            d, problem.Measured.Circuits[d.Circuit], problem.Measured.Circuits[d.Circuit].Pairs[d.Pair], end.Values[i], bars[i], end.Weights[i]))];
+        double share = data.Max(d => d.NumericalError / d.Datum.Sigma);
         int free = Enumerable.Range(0, m).Count(j => q[j].PriorSigma is null) - directions.Count(d => !d.Determined);
         FitQuality quality = FitChecks.Of(data, Math.Max(0, free));
         return new FitResult
@@ -238,15 +267,15 @@ public static class FitRun
             Next = NextWiring.Of(model, problem, end.P, end.Jacobian, task.Sigma, end.Weights, scales, options.Suggest, cancel),
             Formulas = FormulaEstimate.Of(fittedDevice, problem.Measured, parameters),
             Starts = starts,
-            NumericalShare = reference.LargestShare,
+            NumericalShare = share,
             WantedShare = device.Fit!.NumericalShare,
             Robust = options.Robust,
             Converged = end.Converged,
             Steps = end.Steps,
             Solves = solves,
             Unknowns = (reference.Meshes.Coarse.Space.Size, reference.Meshes.Fine.Space.Size),
-            Warnings = FitWarnings.Of(device, parameters, directions, quality, reference.LargestShare, end, options),
-            Stages = clock.Times,
+            Warnings = FitWarnings.Of(device, parameters, directions, quality, share, end, options),
+            Stages = [],
         };
     }
 

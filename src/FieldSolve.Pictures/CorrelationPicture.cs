@@ -7,7 +7,8 @@ namespace FieldSolve.Pictures;
 /// <summary>The correlations of the fitted numbers as a square of fields; darker is stronger, and the sign stands in the field.</summary>
 internal static class CorrelationPicture
 {
-    private const int MostNumbers = 24, MostWithText = 16, Field = 38, Left = 150, Top = 40, Right = 20, Bottom = 120;
+    private const int MostNumbers = 24, MostWithText = 16, Field = 38, Top = 40, Right = 20;
+    private const double PerLetter = 8;
 
     private static readonly Color Plus = Color.FromHex("#0072B2"), Minus = Color.FromHex("#D55E00");
 
@@ -38,7 +39,7 @@ internal static class CorrelationPicture
                 box.LineWidth = 1;
                 if (i != j && n <= MostWithText)
                 {
-                    string text = Math.Round(100 * r).ToString("0", CultureInfo.InvariantCulture).Replace('-', '−');
+                    string text = ((int)Math.Round(100 * r)).ToString(CultureInfo.InvariantCulture).Replace('-', '−');
                     var label = plot.Add.Text(text, j + 0.5, y + 0.5);
                     label.LabelFontColor = Math.Abs(r) > 0.55 ? Colors.White : Look.Ink;
                     label.LabelFontSize = 12;
@@ -55,9 +56,11 @@ internal static class CorrelationPicture
         plot.Axes.Bottom.MajorTickStyle.Length = plot.Axes.Left.MajorTickStyle.Length = 0;
         plot.HideGrid();
         plot.Axes.SetLimits(0, n, 0, n);
-        plot.Layout.Fixed(new PixelPadding(Left, Right, Bottom, Top));
+        int letters = shown.Max(j => Look.Short(result.Parameters[j].Parameter.Label, 18).Length);
+        int left = (int)(24 + (PerLetter * letters)), bottom = (int)(24 + (0.77 * PerLetter * letters));
+        plot.Layout.Fixed(new PixelPadding(left, Right, bottom, Top));
         int field = Math.Max(Field, 120 / n);
-        return Figure.Of(plot, Left + Right + (n * field), Top + Bottom + (n * field))
+        return Figure.Of(plot, left + Right + (n * field), Top + bottom + (n * field))
             .WithKeyBelow([new("same way", Plus, 8, null, MarkerShape.None), new("opposite ways", Minus, 8, null, MarkerShape.None)], 24);
     }
 

@@ -65,7 +65,8 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     private SheetFrame Frame(string what) => SheetFrame.Around(
         device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
-    private static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
+    /// <summary>A colour bar at the right of a map.</summary>
+    public static void AddBar(Plot plot, IHasColorAxis image, string label, ITickGenerator? ticks)
     {
         ScottPlot.Panels.ColorBar bar = plot.Add.ColorBar(image);
         bar.Label = label;

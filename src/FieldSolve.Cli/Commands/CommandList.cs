@@ -12,5 +12,6 @@ internal static class CommandList
         ToleranceCommand.Create(),
         GatherCommand.Create(),
         FitCommand.Create(),
+        OverlayCommand.Create(),
     ];
 }

@@ -24,9 +24,14 @@ public static class VanDerPauw
             throw new ArgumentOutOfRangeException(nameof(second), second, "The resistance must be finite and greater than zero.");
         }
 
-        // Of resistances over their sum, x = (R1 + R2)/Rs: from ln 4/pi for equal ones down towards 0.
-        double sum = first + second, p = first / sum, q = second / sum;
-        double x = Brent.FindRoot(y => Math.Exp(-Math.PI * p * y) + Math.Exp(-Math.PI * q * y) - 1, 1e-9, 0.5, 1e-15, 200);
-        return sum / x;
+        // Of resistances over their sum, x = (R1 + R2)/Rs: ln 4/pi for equal ones, more for others.
+        double sum = first + second, p = first / sum, q = second / sum, most = 0.5;
+        double F(double y) => Math.Exp(-Math.PI * p * y) + Math.Exp(-Math.PI * q * y) - 1;
+        while (F(most) > 0)
+        {
+            most *= 2;
+        }
+
+        return sum / Brent.FindRoot(F, most / 4, most, 1e-15, 200);
     }
 }

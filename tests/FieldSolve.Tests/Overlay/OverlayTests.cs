@@ -60,7 +60,7 @@ public class OverlayTests
     public void A_map_of_another_mesh_is_registered_within_its_stated_uncertainty(MapQuantity quantity)
     {
         FieldMap map = Map(TestDrive.Device(Bar(1e-4)), "x");
-        double typical = quantity == MapQuantity.Potential ? map.Potential.Max() : 1e4, sigma = 0.005 * typical, turn = 6 * Math.PI / 180;
+        double typical = quantity == MapQuantity.Potential ? map.Potential.Max() : 1e4, sigma = (quantity == MapQuantity.Potential ? 0.005 : 0.05) * typical, turn = 6 * Math.PI / 180;
         MeasuredMap measured = Measure(map, quantity, 0.6e-6, 1.3e-6, -0.8e-6, turn, 1.7, 0.3 * typical, sigma, 5);
         OverlayResult result = OverlayRun.Execute(TestDrive.Device(Bar(2e-3)), measured, new OverlayOptions(), null, default);
         Assert.Equal("x", result.Map.Wiring);

@@ -13,6 +13,7 @@ internal static class BudgetPicture
     public static Figure? Draw(ToleranceResult result, string wiring)
     {
         var panels = new List<(Plot Plot, int Height)>();
+        bool second = false;
         foreach ((string pair, ReadingPart part) in new[] { ("across", ReadingPart.Odd), ("across", ReadingPart.Even), ("along", ReadingPart.Odd), ("source", ReadingPart.Odd) })
         {
             BudgetEntry[] entries =
@@ -21,6 +22,7 @@ internal static class BudgetPicture
             ];
             if (entries.Length > 0 && panels.Count < 3)
             {
+                second |= entries.Any(e => e.Order == 2);
                 panels.Add(Panel(entries, result.Statistics.First(s => s.Quantity == entries[0].Quantity)));
             }
         }
@@ -44,7 +46,7 @@ internal static class BudgetPicture
             new("first order: derivative times sigma", Look.Line(0), 8, null, MarkerShape.None),
             new("second order, where the first vanishes", Look.Line(4), 8, null, MarkerShape.None),
         ];
-        return new Figure(placed, width, y).WithKeyBelow([.. key.Take(result.Budget.Any(e => e.Order == 2 && e.Quantity.Wiring == wiring && e.Contribution != 0) ? 2 : 1)], Left);
+        return new Figure(placed, width, y).WithKeyBelow([.. key.Take(second ? 2 : 1)], Left);
     }
 
     private static (Plot Plot, int Height) Panel(BudgetEntry[] entries, SampleStatistics all)

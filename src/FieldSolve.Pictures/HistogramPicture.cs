@@ -80,7 +80,7 @@ internal static class HistogramPicture
         void Line(double at, float w, float[]? dash) =>
             plot.PlottableList.Add(new CurveLine([[new(scale.Factor * at, 0), new(scale.Factor * at, top)]]) { Style = new("", Look.Ink, w, dash, MarkerShape.None) });
         Line(s.Design, 1.6f, null);
-        foreach (Estimate p in s.Percentiles)
+        foreach (SampleEstimate p in s.Percentiles)
         {
             Line(p.Value, 1.2f, [6, 4]);
         }

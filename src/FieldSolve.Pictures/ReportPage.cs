@@ -12,7 +12,7 @@ namespace FieldSolve.Pictures;
 /// </summary>
 public static class ReportPage
 {
-    private const string Policy = "default-src 'none'; img-src data:; style-src 'unsafe-inline'; base-uri 'none'; form-action 'none'";
+    internal const string Policy = "default-src 'none'; img-src data:; style-src 'unsafe-inline'; base-uri 'none'; form-action 'none'";
 
     /// <summary>Writes the page.</summary>
     /// <param name="result">The drive.</param>
@@ -88,7 +88,7 @@ public static class ReportPage
         }
     }
 
-    private static string Style()
+    internal static string Style()
     {
         using Stream stream = Assembly.GetExecutingAssembly().GetManifestResourceStream("report.css")
             ?? throw new InvalidOperationException("The embedded style sheet report.css is missing from the assembly.");

@@ -47,7 +47,7 @@ internal static class SharePicture
 
     private static SheetFrame Panel(SheetDevice device, Wiring wiring, double[] shares, double most, double target)
     {
-        SheetFrame frame = SheetFrame.Around(device, $"{Look.Short(wiring.Name, 20)}: {SiScale.Number(100 * shares.Sum(), 3)} % by contacts", false, (0.26, 0.14), target);
+        SheetFrame frame = SheetFrame.Around(device, $"{Look.Short(wiring.Name, 20)}: {SiScale.Number(100 * shares.Sum(), 3)} % of the variance by contacts", false, (0.34, 0.14), target);
         IReadOnlyList<Point2[]> rim = SheetFrame.RimLoops(device.Domain);
         frame.Plot.PlottableList.Add(new SheetFill(rim, frame.Scale.Factor));
         frame.AddLines(rim, Look.Ink, 1.2f);

@@ -64,7 +64,7 @@ public static class ToleranceReport
         SampleStatistics[] own = [.. result.Statistics.Where(s => s.Quantity.Wiring == wiring.Name)];
         string Unit(SampleStatistics s) => s.Quantity.IsRatio ? "" : "V";
         string Text(SampleStatistics s, double v, int digits) => s.Quantity.IsRatio ? SiScale.Number(v, digits) : SiScale.Text(v, "V", digits);
-        string Of(SampleStatistics s, Estimate e, int digits) => s.Count < 2 ? "–" : $"{Text(s, e.Value, digits)} ({Text(s, e.Low, digits)} to {Text(s, e.High, digits)})";
+        string Of(SampleStatistics s, SampleEstimate e, int digits) => s.Count < 2 ? "–" : $"{Text(s, e.Value, digits)} ({Text(s, e.Low, digits)} to {Text(s, e.High, digits)})";
         page.Table(
             "As designed with its numerical error, then the scatter: first order with what a finer mesh would change of it, and the samples with 95 % intervals.",
             ["reading", "as designed", "sigma, first order", "mean", "sigma", "5 %", "50 %", "95 %"],

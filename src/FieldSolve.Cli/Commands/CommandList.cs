@@ -9,6 +9,9 @@ internal static class CommandList
     [
         CheckCommand.Create(),
         DriveCommand.Create(),
+        BandsCommand.Create(),
+        LockinCommand.Create(),
+        TurnCommand.Create(),
         ToleranceCommand.Create(),
         GatherCommand.Create(),
         FitCommand.Create(),

@@ -16,7 +16,7 @@ internal static class GatherCommand
         Argument<string[]> folders = new("DIR") { Description = "Folders of the shards, in any order.", Arity = ArgumentArity.OneOrMore };
         Option<string?> folder = SharedOptions.Out();
         folder.Description = "Folder for the joined results; made when missing. Default: <device>-tolerance in the current folder.";
-        Option<string?> device = new("--device") { Description = "The device file, where it no longer lies where the shards found it.", HelpName = "FILE" };
+        Option<string?> device = new("--device") { Description = "The device file, where it is not found from here by the name the shards used.", HelpName = "FILE" };
         Option<double?> explain = ToleranceText.Explain(), wanted = ToleranceText.Wanted();
         Option<bool> noPictures = new("--no-pictures") { Description = "No pictures and no report; tables and run.json only." };
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
@@ -48,6 +48,12 @@ internal static class GatherCommand
         }
 
         string path = choices.Device ?? gathered.Head.Device;
+        if (choices.Device is null && !File.Exists(path))
+        {
+            Console.Error.WriteLine($"fieldsolve: the device file '{path}' of the shards is not found from here; name it with --device FILE");
+            return ExitCode.WrongInput;
+        }
+
         if (DeviceLoading.Load(path) is not { } device)
         {
             return ExitCode.WrongInput;

@@ -79,13 +79,12 @@ internal static class ToleranceText
             text.Append('\n').Append(wiring).Append('\n');
             foreach (SampleStatistics s in result.Statistics.Where(s => s.Quantity.Wiring == wiring))
             {
-                string unit = s.Quantity.IsRatio ? "" : "V";
-                string sampled = s.Count > 1
-                    ? $"; sampled {Engineering.Text(s.Deviation.Value, unit, 4)} ({Engineering.Text(s.Deviation.Low, unit, 3)} to {Engineering.Text(s.Deviation.High, unit, 3)})"
-                    : "";
-                text.Append("  ").Append(s.Quantity.Label.PadRight(16))
-                    .Append(Engineering.Text(s.Design, unit, 6).PadRight(14))
-                    .Append($" 1 sigma: first order {Engineering.Text(s.FirstOrder, unit, 4)}{sampled}").Append('\n');
+                string Of(double v, int digits) => s.Quantity.IsRatio
+                    ? v.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture)
+                    : Engineering.Text(v, "V", digits);
+                string sampled = s.Count > 1 ? $"; sampled {Of(s.Deviation.Value, 4)} ({Of(s.Deviation.Low, 3)} to {Of(s.Deviation.High, 3)})" : "";
+                text.Append("  ").Append(s.Quantity.Label.PadRight(18)).Append(Of(s.Design, 6).PadRight(14))
+                    .Append($" 1 sigma: first order {Of(s.FirstOrder, 4)}{sampled}").Append('\n');
             }
 
             IEnumerable<string> largest = result.Budget

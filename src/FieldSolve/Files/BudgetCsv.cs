@@ -12,13 +12,13 @@ public static class BudgetCsv
     {
         ArgumentNullException.ThrowIfNull(result);
         StringBuilder text = new();
-        CsvLines.Add(
+        CurvesCsv.AddLine(
             text,
             ["wiring", "pair", "cause", "contact", "sigma", "unit", "dv_dx_V", "dv_V", "part", "order", "d2v_dx2_V", "dv_err_V", "current_A"]);
         foreach (BudgetEntry e in result.Budget)
         {
             double unit = e.Cause.UnitSize;
-            CsvLines.Add(text,
+            CurvesCsv.AddLine(text,
             [
                 e.Quantity.Wiring, e.Quantity.Pair, e.Cause.Kind.Key, e.Cause.Target.Name, Digits.Of(Rounded(e.Cause.Sigma / unit)), e.Cause.Unit,
                 Digits.Of(e.Slope * unit), Digits.Of(e.Contribution), e.Quantity.Part == ReadingPart.Odd ? "odd" : "even",

@@ -21,12 +21,12 @@ public static class CurvesCsv
         ArgumentNullException.ThrowIfNull(wirings);
         ArgumentNullException.ThrowIfNull(rows);
 
-        string[] pairs = [.. wirings.SelectMany(w => w.Extra).Select(p => p.Name).Distinct(StringComparer.Ordinal)];
+        string[] pairs = PairNames(wirings);
         StringBuilder text = new();
-        CsvLines.Add(text, Header(pairs));
+        AddLine(text, Header(pairs));
         foreach (CurveRow row in InOrder(rows, reversed ?? []))
         {
-            CsvLines.Add(text, Cells(row, pairs));
+            AddLine(text, Cells(row, pairs));
         }
 
         return text.ToString();
@@ -65,7 +65,12 @@ public static class CurvesCsv
         }
     }
 
-    private static IEnumerable<string> Header(string[] pairs) =>
+    /// <summary>Names of the extra pairs of all wirings, in order of first appearance.</summary>
+    internal static string[] PairNames(IEnumerable<Wiring> wirings) =>
+        [.. wirings.SelectMany(w => w.Extra).Select(p => p.Name).Distinct(StringComparer.Ordinal)];
+
+    /// <summary>Names of the columns.</summary>
+    internal static IEnumerable<string> Header(string[] pairs) =>
     [
         "wiring", "current_A",
         "v_along_V", "v_along_err_V", "v_across_V", "v_across_err_V",
@@ -75,7 +80,8 @@ public static class CurvesCsv
         "v_source_V", "v_source_err_V", "newton_steps", "status",
     ];
 
-    private static IEnumerable<string> Cells(CurveRow row, string[] pairs)
+    /// <summary>One row of the table.</summary>
+    internal static IEnumerable<string> Cells(CurveRow row, string[] pairs)
     {
         Reading? along = row.Of("along"), across = row.Of("across"), source = row.Of("source");
         return
@@ -89,4 +95,20 @@ public static class CurvesCsv
             row.NewtonSteps.ToString(CultureInfo.InvariantCulture), StatusText(row.Status),
         ];
     }
+
+    /// <summary>Adds a line with quotes where they are needed.</summary>
+    internal static void AddLine(StringBuilder text, IEnumerable<string> cells)
+    {
+        bool first = true;
+        foreach (string cell in cells)
+        {
+            text.Append(first ? "" : ",").Append(Quoted(cell));
+            first = false;
+        }
+
+        text.Append("\r\n");
+    }
+
+    private static string Quoted(string cell) =>
+        cell.AsSpan().IndexOfAny(",\"\r\n") < 0 ? cell : $"\"{cell.Replace("\"", "\"\"", StringComparison.Ordinal)}\"";
 }

@@ -17,8 +17,12 @@ public static class RunRecord
     /// <param name="result">The run.</param>
     /// <param name="command">Command word, for example "drive".</param>
     /// <param name="options">Options as the user gave them; written in the order of their names.</param>
+    /// <param name="more">Writes what only this command has, at the end; may be null.</param>
+    /// <param name="figures">Further figures of the command, by name; none when null.</param>
     /// <remarks>Numbers that are not finite are written as null.</remarks>
-    public static string Text(DriveResult result, string command, IReadOnlyDictionary<string, string> options)
+    public static string Text(
+        DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null,
+        IReadOnlyDictionary<string, double>? figures = null)
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(options);
@@ -37,9 +41,11 @@ public static class RunRecord
             WriteRows(json, result);
             WriteLevels(json, result);
             WriteSolver(json, result.Figures);
+            WriteFigures(json, figures);
             WriteStages(json, result.Stages);
             WriteTexts(json, "warnings", result.Warnings);
             WriteTexts(json, "cautions", result.Cautions);
+            more?.Invoke(json);
             json.WriteEndObject();
         }
 
@@ -49,8 +55,10 @@ public static class RunRecord
     /// <summary>Writes the record to a file as a whole. Parameters as in <see cref="Text"/>.</summary>
     /// <exception cref="IOException">The file cannot be written.</exception>
     /// <exception cref="UnauthorizedAccessException">The file may not be written.</exception>
-    public static void Write(string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options) =>
-        WholeFile.WriteText(path, Text(result, command, options));
+    public static void Write(
+        string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null,
+        IReadOnlyDictionary<string, double>? figures = null) =>
+        WholeFile.WriteText(path, Text(result, command, options, more, figures));
 
     private static void WriteDevice(Utf8JsonWriter json, DriveResult result)
     {
@@ -137,6 +145,22 @@ public static class RunRecord
         json.WriteEndObject();
     }
 
+    private static void WriteFigures(Utf8JsonWriter json, IReadOnlyDictionary<string, double>? figures)
+    {
+        if (figures is null)
+        {
+            return;
+        }
+
+        json.WriteStartObject("figures");
+        foreach ((string name, double value) in figures.OrderBy(f => f.Key, StringComparer.Ordinal))
+        {
+            WriteNumber(json, name, value);
+        }
+
+        json.WriteEndObject();
+    }
+
     private static void WriteStages(Utf8JsonWriter json, IReadOnlyList<StageTime> stages)
     {
         json.WriteStartArray("stages");
@@ -162,7 +186,7 @@ public static class RunRecord
         json.WriteEndArray();
     }
 
-    private static void WriteNumber(Utf8JsonWriter json, string name, double value)
+    internal static void WriteNumber(Utf8JsonWriter json, string name, double value)
     {
         if (double.IsFinite(value))
         {

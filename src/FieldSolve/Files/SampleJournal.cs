@@ -31,7 +31,7 @@ public sealed class JournalException : Exception
 /// <param name="Shards">Of how many.</param>
 /// <param name="Samples">Samples of the whole run.</param>
 /// <param name="Seed">Seed.</param>
-/// <param name="Device">Path of the device file.</param>
+/// <param name="Device">Path of the device file as it was given.</param>
 public sealed record JournalHead(string Design, int Shard, int Shards, int Samples, ulong Seed, string Device);
 
 /// <summary>
@@ -70,7 +70,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     /// <exception cref="IOException">The file cannot be read or written, or another run is writing it.</exception>
     public void Open(string design, int values)
     {
-        var head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, Path.GetFullPath(device));
+        var head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
         if (File.Exists(path))
         {
             (JournalHead there, known) = Read(path);

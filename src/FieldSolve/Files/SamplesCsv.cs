@@ -40,7 +40,7 @@ public static class SamplesCsv
         string[] columns = [.. result.Quantities.Select(Column).Distinct(StringComparer.Ordinal)];
         string[] wirings = [.. result.Device.Wirings.Select(w => w.Name)];
         StringBuilder text = new();
-        CsvLines.Add(text, ["sample", "wiring", "current_A", .. columns, "status", .. causes.Select(Column)]);
+        CurvesCsv.AddLine(text, ["sample", "wiring", "current_A", .. columns, "status", .. causes.Select(Column)]);
         yield return text.ToString();
         foreach (SampleResult sample in result.Samples)
         {
@@ -48,7 +48,7 @@ public static class SamplesCsv
             for (int w = 0; w < wirings.Length; w++)
             {
                 text.Clear();
-                CsvLines.Add(text,
+                CurvesCsv.AddLine(text,
                 [
                     sample.Index.ToString(CultureInfo.InvariantCulture), wirings[w], Digits.Of(result.Current),
                     .. columns.Select(c => Value(result, sample, w, c)), StatusText(sample.Status),

@@ -68,7 +68,7 @@ public static class ToleranceRecord
     private static JsonObject Statistics(SampleStatistics s)
     {
         string v = s.Quantity.IsRatio ? "" : "_V";
-        JsonNode? Of(Estimate e) => s.Count == 0 ? null : new JsonArray(e.Value, e.Low, e.High);
+        JsonNode? Of(SampleEstimate e) => s.Count == 0 ? null : new JsonArray(e.Value, e.Low, e.High);
         return new JsonObject
         {
             ["wiring"] = s.Quantity.Wiring,

@@ -60,6 +60,9 @@ internal static class OutlineGrowth
         return new(span.Loop, Outline.Wrapped(middle - (span.Length / 2), to.LoopLength(span.Loop)), span.Length);
     }
 
+    /// <summary>Where a point of the rim is on the grown outline.</summary>
+    public static Point2 Follow(RimPlace place, Outline from, Outline to) => to.At(place.Loop, Foot(place.Loop, place.S, from, to));
+
     /// <summary>Whether the rim turns at a place.</summary>
     public static bool IsCorner(Outline outline, int loop, double s)
     {

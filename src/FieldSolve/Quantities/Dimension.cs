@@ -9,7 +9,8 @@ namespace FieldSolve.Quantities;
 /// <param name="Second">Exponent of the second.</param>
 /// <param name="Ampere">Exponent of the ampere.</param>
 /// <param name="Radian">Exponent of the radian.</param>
-public readonly record struct Dimension(int Kilogram, int Metre, int Second, int Ampere, int Radian = 0)
+/// <param name="Kelvin">Exponent of the kelvin.</param>
+public readonly record struct Dimension(int Kilogram, int Metre, int Second, int Ampere, int Radian = 0, int Kelvin = 0)
 {
     /// <summary>A plain number.</summary>
     public static Dimension None => default;
@@ -71,6 +72,18 @@ public readonly record struct Dimension(int Kilogram, int Metre, int Second, int
     /// <summary>W/m².</summary>
     public static Dimension PowerDensity { get; } = Power / Length.ToPower(2);
 
+    /// <summary>J.</summary>
+    public static Dimension Energy { get; } = Power * Time;
+
+    /// <summary>K.</summary>
+    public static Dimension Temperature { get; } = new(0, 0, 0, 0, 0, 1);
+
+    /// <summary>m/s.</summary>
+    public static Dimension Velocity { get; } = Length / Time;
+
+    /// <summary>1/m.</summary>
+    public static Dimension WaveNumber { get; } = None / Length;
+
     private static readonly (Dimension Dimension, string Name, string Example)[] Known =
     [
         (None, "plain number", "1"),
@@ -94,6 +107,10 @@ public readonly record struct Dimension(int Kilogram, int Metre, int Second, int
         (CapacitancePerArea, "capacitance per area", "12 nF/cm^2"),
         (SheetCurrent, "sheet current density", "1000 A/m"),
         (PowerDensity, "power density", "1 mW/um^2"),
+        (Energy, "energy", "25 meV"),
+        (Temperature, "temperature", "4.2 K"),
+        (Velocity, "velocity", "5e5 m/s"),
+        (WaveNumber, "wave number", "0.5 1/nm"),
     ];
 
     /// <summary>Trade name without an article, for example "sheet conductance"; the base units where it has no name here.</summary>
@@ -123,19 +140,19 @@ public readonly record struct Dimension(int Kilogram, int Metre, int Second, int
 
     /// <summary>Dimension of a product.</summary>
     public static Dimension operator *(Dimension a, Dimension b) => new(
-        a.Kilogram + b.Kilogram, a.Metre + b.Metre, a.Second + b.Second, a.Ampere + b.Ampere, a.Radian + b.Radian);
+        a.Kilogram + b.Kilogram, a.Metre + b.Metre, a.Second + b.Second, a.Ampere + b.Ampere, a.Radian + b.Radian, a.Kelvin + b.Kelvin);
 
     /// <summary>Dimension of a quotient.</summary>
     public static Dimension operator /(Dimension a, Dimension b) => new(
-        a.Kilogram - b.Kilogram, a.Metre - b.Metre, a.Second - b.Second, a.Ampere - b.Ampere, a.Radian - b.Radian);
+        a.Kilogram - b.Kilogram, a.Metre - b.Metre, a.Second - b.Second, a.Ampere - b.Ampere, a.Radian - b.Radian, a.Kelvin - b.Kelvin);
 
     /// <summary>Dimension of an integer power.</summary>
     public Dimension ToPower(int power) =>
-        new(Kilogram * power, Metre * power, Second * power, Ampere * power, Radian * power);
+        new(Kilogram * power, Metre * power, Second * power, Ampere * power, Radian * power, Kelvin * power);
 
     private string BaseUnits => string.Join(' ', new (int Power, string Unit)[]
         {
-            (Kilogram, "kg"), (Metre, "m"), (Second, "s"), (Ampere, "A"), (Radian, "rad"),
+            (Kilogram, "kg"), (Metre, "m"), (Second, "s"), (Ampere, "A"), (Radian, "rad"), (Kelvin, "K"),
         }
         .Where(u => u.Power != 0)
         .Select(u => u.Power == 1 ? u.Unit : string.Create(System.Globalization.CultureInfo.InvariantCulture, $"{u.Unit}^{u.Power}")));

@@ -9,8 +9,12 @@ namespace FieldSolve.Quantities;
 /// <param name="Exponent">Power of ten to SI.</param>
 /// <param name="Degrees">Power of the degree in it; π/180 rad is no power of ten.</param>
 /// <param name="Dimension">What it measures.</param>
-public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimension)
+/// <param name="Electronvolts">Power of the electronvolt in it, which is no power of ten of the joule either.</param>
+public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimension, int Electronvolts = 0)
 {
+    /// <summary>Joules in an electronvolt; exact (SI, 2019).</summary>
+    private const double Electronvolt = 1.602176634e-19;
+
     private static readonly (string Symbol, Unit Unit)[] Symbols =
     [
         ("m", new(0, 0, Dimension.Length)),
@@ -22,6 +26,9 @@ public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimensio
         ("F", new(0, 0, Dimension.Capacitance)),
         ("T", new(0, 0, Dimension.FluxDensity)),
         ("Hz", new(0, 0, Dimension.Frequency)),
+        ("J", new(0, 0, Dimension.Energy)),
+        ("eV", new(0, 0, Dimension.Energy, 1)),
+        ("K", new(0, 0, Dimension.Temperature)),
         ("ohm", new(0, 0, Dimension.Resistance)),
         ("Ohm", new(0, 0, Dimension.Resistance)),
         ("\u03A9", new(0, 0, Dimension.Resistance)), // Greek capital omega
@@ -42,6 +49,7 @@ public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimensio
     [
         "nm", "um", "mm", "cm", "m", "nA", "uA", "mA", "A", "uV", "mV", "V", "kV", "uS", "mS", "S", "ohm", "kohm", "Mohm",
         "Hz", "kHz", "MHz", "pF", "nF", "uF", "F", "uW", "mW", "W", "s", "ms", "us", "mT", "T", "deg", "rad", "mrad",
+        "eV", "meV", "mK", "K", "ps", "fs",
     ];
 
     /// <summary>Reads a unit that stands alone, for example "um".</summary>
@@ -69,17 +77,18 @@ public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimensio
             : Of(text[..e], int.Parse(text.AsSpan(e + 1), NumberStyles.AllowLeadingSign, CultureInfo.InvariantCulture));
     }
 
-    /// <summary>The SI value of decimal digits times a power of ten, rounded once unless degrees come in.</summary>
+    /// <summary>The SI value of decimal digits times a power of ten, rounded once unless degrees or electronvolts come in.</summary>
     internal double Of(string mantissa, int exponent)
     {
         string text = string.Create(CultureInfo.InvariantCulture, $"{mantissa}E{exponent + Exponent}");
         double value = double.Parse(text, NumberStyles.Float, CultureInfo.InvariantCulture);
-        return Degrees switch
+        double angle = Degrees switch
         {
             0 => value,
             1 => value * Math.PI / 180,
             _ => value * Math.Pow(Math.PI / 180, Degrees),
         };
+        return Electronvolts == 0 ? angle : angle * Math.Pow(Electronvolt, Electronvolts);
     }
 
     /// <summary>Reads a unit from a place in a text to its end. No unit at all is a plain number.</summary>
@@ -91,6 +100,12 @@ public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimensio
         {
             int before = at;
             int sign = Separator(text, ref at, out bool bare);
+            if (first && bare && IsOneOver(text, at))
+            {
+                at++;
+                sign = Separator(text, ref at, out bare);
+            }
+
             if (at == text.Length)
             {
                 error = bare || before == at ? null : "a unit is missing at the end";
@@ -120,9 +135,15 @@ public readonly record struct Unit(int Exponent, int Degrees, Dimension Dimensio
             }
 
             power *= sign;
-            unit = new(unit.Exponent + (factor.Exponent * power), unit.Degrees + (factor.Degrees * power), unit.Dimension * factor.Dimension.ToPower(power));
+            unit = new(
+                unit.Exponent + (factor.Exponent * power), unit.Degrees + (factor.Degrees * power),
+                unit.Dimension * factor.Dimension.ToPower(power), unit.Electronvolts + (factor.Electronvolts * power));
         }
     }
+
+    /// <summary>The 1 of "1/nm".</summary>
+    private static bool IsOneOver(string text, int at) =>
+        at < text.Length && text[at] == '1' && text.AsSpan(at + 1).TrimStart() is ['/', ..];
 
     /// <summary>Passes white space with at most one sign in it; -1 for a quotient. <paramref name="bare"/>: white space alone.</summary>
     private static int Separator(string text, ref int at, out bool bare)

@@ -12,10 +12,10 @@ namespace FieldSolve.Readings;
 internal sealed class GoalError
 {
     // Contributions of both signs cancel; a bar that trusted the cancellation fully would now and then be far too small.
-    private const double Distrust = 0.1;
+    private const double Distrust = 0.2;
 
     // Where singular rates mix nothing is corrected there, and the two signs may belong to different rates.
-    private const double MixedDistrust = 0.2;
+    private const double MixedDistrust = 0.25;
 
     // However badly the correction did on the mesh before, it is not worse than this.
     private const double MostDoubt = 2;

@@ -21,4 +21,10 @@ public sealed record DriveOptions
 
     /// <summary>Also keep the maps that the pictures need (a few currents of each wiring). Default true.</summary>
     public bool ForPictures { get; init; } = true;
+
+    /// <summary>
+    /// The wirings are points of one curve: an even part need not be better known than a tenth of the curve's largest, where a row by itself would be measured
+    /// by a tenth of its own largest.
+    /// </summary>
+    internal bool OneCurve { get; init; }
 }

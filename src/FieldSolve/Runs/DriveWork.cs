@@ -94,17 +94,19 @@ internal sealed class DriveWork
                     continue;
                 }
 
-                double along = AlongScale(k);
-                rows.Add(maker.Make(plans[w], currents[k], plus, minus, along));
+                double along = AlongScale(k), curve = options.OneCurve ? EvenScale(k) : 0;
+                rows.Add(maker.Make(plans[w], currents[k], plus, minus, along, curve));
                 if (minus is not null)
                 {
-                    reversed.Add(maker.Make(plans[w], -currents[k], minus, plus, along));
+                    reversed.Add(maker.Make(plans[w], -currents[k], minus, plus, along, curve));
                 }
             }
         }
 
         return (rows, reversed);
     }
+
+    private double EvenScale(int k) => RowMaker.EvenScale(Enumerable.Range(0, plans.Length).Select(w => (plans[w], states[w, k, 0], states[w, k, 1])));
 
     private double AlongScale(int k)
     {
@@ -160,7 +162,8 @@ internal sealed class DriveWork
             || (options.ForPictures && (k == (last + 2) / 3 || k == ((2 * last) + 2) / 3));
     }
 
-    private static StateResult? Negated(StateResult? state) => state is null ? null : state with
+    /// <summary>The state of a linear sheet at the opposite current.</summary>
+    internal static StateResult? Negated(StateResult? state) => state is null ? null : state with
     {
         Outcome = default,
         Values = state.Values?.Select(v => -v).ToArray(),

@@ -16,8 +16,10 @@ namespace FieldSolve.Runs;
 /// <param name="Error">Its origin and size.</param>
 /// <param name="WeakDifference">Difference per ampere in the limit of small drive, ohm; 0 for an even part.</param>
 /// <param name="WeakError">Origin and size of the error per ampere in the limit of small drive, ohm; null for an even part.</param>
+/// <param name="Exponent">Per vertex of the domain: p of an error like h^p around it.</param>
 internal sealed record GoalMeasure(
-    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, GoalError? WeakError)
+    ReadingPlan Plan, int Pair, bool IsEven, double Current, double Value, double Difference, GoalError Error, double WeakDifference, GoalError? WeakError,
+    double[] Exponent)
 {
     /// <summary>Error that was asked for, V; set once all readings are known.</summary>
     public double Wanted { get; init; }
@@ -54,7 +56,7 @@ internal static class LevelMeasure
         {
             return [.. weakErrors.Select((e, k) => new GoalMeasure(
                 plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(current),
-                weak.Fine[k] - weak.Coarse[k], e))];
+                weak.Fine[k] - weak.Coarse[k], e, meshes.Exponent))];
         }
 
         (State? plus, State? minus) = (null, null);
@@ -77,6 +79,7 @@ internal static class LevelMeasure
             minus = bothSigns && plus is not null ? State.Solve(meshes, plan, -reached, cancel) : null;
         }
 
+        ErrorShares evenShares = meshes.EvenShares(plus.EvenExponent);
         var list = new List<GoalMeasure>();
         for (int k = 0; k < plan.Count; k++)
         {
@@ -84,16 +87,16 @@ internal static class LevelMeasure
                 plan, k, false, reached, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
                 GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])])
                     .Beside(weakErrors[k], reached),
-                weak.Fine[k] - weak.Coarse[k], weakErrors[k]));
+                weak.Fine[k] - weak.Coarse[k], weakErrors[k], meshes.Exponent));
             if (minus is not null && plan.HasEven[k])
             {
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
                 list.Add(new(
                     plan, k, true, reached, fine, fine - coarse,
                     GoalError.Of(
-                        meshes.Between, meshes.EvenShares, fine - coarse,
+                        meshes.Between, evenShares, fine - coarse,
                         [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])]),
-                    0, null));
+                    0, null, plus.EvenExponent));
             }
         }
 
@@ -101,7 +104,7 @@ internal static class LevelMeasure
     }
 
     // A coarse and a fine solution with the fine residual of the coarse one and the details of the adjoints.
-    private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details)
+    private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details, double[] EvenExponent)
     {
         // In the limit of small drive, for one ampere.
         public static State Weak(MeshPair meshes, ReadingPlan plan)
@@ -120,7 +123,7 @@ internal static class LevelMeasure
                 meshes.Between.Detail(meshes.Fine.Adjoint(j), detail);
                 return detail;
             })];
-            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details);
+            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, meshes.Exponent);
         }
 
         public static State? Solve(MeshPair meshes, ReadingPlan plan, double current, CancellationToken cancel)
@@ -150,7 +153,7 @@ internal static class LevelMeasure
             }
 
             return AdjointDetails(meshes, plan, fine, cancel) is { } details
-                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details)
+                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, EvenRates.Exponents(meshes, coarse))
                 : null;
         }
 

@@ -11,8 +11,12 @@ namespace FieldSolve.Runs;
 /// <summary>A mesh and its uniform split. Answers come from the split; the difference between the two is the evidence for their error.</summary>
 internal sealed class MeshPair
 {
-    // On the linear problems of benchmarks/accuracy.md the correction misses 1 to 15 % of itself.
-    private const double Doubt = 0.25;
+    // On the linear problems of benchmarks/accuracy.md the correction misses 1 to 15 % of itself. The triangles do not follow a strongly anisotropic sheet's
+    // stretch, so the rates are reached later there: at a ratio of 1000 it missed 40 %.
+    private const double Doubt = 0.15;
+    private const double DoubtPerDecade = 0.1;
+
+    private readonly Falloff[] kinds;  // per vertex of the domain
 
     private MeshPair(FieldLevel coarse, FieldLevel fine)
     {
@@ -20,12 +24,18 @@ internal sealed class MeshPair
         Fine = fine;
         Between = new Prolongation(coarse.Space, fine.Space);
         Domain domain = coarse.Space.Mesh.Domain;
-        Falloff[] kinds = KindsOf(domain);
+        kinds = KindsOf(domain);
         Exponent = Exponents(domain);
-        EvenExponent = EvenExponents(domain, Exponent, coarse.Equations.Law.AtZeroField);
         Vertex = DomainVertices(coarse.Space.Mesh);
         Shares = SharesOf(kinds, Exponent, true);
-        EvenShares = SharesOf(kinds, EvenExponent, false);
+    }
+
+    private MeshPair(MeshPair other, LabLaw law, CancellationToken cancel)
+    {
+        (Between, Exponent, Vertex, kinds) = (other.Between, other.Exponent, other.Vertex, other.kinds);
+        Coarse = other.Coarse.WithLaw(law, cancel);
+        Fine = other.Fine.WithLaw(law, cancel);
+        Shares = SharesOf(kinds, Exponent, true);
     }
 
     public FieldLevel Coarse { get; }
@@ -40,24 +50,25 @@ internal sealed class MeshPair
     /// <summary>Per vertex of the domain: the error of a reading from the triangles around it goes like their size to this power.</summary>
     public double[] Exponent { get; }
 
-    /// <summary>The same for an even part.</summary>
-    public double[] EvenExponent { get; }
-
     /// <summary>Rates of convergence of the readings.</summary>
     public ErrorShares Shares { get; }
 
-    /// <summary>Rates of convergence of the even parts.</summary>
-    public ErrorShares EvenShares { get; }
+    /// <summary>Rates of convergence of even parts.</summary>
+    /// <param name="exponent">As <see cref="Exponent"/>, for an even part.</param>
+    public ErrorShares EvenShares(double[] exponent) => SharesOf(kinds, exponent, false);
 
-    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
         FieldLevel? coarse = null, fine = null;
         Parallel.Invoke(
             new ParallelOptions { CancellationToken = cancel },
-            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel),
-            () => coarse = FieldLevel.Build(device, mesh, law, cancel));
+            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground),
+            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground));
         return new(coarse!, fine!);
     }
+
+    /// <summary>The same two meshes under another law.</summary>
+    public MeshPair WithLaw(LabLaw law, CancellationToken cancel) => new(this, law, cancel);
 
     private int[] DomainVertices(TriangleMesh mesh)
     {
@@ -117,21 +128,6 @@ internal sealed class MeshPair
         return exponent;
     }
 
-    // An even part is an integral over two fields and the adjoint's, r^(2x+y-3), so its error goes like h^(2x+y-1), with x the smaller exponent of the two
-    // that a Hall part makes. A guard or a field limit mends that very close to the point; the bar then errs on the safe side.
-    private static double[] EvenExponents(Domain domain, double[] exponent, Tensor2 atZero)
-    {
-        double hall = Math.Atan2(Math.Abs(atZero.Ab - atZero.Ba) / 2, Math.Sqrt(atZero.Aa * atZero.Bb));
-        double[] even = [.. exponent];
-        foreach (SingularPoint p in SingularPoints.Of(domain))
-        {
-            double smaller = p.Exponent * (1 - (2 * hall / Math.PI));
-            even[p.Vertex] = Math.Clamp((2 * p.Exponent) + smaller - 1, 0.25, exponent[p.Vertex]);
-        }
-
-        return even;
-    }
-
     private ErrorShares SharesOf(Falloff[] kinds, double[] exponent, bool singularIsKnown)
     {
         double[] share = new double[Vertex.Length];
@@ -142,6 +138,8 @@ internal sealed class MeshPair
             share[t] = kind[t] == Falloff.Smooth ? ErrorShares.Smooth : 1 / (Math.Pow(2, exponent[Vertex[t]]) - 1);
         }
 
-        return new(share, kind, singularIsKnown, Doubt);
+        Tensor2 tensor = Coarse.Equations.Law.AtZeroField;
+        double mean = (tensor.Aa + tensor.Bb) / 2, ratio = ((2 * mean) - tensor.SmallestSymmetricEigenvalue) / tensor.SmallestSymmetricEigenvalue;
+        return new(share, kind, singularIsKnown, Doubt + (DoubtPerDecade * Math.Log10(ratio)));
     }
 }

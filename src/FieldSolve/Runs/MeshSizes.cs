@@ -59,7 +59,7 @@ internal static class MeshSizes
     public static ISizeField Next(MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level, int mostTriangles)
     {
         TriangleMesh mesh = meshes.Coarse.Space.Mesh;
-        (double[] load, bool[] even) = Loads(mesh, goals);
+        (double[] load, double[][] exponent) = Loads(mesh, goals);
         double coreLoad = 0;
         int cores = 0;
         var regular = new List<double>();
@@ -84,7 +84,7 @@ internal static class MeshSizes
         {
             int vertex = meshes.Vertex[t];
             double factor = vertex >= 0
-                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / (even[t] ? meshes.EvenExponent : meshes.Exponent)[vertex]), 1e-6, 2)
+                ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / exponent[t][vertex]), 1e-6, 2)
                 : Math.Clamp(Math.Pow(equal / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
             double edge = EquilateralEdge(mesh, t);
 
@@ -108,11 +108,12 @@ internal static class MeshSizes
         return worst > 0 ? Math.Clamp(total / worst, 1, 20) : 1;
     }
 
-    // Per triangle, the largest share of a wanted error over all readings, and whether an even part has it.
-    private static (double[] Load, bool[] IsEven) Loads(TriangleMesh mesh, IReadOnlyList<GoalMeasure> goals)
+    // Per triangle, the largest share of a wanted error over all readings, and the exponents of that reading.
+    private static (double[] Load, double[][] Exponent) Loads(TriangleMesh mesh, IReadOnlyList<GoalMeasure> goals)
     {
         double[] load = new double[mesh.TriangleCount];
-        bool[] even = new bool[load.Length];
+        double[][] exponent = new double[load.Length][];
+        Array.Fill(exponent, goals[0].Exponent);
         foreach (GoalMeasure goal in goals)
         {
             for (int t = 0; t < load.Length; t++)
@@ -120,12 +121,12 @@ internal static class MeshSizes
                 double share = goal.Error.PerTriangle[t] / goal.Wanted;
                 if (share > load[t])
                 {
-                    (load[t], even[t]) = (share, goal.IsEven);
+                    (load[t], exponent[t]) = (share, goal.Exponent);
                 }
             }
         }
 
-        return (load, even);
+        return (load, exponent);
     }
 
     // The error per triangle goes like size^6 (density size^4 times area), so the cheapest mesh has equal errors. Find that

@@ -14,12 +14,12 @@ public sealed class FieldLevel
 {
     private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
 
-    private FieldLevel(FieldSpace space, LabLaw law, SparseAnalysis analysis)
+    private FieldLevel(SheetEquations equations, SparseAnalysis analysis)
     {
-        Space = space;
-        Equations = new SheetEquations(space, law);
+        Space = equations.Space;
+        Equations = equations;
         Analysis = analysis;
-        atZero = new(() => FactorAtZero(default));
+        atZero = new(FactorAtZero);
     }
 
     /// <summary>Nodes and unknowns.</summary>
@@ -35,30 +35,44 @@ public sealed class FieldLevel
     public SparseLu AtZero => atZero.Value.Factor;
 
     /// <summary>Sets up a mesh.</summary>
+    /// <param name="device">Gives the contacts.</param>
+    /// <param name="mesh">Triangles of the device's domain.</param>
+    /// <param name="law">In the lab frame.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <param name="ground">Contact whose metal is the zero of the potential.</param>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
     /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
-    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
-        FieldSpace space = FieldSpace.Build(device, mesh);
+        FieldSpace space = FieldSpace.Build(device, mesh, ground);
         (double[] x, double[] y) = space.Places();
-        var level = new FieldLevel(space, law, SparseAnalysis.Analyse(space.Pattern, x, y, cancel));
-        _ = level.AtZero;
-        cancel.ThrowIfCancellationRequested();
-        return level;
+        return AtRest(new SheetEquations(space, law), SparseAnalysis.Analyse(space.Pattern, x, y, cancel), cancel);
     }
+
+    /// <summary>The same mesh under another law: equations and factor at zero field are new, unknowns, geometry and ordering are shared.</summary>
+    /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
+    public FieldLevel WithLaw(LabLaw law, CancellationToken cancel) => AtRest(Equations.WithLaw(law), Analysis, cancel);
 
     /// <summary>The level of a moved mesh or another law: unknowns, pattern and ordering stay; its own factor is made when first asked for.</summary>
     /// <param name="device">Its contacts, ideal and resistive ones as before.</param>
     /// <param name="mesh">Same triangles as this level's mesh, vertices elsewhere; or this level's mesh.</param>
     /// <param name="law">The law.</param>
-    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(Space.Moved(mesh, device), law, Analysis);
+    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(new SheetEquations(Space.Moved(mesh, device), law), Analysis);
 
-    private (SparseLu Factor, double[] Values) FactorAtZero(CancellationToken cancel)
+    private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
+    {
+        var level = new FieldLevel(equations, analysis);
+        _ = level.AtZero;
+        cancel.ThrowIfCancellationRequested();
+        return level;
+    }
+
+    private (SparseLu Factor, double[] Values) FactorAtZero()
     {
         var factor = new SparseLu(Analysis);
         double[] values = new double[Space.Pattern.Count + 1];
         Equations.Jacobian(new double[Equations.Length], values);
-        factor.Factor(values.AsSpan(0, Space.Pattern.Count), cancel);
+        factor.Factor(values.AsSpan(0, Space.Pattern.Count));
         return (factor, values);
     }
 

@@ -31,6 +31,7 @@ public class OneWayFoldersTests
     [InlineData("Laws", "Quantities")]
     [InlineData("Device", "Geometry")]
     [InlineData("Device", "Laws")]
+    [InlineData("Bands", "Device")]
     [InlineData("Meshing", "Geometry")]
     [InlineData("Fields", "Meshing")]
     [InlineData("Fields", "Sparse")]

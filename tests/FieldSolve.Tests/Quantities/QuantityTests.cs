@@ -29,6 +29,14 @@ public class QuantityTests
     public static TheoryData<string, double, Dimension> Units => new()
     {
         { "1.5 mA", 1.5e-3, Dimension.Current },
+        { "2 eV", 2 * 1.602176634e-19, Dimension.Energy }, // exact, BIPM, The International System of Units, 2019
+        { "25 meV", 25e-3 * 1.602176634e-19, Dimension.Energy },
+        { "3 J", 3.0, Dimension.Energy },
+        { "4.2 K", 4.2, Dimension.Temperature },
+        { "50 mK", 0.05, Dimension.Temperature },
+        { "5e5 m/s", 5e5, Dimension.Velocity },
+        { "0.5 1/nm", 5e8, Dimension.WaveNumber },
+        { "0.5 / nm", 5e8, Dimension.WaveNumber },
         { "500 uA", 500e-6, Dimension.Current },
         { "120 ohm um", 120e-6, Dimension.LineResistance },
         { "120 \u03A9\u00B7\u00B5m", 120e-6, Dimension.LineResistance },
@@ -89,7 +97,7 @@ public class QuantityTests
     [InlineData("5 m^0", 6, "small integer")]
     [InlineData("5 m2", 4, "'2' is not expected")]
     [InlineData("5 6 um", 3, "'6' is not expected")]
-    [InlineData("2 1/m", 3, "'1' is not expected")]
+    [InlineData("2 1 m", 3, "'1' is not expected")]
     [InlineData("5 (um)", 3, "'(' is not expected")]
     [InlineData("5 A//m", 5, "'/' is not expected")]
     public void What_is_no_quantity(string text, int column, string fragment)

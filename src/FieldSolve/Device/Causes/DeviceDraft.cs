@@ -9,6 +9,7 @@ public sealed class DeviceDraft(SheetDevice device)
 {
     private readonly Dictionary<string, double> law = new(StringComparer.Ordinal);
     private readonly double[] resistance = [.. device.Contacts.Select(c => c.Kind == ContactKind.Edge ? c.LineResistance : c.Resistivity)];
+    private readonly Tip[] tips = [.. device.Tips];
     private bool moved;
 
     /// <summary>The device as designed.</summary>
@@ -30,7 +31,7 @@ public sealed class DeviceDraft(SheetDevice device)
         moved = true;
     }
 
-    /// <summary>Moves the rim; edge contacts follow.</summary>
+    /// <summary>Moves the rim; edge contacts and tips on the rim follow.</summary>
     /// <exception cref="LayoutException">The rim cannot be moved so far.</exception>
     internal void Grow(double by)
     {
@@ -41,6 +42,15 @@ public sealed class DeviceDraft(SheetDevice device)
             if (Contacts[c].Span is { } span)
             {
                 Contacts[c] = Contacts[c] with { Span = OutlineGrowth.Follow(span, was, Live) };
+            }
+        }
+
+        for (int k = 0; k < tips.Length; k++)
+        {
+            RimPlace place = was.Nearest(tips[k].At);
+            if (place.Distance <= was.Tolerance)
+            {
+                tips[k] = tips[k] with { At = OutlineGrowth.Follow(place, was, Live) };
             }
         }
 
@@ -58,7 +68,7 @@ public sealed class DeviceDraft(SheetDevice device)
     /// <exception cref="LawException">A parameter of the law is out of range.</exception>
     public SheetDevice Build()
     {
-        SheetDevice built = moved ? new SheetLayout(Live, Contacts).Apply(Designed) : Designed;
+        SheetDevice built = moved ? new SheetLayout(Live, Contacts).Apply(Designed with { Tips = tips }) : Designed;
         built = built with
         {
             Axis = Axis,

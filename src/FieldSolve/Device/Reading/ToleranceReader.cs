@@ -74,6 +74,7 @@ internal sealed class ToleranceReader(Section root, ContactReader contacts)
 
         var causes = new List<SheetCause>();
         var notes = new List<string>();
+        var left = new List<(CauseKind Kind, string Why, string Name)>();
         foreach (CauseKind kind in CauseCatalogue.Of(CauseScope.Contact))
         {
             for (int c = 0; c < device.Contacts.Count; c++)
@@ -96,13 +97,18 @@ internal sealed class ToleranceReader(Section root, ContactReader contacts)
                 }
                 else
                 {
-                    notes.Add($"'{kind.Key}' of contact '{target.Name}' is left out: the contact {why}.");
+                    left.Add((kind, why, target.Name));
                 }
             }
         }
 
+        foreach (var g in left.GroupBy(l => (l.Name, l.Why)).GroupBy(l => (l.Key.Why, Keys: string.Join(" and ", l.Select(x => $"'{x.Kind.Key}'")))))
+        {
+            notes.Add($"{g.Key.Keys} of {(g.Count() == 1 ? "contact" : "contacts")} {string.Join(", ", g.Select(c => $"'{c.Key.Name}'"))} left out: the contact {g.Key.Why}.");
+        }
+
         // Given for all contacts, befalling none.
-        foreach (Given g in given.Where(x => x.Kind.Scope == CauseScope.Contact && x.Contact is null && !causes.Any(c => c.Kind == x.Kind) && x.Sigma > 0))
+        foreach (Given g in given.Where(x => x.Kind.Scope == CauseScope.Contact && x.Contact is null && !causes.Any(c => c.Kind == x.Kind) && !left.Any(l => l.Kind == x.Kind) && x.Sigma > 0))
         {
             notes.Add($"'{g.Kind.Key}' befalls no contact of this device.");
         }

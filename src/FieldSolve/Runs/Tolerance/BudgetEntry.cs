@@ -73,6 +73,12 @@ internal static class Budget
 
                 double? second = Vanishes(q, c) && curvature[c] is { } found ? found[q] : null;
                 double contribution = second is { } d ? d * sigma * sigma / 2 : slope * sigma;
+                if (second is not null)
+                {
+                    // A difference of solves, each good to about its residual.
+                    error = Math.Max(error, 2 * SampleSolver.RelativeResidual * (model.Quantities[q].IsRatio ? 1 : along));
+                }
+
                 own.Add((Math.Abs(contribution), c, new(model.Quantities[q], model.Causes[c], slope, second, contribution, error)));
             }
 

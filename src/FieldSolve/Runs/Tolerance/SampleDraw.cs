@@ -18,11 +18,11 @@ internal sealed class SampleDraw(IReadOnlyList<SheetCause> causes, ulong seed)
     {
         (int batch, int row) = (sample / Batch, sample % Batch);
         double[] x = new double[causes.Count];
+        Span<int> slice = stackalloc int[Batch];
+        Span<double> within = stackalloc double[Batch];
         for (int c = 0; c < x.Length; c++)
         {
             var random = new SplitMix(seed, (ulong)batch, (ulong)c);
-            Span<int> slice = stackalloc int[Batch];
-            Span<double> within = stackalloc double[Batch];
             for (int i = 0; i < Batch; i++)
             {
                 slice[i] = i;

@@ -13,8 +13,8 @@ namespace FieldSolve.Runs;
 /// </summary>
 internal sealed class SampleSolver(ToleranceModel model)
 {
-    // Residual over current; a reading is then off by about this part of itself.
-    private const double RelativeResidual = 1e-9;
+    /// <summary>Residual over current at which a sample ends; a reading is then off by about this part of itself.</summary>
+    public const double RelativeResidual = 1e-9;
 
     private readonly SheetCause[] order = [.. model.Causes.OrderBy(c => c.Kind.Scope == CauseScope.Sheet ? 0 : 1)];
     private readonly int[] place = [.. model.Causes.Select((c, i) => (c, i)).OrderBy(p => p.c.Kind.Scope == CauseScope.Sheet ? 0 : 1).Select(p => p.i)];
@@ -106,17 +106,18 @@ internal sealed class SampleSolver(ToleranceModel model)
         MeshRefinement refinement = MeshRefinement.Run(
             device, new LabLaw(device.Law, device.Axis), plans, model.Current, true, _ => { }, new StageClock(), cancel);
         var peaks = new PeakFinder(refinement.Meshes.Fine.Equations);
+        var maker = new RowMaker(device, refinement.Goals);
         double[][][] readings = new double[plans.Length][][];
         for (int w = 0; w < plans.Length; w++)
         {
-            double[]? plus = new DriveTask(refinement.Meshes, plans[w], peaks).Solve(model.Current, null, cancel).Values;
-            double[]? minus = plus is null ? null : new DriveTask(refinement.Meshes, plans[w], peaks).Solve(-model.Current, null, cancel).Values;
-            if (plus is null || minus is null)
+            StateResult plus = new DriveTask(refinement.Meshes, plans[w], peaks).Solve(model.Current, null, cancel);
+            StateResult minus = new DriveTask(refinement.Meshes, plans[w], peaks).Solve(-model.Current, null, cancel);
+            if (plus.Values is null || minus.Values is null)
             {
                 return new(index, SampleStatus.NotConverged, []);
             }
 
-            readings[w] = [plus, minus];
+            readings[w] = ToleranceModel.BothSigns(maker.Make(plans[w], model.Current, plus, minus, 0));
         }
 
         return new(index, SampleStatus.Remeshed, Values(readings));

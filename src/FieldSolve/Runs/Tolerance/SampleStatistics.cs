@@ -4,7 +4,7 @@ namespace FieldSolve.Runs;
 /// <param name="Value">Estimate.</param>
 /// <param name="Low">Lower end.</param>
 /// <param name="High">Upper end.</param>
-public readonly record struct Estimate(double Value, double Low, double High);
+public readonly record struct SampleEstimate(double Value, double Low, double High);
 
 /// <summary>
 /// What samples say about one quantity. The intervals are those of independent samples, which Latin hypercubes beat as a rule; that of the standard
@@ -21,7 +21,7 @@ public readonly record struct Estimate(double Value, double Low, double High);
 /// <param name="NumericalError">Numerical error of the value as designed, which all samples share.</param>
 /// <param name="SpreadError">Numerical error of the spread: what the finer mesh changes of the first derivatives, summed over the causes.</param>
 public sealed record SampleStatistics(
-    ToleranceQuantity Quantity, double Design, int Count, Estimate Mean, Estimate Deviation, IReadOnlyList<Estimate> Percentiles, double FirstOrder,
+    ToleranceQuantity Quantity, double Design, int Count, SampleEstimate Mean, SampleEstimate Deviation, IReadOnlyList<SampleEstimate> Percentiles, double FirstOrder,
     double NumericalError, double SpreadError)
 {
     private const double Normal95 = 1.959963984540054;
@@ -62,10 +62,10 @@ public sealed record SampleStatistics(
         return new(
             model.Quantities[q], centre, n, new(centre + mean, centre + mean - ofMean, centre + mean + ofMean),
             new(deviation, Math.Max(0, deviation - ofDeviation), deviation + ofDeviation),
-            [.. new[] { 0.05, 0.5, 0.95 }.Select(p => Percentile(sorted, p))], Math.Sqrt(first), model.Errors[q], Math.Sqrt(spread));
+            [Percentile(sorted, 0.05), Percentile(sorted, 0.5), Percentile(sorted, 0.95)], Math.Sqrt(first), model.Errors[q], Math.Sqrt(spread));
     }
 
-    private static Estimate Percentile(double[] sorted, double p)
+    private static SampleEstimate Percentile(double[] sorted, double p)
     {
         double at = p * (sorted.Length - 1), half = Normal95 * Math.Sqrt(sorted.Length * p * (1 - p));
         double At(double rank)

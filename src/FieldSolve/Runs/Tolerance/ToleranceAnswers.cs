@@ -16,12 +16,15 @@ internal static class ToleranceAnswers
         for (int w = 0; w < model.States.Count; w++)
         {
             DesignState s = model.States[w];
+            string name = model.States.Count > 1 ? $"Wiring '{s.Plan.Wiring.Name}': " : "";
             if (s.Plan.Wiring.Across is null)
             {
+                string pair = s.Plan.Wiring.Along is null ? "source" : "along";
+                int read = Find(model, w, pair, ReadingPart.Odd);
+                list.Add(name + PickUp(model, statistics[read], Entries(budget, model.Quantities[read]), 0));
                 continue;
             }
 
-            string name = model.States.Count > 1 ? $"Wiring '{s.Plan.Wiring.Name}': " : "";
             int odd = Find(model, w, "across", ReadingPart.Odd), even = Find(model, w, "across", ReadingPart.Even);
             double along = s.Row.Of("along")?.Odd ?? 0;
             list.Add(name + PickUp(model, statistics[odd], Entries(budget, model.Quantities[odd]), along));
@@ -50,17 +53,17 @@ internal static class ToleranceAnswers
     private static string PickUp(ToleranceModel model, SampleStatistics s, IReadOnlyList<BudgetEntry> entries, double along)
     {
         double spread = Spread(s);
-        string share = along != 0 ? Text($", {100 * spread / Math.Abs(along):G2} % of the along voltage") : "";
+        string share = along != 0 ? Text($", {Percent(spread / Math.Abs(along))} of the along voltage") : "";
         BudgetEntry[] linear = [.. entries.Where(e => e.Order == 1)];
         double all = linear.Sum(e => e.Contribution * e.Contribution);
         if (all == 0)
         {
-            return Text($"the across odd part ({Volts(s.Design)}) is untouched by these causes in first order.");
+            return Text($"the {s.Quantity.Label} part ({Volts(s.Design)}) is untouched by these causes in first order.");
         }
 
         BudgetEntry first = linear[0];
-        string text = Text($"the across odd part is {Volts(s.Design)} as designed and scatters by {Volts(spread)} (1 sigma){share}. Most of it comes from {first.Cause.Label} ({100 * first.Contribution * first.Contribution / all:G2} % of the variance; {Volts(Math.Abs(first.Contribution))} for {Size(first.Cause, first.Cause.Sigma)}).");
-        BudgetEntry[] placed = [.. linear.Where(e => e.Cause.Kind.Effect == CauseEffect.Motion)];
+        string text = Text($"the {s.Quantity.Label} part is {Volts(s.Design)} as designed and scatters by {Volts(spread)} (1 sigma){share}. Most of it comes from {first.Cause.Label} ({Percent(first.Contribution * first.Contribution / all)} of the variance; {Volts(Math.Abs(first.Contribution))} for {Size(first.Cause, first.Cause.Sigma)}).");
+        BudgetEntry[] placed = [.. linear.Where(IsPlacement)];
         double byPlace = Math.Sqrt(placed.Sum(e => e.Contribution * e.Contribution));
         if (byPlace == 0)
         {
@@ -69,9 +72,9 @@ internal static class ToleranceAnswers
 
         // One size when all placements share one, as in 50 nm for every contact.
         double[] sizes = [.. placed.Where(e => e.Cause.Kind is PositionCause or PadShiftCause or LayerShiftCause).Select(e => e.Cause.Sigma).Distinct()];
-        string placement = sizes.Length == 1 ? $"{Scaled(sizes[0], "m")} placement" : "the placement";
-        string part = along != 0 ? Text($" is pick-up of {100 * byPlace / Math.Abs(along):G2} % of along for {placement}") : $" comes from {placement}";
-        string who = Dominant(model, placed, byPlace * byPlace) is { } c ? Text($"; contact '{c.Name}' has the largest part of that ({100 * c.Share:G2} % of the variance)") : "";
+        string placement = sizes.Length == 1 ? $"{Scaled(sizes[0], "m")} placement" : "the stated placement";
+        string part = along != 0 ? Text($" is pick-up of {Percent(byPlace / Math.Abs(along))} of along for {placement}") : $" comes from {placement}";
+        string who = Dominant(model, placed, byPlace * byPlace) is { } c ? Text($"; contact '{c.Name}' has the largest part of that ({Percent(c.Share)} of the variance)") : "";
         return Text($"{text} {Volts(byPlace)} of it{part}{who}.");
     }
 
@@ -86,7 +89,7 @@ internal static class ToleranceAnswers
     private static string? Placement(ToleranceModel model, SampleStatistics s, IReadOnlyList<BudgetEntry> entries, double along, double? wanted)
     {
         double level = wanted ?? (WantedShare * Math.Abs(along));
-        BudgetEntry[] moving = [.. entries.Where(e => e.Order == 1 && e.Cause.Kind.Effect == CauseEffect.Motion)];
+        BudgetEntry[] moving = [.. entries.Where(e => e.Order == 1 && IsPlacement(e))];
         double byPlace = Math.Sqrt(moving.Sum(e => e.Contribution * e.Contribution));
         double others = Math.Sqrt(Math.Max(0, (s.FirstOrder * s.FirstOrder) - (byPlace * byPlace)));
         if (!(level > 0) || byPlace == 0)
@@ -118,7 +121,7 @@ internal static class ToleranceAnswers
         string verdict = share < 0.1 ? "these causes cannot fake it"
             : share < 1 ? "these causes change it, but do not make it up"
             : "these causes alone could fake it";
-        string part = double.IsFinite(share) ? Text($", {100 * share:G2} % of it") : "";
+        string part = double.IsFinite(share) ? Text($", {Percent(share)} of it") : "";
         return Text($"the across even part is {Volts(s.Design)} as designed{noise} and scatters by {Volts(spread)} (1 sigma){part}: {verdict}.{largest}");
     }
 
@@ -134,6 +137,15 @@ internal static class ToleranceAnswers
         double sigmas = Math.Abs(gap) / s.FirstOrder;
         IEnumerable<string> named = linear.Take(3).Select(e => $"{e.Cause.Label} off by {Size(e.Cause, gap / e.Slope)}");
         return Text($"an across voltage of {Volts(voltage)} lies {Volts(gap)} from the {Volts(s.Design)} as designed. One cause alone would explain it: {string.Join("; or ", named)} (first order). With all causes at once it takes {sigmas:G2} times the stated tolerances{(sigmas <= 2 ? ", which is likely enough to be misalignment" : sigmas > 5 ? ", so misalignment does not explain it" : "")}.");
+    }
+
+    private static bool IsPlacement(BudgetEntry e) => e.Cause.Kind.Effect == CauseEffect.Motion && e.Cause.Kind.Scope != CauseScope.Sheet;
+
+    // Two digits, without a power of ten.
+    private static string Percent(double share)
+    {
+        double p = 100 * share;
+        return Text($"{(p >= 9.95 ? p.ToString("F0", CultureInfo.InvariantCulture) : p.ToString("G2", CultureInfo.InvariantCulture))} %");
     }
 
     private static int Find(ToleranceModel model, int wiring, string pair, ReadingPart part) => model.Quantities.ToList()

@@ -22,7 +22,7 @@ internal sealed class DesignState
     /// <summary>Readings on the coarse mesh at +I and -I, V.</summary>
     public required double[][] CoarseValues { get; init; }
 
-    /// <summary>Readings on the fine mesh at +I and -I, V.</summary>
+    /// <summary>Readings at +I and -I, from the fine mesh and with what it is known to lack, V.</summary>
     public required double[][] FineValues { get; init; }
 
     /// <summary>Sensitivities on the coarse mesh.</summary>
@@ -101,7 +101,7 @@ internal sealed class ToleranceModel
         MeshRefinement refinement = MeshRefinement.Run(device, law, plans, current, true, tell, clock, cancel);
         tell("solving the device as designed");
         var maker = new RowMaker(device, refinement.Goals);
-        DesignState[] states = clock.Time("design", () => SolveStates(refinement.Meshes, plans, maker, current, device.Law.IsLinear, cancel));
+        DesignState[] states = clock.Time("design", () => SolveStates(refinement.Meshes, plans, maker, current, cancel));
         var bare = new ToleranceModel(device, causes, refinement, current)
         {
             States = states,
@@ -117,7 +117,7 @@ internal sealed class ToleranceModel
     }
 
     private static DesignState[] SolveStates(
-        MeshPair meshes, ReadingPlan[] plans, RowMaker maker, double current, bool linear, CancellationToken cancel)
+        MeshPair meshes, ReadingPlan[] plans, RowMaker maker, double current, CancellationToken cancel)
     {
         var peaks = new PeakFinder(meshes.Fine.Equations);
         var solved = new (StateResult Result, double[] Fine, double[] Coarse)?[plans.Length, 2];
@@ -153,18 +153,26 @@ internal sealed class ToleranceModel
             FieldLevel level = fine ? meshes.Fine : meshes.Coarse;
             sensitivity[w, sign, fine ? 1 : 0] = StateSensitivity.Of(level, fine ? uFine : uCoarse, plans[w].Vectors(level), cancel);
         });
-        return [.. plans.Select((plan, w) => new DesignState
+        return [.. plans.Select((plan, w) =>
         {
-            Plan = plan,
-            CoarseU = [solved[w, 0]!.Value.Coarse, solved[w, 1]!.Value.Coarse],
-            CoarseFactor = [sensitivity[w, 0, 0].Factor, sensitivity[w, 1, 0].Factor],
-            CoarseValues = [plan.Read(meshes.Coarse, solved[w, 0]!.Value.Coarse), plan.Read(meshes.Coarse, solved[w, 1]!.Value.Coarse)],
-            FineValues = [solved[w, 0]!.Value.Result.Values!, solved[w, 1]!.Value.Result.Values!],
-            Coarse = [sensitivity[w, 0, 0], sensitivity[w, 1, 0]],
-            Fine = [sensitivity[w, 0, 1], sensitivity[w, 1, 1]],
-            Row = maker.Make(plan, current, solved[w, 0]!.Value.Result, solved[w, 1]!.Value.Result, along),
+            CurveRow row = maker.Make(plan, current, solved[w, 0]!.Value.Result, solved[w, 1]!.Value.Result, along);
+            return new DesignState
+            {
+                Plan = plan,
+                CoarseU = [solved[w, 0]!.Value.Coarse, solved[w, 1]!.Value.Coarse],
+                CoarseFactor = [sensitivity[w, 0, 0].Factor, sensitivity[w, 1, 0].Factor],
+                CoarseValues = [plan.Read(meshes.Coarse, solved[w, 0]!.Value.Coarse), plan.Read(meshes.Coarse, solved[w, 1]!.Value.Coarse)],
+                FineValues = BothSigns(row),
+                Coarse = [sensitivity[w, 0, 0], sensitivity[w, 1, 0]],
+                Fine = [sensitivity[w, 0, 1], sensitivity[w, 1, 1]],
+                Row = row,
+            };
         })];
     }
+
+    /// <summary>Readings of a row at +I and -I, with what the mesh is known to lack.</summary>
+    internal static double[][] BothSigns(CurveRow row) =>
+        [[.. row.Readings.Select(r => r.Odd!.Value + r.Even!.Value)], [.. row.Readings.Select(r => r.Even!.Value - r.Odd!.Value)]];
 
     private ToleranceModel WithSlopes()
     {

@@ -1,7 +1,7 @@
 using System.Collections.Concurrent;
 using System.Globalization;
-using System.Security.Cryptography;
 using System.Runtime.InteropServices;
+using System.Security.Cryptography;
 using FieldSolve.Device;
 using FieldSolve.Readings;
 

@@ -15,7 +15,7 @@ public static class FitCurvesCsv
         SheetDevice device = result.Device;
         string Name(Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;
         StringBuilder text = new();
-        CsvLines.Add(
+        CurvesCsv.AddLine(
             text,
             [
                 "wiring", "pair", "source", "drain", "plus", "minus", "current_A", "current_rms_A", "harmonic", "value_V", "sigma_V", "model_V", "model_err_V",
@@ -23,7 +23,7 @@ public static class FitCurvesCsv
             ]);
         foreach (FittedVoltage d in result.Data)
         {
-            CsvLines.Add(text,
+            CurvesCsv.AddLine(text,
             [
                 d.Circuit.Wiring.Name, d.Pair.Name, device.Contacts[d.Circuit.Wiring.Source].Name, device.Contacts[d.Circuit.Wiring.Drain].Name,
                 Name(d.Pair.Plus), Name(d.Pair.Minus),

@@ -40,7 +40,7 @@ public static class RunRecord
             WriteMesh(json, result);
             WriteRows(json, result);
             WriteLevels(json, result);
-            WriteSolver(json, result.Figures);
+            WriteSolver(json, result.Figures, result.Points);
             WriteFigures(json, figures);
             WriteStages(json, result.Stages);
             WriteTexts(json, "warnings", result.Warnings);
@@ -134,7 +134,7 @@ public static class RunRecord
         json.WriteEndArray();
     }
 
-    private static void WriteSolver(Utf8JsonWriter json, SolverFigures figures)
+    private static void WriteSolver(Utf8JsonWriter json, SolverFigures figures, IReadOnlyList<PointWork> points)
     {
         json.WriteStartObject("solver");
         json.WriteNumber("factor_nonzeros", figures.FactorNonZeros);
@@ -142,6 +142,18 @@ public static class RunRecord
         json.WriteNumber("solves", figures.Solves);
         json.WriteNumber("newton_steps", figures.NewtonSteps);
         WriteNumber(json, "largest_residual", figures.LargestResidual);
+        json.WriteStartArray("points");
+        foreach (PointWork point in points)
+        {
+            json.WriteStartObject();
+            json.WriteString("wiring", point.Wiring);
+            WriteNumber(json, "current_A", point.Current);
+            json.WriteNumber("factorisations", point.Factorisations);
+            json.WriteNumber("solves", point.Solves);
+            json.WriteEndObject();
+        }
+
+        json.WriteEndArray();
         json.WriteEndObject();
     }
 

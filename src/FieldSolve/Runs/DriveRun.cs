@@ -57,8 +57,9 @@ public static class DriveRun
             Cautions = Cautions.Of(device, [.. rows, .. reversed]),
             Warnings = DriveWarnings.Of(rows, work.Refusals),
             Figures = new(
-                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
+                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.AtZero.NonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),
+            Points = work.Points,
             Stages = clock.Times,
             Cancelled = cancelled,
         };

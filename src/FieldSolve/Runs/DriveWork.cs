@@ -50,6 +50,28 @@ internal sealed class DriveWork
         }
     }
 
+    /// <summary>Work per wiring and current; of a linear law the sign that was solved.</summary>
+    public IReadOnlyList<PointWork> Points
+    {
+        get
+        {
+            var points = new List<PointWork>();
+            for (int w = 0; w < plans.Length; w++)
+            {
+                for (int at = 0; at < 2 * currents.Count; at++)
+                {
+                    if (states[w, at / 2, at % 2] is { } s)
+                    {
+                        double current = at % 2 == 0 ? currents[at / 2] : -currents[at / 2];
+                        points.Add(new(plans[w].Wiring.Name, current, s.Outcome.Factorisations, s.Outcome.Solves));
+                    }
+                }
+            }
+
+            return points;
+        }
+    }
+
     public double LargestResidual => states.Cast<StateResult?>().Where(s => s?.Values is not null).Select(s => s!.Outcome.RelativeResidual)
         .DefaultIfEmpty().Max();
 
@@ -125,6 +147,8 @@ internal sealed class DriveWork
     private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)
     {
         var task = new DriveTask(meshes, plans[w], peaks);
+        double largest = MeshRefinement.Largest(currents);
+        task.Know(sign == 0 ? largest : -largest);
         double failedAt = double.PositiveInfinity;
         for (int k = 0; k < currents.Count; k++)
         {

@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Geometry;
@@ -17,6 +18,7 @@ internal sealed class MeshPair
     private const double DoubtPerDecade = 0.1;
 
     private readonly Falloff[] kinds;  // per vertex of the domain
+    private readonly ConcurrentDictionary<(ReadingPlan, double), (double[] Coarse, double[] Fine)> known = new();
 
     private MeshPair(FieldLevel coarse, FieldLevel fine)
     {
@@ -56,6 +58,13 @@ internal sealed class MeshPair
     /// <summary>Rates of convergence of even parts.</summary>
     /// <param name="exponent">As <see cref="Exponent"/>, for an even part.</param>
     public ErrorShares EvenShares(double[] exponent) => SharesOf(kinds, exponent, false);
+
+    /// <summary>Keeps the solutions of a wiring at a current, V.</summary>
+    public void Keep(ReadingPlan plan, double current, double[] coarse, double[] fine) => known[(plan, current)] = (coarse, fine);
+
+    /// <summary>The solutions kept of a wiring at a current, V; null where there are none.</summary>
+    public (double[] Coarse, double[] Fine)? Known(ReadingPlan plan, double current) =>
+        known.TryGetValue((plan, current), out (double[] Coarse, double[] Fine) found) ? found : null;
 
     public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {

@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Laws;
@@ -13,6 +14,7 @@ namespace FieldSolve.Solving;
 public sealed class FieldLevel
 {
     private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
+    private readonly ConcurrentBag<JacobianRoom> spare = [];
 
     private FieldLevel(SheetEquations equations, SparseAnalysis analysis)
     {
@@ -69,12 +71,20 @@ public sealed class FieldLevel
 
     private (SparseLu Factor, double[] Values) FactorAtZero()
     {
-        var factor = new SparseLu(Analysis);
+        var factor = new SparseLu(Analysis, Equations.Law.IsSymmetricAtZero);
         double[] values = new double[Space.Pattern.Count + 1];
         Equations.Jacobian(new double[Equations.Length], values);
-        factor.Factor(values.AsSpan(0, Space.Pattern.Count));
+        SharedCores.Factor(factor, values.AsSpan(0, Space.Pattern.Count), default);
         return (factor, values);
     }
+
+    /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
+    internal JacobianRoom Rent() => spare.TryTake(out JacobianRoom? room)
+        ? room
+        : new(new double[Space.Pattern.Count + 1], new SparseLu(Analysis, Equations.Law.HasPotential));
+
+    /// <summary>Takes room back for others.</summary>
+    internal void Return(JacobianRoom room) => spare.Add(room);
 
     /// <summary>
     /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.

@@ -97,7 +97,7 @@ public static class OverlayPictures
     private static SheetFrame Frame(OverlayResult result, string what) => SheetFrame.Around(
         result.Device, $"{what}, {Look.Short(result.Map.Wiring, 16)}, {SiScale.Text(result.Map.Current, "A", 3)}", true, (Margin, Margin), Size);
 
-    // Squares that just about touch: from the area each point stands for.
+    // Squares that overlap a little, turned rasters too: from the area each point stands for.
     private static double Side(OverlayResult result)
     {
         Point2[] on = [.. result.Points.Where(p => p.Model is not null).Select(p => p.Place)];
@@ -108,6 +108,6 @@ public static class OverlayPictures
             area += 0.5 * Math.Abs(((result.Map.X[b] - result.Map.X[a]) * (result.Map.Y[c] - result.Map.Y[a])) - ((result.Map.X[c] - result.Map.X[a]) * (result.Map.Y[b] - result.Map.Y[a])));
         }
 
-        return 1.02 * Math.Sqrt(area / on.Length);
+        return 1.14 * Math.Sqrt(area / on.Length);
     }
 }

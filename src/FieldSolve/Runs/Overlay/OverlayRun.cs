@@ -160,7 +160,7 @@ public static class OverlayRun
             [.. points.Select(q => q.Value)], sigma,
             [-shift, -shift, -options.MostTurn, 0.8, -1e6, -infinite], [shift, shift, options.MostTurn, 1.25, 1e6, infinite],
             new double[OverlayFunction.Count], [.. Enumerable.Repeat(infinite, OverlayFunction.Count)],
-            [false, false, false, !options.Scale, options.FixedGain, options.FixedOffset],
+            [options.MostShift == 0, options.MostShift == 0, options.MostTurn == 0, !options.Scale, options.FixedGain, options.FixedOffset],
             [shift, shift, options.MostTurn, 0.2, infinite, infinite], new bool[OverlayFunction.Count], true);
     }
 
@@ -186,7 +186,7 @@ public static class OverlayRun
         IReadOnlyList<OverlayPlace> places = Places(on);
         var warnings = new List<string>();
         double shift = options.MostShift * size;
-        if (Math.Abs(end.P[0]) >= shift || Math.Abs(end.P[1]) >= shift || Math.Abs(end.P[2]) >= options.MostTurn)
+        if ((shift > 0 && Math.Max(Math.Abs(end.P[0]), Math.Abs(end.P[1])) >= shift) || (options.MostTurn > 0 && Math.Abs(end.P[2]) >= options.MostTurn))
         {
             warnings.Add("The registration ended at the bound of its shift or turn; allow more (--most-shift, --most-turn), or look whether the map belongs to this device.");
         }

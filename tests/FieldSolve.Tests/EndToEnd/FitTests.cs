@@ -73,9 +73,9 @@ public class FitTests
     }
 
     [Theory]
-    [InlineData("a = { interval = true }", "a = 3", "data.csv", "bar.toml:27:5: 'a' is a number; write true to leave it free, or a table such as { start = \"4 mS\", sigma = \"4 mS\" }")]
-    [InlineData("a = { interval = true }", "d11 = true", "data.csv", "bar.toml:27:1: 'd11' is no parameter with a value of the law 'ohmic'; it has a, b, hall")]
-    [InlineData("a = { interval = true }", "a = { min = \"2 mS\" }", "data.csv", "bar.toml:27:1: 'a': the fit must start between 'min' and 'max'")]
+    [InlineData("a = { interval = true }", "a = 3", "data.csv", "bar.toml:26:5: 'a' is a number; write true to leave it free, or a table such as { start = \"4 mS\", sigma = \"4 mS\" }")]
+    [InlineData("a = { interval = true }", "d11 = true", "data.csv", "bar.toml:26:1: 'd11' is no parameter with a value of the law 'ohmic'; it has a, b, hall")]
+    [InlineData("a = { interval = true }", "a = { min = \"2 mS\" }", "data.csv", "bar.toml:26:1: 'a': the fit must start between 'min' and 'max'")]
     [InlineData("[fit]\na = { interval = true }", "", "data.csv", "bar.toml:1:1: The file leaves nothing free; add a table [fit]")]
     [InlineData("title", "title", "gone.csv", "gone.csv:1:1: the file does not exist")]
     public void Wrong_input_is_named_by_place_and_nothing_is_written(string from, string to, string data, string expected)

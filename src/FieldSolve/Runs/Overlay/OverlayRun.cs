@@ -264,7 +264,7 @@ public static class OverlayRun
     }
 
     // Mean residual over each point's neighbours: a patch shows where single points drown in noise.
-    private static IReadOnlyList<OverlayPlace> Places(OverlaidPoint[] on)
+    private static List<OverlayPlace> Places(OverlaidPoint[] on)
     {
         var tree = new NetTopologySuite.Index.KdTree.KdTree<OverlaidPoint>();
         int count = Math.Min(Neighbours, on.Length);

@@ -7,13 +7,28 @@ public class ParameterSlopeTests
 {
     private static readonly ISheetLaw Cubic = Make("cubic", new()
     {
-        ["a"] = 3e-3, ["b"] = 1e-3, ["hall"] = 4e-4, ["d11"] = 2e-9, ["d16"] = -1e-9, ["d22"] = 3e-9, ["d26"] = 1e-9, ["c11"] = 2e-14, ["c12"] = 1e-14,
-        ["c21"] = -2e-14, ["c22"] = 3e-14, ["field_limit"] = 2e5,
+        ["a"] = 3e-3,
+        ["b"] = 1e-3,
+        ["hall"] = 4e-4,
+        ["d11"] = 2e-9,
+        ["d16"] = -1e-9,
+        ["d22"] = 3e-9,
+        ["d26"] = 1e-9,
+        ["c11"] = 2e-14,
+        ["c12"] = 1e-14,
+        ["c21"] = -2e-14,
+        ["c22"] = 3e-14,
+        ["field_limit"] = 2e5,
     });
 
     private static readonly ISheetLaw Saturating = Make("saturating", new()
     {
-        ["a"] = 3e-3, ["b"] = 1e-3, ["hall"] = 4e-4, ["field_a"] = 1e5, ["field_b"] = 3e5, ["sharpness"] = 1.7,
+        ["a"] = 3e-3,
+        ["b"] = 1e-3,
+        ["hall"] = 4e-4,
+        ["field_a"] = 1e5,
+        ["field_b"] = 3e5,
+        ["sharpness"] = 1.7,
     });
 
     [Theory]

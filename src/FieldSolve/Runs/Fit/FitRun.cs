@@ -111,7 +111,10 @@ public static class FitRun
         }
 
         FitProblem thin = problem.With(Thin(problem.Data));
+
+        // Nuisance numbers stay at their start: far from the truth they would only follow what the others still miss.
         FitTask task = TaskOf(thin, options.Robust);
+        task = task with { Held = [.. problem.Parameters.Select((q, j) => q.PriorSigma is not null && j != axis)] };
         double least = task.Least[axis], most = task.Most[axis];
         bool bounded = most - least < Math.PI;
         double[] angles = [.. Enumerable.Range(0, options.Starts).Select(k => k == 0 ? start[axis]
@@ -233,7 +236,7 @@ public static class FitRun
             bool asked = q[j].Interval || (options.AllIntervals && q[j].PriorSigma is null);
             parameters[j] = new(
                 q[j], determined[j] ? end.P[j] : null, determined[j] ? Math.Sqrt(covariance[j, j]) : null,
-                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, j, cancel) : null, atBound)
+                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, widen, j, cancel) : null, atBound)
             {
                 Ended = end.P[j],
             };

@@ -51,8 +51,8 @@ public static class LeastSquares
     private const double FirstDamping = 1e-3, LeastDamping = 1e-9, MostDamping = 1e8;
     private const double Factor = 5;
 
-    // A step that is expected to lower the sum of squares by less than this ends the fit: the numbers are then well within a hundredth of their standard errors.
-    private const double LeastGain = 1e-5;
+    // A step that is expected to lower the sum of squares by less than this ends the fit: the numbers are then within a hundredth of their standard errors.
+    private const double LeastGain = 1e-4;
 
     /// <summary>Loss of one residual over sigma, scaled so that small ones count as squares.</summary>
     public static double Loss(double z, bool robust) => robust ? Freedom * Math.Log(1 + (z * z / Freedom)) : z * z;

@@ -11,16 +11,23 @@ internal static class ProfileInterval
     private const int MostTrials = 5, MostSteps = 12;
     private const double CloseEnough = 0.01;
 
-    public static (double? Low, double? High) Of(IFitFunction model, FitTask task, FitEnd best, double[,] covariance, int j, CancellationToken cancel)
+    /// <param name="model">The model.</param>
+    /// <param name="task">Data and bounds.</param>
+    /// <param name="best">The fit.</param>
+    /// <param name="covariance">Of the numbers at the fit.</param>
+    /// <param name="widen">By how much the covariance of a robust fit exceeds the inverse of its objective's curvature; 1 for squares.</param>
+    /// <param name="j">Which number.</param>
+    /// <param name="cancel">Stops the work.</param>
+    public static (double? Low, double? High) Of(IFitFunction model, FitTask task, FitEnd best, double[,] covariance, double widen, int j, CancellationToken cancel)
     {
-        double limit = Math.Sqrt(ChiSquared.InvCDF(1, 0.95)), error = Math.Sqrt(covariance[j, j]);
+        double limit = Math.Sqrt(widen * ChiSquared.InvCDF(1, 0.95)), error = Math.Sqrt(covariance[j, j]);
         FitTask held = task with { Held = [.. task.Held.Select((h, k) => h || k == j)] };
         return (Side(-1), Side(1));
 
         double? Side(int sign)
         {
             // The root of the rise is nearly proportional to the distance: secant on it.
-            double at = best.P[j] + (sign * limit * error), inner = best.P[j], innerRise = 0;
+            double at = best.P[j] + (sign * 1.96 * error), inner = best.P[j], innerRise = 0;
             double[] from = best.P, innerP = best.P;
             for (int trial = 0; trial < MostTrials; trial++)
             {

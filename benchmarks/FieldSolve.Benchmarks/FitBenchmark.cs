@@ -56,8 +56,8 @@ public class FitBenchmark
     [Benchmark(Description = "all states for one changed number", Baseline = true)]
     public double[]? Values()
     {
-        there[0] *= 1.001;
-        return model.Values(there, default);
+        there = [there[0] > problem.Start[0] ? problem.Start[0] : 1.001 * problem.Start[0], .. there[1..]];
+        return model.Values(there, default) ?? throw new InvalidOperationException("no solution");
     }
 
     [Benchmark(Description = "derivatives of all data by eight numbers")]

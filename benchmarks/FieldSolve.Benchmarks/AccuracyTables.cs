@@ -99,8 +99,8 @@ internal static class AccuracyTables
         to.WriteLine("The even part across of the second-order disc with 10 degree arcs:\n");
         to.WriteLine("| wanted of itself | levels | unknowns | true error | stated error |");
         to.WriteLine("| ---: | ---: | ---: | ---: | ---: |");
-        ExactCase even = ExactCases.All.First(c => c.IsEven);
-        foreach (double wanted in new[] { 1e-2, 1e-3, 1e-4, 1e-5 })
+        ExactCase even = ExactCases.StrongerSecondOrder;
+        foreach (double wanted in new[] { 1e-2, 1e-3, 1e-4 })
         {
             DriveResult r = Run(even, 1e-4, wanted);
             Reading across = r.Rows[0].Of("across")!;

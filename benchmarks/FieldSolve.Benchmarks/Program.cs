@@ -11,6 +11,13 @@ if (args is ["accuracy"])
     return;
 }
 
+// "page" times the report: written, shown, and following the slider in a browser.
+if (args is ["page"])
+{
+    await FieldSolve.Benchmarks.PageTimes.Print(Console.Out);
+    return;
+}
+
 // "native" compares with SuiteSparse where it is installed; a second word is the largest number of unknowns.
 if (args is ["native", ..])
 {

@@ -49,12 +49,13 @@ public class ToleranceBenchmark
     {
         MeshPair meshes = model!.Meshes;
         var motion = new NodeMotion(new MeshMover(meshes.Coarse.Space.Mesh), meshes.Fine.Space);
+        MotionField?[] fields = CauseSlope.Fields(model.Device, model.Causes, motion);
         DesignState s = model.States[0];
         double[] all = [];
         for (int sign = 0; sign < 2; sign++)
         {
             StateSensitivity state = StateSensitivity.Of(meshes.Fine, fine[sign] ??= Fine(sign), s.Plan.Vectors(meshes.Fine), CancellationToken.None);
-            double[,] gradient = CauseSlope.Gradient(model.Device, state, model.Causes, motion);
+            double[,] gradient = CauseSlope.Gradient(state, model.Causes, fields);
             all = [.. all, .. gradient.Cast<double>()];
         }
 

@@ -26,11 +26,7 @@ public static class LockinReport
         SheetDevice device = result.Device;
         DriveResult common = result.Common();
         Html page = new();
-        page.Raw("<!DOCTYPE html>").Raw("<html lang=\"en\">").Raw("<head>").Raw("<meta charset=\"utf-8\">");
-        page.Raw($"<meta http-equiv=\"Content-Security-Policy\" content=\"{ReportPage.Policy}\">");
-        page.Raw("<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">").Element("title", $"{device.Title} – lock-in");
-        page.Raw("<style>").Raw(ReportPage.Style()).Raw("</style>").Raw("</head>").Raw("<body>");
-        page.Raw("<header>").Element("h1", device.Title).Element("p", $"AC drive of {device.Path}, FieldSolve {RunRecord.Version}").Raw("</header>");
+        PageShell.Begin(page, device.Title, "lock-in", $"AC drive of {device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "What was computed");
@@ -56,8 +52,7 @@ public static class LockinReport
         ReportPage.AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
         page.Element("h2", "Settings");
         ReportTables.Settings(page, common);
-        page.Raw("<footer>").Element("p", $"SHA-256 of the device file: {device.Sha256}").Raw("</footer>").Raw("</body>").Raw("</html>");
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static IEnumerable<string> Words(LockinResult result)

@@ -1,5 +1,4 @@
 using System.Globalization;
-using System.Reflection;
 using FieldSolve.Device;
 using FieldSolve.Files;
 using FieldSolve.Readings;
@@ -7,13 +6,11 @@ using FieldSolve.Readings;
 namespace FieldSolve.Pictures;
 
 /// <summary>
-/// The report of a drive: one HTML file that holds its pictures, fetches nothing, runs no script and prints on A4. It carries no
-/// clock time, so the same run gives the same page.
+/// The report of a drive: one HTML file that holds its maps, curves and pictures, fetches nothing and prints on A4. Its policy lets only its own
+/// script run; without it tables and still pictures say the same. It carries no clock time, so the same run gives the same page.
 /// </summary>
 public static class ReportPage
 {
-    internal const string Policy = "default-src 'none'; img-src data:; style-src 'unsafe-inline'; base-uri 'none'; form-action 'none'";
-
     /// <summary>Writes the page.</summary>
     /// <param name="result">The drive.</param>
     /// <param name="pictures">Pictures of the drive, already written; their SVG files are read and put into the page.</param>
@@ -26,73 +23,85 @@ public static class ReportPage
         ArgumentNullException.ThrowIfNull(pictures);
 
         SheetDevice device = result.Device;
+        LiveData data = DriveLive.Of(result);
         Html page = new();
-        Begin(page, $"{device.Title} – drive", device.Title, $"Drive of {device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Begin(page, device.Title, "drive", $"Drive of {device.Path}, FieldSolve {RunRecord.Version}");
+        page.Raw("<section class=\"answer\">").Element("h2", "Answer").Raw("<ul>");
+        foreach (string sentence in ReportWords.Answer(result))
+        {
+            page.Element("li", sentence);
+        }
 
+        page.Raw("</ul></section>");
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
+        ReportTables.Summary(page, result);
         page.Element("h2", "What was computed");
         foreach (string paragraph in ReportWords.Of(result))
         {
             page.Element("p", paragraph);
         }
 
-        page.Element("h2", "Summary");
-        ReportTables.Summary(page, result);
-        AddPictures(page, pictures.Where(p => p.Wiring is null && p.Kind is not ("mesh" or "convergence")));
-        AddWirings(page, result, pictures);
+        AddPictures(page, pictures.Where(p => p.Kind == "device"));
+        if (data.Charts.Count > 0)
+        {
+            page.Element("h2", "Curves").Raw("<div class=\"charts\">");
+            data.Charts.Where(c => c.Id != "refinement").ToList().ForEach(c => PageShell.Chart(page, c.Id));
+            page.Raw("</div>");
+            AddStill(page, pictures.Where(p => p.Kind is "curves" or "even"));
+        }
+
+        if (data.Maps.Count > 0 || pictures.Any(p => p.Wiring is not null))
+        {
+            page.Element("h2", "Maps");
+            PageShell.Maps(page);
+            AddStill(page, pictures.Where(p => p.Wiring is not null));
+        }
+
+        AddWirings(page, result);
         page.Element("h2", "Accuracy");
         page.Element("p", "Errors in this report are estimates of the numerical error of the computed voltages; they say nothing about the device itself.");
+        if (data.Meshes.Count > 0)
+        {
+            page.Element("p", ReportWords.LiveAccuracy(data));
+        }
+
         ReportTables.Refinement(page, result);
-        AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
-        page.Element("h2", "Settings");
+        page.Raw("<div class=\"figures\">");
+        AddPictures(page, pictures.Where(p => p.Kind == "mesh"));
+        PageShell.Chart(page, "refinement");
+        AddStill(page, pictures.Where(p => p.Kind == "convergence"));
+        page.Raw("</div>").Element("h2", "Settings");
         ReportTables.Settings(page, result);
-        End(page, device);
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
-    /// <summary>Head of a page and the header of its body.</summary>
-    internal static void Begin(Html page, string windowTitle, string title, string line)
-    {
-        page.Raw("<!DOCTYPE html>").Raw("<html lang=\"en\">").Raw("<head>").Raw("<meta charset=\"utf-8\">");
-        page.Raw($"<meta http-equiv=\"Content-Security-Policy\" content=\"{Policy}\">");
-        page.Raw("<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">").Element("title", windowTitle);
-        page.Raw("<style>").Raw(Style()).Raw("</style>").Raw("</head>").Raw("<body>");
-        page.Raw("<header>").Element("h1", title).Element("p", line).Raw("</header>");
-    }
-
-    /// <summary>Footer and end of a page.</summary>
-    internal static void End(Html page, SheetDevice device) =>
-        page.Raw("<footer>").Element("p", $"SHA-256 of the device file: {device.Sha256}").Raw("</footer>").Raw("</body>").Raw("</html>");
-
-    private static void AddWirings(Html page, DriveResult result, IReadOnlyList<PictureFile> pictures)
+    private static void AddWirings(Html page, DriveResult result)
     {
         foreach (Wiring wiring in result.Device.Wirings)
         {
             page.Element("h2", $"Wiring {wiring.Name}");
             ReportTables.Curves(page, result, wiring);
             ReportTables.Exits(page, result, wiring);
-            AddPictures(page, pictures.Where(p => p.Wiring == wiring.Name));
         }
     }
 
-    /// <summary>Pictures with their captions, embedded.</summary>
+    // Still pictures for a reader without scripts; with them the live parts show the same and more.
+    private static void AddStill(Html page, IEnumerable<PictureFile> pictures)
+    {
+        page.Raw("<noscript>");
+        AddPictures(page, pictures);
+        page.Raw("</noscript>");
+    }
+
     internal static void AddPictures(Html page, IEnumerable<PictureFile> pictures)
     {
         foreach (PictureFile p in pictures)
         {
             string data = Convert.ToBase64String(File.ReadAllBytes(p.SvgPath));
             string size = string.Create(CultureInfo.InvariantCulture, $"width=\"{p.Width}\" height=\"{p.Height}\"");
-            page.Raw($"<figure><img {size} style=\"height:auto\" alt=\"{Html.Escaped(p.Caption)}\" src=\"data:image/svg+xml;base64,{data}\">");
+            page.Raw($"<figure><img {size} alt=\"{Html.Escaped(p.Caption)}\" src=\"data:image/svg+xml;base64,{data}\">");
             page.Element("figcaption", p.Caption).Raw("</figure>");
         }
-    }
-
-    internal static string Style()
-    {
-        using Stream stream = Assembly.GetExecutingAssembly().GetManifestResourceStream("report.css")
-            ?? throw new InvalidOperationException("The embedded style sheet report.css is missing from the assembly.");
-        using StreamReader reader = new(stream);
-        return reader.ReadToEnd();
     }
 }

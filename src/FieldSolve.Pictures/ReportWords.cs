@@ -8,6 +8,45 @@ namespace FieldSolve.Pictures;
 /// <summary>What a drive computed, in sentences.</summary>
 internal static class ReportWords
 {
+    /// <summary>The answer, one sentence per wiring.</summary>
+    public static IEnumerable<string> Answer(DriveResult result)
+    {
+        foreach (WiringSummary s in result.Summaries)
+        {
+            List<string> parts = [];
+            void Add(string name, double? ohms)
+            {
+                if (ohms is { } r && double.IsFinite(r))
+                {
+                    parts.Add($"{name} {SiScale.Text(r, "Ω", 6)}");
+                }
+            }
+
+            Add("along", s.Along);
+            Add("across", s.Across);
+            Add("between source and drain", s.TwoTerminal);
+            string text = $"Wiring {s.Wiring}, current at {SiScale.Number(Math.Round(s.DirectionDegrees, 3), 6)}°: "
+                + (parts.Count > 0 ? "at small drive " + string.Join(", ", parts) + "." : "no row could be solved.");
+            if (!result.Device.Law.IsLinear && s.Slope is { } fit && double.IsFinite(fit.Slope))
+            {
+                text += $" The even across voltage is {ErrorText.In(new(1, ""), fit.Slope, fit.SlopeError)} /V times the square of the odd along voltage"
+                    + (double.IsFinite(fit.RSquared) ? $" (R² = {SiScale.Number(fit.RSquared, 6)})." : ".");
+            }
+
+            yield return text + (s.LeftLawAt is { } left ? $" The law is left from {SiScale.Text(left, "A")} on." : $" The law holds up to {SiScale.Text(s.Largest, "A")}.");
+        }
+    }
+
+    /// <summary>What the numbers of the live maps are.</summary>
+    public static string LiveAccuracy(LiveData data)
+    {
+        double error = data.Laws.Count > 0 ? data.Laws.Max(l => l.Error) : 0;
+        return $"The live maps carry the potential of the finest mesh at all {Grouped(data.Meshes[0].Count)} nodes, to one part in four thousand million of its range. "
+            + "A reading under the pointer, and every profile, comes from the quadratic element itself, as in the solver; "
+            + "the colours take field and current straight between averages at the nodes. "
+            + (error > 1e-6 ? $"K follows the law to {SiScale.Number(error, 2)} of itself." : "K follows the law to better than a millionth.");
+    }
+
     /// <summary>The paragraphs.</summary>
     public static IEnumerable<string> Of(DriveResult result)
     {

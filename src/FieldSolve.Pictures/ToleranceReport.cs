@@ -22,7 +22,7 @@ public static class ToleranceReport
         ArgumentNullException.ThrowIfNull(pictures);
         SheetDevice device = result.Device;
         Html page = new();
-        ReportPage.Begin(page, $"{device.Title} – tolerance", device.Title, $"Tolerance of {device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Begin(page, device.Title, "tolerance", $"Tolerance of {device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "Answers");
@@ -43,8 +43,7 @@ public static class ToleranceReport
             Largest(page, result, wiring);
         }
 
-        ReportPage.End(page, device);
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static void Causes(Html page, SheetDevice device) => page.Table(

@@ -65,6 +65,9 @@ public sealed record DriveResult
     /// <summary>Maps that were asked for (at least the last current of each wiring when pictures are wanted).</summary>
     public required IReadOnlyList<FieldMap> Maps { get; init; }
 
+    /// <summary>Potentials for the live maps of the report, by wiring and then current; empty when no pictures were asked for.</summary>
+    public IReadOnlyList<PotentialFrame> Frames { get; init; } = [];
+
     /// <summary>The mesh (before the last uniform split) for pictures.</summary>
     public required TriangleMesh Mesh { get; init; }
 

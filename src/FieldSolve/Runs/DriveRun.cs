@@ -52,6 +52,7 @@ public static class DriveRun
             ReversedRows = reversed,
             Summaries = Summaries.Of(device, rows),
             Maps = work.Maps,
+            Frames = work.Frames,
             Mesh = refinement.Meshes.Coarse.Space.Mesh,
             Levels = refinement.Levels,
             Cautions = Cautions.Of(device, [.. rows, .. reversed]),

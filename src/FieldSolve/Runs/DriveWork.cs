@@ -9,6 +9,9 @@ namespace FieldSolve.Runs;
 /// <summary>The solves of a drive: wirings and signs run side by side, each with its own state, so the results do not depend on the number of threads.</summary>
 internal sealed class DriveWork
 {
+    // Nodal values in all frames together: some 27 MB of report at the most. A larger run keeps fewer currents of each wiring.
+    private const int MostFrameValues = 5_000_000;
+
     private readonly DriveOptions options;
     private readonly MeshPair meshes;
     private readonly ReadingPlan[] plans;
@@ -17,6 +20,7 @@ internal sealed class DriveWork
     private readonly bool linear;
     private readonly StateResult?[,,] states;  // wiring, current, sign
     private readonly FieldMap?[,] maps;
+    private readonly PotentialFrame?[,] frames;
     private readonly ConcurrentDictionary<string, string> refusals = new(StringComparer.Ordinal);
     private int done;
 
@@ -30,11 +34,14 @@ internal sealed class DriveWork
         linear = device.Law.IsLinear;
         states = new StateResult?[plans.Length, currents.Count, 2];
         maps = new FieldMap?[plans.Length, currents.Count];
+        frames = new PotentialFrame?[plans.Length, currents.Count];
     }
 
     public IReadOnlyDictionary<string, string> Refusals => refusals;
 
     public IReadOnlyList<FieldMap> Maps => [.. maps.Cast<FieldMap?>().Where(m => m is not null).Select(m => m!)];
+
+    public IReadOnlyList<PotentialFrame> Frames => [.. frames.Cast<PotentialFrame?>().Where(f => f is not null).Select(f => f!)];
 
     public NewtonOutcome Total
     {
@@ -160,10 +167,7 @@ internal sealed class DriveWork
             }
 
             int at = k;
-            Action<double[]>? keep = sign == 0 && WantsMap(k)
-                ? u => maps[w, at] = FieldMapBuilder.Build(
-                    meshes.Fine.Space, meshes.Fine.Equations.Law, u, plans[w].Wiring.Drain, plans[w].Wiring.Name, current, at)
-                : null;
+            Action<double[]>? keep = sign == 0 ? u => Keep(w, at, current, u) : null;
             StateResult result = task.Solve(current, keep, cancel);
             states[w, k, sign] = result;
             if (result.Values is null)
@@ -177,6 +181,28 @@ internal sealed class DriveWork
 
             progress?.Report(new("solving", Interlocked.Increment(ref done) / signs, plans.Length * currents.Count));
         }
+    }
+
+    private void Keep(int w, int k, double current, double[] u)
+    {
+        FieldSpace space = meshes.Fine.Space;
+        Wiring wiring = plans[w].Wiring;
+        if (WantsMap(k))
+        {
+            maps[w, k] = FieldMapBuilder.Build(space, meshes.Fine.Equations.Law, u, wiring.Drain, wiring.Name, current, k);
+        }
+
+        if (WantsFrame(k))
+        {
+            frames[w, k] = PotentialFrame.Of(space, u, wiring.Drain, wiring.Name, current, k);
+        }
+    }
+
+    // Every current while that fits, else as many as fit, evenly spread and with the last one.
+    private bool WantsFrame(int k)
+    {
+        int each = Math.Max(1, MostFrameValues / (plans.Length * meshes.Fine.Space.NodeCount)), stride = (currents.Count + each - 1) / each;
+        return options.ForPictures && (currents.Count - 1 - k) % stride == 0;
     }
 
     private bool WantsMap(int k)

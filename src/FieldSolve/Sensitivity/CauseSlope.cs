@@ -47,25 +47,39 @@ public static class CauseSlope
         };
     }
 
+    /// <summary>The velocities under every cause, for all states on one mesh; null where <see cref="Field"/> is.</summary>
+    public static MotionField?[] Fields(SheetDevice device, IReadOnlyList<SheetCause> causes, NodeMotion motion)
+    {
+        ArgumentNullException.ThrowIfNull(causes);
+        return [.. causes.Select(c => Field(device, c, motion))];
+    }
+
     /// <summary>Gradient matrix: one row per reading, one column per cause, V per SI unit.</summary>
-    /// <param name="device">The device at the state.</param>
     /// <param name="state">The state.</param>
     /// <param name="causes">The causes.</param>
-    /// <param name="motion">Of the state's mesh.</param>
-    public static double[,] Gradient(SheetDevice device, StateSensitivity state, IReadOnlyList<SheetCause> causes, NodeMotion motion)
+    /// <param name="fields">From <see cref="Fields"/>, on the state's mesh.</param>
+    public static double[,] Gradient(StateSensitivity state, IReadOnlyList<SheetCause> causes, IReadOnlyList<MotionField?> fields)
     {
         ArgumentNullException.ThrowIfNull(state);
         ArgumentNullException.ThrowIfNull(causes);
+        ArgumentNullException.ThrowIfNull(fields);
         double[,] gradient = new double[state.ReadingCount, causes.Count];
         for (int c = 0; c < causes.Count; c++)
         {
-            MotionField? field = Field(device, causes[c], motion);
             for (int r = 0; r < state.ReadingCount; r++)
             {
-                gradient[r, c] = Of(state, r, causes[c], field);
+                gradient[r, c] = Of(state, r, causes[c], fields[c]);
             }
         }
 
         return gradient;
     }
+
+    /// <summary>Gradient matrix of one state alone: one row per reading, one column per cause, V per SI unit.</summary>
+    /// <param name="device">The device at the state.</param>
+    /// <param name="state">The state.</param>
+    /// <param name="causes">The causes.</param>
+    /// <param name="motion">Of the state's mesh.</param>
+    public static double[,] Gradient(SheetDevice device, StateSensitivity state, IReadOnlyList<SheetCause> causes, NodeMotion motion) =>
+        Gradient(state, causes, Fields(device, causes, motion));
 }

@@ -63,7 +63,7 @@ public sealed class StateSensitivity
         {
             double[] jacobian = new double[level.Space.Pattern.Count + 1];
             level.Equations.Jacobian(u, jacobian);
-            factor = new SparseLu(level.Analysis);
+            factor = new SparseLu(level.Analysis, level.Equations.Law.HasPotential);
             factor.Factor(jacobian.AsSpan(0, jacobian.Length - 1), cancel);
         }
 

@@ -16,12 +16,12 @@ public sealed class FieldLevel
     private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
     private readonly ConcurrentBag<JacobianRoom> spare = [];
 
-    private FieldLevel(SheetEquations equations, SparseAnalysis analysis)
+    private FieldLevel(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
     {
         Space = equations.Space;
         Equations = equations;
         Analysis = analysis;
-        atZero = new(FactorAtZero);
+        atZero = new(() => FactorAtZero(cancel));
     }
 
     /// <summary>Nodes and unknowns.</summary>
@@ -59,22 +59,21 @@ public sealed class FieldLevel
     /// <param name="device">Its contacts, ideal and resistive ones as before.</param>
     /// <param name="mesh">Same triangles as this level's mesh, vertices elsewhere; or this level's mesh.</param>
     /// <param name="law">The law.</param>
-    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(new SheetEquations(Space.Moved(mesh, device), law), Analysis);
+    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(new SheetEquations(Space.Moved(mesh, device), law), Analysis, CancellationToken.None);
 
     private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
     {
-        var level = new FieldLevel(equations, analysis);
+        var level = new FieldLevel(equations, analysis, cancel);
         _ = level.AtZero;
-        cancel.ThrowIfCancellationRequested();
         return level;
     }
 
-    private (SparseLu Factor, double[] Values) FactorAtZero()
+    private (SparseLu Factor, double[] Values) FactorAtZero(CancellationToken cancel)
     {
         var factor = new SparseLu(Analysis, Equations.Law.IsSymmetricAtZero);
         double[] values = new double[Space.Pattern.Count + 1];
         Equations.Jacobian(new double[Equations.Length], values);
-        SharedCores.Factor(factor, values.AsSpan(0, Space.Pattern.Count), default);
+        SharedCores.Factor(factor, values.AsSpan(0, Space.Pattern.Count), cancel);
         return (factor, values);
     }
 

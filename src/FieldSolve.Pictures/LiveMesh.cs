@@ -1,0 +1,154 @@
+using System.Buffers.Binary;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>
+/// The quadratic triangles of a live map, packed. Corners come first, numbered as they appear, then the middles of edges, numbered as they
+/// appear going through the triangles and their edges 01, 12, 20; so the page finds the middles by itself and only those off the straight edge are sent.
+/// </summary>
+internal sealed class LiveMesh
+{
+    private readonly int[] source;  // node of the run for each node of the page
+
+    /// <summary>Packs the triangles of a run.</summary>
+    /// <param name="x">x of each node, metres.</param>
+    /// <param name="y">y of each node, metres.</param>
+    /// <param name="nodes">Six per triangle: corners 0, 1, 2, then the middles of edges 01, 12, 20.</param>
+    public LiveMesh(double[] x, double[] y, int[] nodes)
+    {
+        (X, Y, Nodes) = (x, y, nodes);
+        Triangles = nodes.Length / 6;
+        int[] number = new int[x.Length];
+        Array.Fill(number, -1);
+        List<int> order = new(x.Length);
+        Number(0);
+        Corners = order.Count;
+        Number(3);
+        source = [.. order];
+        CornerNumbers = new int[3 * Triangles];
+        List<int> bent = [];
+        bool[] seen = new bool[x.Length];
+        for (int t = 0; t < Triangles; t++)
+        {
+            for (int k = 0; k < 3; k++)
+            {
+                int a = nodes[(6 * t) + k], b = nodes[(6 * t) + ((k + 1) % 3)], m = nodes[(6 * t) + 3 + k];
+                CornerNumbers[(3 * t) + k] = number[a];
+                if (!seen[m] && (x[m] != 0.5 * (x[a] + x[b]) || y[m] != 0.5 * (y[a] + y[b])))
+                {
+                    bent.Add(number[m]);
+                }
+
+                seen[m] = true;
+            }
+        }
+
+        Bent = [.. bent];
+
+        void Number(int first)
+        {
+            for (int t = 0; t < Triangles; t++)
+            {
+                for (int k = first; k < first + 3; k++)
+                {
+                    int n = nodes[(6 * t) + k];
+                    if (number[n] < 0)
+                    {
+                        number[n] = order.Count;
+                        order.Add(n);
+                    }
+                }
+            }
+        }
+    }
+
+    /// <summary>x of each node of the run.</summary>
+    public double[] X { get; }
+
+    /// <summary>y of each node of the run.</summary>
+    public double[] Y { get; }
+
+    /// <summary>Six nodes of the run per triangle.</summary>
+    public int[] Nodes { get; }
+
+    /// <summary>Number of triangles.</summary>
+    public int Triangles { get; }
+
+    /// <summary>Number of corners; the nodes of the page after them are middles.</summary>
+    public int Corners { get; }
+
+    /// <summary>Number of nodes.</summary>
+    public int Count => source.Length;
+
+    /// <summary>Three corners of the page per triangle.</summary>
+    public int[] CornerNumbers { get; }
+
+    /// <summary>Middles of the page that do not lie halfway between their corners.</summary>
+    public int[] Bent { get; }
+
+    /// <summary>Places of the corners, or of the bent middles: x, y, x, y, … as little-endian doubles.</summary>
+    public byte[] Places(bool bent)
+    {
+        int count = bent ? Bent.Length : Corners;
+        byte[] bytes = new byte[16 * count];
+        for (int i = 0; i < count; i++)
+        {
+            int n = source[bent ? Bent[i] : i];
+            BinaryPrimitives.WriteDoubleLittleEndian(bytes.AsSpan(16 * i), X[n]);
+            BinaryPrimitives.WriteDoubleLittleEndian(bytes.AsSpan((16 * i) + 8), Y[n]);
+        }
+
+        return bytes;
+    }
+
+    /// <summary>Values at the nodes as whole numbers of 32 bits that span their range: finer than a float of the same size.</summary>
+    /// <param name="values">One per node of the run.</param>
+    /// <returns>Little-endian bytes, and the range.</returns>
+    public (byte[] Bytes, double Low, double High) Pack(double[] values)
+    {
+        double low = values.Length == 0 ? 0 : values.Min(), high = values.Length == 0 ? 0 : values.Max();
+        double factor = high > low ? uint.MaxValue / (high - low) : 0;
+        byte[] bytes = new byte[4 * source.Length];
+        for (int i = 0; i < source.Length; i++)
+        {
+            BinaryPrimitives.WriteUInt32LittleEndian(bytes.AsSpan(4 * i), (uint)Math.Clamp(Math.Round((values[source[i]] - low) * factor), 0, uint.MaxValue));
+        }
+
+        return (bytes, low, high);
+    }
+
+    /// <summary>Whole numbers as little-endian bytes, two each where they fit, else four.</summary>
+    public static byte[] Pack(int[] numbers, bool wide)
+    {
+        byte[] bytes = new byte[(wide ? 4 : 2) * numbers.Length];
+        for (int i = 0; i < numbers.Length; i++)
+        {
+            if (wide)
+            {
+                BinaryPrimitives.WriteInt32LittleEndian(bytes.AsSpan(4 * i), numbers[i]);
+            }
+            else
+            {
+                BinaryPrimitives.WriteUInt16LittleEndian(bytes.AsSpan(2 * i), (ushort)numbers[i]);
+            }
+        }
+
+        return bytes;
+    }
+
+    /// <summary>Largest gradient of the straight triangles through the corners, a measure of the largest field of a potential.</summary>
+    public double LargestSlope(double[] values)
+    {
+        double most = 0;
+        for (int t = 0; t < Triangles; t++)
+        {
+            (int a, int b, int c) = (Nodes[6 * t], Nodes[(6 * t) + 1], Nodes[(6 * t) + 2]);
+            double ux = X[b] - X[a], uy = Y[b] - Y[a], vx = X[c] - X[a], vy = Y[c] - Y[a], twice = (ux * vy) - (uy * vx);
+            double p = values[b] - values[a], q = values[c] - values[a];
+            double gx = ((p * vy) - (q * uy)) / twice, gy = ((q * ux) - (p * vx)) / twice;
+            most = Math.Max(most, (gx * gx) + (gy * gy));
+        }
+
+        return Math.Sqrt(most);
+    }
+}

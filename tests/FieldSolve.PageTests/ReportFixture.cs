@@ -1,0 +1,159 @@
+using FieldSolve.Device;
+using FieldSolve.Pictures;
+using FieldSolve.Readings;
+using FieldSolve.Runs;
+using Microsoft.Playwright;
+
+namespace FieldSolve.PageTests;
+
+/// <summary>A small drive with its report, and the browser; made once for all tests.</summary>
+public sealed class ReportFixture : IAsyncLifetime
+{
+    /// <summary>What the title tries.</summary>
+    public const string Title = "<img src=x onerror=\"document.body.dataset.broken='yes'\"> & disc";
+
+    private const string Text = """
+        title = '''<img src=x onerror="document.body.dataset.broken='yes'"> & disc'''
+        [sheet]
+        disc = { diameter = "8 um" }
+        [law]
+        kind = "quadratic"
+        axis = "20 deg"
+        a = "4 mS"
+        b = "1 mS"
+        hall = "0.3 mS"
+        d12 = "4e-10 A m/V^2"
+        d26 = "2e-10 A m/V^2"
+        field_limit = "400 kV/m"
+        [[contacts]]
+        ring = 6
+        width = "0.9 um"
+        prefix = "c"
+        [[wiring]]
+        name = "0 <b>deg</b>"
+        source = "c4"
+        drain = "c1"
+        along = ["c3", "c2"]
+        across = ["c3", "c5"]
+        [[wiring]]
+        name = "60 deg"
+        source = "c5"
+        drain = "c2"
+        along = ["c4", "c3"]
+        across = ["c4", "c6"]
+        [drive]
+        current = { from = "0 uA", to = "200 uA", steps = 5 }
+        both_signs = true
+        [mesh]
+        error = 2e-3
+        even_error = 2e-2
+        """;
+
+    private readonly string folder = Directory.CreateTempSubdirectory("page-").FullName;
+    private IPlaywright? playwright;
+    private IBrowser? browser;
+    private OpenReport? shared;
+
+    internal DriveResult Result { get; private set; } = null!;
+
+    internal string Path { get; private set; } = "";
+
+    /// <summary>Another place for files.</summary>
+    internal string Other(string name) => System.IO.Path.Combine(folder, name);
+
+    /// <inheritdoc/>
+    public async Task InitializeAsync()
+    {
+        if (Chromium.Missing is not null)
+        {
+            return;
+        }
+
+        string device = Other("device.toml");
+        await File.WriteAllTextAsync(device, Text);
+        DeviceReading reading = DeviceFile.Read(device);
+        Result = DriveRun.Execute(reading.Device ?? throw new InvalidDataException(string.Join('\n', reading.Faults)), new(), null, CancellationToken.None);
+        Path = Other("report.html");
+        Write(Path);
+        playwright = await Playwright.CreateAsync();
+        browser = await playwright.Chromium.LaunchAsync(new()
+        {
+            ExecutablePath = Chromium.Program,
+            Headless = true,
+            Args = ["--headless", "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"],
+        });
+    }
+
+    /// <inheritdoc/>
+    public async Task DisposeAsync()
+    {
+        if (browser is not null)
+        {
+            await browser.DisposeAsync();
+        }
+
+        playwright?.Dispose();
+        Directory.Delete(folder, recursive: true);
+    }
+
+    internal void Write(string path) => ReportPage.Write(Result, DrivePictures.Write(Result, Other("pictures"), CancellationToken.None), path);
+
+    /// <summary>An open report for tests that only ask its script; never changed.</summary>
+    internal async Task<IPage> Shared() => (shared ??= await Open()).Page;
+
+    /// <summary>Opens the report and waits for its live parts; every request, error and message is kept.</summary>
+    internal async Task<OpenReport> Open(string draw = "", BrowserNewContextOptions? options = null)
+    {
+        options ??= new() { ViewportSize = new() { Width = 1200, Height = 1000 } };
+        options.ReducedMotion = ReducedMotion.Reduce;
+        IBrowserContext context = await browser!.NewContextAsync(options);
+        await context.SetOfflineAsync(true);
+        IPage page = await context.NewPageAsync();
+        page.SetDefaultTimeout(120_000);
+        var report = new OpenReport(page);
+        await page.GotoAsync(new Uri(Path).AbsoluteUri + (draw.Length > 0 ? "#draw=" + draw : ""));
+        if (options.JavaScriptEnabled != false)
+        {
+            await page.WaitForFunctionAsync("() => document.documentElement.dataset.ready === 'yes'");
+        }
+
+        return report;
+    }
+}
+
+/// <summary>An open page.</summary>
+internal sealed class OpenReport : IAsyncDisposable
+{
+    public OpenReport(IPage page)
+    {
+        Page = page;
+        page.Console += (_, m) => Complain(m.Type, m.Text);
+        page.PageError += (_, m) => Complain("error", m);
+        page.Request += (_, r) => Requests.Add(r.Url);
+    }
+
+    public IPage Page { get; }
+
+    public List<string> Requests { get; } = [];
+
+    public List<string> Complaints { get; } = [];
+
+    public async ValueTask DisposeAsync() => await Page.Context.DisposeAsync();
+
+    // The graphics driver in software grumbles about speed; that is no fault of the page.
+    private void Complain(string kind, string text)
+    {
+        if (kind is "error" or "warning" && !text.Contains("GL Driver Message", StringComparison.Ordinal))
+        {
+            Complaints.Add($"{kind}: {text}");
+        }
+    }
+}
+
+/// <summary>Shares the report and the browser.</summary>
+[CollectionDefinition(Name)]
+public class ReportCollection : ICollectionFixture<ReportFixture>
+{
+    /// <summary>Name of the collection.</summary>
+    public const string Name = "one browser";
+}

@@ -20,7 +20,7 @@ public static class FitReport
         ArgumentNullException.ThrowIfNull(pictures);
         SheetDevice device = result.Device;
         Html page = new();
-        ReportPage.Begin(page, $"{device.Title} – fit", device.Title, $"Fit of {device.Path} to {result.Measured.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Begin(page, device.Title, "fit", $"Fit of {device.Path} to {result.Measured.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "Fitted numbers");
@@ -31,8 +31,7 @@ public static class FitReport
         Directions(page, result);
         Next(page, result);
         Formulas(page, result);
-        ReportPage.End(page, device);
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}; of the data: {result.Measured.Sha256}", path);
     }
 
     private static void Numbers(Html page, FitResult result) => page.Table(

@@ -19,7 +19,7 @@ public static class OverlayReport
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(pictures);
         Html page = new();
-        ReportPage.Begin(page, $"{result.Device.Title} – overlay", result.Device.Title, $"{result.Measured.Path} on {result.Device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Begin(page, result.Device.Title, "overlay", $"{result.Measured.Path} on {result.Device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "Verdict");
         page.Element("p", Verdict(result));
@@ -42,8 +42,7 @@ public static class OverlayReport
             {
                 SiScale.Text(p.Place.X, "m", 3), SiScale.Text(p.Place.Y, "m", 3), SiScale.Text(p.Mean, result.Unit, 3), SiScale.Number(Math.Abs(p.Significance), 3), SiScale.Text(p.Radius, "m", 2),
             })]);
-        ReportPage.End(page, result.Device);
-        WholeFile.WriteText(path, page.ToString());
+        PageShell.End(page, null, $"SHA-256 of the device file: {result.Device.Sha256}; of the map: {result.Measured.Sha256}", path);
     }
 
     private static string Verdict(OverlayResult result)

@@ -8,6 +8,7 @@ internal static class CommandList
     public static IEnumerable<Command> All() =>
     [
         CheckCommand.Create(),
+        MeshCommand.Create(),
         DriveCommand.Create(),
         BandsCommand.Create(),
         LockinCommand.Create(),

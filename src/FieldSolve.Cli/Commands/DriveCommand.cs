@@ -15,13 +15,14 @@ internal static class DriveCommand
 {
     private const double QuickFactor = 10;
 
-    private sealed record Choices(string Device, string Folder, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json, string[] Shifts);
+    private sealed record Choices(string Device, string Folder, string? Mesh, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json, string[] Shifts);
 
     public static Command Create()
     {
         Argument<string> device = SharedOptions.Device();
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        Option<string?> mesh = SharedOptions.Mesh();
         var maps = new Option<string>("--maps")
         {
             Description = "Potential maps to write (.vtu): all, last (the last current of each wiring) or none.",
@@ -38,7 +39,7 @@ internal static class DriveCommand
             "Potential, field, current and probe voltages as the drive increases.\n\n"
             + "Example: fieldsolve drive meshes/disc-12.toml --out results --maps all")
         {
-            device, folder, maps, allSigns, noPictures, quick, shift, quiet, json,
+            device, folder, mesh, maps, allSigns, noPictures, quick, shift, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -47,6 +48,7 @@ internal static class DriveCommand
                 new Choices(
                     path,
                     parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-drive",
+                    parsed.GetValue(mesh),
                     Enum.Parse<MapChoice>(parsed.GetValue(maps)!, ignoreCase: true),
                     parsed.GetValue(allSigns),
                     !parsed.GetValue(noPictures),
@@ -84,12 +86,17 @@ internal static class DriveCommand
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
         }
 
+        if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
+        {
+            return ExitCode.WrongInput;
+        }
+
         var screen = new Screen(choices.Quiet);
         DriveResult result;
         try
         {
             result = DriveRun.Execute(
-                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, screen, cancel);
+                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures, Mesh = mesh }, screen, cancel);
             if (choices.Quick)
             {
                 result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };

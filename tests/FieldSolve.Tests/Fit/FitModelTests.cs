@@ -114,11 +114,14 @@ public class FitModelTests
         Assert.Equal((8, 20), (few.States.Count, all.States.Count));
         FitReference reference = FitReference.Refine(few, few.Start, 1, _ => { }, new StageClock(), default);
         var model = new FitModel(few, reference.Meshes.Coarse, new double[21]);
-        double[] between = model.Values(few.Start, default)!, exact = new FitModel(all, reference.Meshes.Coarse, new double[21]).Values(few.Start, default)!;
+        var direct = new FitModel(all, reference.Meshes.Coarse, new double[21]);
+        double[] between = model.Values(few.Start, default)!, exact = direct.Values(few.Start, default)!;
+        double[,] slopes = model.Jacobian(few.Start, default), exactSlopes = direct.Jacobian(few.Start, default);
         double[] stated = few.InterpolationErrors(model.ReadingsAt(few.Start, default));
         double largest = exact.Max(Math.Abs);
         for (int i = 0; i < 21; i++)
         {
+            Assert.Equal(exactSlopes[i, 0], slopes[i, 0], 1e-4 * Math.Abs(exactSlopes[20, 0]));
             Assert.True(Math.Abs(between[i] - exact[i]) <= stated[i] + (1e-10 * largest), $"{i}: {between[i] - exact[i]}, stated {stated[i]}");
         }
 

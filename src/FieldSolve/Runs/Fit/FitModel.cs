@@ -104,12 +104,13 @@ internal sealed class FitModel : IFitFunction
         MotionField?[] fields = Fields(p);
         double[][,] slopes = new double[problem.States.Count][,];
         bool[][] wanted = Wanted();
-        Parallel.For(0, slopes.Length, Threads(cancel), s => slopes[s] = Slopes(trial.Level, trial.U[s], problem.Plans[problem.States[s].Circuit], wanted[s], fields, cancel));
+        int[] states = [.. Enumerable.Range(0, slopes.Length).Where(s => wanted[s].Contains(true))];
+        Parallel.For(0, states.Length, Threads(cancel), k => slopes[states[k]] = Slopes(trial, states[k], wanted[states[k]], fields, cancel));
         Adjoints += wanted.Sum(w => w.Count(x => x));
         double[,] jacobian = new double[problem.Data.Count, problem.Parameters.Count];
         for (int i = 0; i < problem.Data.Count; i++)
         {
-            foreach (FitTerm t in problem.Terms[i])
+            foreach (FitTerm t in problem.SlopeTerms[i])
             {
                 for (int j = 0; j < problem.Parameters.Count; j++)
                 {
@@ -127,9 +128,10 @@ internal sealed class FitModel : IFitFunction
     /// <summary>Mesh, equations and device at some numbers.</summary>
     public (SheetDevice Device, FieldLevel Level) LevelAt(double[] p, CancellationToken cancel) => At(p, cancel) is var t ? (t.Device, t.Level) : default;
 
-    /// <summary>Derivatives of some readings of one solved state by all parameters: V per SI unit, one row per reading.</summary>
-    public double[,] SlopesOf(double[] p, FieldLevel level, double[] u, IReadOnlyList<double[]> vectors, CancellationToken cancel) =>
-        Slopes(StateSensitivity.Of(level, u, vectors, cancel), [.. Enumerable.Range(0, vectors.Count)], vectors.Count, Fields(p));
+    /// <summary>Derivatives of some readings of one solved state, those that the parameters need.</summary>
+    public StateSensitivity Measure(FieldLevel level, double[] u, IReadOnlyList<double[]> vectors, CancellationToken cancel) => StateSensitivity.Of(
+        level, u, vectors, [.. problem.Parameters.Where(q => q.Kind.Effect == CauseEffect.Law).Select(q => q.Kind.Key)],
+        problem.Parameters.Any(q => q.Kind.Effect == CauseEffect.Motion), cancel);
 
     /// <summary>Velocities of the mesh under the parameters that move something.</summary>
     public MotionField?[] Fields(double[] p)
@@ -226,7 +228,7 @@ internal sealed class FitModel : IFitFunction
         bool[][] wanted = [.. problem.States.Select(s => new bool[problem.Plans[s.Circuit].Count])];
         for (int i = 0; i < problem.Data.Count; i++)
         {
-            foreach (FitTerm t in problem.Terms[i])
+            foreach (FitTerm t in problem.SlopeTerms[i])
             {
                 wanted[t.State][problem.Reading[i]] = true;
             }
@@ -235,10 +237,11 @@ internal sealed class FitModel : IFitFunction
         return wanted;
     }
 
-    private double[,] Slopes(FieldLevel level, double[] u, ReadingPlan plan, bool[] wanted, MotionField?[] fields, CancellationToken cancel)
+    private double[,] Slopes(Trial trial, int state, bool[] wanted, MotionField?[] fields, CancellationToken cancel)
     {
-        double[][] vectors = plan.Vectors(level);
+        (FieldLevel level, double[] u) = (trial.Level, trial.U[state]);
+        double[][] vectors = problem.Plans[problem.States[state].Circuit].Vectors(level);
         int[] rows = [.. Enumerable.Range(0, vectors.Length).Where(k => wanted[k])];
-        return Slopes(StateSensitivity.Of(level, u, [.. rows.Select(k => vectors[k])], cancel), rows, vectors.Length, fields);
+        return Slopes(Measure(level, u, [.. rows.Select(k => vectors[k])], cancel), rows, vectors.Length, fields);
     }
 }

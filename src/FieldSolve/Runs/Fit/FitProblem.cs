@@ -52,6 +52,7 @@ internal sealed class FitProblem
         Reading = [.. data.Select(d => ReadingOf(measured.Circuits[d.Circuit], Plans[d.Circuit], d.Pair))];
         ranges = [.. Enumerable.Range(0, Plans.Length).Select(RangeOf)];
         Terms = LargestCurrent > 0 ? [.. data.Select(d => TermsOf(d, offset))] : [];
+        SlopeTerms = LargestCurrent > 0 ? [.. data.Select((d, i) => SlopeTermsOf(d, Terms[i]))] : [];
     }
 
     /// <summary>Points of the interpolation in the current.</summary>
@@ -72,6 +73,11 @@ internal sealed class FitProblem
 
     /// <summary>Per datum: states and weights; none for what is zero for all devices.</summary>
     public FitTerm[][] Terms { get; }
+
+    /// <summary>
+    /// Per datum: the same for derivatives, which need three or four digits, not ten: where currents are interpolated, half of the points carry them.
+    /// </summary>
+    public FitTerm[][] SlopeTerms { get; }
 
     /// <summary>A.</summary>
     public double LargestCurrent { get; }
@@ -207,6 +213,19 @@ internal sealed class FitProblem
         }
 
         return [.. at.Select((current, k) => new FitTerm(State(d.Circuit, current), weight[k] / sum * d.Current / current))];
+    }
+
+    // Every second point from either end, by Lagrange's formula.
+    private FitTerm[] SlopeTermsOf(MeasuredVoltage d, FitTerm[] terms)
+    {
+        if (Proportional || d.Harmonic is not null || d.Current == 0 || ranges[d.Circuit] is not { } range)
+        {
+            return terms;
+        }
+
+        double[] at = [.. Enumerable.Range(0, Nodes).Where(k => k < Nodes / 2 ? k % 2 == 0 : k % 2 == 1).Select(k => Node(range, k))];
+        return [.. at.Select(current => new FitTerm(
+            State(d.Circuit, current), at.Where(other => other != current).Aggregate(d.Current / current, (w, other) => w * (d.Current - other) / (current - other))))];
     }
 
     private int State(int circuit, double current)

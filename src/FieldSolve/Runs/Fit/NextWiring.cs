@@ -129,7 +129,7 @@ internal static class NextWiring
                 return all;
             }
 
-            double[,] slopes = model.Slopes(Sensitivity.StateSensitivity.Of(level, u, vectors, cancel), [.. Enumerable.Range(0, probes.Length)], probes.Length, fields);
+            double[,] slopes = model.Slopes(model.Measure(level, u, vectors, cancel), [.. Enumerable.Range(0, probes.Length)], probes.Length, fields);
             for (int k = 0; k < probes.Length; k++)
             {
                 all[probes[k]] = [.. Enumerable.Range(0, m).Select(j => slopes[k, j] * scales[j] / noise)];

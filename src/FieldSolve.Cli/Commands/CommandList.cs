@@ -15,5 +15,7 @@ internal static class CommandList
         TurnCommand.Create(),
         ToleranceCommand.Create(),
         GatherCommand.Create(),
+        FitCommand.Create(),
+        OverlayCommand.Create(),
     ];
 }

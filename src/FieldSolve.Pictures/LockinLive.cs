@@ -45,7 +45,7 @@ internal static class LockinLive
 
                 strongest.AddRange(frames.Select(f => f.Map.Potential).Distinct().Select(p => (data.Meshes[mesh], p)));
                 LiveMap map = new(
-                    $"map-{w}", wiring.Name, "phase", "°", mesh, 0, CurrentDirection.Degrees(device, wiring), Note(frames[0]),
+                    $"map-{w}", wiring.Name, "phase", "°", mesh, 0, CurrentDirection.Degrees(device, wiring), Note(frames[0]) + (stride > 1 ? " The run was too large to keep every phase." : ""),
                     LiveDevice.Rim(device), LiveDevice.Contacts(device, wiring),
                     [.. frames.Select(f => new LiveFrame(
                         $"{SiScale.Number(f.Phase, 5)}°, I = {SiScale.Text(f.Map.Current, "A", 3)}", f.Phase, f.Map.Potential, f.Map.ContactPotential))]);

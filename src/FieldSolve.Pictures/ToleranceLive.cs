@@ -95,7 +95,9 @@ internal static class ToleranceLive
         ])
         {
             Kind = "histogram",
-            Marks = [(s.Design, "designed"), .. s.Percentiles.Zip((string[])["5 %", "50 %", "95 %"], (p, name) => (p.Value, name))],
+
+            // In an order that sets the names of neighbours on different heights.
+            Marks = [(s.Percentiles[0].Value, "5 %"), (s.Percentiles[1].Value, "50 %"), (s.Design, "designed"), (s.Percentiles[2].Value, "95 %")],
         };
     }
 }

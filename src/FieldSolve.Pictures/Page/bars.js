@@ -43,7 +43,7 @@ function drawBars(plot, view, series, width, height) {
     }
     for (const s of series.filter(s => s.curve)) {
       const d = s.curve[0].map((x, k) => `${k ? 'L' : 'M'}${ax.at(x * sx.factor).toFixed(1)} ${ay.at(s.curve[1][k] * sy.factor).toFixed(1)}`).join('');
-      plot.append(svg('path', { d, fill: 'none', 'stroke-width': 1.8, ...strokeOf(s.look) }));
+      plot.append(svg('path', { d, fill: 'none', 'stroke-width': 1.8, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
     }
     for (const v of ax.ticks) {
       labels.append(svg('text', { x: ax.at(v).toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, number(v, 6)));

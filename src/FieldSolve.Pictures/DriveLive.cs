@@ -1,6 +1,5 @@
 using FieldSolve.Device;
 using FieldSolve.Fields;
-using FieldSolve.Geometry;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Pictures;
@@ -8,9 +7,6 @@ namespace FieldSolve.Pictures;
 /// <summary>What the live report of a drive shows.</summary>
 internal static class DriveLive
 {
-    // Fields of the quadratic elements beside a contact's end pass those of straight triangles by far less than this.
-    private const double FieldMargin = 8;
-
     /// <summary>Collects maps and charts; wirings without frames have no map.</summary>
     public static LiveData Of(DriveResult result)
     {
@@ -22,8 +18,7 @@ internal static class DriveLive
             PotentialFrame first = result.Frames[0];
             LiveMesh mesh = new(first.X, first.Y, first.Nodes);
             data.Meshes.Add(mesh);
-            double largest = result.Frames.GroupBy(f => f.Wiring).Select(g => g.MaxBy(f => Math.Abs(f.Current))!).Max(f => mesh.LargestSlope(f.Potential));
-            data.Laws.Add(new LiveLaw(device.Law, device.Axis, FieldMargin * largest));
+            data.Laws.Add(LiveDevice.Law(device, result.Frames.GroupBy(f => f.Wiring).Select(g => (mesh, g.MaxBy(f => Math.Abs(f.Current))!.Potential))));
             for (int w = 0; w < device.Wirings.Count; w++)
             {
                 Wiring wiring = device.Wirings[w];
@@ -45,37 +40,14 @@ internal static class DriveLive
     {
         SheetDevice device = result.Device;
         Wiring wiring = device.Wirings[w];
-        List<LiveContact> contacts = [];
-        for (int k = 0; k < device.Contacts.Count; k++)
-        {
-            Contact c = device.Contacts[k];
-            contacts.Add(new(c.Name, Role(wiring, new(false, k)), c.Kind == ContactKind.Pad ? "pad" : "edge", Flat(SheetFrame.Points(c.Shape)), (c.Middle.X, c.Middle.Y)));
-        }
-
-        for (int k = 0; k < device.Tips.Count; k++)
-        {
-            Tip t = device.Tips[k];
-            contacts.Add(new(t.Name, Role(wiring, new(true, k)), "tip", [t.At.X, t.At.Y], (t.At.X, t.At.Y)));
-        }
-
         int missing = (device.Drive?.Currents.Count ?? frames.Length) - frames.Length;
         return new(
             $"map-{w}", wiring.Name, "current", "A", 0, 0,
             result.Summaries.FirstOrDefault(s => s.Wiring == wiring.Name)?.DirectionDegrees ?? 0,
             missing > 0 ? $"{missing} of the drive's currents have no map here: the run was too large or did not reach them." : "",
-            [.. SheetFrame.RimLoops(device.Domain).Select(Flat)], contacts,
+            LiveDevice.Rim(device), LiveDevice.Contacts(device, wiring),
             [.. frames.Select(f => new LiveFrame(SiScale.Text(f.Current, "A"), f.Current, f.Potential, f.ContactPotential))]);
     }
-
-    private static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
-
-    private static string Role(Wiring wiring, Terminal t) =>
-        t == new Terminal(false, wiring.Source) ? "source"
-        : t == new Terminal(false, wiring.Drain) ? "drain"
-        : t == wiring.Along?.Plus ? "along+"
-        : t == wiring.Along?.Minus ? "along-"
-        : t == wiring.Across?.Plus ? "across+"
-        : t == wiring.Across?.Minus ? "across-" : "";
 
     private static IEnumerable<LiveChart> Charts(DriveResult result, Dictionary<string, (string Id, int[] Index)> places)
     {
@@ -126,11 +98,15 @@ internal static class DriveLive
                 "Lines: least squares over the rows within the law.", [even]);
         }
 
-        if (Refinement(result) is { } refinement)
+        if (RefinementChart(result) is { } refinement)
         {
-            yield return new("refinement", "Error from mesh to mesh", "Ringed: above the wanted error.", [refinement]);
+            yield return refinement;
         }
     }
+
+    /// <summary>Estimated errors from mesh to mesh; null without levels.</summary>
+    public static LiveChart? RefinementChart(DriveResult result) =>
+        Refinement(result) is { } view ? new("refinement", "Error from mesh to mesh", "Ringed: above the wanted error.", [view]) : null;
 
     // Largest estimated error over the wanted one, level by level: a straight line down in logarithmic axes.
     private static LiveView? Refinement(DriveResult result)

@@ -30,6 +30,19 @@ internal static class HistogramPicture
         return panels.Length == 0 ? null : Figure.Rows(panels, panels.Length == 1 ? 1 : 2, 420, 290).WithKeyBelow(key, 84);
     }
 
+    /// <summary>Samples in even bins from the least to the largest.</summary>
+    public static double[] Counts(double[] values)
+    {
+        double low = values.Min(), span = values.Max() - low;
+        double[] counts = new double[Math.Clamp((int)Math.Ceiling(Math.Sqrt(values.Length)), 8, MostBins)];
+        foreach (double v in values)
+        {
+            counts[Math.Min(counts.Length - 1, (int)((v - low) / span * counts.Length))]++;
+        }
+
+        return counts;
+    }
+
     // A sum of first-order contributions is normal only when its causes are.
     private static bool Normal(ToleranceResult result) => result.Device.Tolerance!.Causes.All(c => c.Shape == CauseShape.Normal);
 
@@ -39,12 +52,8 @@ internal static class HistogramPicture
         double[] values = [.. result.Samples.Where(r => r.Values.Length > 0).Select(r => r.Values[q])];
         double low = values.Min(), high = values.Max(), span = high - low;
         SiScale scale = s.Quantity.IsRatio ? new(1, "") : SiScale.For(Math.Max(Math.Abs(low), Math.Abs(high)), "V");
-        int bins = Math.Clamp((int)Math.Ceiling(Math.Sqrt(values.Length)), 8, MostBins);
-        int[] counts = new int[bins];
-        foreach (double v in values)
-        {
-            counts[Math.Min(bins - 1, (int)((v - low) / span * bins))]++;
-        }
+        double[] counts = Counts(values);
+        int bins = counts.Length;
 
         string name = s.Quantity.IsRatio ? "V_across / V_along" : $"V_{s.Quantity.Pair}, {(s.Quantity.Part == ReadingPart.Odd ? "odd" : "even")} part ({scale.Unit})";
         Plot plot = Look.NewPlot($"sigma {(s.Quantity.IsRatio ? SiScale.Number(s.Deviation.Value, 3) : SiScale.Text(s.Deviation.Value, "V", 3))}, first order {(s.Quantity.IsRatio ? SiScale.Number(s.FirstOrder, 3) : SiScale.Text(s.FirstOrder, "V", 3))}", name, "samples");

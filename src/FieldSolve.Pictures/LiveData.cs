@@ -9,7 +9,14 @@ namespace FieldSolve.Pictures;
 /// <param name="Value">In SI, for files.</param>
 /// <param name="Potential">One per node of the run, V.</param>
 /// <param name="Metal">Potential of each contact's metal, V.</param>
-internal sealed record LiveFrame(string Label, double Value, double[] Potential, double[] Metal);
+internal sealed record LiveFrame(string Label, double Value, double[] Potential, double[] Metal)
+{
+    /// <summary>Roles of the contacts and tips while this frame is shown; null for those of the map.</summary>
+    public IReadOnlyList<string>? Roles { get; init; }
+
+    /// <summary>How far crystal a is turned from the axis of the map's law, radians.</summary>
+    public double Turn { get; init; }
+}
 
 /// <summary>A contact or tip as drawn over a map.</summary>
 /// <param name="Name">From the device file.</param>
@@ -22,7 +29,7 @@ internal sealed record LiveContact(string Name, string Role, string Kind, double
 /// <summary>A map with a slider.</summary>
 /// <param name="Id">Name inside the page, of letters, digits and hyphens.</param>
 /// <param name="Title">For example "Wiring 0 deg".</param>
-/// <param name="By">What the slider changes: "current", "phase", "direction".</param>
+/// <param name="By">What the slider changes: "current", "phase", "direction", or "axis" for the crystal's.</param>
 /// <param name="Unit">Unit of the frames' values.</param>
 /// <param name="Mesh">Index of the mesh.</param>
 /// <param name="Law">Index of the law.</param>
@@ -48,7 +55,11 @@ internal sealed record LiveMap(
 /// <param name="LineText">What the key says of it.</param>
 internal sealed record LiveSeries(
     string Name, int Look, double[] X, double[] Y, double[] Error, bool[] Doubtful, string? Map, int[] Frame, (double Slope, double Intercept)? Line = null,
-    string LineText = "");
+    string LineText = "")
+{
+    /// <summary>A curve beside the points (SI), drawn instead of straight lines from point to point; null for none.</summary>
+    public (double[] X, double[] Y)? Curve { get; init; }
+}
 
 /// <summary>One choice of quantity in a chart.</summary>
 /// <param name="Label">For the choice and the title.</param>
@@ -172,11 +183,30 @@ internal sealed class LiveData
             Numbers(w, "points", c.Points);
             Numbers(w, "middle", [c.Middle.X, c.Middle.Y]);
         });
+        int at = 0;
         Array(w, "frames", map.Frames, (w, f) =>
         {
             w.WriteString("label", f.Label);
             w.WriteNumber("value", f.Value);
             Numbers(w, "metal", f.Metal);
+            if (f.Turn != 0)
+            {
+                w.WriteNumber("turn", f.Turn);
+            }
+
+            if (f.Roles is not null)
+            {
+                Words(w, "roles", f.Roles);
+            }
+
+            // A cycle passes most currents twice.
+            int same = Enumerable.Range(0, at++).FirstOrDefault(k => ReferenceEquals(map.Frames[k].Potential, f.Potential) && map.Frames[k].Turn == f.Turn, -1);
+            if (same >= 0)
+            {
+                w.WriteNumber("same", same);
+                return;
+            }
+
             (byte[] bytes, double low, double high) = Meshes[map.Mesh].Pack(f.Potential);
             w.WriteNumber("low", low);
             w.WriteNumber("high", high);
@@ -202,13 +232,7 @@ internal sealed class LiveData
             w.WriteString("yUnit", v.YUnit);
             w.WriteString("kind", v.Kind);
             w.WriteBoolean("logarithmic", v.Logarithmic);
-            w.WriteStartArray("categories");
-            foreach (string name in v.Categories)
-            {
-                w.WriteStringValue(name);
-            }
-
-            w.WriteEndArray();
+            Words(w, "categories", v.Categories);
             Array(w, "marks", v.Marks, (w, m) =>
             {
                 w.WriteNumber("x", m.X);
@@ -243,7 +267,19 @@ internal sealed class LiveData
                 if (s.Line is { } line)
                 {
                     Numbers(w, "line", [line.Slope, line.Intercept]);
+                }
+
+                if (s.LineText.Length > 0)
+                {
                     w.WriteString("lineText", s.LineText);
+                }
+
+                if (s.Curve is { } curve)
+                {
+                    w.WriteStartArray("curve");
+                    Values(w, curve.X);
+                    Values(w, curve.Y);
+                    w.WriteEndArray();
                 }
             });
         });
@@ -257,6 +293,17 @@ internal sealed class LiveData
             w.WriteStartObject();
             write(w, item);
             w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+    }
+
+    private static void Words(Utf8JsonWriter w, string name, IEnumerable<string> words)
+    {
+        w.WriteStartArray(name);
+        foreach (string word in words)
+        {
+            w.WriteStringValue(word);
         }
 
         w.WriteEndArray();

@@ -6,7 +6,7 @@ using FieldSolve.Readings;
 
 namespace FieldSolve.Pictures;
 
-/// <summary>The report of an AC run: one HTML file that holds its pictures, fetches nothing, runs no script and prints on A4.</summary>
+/// <summary>The report of an AC run: one HTML file like that of a drive, see <see cref="ReportPage"/>; its map plays the cycle.</summary>
 public static class LockinReport
 {
     private const string None = "–";
@@ -25,6 +25,7 @@ public static class LockinReport
 
         SheetDevice device = result.Device;
         DriveResult common = result.Common();
+        LiveData data = LockinLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "lock-in", $"AC drive of {device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
@@ -38,21 +39,41 @@ public static class LockinReport
         page.Element("h2", "Summary");
         Growth(page, result);
         Limits(page, result);
-        ReportPage.AddPictures(page, pictures.Where(p => p.Wiring is null && p.Kind is not ("mesh" or "convergence")));
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "device"));
+        page.Element("h2", "Curves").Raw("<div class=\"charts\">");
+        data.Charts.Where(c => c.Id != "refinement").ToList().ForEach(c => PageShell.Chart(page, c.Id));
+        page.Raw("</div>");
+        ReportPage.AddStill(page, pictures.Where(p => p.Kind is "waves" or "second"));
+        page.Element("h2", "Maps");
+        PageShell.Maps(page);
+        if (data.Maps.Count == 0)
+        {
+            page.Element("p", "No wiring reached an answer whose cycle could be shown.");
+        }
+
         foreach (Wiring wiring in device.Wirings)
         {
             page.Element("h2", $"Wiring {wiring.Name}");
             Harmonics(page, result, wiring);
-            ReportPage.AddPictures(page, pictures.Where(p => p.Wiring == wiring.Name));
+            ReportPage.AddStill(page, pictures.Where(p => p.Wiring == wiring.Name));
         }
 
         page.Element("h2", "Accuracy");
         page.Element("p", "Errors in this report are estimates of the numerical error of the computed harmonics; they say nothing about the device itself.");
+        if (data.Maps.Count > 0)
+        {
+            page.Element("p", ReportWords.LiveAccuracy(data));
+        }
+
         ReportTables.Refinement(page, common);
-        ReportPage.AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
+        page.Raw("<div class=\"figures\">");
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "mesh"));
+        PageShell.Chart(page, "refinement");
+        ReportPage.AddStill(page, pictures.Where(p => p.Kind == "convergence"));
+        page.Raw("</div>");
         page.Element("h2", "Settings");
         ReportTables.Settings(page, common);
-        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}", path);
+        PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static IEnumerable<string> Words(LockinResult result)

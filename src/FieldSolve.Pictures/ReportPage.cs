@@ -87,7 +87,7 @@ public static class ReportPage
     }
 
     // Still pictures for a reader without scripts; with them the live parts show the same and more.
-    private static void AddStill(Html page, IEnumerable<PictureFile> pictures)
+    internal static void AddStill(Html page, IEnumerable<PictureFile> pictures)
     {
         page.Raw("<noscript>");
         AddPictures(page, pictures);

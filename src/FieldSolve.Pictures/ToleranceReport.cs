@@ -5,7 +5,7 @@ using FieldSolve.Runs;
 
 namespace FieldSolve.Pictures;
 
-/// <summary>The report of a tolerance run: answers in words, tables and pictures in one HTML file.</summary>
+/// <summary>The report of a tolerance run: answers in words, tables and live charts in one HTML file like that of a drive, see <see cref="ReportPage"/>.</summary>
 public static class ToleranceReport
 {
     private const int MostCauses = 12;
@@ -21,6 +21,7 @@ public static class ToleranceReport
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(pictures);
         SheetDevice device = result.Device;
+        LiveData data = ToleranceLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "tolerance", $"Tolerance of {device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
@@ -35,15 +36,20 @@ public static class ToleranceReport
         page.Element("p", $"{device.Tolerance!.Causes.Count} causes of error at {SiScale.Text(result.Current, "A")} and reversed. The budget multiplies the exact derivative of each reading with the standard deviation of each cause. The samples are {ReportWords.Grouped(result.Samples.Count)} devices with all causes at once, each solved in full with the law as it stands, on a mesh of {ReportWords.Grouped(result.Unknowns.Coarse)} unknowns that moves with the contacts; what a mesh of {ReportWords.Grouped(result.Unknowns.Fine)} unknowns adds to the design is added to each.");
         Causes(page, device);
         ReportPage.AddPictures(page, pictures.Where(p => p.Wiring is null));
-        foreach (Wiring wiring in device.Wirings)
+        for (int w = 0; w < device.Wirings.Count; w++)
         {
+            Wiring wiring = device.Wirings[w];
             page.Element("h2", $"Wiring {wiring.Name}");
             Statistics(page, result, wiring);
-            ReportPage.AddPictures(page, pictures.Where(p => p.Wiring == wiring.Name));
+            page.Raw("<div class=\"charts\">");
+            PageShell.Chart(page, ToleranceLive.BudgetId(w));
+            PageShell.Chart(page, ToleranceLive.SamplesId(w));
+            page.Raw("</div>");
+            ReportPage.AddStill(page, pictures.Where(p => p.Wiring == wiring.Name));
             Largest(page, result, wiring);
         }
 
-        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}", path);
+        PageShell.End(page, data.Charts.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static void Causes(Html page, SheetDevice device) => page.Table(

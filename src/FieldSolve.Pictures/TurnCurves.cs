@@ -58,6 +58,10 @@ internal sealed record TurnQuantity(string Pair, bool IsEven)
     public static double Largest(TurnResult result) => result.Drive.Device.Drive!.Currents.MaxBy(Math.Abs);
 
     /// <summary>The angle that the pictures show.</summary>
+    public static double Angle(TurnResult result, double directionDegrees, double axisDegrees) =>
+        result.Mode == TurnMode.Axis ? Degrees.Wrapped(directionDegrees - axisDegrees) : directionDegrees;
+
+    /// <summary>The same for a row.</summary>
     public static double Angle(TurnResult result, TurnRow row) => result.Mode == TurnMode.Axis ? row.AngleDegrees : row.DirectionDegrees;
 
     /// <summary>The same for a point of a ratio curve.</summary>

@@ -6,7 +6,7 @@ using FieldSolve.Turning;
 
 namespace FieldSolve.Pictures;
 
-/// <summary>The report of a turn: one HTML file that holds its pictures, fetches nothing, runs no script and prints on A4.</summary>
+/// <summary>The report of a turn: one HTML file like that of a drive, see <see cref="ReportPage"/>; its map follows the direction.</summary>
 public static class TurnReport
 {
     private const string None = "–";
@@ -23,6 +23,7 @@ public static class TurnReport
         ArgumentNullException.ThrowIfNull(pictures);
         DriveResult drive = result.Drive;
         SheetDevice device = drive.Device;
+        LiveData data = TurnLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "turn", $"Turn of {device.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", drive.Cautions);
@@ -37,18 +38,39 @@ public static class TurnReport
         page.Element("h2", "What the curves say about the sheet");
         Fits(page, result);
         page.Element("h2", "Curves");
-        ReportPage.AddPictures(page, pictures.Where(p => p.Kind is not ("mesh" or "convergence")));
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "device"));
+        page.Raw("<div class=\"charts\">");
+        data.Charts.Where(c => c.Id != "refinement").ToList().ForEach(c => PageShell.Chart(page, c.Id));
+        page.Raw("</div>");
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "polar"));
+        ReportPage.AddStill(page, pictures.Where(p => p.Kind is "angles" or "ratios"));
+        if (data.Maps.Count > 0 || pictures.Any(p => p.Kind == "potential"))
+        {
+            page.Element("h2", "Maps");
+            PageShell.Maps(page);
+            ReportPage.AddStill(page, pictures.Where(p => p.Kind == "potential"));
+        }
+
         page.Element("h2", "Readings at the largest current");
         Readings(page, result);
         page.Element("h2", "Fourier content");
         Harmonics(page, result);
         page.Element("h2", "Accuracy");
         page.Element("p", "Errors in this report are estimates of the numerical error of the computed voltages; they say nothing about the device itself.");
+        if (data.Maps.Count > 0)
+        {
+            page.Element("p", ReportWords.LiveAccuracy(data));
+        }
+
         ReportTables.Refinement(page, drive);
-        ReportPage.AddPictures(page, pictures.Where(p => p.Kind is "mesh" or "convergence"));
+        page.Raw("<div class=\"figures\">");
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "mesh"));
+        PageShell.Chart(page, "refinement");
+        ReportPage.AddStill(page, pictures.Where(p => p.Kind == "convergence"));
+        page.Raw("</div>");
         page.Element("h2", "Settings");
         ReportTables.Settings(page, drive);
-        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}", path);
+        PageShell.End(page, data.Charts.Count + data.Maps.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
     private static string Turned(TurnResult result)

@@ -1,7 +1,9 @@
 using FieldSolve.Device;
+using FieldSolve.Lockin;
 using FieldSolve.Pictures;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
+using FieldSolve.Turning;
 using Microsoft.Playwright;
 
 namespace FieldSolve.PageTests;
@@ -54,6 +56,10 @@ public sealed class ReportFixture : IAsyncLifetime
     private IBrowser? browser;
     private OpenReport? shared;
 
+    private (TurnResult Result, string Path)? ring, axis;
+    private (LockinResult Result, string Path)? lockin;
+    private (ToleranceResult Result, string Path)? tolerance;
+
     internal DriveResult Result { get; private set; } = null!;
 
     internal string Path { get; private set; } = "";
@@ -98,11 +104,78 @@ public sealed class ReportFixture : IAsyncLifetime
 
     internal void Write(string path) => ReportPage.Write(Result, DrivePictures.Write(Result, Other("pictures"), CancellationToken.None), path);
 
+    /// <summary>The same disc with its wiring stepped round the ring, made when first asked for.</summary>
+    internal (TurnResult Result, string Path) Ring => ring ??= Turned("ring", 0);
+
+    /// <summary>The same disc with its crystal turned.</summary>
+    internal (TurnResult Result, string Path) Axis => axis ??= Turned("axis", 6);
+
+    /// <summary>The same disc driven with AC.</summary>
+    internal (LockinResult Result, string Path) Lockin
+    {
+        get
+        {
+            if (lockin is null)
+            {
+                SheetDevice device = Read("lockin.toml", Text.Replace("from = \"0 uA\"", "from = \"50 uA\"", StringComparison.Ordinal).Replace("steps = 5", "steps = 3", StringComparison.Ordinal)
+                    .Replace("both_signs = true", "", StringComparison.Ordinal));
+                lockin = (LockinRun.Execute(device, new(), null, CancellationToken.None), Other("lockin.html"));
+                WriteLockin(lockin.Value.Path);
+            }
+
+            return lockin.Value;
+        }
+    }
+
+    /// <summary>The same disc with a few causes of error and a few sampled devices.</summary>
+    internal (ToleranceResult Result, string Path) Tolerance
+    {
+        get
+        {
+            if (tolerance is null)
+            {
+                SheetDevice device = Read("tolerance.toml", Text.Replace("steps = 5", "steps = 3", StringComparison.Ordinal)
+                    + "\n[tolerance]\naxis = \"1 deg\"\na = \"0.05 mS\"\n[tolerance.contacts]\nposition = \"50 nm\"\n");
+                ToleranceResult result = ToleranceRun.Execute(device, new() { Samples = 32 }, null, null, CancellationToken.None);
+                tolerance = (result, Other("tolerance.html"));
+                WriteTolerance(tolerance.Value.Path);
+            }
+
+            return tolerance.Value;
+        }
+    }
+
+    internal void WriteTolerance(string path) => ToleranceReport.Write(
+        tolerance!.Value.Result, TolerancePictures.Write(tolerance.Value.Result, Other("pictures-of-tolerance"), CancellationToken.None), path);
+
+    internal void WriteTurn((TurnResult Result, string Path) turn, string path) =>
+        TurnReport.Write(turn.Result, TurnPictures.Write(turn.Result, Other("pictures-of-turn"), CancellationToken.None), path);
+
+    internal void WriteLockin(string path) =>
+        LockinReport.Write(lockin!.Value.Result, LockinPictures.Write(lockin.Value.Result, Other("pictures-of-lockin"), CancellationToken.None), path);
+
+    private (TurnResult Result, string Path) Turned(string name, int steps)
+    {
+        SheetDevice device = Read(name + ".toml", Text.Replace("steps = 5", "steps = 3", StringComparison.Ordinal) + (steps == 0 ? "\n[turn]\naround = \"c\"\n" : ""));
+        TurnResult result = TurnRun.Execute(device, new() { AxisSteps = steps, Ratios = steps == 0 ? [1, 4] : [] }, null, CancellationToken.None);
+        (TurnResult, string) turn = (result, Other(name + ".html"));
+        WriteTurn(turn, turn.Item2);
+        return turn;
+    }
+
+    // Coarser than the drive: what is tested is the page.
+    private SheetDevice Read(string name, string text)
+    {
+        File.WriteAllText(Other(name), text.Replace("error = 2e-3", "error = 5e-3", StringComparison.Ordinal).Replace("even_error = 2e-2", "even_error = 1e-1", StringComparison.Ordinal));
+        DeviceReading reading = DeviceFile.Read(Other(name));
+        return reading.Device ?? throw new InvalidDataException(string.Join('\n', reading.Faults));
+    }
+
     /// <summary>An open report for tests that only ask its script; never changed.</summary>
     internal async Task<IPage> Shared() => (shared ??= await Open()).Page;
 
     /// <summary>Opens the report and waits for its live parts; every request, error and message is kept.</summary>
-    internal async Task<OpenReport> Open(string draw = "", BrowserNewContextOptions? options = null)
+    internal async Task<OpenReport> Open(string draw = "", BrowserNewContextOptions? options = null, string? path = null)
     {
         options ??= new() { ViewportSize = new() { Width = 1200, Height = 1000 } };
         options.ReducedMotion = ReducedMotion.Reduce;
@@ -111,7 +184,7 @@ public sealed class ReportFixture : IAsyncLifetime
         IPage page = await context.NewPageAsync();
         page.SetDefaultTimeout(120_000);
         var report = new OpenReport(page);
-        await page.GotoAsync(new Uri(Path).AbsoluteUri + (draw.Length > 0 ? "#draw=" + draw : ""));
+        await page.GotoAsync(new Uri(path ?? Path).AbsoluteUri + (draw.Length > 0 ? "#draw=" + draw : ""));
         if (options.JavaScriptEnabled != false)
         {
             await page.WaitForFunctionAsync("() => document.documentElement.dataset.ready === 'yes'");

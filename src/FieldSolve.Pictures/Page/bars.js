@@ -3,7 +3,7 @@
 /** Draws a view of kind 'bars' or 'histogram' into an SVG element of a given size. */
 function drawBars(plot, view, series, width, height) {
   const bars = view.kind === 'bars', tilt = bars && view.categories.some(name => name.length * 7 > (width - 86) / Math.max(1, view.categories.length));
-  const left = 72, right = width - 14, top = view.marks.length ? 26 : 10, bottom = height - (tilt ? 96 : 46), values = series.flatMap(s => s.y);
+  const left = 72, right = width - 14, top = view.marks.length ? 26 : 10, bottom = height - (tilt ? 96 : 46), values = series.flatMap(s => s.curve ? s.curve[1] : s.y);
   const low = Math.min(0, ...values), high = Math.max(0, ...values, low === 0 && !values.some(v => v > 0) ? 1 : 0), sy = scaleFor(Math.max(-low, high), view.yUnit), room = 0.05 * (high - low);
   const ay = makeAxis((low < 0 ? low - room : 0) * sy.factor, (high > 0 ? high + room : 0) * sy.factor, bottom, top, false);
   fill(plot, { width, height, viewBox: `0 0 ${width} ${height}` }, []);
@@ -39,7 +39,11 @@ function drawBars(plot, view, series, width, height) {
     const edges = [...series.flatMap(s => s.x), ...view.marks.map(m => m.x)], sx = scaleFor(Math.max(0, ...edges.map(Math.abs)), view.xUnit);
     const ax = makeAxis(Math.min(...edges) * sx.factor, Math.max(...edges) * sx.factor, left, right, false);
     for (const s of series) {
-      s.y.forEach((v, n) => rect(ax.at(s.x[n] * sx.factor), ax.at(s.x[n + 1] * sx.factor), v, s.look, `${s.name}: ${quantity(s.x[n], view.xUnit, 5)} to ${quantity(s.x[n + 1], view.xUnit, 5)}: ${number(v, 6)}`, series.length > 1 ? 0.6 : 0.9));
+      s.y.forEach((v, n) => rect(ax.at(s.x[n] * sx.factor), ax.at(s.x[n + 1] * sx.factor), v, s.look, `${s.name}: ${quantity(s.x[n], view.xUnit, 5)} to ${quantity(s.x[n + 1], view.xUnit, 5)}: ${number(v, 6)}`, series.filter(c => !c.curve).length > 1 ? 0.6 : 0.9));
+    }
+    for (const s of series.filter(s => s.curve)) {
+      const d = s.curve[0].map((x, k) => `${k ? 'L' : 'M'}${ax.at(x * sx.factor).toFixed(1)} ${ay.at(s.curve[1][k] * sy.factor).toFixed(1)}`).join('');
+      plot.append(svg('path', { d, fill: 'none', 'stroke-width': 1.8, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
     }
     for (const v of ax.ticks) {
       labels.append(svg('text', { x: ax.at(v).toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, number(v, 6)));

@@ -34,8 +34,8 @@ function paperSvg(picture, title, extra = '') {
   return { text, width, height: height + top };
 }
 
-/** A linear or logarithmic axis over a range of the screen. */
-function makeAxis(low, high, from, to, log) {
+/** A linear or logarithmic axis over a range of the screen; linear ticks at multiples of a step, round ones by default. */
+function makeAxis(low, high, from, to, log, wanted) {
   if (log) {
     const a = Math.log10(low), b = Math.log10(high) > a ? Math.log10(high) : a + 1, at = v => from + (to - from) * (Math.log10(v) - a) / (b - a), ticks = [];
     for (let p = Math.floor(a); p <= Math.ceil(b); p++) {
@@ -49,7 +49,7 @@ function makeAxis(low, high, from, to, log) {
     return { at, ticks };
   }
   const span = high > low ? high - low : Math.abs(low) || 1, a = high > low ? low : low - span / 2;
-  const step = roundStep(span, Math.max(2, Math.abs(to - from) / (from < to ? 80 : 46)));
+  const step = wanted ?? roundStep(span, Math.max(2, Math.abs(to - from) / (from < to ? 80 : 46)));
   return { at: v => from + (to - from) * (v - a) / span, ticks: multiples(a, a + span, step).map(v => Math.abs(v) < 1e-9 * step ? 0 : Number(v.toPrecision(12))) };
 }
 
@@ -73,6 +73,7 @@ class Chart {
       bar.append(choice('Show', spec.views.map((v, k) => [String(k), v.label]), '0', k => {
         this.view = spec.views[Number(k)];
         this.cursor = null;
+        this.#makeKey();
         this.draw();
       }));
     }
@@ -94,18 +95,14 @@ class Chart {
   }
 
   #makeKey() {
-    const names = new Map();
-    for (const v of this.spec.views) {
-      for (const s of v.series) {
-        names.set(s.name, s);
-      }
-    }
-    for (const [name, s] of names) {
+    this.key.replaceChildren();
+    for (const s of this.view.series) {
+      const { name } = s;
       const sample = svg('svg', { width: 34, height: 14, 'aria-hidden': 'true' },
         svg('path', { d: 'M1 7H33', fill: 'none', 'stroke-width': 2, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }),
-        svg('path', { d: markerPath(s.look, 4), transform: 'translate(17 7)', ...fillOf(s.look) }));
+        s.x.length ? svg('path', { d: markerPath(s.look, 4), transform: 'translate(17 7)', ...fillOf(s.look) }) : '');
       const button = html('button', {
-        type: 'button', 'aria-pressed': 'true', onclick: () => {
+        type: 'button', 'aria-pressed': String(!this.hidden.has(name)), onclick: () => {
           const on = !this.hidden.delete(name);
           if (on) {
             this.hidden.add(name);
@@ -147,8 +144,10 @@ class Chart {
     plot.setAttribute('height', height);
     plot.setAttribute('viewBox', `0 0 ${width} ${height}`);
     plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${points.length} points. Left and right arrow go from point to point, up and down from curve to curve, Enter shows the map.`);
-    const left = 72, right = width - 14, top = 10, bottom = height - 46;
-    const xs = points.map(p => p.x), ys = points.flatMap(p => logY ? [p.y] : [p.y - p.e, p.y + p.e]);
+    const left = 72, right = width - 14, top = view.marks.length ? 24 : 10, bottom = height - 46;
+    const curves = series.filter(s => s.curve).map(s => [s, s.curve[0].map((x, k) => [logX ? Math.abs(x) : x, logY ? Math.abs(s.curve[1][k]) : s.curve[1][k]]).filter(([x, y]) => (!logX || x > 0) && (!logY || y > 0))]);
+    const along = curves.flatMap(([, c]) => c);
+    const xs = [...points.map(p => p.x), ...along.map(c => c[0])], ys = [...points.flatMap(p => logY ? [p.y] : [p.y - p.e, p.y + p.e]), ...logY ? [] : along.map(c => c[1])];
     const sx = scaleFor(Math.max(0, ...xs.map(Math.abs)), view.xUnit), sy = scaleFor(Math.max(0, ...points.map(p => Math.abs(p.y))), view.yUnit);
     const range = (values, log) => {
       let a = Math.min(...values), b = Math.max(...values);
@@ -159,7 +158,7 @@ class Chart {
       return log ? [a / 1.25, b * 1.25] : [a - room, b + room];
     };
     const [x0, x1] = range(xs.map(v => v * sx.factor), logX), [y0, y1] = range(ys.map(v => v * sy.factor), logY);
-    const ax = makeAxis(x0, x1, left, right, logX), ay = makeAxis(y0, y1, bottom, top, logY);
+    const ax = makeAxis(x0, x1, left, right, logX, view.xUnit === '°' && x1 - x0 > 200 ? width < 420 ? 90 : 45 : undefined), ay = makeAxis(y0, y1, bottom, top, logY);
     const grid = svg('g', { class: 'grid', 'stroke-width': 1 }), labels = svg('g', { 'aria-hidden': 'true' });
     for (const v of ax.ticks) {
       grid.append(svg('path', { d: `M${ax.at(v).toFixed(1)} ${top}V${bottom}` }));
@@ -177,13 +176,21 @@ class Chart {
     plot.append(
       svg('defs', null, svg('clipPath', { id: clip }, svg('rect', { x: left - 8, y: top - 8, width: right - left + 16, height: bottom - top + 16 }))),
       grid, svg('path', { class: 'frame', d: `M${left} ${top}V${bottom}H${right}V${top}Z` }), labels);
-    const body = svg('g', { 'clip-path': `url(#${clip})` });
+    const body = svg('g', { 'clip-path': `url(#${clip})` }), hits = svg('g', { class: 'screen' });
+    for (const m of view.marks) {
+      const u = ax.at(m.x * sx.factor).toFixed(1);
+      labels.append(svg('path', { class: 'frame', 'stroke-dasharray': '2 4', d: `M${u} ${top}V${bottom}` }), svg('text', { x: u, y: top - 6, 'text-anchor': 'middle' }, m.name));
+    }
     plot.append(body);
     this.placed = [];
     for (const s of series) {
       const own = points.filter(p => p.s === s).map(p => ({ ...p, u: ax.at(p.x * sx.factor), v: ay.at(p.y * sy.factor) })).filter(p => Number.isFinite(p.u) && Number.isFinite(p.v));
       this.placed.push(own);
-      if (s.line) {
+      const curve = curves.find(([c]) => c === s)?.[1];
+      if (curve) {
+        const d = curve.map(([x, y], k) => `${k ? 'L' : 'M'}${ax.at(x * sx.factor).toFixed(1)} ${ay.at(y * sy.factor).toFixed(1)}`).join('');
+        body.append(svg('path', { d, fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
+      } else if (s.line) {
         const d = [], end = own.length ? 1.08 * Math.max(...own.map(p => p.x)) * sx.factor : x1, start = logX ? x0 : 0;
         for (let k = 0; k <= 80; k++) {
           const shown = logX ? Math.pow(10, Math.log10(start) + (Math.log10(end) - Math.log10(start)) * k / 80) : start + (end - start) * k / 80;
@@ -208,12 +215,13 @@ class Chart {
         }
         const frame = s.map ? s.frame[p.k] : -1;
         if (frame >= 0) {
-          // A generous target for fingers.
-          body.append(svg('circle', { class: 'hit screen', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 11, 'data-map': s.map, 'data-frame': frame, onclick: () => this.pick(s.map, frame) }, svg('title', null, this.#words(p))));
+          // A generous target for fingers, above all lines.
+          hits.append(svg('circle', { class: 'hit', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 11, 'data-map': s.map, 'data-frame': frame, onclick: () => this.pick(s.map, frame) }, svg('title', null, this.#words(p))));
         }
       }
     }
     this.marks = svg('g', { class: 'screen' });
+    body.append(hits);
     plot.append(this.marks);
     this.#mark();
   }

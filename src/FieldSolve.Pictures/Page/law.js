@@ -1,12 +1,19 @@
 // The sheet law as the run sampled it: K = s E + |E| N, N a Fourier sum over the angle of E in the crystal frame, cubic pieces in ln |E|.
 
 class Law {
-  constructor(data) {
+  /** @param table the table of another turn of the same law; by default that of the data. */
+  constructor(data, table = doublesOf(data.table)) {
+    this.data = data;
     Object.assign(this, { zero: data.zero, first: data.first, step: data.step, count: data.count, terms: data.degree + 1, error: data.error });
     this.cos = Math.cos(data.axis);
     this.sin = Math.sin(data.axis);
-    this.table = doublesOf(data.table);
+    this.table = table;
     this.sums = new Float64Array(12);
+  }
+
+  /** The law with the crystal turned by an angle; it shares the table. */
+  turned(angle) {
+    return angle ? new Law({ ...this.data, axis: this.data.axis + angle }, this.table) : this;
   }
 
   /** Fills out with Kx, Ky and, if wanted, dKx/dEx, dKx/dEy, dKy/dEx, dKy/dEy in the lab frame. */

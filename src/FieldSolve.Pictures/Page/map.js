@@ -14,13 +14,24 @@ function extentOf(maps) {
   return { cx: (x0 + x1) / 2, cy: (y0 + y1) / 2, width: x1 - x0, height: y1 - y0 };
 }
 
+// Words for what the slider turns.
+const SLIDERS = {
+  current: { name: 'Drive value', all: 'the whole drive', others: 'the other values of the drive, darker for smaller ones' },
+  phase: { name: 'Phase', all: 'the whole cycle', others: 'the other phases of the cycle' },
+  direction: { name: 'Direction', all: 'all directions', others: 'the other directions' },
+  axis: { name: 'Crystal axis', all: 'all axes', others: 'the other axes' },
+};
+
 class LiveMap {
   /** @param host element; maps that share this view; meshes and laws of the page. */
   constructor(host, maps, meshes, laws, changed) {
     Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, zoom: 1, panX: 0, panY: 0, cursor: null });
-    this.sets = maps.map(m => m.frames.map(f => new FrameFields(meshes[m.mesh], laws[m.law], f)));
+    // A cycle passes most currents twice: such frames are one.
+    this.sets = maps.map(m => m.frames.reduce((list, f) => [...list, f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f) : list[f.same]], []));
     this.mapIndex = 0;
-    this.frameIndex = maps[0].frames.length - 1;
+    this.words = SLIDERS[maps[0].by];
+    // The last drive value, the crest of a cycle, the first direction.
+    this.frameIndex = { current: maps[0].frames.length - 1, phase: this.sets[0].reduce((best, f, k, all) => f.frame.high > all[best].frame.high ? k : best, 0) }[maps[0].by] ?? 0;
     this.mesh = meshes[maps[0].mesh];
     this.crossing = new Crossing(this.mesh, maps[0].direction);
     this.extent = extentOf(maps);
@@ -33,6 +44,16 @@ class LiveMap {
     for (const when of ['beforeprint', 'afterprint']) {
       addEventListener(when, () => this.#size());
     }
+  }
+
+  // The frame with the largest potential has the largest field too.
+  #strongest() {
+    return this.sets[this.mapIndex].reduce((best, f) => f.frame.high - f.frame.low > best.frame.high - best.frame.low ? f : best);
+  }
+
+  /** Role of a contact or tip while the shown frame is on. */
+  roleOf(k) {
+    return this.map.frames[this.frameIndex].roles?.[k] ?? this.map.contacts[k].role;
   }
 
   get map() { return this.maps[this.mapIndex]; }
@@ -60,14 +81,17 @@ class LiveMap {
       this.draw();
       this.drawProfiles();
     });
-    bar.append(this.wiring, this.quantity,
-      choice('Colours span', [['all', 'the whole drive'], ['one', 'the shown value']], 'all', v => { this.wholeDrive = v === 'all'; this.draw(); }),
+    if (maps.length > 1 || maps[0].by === 'current') {
+      bar.append(this.wiring);
+    }
+    bar.append(this.quantity,
+      choice('Colours span', [['all', this.words.all], ['one', 'the shown value']], 'all', v => { this.wholeDrive = v === 'all'; this.draw(); }),
       tick('equipotentials', this.levels, on => { this.levels = on; this.draw(); }),
       tick('current lines', this.flow, on => { this.flow = on; this.draw(); }));
     this.slider = html('input', { type: 'range', min: 0, step: 1, class: 'slide', oninput: () => { this.frameIndex = Number(this.slider.value); this.#select(); } });
     this.playButton = html('button', { type: 'button', class: 'play', 'aria-label': 'Play', onclick: () => this.play(!this.timer) }, '▶');
     this.valueText = html('output', { class: 'value' });
-    const drive = html('div', { class: 'bar drive' }, this.playButton, html('label', { class: 'grow' }, html('span', { class: 'spoken-only' }, 'Drive value'), this.slider), this.valueText);
+    const drive = html('div', { class: 'bar drive' }, this.playButton, html('label', { class: 'grow' }, html('span', { class: 'spoken-only' }, this.words.name), this.slider), this.valueText);
 
     this.canvas = html('canvas', { 'aria-hidden': 'true' });
     this.top = new MapOverlay(this);
@@ -109,7 +133,7 @@ class LiveMap {
     this.left = html('div', { class: 'left' }, html('div', { class: 'stage-frame' }, this.stage), this.top.legend, this.readout, tools);
     this.right = html('div', { class: 'right' },
       html('h3', null, 'Profiles along the two lines'),
-      html('p', { class: 'note-line' }, 'Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: the other values of the drive, darker for smaller ones.'),
+      html('p', { class: 'note-line' }, `Drag the crossing to move the lines and the small circle to turn them. Strong: the value shown; pale: ${this.words.others}.`),
       crossBar, this.profileBox, this.metalBox);
     this.host.append(bar, drive, this.printLine, html('div', { class: this.extent.width > 1.7 * this.extent.height ? 'pair long' : 'pair' }, this.left, this.right), this.noteLine);
     this.view = new MeshCanvas(this.canvas, this.mesh, new URLSearchParams(location.hash.slice(1)).get('draw') ?? '');
@@ -199,7 +223,7 @@ class LiveMap {
     const { map } = this, frame = map.frames[this.frameIndex], largest = Math.max(...frame.metal.map(Math.abs), 0), scale = scaleFor(largest, 'V');
     const body = html('tbody', null), table = html('table', null, html('thead', null, html('tr', null, html('th', null, 'contact'), html('th', null, `potential (${scale.unit})`))), body);
     frame.metal.forEach((v, k) => {
-      const { name, role } = map.contacts[k];
+      const { name } = map.contacts[k], role = this.roleOf(k);
       body.append(html('tr', null, html('td', null, role ? `${name} (${role.replace('+', ' +').replace('-', ' −')})` : name), html('td', null, number(v * scale.factor, 6))));
     });
     this.metalBox.lastChild.replaceChildren(html('p', { class: 'note-line' }, 'As solved on the finest mesh; tables and curves also correct readings by what this mesh is known to lack.'), table);
@@ -241,8 +265,8 @@ class LiveMap {
     if (!this.wholeDrive) {
       return this.fields.range(this.name);
     }
-    // The frame with the largest potential has the largest field too; the anisotropy wants its range over all.
-    const strongest = sets.reduce((best, f) => f.frame.high - f.frame.low > best.frame.high - best.frame.low ? f : best);
+    // The anisotropy wants its range over all.
+    const strongest = this.#strongest();
     if (this.name === 'phi') {
       return [Math.min(...sets.map(f => f.frame.low)), Math.max(...sets.map(f => f.frame.high))];
     }

@@ -33,7 +33,7 @@ class MapOverlay {
   }
 
   draw() {
-    const key = [this.view.zoom, this.view.panX, this.view.panY, this.view.width, this.view.height, this.view.mapIndex, this.view.crossing.version, this.view.flow && this.view.fields.flow ? this.view.frameIndex : '', this.view.cursor?.x, this.view.cursor?.y].join();
+    const key = [this.view.zoom, this.view.panX, this.view.panY, this.view.width, this.view.height, this.view.mapIndex, this.view.crossing.version, this.view.flow && this.view.fields.flow ? this.view.frameIndex : '', this.view.map.frames[0].roles || this.view.map.by === 'axis' ? this.view.frameIndex : '', this.view.cursor?.x, this.view.cursor?.y].join();
     if (key === this.overlayKey) {
       return;
     }
@@ -52,8 +52,8 @@ class MapOverlay {
       inside.append(svg('path', { class: 'rim', d: this.#path(loop) }));
     }
     const names = svg('g', { class: 'names' });
-    for (const c of map.contacts) {
-      const role = c.role.replace(/[+-]$/, ''), sign = c.role.endsWith('+') ? '+' : c.role.endsWith('-') ? '−' : '';
+    map.contacts.forEach((c, number) => {
+      const whole = this.view.roleOf(number), role = whole.replace(/[+-]$/, ''), sign = whole.endsWith('+') ? '+' : whole.endsWith('-') ? '−' : '';
       const d = c.kind === 'tip' ? null : this.#path(c.points), [u, v] = this.view.toScreen(...c.middle);
       if (d) {
         inside.append(svg('path', { class: 'halo', 'stroke-width': c.kind === 'pad' ? 4 : role ? 9 : 7, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': c.kind === 'pad' ? 2 : role ? 6.5 : 4, d }));
@@ -67,6 +67,9 @@ class MapOverlay {
       names.append(svg('text', {
         class: `tag ${role}`, x: (u + 10 * du).toFixed(1), y: (v + 16 * dv + 4).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
       }, c.name + word + sign));
+    });
+    if (map.by !== 'current' && map.by !== 'phase') {
+      this.#drawCrystal(names);
     }
     this.#drawCrossing(inside);
     inside.append(names);
@@ -85,6 +88,15 @@ class MapOverlay {
     const [u, v] = this.view.toScreen(line[k], line[k + 1]), [u0, v0] = this.view.toScreen(line[k - 2], line[k - 1]), size = Math.hypot(u - u0, v - v0) || 1;
     const c = (u - u0) / size, s = (v - v0) / size, at = (p, q) => `${(u + p * c - q * s).toFixed(1)} ${(v + p * s + q * c).toFixed(1)}`;
     return `M${at(6, 0)}L${at(-5, 4.5)}L${at(-2.5, 0)}L${at(-5, -4.5)}Z`;
+  }
+
+  // The crystal axes, in the upper left corner.
+  #drawCrystal(names) {
+    const { margin } = this.view, { cos, sin } = this.view.fields.law, u = margin.left + 34, v = margin.top + 40;
+    [[cos, sin, 'a'], [-sin, cos, 'b']].forEach(([c, s, name]) => {
+      const d = `M${(u - 20 * c).toFixed(1)} ${(v + 20 * s).toFixed(1)}L${(u + 20 * c).toFixed(1)} ${(v - 20 * s).toFixed(1)}`;
+      names.append(svg('path', { class: 'halo', 'stroke-width': 4, d }), svg('path', { class: 'ink', 'stroke-width': 1.5, 'stroke-dasharray': name === 'b' ? '3 3' : null, d }), svg('text', { class: 'tag', x: (u + 28 * c).toFixed(1), y: (v - 28 * s + 4).toFixed(1), 'text-anchor': 'middle' }, name));
+    });
   }
 
   #drawCrossing(inside) {

@@ -6,6 +6,9 @@ namespace FieldSolve.Fields;
 /// </summary>
 public sealed class PotentialFrame
 {
+    /// <summary>Nodal values in all frames of a run together: some 27 MB of report at the most. A larger run keeps fewer frames.</summary>
+    internal const int MostNodalValues = 5_000_000;
+
     /// <summary>x of each node, metres.</summary>
     public required double[] X { get; init; }
 
@@ -29,6 +32,36 @@ public sealed class PotentialFrame
 
     /// <summary>Position in the drive's list of currents.</summary>
     public required int CurrentIndex { get; init; }
+
+    /// <summary>The potential of a map; its arrays are shared.</summary>
+    public static PotentialFrame Of(FieldMap map)
+    {
+        ArgumentNullException.ThrowIfNull(map);
+        return new PotentialFrame
+        {
+            X = map.X,
+            Y = map.Y,
+            Nodes = map.Nodes,
+            Potential = map.Potential,
+            ContactPotential = map.ContactPotential,
+            Wiring = map.Wiring,
+            Current = map.Current,
+            CurrentIndex = map.CurrentIndex,
+        };
+    }
+
+    /// <summary>The frame of a sheet whose every potential is the opposite, at the opposite current.</summary>
+    internal PotentialFrame Negated() => new()
+    {
+        X = X,
+        Y = Y,
+        Nodes = Nodes,
+        Potential = [.. Potential.Select(v => -v)],
+        ContactPotential = [.. ContactPotential.Select(v => -v)],
+        Wiring = Wiring,
+        Current = -Current,
+        CurrentIndex = CurrentIndex,
+    };
 
     /// <summary>Takes the potential out of a solution.</summary>
     /// <param name="space">Nodes.</param>

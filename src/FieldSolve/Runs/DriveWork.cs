@@ -9,9 +9,6 @@ namespace FieldSolve.Runs;
 /// <summary>The solves of a drive: wirings and signs run side by side, each with its own state, so the results do not depend on the number of threads.</summary>
 internal sealed class DriveWork
 {
-    // Nodal values in all frames together: some 27 MB of report at the most. A larger run keeps fewer currents of each wiring.
-    private const int MostFrameValues = 5_000_000;
-
     private readonly DriveOptions options;
     private readonly MeshPair meshes;
     private readonly ReadingPlan[] plans;
@@ -201,7 +198,7 @@ internal sealed class DriveWork
     // Every current while that fits, else as many as fit, evenly spread and with the last one.
     private bool WantsFrame(int k)
     {
-        int each = Math.Max(1, MostFrameValues / (plans.Length * meshes.Fine.Space.NodeCount)), stride = (currents.Count + each - 1) / each;
+        int each = Math.Max(1, PotentialFrame.MostNodalValues / (plans.Length * meshes.Fine.Space.NodeCount)), stride = (currents.Count + each - 1) / each;
         return options.ForPictures && (currents.Count - 1 - k) % stride == 0;
     }
 

@@ -24,12 +24,15 @@ internal sealed class AxisWork
     private readonly StateResult?[,,] states;    // direction, current, sign
     private readonly IReadOnlyList<GoalMeasure>?[] goals;
     private readonly FieldMap?[] maps;
+    private readonly HashSet<int> framed;
+    private readonly PotentialFrame?[] frames;
     private readonly string?[] refusals;
     private readonly int solved;
     private int done;
 
-    public AxisWork(SheetDevice device, IReadOnlyList<TurnPlace> places, AxisMesh measured, IReadOnlyCollection<int> mapped)
+    public AxisWork(SheetDevice device, IReadOnlyList<TurnPlace> places, AxisMesh measured, IReadOnlyCollection<int> mapped, IEnumerable<int> framed)
     {
+        this.framed = [.. framed];
         (this.device, meshes, this.places, this.mapped) = (device, measured.Meshes, places, mapped);
         solved = measured.Plans.Count;
         plans = [.. measured.Plans, .. places.Skip(solved).Select(p => new ReadingPlan(p.Wiring))];
@@ -37,6 +40,7 @@ internal sealed class AxisWork
         states = new StateResult?[places.Count, currents.Count, 2];
         goals = new IReadOnlyList<GoalMeasure>?[places.Count];
         maps = new FieldMap?[places.Count];
+        frames = new PotentialFrame?[places.Count];
         refusals = new string?[places.Count];
         for (int p = 0; p < solved; p++)
         {
@@ -53,6 +57,8 @@ internal sealed class AxisWork
         : new Dictionary<string, string>();
 
     public FieldMap? MapOf(int place) => maps[place];
+
+    public PotentialFrame? FrameOf(int place) => frames[place];
 
     /// <summary>What was solved.</summary>
     public IEnumerable<StateResult> States => Enumerable.Range(0, solved).SelectMany(p => Enumerable.Range(0, currents.Count)
@@ -159,11 +165,8 @@ internal sealed class AxisWork
                     continue;
                 }
 
-                int at = k;
-                Action<double[]>? keep = sign == 0 && k == currents.Count - 1 && mapped.Contains(place)
-                    ? u => maps[place] = FieldMapBuilder.Build(
-                        own.Fine.Space, own.Fine.Equations.Law, u, plans[place].Wiring.Drain, plans[place].Wiring.Name, current, at)
-                    : null;
+                bool reversed = sign == 1;
+                Action<double[]>? keep = k == currents.Count - 1 ? u => Keep(own.Fine, place, current, reversed, u) : null;
                 StateResult result = task.Solve(current, keep, cancel);
                 states[place, k, sign] = result;
                 if (result.Values is null)
@@ -175,5 +178,28 @@ internal sealed class AxisWork
         }
 
         progress?.Report(new("solving", Interlocked.Add(ref done, currents.Count), solved * currents.Count));
+    }
+
+    // The state at the last current, and what follows from it for the axis turned by 180 degrees.
+    private void Keep(FieldLevel level, int place, double current, bool reversed, double[] u)
+    {
+        Wiring wiring = plans[place].Wiring;
+        int last = currents.Count - 1, opposite = place + solved;
+        bool isLinear = device.Law.IsLinear, wantsOpposite = opposite < places.Count && framed.Contains(opposite) && reversed == !isLinear;
+        PotentialFrame? frame = wantsOpposite || (!reversed && framed.Contains(place))
+            ? PotentialFrame.Of(level.Space, u, wiring.Drain, wiring.Name, current, last)
+            : null;
+        if (wantsOpposite)
+        {
+            frames[opposite] = isLinear ? frame : frame!.Negated();
+        }
+
+        if (!reversed)
+        {
+            frames[place] = framed.Contains(place) ? frame : null;
+            maps[place] = mapped.Contains(place)
+                ? FieldMapBuilder.Build(level.Space, level.Equations.Law, u, wiring.Drain, wiring.Name, current, last)
+                : null;
+        }
     }
 }

@@ -14,7 +14,7 @@ public sealed record TurnOptions
     /// <summary>Anisotropy ratios to overlay at fixed sqrt(a b), each at least 1; empty for none.</summary>
     public IReadOnlyList<double> Ratios { get; init; } = [];
 
-    /// <summary>Keep the maps of three directions for the pictures. Default true.</summary>
+    /// <summary>Keep the maps of three directions and the potentials of all for the pictures. Default true.</summary>
     public bool ForPictures { get; init; } = true;
 
     /// <summary>A mesh of the device to use as it is, without refinement; null to make one.</summary>

@@ -59,6 +59,10 @@ public sealed record TurnResult
     /// <summary>Maps at the last current of three directions: the first, and those nearest to 45 and 90 degrees further on.</summary>
     public required IReadOnlyList<TurnMap> Maps { get; init; }
 
+    /// <summary>Potentials at the last current, by direction as in <see cref="Rows"/>: of all directions while that fits, else of as many as fit; empty
+    /// without pictures.</summary>
+    public IReadOnlyList<TurnFrame> Frames { get; init; } = [];
+
     /// <summary>What the curves say about the sheet; null when the run was cancelled.</summary>
     public required AngleFit? Fit { get; init; }
 
@@ -77,3 +81,9 @@ public sealed record TurnResult
 /// <param name="AxisDegrees">From lab x to crystal a.</param>
 /// <param name="Map">At the last current.</param>
 public sealed record TurnMap(double DirectionDegrees, double AxisDegrees, FieldMap Map);
+
+/// <summary>A potential with the direction it belongs to.</summary>
+/// <param name="DirectionDegrees">From source to drain in the lab frame.</param>
+/// <param name="AxisDegrees">From lab x to crystal a.</param>
+/// <param name="Frame">At the last current.</param>
+public sealed record TurnFrame(double DirectionDegrees, double AxisDegrees, PotentialFrame Frame);

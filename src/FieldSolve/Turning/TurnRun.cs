@@ -62,6 +62,7 @@ public static class TurnRun
             Drive = drive with { Stages = clock.Times, Warnings = Shortened(drive.Warnings) },
             Rows = [.. solved.Places.SelectMany((p, k) => solved.Rows[k].Select(r => new TurnRow(p.DirectionDegrees, p.AxisDegrees(device), r)))],
             Maps = solved.Maps,
+            Frames = solved.Frames,
             Fit = fit,
             Ratios = ratios,
             SolvedPoints = points,
@@ -71,7 +72,7 @@ public static class TurnRun
 
     private sealed record Solved(
         DriveResult Drive, MeshPair Meshes, IReadOnlyList<TurnPlace> Places, IReadOnlyList<IReadOnlyList<CurveRow>> Rows, IReadOnlyList<TurnMap> Maps,
-        int SolvedPlaces);
+        IReadOnlyList<TurnFrame> Frames, int SolvedPlaces);
 
     private static Solved TurnTheCurrent(
         SheetDevice device, TurnOptions options, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
@@ -84,7 +85,10 @@ public static class TurnRun
         TurnMap[] maps = [.. Mapped(places).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
             ? new TurnMap(places[k].DirectionDegrees, places[k].AxisDegrees(device), map)
             : null).OfType<TurnMap>()];
-        return new(result with { Maps = [] }, meshes, places, rows, maps, places.Length);
+        TurnFrame[] frames = [.. Framed(places, meshes, options).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
+            ? new TurnFrame(places[k].DirectionDegrees, places[k].AxisDegrees(device), PotentialFrame.Of(map))
+            : null).OfType<TurnFrame>()];
+        return new(result with { Maps = [] }, meshes, places, rows, maps, frames, places.Length);
     }
 
     private static Solved TurnTheAxis(
@@ -101,7 +105,7 @@ public static class TurnRun
 
         DriveSpec drive = device.Drive!;
         AxisMesh mesh = AxisMesh.Make(one, places, options.Mesh, stage => progress?.Report(new(stage, 0, places.Length * drive.Currents.Count)), clock, cancel);
-        var work = new AxisWork(one, places, mesh, options.ForPictures ? Mapped(places) : []);
+        var work = new AxisWork(one, places, mesh, options.ForPictures ? Mapped(places) : [], Framed(places, mesh.Meshes, options));
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
         (List<(int Place, CurveRow Row)> rows, List<CurveRow> reversed) = work.Rows();
         FieldLevel fine = mesh.Meshes.Fine;
@@ -128,7 +132,9 @@ public static class TurnRun
         List<CurveRow>[] perPlace = [.. places.Select((_, k) => rows.Where(r => r.Place == k).Select(r => r.Row).ToList())];
         TurnMap[] maps = [.. Mapped(places).Where(k => work.MapOf(k) is not null)
             .Select(k => new TurnMap(direction, places[k].AxisDegrees(device), work.MapOf(k)!))];
-        return new(result, mesh.Meshes, places, perPlace, maps, work.SolvedPlaces);
+        TurnFrame[] frames = [.. Enumerable.Range(0, places.Length).Where(k => work.FrameOf(k) is not null)
+            .Select(k => new TurnFrame(direction, places[k].AxisDegrees(device), work.FrameOf(k)!))];
+        return new(result, mesh.Meshes, places, perPlace, maps, frames, work.SolvedPlaces);
     }
 
     // The first direction, and those nearest to 45 and 90 degrees further on: along an axis, between the axes and along the other axis if the first is on one.
@@ -139,6 +145,13 @@ public static class TurnRun
             .MinBy(k => (Math.Min(
                 Degrees.Apart(Angle(k), Angle(0) + further), places[0].TurnDegrees == places[^1].TurnDegrees ? 360 : Degrees.Apart(Angle(k), Angle(0) - further)), k)))
             .Distinct()];
+    }
+
+    // Every direction while that fits, else as many as fit, evenly spread.
+    private static int[] Framed(TurnPlace[] places, MeshPair meshes, TurnOptions options)
+    {
+        int each = Math.Max(1, PotentialFrame.MostNodalValues / meshes.Fine.Space.NodeCount), stride = (places.Length + each - 1) / each;
+        return options.ForPictures ? [.. Enumerable.Range(0, places.Length).Where(k => k % stride == 0)] : [];
     }
 
     private static AngleDatum Datum(TurnPlace place, CurveRow[] rows, bool linear) => new(

@@ -28,11 +28,11 @@ internal static class Expect
         }
     }
 
-    public static void AtLeastOne(double value, string name)
+    public static void Exponent(double value, string name)
     {
-        if (!(value >= 1) || double.IsInfinity(value))
+        if (!(value is >= 1 and <= LawParameter.LargestExponent))
         {
-            throw Bad(value, string.Empty, name, "finite and one or greater");
+            throw Bad(value, string.Empty, name, string.Create(CultureInfo.InvariantCulture, $"from 1 to {LawParameter.LargestExponent}"));
         }
     }
 

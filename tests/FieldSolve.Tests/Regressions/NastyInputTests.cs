@@ -36,6 +36,35 @@ public sealed class NastyInputTests : IDisposable
         AssertOnly(Outline, 2, 20, "no plain file");
     }
 
+    // Its powers once overflowed into a law without current.
+    [Theory]
+    [InlineData("1e300")]
+    [InlineData("101")]
+    [InlineData("0.5")]
+    public void An_exponent_beyond_any_corner_is_refused(string sharpness) => AssertOnly(
+        DeviceTexts.Disc.Replace("kind = \"ohmic\"", $"kind = \"saturating\"\nfield_a = \"1 kV/m\"\nfield_b = \"1 kV/m\"\nsharpness = {sharpness}", StringComparison.Ordinal), 8, 13, "from 1 to 100");
+
+    // Each is what the parser of TOML says in its own words; all must say what would be right.
+    [Theory]
+    [InlineData("a = 01", "0")]
+    [InlineData("a = 1_", "number")]
+    [InlineData("a = \"\\q\"", "single quotes")]
+    [InlineData("a = \"\\x4\"", "single quotes")]
+    [InlineData("a = 0xG", "number")]
+    [InlineData("a = 1.", "number")]
+    [InlineData("a = 1e", "number")]
+    [InlineData("a = \"\u0007\"", "remove it")]
+    [InlineData("a.", "key = value")]
+    [InlineData("a.b", "key = value")]
+    [InlineData("a = {b", "}")]
+    [InlineData("[a].b = 1", "key = value")]
+    public void A_syntax_fault_says_what_would_be_right(string line, string fragment)
+    {
+        Fault fault = DeviceFile.Parse(DeviceTexts.Disc + "\n" + line + "\n", "d.toml", "").Faults[0];
+        Assert.Equal(("d.toml", 27), (fault.File, fault.Line));
+        Assert.Contains(fragment, fault.Message, StringComparison.Ordinal);
+    }
+
     [Fact]
     public void An_empty_outline_file_is_said_to_be_empty()
     {

@@ -8,7 +8,9 @@ using FieldSolve.Tests.EndToEndTests;
 using FieldSolve.Tests.MutationTests;
 using Json.Schema;
 using Tomlyn;
-using Tomlyn.Model;
+using TomlArray = Tomlyn.Model.TomlArray;
+using TomlTable = Tomlyn.Model.TomlTable;
+using TomlTableArray = Tomlyn.Model.TomlTableArray;
 
 namespace FieldSolve.Tests.DocumentsTests;
 

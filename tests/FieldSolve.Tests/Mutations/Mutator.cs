@@ -40,6 +40,10 @@ internal sealed partial class Mutator(Random random)
     [GeneratedRegex(@"[-+]?\d+(\.\d+)?([eE][-+]?\d+)?")]
     private static partial Regex Number();
 
+    // Numbers of the law, the drive, tips and accuracy: the outline and its contacts stay sound.
+    [GeneratedRegex(@"(?<=^(?:a|b|hall|d11|d12|field_\w+|sharpness|axis|current|at|frequency|v_a|v_b|tilt_a|gap|chemical_potential|relaxation_time|\w*error) = [^\n]*)(?<![\w.])[-+]?\d+(\.\d+)?([eE][-+]?\d+)?", RegexOptions.Multiline)]
+    private static partial Regex Solved();
+
     [GeneratedRegex("\"([^\"\\n]*)\"")]
     private static partial Regex Quoted();
 
@@ -68,7 +72,7 @@ internal sealed partial class Mutator(Random random)
         string text = good;
         for (int edits = 1 + random.Next(3); edits > 0; edits--)
         {
-            text = At(Number(), text, m =>
+            text = At(Solved(), text, m =>
             {
                 double value = double.Parse(m, CultureInfo.InvariantCulture);
                 double factor = random.Next(4) switch { 0 => -1, 1 => Math.Pow(10, random.Next(-4, 5)), 2 => random.NextDouble() * 2, _ => 0 };

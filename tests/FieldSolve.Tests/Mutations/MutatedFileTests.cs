@@ -38,6 +38,10 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
 
     private const string Wkt = "MULTIPOLYGON (((0 0, 20 0, 20 2, 0 2, 0 0), (4 1, 6 1, 5 1.5, 4 1)), ((30 0, 31 0, 31 1, 30 0)))";
 
+    // Every second field of the sample's: a quarter of the rows.
+    private static readonly string Table = string.Join('\n', File.ReadAllLines(Repository.Sample("bar-table.csv"))
+        .Where(l => l.Split(',') is not [var a, var b, ..] || !(Skipped(a) || Skipped(b))));
+
     private const string Cones = """
         chemical_potential = "50 meV"
         temperature = "0 K"
@@ -68,7 +72,7 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
             (Cones, null, TextKind.Toml, true),
             (Outline, Ring, TextKind.GeoJson, false),
             (Outline, Wkt, TextKind.Wkt, false),
-            (TableDevice, File.ReadAllText(Repository.Sample("bar-table.csv")), TextKind.Csv, false),
+            (TableDevice, Table, TextKind.Csv, false),
             ("[profile]\nfile = \"named.txt\"\n", File.ReadAllText(Repository.Sample("bands/measured-profile.csv")), TextKind.Csv, true),
         ];
         string named = Path.Combine(folder, "named.txt"), main = Path.Combine(folder, "d.toml");
@@ -158,6 +162,8 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
         log.WriteLine(command + ": " + string.Join(", ", counts.Select(c => string.Create(CultureInfo.InvariantCulture, $"{c.Value} ended with {c.Key}"))));
         Assert.True(counts.Keys.Any(e => e != 2), "every input was refused");
     }
+
+    private static bool Skipped(string field) => field.TrimStart('-') is "25000" or "6000";
 
     // A coarse bar with one of the laws.
     private static string Solved(Random random, string command)

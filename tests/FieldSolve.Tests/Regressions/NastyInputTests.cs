@@ -44,6 +44,13 @@ public sealed class NastyInputTests : IDisposable
     public void An_exponent_beyond_any_corner_is_refused(string sharpness) => AssertOnly(
         DeviceTexts.Disc.Replace("kind = \"ohmic\"", $"kind = \"saturating\"\nfield_a = \"1 kV/m\"\nfield_b = \"1 kV/m\"\nsharpness = {sharpness}", StringComparison.Ordinal), 8, 13, "from 1 to 100");
 
+    // Answered once with error bars a thousand times too small.
+    [Theory]
+    [InlineData("\"4 mS\"", "\"40 S\"", "factor of 4E+04")]
+    [InlineData("\"1 mS\"", "\"1 mS\"\nhall = \"1 S\"", "is 500")]
+    public void A_sheet_that_no_mesh_resolves_is_refused(string old, string text, string fragment) =>
+        AssertOnly(DeviceTexts.Disc.Replace(old, text, StringComparison.Ordinal), 4, 1, fragment);
+
     // One wild value once sent the search for the guard to a field of zero, and the reader out with an exception.
     [Fact]
     public void A_table_with_a_wild_value_is_refused()

@@ -53,6 +53,8 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
         gap = "20 meV"
         """;
 
+    private static readonly string[] Samples = ["disc-12.toml", "hall-bar.toml", "ring.toml", "gated-bar.toml"];
+
     private static readonly int Count = Setting("FIELDSOLVE_MUTATIONS", 10_000), From = Setting("FIELDSOLVE_MUTATIONS_FROM", 0);
 
     private readonly string folder = Directory.CreateTempSubdirectory("mutated-").FullName;
@@ -67,7 +69,7 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
             (DeviceTexts.Disc, null, TextKind.Toml, false),
             (DeviceTexts.Bar, null, TextKind.Toml, false),
             (SmallDevice.Text, null, TextKind.Toml, false),
-            .. new[] { "disc-12.toml", "hall-bar.toml", "ring.toml", "gated-bar.toml" }.Select(n => (File.ReadAllText(Repository.Sample(n)), (string?)null, TextKind.Toml, false)),
+            .. Samples.Select(n => (File.ReadAllText(Repository.Sample(n)), (string?)null, TextKind.Toml, false)),
             (File.ReadAllText(Repository.Sample("bands/tilted-cones.toml")), null, TextKind.Toml, true),
             (Cones, null, TextKind.Toml, true),
             (Outline, Ring, TextKind.GeoJson, false),

@@ -8,9 +8,14 @@ internal static class CommandList
     public static IEnumerable<Command> All() =>
     [
         CheckCommand.Create(),
+        MeshCommand.Create(),
         DriveCommand.Create(),
         BandsCommand.Create(),
         LockinCommand.Create(),
         TurnCommand.Create(),
+        ToleranceCommand.Create(),
+        GatherCommand.Create(),
+        FitCommand.Create(),
+        OverlayCommand.Create(),
     ];
 }

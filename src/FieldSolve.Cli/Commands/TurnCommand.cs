@@ -13,18 +13,18 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve turn DEVICE --out DIR.</summary>
 internal static class TurnCommand
 {
-    private const double QuickFactor = 10;
     private const int MostSteps = 720;
     private const double MostRatio = 1000;
 
     internal sealed record Choices(
-        string Device, string Folder, int AxisSteps, string? Wiring, IReadOnlyList<double> Ratios, bool Pictures, bool Quick, bool Quiet, bool Json);
+        string Device, string Folder, string? Mesh, int AxisSteps, string? Wiring, IReadOnlyList<double> Ratios, bool Pictures, bool Quick, bool Quiet, bool Json);
 
     public static Command Create()
     {
         Argument<string> device = SharedOptions.Device();
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        Option<string?> mesh = SharedOptions.Mesh();
         var steps = new Option<int>("--turn-axis")
         {
             Description = "Keep the contacts and turn the crystal axis in so many steps through 360 degrees.",
@@ -64,7 +64,7 @@ internal static class TurnCommand
             + "or turns the crystal under one wiring (--turn-axis).\n\n"
             + "Example: fieldsolve turn meshes/disc-12.toml --out results --ratio 1,2,4,8")
         {
-            device, folder, steps, wiring, ratios, noPictures, quick, quiet, json,
+            device, folder, mesh, steps, wiring, ratios, noPictures, quick, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -73,6 +73,7 @@ internal static class TurnCommand
                 new Choices(
                     path,
                     parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-turn",
+                    parsed.GetValue(mesh),
                     parsed.GetValue(steps),
                     parsed.GetValue(wiring),
                     Ratios(parsed.GetValue(ratios) ?? "") ?? [],
@@ -123,7 +124,12 @@ internal static class TurnCommand
 
         if (choices.Quick)
         {
-            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+            device = RunManners.Quick(device);
+        }
+
+        if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
+        {
+            return ExitCode.WrongInput;
         }
 
         var screen = new Screen(choices.Quiet);
@@ -132,7 +138,7 @@ internal static class TurnCommand
         {
             result = TurnRun.Execute(
                 device,
-                new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures },
+                new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures, Mesh = mesh },
                 screen, cancel);
             if (choices.Quick)
             {
@@ -140,7 +146,7 @@ internal static class TurnCommand
                 {
                     Drive = result.Drive with
                     {
-                        Warnings = [.. result.Drive.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."],
+                        Warnings = [.. result.Drive.Warnings, RunManners.QuickWarning],
                     },
                 };
             }
@@ -155,15 +161,7 @@ internal static class TurnCommand
         Directory.CreateDirectory(choices.Folder);
         result = TurnFiles.Write(result, choices, screen, cancel);
         screen.Clear();
-        foreach (string text in result.Drive.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Drive.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
+        RunManners.Say(result.Drive.Cautions, result.Drive.Warnings);
 
         screen.Print(choices.Json ? TurnText.Json(result, choices.Folder) : TurnText.Plain(result, choices.Folder));
         return result.Drive.Cancelled ? ExitCode.Cancelled : result.Drive.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;

@@ -18,10 +18,10 @@ internal sealed class GoalError
     private const double MixedDistrust = 0.25;
 
     // However badly the correction did on the mesh before, it is not worse than this.
-    private const double MostDoubt = 2;
+    private const double MostDoubt = 10;
 
-    // A correction that missed this share of itself on the mesh before may do so again, and somewhat worse.
-    private const double Repeat = 1.25;
+    // Two meshes of about the same size say little; their corrections count as differing by this share at least.
+    private const double LeastStep = 0.25;
 
     // A current that squeezes through layers far thinner than the triangles changes by some 20 % a split: a geometric series with that ratio
     // still lacks four times its last step. Measured on a disc with an anisotropy of 10^4 and more.
@@ -89,8 +89,9 @@ internal sealed class GoalError
     /// <param name="moved">Corrected value less the corrected value on the mesh before, V.</param>
     public GoalError AfterMove(GoalError before, double moved)
     {
-        double missed = Math.Abs(moved) - before.rest;
-        return With(missed > 0 && before.corrected > 0 ? Math.Clamp(Repeat * missed / before.corrected, least, MostDoubt) : least);
+        // If both corrections miss the same share k of themselves, the corrected value moves by k times their difference.
+        double missed = Math.Abs(moved) - before.rest, step = Math.Max(before.corrected - corrected, LeastStep * before.corrected);
+        return With(missed > 0 && step > 0 ? Math.Clamp(missed / step, least, MostDoubt) : least);
     }
 
     private GoalError With(double doubt, bool forGood = false)

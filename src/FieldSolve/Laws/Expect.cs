@@ -28,11 +28,11 @@ internal static class Expect
         }
     }
 
-    public static void Exponent(double value, string name)
+    public static void AtLeastOne(double value, string name)
     {
-        if (!(value is >= 1 and <= LawParameter.LargestExponent))
+        if (!(value >= 1) || double.IsInfinity(value))
         {
-            throw Bad(value, string.Empty, name, string.Create(CultureInfo.InvariantCulture, $"from 1 to {LawParameter.LargestExponent}"));
+            throw Bad(value, string.Empty, name, "finite and one or greater");
         }
     }
 

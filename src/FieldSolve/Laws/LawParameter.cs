@@ -22,7 +22,7 @@ public sealed record LawParameter(
     {
         ParameterBound.Positive => value > 0,
         ParameterBound.NonNegative => value >= 0,
-        ParameterBound.Exponent => value is >= 1 and <= LargestExponent,
+        ParameterBound.AtLeastOne => value is >= 1 and <= LargestExponent,
         _ => true,
     };
 
@@ -31,7 +31,7 @@ public sealed record LawParameter(
     {
         ParameterBound.Positive => "finite and greater than zero",
         ParameterBound.NonNegative => "finite and zero or greater",
-        ParameterBound.Exponent => string.Create(System.Globalization.CultureInfo.InvariantCulture, $"from 1 to {LargestExponent}"),
+        ParameterBound.AtLeastOne => string.Create(System.Globalization.CultureInfo.InvariantCulture, $"from 1 to {LargestExponent}"),
         _ => "finite",
     };
 }

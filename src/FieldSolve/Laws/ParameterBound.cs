@@ -13,5 +13,5 @@ public enum ParameterBound
     NonNegative,
 
     /// <summary>From 1 to <see cref="LawParameter.LargestExponent"/>.</summary>
-    Exponent,
+    AtLeastOne,
 }

@@ -19,14 +19,14 @@ public sealed class SaturatingLaw : IParametricLaw
     /// <param name="hall">Hall sheet conductance, S, any sign; it does not saturate.</param>
     /// <param name="fieldA">F_a in V/m, &gt; 0.</param>
     /// <param name="fieldB">F_b in V/m, &gt; 0.</param>
-    /// <param name="sharpness">m, from 1 to <see cref="LawParameter.LargestExponent"/>.</param>
+    /// <param name="sharpness">m, finite and at least 1.</param>
     /// <exception cref="ArgumentOutOfRangeException">A value is out of range.</exception>
     public SaturatingLaw(double a, double b, double hall, double fieldA, double fieldB, double sharpness)
     {
         Expect.Ohmic(a, b, hall);
         Expect.Positive(fieldA, "V/m", "field_a");
         Expect.Positive(fieldB, "V/m", "field_b");
-        Expect.Exponent(sharpness, nameof(sharpness));
+        Expect.AtLeastOne(sharpness, nameof(sharpness));
         (this.a, this.b, this.hall, this.fieldA, this.fieldB, this.sharpness) = (a, b, hall, fieldA, fieldB, sharpness);
         AtZeroField = new(a, hall, -hall, b);
     }
@@ -39,7 +39,7 @@ public sealed class SaturatingLaw : IParametricLaw
             .. LawParameters.Ohmic,
             new("field_a", Quantities.Dimension.Field, true, 0, ParameterBound.Positive, "field at which K along a saturates"),
             new("field_b", Quantities.Dimension.Field, true, 0, ParameterBound.Positive, "field at which K along b saturates"),
-            new("sharpness", Quantities.Dimension.None, true, 0, ParameterBound.Exponent, "exponent m of the saturation"),
+            new("sharpness", Quantities.Dimension.None, true, 0, ParameterBound.AtLeastOne, "exponent m of the saturation"),
         ],
         v => GuardedLaw.Around(new SaturatingLaw(v["a"], v["b"], v["hall"], v["field_a"], v["field_b"], v["sharpness"])));
 

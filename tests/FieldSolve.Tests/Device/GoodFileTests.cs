@@ -122,7 +122,7 @@ public class GoodFileTests
             [[wiring]]
             name = "a"
             source = "c1"
-            drain = "i"
+            drain = "c3"
             pairs = { far = ["c2", "c4"] }
             [turn]
             around = "c"

@@ -71,7 +71,7 @@ public class FormulaTests
     [InlineData(1)]
     [InlineData(2)]
     [InlineData(3.5)]
-    [InlineData(100)]
+    [InlineData(200)]
     public void Saturating_law_stays_finite_from_no_field_to_huge_fields(double m)
     {
         SaturatingLaw law = new(4e-3, 1e-3, 0, 1e5, 1e5, m);

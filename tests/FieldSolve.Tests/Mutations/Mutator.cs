@@ -132,16 +132,6 @@ internal sealed partial class Mutator(Random random)
 
     private string JsonEdit(string text)
     {
-        JsonNode? root;
-        try
-        {
-            root = JsonNode.Parse(text);
-        }
-        catch (JsonException)
-        {
-            return NumberEdit(text);
-        }
-
         List<JsonNode> nodes = [];
         void Walk(JsonNode? n)
         {
@@ -157,7 +147,17 @@ internal sealed partial class Mutator(Random random)
             }
         }
 
-        Walk(root);
+        JsonNode? root;
+        try
+        {
+            root = JsonNode.Parse(text);
+            Walk(root);
+        }
+        catch (Exception e) when (e is JsonException or InvalidOperationException or ArgumentException) // half a surrogate pair, a key twice
+        {
+            return NumberEdit(text);
+        }
+
         JsonNode at = nodes[random.Next(nodes.Count)];
         switch (at)
         {

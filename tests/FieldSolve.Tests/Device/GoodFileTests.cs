@@ -29,7 +29,7 @@ public class GoodFileTests
             sheet_current_density = "10 A/m"
             power_density = "2 mW/um^2"
             [fit]
-            here = ["too"]
+            a = true
             """);
         Assert.Equal("Disc", d.Title);
         Assert.Equal("disc", d.Shape);

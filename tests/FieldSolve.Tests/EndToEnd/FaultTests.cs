@@ -163,8 +163,14 @@ public class FaultTests
         string device = folder.Write("bar.toml", SmallDevice.Text);
         var odd = new Dictionary<string, string>
         {
-            ["LC_ALL"] = locale, ["LANG"] = locale, ["DOTNET_SYSTEM_GLOBALIZATION_INVARIANT"] = "0", ["TERM"] = terminal,
-            ["HOME"] = folder["no home"], ["XDG_DATA_HOME"] = "", ["XDG_CACHE_HOME"] = "", ["DOTNET_CLI_HOME"] = folder["no home"],
+            ["LC_ALL"] = locale,
+            ["LANG"] = locale,
+            ["DOTNET_SYSTEM_GLOBALIZATION_INVARIANT"] = "0",
+            ["TERM"] = terminal,
+            ["HOME"] = folder["no home"],
+            ["XDG_DATA_HOME"] = "",
+            ["XDG_CACHE_HOME"] = "",
+            ["DOTNET_CLI_HOME"] = folder["no home"],
         };
         CommandResult one = Command.Run(["drive", device, "--out", folder["out"]], odd);
         CommandResult two = Command.Run(["check", device, "--json"], odd), plain = Command.Run("check", device, "--json");

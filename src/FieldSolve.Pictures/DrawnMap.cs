@@ -40,7 +40,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     {
         double[] ex = mesh.Straight(map.Ex), ey = mesh.Straight(map.Ey);
         double[] field = [.. ex.Zip(ey, (x, y) => Math.Sqrt((x * x) + (y * y)))];
-        (double low, double high) = Percentiles(field);
+        (double low, double high) = Percentiles(mesh, field);
         SiScale scale = SiScale.For(high, "V/m");
         double floor = high > 0 ? Math.Max(low, LeastField * high) : 1;
         double bottom = Math.Log10(floor * scale.Factor), top = high > floor ? Math.Log10(high * scale.Factor) : bottom + 1;
@@ -65,7 +65,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     private SheetFrame Frame(string what) => SheetFrame.Around(
         device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
-    private static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
+    internal static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
     {
         ScottPlot.Panels.ColorBar bar = plot.Add.ColorBar(image);
         bar.Label = label;
@@ -89,7 +89,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     }
 
     // Percentiles weighted by the area of the small triangles, each with the mean of its corners.
-    private (double Low, double High) Percentiles(double[] field)
+    internal static (double Low, double High) Percentiles(FineMesh mesh, double[] field)
     {
         int count = mesh.Count;
         double[] mean = new double[count], area = new double[count];

@@ -94,7 +94,7 @@ public static class ReportPage
         page.Raw("</noscript>");
     }
 
-    private static void AddPictures(Html page, IEnumerable<PictureFile> pictures)
+    internal static void AddPictures(Html page, IEnumerable<PictureFile> pictures)
     {
         foreach (PictureFile p in pictures)
         {

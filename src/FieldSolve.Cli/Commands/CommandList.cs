@@ -10,5 +10,6 @@ internal static class CommandList
         CheckCommand.Create(),
         DriveCommand.Create(),
         BandsCommand.Create(),
+        LockinCommand.Create(),
     ];
 }

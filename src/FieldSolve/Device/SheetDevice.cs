@@ -145,6 +145,9 @@ public sealed record Wiring(string Name, int Source, int Drain, Pair? Along, Pai
 /// <param name="Offset">DC part of an AC drive, A.</param>
 public sealed record DriveSpec(double From, double To, int Steps, bool BothSigns, IReadOnlyList<double> Frequencies, double Offset)
 {
+    /// <summary>Where [drive] stands in the device file: line and column, 1-based.</summary>
+    public (int Line, int Column) At { get; init; } = (1, 1);
+
     /// <summary>The list of currents, A.</summary>
     public IReadOnlyList<double> Currents { get; } = Steps == 1
         ? [From]

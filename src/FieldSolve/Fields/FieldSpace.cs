@@ -7,12 +7,13 @@ namespace FieldSolve.Fields;
 
 /// <summary>
 /// Quadratic triangles on a mesh, isoparametric where an edge lies on an arc, with the unknowns of a device: one per free node, one
-/// per contact. The nodes on an ideal contact share its unknown; a resistive contact keeps its metal's unknown behind the resistance. The first
-/// contact's metal is the zero of the potential while solving; readings are differences, so the choice does not matter.
+/// per contact. The nodes on an ideal contact share its unknown; a resistive contact keeps its metal's unknown behind the resistance. One
+/// contact's metal is the zero of the potential while solving. In a steady state readings are differences, so the choice does not matter; a sheet
+/// over a gate wants the drain.
 /// </summary>
 public sealed class FieldSpace
 {
-    private FieldSpace(TriangleMesh mesh, IReadOnlyList<Contact> contacts)
+    private FieldSpace(TriangleMesh mesh, IReadOnlyList<Contact> contacts, int ground)
     {
         Mesh = mesh;
         Contacts = contacts;
@@ -34,7 +35,7 @@ public sealed class FieldSpace
         }
 
         Curved = BendRim(edge);
-        (Unknown, ContactUnknown, Size) = Number(edge);
+        (Unknown, ContactUnknown, Size) = Number(edge, ground);
         (Pattern, TrianglePlaces) = UnknownPattern.Build(this);
     }
 
@@ -65,7 +66,7 @@ public sealed class FieldSpace
     /// </summary>
     public int[] Unknown { get; }
 
-    /// <summary>Unknown of each contact's metal; <see cref="Size"/> for the first contact.</summary>
+    /// <summary>Unknown of each contact's metal; <see cref="Size"/> for the one at zero potential.</summary>
     public int[] ContactUnknown { get; }
 
     /// <summary>Number of unknowns.</summary>
@@ -83,12 +84,13 @@ public sealed class FieldSpace
     /// <summary>Builds the space.</summary>
     /// <param name="device">Gives the contacts.</param>
     /// <param name="mesh">Triangles of the device's domain.</param>
+    /// <param name="ground">Contact whose metal is the zero of the potential.</param>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
-    public static FieldSpace Build(SheetDevice device, TriangleMesh mesh)
+    public static FieldSpace Build(SheetDevice device, TriangleMesh mesh, int ground = 0)
     {
         ArgumentNullException.ThrowIfNull(device);
         ArgumentNullException.ThrowIfNull(mesh);
-        var space = new FieldSpace(mesh, device.Contacts);
+        var space = new FieldSpace(mesh, device.Contacts, ground);
         SheetParts.RequireOne(space);
         return space;
     }
@@ -172,7 +174,7 @@ public sealed class FieldSpace
         return curved;
     }
 
-    private (int[] Unknown, int[] ContactUnknown, int Size) Number(int[] edge)
+    private (int[] Unknown, int[] ContactUnknown, int Size) Number(int[] edge, int ground)
     {
         const int Free = -1;
         int[] owner = new int[NodeCount];
@@ -195,12 +197,12 @@ public sealed class FieldSpace
         }
 
         int[] ofContact = new int[Contacts.Count];
-        for (int c = 1; c < Contacts.Count; c++)
+        for (int c = 0; c < Contacts.Count; c++)
         {
-            ofContact[c] = size++;
+            ofContact[c] = c == ground ? 0 : size++;
         }
 
-        ofContact[0] = size;
+        ofContact[ground] = size;
         for (int n = 0; n < NodeCount; n++)
         {
             if (unknown[n] == Free)

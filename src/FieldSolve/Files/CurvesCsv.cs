@@ -90,7 +90,7 @@ public static class CurvesCsv
         ];
     }
 
-    private static void AddLine(StringBuilder text, IEnumerable<string> cells)
+    internal static void AddLine(StringBuilder text, IEnumerable<string> cells)
     {
         bool first = true;
         foreach (string cell in cells)

@@ -17,8 +17,10 @@ public static class RunRecord
     /// <param name="result">The run.</param>
     /// <param name="command">Command word, for example "drive".</param>
     /// <param name="options">Options as the user gave them; written in the order of their names.</param>
+    /// <param name="more">Writes what only this command has, at the end; may be null.</param>
     /// <remarks>Numbers that are not finite are written as null.</remarks>
-    public static string Text(DriveResult result, string command, IReadOnlyDictionary<string, string> options)
+    public static string Text(
+        DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null)
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(options);
@@ -40,6 +42,7 @@ public static class RunRecord
             WriteStages(json, result.Stages);
             WriteTexts(json, "warnings", result.Warnings);
             WriteTexts(json, "cautions", result.Cautions);
+            more?.Invoke(json);
             json.WriteEndObject();
         }
 
@@ -49,8 +52,9 @@ public static class RunRecord
     /// <summary>Writes the record to a file as a whole. Parameters as in <see cref="Text"/>.</summary>
     /// <exception cref="IOException">The file cannot be written.</exception>
     /// <exception cref="UnauthorizedAccessException">The file may not be written.</exception>
-    public static void Write(string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options) =>
-        WholeFile.WriteText(path, Text(result, command, options));
+    public static void Write(
+        string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null) =>
+        WholeFile.WriteText(path, Text(result, command, options, more));
 
     private static void WriteDevice(Utf8JsonWriter json, DriveResult result)
     {
@@ -162,7 +166,7 @@ public static class RunRecord
         json.WriteEndArray();
     }
 
-    private static void WriteNumber(Utf8JsonWriter json, string name, double value)
+    internal static void WriteNumber(Utf8JsonWriter json, string name, double value)
     {
         if (double.IsFinite(value))
         {

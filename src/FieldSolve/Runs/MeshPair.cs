@@ -47,13 +47,13 @@ internal sealed class MeshPair
     /// <param name="exponent">As <see cref="Exponent"/>, for an even part.</param>
     public ErrorShares EvenShares(double[] exponent) => SharesOf(kinds, exponent, false);
 
-    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
         FieldLevel? coarse = null, fine = null;
         Parallel.Invoke(
             new ParallelOptions { CancellationToken = cancel },
-            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel),
-            () => coarse = FieldLevel.Build(device, mesh, law, cancel));
+            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground),
+            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground));
         return new(coarse!, fine!);
     }
 

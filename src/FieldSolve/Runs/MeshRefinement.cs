@@ -120,6 +120,45 @@ internal sealed class MeshRefinement
         }
     }
 
+    /// <summary>
+    /// Refines further until the readings at a smaller current meet their wanted errors as well, with some room. Even parts can be relatively less
+    /// exact at a weak drive than at a strong one: where a law fades, the weak drive keeps more of the singular field at contact ends. The last level is not
+    /// measured again; <see cref="Goals"/> are those of the mesh before.
+    /// </summary>
+    public MeshRefinement Extended(
+        SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double current, bool bothSigns, Action<string> tell,
+        StageClock clock, CancellationToken cancel)
+    {
+        const double Room = 0.8;
+        const int MostRounds = 1;   // the sizes aim well below what is wanted; what is still missed is marked in the rows
+        MeshRefinement now = this;
+        int mostTriangles = (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle);
+        double[] currents = [.. plans.Select(_ => current)];
+        for (int round = 0; round < MostRounds; round++)
+        {
+            MeshPair meshes = now.Meshes;
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, [], bothSigns, cancel));
+            if (measured.All(g => g.Error.Bar <= Room * g.Wanted))
+            {
+                return now;
+            }
+
+            int level = now.Levels.Count;
+            ISizeField size = MeshSizes.Next(meshes, [.. now.Goals, .. measured.Select(g => g with { Wanted = Room * g.Wanted })], 0, (int)(0.95 * mostTriangles));
+            TriangleMesh? mesh = clock.Time("mesh", () => Mesh(device, size, mostTriangles, cancel));
+            if (mesh is null || mesh.TriangleCount <= meshes.Coarse.Space.Mesh.TriangleCount)
+            {
+                return now;
+            }
+
+            tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
+            MeshPair next = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
+            now = new(next, now.Goals, [.. now.Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [])], now.IsMet);
+        }
+
+        return now;
+    }
+
     // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
     {

@@ -36,11 +36,16 @@ public sealed class FieldLevel
     public SparseLu AtZero { get; }
 
     /// <summary>Sets up a mesh.</summary>
+    /// <param name="device">Gives the contacts.</param>
+    /// <param name="mesh">Triangles of the device's domain.</param>
+    /// <param name="law">In the lab frame.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <param name="ground">Contact whose metal is the zero of the potential.</param>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
     /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
-    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel)
+    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
-        FieldSpace space = FieldSpace.Build(device, mesh);
+        FieldSpace space = FieldSpace.Build(device, mesh, ground);
         var equations = new SheetEquations(space, law);
         (double[] x, double[] y) = space.Places();
         SparseAnalysis analysis = SparseAnalysis.Analyse(space.Pattern, x, y, cancel);

@@ -11,6 +11,7 @@ public class SampleTests(SampleRuns runs)
     {
         ["bar-table"] = (1, 5, []),
         ["disc-12"] = (3, 11, []),
+        ["gated-bar"] = (1, 3, []),
         ["flake"] = (1, 5, ["right", "tip"]),
         ["hall-bar"] = (1, 5, ["across 2", "along bottom"]),
         ["ring"] = (1, 7, ["along b", "a to b"]),

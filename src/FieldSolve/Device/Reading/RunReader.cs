@@ -29,7 +29,7 @@ internal static class RunReader
         double offset = drive.Quantity("offset", Dimension.Current, Range.Any, example: "0 uA") ?? 0;
         List<double> frequencies = Frequencies(drive);
         drive.Finish();
-        return current is { } c ? new DriveSpec(c.From, c.To, c.Steps, bothSigns, frequencies, offset) : null;
+        return current is { } c ? new DriveSpec(c.From, c.To, c.Steps, bothSigns, frequencies, offset) { At = (drive.At.Line, drive.At.Column) } : null;
     }
 
     public static TurnSpec? Turn(Section root, ContactReader contacts)

@@ -1,0 +1,99 @@
+using System.CommandLine;
+using FieldSolve.Cli.Output;
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Lockin;
+using FieldSolve.Meshing;
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Cli.Commands;
+
+/// <summary>fieldsolve lockin DEVICE --out DIR.</summary>
+internal static class LockinCommand
+{
+    private const double QuickFactor = 10;
+
+    private sealed record Choices(string Device, string Folder, bool Pictures, bool Quick, bool Quiet, bool Json);
+
+    public static Command Create()
+    {
+        Argument<string> device = SharedOptions.Device();
+        Option<string?> folder = SharedOptions.Out();
+        Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; harmonics and run.json only." };
+        var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+        var command = new Command(
+            "lockin",
+            "AC drive: the harmonics of every pair as a lock-in amplifier reads them.\n\n"
+            + "Example: fieldsolve lockin meshes/disc-12.toml --out results")
+        {
+            device, folder, noPictures, quick, quiet, json,
+        };
+        command.SetAction((ParseResult parsed, CancellationToken cancel) =>
+        {
+            string path = parsed.GetValue(device)!;
+            return Task.Run(() => Run(
+                new Choices(
+                    path,
+                    parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-lockin",
+                    !parsed.GetValue(noPictures),
+                    parsed.GetValue(quick),
+                    parsed.GetValue(quiet),
+                    parsed.GetValue(json)),
+                cancel));
+        });
+        return command;
+    }
+
+    private static int Run(Choices choices, CancellationToken cancel)
+    {
+        if (DeviceLoading.Load(choices.Device) is not { } device)
+        {
+            return ExitCode.WrongInput;
+        }
+
+        if (LockinRun.Missing(device) is { } missing)
+        {
+            Console.Error.WriteLine(missing);
+            return ExitCode.WrongInput;
+        }
+
+        if (choices.Quick)
+        {
+            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+        }
+
+        var screen = new Screen(choices.Quiet);
+        LockinResult result;
+        try
+        {
+            result = LockinRun.Execute(device, new LockinOptions { Frames = choices.Pictures }, screen, cancel);
+            if (choices.Quick)
+            {
+                result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
+            }
+        }
+        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
+        {
+            screen.Clear();
+            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
+            return ExitCode.WrongInput;
+        }
+
+        Directory.CreateDirectory(choices.Folder);
+        result = LockinFiles.Write(result, choices.Folder, choices.Pictures && !result.Cancelled, choices.Quick, screen, cancel);
+        screen.Clear();
+        foreach (string text in result.Cautions)
+        {
+            Console.Error.WriteLine("caution: " + text);
+        }
+
+        foreach (string text in result.Warnings)
+        {
+            Console.Error.WriteLine("warning: " + text);
+        }
+
+        screen.Print(choices.Json ? LockinText.Json(result, choices.Folder) : LockinText.Plain(result, choices.Folder));
+        return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;
+    }
+}

@@ -67,9 +67,9 @@ internal static class DriveLive
             [.. frames.Select(f => new LiveFrame(SiScale.Text(f.Current, "A"), f.Current, f.Potential, f.ContactPotential))]);
     }
 
-    private static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
+    internal static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
 
-    private static string Role(Wiring wiring, Terminal t) =>
+    internal static string Role(Wiring wiring, Terminal t) =>
         t == new Terminal(false, wiring.Source) ? "source"
         : t == new Terminal(false, wiring.Drain) ? "drain"
         : t == wiring.Along?.Plus ? "along+"

@@ -11,5 +11,6 @@ internal static class CommandList
         DriveCommand.Create(),
         BandsCommand.Create(),
         LockinCommand.Create(),
+        OpenCommand.Create(),
     ];
 }

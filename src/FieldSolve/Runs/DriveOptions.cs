@@ -21,4 +21,7 @@ public sealed record DriveOptions
 
     /// <summary>Also keep the maps that the pictures need (a few currents of each wiring). Default true.</summary>
     public bool ForPictures { get; init; } = true;
+
+    /// <summary>Also keep the potential at every current, as live pages show it, without the fields that still pictures need. Default false.</summary>
+    public bool Frames { get; init; }
 }

@@ -4,7 +4,7 @@
 function plusMinus(value, error, unit) {
   const scale = scaleFor(Math.max(Math.abs(value), Math.abs(error)), unit), f = scale.factor;
   const places = error > 0 ? Math.max(0, Math.min(9, 1 - Math.floor(Math.log10(error * f)))) : 4;
-  return `${(value * f).toFixed(places).replace('-', '−')} ± ${(error * f).toFixed(places)} ${scale.unit}`;
+  return `${(value * f).toFixed(places).replace('-', '−')} ±\u00A0${(error * f).toFixed(places)}\u00A0${scale.unit}`;
 }
 
 class LayoutReadings {
@@ -28,7 +28,7 @@ class LayoutReadings {
       this.host.replaceChildren(html('p', { class: 'note-line' }, answer?.failure ? `No answer: ${answer.failure}.` : 'Waiting for an answer.'));
       return;
     }
-    const head = ['', 'reading', 'odd part', 'even part', ...(reference ? ['change'] : [])], body = html('tbody', null);
+    const head = ['', reference ? 'reading, and change from the reference' : 'reading', 'odd part', 'even part'], body = html('tbody', null);
     const largest = Math.max(...row.readings.map(r => Math.abs(r.value)));
     for (const r of row.readings) {
       const share = largest > 0 ? Math.abs(r.value) / largest : 0, bar = svg('svg', { class: 'bar-line', viewBox: '0 0 100 6', preserveAspectRatio: 'none', 'aria-hidden': 'true' },
@@ -38,7 +38,7 @@ class LayoutReadings {
       cells.push(html('td', null, r.odd === undefined ? '–' : plusMinus(r.odd, r.error, 'V')), html('td', null, r.even === undefined ? '–' : plusMinus(r.even, r.evenError ?? 0, 'V')));
       if (reference) {
         const old = reference.readings.find(o => o.pair === r.pair);
-        cells.push(html('td', { class: 'change' }, old ? plusMinus(r.value - old.value, r.error + old.error, 'V') : '–'));
+        cells[1].append(html('div', { class: 'change' }, old ? `Δ ${plusMinus(r.value - old.value, r.error + old.error, 'V')}` : 'Δ –'));
       }
       body.append(html('tr', { 'data-pair': r.pair, 'data-value': r.value, 'data-error': r.error }, ...cells));
     }

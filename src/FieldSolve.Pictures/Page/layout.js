@@ -85,14 +85,14 @@ class LayoutApp {
     }
     const mapHost = html('div', { class: 'map-host' }), bar = html('div', { class: 'bar' }, this.wiringBox,
       choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }), this.toolBox,
-      html('span', { class: 'zooms' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in')), this.badge);
+      html('span', { class: 'zooms' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in')));
     this.hint = html('p', { class: 'note-line hint-line' }, '');
     this.fault = html('p', { class: 'fault-line', role: 'alert', hidden: true });
-    const readings = html('section', { class: 'live' }), charts = html('section', { class: 'live' });
+    const readings = html('div', null), readingsBox = html('section', { class: 'live' }, html('div', { class: 'readings-head' }, html('h3', null, 'Readings'), this.badge), readings), charts = html('section', { class: 'live' });
     this.fieldsHost = html('section', { class: 'live fields-host', 'aria-label': 'Values of the device file' });
     const partTools = html('div', { class: 'part-tools' }, this.dropButton = button('Remove contact', 'Remove the chosen contact or tip (Delete)', () => this.#drop(this.selected), 'drop'),
       button('Add wiring', 'A wiring like the last one with the current turned round', () => this.link.edit([{ op: 'add', kind: 'wiring', x: 0, y: 0 }]), 'add-wiring'), this.dropWiring = button('Remove wiring', 'Remove the wiring on show', () => this.#drop(this.wiring), 'drop-wiring'));
-    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readings, html('div', null, partTools, this.fieldsHost));
+    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
     document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, '')));
     this.stage = new LayoutStage(mapHost, {
       move: (name, x, y, gesture) => this.link.edit([{ op: 'move', name, x, y }], gesture),

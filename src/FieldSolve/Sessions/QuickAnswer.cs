@@ -18,12 +18,13 @@ namespace FieldSolve.Sessions;
 internal sealed class QuickAnswer
 {
     // Against the sizes that a drive begins with.
-    private const double Stretch = 1.5;
+    private const double Stretch = 2;
 
     private TriangleMesh? last;
     private MeshMover? mover;
+    private MeshPair? before;  // its ordering serves again while the topology stays
 
-    /// <summary>Solves the wirings that are looked at, at the largest current and at half of it.</summary>
+    /// <summary>Solves the wirings that are looked at, at the largest current; the row at zero current gives a curve its other end.</summary>
     /// <param name="device">With a drive.</param>
     /// <param name="version">Version of the text.</param>
     /// <param name="wirings">Names; others are left out. Empty for the first wiring.</param>
@@ -34,12 +35,11 @@ internal sealed class QuickAnswer
         Wiring[] chosen = [.. device.Wirings.Where(w => wirings.Contains(w.Name))];
         chosen = chosen.Length > 0 ? chosen : [.. device.Wirings.Take(1)];
         double largest = MeshRefinement.Largest(device.Drive!.Currents);
-        DriveSpec drive = new(largest / 2, largest, largest == 0 ? 1 : 2, device.Drive.BothSigns, [], 0);
-        SheetDevice reduced = device with { Wirings = chosen, Drive = largest == 0 ? drive with { From = 0 } : drive };
+        SheetDevice reduced = device with { Wirings = chosen, Drive = new(0, largest, largest == 0 ? 1 : 2, device.Drive.BothSigns, [], 0) };
         try
         {
             TriangleMesh mesh = Mesh(device, cancel);
-            MeshPair meshes = MeshPair.Build(reduced, mesh, new LabLaw(device.Law, device.Axis), cancel);
+            MeshPair meshes = before = MeshPair.Build(reduced, mesh, new LabLaw(device.Law, device.Axis), cancel, like: before);
             var work = new DriveWork(reduced, new DriveOptions { Maps = MapChoice.None, ForPictures = false, Frames = true }, meshes, [.. chosen.Select(w => new ReadingPlan(w))]);
             if (work.Run(null, cancel))
             {
@@ -52,7 +52,7 @@ internal sealed class QuickAnswer
         }
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
         {
-            last = null;
+            (last, before) = (null, null);
             return new(version, device, false, [], [], e.Message.ReplaceLineEndings(" "), watch.Elapsed.TotalMilliseconds, null);
         }
     }

@@ -26,6 +26,13 @@ if (args is ["native", ..])
     return;
 }
 
+// What "native" starts for the libraries' side.
+if (args is ["peer", _, _])
+{
+    FieldSolve.Benchmarks.Native.PeerProcess.Serve(args[1], int.Parse(args[2], System.Globalization.CultureInfo.InvariantCulture), Console.Out);
+    return;
+}
+
 // Short runs inside this process: a whole round takes a few minutes. "--filter *Mesher*" picks one question, "--list flat" shows them all.
 ManualConfig config = ManualConfig.Create(DefaultConfig.Instance)
     .AddJob(Job.ShortRun.WithToolchain(InProcessEmitToolchain.Instance))

@@ -65,6 +65,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
     private SheetFrame Frame(string what) => SheetFrame.Around(
         device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
+    /// <summary>The colour bar at the right of a map.</summary>
     internal static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
     {
         ScottPlot.Panels.ColorBar bar = plot.Add.ColorBar(image);

@@ -11,8 +11,6 @@ public static class DrivePictures
     /// <summary>Most wirings that get maps and cross-sections of their own; a drive with more would drown its report.</summary>
     public const int MostMappedWirings = 12;
 
-    private sealed record Plan(string Kind, string? Wiring, string Name, string Caption, Func<Figure?> Draw);
-
     /// <summary>Draws the pictures and writes each as PNG and SVG; the same result always gives the same bytes.</summary>
     /// <param name="result">The drive; maps, mesh and rows may be empty, the pictures that need them are then left out.</param>
     /// <param name="folder">Where they go; made when missing.</param>
@@ -26,34 +24,10 @@ public static class DrivePictures
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
 
-        EmbeddedFont.Use();
-        Plan[] plans = [.. Plans(result)];
-        PictureFile?[] files = new PictureFile?[plans.Length];
-        try
-        {
-            Parallel.For(0, plans.Length, new ParallelOptions { CancellationToken = cancel }, k =>
-            {
-                Plan plan = plans[k];
-                using Figure? figure = plan.Draw();
-                if (figure is not null)
-                {
-                    PictureFile file = new(
-                        plan.Kind, plan.Wiring, plan.Caption,
-                        Path.Combine(folder, plan.Name + ".png"), Path.Combine(folder, plan.Name + ".svg"), figure.Width, figure.Height);
-                    figure.Save(file.PngPath, file.SvgPath);
-                    files[k] = file;
-                }
-            });
-        }
-        catch (AggregateException e) when (e.InnerExceptions.Count > 0)
-        {
-            System.Runtime.ExceptionServices.ExceptionDispatchInfo.Throw(e.InnerExceptions[0]);
-        }
-
-        return [.. files.OfType<PictureFile>()];
+        return PictureBatch.Write([.. Plans(result)], folder, cancel);
     }
 
-    private static IEnumerable<Plan> Plans(DriveResult result)
+    private static IEnumerable<PicturePlan> Plans(DriveResult result)
     {
         SheetDevice device = result.Device;
         yield return new(

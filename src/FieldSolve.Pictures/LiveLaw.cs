@@ -9,7 +9,10 @@ namespace FieldSolve.Pictures;
 /// </summary>
 internal sealed class LiveLaw
 {
-    private const int Angles = 64, MostDegree = 24, StepsPerDecade = 40, Decades = 4;
+    private const int Angles = 64, MostDegree = 24, StepsPerDecade = 40;
+
+    // Fields beside the end of a contact can be thousands of times those in the middle of the sheet.
+    private const int Decades = 7;
     private const double Negligible = 1e-11;
 
     private readonly ISheetLaw law;
@@ -90,10 +93,10 @@ internal sealed class LiveLaw
     private double Measure(double largest)
     {
         double worst = 0;
-        for (int k = 0; k < 600; k++)
+        for (int k = 0; k < 1200; k++)
         {
             // Golden-ratio steps spread the fields over sizes and directions.
-            double r = largest * Math.Pow(10, -3.0 * ((k * 0.6180339887498949) % 1)), angle = 2 * Math.PI * ((k * 0.7548776662466927) % 1);
+            double r = largest * Math.Pow(10, -Decades * ((k * 0.6180339887498949) % 1)), angle = 2 * Math.PI * ((k * 0.7548776662466927) % 1);
             double[] ea = [r * Math.Cos(angle)], eb = [r * Math.Sin(angle)], ka = [0], kb = [0];
             try
             {

@@ -1,7 +1,7 @@
 namespace FieldSolve.Pictures;
 
 /// <summary>A picture that was written, as PNG and as SVG.</summary>
-/// <param name="Kind">"device", "potential", "field", "sections", "curves", "even", "mesh" or "convergence".</param>
+/// <param name="Kind">"device", "potential", "field", "sections", "curves", "even", "polar", "angles", "ratios", "mesh" or "convergence".</param>
 /// <param name="Wiring">Name of the wiring it shows; null when it shows all.</param>
 /// <param name="Caption">What is seen, one or two sentences.</param>
 /// <param name="PngPath">Path of the PNG.</param>

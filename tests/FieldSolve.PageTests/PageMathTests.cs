@@ -40,7 +40,7 @@ public class PageMathTests(ReportFixture report)
 
     [BrowserTheory]
     [InlineData("ohmic", 1e-12)]
-    [InlineData("quadratic", 5e-6)]
+    [InlineData("quadratic", 2e-5)]  // the guard starts with a jump of the third derivative, which cubic pieces round off
     [InlineData("quadratic with a limit", 1e-6)]
     [InlineData("cubic", 1e-6)]
     [InlineData("saturating", 1e-6)]
@@ -57,7 +57,7 @@ public class PageMathTests(ReportFixture report)
         List<double[]> fields = [];
         for (int k = 0; k < 60; k++)
         {
-            double r = Largest * Math.Pow(10, -5.0 * ((k * 0.618) % 1)), angle = 2.399 * k;
+            double r = Largest * Math.Pow(10, -8.0 * ((k * 0.618) % 1)), angle = 2.399 * k;
             fields.Add([r * Math.Cos(angle), r * Math.Sin(angle)]);
         }
 

@@ -30,7 +30,7 @@ public class PageTests(ReportFixture report)
         Assert.True(Math.Abs(value - expected) <= 0.501 * unit, $"The page shows {shown}, the solver has {expected:G9}.");
     }
 
-    private async Task<Dictionary<string, string>> Reading(IPage page)
+    private static async Task<Dictionary<string, string>> Shown(IPage page)
     {
         string text = await page.Locator(".readout").InnerTextAsync();
         Dictionary<string, string> found = [];
@@ -132,11 +132,16 @@ public class PageTests(ReportFixture report)
             }
 
             read++;
-            Dictionary<string, string> shown = await Reading(page);
+            Dictionary<string, string> shown = await Shown(page);
             SameDigits(expected.Phi, shown["φ"], 5);
             double[] kx = [0], ky = [0];
             law.Evaluate([expected.Ex], [expected.Ey], kx, ky);
             SameDigits(double.Hypot(expected.Ex, expected.Ey), shown["E"].Split(" at ")[0], 4);
+            double[] raw = await page.EvaluateAsync<double[]>(
+                "(([x, y]) => { const m = fieldsolve.map, v = m.fields.at(m.mesh.locate(x, y)); return [v.phi, v.ex, v.ey, v.kx, v.ky, m.laws[0].error]; })", place);
+            string all = string.Join(", ", new[] { expected.Phi, expected.Ex, expected.Ey, kx[0], ky[0] }.Zip(raw, (p, q) => $"{p:R} {q:R}")) + $", law {raw[5]:G3}";
+            Assert.True(double.Hypot(raw[1] - expected.Ex, raw[2] - expected.Ey) <= 1e-6 * double.Hypot(expected.Ex, expected.Ey), all);
+            Assert.True(double.Hypot(raw[3] - kx[0], raw[4] - ky[0]) <= 2e-6 * double.Hypot(kx[0], ky[0]), all);
             SameDigits(double.Hypot(kx[0], ky[0]), shown["K"].Split(" at ")[0], 4);
             SameDigits((expected.Ex * kx[0]) + (expected.Ey * ky[0]), shown["E·K"], 4);
             double angle = double.Parse(shown["E"].Split(" at ")[1].TrimEnd('°').Replace('−', '-'), CultureInfo.InvariantCulture);
@@ -285,7 +290,7 @@ public class PageTests(ReportFixture report)
             string picture = await Keep(place, "SVG");
             System.Xml.Linq.XDocument svg = System.Xml.Linq.XDocument.Parse(picture);
             Assert.Equal("svg", svg.Root!.Name.LocalName);
-            Assert.NotEmpty(svg.Descendants().Where(e => e.Name.LocalName == "path"));
+            Assert.Contains(svg.Descendants(), e => e.Name.LocalName == "path");
             IDownload png = await page.RunAndWaitForDownloadAsync(() => page.Locator(place).GetByRole(AriaRole.Button, new() { Name = "PNG", Exact = true }).First.ClickAsync());
             byte[] bytes = await File.ReadAllBytesAsync((await png.PathAsync())!);
             Assert.True(bytes.Length > 4000 && bytes[1] == 'P' && bytes[2] == 'N' && bytes[3] == 'G');

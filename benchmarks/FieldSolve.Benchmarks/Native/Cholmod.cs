@@ -10,7 +10,7 @@ internal static unsafe partial class Cholmod
     public static bool IsPresent => NativeLibrary.TryLoad(Library, out _);
 
     /// <summary>Runs the supernodal method with the minimum-degree or the METIS ordering on the lower triangle of the matrix.</summary>
-    public static Peer Run(DiscMatrix matrix, bool metis, int runs)
+    public static Peer Run(DiscMatrix matrix, bool metis, int analyses, int runs)
     {
         // Places of the fields of the settings, version 3.0.14.
         const int Supernodal = 48, Print = 144, Methods = 168, Ordering = 184 + 132, Postorder = 1864, NonZeros = 1984, SettingsBytes = 2664;
@@ -38,7 +38,7 @@ internal static unsafe partial class Cholmod
             start[i + 1] = count;
         }
 
-        double[] analyse = new double[runs], factor = new double[runs], solve = new double[runs];
+        double[] analyse = new double[analyses], factor = new double[runs], solve = new double[runs];
         double nonZeros = 0, bytes = 0;
         byte* common = (byte*)NativeMemory.AllocZeroed(2 * SettingsBytes);
         cholmod_start(common);
@@ -52,13 +52,19 @@ internal static unsafe partial class Cholmod
         {
             var a = new SparseMatrix { Rows = (nuint)n, Columns = (nuint)n, Most = (nuint)count, Start = pStart, Row = pRow, Values = pValues, Symmetry = -1, ValueKind = 1, Sorted = 1, Packed = 1 };
             var right = new DenseMatrix { Rows = (nuint)n, Columns = 1, Most = (nuint)n, Distance = (nuint)n, Values = b, ValueKind = 1 };
+            void* l = null;
+            for (int r = 0; r < analyses; r++)
+            {
+                cholmod_free_factor(&l, common);
+                double at = CpuClock.Now();
+                l = cholmod_analyze(&a, common);
+                analyse[r] = CpuClock.Now() - at;
+                nonZeros = 2 * *(double*)(common + NonZeros);
+            }
+
             for (int r = 0; r < runs; r++)
             {
                 double at = CpuClock.Now();
-                void* l = cholmod_analyze(&a, common);
-                analyse[r] = CpuClock.Now() - at;
-                nonZeros = 2 * *(double*)(common + NonZeros);
-                at = CpuClock.Now();
                 if (cholmod_factorize(&a, l, common) == 0)
                 {
                     throw new InvalidOperationException("The library could not factor the matrix.");
@@ -70,8 +76,9 @@ internal static unsafe partial class Cholmod
                 DenseMatrix* x = cholmod_solve(0, l, &right, common);
                 solve[r] = CpuClock.Now() - at;
                 cholmod_free_dense(&x, common);
-                cholmod_free_factor(&l, common);
             }
+
+            cholmod_free_factor(&l, common);
         }
 
         cholmod_finish(common);

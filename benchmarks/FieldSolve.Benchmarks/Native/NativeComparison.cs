@@ -1,138 +1,210 @@
 using System.Diagnostics;
-using System.Globalization;
+using FieldSolve.Device;
+using FieldSolve.Fields;
 using FieldSolve.Meshing;
 using FieldSolve.Sparse;
 
 namespace FieldSolve.Benchmarks.Native;
 
 /// <summary>
-/// The sparse core against SuiteSparse on the same matrices: processor time of one thread, medians, as a Markdown table. Without the libraries their
-/// columns say "absent".
+/// The numerical core against SuiteSparse on the same matrices, and against itself: processor time of one thread, medians, with what is wanted. Without
+/// the libraries their columns say "absent".
 /// </summary>
 internal static class NativeComparison
 {
-    private const string Absent = "absent";
+    private const int Small = 10_000, Large = 1_000_000;
 
-    /// <summary>Prints the tables.</summary>
+    /// <summary>Prints the table, row by row.</summary>
     /// <param name="to">Where.</param>
     /// <param name="most">Largest number of unknowns.</param>
     public static void Print(TextWriter to, int most)
     {
-        // The libraries take their number of threads from here when they are loaded.
-        if (Environment.GetEnvironmentVariable("OPENBLAS_NUM_THREADS") != "1")
+        var table = new ComparisonTable(to);
+        var growth = new Growth();
+        foreach ((bool quadratic, int size) in new[] { (false, Small), (false, 100_000), (true, 100_000), (false, 400_000), (true, 400_000), (false, Large) })
         {
-            to.WriteLine("Set OPENBLAS_NUM_THREADS=1 and OMP_THREAD_LIMIT=1 first: the libraries would use all cores.");
-            return;
-        }
-
-        // Settings that keep the libraries' dense kernels from choosing themselves what suits this machine.
-        foreach (string name in new[] { "OPENBLAS_CORETYPE", "OPENBLAS_L2_SIZE" })
-        {
-            if (Environment.GetEnvironmentVariable(name) is not null)
+            if (size <= most)
             {
-                to.WriteLine($"Unset {name} first: it slows the libraries down.");
-                return;
+                Matrices(table, growth, quadratic, size);
             }
         }
 
-        to.WriteLine("| matrix | work | wanted | ours | peer | ratio |");
-        to.WriteLine("| --- | --- | --- | --- | --- | --- |");
-        foreach ((bool quadratic, int size) in new[] { (false, 10_000), (false, 100_000), (true, 100_000), (false, 400_000), (true, 400_000), (false, 1_000_000) })
+        foreach (int size in new[] { Small, 100_000, 400_000, Large })
         {
-            if (size > most)
+            if (size <= most)
             {
-                continue;
+                Assembly(table, growth, size);
             }
-
-            foreach (string row in Compare(quadratic, size))
-            {
-                to.WriteLine(row);
-            }
-
-            to.Flush();
         }
+
+        foreach (int triangles in new[] { 2 * Small, 100_000, Large })
+        {
+            if (triangles <= most)
+            {
+                Mesh(table, growth, triangles);
+            }
+        }
+
+        growth.Tell(table);
     }
 
-    private static List<string> Compare(bool quadratic, int size)
+    private static void Matrices(ComparisonTable table, Growth growth, bool quadratic, int size)
     {
         TriangleMesh mesh = DiscMatrix.Mesh(quadratic ? size / 2 : 2 * size);
-        DiscMatrix matrix = DiscMatrix.Build(mesh, quadratic, odd: true);
-        int runs = size > 400_000 ? 5 : size > 100_000 ? 5 : 9;
-        string name = string.Create(CultureInfo.InvariantCulture, $"{(quadratic ? "quadratic" : "linear")}, {matrix.Size} unknowns");
+        DiscMatrix matrix = DiscMatrix.Build(mesh, quadratic, odd: true), even = DiscMatrix.Build(mesh, quadratic, odd: false);
+        const int Runs = 5;
+        string name = ComparisonTable.Text($"{(quadratic ? "quadratic" : "linear")}, {matrix.Size} unknowns");
+        Dictionary<string, Peer> peers = PeerProcess.Ask(matrix, even, Runs);
+        Peer? amd = peers.GetValueOrDefault("cholmod-amd"), metis = peers.GetValueOrDefault("cholmod-metis");
+        Peer? lu = peers.GetValueOrDefault("umfpack-amd"), luMetis = peers.GetValueOrDefault("umfpack-metis");
+        Peer? better = lu is not null && luMetis is not null && luMetis.Factor < lu.Factor ? luMetis : lu;
+
+        double[] x = new double[matrix.Size], refined = new double[matrix.Size];
+        SparseAnalysis analysis = SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y);
+        var factor = new SparseLu(analysis);
+        var half = new SparseLu(analysis, symmetric: true);
 
         // Until the compiler has settled on its last version of the code.
-        SparseAnalysis analysis = SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y);
-        double[] x = new double[matrix.Size], twice = new double[matrix.Size];
-        var factor = new SparseLu(analysis);
         double end = CpuClock.Now() + 2;
-        while (CpuClock.Now() < end)
+        do
         {
-            analysis = SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y);
+            SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y);
             factor.Factor(matrix.Values);
             factor.Solve(matrix.B, x);
+            half.Factor(even.Values);
+            half.Solve(even.B, x);
+        }
+        while (CpuClock.Now() < end);
+
+        double analyse = CpuClock.Median(Runs, () => SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y));
+        double symmetric = CpuClock.Median(Runs, () => half.Factor(even.Values));
+        double symmetricSolve = CpuClock.Median(2 * Runs, () => half.Solve(even.B, x));
+        double symmetricError = even.BackwardError(x);
+        double numeric = CpuClock.Median(Runs, () => factor.Factor(matrix.Values));
+        double solve = CpuClock.Median(2 * Runs, () => factor.Solve(matrix.B, x));
+        double error = matrix.BackwardError(x);
+        Refinement.RefinedSolve(matrix.Pattern, matrix.Values, factor, matrix.B, refined);
+        long memory = factor.MemoryBytes, halfMemory = half.MemoryBytes;
+        if (!quadratic)
+        {
+            growth.Add("numeric LU", matrix.Size, numeric, 1.25);
+            growth.Add("numeric LDL^T", matrix.Size, symmetric, 1.25);
+            growth.Add("analyse", matrix.Size, analyse, null);
         }
 
-        double analyse = CpuClock.Median(runs, () => analysis = SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y));
-        factor = new SparseLu(analysis);
-        double numeric = CpuClock.Median(runs, () => factor.Factor(matrix.Values));
-        double solve = CpuClock.Median(runs, () => factor.Solve(matrix.B, x));
-        double plain = matrix.BackwardError(x);
-        Refinement.RefinedSolve(matrix.Pattern, matrix.Values, factor, matrix.B, twice);
-
-        DiscMatrix even = DiscMatrix.Build(mesh, quadratic, odd: false);
-        int peerRuns = size > 100_000 ? 3 : 5;
-        Peer? lu = Umfpack.IsPresent ? Umfpack.Run(matrix, false, peerRuns) : null, luMetis = Umfpack.IsPresent ? Umfpack.Run(matrix, true, peerRuns) : null;
-        Peer? amd = Cholmod.IsPresent ? Cholmod.Run(even, false, peerRuns) : null, metis = Cholmod.IsPresent ? Cholmod.Run(even, true, peerRuns) : null;
-        Peer? best = lu is null ? null : lu.Factor < luMetis!.Factor ? lu : luMetis;
-        string luLimit = size switch { <= 10_000 => "0.8", <= 100_000 => "0.6", _ => "0.5" };
-        var rows = new List<string>
-        {
-            Row(name, "analyse, peer CHOLMOD with AMD", "1.2", analyse, amd?.Analyse, Seconds),
-            Row(name, "non-zeros of the order, peer METIS", "1.05", analysis.ExactNonZeros, metis?.NonZeros, Millions),
-            Row(name, "numeric LU, peer UMFPACK, its better order", luLimit, numeric, best?.Factor, Seconds),
-            Row(name, "symmetric matrix (ours by the same LU), peer CHOLMOD with METIS", "1.1", numeric, metis?.Factor, Seconds),
-            Row(name, "solve, peer UMFPACK", "1.0", solve, best?.Solve, Seconds),
-            Row(name, "solve, peer CHOLMOD with METIS", "1.0", solve, metis?.Solve, Seconds),
-            Row(name, "memory of the factor alone, peer UMFPACK", "0.7", 8.0 * analysis.PanelStart[^1], best?.Bytes, Megabytes),
-            Row(name, "memory with work space and analysis, peer UMFPACK's most", "0.7", analysis.MemoryBytes, best?.PeakBytes, Megabytes),
-            string.Create(CultureInfo.InvariantCulture, $"| {name} | backward error, without and with refinement | 1e-14 | {plain:E1}, {matrix.BackwardError(twice):E1} | - | - |"),
-        };
+        table.Seconds(name, "analyse", "CHOLMOD, AMD", size > Small ? 1.2 : null, analyse, amd?.Analyse);
+        table.Millions(name, "non-zeros of the order", "METIS", size > Small ? 1.05 : null, analysis.ExactNonZeros, metis?.NonZeros);
+        table.Seconds(name, "numeric LU", "UMFPACK, its better order", size switch { <= 10_000 => 0.8, <= 100_000 => 0.6, _ => 0.5 }, numeric, better?.Factor);
+        table.Seconds(name, "numeric LDL^T", "CHOLMOD, METIS", size is > Small and < Large ? 1.1 : null, symmetric, metis?.Factor);
+        table.Seconds(name, "solve, LU", "UMFPACK", 1, solve, better?.Solve);
+        table.Seconds(name, "solve, LDL^T", "CHOLMOD, METIS", 1, symmetricSolve, metis?.Solve);
+        double? wantedMemory = size == Large ? 0.7 : null;
+        table.Megabytes(name, "memory of LU alone", "UMFPACK", wantedMemory, 8.0 * factor.NonZeros, better?.Bytes);
+        table.Megabytes(name, "memory of LU, work space and analysis", "UMFPACK, its most", wantedMemory, memory, better?.PeakBytes);
+        table.Megabytes(name, "memory of LDL^T alone", "CHOLMOD, METIS", null, 8.0 * half.NonZeros, metis?.Bytes);
+        table.Megabytes(name, "memory of LDL^T, work space and analysis", "UMFPACK, its most", wantedMemory, halfMemory, better?.PeakBytes);
+        table.Plain(name, "backward error of LU, LU refined, LDL^T", "1e-14", ComparisonTable.Text($"{error:E1}, {matrix.BackwardError(refined):E1}, {symmetricError:E1}"));
         if (size >= 400_000)
         {
-            rows.Add(Threads(name, factor, matrix));
+            Threads(table, name, "LU", factor, matrix.Values);
+            Threads(table, name, "LDL^T", half, even.Values);
+            Cancel(table, name, "analysis", analyse, token => SparseAnalysis.Analyse(matrix.Pattern, matrix.X, matrix.Y, token));
+            Cancel(table, name, "numeric LU", numeric, token => factor.Factor(matrix.Values, token));
+            Cancel(table, name, "numeric LU, two threads", numeric / 2, token => factor.Factor(matrix.Values, 2, token));
         }
-
-        return rows;
     }
 
     // The wall clock is the point here; the least of many runs is the one that other work on the machine disturbed least.
-    private static string Threads(string name, SparseLu factor, DiscMatrix matrix)
+    private static void Threads(ComparisonTable table, string name, string kind, SparseLu factor, double[] values)
     {
         double one = double.PositiveInfinity, two = double.PositiveInfinity;
-        factor.Factor(matrix.Values, 2);
-        for (int k = 0; k < 15; k++)
+        factor.Factor(values, 2);
+        for (int k = 0; k < 8; k++)
         {
             one = Math.Min(one, Wall(1));
             two = Math.Min(two, Wall(2));
         }
 
-        return Row(name, "two threads, peer one thread (wall, least of 15)", "0.62", two, one, Seconds);
+        table.Seconds(name, $"numeric {kind}, two threads (wall, least of 8)", "one thread", 0.62, two, one);
 
         double Wall(int degree)
         {
             long from = Stopwatch.GetTimestamp();
-            factor.Factor(matrix.Values, degree);
+            factor.Factor(values, degree);
             return Stopwatch.GetElapsedTime(from).TotalSeconds;
         }
     }
 
-    private static string Row(string name, string work, string wanted, double ours, double? peer, Func<double, string> text) => string.Create(
-        CultureInfo.InvariantCulture,
-        $"| {name} | {work} | {wanted} | {text(ours)} | {(peer is { } p ? text(p) : Absent)} | {(peer is { } q ? (ours / q).ToString("F2", CultureInfo.InvariantCulture) : Absent)} |");
+    // From the moment a token is set, at several moments of the work, until the work has ended.
+    private static void Cancel(ComparisonTable table, string name, string work, double seconds, Action<CancellationToken> action)
+    {
+        var times = new List<double>();
+        for (double share = 0.05; share < 1; share += 0.15)
+        {
+            using var source = new CancellationTokenSource();
+            var clock = new Stopwatch();
+            using CancellationTokenRegistration noted = source.Token.Register(clock.Start);
+            source.CancelAfter(TimeSpan.FromSeconds(share * seconds));
+            try
+            {
+                action(source.Token);
+            }
+            catch (OperationCanceledException)
+            {
+                times.Add(clock.Elapsed.TotalMilliseconds);
+            }
+        }
 
-    private static string Seconds(double s) => string.Create(CultureInfo.InvariantCulture, $"{1e3 * s:G3} ms");
+        times.Sort();
+        table.Plain(
+            name, $"{work}, from cancelling to the end, median and worst (wall)", "100 ms",
+            times.Count == 0 ? "-" : ComparisonTable.Text($"{times[times.Count / 2]:F0} ms, {times[^1]:F0} ms of {times.Count}"));
+    }
 
-    private static string Millions(double n) => string.Create(CultureInfo.InvariantCulture, $"{1e-6 * n:F2} M");
+    // Residual and Jacobian of the sample's law, which has a second-order part and a field limit, against one LU of the same matrix.
+    private static void Assembly(ComparisonTable table, Growth growth, int size)
+    {
+        SheetDevice device = Sample.Device();
+        FieldSpace space = FieldSpace.Build(device, Mesher.Generate(device.Domain, Sample.Size(device, (int)(size / 2.25))));
+        var equations = new SheetEquations(space, Sample.Law(device));
+        double[] u = new double[equations.Length], residual = new double[u.Length], values = new double[space.Pattern.Count + 1];
+        (double[] x, double[] y) = space.Places();
+        double scale = device.Domain.Size;
+        for (int i = 0; i < space.Size; i++)
+        {
+            u[i] = 0.01 * (x[i] + (0.3 * y[i])) / scale;
+        }
 
-    private static string Megabytes(double b) => string.Create(CultureInfo.InvariantCulture, $"{b / 1048576:F0} MiB");
+        void Assemble()
+        {
+            equations.Residual(u, 6, 0, 1e-4, residual);
+            equations.Jacobian(u, values);
+        }
+
+        var factor = new SparseLu(SparseAnalysis.Analyse(space.Pattern, x, y));
+        double end = CpuClock.Now() + 1;
+        do
+        {
+            Assemble();
+            factor.Factor(values.AsSpan(0, space.Pattern.Count));
+        }
+        while (CpuClock.Now() < end);
+        double assembly = CpuClock.Median(9, Assemble), numeric = CpuClock.Median(5, () => factor.Factor(values.AsSpan(0, space.Pattern.Count)));
+        growth.Add("assembly", space.Size, assembly, 1.05);
+        table.Seconds(
+            ComparisonTable.Text($"disc-12, quadratic, {space.Size} unknowns"), "residual and Jacobian", "our LU of this matrix", size > Small ? 0.35 : null,
+            assembly, numeric);
+    }
+
+    // The peer is a program of its own: there is no library to call.
+    private static void Mesh(ComparisonTable table, Growth growth, int triangles)
+    {
+        TriangleMesh mesh = DiscMatrix.Mesh(triangles);
+        double seconds = CpuClock.Median(5, () => mesh = DiscMatrix.Mesh(triangles));
+        growth.Add("mesh", mesh.TriangleCount, seconds, 1.05);
+        string degrees = ComparisonTable.Text($"least angle {MeshQuality.Of(mesh).MinimumAngle:F1} degrees");
+        table.Seconds(
+            ComparisonTable.Text($"disc, {mesh.TriangleCount} triangles, {degrees}"), "mesh", "CGAL", triangles switch { 100_000 => 0.35, Large => 0.2, _ => null },
+            seconds, null);
+    }
 }

@@ -18,17 +18,18 @@ internal static unsafe partial class Umfpack
         umfpack_di_defaults(control);
         (control[Strategy], control[Ordering], control[Steps]) = (3, metis ? 3 : 1, 0);
         int n = matrix.Size;
-        double[] analyse = new double[runs], factor = new double[runs], solve = new double[runs], x = new double[n];
-        double nonZeros = 0, bytes = 0, peak = 0;
+        double[] factor = new double[runs], solve = new double[runs], x = new double[n];
+        double analyse, nonZeros = 0, bytes = 0, peak = 0;
         fixed (int* start = matrix.Pattern.Start, column = matrix.Pattern.Column)
         fixed (double* values = matrix.Values, b = matrix.B, px = x)
         {
+            void* symbolic = null;
+            double at = CpuClock.Now();
+            Check(umfpack_di_symbolic(n, n, start, column, values, &symbolic, control, info));
+            analyse = CpuClock.Now() - at;
             for (int r = 0; r < runs; r++)
             {
-                void* symbolic = null, numeric = null;
-                double at = CpuClock.Now();
-                Check(umfpack_di_symbolic(n, n, start, column, values, &symbolic, control, info));
-                analyse[r] = CpuClock.Now() - at;
+                void* numeric = null;
                 at = CpuClock.Now();
                 Check(umfpack_di_numeric(start, column, values, symbolic, &numeric, control, info));
                 factor[r] = CpuClock.Now() - at;
@@ -39,11 +40,12 @@ internal static unsafe partial class Umfpack
                 Check(umfpack_di_solve(0, start, column, values, px, b, numeric, control, info));
                 solve[r] = CpuClock.Now() - at;
                 umfpack_di_free_numeric(&numeric);
-                umfpack_di_free_symbolic(&symbolic);
             }
+
+            umfpack_di_free_symbolic(&symbolic);
         }
 
-        return new(CpuClock.Median(analyse), CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes, peak);
+        return new(analyse, CpuClock.Median(factor), CpuClock.Median(solve), nonZeros, bytes, peak);
     }
 
     private static void Check(int status)

@@ -11,6 +11,7 @@ internal static class CommandList
         DriveCommand.Create(),
         BandsCommand.Create(),
         LockinCommand.Create(),
+        TurnCommand.Create(),
         OpenCommand.Create(),
     ];
 }

@@ -185,5 +185,5 @@ function perFrame(run) {
   };
 }
 
-/** True while the page is dark. */
-const isDark = () => document.documentElement.dataset.theme === 'dark';
+/** True while the page is dark; paper is light. */
+const isDark = () => document.documentElement.dataset.theme === 'dark' && !document.documentElement.dataset.print;

@@ -157,6 +157,7 @@ class MapOverlay {
       }
     }
     const lines = this.view.levels && this.view.fields.frame.high > this.view.fields.frame.low ? `; lines every ${quantity(this.view.step, 'V')}` : '';
-    legend.append(svg('text', { x: left, y: 50 }, `${q.label}${scale.unit ? ` (${scale.unit})` : ''}${log ? ', logarithmic' : ''}${lines}`));
+    const narrow = width < 460;
+    legend.append(svg('text', { x: narrow ? 4 : left, y: 50 }, `${q.label}${scale.unit ? ` (${scale.unit})` : ''}${log && !narrow ? ', logarithmic' : ''}${lines}`));
   }
 }

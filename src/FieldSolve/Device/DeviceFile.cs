@@ -53,7 +53,7 @@ public static class DeviceFile
         contacts.Read();
         IReadOnlyList<Wiring> wirings = new WiringReader(root, contacts).Read();
         DriveSpec? drive = RunReader.Drive(root);
-        TurnSpec? turn = RunReader.Turn(root, contacts);
+        TurnSpec? turn = RunReader.Turn(root, contacts, wirings);
         MeshSpec mesh = RunReader.Mesh(root);
         CautionSpec caution = RunReader.Caution(root);
         root.Take("tolerance"); // these two belong to the commands of the same name, which read them

@@ -30,6 +30,12 @@ public sealed class SheetEquations
         metalPlaces = [.. metals.Select(m => places.Of(Group(m)))];
     }
 
+    private SheetEquations(SheetEquations other, LabLaw law)
+    {
+        (Space, Law) = (other.Space, law);
+        (straight, curved, metals, metalPlaces) = (other.straight, other.curved, other.metals, other.metalPlaces);
+    }
+
     /// <summary>Unknowns and nodes.</summary>
     public FieldSpace Space { get; }
 
@@ -38,6 +44,13 @@ public sealed class SheetEquations
 
     /// <summary>Length of a vector of unknowns, with the zero at its end.</summary>
     public int Length => Space.Size + 1;
+
+    /// <summary>The equations of the same sheet under another law; they share everything else.</summary>
+    public SheetEquations WithLaw(LabLaw law)
+    {
+        ArgumentNullException.ThrowIfNull(law);
+        return new(this, law);
+    }
 
     /// <summary>
     /// R(u) for a current fed into one contact and taken out of another.

@@ -1,4 +1,5 @@
 using System.Numerics;
+using System.Runtime.CompilerServices;
 using System.Runtime.InteropServices;
 using FieldSolve.Laws;
 
@@ -50,6 +51,7 @@ internal sealed class StraightTriangles
         }
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public void AddResidual(LabLaw law, ReadOnlySpan<double> u, Span<double> residual)
     {
         Span<double> nodal = stackalloc double[6 * Block], r = stackalloc double[6 * Block];
@@ -91,6 +93,7 @@ internal sealed class StraightTriangles
         }
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     public void AddJacobian(LabLaw law, ReadOnlySpan<double> u, Span<double> values)
     {
         Span<double> nodal = stackalloc double[6 * Block], block = stackalloc double[36 * Block];
@@ -209,6 +212,7 @@ internal sealed class StraightTriangles
         Add(block, at + (5 * Block), c * u5);
     }
 
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Field(int first, ReadOnlySpan<double> u, Span<double> nodal, Span<double> ex, Span<double> ey)
     {
         // Potentials relative to corner 0: the gradient only needs differences, and near a contact end they are tiny.

@@ -21,7 +21,7 @@ public static class CurvesCsv
         ArgumentNullException.ThrowIfNull(wirings);
         ArgumentNullException.ThrowIfNull(rows);
 
-        string[] pairs = [.. wirings.SelectMany(w => w.Extra).Select(p => p.Name).Distinct(StringComparer.Ordinal)];
+        string[] pairs = PairNames(wirings);
         StringBuilder text = new();
         AddLine(text, Header(pairs));
         foreach (CurveRow row in InOrder(rows, reversed ?? []))
@@ -65,7 +65,12 @@ public static class CurvesCsv
         }
     }
 
-    private static IEnumerable<string> Header(string[] pairs) =>
+    /// <summary>Names of the extra pairs of all wirings, in order of first appearance.</summary>
+    internal static string[] PairNames(IEnumerable<Wiring> wirings) =>
+        [.. wirings.SelectMany(w => w.Extra).Select(p => p.Name).Distinct(StringComparer.Ordinal)];
+
+    /// <summary>Names of the columns.</summary>
+    internal static IEnumerable<string> Header(string[] pairs) =>
     [
         "wiring", "current_A",
         "v_along_V", "v_along_err_V", "v_across_V", "v_across_err_V",
@@ -75,7 +80,8 @@ public static class CurvesCsv
         "v_source_V", "v_source_err_V", "newton_steps", "status",
     ];
 
-    private static IEnumerable<string> Cells(CurveRow row, string[] pairs)
+    /// <summary>One row of the table.</summary>
+    internal static IEnumerable<string> Cells(CurveRow row, string[] pairs)
     {
         Reading? along = row.Of("along"), across = row.Of("across"), source = row.Of("source");
         return
@@ -90,6 +96,7 @@ public static class CurvesCsv
         ];
     }
 
+    /// <summary>Adds a line with quotes where they are needed.</summary>
     internal static void AddLine(StringBuilder text, IEnumerable<string> cells)
     {
         bool first = true;

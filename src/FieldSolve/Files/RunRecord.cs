@@ -18,9 +18,11 @@ public static class RunRecord
     /// <param name="command">Command word, for example "drive".</param>
     /// <param name="options">Options as the user gave them; written in the order of their names.</param>
     /// <param name="more">Writes what only this command has, at the end; may be null.</param>
+    /// <param name="figures">Further figures of the command, by name; none when null.</param>
     /// <remarks>Numbers that are not finite are written as null.</remarks>
     public static string Text(
-        DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null)
+        DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null,
+        IReadOnlyDictionary<string, double>? figures = null)
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(options);
@@ -38,7 +40,8 @@ public static class RunRecord
             WriteMesh(json, result);
             WriteRows(json, result);
             WriteLevels(json, result);
-            WriteSolver(json, result.Figures);
+            WriteSolver(json, result.Figures, result.Points);
+            WriteFigures(json, figures);
             WriteStages(json, result.Stages);
             WriteTexts(json, "warnings", result.Warnings);
             WriteTexts(json, "cautions", result.Cautions);
@@ -53,8 +56,9 @@ public static class RunRecord
     /// <exception cref="IOException">The file cannot be written.</exception>
     /// <exception cref="UnauthorizedAccessException">The file may not be written.</exception>
     public static void Write(
-        string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null) =>
-        WholeFile.WriteText(path, Text(result, command, options, more));
+        string path, DriveResult result, string command, IReadOnlyDictionary<string, string> options, Action<Utf8JsonWriter>? more = null,
+        IReadOnlyDictionary<string, double>? figures = null) =>
+        WholeFile.WriteText(path, Text(result, command, options, more, figures));
 
     private static void WriteDevice(Utf8JsonWriter json, DriveResult result)
     {
@@ -130,7 +134,7 @@ public static class RunRecord
         json.WriteEndArray();
     }
 
-    private static void WriteSolver(Utf8JsonWriter json, SolverFigures figures)
+    private static void WriteSolver(Utf8JsonWriter json, SolverFigures figures, IReadOnlyList<PointWork> points)
     {
         json.WriteStartObject("solver");
         json.WriteNumber("factor_nonzeros", figures.FactorNonZeros);
@@ -138,6 +142,34 @@ public static class RunRecord
         json.WriteNumber("solves", figures.Solves);
         json.WriteNumber("newton_steps", figures.NewtonSteps);
         WriteNumber(json, "largest_residual", figures.LargestResidual);
+        json.WriteStartArray("points");
+        foreach (PointWork point in points)
+        {
+            json.WriteStartObject();
+            json.WriteString("wiring", point.Wiring);
+            WriteNumber(json, "current_A", point.Current);
+            json.WriteNumber("factorisations", point.Factorisations);
+            json.WriteNumber("solves", point.Solves);
+            json.WriteEndObject();
+        }
+
+        json.WriteEndArray();
+        json.WriteEndObject();
+    }
+
+    private static void WriteFigures(Utf8JsonWriter json, IReadOnlyDictionary<string, double>? figures)
+    {
+        if (figures is null)
+        {
+            return;
+        }
+
+        json.WriteStartObject("figures");
+        foreach ((string name, double value) in figures.OrderBy(f => f.Key, StringComparer.Ordinal))
+        {
+            WriteNumber(json, name, value);
+        }
+
         json.WriteEndObject();
     }
 

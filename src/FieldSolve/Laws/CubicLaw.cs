@@ -44,6 +44,10 @@ public sealed class CubicLaw : ILawDetail
     public bool IsLinear => formula.Second == default && formula.Third == default;
 
     /// <inheritdoc/>
+    public bool HasPotential => AtZeroField.Ab == AtZeroField.Ba && formula.Second.HasPotential && formula.Third.HasPotential
+        && (IsLinear || double.IsInfinity(formula.Fade.Limit));
+
+    /// <inheritdoc/>
     public Tensor2 AtZeroField { get; }
 
     /// <summary>Null: this is the law as written.</summary>

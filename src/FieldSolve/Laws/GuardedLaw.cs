@@ -28,6 +28,10 @@ public sealed class GuardedLaw : ILawDetail
     /// <inheritdoc/>
     public bool IsLinear => law.IsLinear;
 
+    // The guard pulls the field towards zero along itself: that mixes the axes unless the law does not know them.
+    /// <inheritdoc/>
+    public bool HasPotential => false;
+
     /// <inheritdoc/>
     public Tensor2 AtZeroField => law.AtZeroField;
 

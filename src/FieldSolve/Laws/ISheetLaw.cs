@@ -12,6 +12,12 @@ public interface ISheetLaw
     /// <summary>True when K is proportional to E; one solve then serves every current.</summary>
     bool IsLinear { get; }
 
+    /// <summary>
+    /// True when K is the gradient of a potential of E, that is when dK/dE is symmetric at every field, the guard's continuation included. A law that
+    /// is not sure says no: that costs time, not digits.
+    /// </summary>
+    bool HasPotential { get; }
+
     /// <summary>The differential tensor dK/dE at zero field, siemens per square.</summary>
     Tensor2 AtZeroField { get; }
 

@@ -37,6 +37,12 @@ public sealed class LabLaw
     /// <summary>True when K is proportional to E.</summary>
     public bool IsLinear => Law.IsLinear;
 
+    /// <summary>True when dK/dE is symmetric at every field, in either frame.</summary>
+    public bool HasPotential => Law.HasPotential;
+
+    /// <summary>True when dK/dE is symmetric at zero field, in either frame.</summary>
+    public bool IsSymmetricAtZero => Law.AtZeroField.Ab == Law.AtZeroField.Ba;
+
     /// <summary>dK/dE at zero field in the lab frame: rows and columns are x, y; siemens per square.</summary>
     public Tensor2 AtZeroField { get; }
 

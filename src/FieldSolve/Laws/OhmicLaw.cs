@@ -35,6 +35,9 @@ public sealed class OhmicLaw : ILawDetail
     public bool IsLinear => true;
 
     /// <inheritdoc/>
+    public bool HasPotential => AtZeroField.Ab == AtZeroField.Ba;
+
+    /// <inheritdoc/>
     public Tensor2 AtZeroField { get; }
 
     /// <summary>Always null: dK/dE is the same at every field.</summary>

@@ -42,6 +42,9 @@ public sealed class QuadraticLaw : ILawDetail
     public bool IsLinear => formula.Second == default;
 
     /// <inheritdoc/>
+    public bool HasPotential => AtZeroField.Ab == AtZeroField.Ba && formula.Second.HasPotential && (IsLinear || double.IsInfinity(formula.Fade.Limit));
+
+    /// <inheritdoc/>
     public Tensor2 AtZeroField { get; }
 
     /// <summary>Null: this is the law as written.</summary>

@@ -50,6 +50,9 @@ public sealed class SaturatingLaw : ILawDetail
     public bool IsLinear => false;
 
     /// <inheritdoc/>
+    public bool HasPotential => hall == 0 && a == b && fieldA == fieldB;
+
+    /// <inheritdoc/>
     public Tensor2 AtZeroField { get; }
 
     /// <summary>Null: this is the law as written.</summary>

@@ -15,6 +15,8 @@ namespace FieldSolve.Laws;
 /// <param name="D26">2 E_a E_b in K_b.</param>
 public readonly record struct SecondOrder(double D11, double D12, double D16, double D21, double D22, double D26)
 {
+    internal bool HasPotential => D12 == D26 && D16 == D21;
+
     internal double[] Magnitudes =>
         [Math.Abs(D11), Math.Abs(D12), Math.Abs(D16), Math.Abs(D21), Math.Abs(D22), Math.Abs(D26)];
 

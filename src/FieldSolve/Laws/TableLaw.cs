@@ -37,6 +37,9 @@ public sealed class TableLaw : ILawDetail
     public bool IsLinear => false;
 
     /// <inheritdoc/>
+    public bool HasPotential => false;
+
+    /// <inheritdoc/>
     public Tensor2 AtZeroField { get; }
 
     /// <summary>Null: this is the law as written.</summary>

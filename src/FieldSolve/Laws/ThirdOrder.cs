@@ -12,6 +12,8 @@ namespace FieldSolve.Laws;
 /// <param name="C22">E_b³ in K_b.</param>
 public readonly record struct ThirdOrder(double C11, double C12, double C21, double C22)
 {
+    internal bool HasPotential => C12 == C21;
+
     internal double[] Magnitudes => [Math.Abs(C11), Math.Abs(C12), Math.Abs(C21), Math.Abs(C22)];
 
     internal string Terms => LawSummary.Terms("A m^2/V^3", ("c11", C11), ("c12", C12), ("c21", C21), ("c22", C22));

@@ -53,7 +53,8 @@ internal sealed class ChargedCycle
         double gauge = omega * Math.Sqrt((s1 * s1) + (c1 * c1)), size = Math.Abs(measure.Amplitude[source][1]);
         if (gauge <= FirstOrderIsEnough * size)
         {
-            double second = size > 0 ? gauge * gauge / size : 0;
+            // tanh(x)/x = 1 - x²/3 + 2x⁴/15: the second order is 1.2 times the square of the first on a line.
+            double second = size > 0 ? 2 * gauge * gauge / size : 0;
             for (int k = 0; k < plan.Count; k++)
             {
                 for (int h = 0; h <= PhaseNodes.HighestHarmonic; h++)

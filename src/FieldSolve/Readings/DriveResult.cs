@@ -40,6 +40,13 @@ public sealed record StageTime(string Name, double Seconds);
 public sealed record SolverFigures(
     int Unknowns, int Triangles, long FactorNonZeros, int Factorisations, int Solves, int NewtonSteps, double LargestResidual);
 
+/// <summary>Numerical work for one wiring at one current, on both meshes.</summary>
+/// <param name="Wiring">Name.</param>
+/// <param name="Current">A.</param>
+/// <param name="Factorisations">Numeric factorisations.</param>
+/// <param name="Solves">Forward and backward substitutions.</param>
+public sealed record PointWork(string Wiring, double Current, int Factorisations, int Solves);
+
 /// <summary>What a drive produced.</summary>
 public sealed record DriveResult
 {
@@ -75,6 +82,9 @@ public sealed record DriveResult
 
     /// <summary>Counts of the numerical work.</summary>
     public required SolverFigures Figures { get; init; }
+
+    /// <summary>Work per wiring and current, in the order of the rows, each sign by itself.</summary>
+    public IReadOnlyList<PointWork> Points { get; init; } = [];
 
     /// <summary>Wall time per stage.</summary>
     public required IReadOnlyList<StageTime> Stages { get; init; }

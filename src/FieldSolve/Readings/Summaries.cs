@@ -1,5 +1,4 @@
 using FieldSolve.Device;
-using FieldSolve.Geometry;
 using MathNet.Numerics;
 using MathNet.Numerics.LinearRegression;
 
@@ -20,24 +19,12 @@ public static class Summaries
         List<CurveRow> solved = [.. rows.Where(r => r.Current != 0 && r.Status != RowStatus.NotConverged).OrderBy(r => Math.Abs(r.Current))];
         CurveRow? smallest = solved.FirstOrDefault();
         double? Resistance(string pair) => smallest?.Of(pair) is { } r ? (r.Odd ?? r.Value) / smallest.Current : null;
-        Point2 direction = Centre(device.Contacts[wiring.Drain]) - Centre(device.Contacts[wiring.Source]);
-
-        // Places are known to rounding only: 360.0000000000001 degrees is 0.
-        double degrees = Math.Round(Math.Atan2(direction.Y, direction.X) * 180 / Math.PI, 9);
-        degrees = degrees < 0 ? degrees + 360 : degrees == 0 ? 0 : degrees;
         List<double> left = [.. solved.Where(r => r.Status == RowStatus.OutsideLaw).Select(r => Math.Abs(r.Current))];
         return new(
-            wiring.Name, degrees,
+            wiring.Name, CurrentDirection.Degrees(device, wiring),
             Resistance("source"), Resistance("along"), Resistance("across"),
             device.Law.IsLinear ? null : Line(solved),
             left.Count > 0 ? left[0] : null, solved.Count > 0 ? Math.Abs(solved[^1].Current) : 0);
-    }
-
-    // A rim that is all metal has no side: its middle is that of the whole loop.
-    private static Point2 Centre(Contact contact)
-    {
-        bool closed = contact.Kind == ContactKind.Edge && contact.Shape[0].Start == contact.Shape[^1].End;
-        return closed ? (1.0 / contact.Shape.Count) * contact.Shape.Aggregate(default(Point2), (sum, c) => sum + c.At(0.5)) : contact.Middle;
     }
 
     // Straight line through V_across_even against V_along_odd², ordinary least squares.

@@ -24,4 +24,10 @@ public sealed record DriveOptions
 
     /// <summary>Also keep the potential at every current, as live pages show it, without the fields that still pictures need. Default false.</summary>
     public bool Frames { get; init; }
+
+    /// <summary>
+    /// The wirings are points of one curve: an even part need not be better known than a tenth of the curve's largest, where a row by itself would be measured
+    /// by a tenth of its own largest.
+    /// </summary>
+    internal bool OneCurve { get; init; }
 }

@@ -25,20 +25,27 @@ public static class DriveRun
     {
         ArgumentNullException.ThrowIfNull(device);
         ArgumentNullException.ThrowIfNull(options);
+        return Run(device, options, progress, new StageClock(), cancel).Result;
+    }
+
+    /// <summary>The same, with the meshes that the answers come from; for what builds on a drive.</summary>
+    internal static (DriveResult Result, MeshPair Meshes) Run(
+        SheetDevice device, DriveOptions options, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
+    {
         DriveSpec drive = device.Drive ?? throw new ArgumentException("The device has no [drive].", nameof(device));
-        var clock = new StageClock();
         var law = new LabLaw(device.Law, device.Axis);
         ReadingPlan[] plans = [.. device.Wirings.Select(w => new ReadingPlan(w))];
         double largest = MeshRefinement.Largest(drive.Currents);
         int total = plans.Length * drive.Currents.Count;
         MeshRefinement refinement = MeshRefinement.Run(
-            device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel);
+            device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel,
+            oneCurve: options.OneCurve);
 
         var work = new DriveWork(device, options, refinement.Meshes, plans);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
         (List<CurveRow> rows, List<CurveRow> reversed) = work.Rows(new RowMaker(device, refinement.Goals));
         FieldLevel fine = refinement.Meshes.Fine;
-        return new DriveResult
+        var result = new DriveResult
         {
             Device = device,
             Rows = rows,
@@ -51,10 +58,12 @@ public static class DriveRun
             Cautions = Cautions.Of(device, [.. rows, .. reversed]),
             Warnings = DriveWarnings.Of(rows, work.Refusals),
             Figures = new(
-                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
+                fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.AtZero.NonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),
+            Points = work.Points,
             Stages = clock.Times,
             Cancelled = cancelled,
         };
+        return (result, refinement.Meshes);
     }
 }

@@ -26,7 +26,8 @@ internal sealed class DriveTask
     private readonly double[] fine;
     private readonly double[] guess;
     private readonly double[] carried;
-    private readonly double[] surplus;  // (fine - carried coarse) / current at the last current
+    private readonly double[] surplus;  // fine - carried coarse
+    private readonly CurrentSeries surpluses;
 
     public DriveTask(MeshPair meshes, ReadingPlan plan, PeakFinder peaks)
     {
@@ -48,6 +49,27 @@ internal sealed class DriveTask
         {
             surplus[i] = finePath.Unit[i] - carried[i];
         }
+
+        surpluses = new CurrentSeries([.. surplus]);
+    }
+
+    /// <summary>Starts from what the refinement solved at a current, if it did.</summary>
+    public void Know(double current)
+    {
+        if (meshes.Known(plan, current) is not { } known)
+        {
+            return;
+        }
+
+        coarsePath.Know(current, known.Coarse);
+        double[] difference = new double[fine.Length];
+        meshes.Between.Apply(known.Coarse, difference);
+        for (int i = 0; i < fine.Length; i++)
+        {
+            difference[i] = known.Fine[i] - difference[i];
+        }
+
+        surpluses.Anchor(current, difference);
     }
 
     /// <summary>Solves at a current.</summary>
@@ -63,9 +85,10 @@ internal sealed class DriveTask
         }
 
         meshes.Between.Apply(coarse, carried);
+        surpluses.Predict(current, guess);
         for (int i = 0; i < fine.Length; i++)
         {
-            guess[i] = carried[i] + (current * surplus[i]);
+            guess[i] += carried[i];
         }
 
         NewtonOutcome outcome = coarseOutcome.Then(finePath.Solve(current, fine, guess, cancel));
@@ -74,13 +97,12 @@ internal sealed class DriveTask
             return new(outcome, null, null, null, default);
         }
 
-        if (current != 0)
+        for (int i = 0; i < fine.Length; i++)
         {
-            for (int i = 0; i < fine.Length; i++)
-            {
-                surplus[i] = (fine[i] - carried[i]) / current;
-            }
+            surplus[i] = fine[i] - carried[i];
         }
+
+        surpluses.Remember(current, surplus);
 
         keep?.Invoke(fine);
         double[] values = plan.Read(meshes.Fine, fine), difference = plan.Read(meshes.Coarse, coarse);

@@ -57,6 +57,28 @@ internal sealed class DriveWork
         }
     }
 
+    /// <summary>Work per wiring and current; of a linear law the sign that was solved.</summary>
+    public IReadOnlyList<PointWork> Points
+    {
+        get
+        {
+            var points = new List<PointWork>();
+            for (int w = 0; w < plans.Length; w++)
+            {
+                for (int at = 0; at < 2 * currents.Count; at++)
+                {
+                    if (states[w, at / 2, at % 2] is { } s)
+                    {
+                        double current = at % 2 == 0 ? currents[at / 2] : -currents[at / 2];
+                        points.Add(new(plans[w].Wiring.Name, current, s.Outcome.Factorisations, s.Outcome.Solves));
+                    }
+                }
+            }
+
+            return points;
+        }
+    }
+
     public double LargestResidual => states.Cast<StateResult?>().Where(s => s?.Values is not null).Select(s => s!.Outcome.RelativeResidual)
         .DefaultIfEmpty().Max();
 
@@ -101,17 +123,19 @@ internal sealed class DriveWork
                     continue;
                 }
 
-                double along = AlongScale(k);
-                rows.Add(maker.Make(plans[w], currents[k], plus, minus, along));
+                double along = AlongScale(k), curve = options.OneCurve ? EvenScale(k) : 0;
+                rows.Add(maker.Make(plans[w], currents[k], plus, minus, along, curve));
                 if (minus is not null)
                 {
-                    reversed.Add(maker.Make(plans[w], -currents[k], minus, plus, along));
+                    reversed.Add(maker.Make(plans[w], -currents[k], minus, plus, along, curve));
                 }
             }
         }
 
         return (rows, reversed);
     }
+
+    private double EvenScale(int k) => RowMaker.EvenScale(Enumerable.Range(0, plans.Length).Select(w => (plans[w], states[w, k, 0], states[w, k, 1])));
 
     private double AlongScale(int k)
     {
@@ -130,6 +154,8 @@ internal sealed class DriveWork
     private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)
     {
         var task = new DriveTask(meshes, plans[w], peaks);
+        double largest = MeshRefinement.Largest(currents);
+        task.Know(sign == 0 ? largest : -largest);
         double failedAt = double.PositiveInfinity;
         for (int k = 0; k < currents.Count; k++)
         {
@@ -186,7 +212,8 @@ internal sealed class DriveWork
             || (options.ForPictures && (k == (last + 2) / 3 || k == ((2 * last) + 2) / 3));
     }
 
-    private static StateResult? Negated(StateResult? state) => state is null ? null : state with
+    /// <summary>The state of a linear sheet at the opposite current.</summary>
+    internal static StateResult? Negated(StateResult? state) => state is null ? null : state with
     {
         Outcome = default,
         Values = state.Values?.Select(v => -v).ToArray(),

@@ -130,7 +130,10 @@ internal static class LevelMeasure
         {
             (int source, int drain) = (plan.Wiring.Source, plan.Wiring.Drain);
             double[] coarse = new double[meshes.Coarse.Equations.Length];
-            if (!new DrivePath(meshes.Coarse, source, drain).Solve(current, coarse, null, cancel).Converged)
+            var coarsePath = new DrivePath(meshes.Coarse, source, drain);
+            bool reached = coarsePath.Solve(current, coarse, null, cancel).Converged;
+            coarsePath.Newton.Release();
+            if (!reached)
             {
                 return null;
             }
@@ -147,32 +150,27 @@ internal static class LevelMeasure
                 return null;
             }
 
-            if (!path.Solve(current, fine, fine, cancel).Converged)
+            double[][]? details = path.Solve(current, fine, fine, cancel).Converged ? AdjointDetails(meshes, plan, path.Newton, fine, cancel) : null;
+            path.Newton.Release();
+            if (details is null)
             {
                 return null;
             }
 
-            return AdjointDetails(meshes, plan, fine, cancel) is { } details
-                ? new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, EvenRates.Exponents(meshes, coarse))
-                : null;
+            meshes.Keep(plan, current, coarse, fine);
+            return new(plan.Read(meshes.Coarse, coarse), plan.Read(meshes.Fine, fine), residual, details, EvenRates.Exponents(meshes, coarse));
         }
 
         // The adjoints at the state itself: its Jacobian, transposed. Null when it is not positive definite.
-        private static double[][]? AdjointDetails(MeshPair meshes, ReadingPlan plan, double[] fine, CancellationToken cancel)
+        private static double[][]? AdjointDetails(MeshPair meshes, ReadingPlan plan, NewtonSolver newton, double[] fine, CancellationToken cancel)
         {
-            int n = meshes.Fine.Space.Size;
-            double[] jacobian = new double[meshes.Fine.Space.Pattern.Count + 1], z = new double[n + 1];
-            meshes.Fine.Equations.Jacobian(fine, jacobian);
-            var factor = new SparseLu(meshes.Fine.Analysis);
-            try
-            {
-                factor.Factor(jacobian.AsSpan(0, jacobian.Length - 1), cancel);
-            }
-            catch (PivotException)
+            if (newton.FactorAt(fine, cancel) is not { } factor)
             {
                 return null;
             }
 
+            int n = meshes.Fine.Space.Size;
+            double[] z = new double[n + 1];
             double[][] vectors = plan.Vectors(meshes.Fine), details = new double[plan.Count][];
             for (int k = 0; k < plan.Count; k++)
             {

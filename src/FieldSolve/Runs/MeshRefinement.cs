@@ -66,11 +66,23 @@ internal sealed class MeshRefinement
         Math.Max(spec.EvenError * Math.Max(Math.Abs(even), 0.1 * evens.Max(Math.Abs)), EvenFloor * along);
 
     /// <summary>Runs the loop.</summary>
+    /// <param name="device">Sheet, contacts and wanted errors.</param>
+    /// <param name="law">Law of the meshes that come out.</param>
+    /// <param name="plans">What is read.</param>
+    /// <param name="largest">Largest current, A.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="tell">Told about each level.</param>
+    /// <param name="clock">Adds up the stages.</param>
+    /// <param name="cancel">Checked between and within levels.</param>
+    /// <param name="laws">The law of each plan, where they differ; null when all have <paramref name="law"/>.</param>
+    /// <param name="start">Sizes of the first mesh, from earlier measures; null to start from the shape.</param>
+    /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
     public static MeshRefinement Run(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, Action<string> tell,
-        StageClock clock, CancellationToken cancel)
+        StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null, ISizeField? start = null,
+        bool oneCurve = false)
     {
-        ISizeField size = MeshSizes.First(device);
+        ISizeField size = start ?? MeshSizes.First(device);
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
         IReadOnlyList<GoalMeasure> goals = [], before = [];
@@ -92,7 +104,7 @@ internal sealed class MeshRefinement
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, lower, bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve));
             measured = [.. measured.Select(g => g.AfterMove(before))];
             before = measured;
 
@@ -111,7 +123,7 @@ internal sealed class MeshRefinement
 
             stalls = now > StallShare * worst ? stalls + 1 : 0;
             worst = Math.Min(worst, now);
-            if (now <= (level == 0 ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
+            if (now <= (level == 0 && start is null ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
             {
                 return new(best, goals, levels, worst <= 1);
             }
@@ -137,7 +149,7 @@ internal sealed class MeshRefinement
         for (int round = 0; round < MostRounds; round++)
         {
             MeshPair meshes = now.Meshes;
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, currents, [], bothSigns, cancel));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, null, currents, [], bothSigns, cancel));
             if (measured.All(g => g.Error.Bar <= Room * g.Wanted))
             {
                 return now;
@@ -158,6 +170,10 @@ internal sealed class MeshRefinement
 
         return now;
     }
+
+    /// <summary>Sizes for the next mesh after measures of one's own.</summary>
+    public static ISizeField NextSizes(SheetDevice device, MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level) =>
+        MeshSizes.Next(meshes, goals, level, (int)(0.95 * device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle));
 
     // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
@@ -185,13 +201,25 @@ internal sealed class MeshRefinement
         return null;
     }
 
-    private static List<GoalMeasure> Measure(
-        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, double[] currents, double[] lower, bool bothSigns, CancellationToken cancel)
+    /// <summary>Errors of all readings on a pair of meshes, with what is wanted of each.</summary>
+    /// <param name="device">For the wanted errors.</param>
+    /// <param name="meshes">Under the law of the first plan.</param>
+    /// <param name="plans">What is read.</param>
+    /// <param name="laws">The law of each plan; null when all have that of the meshes.</param>
+    /// <param name="currents">Current of each plan, A; lowered where the sheet cannot carry it.</param>
+    /// <param name="lower">The drive's currents by size, the largest first.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="cancel">Checked at every step.</param>
+    /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
+    public static List<GoalMeasure> Measure(
+        SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<LabLaw>? laws, double[] currents, double[] lower, bool bothSigns,
+        CancellationToken cancel, bool oneCurve = false)
     {
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
-            k => perPlan[k] = LevelMeasure.Of(meshes, plans[k], currents[k], lower, bothSigns, cancel));
+            k => perPlan[k] = LevelMeasure.Of(
+                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel));
         for (int k = 0; k < plans.Count; k++)
         {
             currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];
@@ -199,10 +227,11 @@ internal sealed class MeshRefinement
 
         double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
+        double[] curve = oneCurve ? [.. perPlan.SelectMany(g => g).Where(g => g.IsEven).Select(g => g.Value)] : [];
         var all = new List<GoalMeasure>();
         foreach (IReadOnlyList<GoalMeasure> goals in perPlan)
         {
-            double[] evens = [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
+            double[] evens = oneCurve ? curve : [.. goals.Where(g => g.IsEven).Select(g => g.Value)];
             all.AddRange(goals.Select(g => g with
             {
                 Wanted = g.IsEven

@@ -18,13 +18,30 @@ internal sealed class RowMaker
         this.goals = goals;
     }
 
+    /// <summary>Largest even part at one current, V.</summary>
+    /// <param name="states">Wirings with their states at +I and -I.</param>
+    public static double EvenScale(IEnumerable<(ReadingPlan Plan, StateResult? Plus, StateResult? Minus)> states)
+    {
+        double largest = 0;
+        foreach ((ReadingPlan plan, StateResult? plus, StateResult? minus) in states)
+        {
+            for (int k = 0; plus?.Values is not null && minus?.Values is not null && k < plan.Count; k++)
+            {
+                largest = plan.HasEven[k] ? Math.Max(largest, Math.Abs(plus.Values[k] + minus.Values[k]) / 2) : largest;
+            }
+        }
+
+        return largest;
+    }
+
     /// <summary>One row.</summary>
     /// <param name="plan">Wiring and pairs.</param>
     /// <param name="current">A.</param>
     /// <param name="here">State at the row's current.</param>
     /// <param name="opposite">State at the opposite current; null when it was not solved.</param>
     /// <param name="along">Largest along voltage of all wirings at this current, V.</param>
-    public CurveRow Make(ReadingPlan plan, double current, StateResult here, StateResult? opposite, double along)
+    /// <param name="curve">Largest even part of the curve that the row is a point of, V; 0 when it stands by itself.</param>
+    public CurveRow Make(ReadingPlan plan, double current, StateResult here, StateResult? opposite, double along, double curve = 0)
     {
         int steps = here.Outcome.Steps + (opposite?.Outcome.Steps ?? 0);
         if (here.Values is null || (opposite is not null && opposite.Values is null))
@@ -59,12 +76,12 @@ internal sealed class RowMaker
 
         LawExit? exit = here.Zone!.Exit ?? opposite?.Zone?.Exit;
         return new(
-            plan.Wiring.Name, current, readings, steps, Judge(plan, readings, along, exit), exit, here.Peak.SheetCurrent, here.Peak.Power);
+            plan.Wiring.Name, current, readings, steps, Judge(plan, readings, along, curve, exit), exit, here.Peak.SheetCurrent, here.Peak.Power);
     }
 
-    private RowStatus Judge(ReadingPlan plan, List<Reading> readings, double along, LawExit? exit)
+    private RowStatus Judge(ReadingPlan plan, List<Reading> readings, double along, double curve, LawExit? exit)
     {
-        double[] evens = [.. readings.Where((r, k) => plan.HasEven[k] && r.Even is not null).Select(r => r.Even!.Value)];
+        double[] evens = [.. readings.Where((r, k) => plan.HasEven[k] && r.Even is not null).Select(r => r.Even!.Value), curve];
         bool outside = false, coarse = false;
         for (int k = 0; k < readings.Count; k++)
         {

@@ -7,14 +7,13 @@ namespace FieldSolve.Solving;
 public sealed class DrivePath
 {
     private const int MostHalvings = 5;
-    private const int MostPast = 4;
 
     private readonly FieldLevel level;
     private readonly NewtonSolver newton;
     private readonly int source;
     private readonly int drain;
     private readonly double[] unit;
-    private readonly List<(double Current, double[] U)> past = [];
+    private readonly CurrentSeries past;
 
     /// <summary>Starts at rest.</summary>
     public DrivePath(FieldLevel level, int source, int drain)
@@ -25,6 +24,7 @@ public sealed class DrivePath
         this.drain = drain;
         newton = new NewtonSolver(level);
         unit = level.UnitSolution(source, drain);
+        past = new CurrentSeries(unit);
     }
 
     /// <summary>Potentials for one ampere in the limit of small drive.</summary>
@@ -32,6 +32,9 @@ public sealed class DrivePath
 
     /// <summary>The iteration, for its factor.</summary>
     public NewtonSolver Newton => newton;
+
+    /// <summary>Takes over a solution that is known already; guesses pass through it.</summary>
+    public void Know(double current, double[] u) => past.Anchor(current, u);
 
     /// <summary>Solves at a current.</summary>
     /// <param name="current">A.</param>
@@ -57,7 +60,7 @@ public sealed class DrivePath
         }
         else
         {
-            Predict(current, u);
+            past.Predict(current, u);
         }
 
         NewtonOutcome outcome = newton.Solve(u, source, drain, current, cancel);
@@ -68,7 +71,7 @@ public sealed class DrivePath
 
         if (outcome.Converged)
         {
-            Remember(current, u);
+            past.Remember(current, u);
         }
 
         return outcome;
@@ -80,16 +83,14 @@ public sealed class DrivePath
 
     private NewtonOutcome Creep(double current, double[] u, NewtonOutcome failed, CancellationToken cancel)
     {
-        double from = past.Count > 0 && past[^1].Current * current > 0 && Math.Abs(past[^1].Current) < Math.Abs(current)
-            ? past[^1].Current
-            : 0;
+        double from = past.LastCurrent * current > 0 && Math.Abs(past.LastCurrent) < Math.Abs(current) ? past.LastCurrent : 0;
         double step = (current - from) / 2;
         NewtonOutcome sum = failed;
         for (int halvings = 0; halvings < MostHalvings;)
         {
             double target = Math.Abs(from + step) >= Math.Abs(current) * (1 - 1e-9) ? current : from + step;
             newton.Restart();
-            Predict(target, u);
+            past.Predict(target, u);
             NewtonOutcome outcome = newton.Solve(u, source, drain, target, cancel);
             sum = sum.Then(outcome);
             if (!outcome.Converged)
@@ -104,50 +105,10 @@ public sealed class DrivePath
                 return sum;
             }
 
-            Remember(target, u);
+            past.Remember(target, u);
             from = target;
         }
 
         return sum;
-    }
-
-    private void Remember(double current, double[] u)
-    {
-        if (current == 0 || past.Any(p => p.Current == current))
-        {
-            return;
-        }
-
-        double[] copy = past.Count == MostPast ? past[0].U : new double[u.Length];
-        if (past.Count == MostPast)
-        {
-            past.RemoveAt(0);
-        }
-
-        u.CopyTo(copy, 0);
-        past.Add((current, copy));
-    }
-
-    // u(I)/I is smooth and known at zero current (the unit solution): interpolate it, Lagrange's formula.
-    private void Predict(double current, double[] u)
-    {
-        Array.Clear(u);
-        (double Current, double[] U)[] nodes = [(0, unit), .. past];
-        foreach ((double at, double[] value) in nodes)
-        {
-            double weight = current / (at == 0 ? 1 : at);
-            foreach ((double other, _) in nodes)
-            {
-                if (other != at)
-                {
-                    weight *= (current - other) / (at - other);
-                }
-            }
-
-            for (int i = 0; i < u.Length; i++)
-            {
-                u[i] += weight * value[i];
-            }
-        }
     }
 }

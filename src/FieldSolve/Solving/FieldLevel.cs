@@ -1,3 +1,4 @@
+using System.Collections.Concurrent;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Laws;
@@ -13,6 +14,7 @@ namespace FieldSolve.Solving;
 public sealed class FieldLevel
 {
     private readonly double[] atZeroValues;
+    private readonly ConcurrentBag<JacobianRoom> spare = [];
 
     private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
     {
@@ -47,17 +49,33 @@ public sealed class FieldLevel
     public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0, FieldLevel? like = null)
     {
         FieldSpace space = FieldSpace.Build(device, mesh, ground);
-        var equations = new SheetEquations(space, law);
         (double[] x, double[] y) = space.Places();
         bool alike = like is not null && like.Space.Pattern.Start.AsSpan().SequenceEqual(space.Pattern.Start)
             && like.Space.Pattern.Column.AsSpan().SequenceEqual(space.Pattern.Column);
         SparseAnalysis analysis = alike ? like!.Analysis : SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
-        var factor = new SparseLu(analysis);
-        double[] values = new double[space.Pattern.Count + 1];
-        equations.Jacobian(new double[equations.Length], values);
-        factor.Factor(values.AsSpan(0, space.Pattern.Count), cancel);
-        return new(space, equations, analysis, factor, values);
+        return AtRest(new SheetEquations(space, law), analysis, cancel);
     }
+
+    /// <summary>The same mesh under another law: equations and factor at zero field are new, unknowns, geometry and ordering are shared.</summary>
+    /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
+    public FieldLevel WithLaw(LabLaw law, CancellationToken cancel) => AtRest(Equations.WithLaw(law), Analysis, cancel);
+
+    private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
+    {
+        var factor = new SparseLu(analysis, equations.Law.IsSymmetricAtZero);
+        double[] values = new double[equations.Space.Pattern.Count + 1];
+        equations.Jacobian(new double[equations.Length], values);
+        SharedCores.Factor(factor, values.AsSpan(0, equations.Space.Pattern.Count), cancel);
+        return new(equations.Space, equations, analysis, factor, values);
+    }
+
+    /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
+    internal JacobianRoom Rent() => spare.TryTake(out JacobianRoom? room)
+        ? room
+        : new(new double[Space.Pattern.Count + 1], new SparseLu(Analysis, Equations.Law.HasPotential));
+
+    /// <summary>Takes room back for others.</summary>
+    internal void Return(JacobianRoom room) => spare.Add(room);
 
     /// <summary>
     /// Potentials for one ampere from source to drain in the limit of small drive; the zero of the potential at the end.

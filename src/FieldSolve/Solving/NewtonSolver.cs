@@ -33,8 +33,7 @@ public sealed class NewtonSolver
     private readonly double[] step;
     private readonly double[] trial;
     private readonly StepMixer mixer;
-    private double[]? values;
-    private SparseLu? own;
+    private JacobianRoom? own;
 
     /// <summary>Makes a solver that starts with the factor at zero field.</summary>
     public NewtonSolver(FieldLevel level)
@@ -154,6 +153,22 @@ public sealed class NewtonSolver
     /// <summary>Forgets the factor of an earlier Jacobian and starts again with the one at zero field.</summary>
     public void Restart() => Factor = level.AtZero;
 
+    /// <summary>
+    /// Factors the Jacobian at a state; null when it is not positive definite there or the law cannot be evaluated. Valid until the next solve.
+    /// </summary>
+    public SparseLu? FactorAt(double[] u, CancellationToken cancel) => TryFactor(u, cancel) ? Factor : null;
+
+    /// <summary>Gives the storage of the solver's own factor to other solvers; it starts again with the factor at zero field.</summary>
+    public void Release()
+    {
+        Restart();
+        if (own is not null)
+        {
+            level.Return(own);
+            own = null;
+        }
+    }
+
     private void Step(double[] u, double damp, bool mix)
     {
         int n = level.Space.Size;
@@ -215,12 +230,11 @@ public sealed class NewtonSolver
 
     private bool TryFactor(double[] u, CancellationToken cancel)
     {
-        values ??= new double[level.Space.Pattern.Count + 1];
-        own ??= new SparseLu(level.Analysis);
+        own ??= level.Rent();
         try
         {
-            level.Equations.Jacobian(u, values);
-            own.Factor(values.AsSpan(0, level.Space.Pattern.Count), cancel);
+            level.Equations.Jacobian(u, own.Values);
+            SharedCores.Factor(own.Factor, own.Values.AsSpan(0, level.Space.Pattern.Count), cancel);
         }
         catch (Exception e) when (e is PivotException or LawRefusedException)
         {
@@ -228,7 +242,7 @@ public sealed class NewtonSolver
             return false;
         }
 
-        Factor = own;
+        Factor = own.Factor;
         return true;
     }
 }

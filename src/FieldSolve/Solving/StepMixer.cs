@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Solving;
@@ -123,6 +124,7 @@ internal sealed class StepMixer(int length)
     }
 
     // Four lanes in a fixed order, whatever the processor: the same bits everywhere.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static double Dot(ReadOnlySpan<double> a, ReadOnlySpan<double> b)
     {
         Vector256<double> sum = default;

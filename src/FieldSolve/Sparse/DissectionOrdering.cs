@@ -66,7 +66,8 @@ internal sealed class DissectionOrdering
         {
             return RowsByDegree(pattern, number);
         }
-        int[] followers = Followers.Find(pattern, number);
+        int[] followers = Followers.Find(pattern, number, cancel);
+        cancel.ThrowIfCancellationRequested();
         int kept = 0;
         for (int i = 0; i < n; i++)
         {
@@ -107,7 +108,9 @@ internal sealed class DissectionOrdering
         var tree = new DissectionTree(n);
         int leafSize = Math.Max(16, (int)((long)LeafSize * kept / sparse));
         new DissectionOrdering(pieces, kept, leafSize, hasPlaces, tree, cancel).Dissect(top, -1);
+        cancel.ThrowIfCancellationRequested();
         tree.Follow(pattern, followers, number);
+        cancel.ThrowIfCancellationRequested();
         int[] order = RowsByDegree(pattern, number);
         tree.Fill(pattern, order, cancel);
         return order;
@@ -144,6 +147,7 @@ internal sealed class DissectionOrdering
                 tree.Put(vertex[i], node);
             }
         }
+        cancel.ThrowIfCancellationRequested();
         (GraphPiece a, GraphPiece b) = pieces.Split(piece, side, number, VertexCut.Before, before, VertexCut.Behind, behind);
         Dissect(b, node);
         Dissect(a, node);
@@ -173,6 +177,7 @@ internal sealed class DissectionOrdering
         {
             projection[i] = best.Of(px[i], py[i]);
         }
+        cancel.ThrowIfCancellationRequested();
         double half = HalfBand(n);
         return CutBand(piece, Quantile(px, py, best, 0.5 - half), Quantile(px, py, best, 0.5 + half));
     }
@@ -290,6 +295,7 @@ internal sealed class DissectionOrdering
             cut.Touches[b] = (byte)touches;
         }
         cutStart[band] = edges;
+        cancel.ThrowIfCancellationRequested();
         cut.Solve(band, before, behind);
         int partBefore = before, partBehind = behind;
         for (int b = 0; b < band; b++)

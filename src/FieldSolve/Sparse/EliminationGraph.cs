@@ -14,7 +14,8 @@ internal sealed class EliminationGraph
     /// <summary>Renumbers a pattern.</summary>
     /// <param name="pattern">The graph.</param>
     /// <param name="order">Row eliminated at each step.</param>
-    public EliminationGraph(SymmetricPattern pattern, int[] order)
+    /// <param name="cancel">Stops the work.</param>
+    public EliminationGraph(SymmetricPattern pattern, int[] order, CancellationToken cancel)
     {
         int n = order.Length, at = 0;
         int[] step = SupernodeTree.Inverse(order);
@@ -25,6 +26,10 @@ internal sealed class EliminationGraph
         Diagonal = GC.AllocateUninitializedArray<int>(n);
         for (int j = 0; j < n; j++)
         {
+            if ((j & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             int row = order[j], from = pattern.Start[row], to = pattern.Start[row + 1];
             int front = at, back = at += to - from - 1;
             for (int k = from; k < to; k++)

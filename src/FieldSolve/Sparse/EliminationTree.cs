@@ -5,13 +5,18 @@ internal static class EliminationTree
 {
     /// <summary>Parent of each step of the elimination; -1 for a root.</summary>
     /// <param name="graph">The graph, in elimination order.</param>
+    /// <param name="cancel">Stops the work.</param>
     /// <remarks>J. W. H. Liu, ACM Trans. Math. Softw. 12 (1986) 127-148: links to the roots found so far, with compressed paths.</remarks>
-    public static int[] Parents(EliminationGraph graph)
+    public static int[] Parents(EliminationGraph graph, CancellationToken cancel)
     {
         int n = graph.Size;
         int[] parent = new int[n], ancestor = new int[n];
         for (int j = 0; j < n; j++)
         {
+            if ((j & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             parent[j] = -1;
             ancestor[j] = -1;
             foreach (int earlier in graph.Before(j))
@@ -73,8 +78,9 @@ internal static class EliminationTree
     /// <param name="order">Vertex of the graph eliminated at each step.</param>
     /// <param name="step">Inverse of <paramref name="order"/>.</param>
     /// <param name="parent">Parent of each step.</param>
+    /// <param name="cancel">Stops the work.</param>
     /// <remarks>J. R. Gilbert, E. G. Ng and B. W. Peyton, SIAM J. Matrix Anal. Appl. 15 (1994) 1075-1091: leaves of the row subtrees.</remarks>
-    public static int[] ColumnCounts(EliminationGraph graph, int[] order, int[] step, int[] parent)
+    public static int[] ColumnCounts(EliminationGraph graph, int[] order, int[] step, int[] parent, CancellationToken cancel)
     {
         int n = order.Length;
         int[] count = new int[n], first = new int[n], lastFirst = new int[n], lastLeaf = new int[n], set = new int[n];
@@ -94,6 +100,10 @@ internal static class EliminationTree
         }
         for (int j = 0; j < n; j++)
         {
+            if ((j & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             if (first[j] == j)
             {
                 count[j]++;

@@ -15,7 +15,8 @@ internal static class Followers
     /// <summary>Sets <paramref name="number"/> of the followers to <see cref="Mark"/> and returns them, ascending; none where they are few.</summary>
     /// <param name="pattern">The graph.</param>
     /// <param name="number">Negative for rows that stay out of it.</param>
-    public static int[] Find(SymmetricPattern pattern, int[] number)
+    /// <param name="cancel">Stops the work.</param>
+    public static int[] Find(SymmetricPattern pattern, int[] number, CancellationToken cancel)
     {
         int n = pattern.Size, found = 0;
         int[] seen = new int[n];
@@ -33,6 +34,10 @@ internal static class Followers
         found = 0;
         for (int i = 0; i < n; i++)
         {
+            if ((i & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             if (number[i] != -1 && Follows(pattern, number, seen, i))
             {
                 followers[found++] = i;

@@ -1,3 +1,4 @@
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
@@ -6,7 +7,7 @@ namespace FieldSolve.Sparse;
 /// Dense kernels of a front. Vectors run along rows, whose length is a multiple of eight doubles. Each element is one chain of
 /// fused multiply-adds in ascending order of the eliminated steps, whatever the width of the registers: same bits on any machine.
 /// </summary>
-internal static unsafe class FrontKernels
+internal static unsafe partial class FrontKernels
 {
     /// <summary>Multiplications per row from which on a second thread is worth calling.</summary>
     private const int WorthDividing = 16_384;
@@ -27,39 +28,56 @@ internal static unsafe class FrontKernels
     {
         for (int j = 0; j < columns;)
         {
-            int i = 0, wide;
-            if (Vector512.IsHardwareAccelerated && columns - j >= 32)
-            {
-                wide = 32;
-                for (; i + 4 <= rows; i += 4)
-                {
-                    Block4x32(a + i, lda, b + j, c + i * ldc + j, ldc, depth);
-                }
-            }
-            else if (Vector512.IsHardwareAccelerated && columns - j >= 16)
-            {
-                wide = 16;
-                for (; i + 4 <= rows; i += 4)
-                {
-                    Block4x16(a + i, lda, b + j, c + i * ldc + j, ldc, depth);
-                }
-            }
-            else
-            {
-                wide = 8;
-                for (; i + 4 <= rows; i += 4)
-                {
-                    Block4x8(a + i, lda, b + j, c + i * ldc + j, ldc, depth);
-                }
-            }
-            for (; i < rows; i++)
-            {
-                for (int k = 0; k < wide; k += 8)
-                {
-                    Block1x8(a + i, lda, b + j + k, c + i * ldc + j + k, depth);
-                }
-            }
+            int wide = WidthFor(columns - j);
+            Columns(a, lda, b + j, c + j, ldc, depth, rows, wide);
             j += wide;
+        }
+    }
+
+    /// <summary>As <see cref="Subtract"/>, but only what lies right of the diagonal: row i from column i + shift on, or a few columns more.</summary>
+    public static void SubtractUpper(double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, int shift)
+    {
+        for (int j = 0; j < columns;)
+        {
+            int wide = WidthFor(columns - j);
+            Columns(a, lda, b + j, c + j, ldc, depth, Math.Min(rows, (j + wide - shift + 3) & -4), wide);
+            j += wide;
+        }
+    }
+
+    private static int WidthFor(int columns) =>
+        Vector512.IsHardwareAccelerated && columns >= 32 ? 32 : Vector512.IsHardwareAccelerated && columns >= 16 ? 16 : 8;
+
+    private static void Columns(double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int wide)
+    {
+        int i = 0;
+        if (wide == 32)
+        {
+            for (; i + 4 <= rows; i += 4)
+            {
+                Block4x32(a + i, lda, b, c + i * ldc, ldc, depth);
+            }
+        }
+        else if (wide == 16)
+        {
+            for (; i + 4 <= rows; i += 4)
+            {
+                Block4x16(a + i, lda, b, c + i * ldc, ldc, depth);
+            }
+        }
+        else
+        {
+            for (; i + 4 <= rows; i += 4)
+            {
+                Block4x8(a + i, lda, b, c + i * ldc, ldc, depth);
+            }
+        }
+        for (; i < rows; i++)
+        {
+            for (int k = 0; k < wide; k += 8)
+            {
+                Block1x8(a + i, lda, b + k, c + i * ldc + k, depth);
+            }
         }
     }
 
@@ -113,34 +131,48 @@ internal static unsafe class FrontKernels
         return -1;
     }
 
-    /// <summary>C −= Aᵀ B as <see cref="Subtract"/>, in strips of rows: cancellable, and with the help of idle threads.</summary>
+    /// <summary>
+    /// C −= Aᵀ B as <see cref="Subtract"/>, or with a shift of at least 0 as <see cref="SubtractUpper"/>, in strips of rows: cancellable, and with the
+    /// help of idle threads.
+    /// </summary>
     public static void SubtractInStrips(
-        double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, WorkTeam? team, CancellationToken cancel)
+        double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, int shift, WorkTeam? team, CancellationToken cancel)
     {
         if ((long)depth * columns * rows < 64L * WorthDividing)
         {
-            Subtract(a, lda, b, c, ldc, depth, rows, columns);
+            StripOf(a, lda, b, c, ldc, depth, 0, rows, columns, shift);
             return;
         }
         if (team is not null)
         {
-            Together(team, a, lda, b, c, ldc, depth, rows, columns, cancel);
+            Together(team, a, lda, b, c, ldc, depth, rows, columns, shift, cancel);
             return;
         }
         for (int from = 0; from < rows; from += Strip)
         {
             cancel.ThrowIfCancellationRequested();
-            Subtract(a + from, lda, b, c + from * ldc, ldc, depth, Math.Min(Strip, rows - from), columns);
+            StripOf(a, lda, b, c, ldc, depth, from, Math.Min(Strip, rows - from), columns, shift);
         }
     }
 
+    private static void StripOf(double* a, nint lda, double* b, double* c, nint ldc, int depth, int from, int rows, int columns, int shift)
+    {
+        if (shift < 0)
+        {
+            Subtract(a + from, lda, b, c + from * ldc, ldc, depth, rows, columns);
+            return;
+        }
+        int left = (from + shift) & -8;
+        SubtractUpper(a + from, lda, b + left, c + from * ldc + left, ldc, depth, rows, columns - left, from + shift - left);
+    }
+
     private static void Together(
-        WorkTeam team, double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, CancellationToken cancel) =>
+        WorkTeam team, double* a, nint lda, double* b, double* c, nint ldc, int depth, int rows, int columns, int shift, CancellationToken cancel) =>
         team.Divide((rows + Strip - 1) / Strip, i =>
         {
             cancel.ThrowIfCancellationRequested();
             int from = i * Strip;
-            Subtract(a + from, lda, b, c + from * ldc, ldc, depth, Math.Min(Strip, rows - from), columns);
+            StripOf(a, lda, b, c, ldc, depth, from, Math.Min(Strip, rows - from), columns, shift);
         });
 
     // The part of all earlier steps in the next few rows of U and of L, by strips of columns.
@@ -159,6 +191,7 @@ internal static unsafe class FrontKernels
     private static bool Refused(double pivot, double floor) => !(pivot > floor) || !double.IsFinite(pivot) || !double.IsFinite(1 / pivot);
 
     // One to three rows that depend on each other.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int FinishFew(double* u, double* l, int k, int from, int stride, double* floor, int rows)
     {
         for (int i = 0; i < rows; i++)
@@ -189,6 +222,7 @@ internal static unsafe class FrontKernels
     }
 
     // Four rows that depend on each other: first the 4 x 4 block, then all columns with its factors.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private static int Finish4(double* u, double* l, int k, int from, int stride, double* floor)
     {
         double* u0 = u, u1 = u + stride, u2 = u1 + stride, u3 = u2 + stride;
@@ -235,141 +269,5 @@ internal static unsafe class FrontKernels
             b3.Store(l3 + j);
         }
         return Refused(p0, floor[0]) ? 0 : Refused(p1, floor[1]) ? 1 : Refused(p2, floor[2]) ? 2 : Refused(p3, floor[3]) ? 3 : -1;
-    }
-
-    private static void Block4x32(double* a, nint lda, double* b, double* c, nint ldc, int depth)
-    {
-        Vector512<double> c00 = default, c01 = default, c02 = default, c03 = default;
-        Vector512<double> c10 = default, c11 = default, c12 = default, c13 = default;
-        Vector512<double> c20 = default, c21 = default, c22 = default, c23 = default;
-        Vector512<double> c30 = default, c31 = default, c32 = default, c33 = default;
-        for (int p = 0; p < depth; p++)
-        {
-            Vector512<double> b0 = Vector512.Load(b), b1 = Vector512.Load(b + 8), b2 = Vector512.Load(b + 16), b3 = Vector512.Load(b + 24);
-            Vector512<double> x = Vector512.Create(a[0]);
-            c00 = Vector512.FusedMultiplyAdd(x, b0, c00);
-            c01 = Vector512.FusedMultiplyAdd(x, b1, c01);
-            c02 = Vector512.FusedMultiplyAdd(x, b2, c02);
-            c03 = Vector512.FusedMultiplyAdd(x, b3, c03);
-            x = Vector512.Create(a[1]);
-            c10 = Vector512.FusedMultiplyAdd(x, b0, c10);
-            c11 = Vector512.FusedMultiplyAdd(x, b1, c11);
-            c12 = Vector512.FusedMultiplyAdd(x, b2, c12);
-            c13 = Vector512.FusedMultiplyAdd(x, b3, c13);
-            x = Vector512.Create(a[2]);
-            c20 = Vector512.FusedMultiplyAdd(x, b0, c20);
-            c21 = Vector512.FusedMultiplyAdd(x, b1, c21);
-            c22 = Vector512.FusedMultiplyAdd(x, b2, c22);
-            c23 = Vector512.FusedMultiplyAdd(x, b3, c23);
-            x = Vector512.Create(a[3]);
-            c30 = Vector512.FusedMultiplyAdd(x, b0, c30);
-            c31 = Vector512.FusedMultiplyAdd(x, b1, c31);
-            c32 = Vector512.FusedMultiplyAdd(x, b2, c32);
-            c33 = Vector512.FusedMultiplyAdd(x, b3, c33);
-            a += lda;
-            b += lda;
-        }
-        (Vector512.Load(c) - c00).Store(c);
-        (Vector512.Load(c + 8) - c01).Store(c + 8);
-        (Vector512.Load(c + 16) - c02).Store(c + 16);
-        (Vector512.Load(c + 24) - c03).Store(c + 24);
-        c += ldc;
-        (Vector512.Load(c) - c10).Store(c);
-        (Vector512.Load(c + 8) - c11).Store(c + 8);
-        (Vector512.Load(c + 16) - c12).Store(c + 16);
-        (Vector512.Load(c + 24) - c13).Store(c + 24);
-        c += ldc;
-        (Vector512.Load(c) - c20).Store(c);
-        (Vector512.Load(c + 8) - c21).Store(c + 8);
-        (Vector512.Load(c + 16) - c22).Store(c + 16);
-        (Vector512.Load(c + 24) - c23).Store(c + 24);
-        c += ldc;
-        (Vector512.Load(c) - c30).Store(c);
-        (Vector512.Load(c + 8) - c31).Store(c + 8);
-        (Vector512.Load(c + 16) - c32).Store(c + 16);
-        (Vector512.Load(c + 24) - c33).Store(c + 24);
-    }
-
-    private static void Block4x16(double* a, nint lda, double* b, double* c, nint ldc, int depth)
-    {
-        Vector512<double> c00 = default, c01 = default, c10 = default, c11 = default;
-        Vector512<double> c20 = default, c21 = default, c30 = default, c31 = default;
-        for (int p = 0; p < depth; p++)
-        {
-            Vector512<double> b0 = Vector512.Load(b), b1 = Vector512.Load(b + 8);
-            Vector512<double> x = Vector512.Create(a[0]);
-            c00 = Vector512.FusedMultiplyAdd(x, b0, c00);
-            c01 = Vector512.FusedMultiplyAdd(x, b1, c01);
-            x = Vector512.Create(a[1]);
-            c10 = Vector512.FusedMultiplyAdd(x, b0, c10);
-            c11 = Vector512.FusedMultiplyAdd(x, b1, c11);
-            x = Vector512.Create(a[2]);
-            c20 = Vector512.FusedMultiplyAdd(x, b0, c20);
-            c21 = Vector512.FusedMultiplyAdd(x, b1, c21);
-            x = Vector512.Create(a[3]);
-            c30 = Vector512.FusedMultiplyAdd(x, b0, c30);
-            c31 = Vector512.FusedMultiplyAdd(x, b1, c31);
-            a += lda;
-            b += lda;
-        }
-        (Vector512.Load(c) - c00).Store(c);
-        (Vector512.Load(c + 8) - c01).Store(c + 8);
-        c += ldc;
-        (Vector512.Load(c) - c10).Store(c);
-        (Vector512.Load(c + 8) - c11).Store(c + 8);
-        c += ldc;
-        (Vector512.Load(c) - c20).Store(c);
-        (Vector512.Load(c + 8) - c21).Store(c + 8);
-        c += ldc;
-        (Vector512.Load(c) - c30).Store(c);
-        (Vector512.Load(c + 8) - c31).Store(c + 8);
-    }
-
-    // Half registers: also the only block on machines without 512-bit ones, where eight accumulators and two rows of B just fit.
-    private static void Block4x8(double* a, nint lda, double* b, double* c, nint ldc, int depth)
-    {
-        Vector256<double> c00 = default, c01 = default, c10 = default, c11 = default;
-        Vector256<double> c20 = default, c21 = default, c30 = default, c31 = default;
-        for (int p = 0; p < depth; p++)
-        {
-            Vector256<double> b0 = Vector256.Load(b), b1 = Vector256.Load(b + 4);
-            Vector256<double> x = Vector256.Create(a[0]);
-            c00 = Vector256.FusedMultiplyAdd(x, b0, c00);
-            c01 = Vector256.FusedMultiplyAdd(x, b1, c01);
-            x = Vector256.Create(a[1]);
-            c10 = Vector256.FusedMultiplyAdd(x, b0, c10);
-            c11 = Vector256.FusedMultiplyAdd(x, b1, c11);
-            x = Vector256.Create(a[2]);
-            c20 = Vector256.FusedMultiplyAdd(x, b0, c20);
-            c21 = Vector256.FusedMultiplyAdd(x, b1, c21);
-            x = Vector256.Create(a[3]);
-            c30 = Vector256.FusedMultiplyAdd(x, b0, c30);
-            c31 = Vector256.FusedMultiplyAdd(x, b1, c31);
-            a += lda;
-            b += lda;
-        }
-        (Vector256.Load(c) - c00).Store(c);
-        (Vector256.Load(c + 4) - c01).Store(c + 4);
-        c += ldc;
-        (Vector256.Load(c) - c10).Store(c);
-        (Vector256.Load(c + 4) - c11).Store(c + 4);
-        c += ldc;
-        (Vector256.Load(c) - c20).Store(c);
-        (Vector256.Load(c + 4) - c21).Store(c + 4);
-        c += ldc;
-        (Vector256.Load(c) - c30).Store(c);
-        (Vector256.Load(c + 4) - c31).Store(c + 4);
-    }
-
-    private static void Block1x8(double* a, nint lda, double* b, double* c, int depth)
-    {
-        Vector512<double> sum = default;
-        for (int p = 0; p < depth; p++)
-        {
-            sum = Vector512.FusedMultiplyAdd(Vector512.Create(*a), Vector512.Load(b), sum);
-            a += lda;
-            b += lda;
-        }
-        (Vector512.Load(c) - sum).Store(c);
     }
 }

@@ -12,12 +12,13 @@ public sealed class SparseAnalysis
     private ParallelPlan? plan;
 
     private SparseAnalysis(
-        SymmetricPattern pattern, SupernodeTree tree, EliminationGraph graph, int[] order, int[] mirror)
+        SymmetricPattern pattern, SupernodeTree tree, EliminationGraph graph, int[] order, int[] mirror, CancellationToken cancel)
     {
         Pattern = pattern;
         Tree = tree;
         Order = Array.ConvertAll(tree.Order, k => order[k]);
-        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror);
+        (EntryStart, EntryPlace, EntryRight, EntryBelow, Diagonal) = Entries(tree, graph, mirror, cancel);
+        cancel.ThrowIfCancellationRequested();
         RowPlace = RowPlaces(tree);
         (ChildStart, Children) = ChildLists(tree);
 
@@ -29,7 +30,8 @@ public sealed class SparseAnalysis
         for (int t = 0; t < count; t++)
         {
             int s = tree.Width(t), m = tree.Height(t);
-            PanelStart[t + 1] = PanelStart[t] + 2L * s * Stride(t);
+            PanelStart[t + 1] = PanelStart[t] + (long)s * (s + 1) / 2 + (long)s * (m - s);
+            LargestPanel = Math.Max(LargestPanel, (long)s * Stride(t));
             nonZeros += 2L * s * m - (long)s * s;
             flops += FlopsOf(t);
             LargestFront = Math.Max(LargestFront, Stride(t));
@@ -51,10 +53,8 @@ public sealed class SparseAnalysis
     /// <summary>Additions and multiplications of one factorisation.</summary>
     public double Flops { get; }
 
-    /// <summary>Bytes one <see cref="SparseLu"/> of this analysis takes, the analysis included.</summary>
-    public long MemoryBytes =>
-        8 * (PanelStart[^1] + UpdateLength)
-        + 4L * (2L * Tree.Rows.Length + 3L * EntryPlace.Length + 4L * Pattern.Size + 8L * Tree.Count);
+    /// <summary>Bytes of the analysis itself.</summary>
+    public long MemoryBytes => 4L * (2L * Tree.Rows.Length + 3L * EntryPlace.Length + 4L * Pattern.Size + 8L * Tree.Count);
 
     internal SupernodeTree Tree { get; }
 
@@ -83,7 +83,10 @@ public sealed class SparseAnalysis
 
     internal int[] Children { get; }
 
-    /// <summary>Where the panels of each supernode begin: U by rows, then L by columns, each Width x Stride.</summary>
+    /// <summary>
+    /// Where the panel of each supernode begins when there is one per supernode (L D Lᵀ); twice that for two (L and U). A panel has the triangle of the
+    /// block, then Width rows of the rest.
+    /// </summary>
     internal long[] PanelStart { get; }
 
     /// <summary>Where the update matrix of each supernode begins in the work space.</summary>
@@ -93,6 +96,9 @@ public sealed class SparseAnalysis
     internal long UpdateLength { get; }
 
     internal int LargestFront { get; }
+
+    /// <summary>Most doubles of one padded panel.</summary>
+    internal long LargestPanel { get; }
 
     /// <summary>Division of the work for several threads, made when first asked for.</summary>
     internal ParallelPlan Plan => LazyInitializer.EnsureInitialized(ref plan, () => new ParallelPlan(this));
@@ -126,16 +132,19 @@ public sealed class SparseAnalysis
         {
             throw new ArgumentException($"The coordinates must be empty or {n} each, but are {x.Length} and {y.Length}.", nameof(x));
         }
-        int[] mirror = Mirror(pattern);
+        int[] mirror = Mirror(pattern, cancel);
+        cancel.ThrowIfCancellationRequested();
         int[] order = DissectionOrdering.Order(pattern, x, y, cancel);
-        var graph = new EliminationGraph(pattern, order);
+        var graph = new EliminationGraph(pattern, order, cancel);
+        cancel.ThrowIfCancellationRequested();
         SupernodeTree tree = SupernodeTree.Build(graph, cancel);
-        return new SparseAnalysis(pattern, tree, graph, order, mirror);
+        cancel.ThrowIfCancellationRequested();
+        return new SparseAnalysis(pattern, tree, graph, order, mirror, cancel);
     }
 
     // Checks the pattern and gives for each entry its mirror image. Rows come in ascending order, so the mirror images in each
     // row are met in ascending order too.
-    private static int[] Mirror(SymmetricPattern pattern)
+    private static int[] Mirror(SymmetricPattern pattern, CancellationToken cancel)
     {
         int[] start = pattern.Start, column = pattern.Column, mirror = new int[column.Length];
         int n = pattern.Size;
@@ -146,6 +155,10 @@ public sealed class SparseAnalysis
         int[] next = start.AsSpan(0, n).ToArray();
         for (int i = 0; i < n; i++)
         {
+            if ((i & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             bool diagonal = false;
             for (int k = start[i]; k < start[i + 1]; k++)
             {
@@ -171,7 +184,7 @@ public sealed class SparseAnalysis
     }
 
     private static (int[] Start, int[] Place, int[] Right, int[] Below, int[] Diagonal) Entries(
-        SupernodeTree tree, EliminationGraph graph, int[] mirror)
+        SupernodeTree tree, EliminationGraph graph, int[] mirror, CancellationToken cancel)
     {
         int n = graph.Size, half = graph.Pairs, e = 0;
         int[] entryStart = new int[n + 1], diagonal = new int[n], local = new int[n];
@@ -179,6 +192,10 @@ public sealed class SparseAnalysis
         int[] below = GC.AllocateUninitializedArray<int>(half);
         for (int t = 0; t < tree.Count; t++)
         {
+            if ((t & 0xFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             int first = tree.First[t], width = tree.Width(t), rows = tree.RowStart[t];
             for (int j = first; j < first + width; j++)
             {

@@ -1,4 +1,5 @@
 using System.Collections.Concurrent;
+using System.Runtime.CompilerServices;
 using System.Runtime.Intrinsics;
 
 namespace FieldSolve.Sparse;
@@ -62,7 +63,7 @@ public sealed unsafe partial class SparseLu
         int n = analysis.Pattern.Size;
         if (!spaces.TryTake(out double[]? space))
         {
-            space = GC.AllocateUninitializedArray<double>(n + analysis.LargestFront + 16, pinned: true);
+            space = GC.AllocateUninitializedArray<double>(n + analysis.LargestFront + 40, pinned: true);
         }
         int[] order = analysis.Order;
         for (int k = 0; k < n; k++)
@@ -89,99 +90,143 @@ public sealed unsafe partial class SparseLu
         GC.KeepAlive(this);
     }
 
-    // Eliminates the steps of one supernode from the right-hand side: with L, or with Uᵀ for the transposed matrix.
+    // The panel that eliminates a supernode from the right-hand side: L, or U for the transposed matrix.
+    private double* ForwardPanel(int t, bool transposed)
+    {
+        long start = analysis.PanelStart[t];
+        return IsSymmetric ? panels + start : transposed ? panels + 2 * start : panels + start + analysis.PanelStart[t + 1];
+    }
+
+    // The panel that solves for the steps of a supernode: U, or L for the transposed or the symmetric matrix.
+    private double* BackwardPanel(int t, bool transposed) => ForwardPanel(t, !transposed);
+
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Forward(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;
-        int width = tree.Width(t), stride = analysis.Stride(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
-        double* u = panels + analysis.PanelStart[t], panel = transposed ? u : u + (nint)width * stride;
-        double* own = y + tree.First[t];
+        int width = tree.Width(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
+        bool scaled = transposed && !IsSymmetric;
+        double* own = y + tree.First[t], row = ForwardPanel(t, transposed);
         for (int k = 0; k < width; k++)
         {
-            double* row = panel + (nint)k * stride;
-            if (transposed)
+            if (scaled)
             {
-                own[k] /= row[k];
+                own[k] *= row[0];
             }
             double value = -own[k];
-            for (int j = k + 1; j < width; j++)
+            double* at = own + k;
+            int left = width - k, j = 1;
+            if (left > 16)
             {
-                own[j] = Math.FusedMultiplyAdd(value, row[j], own[j]);
+                Vector512<double> values = Vector512.Create(value);
+                for (; j + 8 <= left; j += 8)
+                {
+                    Vector512.FusedMultiplyAdd(values, Vector512.Load(row + j), Vector512.Load(at + j)).Store(at + j);
+                }
             }
+            for (; j < left; j++)
+            {
+                at[j] = Math.FusedMultiplyAdd(value, row[j], at[j]);
+            }
+            row += left;
         }
         if (rest == 0)
         {
             return;
         }
-        int from = width & -8;
-        int c = from;
-        for (; c + 32 <= stride; c += 32)
+        // The last vector of a row runs into the next row: those sums are not used.
+        int c = 0;
+        for (; c + 24 < rest; c += 32)
         {
-            double* row = panel + c;
+            double* at = row + c;
             Vector512<double> s0 = default, s1 = default, s2 = default, s3 = default;
             for (int k = 0; k < width; k++)
             {
                 Vector512<double> v = Vector512.Create(own[k]);
-                s0 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row), s0);
-                s1 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row + 8), s1);
-                s2 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row + 16), s2);
-                s3 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row + 24), s3);
-                row += stride;
+                s0 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at), s0);
+                s1 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at + 8), s1);
+                s2 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at + 16), s2);
+                s3 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at + 24), s3);
+                at += rest;
             }
-            s0.Store(work + c - from);
-            s1.Store(work + c - from + 8);
-            s2.Store(work + c - from + 16);
-            s3.Store(work + c - from + 24);
+            s0.Store(work + c);
+            s1.Store(work + c + 8);
+            s2.Store(work + c + 16);
+            s3.Store(work + c + 24);
         }
-        for (; c < stride; c += 8)
+        for (; c + 8 < rest; c += 16)
         {
-            double* row = panel + c;
+            double* at = row + c;
+            Vector512<double> s0 = default, s1 = default;
+            for (int k = 0; k < width; k++)
+            {
+                Vector512<double> v = Vector512.Create(own[k]);
+                s0 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at), s0);
+                s1 = Vector512.FusedMultiplyAdd(v, Vector512.Load(at + 8), s1);
+                at += rest;
+            }
+            s0.Store(work + c);
+            s1.Store(work + c + 8);
+        }
+        if (c < rest)
+        {
+            double* at = row + c;
             Vector512<double> sum = default;
             for (int k = 0; k < width; k++)
             {
-                sum = Vector512.FusedMultiplyAdd(Vector512.Create(own[k]), Vector512.Load(row), sum);
-                row += stride;
+                sum = Vector512.FusedMultiplyAdd(Vector512.Create(own[k]), Vector512.Load(at), sum);
+                at += rest;
             }
-            sum.Store(work + c - from);
+            sum.Store(work + c);
         }
         fixed (int* rows = &tree.Rows[start])
         {
-            double* sums = work + width - from;
             for (int i = 0; i < rest; i++)
             {
-                y[rows[i]] -= sums[i];
+                y[rows[i]] -= work[i];
             }
         }
     }
 
-    // Solves for the steps of one supernode: with U, or with Lᵀ for the transposed matrix.
+    [MethodImpl(MethodImplOptions.AggressiveOptimization)]
     private void Backward(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;
-        int width = tree.Width(t), stride = analysis.Stride(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
-        double* u = panels + analysis.PanelStart[t], panel = transposed ? u + (nint)width * stride : u;
-        double* own = y + tree.First[t];
-        int from = width & -8, length = stride - from;
+        int width = tree.Width(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
+        double* own = y + tree.First[t], panel = BackwardPanel(t, transposed), row = panel;
+        if (IsSymmetric)
+        {
+            for (int k = 0; k < width; k++)
+            {
+                own[k] *= *row;
+                row += width - k;
+            }
+        }
+        else
+        {
+            row += width * (width + 1) / 2;
+        }
+        double* last = row;   // behind the triangle
         if (rest > 0)
         {
-            new Span<double>(work, length).Clear();
+            // Zeros behind the end meet what follows a row in the panel.
+            Vector512<double>.Zero.Store(work + ((rest - 1) & -8));
             fixed (int* rows = &tree.Rows[start])
             {
-                double* gathered = work + width - from;
                 for (int i = 0; i < rest; i++)
                 {
-                    gathered[i] = y[rows[i]];
+                    work[i] = y[rows[i]];
                 }
             }
             int r = 0;
             for (; r + 4 <= width; r += 4)
             {
-                double* row0 = panel + (nint)r * stride + from, row1 = row0 + stride, row2 = row1 + stride, row3 = row2 + stride;
+                double* row1 = row + rest, row2 = row1 + rest, row3 = row2 + rest;
                 Vector512<double> s0 = default, s1 = default, s2 = default, s3 = default;
-                for (int j = 0; j < length; j += 8)
+                for (int j = 0; j < rest; j += 8)
                 {
                     Vector512<double> v = Vector512.Load(work + j);
-                    s0 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row0 + j), s0);
+                    s0 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row + j), s0);
                     s1 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row1 + j), s1);
                     s2 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row2 + j), s2);
                     s3 = Vector512.FusedMultiplyAdd(v, Vector512.Load(row3 + j), s3);
@@ -190,37 +235,41 @@ public sealed unsafe partial class SparseLu
                 own[r + 1] -= Vector512.Sum(s1);
                 own[r + 2] -= Vector512.Sum(s2);
                 own[r + 3] -= Vector512.Sum(s3);
+                row = row3 + rest;
             }
             for (; r < width; r++)
             {
-                double* row = panel + (nint)r * stride + from;
                 Vector512<double> sum = default;
-                for (int j = 0; j < length; j += 8)
+                for (int j = 0; j < rest; j += 8)
                 {
                     sum = Vector512.FusedMultiplyAdd(Vector512.Load(work + j), Vector512.Load(row + j), sum);
                 }
                 own[r] -= Vector512.Sum(sum);
+                row += rest;
             }
         }
+        bool scaled = !transposed && !IsSymmetric;
+        row = last;
         for (int k = width - 1; k >= 0; k--)
         {
-            double* row = panel + (nint)k * stride;
-            double s = own[k];
-            int j = k + 1;
-            if (width - j >= 16)
+            int left = width - k, j = 1;
+            row -= left;
+            double* at = own + k;
+            double s = *at;
+            if (left > 16)
             {
                 Vector512<double> sum = default;
-                for (; j + 8 <= width; j += 8)
+                for (; j + 8 <= left; j += 8)
                 {
-                    sum = Vector512.FusedMultiplyAdd(Vector512.Load(row + j), Vector512.Load(own + j), sum);
+                    sum = Vector512.FusedMultiplyAdd(Vector512.Load(row + j), Vector512.Load(at + j), sum);
                 }
                 s -= Vector512.Sum(sum);
             }
-            for (; j < width; j++)
+            for (; j < left; j++)
             {
-                s = Math.FusedMultiplyAdd(-row[j], own[j], s);
+                s = Math.FusedMultiplyAdd(-row[j], at[j], s);
             }
-            own[k] = transposed ? s : s / row[k];
+            *at = scaled ? s * row[0] : s;
         }
     }
 
@@ -270,73 +319,99 @@ public sealed unsafe partial class SparseLu
     private void ForwardMany(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;
-        int width = tree.Width(t), stride = analysis.Stride(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
-        double* u = panels + analysis.PanelStart[t], panel = transposed ? u : u + (nint)width * stride;
-        double* own = y + (nint)tree.First[t] * Together;
-        new Span<double>(work, rest * Together).Clear();
+        int width = tree.Width(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
+        bool scaled = transposed && !IsSymmetric;
+        double* own = y + (nint)tree.First[t] * Together, row = ForwardPanel(t, transposed);
         for (int k = 0; k < width; k++)
         {
-            double* row = panel + (nint)k * stride;
-            Vector512<double> value = Vector512.Load(own + (nint)k * Together);
-            if (transposed)
+            double* at = own + (nint)k * Together;
+            Vector512<double> value = Vector512.Load(at);
+            if (scaled)
             {
-                value /= Vector512.Create(row[k]);
-                value.Store(own + (nint)k * Together);
+                value *= Vector512.Create(row[0]);
+                value.Store(at);
             }
             value = -value;
-            for (int j = k + 1; j < width; j++)
+            for (int j = 1; j < width - k; j++)
             {
-                double* at = own + (nint)j * Together;
+                at += Together;
                 Vector512.FusedMultiplyAdd(Vector512.Create(row[j]), value, Vector512.Load(at)).Store(at);
             }
-            for (int i = 0; i < rest; i++)
-            {
-                double* at = work + (nint)i * Together;
-                Vector512.FusedMultiplyAdd(Vector512.Create(row[width + i]), value, Vector512.Load(at)).Store(at);
-            }
+            row += width - k;
         }
-        for (int i = 0; i < rest; i++)
+        // Four rows of the result at a time in registers.
+        int i = 0;
+        for (; i + 4 <= rest; i += 4)
         {
-            double* at = y + (nint)tree.Rows[start + i] * Together;
-            (Vector512.Load(at) + Vector512.Load(work + (nint)i * Together)).Store(at);
+            double* at = row + i;
+            Vector512<double> s0 = default, s1 = default, s2 = default, s3 = default;
+            for (int k = 0; k < width; k++)
+            {
+                Vector512<double> v = Vector512.Load(own + (nint)k * Together);
+                s0 = Vector512.FusedMultiplyAdd(Vector512.Create(at[0]), v, s0);
+                s1 = Vector512.FusedMultiplyAdd(Vector512.Create(at[1]), v, s1);
+                s2 = Vector512.FusedMultiplyAdd(Vector512.Create(at[2]), v, s2);
+                s3 = Vector512.FusedMultiplyAdd(Vector512.Create(at[3]), v, s3);
+                at += rest;
+            }
+            Add(y, tree.Rows[start + i], s0);
+            Add(y, tree.Rows[start + i + 1], s1);
+            Add(y, tree.Rows[start + i + 2], s2);
+            Add(y, tree.Rows[start + i + 3], s3);
+        }
+        for (; i < rest; i++)
+        {
+            double* at = row + i;
+            Vector512<double> sum = default;
+            for (int k = 0; k < width; k++)
+            {
+                sum = Vector512.FusedMultiplyAdd(Vector512.Create(*at), Vector512.Load(own + (nint)k * Together), sum);
+                at += rest;
+            }
+            Add(y, tree.Rows[start + i], sum);
+        }
+
+        static void Add(double* y, int i, Vector512<double> sum)
+        {
+            double* at = y + (nint)i * Together;
+            (Vector512.Load(at) - sum).Store(at);
         }
     }
 
     private void BackwardMany(int t, double* y, double* work, bool transposed)
     {
         SupernodeTree tree = analysis.Tree;
-        int width = tree.Width(t), stride = analysis.Stride(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
-        double* u = panels + analysis.PanelStart[t], panel = transposed ? u + (nint)width * stride : u;
-        double* own = y + (nint)tree.First[t] * Together;
+        int width = tree.Width(t), start = tree.RowStart[t], rest = tree.RowStart[t + 1] - start;
+        double* panel = BackwardPanel(t, transposed), own = y + (nint)tree.First[t] * Together;
         for (int i = 0; i < rest; i++)
         {
             Vector512.Load(y + (nint)tree.Rows[start + i] * Together).Store(work + (nint)i * Together);
         }
+        double* row = panel + (width * (width + 1) / 2), below = row + (nint)width * rest;
         for (int k = width - 1; k >= 0; k--)
         {
-            double* row = panel + (nint)k * stride;
+            row -= width - k;
+            below -= rest;
+            double* at = own + (nint)k * Together;
             Vector512<double> sum = default, more = default;
-            for (int j = k + 1; j < width; j++)
+            for (int j = 1; j < width - k; j++)
             {
-                sum = Vector512.FusedMultiplyAdd(Vector512.Create(row[j]), Vector512.Load(own + (nint)j * Together), sum);
+                sum = Vector512.FusedMultiplyAdd(Vector512.Create(row[j]), Vector512.Load(at + (nint)j * Together), sum);
             }
             int i = 0;
             for (; i + 2 <= rest; i += 2)
             {
-                double* at = work + (nint)i * Together;
-                sum = Vector512.FusedMultiplyAdd(Vector512.Create(row[width + i]), Vector512.Load(at), sum);
-                more = Vector512.FusedMultiplyAdd(Vector512.Create(row[width + i + 1]), Vector512.Load(at + Together), more);
+                double* gathered = work + (nint)i * Together;
+                sum = Vector512.FusedMultiplyAdd(Vector512.Create(below[i]), Vector512.Load(gathered), sum);
+                more = Vector512.FusedMultiplyAdd(Vector512.Create(below[i + 1]), Vector512.Load(gathered + Together), more);
             }
             if (i < rest)
             {
-                sum = Vector512.FusedMultiplyAdd(Vector512.Create(row[width + i]), Vector512.Load(work + (nint)i * Together), sum);
+                sum = Vector512.FusedMultiplyAdd(Vector512.Create(below[i]), Vector512.Load(work + (nint)i * Together), sum);
             }
-            Vector512<double> value = Vector512.Load(own + (nint)k * Together) - (sum + more);
-            if (!transposed)
-            {
-                value /= Vector512.Create(row[k]);
-            }
-            value.Store(own + (nint)k * Together);
+            Vector512<double> value = Vector512.Load(at), pivot = Vector512.Create(row[0]);
+            value = IsSymmetric ? (value * pivot) - (sum + more) : value - (sum + more);
+            (transposed || IsSymmetric ? value : value * pivot).Store(at);
         }
     }
 }

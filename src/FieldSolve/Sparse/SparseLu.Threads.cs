@@ -26,11 +26,7 @@ public sealed unsafe partial class SparseLu
         catch (AggregateException e) when (e.InnerException is PivotException)
         {
             // Which pivot was met first depends on the threads: the one that counts is the first of the elimination.
-            var room = new Room(updates, a.UpdateStart, values, null, cancel);
-            for (int t = 0; t < a.Tree.Count; t++)
-            {
-                Front(t, room);
-            }
+            FactorAlone(values, cancel);
         }
         catch (AggregateException e) when (e.InnerException is OperationCanceledException)
         {
@@ -40,14 +36,16 @@ public sealed unsafe partial class SparseLu
 
         void Subtree(int root)
         {
+            double[] front = RentFront();
             for (int t = plan.First[root]; t <= root; t++)
             {
                 if ((t & 63) == 0)
                 {
                     cancel.ThrowIfCancellationRequested();
                 }
-                Front(t, alone);
+                Front(t, alone, Aligned(front));
             }
+            spareFronts.Add(front);
             Finished(root);
         }
 
@@ -58,7 +56,9 @@ public sealed unsafe partial class SparseLu
             {
                 team.Add(() =>
                 {
-                    Front(parent, helped);
+                    double[] front = RentFront();
+                    Front(parent, helped, Aligned(front));
+                    spareFronts.Add(front);
                     Finished(parent);
                 });
             }

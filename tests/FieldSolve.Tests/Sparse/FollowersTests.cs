@@ -9,7 +9,7 @@ public class FollowersTests
     {
         Sample disc = DiscWorkload.Build(5_000);
         int[] number = [.. Enumerable.Range(0, disc.Size)];
-        int[] followers = Followers.Find(disc.Pattern, number);
+        int[] followers = Followers.Find(disc.Pattern, number, default);
         Assert.InRange(followers.Length, 0.7 * disc.Size, 0.8 * disc.Size);
         foreach (int i in followers)
         {
@@ -25,7 +25,7 @@ public class FollowersTests
     {
         Sample sample = Samples.Random(300, 3, 1);
         int[] number = [.. Enumerable.Range(0, 300)];
-        Assert.Empty(Followers.Find(sample.Pattern, number));
+        Assert.Empty(Followers.Find(sample.Pattern, number, default));
         Assert.Equal(Enumerable.Range(0, 300), number);
     }
 

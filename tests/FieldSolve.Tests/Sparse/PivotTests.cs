@@ -15,6 +15,7 @@ public class PivotTests
         Sample mesh = Samples.Mesh(cells, support: 0);
         Assert.Throws<PivotException>(() => mesh.Factored());
         Assert.Throws<PivotException>(() => mesh.Factored(places: false));
+        Assert.Throws<PivotException>(() => mesh.Symmetrised().Factored(symmetric: true));
     }
 
     [Fact]
@@ -50,6 +51,8 @@ public class PivotTests
         PivotException found = Assert.Throws<PivotException>(() => lu.Factor(values));
         Assert.True(found.Pivot <= 0 || !double.IsFinite(found.Pivot));
         Assert.Contains("unknown", found.Message, StringComparison.Ordinal);
+        PivotException half = Assert.Throws<PivotException>(() => (mesh with { Values = values }).Factored(symmetric: true));
+        Assert.Equal(found.Unknown, half.Unknown);
         double[] x = new double[mesh.Size];
         Assert.Throws<InvalidOperationException>(() => lu.Solve(x, x));
         lu.Factor(mesh.Values);

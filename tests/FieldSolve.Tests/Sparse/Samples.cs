@@ -21,9 +21,23 @@ public sealed record Sample(SymmetricPattern Pattern, double[] Values, double[] 
         return dense;
     }
 
-    public SparseLu Factored(bool places = true)
+    /// <summary>The symmetric part.</summary>
+    public Sample Symmetrised()
     {
-        var lu = new SparseLu(SparseAnalysis.Analyse(Pattern, places ? X : [], places ? Y : []));
+        double[] values = new double[Values.Length];
+        for (int i = 0; i < Size; i++)
+        {
+            for (int k = Pattern.Start[i]; k < Pattern.Start[i + 1]; k++)
+            {
+                values[k] = 0.5 * (Values[k] + Values[Samples.Place(Pattern, Pattern.Column[k], i)]);
+            }
+        }
+        return this with { Values = values };
+    }
+
+    public SparseLu Factored(bool places = true, bool symmetric = false)
+    {
+        var lu = new SparseLu(SparseAnalysis.Analyse(Pattern, places ? X : [], places ? Y : []), symmetric);
         lu.Factor(Values);
         return lu;
     }

@@ -42,6 +42,12 @@ public class SparseLuTests
             lu.SolveTransposed(b, x);
             AssertClose(wantedTransposed, x);
         }
+        SparseLu symmetric = sample.Symmetrised().Factored(symmetric: true);
+        double[] wantedSymmetric = (0.5 * (dense + dense.Transpose())).Solve(right).ToArray();
+        symmetric.Solve(b, x);
+        AssertClose(wantedSymmetric, x);
+        symmetric.SolveTransposed(b, x);
+        AssertClose(wantedSymmetric, x);
     }
 
     private static void AssertClose(double[] wanted, double[] found)
@@ -87,14 +93,17 @@ public class SparseLuTests
     }
 
     [Theory]
-    [InlineData(75, 1.0, true, false)]      // 22801 unknowns
-    [InlineData(75, 1.0, false, false)]
-    [InlineData(60, 0.74, true, false)]     // cells from 1 down to 2e-8
-    [InlineData(60, 1.0, true, true)]       // one unknown coupled to a whole rim
-    public void Solves_meshes_to_rounding(int cells, double grading, bool places, bool hub)
+    [InlineData(75, 1.0, true, false, false)]      // 22801 unknowns
+    [InlineData(75, 1.0, false, false, false)]
+    [InlineData(60, 0.74, true, false, false)]     // cells from 1 down to 2e-8
+    [InlineData(60, 1.0, true, true, false)]       // one unknown coupled to a whole rim
+    [InlineData(75, 1.0, true, false, true)]
+    [InlineData(60, 0.74, true, true, true)]
+    public void Solves_meshes_to_rounding(int cells, double grading, bool places, bool hub, bool symmetric)
     {
         Sample mesh = Samples.Mesh(cells, grading, hub: hub);
-        SparseLu lu = mesh.Factored(places);
+        mesh = symmetric ? mesh.Symmetrised() : mesh;
+        SparseLu lu = mesh.Factored(places, symmetric);
         double[] b = Samples.Vector(mesh.Size, 1), x = new double[mesh.Size];
         lu.Solve(b, x);
         Assert.InRange(mesh.BackwardError(b, x), 0, 1e-14);
@@ -102,16 +111,29 @@ public class SparseLuTests
         Assert.InRange(mesh.BackwardError(b, x, transposed: true), 0, 1e-14);
     }
 
+    [Fact]
+    public void Symmetric_factor_takes_half_the_room_and_refuses_other_matrices()
+    {
+        Sample mesh = Samples.Mesh(30);
+        SparseLu lu = mesh.Factored(), half = mesh.Symmetrised().Factored(symmetric: true);
+        Assert.Equal(lu.NonZeros, 2 * half.NonZeros);
+        Assert.True(half.IsSymmetric && !lu.IsSymmetric);
+        Assert.Contains("not symmetric", Assert.Throws<ArgumentException>(() => half.Factor(mesh.Values)).Message, StringComparison.Ordinal);
+        Assert.Throws<InvalidOperationException>(() => half.Solve(new double[mesh.Size], new double[mesh.Size]));
+    }
+
     [Theory]
-    [InlineData(1)]
-    [InlineData(3)]
-    [InlineData(8)]
-    [InlineData(19)]
-    public void Many_right_hand_sides_are_solved_like_single_ones(int count)
+    [InlineData(1, false)]
+    [InlineData(3, false)]
+    [InlineData(8, false)]
+    [InlineData(19, false)]
+    [InlineData(11, true)]
+    public void Many_right_hand_sides_are_solved_like_single_ones(int count, bool symmetric)
     {
         Sample mesh = Samples.Mesh(12, hub: true);
+        mesh = symmetric ? mesh.Symmetrised() : mesh;
         int n = mesh.Size;
-        SparseLu lu = mesh.Factored();
+        SparseLu lu = mesh.Factored(symmetric: symmetric);
         double[] b = Samples.Vector(n * count, 4), x = new double[n * count], single = new double[n];
         foreach (bool transposed in new[] { false, true })
         {
@@ -229,14 +251,18 @@ public class SparseLuTests
         Assert.InRange(mesh.BackwardError(b, x), 0, 1e-14);
     }
 
-    [Fact]
-    public void Rows_of_very_different_scale_are_solved()
+    // Rows and columns times 1e-9 to 1e9, alike, so that the symmetric part stays positive definite.
+    [Theory]
+    [InlineData(false)]
+    [InlineData(true)]
+    public void Rows_of_very_different_scale_are_solved(bool symmetric)
     {
         Sample mesh = Samples.Mesh(20);
+        mesh = symmetric ? mesh.Symmetrised() : mesh;
         double[] scale = [.. Samples.Vector(mesh.Size, 8).Select(v => Math.Pow(10, 9 * v))], values = new double[mesh.Pattern.Count];
         ForEach(mesh.Pattern, (i, j, k) => values[k] = scale[i] * mesh.Values[k] * scale[j]);
         double[] b = Samples.Vector(mesh.Size, 1), x = new double[mesh.Size];
-        (mesh with { Values = values }).Factored().Solve([.. b.Select((v, i) => scale[i] * v)], x);
+        (mesh with { Values = values }).Factored(symmetric: symmetric).Solve([.. b.Select((v, i) => scale[i] * v)], x);
         Assert.InRange(mesh.BackwardError(b, [.. x.Select((v, i) => scale[i] * v)]), 0, 1e-13);
     }
 

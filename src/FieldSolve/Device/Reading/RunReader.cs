@@ -32,7 +32,7 @@ internal static class RunReader
         return current is { } c ? new DriveSpec(c.From, c.To, c.Steps, bothSigns, frequencies, offset) { At = (drive.At.Line, drive.At.Column) } : null;
     }
 
-    public static TurnSpec? Turn(Section root, ContactReader contacts)
+    public static TurnSpec? Turn(Section root, ContactReader contacts, IReadOnlyList<Wiring> wirings)
     {
         if (root.Header("turn") is not { } turn)
         {
@@ -46,8 +46,30 @@ internal static class RunReader
             turn.Faults.Add(around.At, $"no ring of [[contacts]] has the prefix '{Values.Short(around.Value)}'{Suggest.Hint(around.Value, [.. contacts.Rings.Select(r => r.Prefix)])}");
         }
 
+        if (ring is not null && wirings.Count > 0)
+        {
+            RequireInRing(turn, around!, ring, contacts, wirings[0]);
+        }
+
         turn.Finish();
         return new TurnSpec(ring?.Prefix, ring is null ? [] : [.. Enumerable.Range(ring.First, ring.Count)]);
+    }
+
+    // A terminal that cannot step with the others would make every direction a different measurement.
+    private static void RequireInRing(Section turn, TomlText around, RingDraft ring, ContactReader contacts, Wiring wiring)
+    {
+        IEnumerable<Terminal> used = [new(false, wiring.Source), new(false, wiring.Drain), .. wiring.Pairs.SelectMany(p => new[] { p.Plus, p.Minus })];
+        foreach (Terminal t in used)
+        {
+            if (t.IsTip || t.Index < ring.First || t.Index >= ring.First + ring.Count)
+            {
+                string? name = t.IsTip ? contacts.Tips[t.Index].Name : contacts.Contacts[t.Index].Name;
+                turn.Faults.Add(
+                    around.At,
+                    $"the first wiring '{wiring.Name}' is stepped round the ring '{ring.Prefix}', but its {(t.IsTip ? "point" : "contact")} '{name}' does not belong to it; use contacts of the ring, or leave 'around' out and write every direction as a [[wiring]]");
+                return;
+            }
+        }
     }
 
     public static MeshSpec Mesh(Section root)

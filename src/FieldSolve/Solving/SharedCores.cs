@@ -1,0 +1,34 @@
+using FieldSolve.Sparse;
+
+namespace FieldSolve.Solving;
+
+/// <summary>
+/// Who gets the processors. Wirings and signs run side by side, one thread each; a large factorisation that runs while no other does takes all
+/// processors. Results are the same bits either way.
+/// </summary>
+internal static class SharedCores
+{
+    /// <summary>Additions and multiplications from which on more threads are worth their room for work space.</summary>
+    private const double WorthThreads = 3e8;
+
+    private static int running;
+
+    /// <summary>Factors a matrix.</summary>
+    /// <param name="factor">Where the factor goes.</param>
+    /// <param name="values">One value per place of the pattern.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <exception cref="PivotException">A pivot is not finite, not positive or negligible.</exception>
+    /// <exception cref="OperationCanceledException">Cancelled.</exception>
+    public static void Factor(SparseLu factor, ReadOnlySpan<double> values, CancellationToken cancel)
+    {
+        bool alone = Interlocked.Increment(ref running) == 1;
+        try
+        {
+            factor.Factor(values, alone && factor.Analysis.Flops > WorthThreads ? Environment.ProcessorCount : 1, cancel);
+        }
+        finally
+        {
+            Interlocked.Decrement(ref running);
+        }
+    }
+}

@@ -96,6 +96,9 @@ public sealed class ReportFixture : IAsyncLifetime
         Directory.Delete(folder, recursive: true);
     }
 
+    /// <summary>A window of its own, with the network.</summary>
+    internal Task<IBrowserContext> Window(BrowserNewContextOptions options) => browser!.NewContextAsync(options);
+
     internal void Write(string path) => ReportPage.Write(Result, DrivePictures.Write(Result, Other("pictures"), CancellationToken.None), path);
 
     /// <summary>An open report for tests that only ask its script; never changed.</summary>

@@ -96,6 +96,7 @@ public static class LayoutPage
         w.WriteStartObject();
         w.WriteNumber("version", answer.Version);
         w.WriteBoolean("accurate", answer.IsAccurate);
+        w.WriteBoolean("complete", answer.Drive is not null || (answer.IsAccurate && answer.Failure is not null));
         w.WriteNumber("milliseconds", Math.Round(answer.Milliseconds, 1));
         w.WriteString("failure", answer.Failure);
         w.WriteStartArray("rows");

@@ -102,7 +102,7 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
     private async Task Accurate(IPage page)
     {
         await page.WaitForFunctionAsync(
-            "version => { const a = window.fieldsolve?.app; return a?.answer?.accurate && a.answer.version === version && a.state?.version === version && a.badge.dataset.accuracy === 'accurate'; }",
+            "version => { const a = window.fieldsolve?.app; return a?.answer?.complete && a.answer.version === version && a.state?.version === version && a.badge.dataset.accuracy === 'accurate'; }",
             session.State.Version);
     }
 

@@ -118,7 +118,15 @@ public sealed class AnswerLoop : IDisposable
                 }
             }
 
-            if (Accurate(state) is { } answer)
+            // The wirings that are looked at come first; the whole drive, whose numbers are those of the drive command, follows.
+            Wiring[] shown = [.. state.Device.Wirings.Where(w => lookedAt().Contains(w.Name))];
+            shown = shown.Length > 0 ? shown : [.. state.Device.Wirings.Take(1)];
+            if (shown.Length < state.Device.Wirings.Count && Accurate(state, state.Device with { Wirings = shown }) is { } first)
+            {
+                publish(first with { Drive = null });
+            }
+
+            if (Accurate(state, state.Device) is { } answer)
             {
                 publish(answer);
             }
@@ -132,7 +140,8 @@ public sealed class AnswerLoop : IDisposable
         }
     }
 
-    private LayoutAnswer? Accurate(SessionState state)
+    // Null when a newer text came.
+    private LayoutAnswer? Accurate(SessionState state, SheetDevice device)
     {
         Stopwatch watch = Stopwatch.StartNew();
         using CancellationTokenSource cancel = CancellationTokenSource.CreateLinkedTokenSource(stop.Token);
@@ -148,13 +157,13 @@ public sealed class AnswerLoop : IDisposable
 
         try
         {
-            DriveResult result = DriveRun.Execute(state.Device, new DriveOptions { Maps = MapChoice.None, ForPictures = false, Frames = true }, null, cancel.Token);
+            DriveResult result = DriveRun.Execute(device, new DriveOptions { Maps = MapChoice.None, ForPictures = false, Frames = true }, null, cancel.Token);
             if (result.Cancelled)
             {
                 return null;
             }
 
-            int last = state.Device.Drive!.Currents.Select((c, k) => (Math.Abs(c), k)).Max().k;
+            int last = device.Drive!.Currents.Select((c, k) => (Math.Abs(c), k)).Max().k;
             return new(
                 state.Version, state.Device, true, result.Rows, [.. result.Frames.Where(f => f.CurrentIndex == last)], null, watch.Elapsed.TotalMilliseconds, result);
         }

@@ -12,7 +12,7 @@ namespace FieldSolve.Sessions;
 /// <param name="Frames">Potential at the largest current of each wiring that was solved.</param>
 /// <param name="Failure">Why there is no answer; null when there is one.</param>
 /// <param name="Milliseconds">Time the answer took.</param>
-/// <param name="Drive">The whole drive behind an accurate answer, else null.</param>
+/// <param name="Drive">The whole drive behind an accurate answer for all wirings, else null.</param>
 public sealed record LayoutAnswer(
     int Version, SheetDevice Device, bool IsAccurate, IReadOnlyList<CurveRow> Rows, IReadOnlyList<PotentialFrame> Frames, string? Failure, double Milliseconds,
     DriveResult? Drive);

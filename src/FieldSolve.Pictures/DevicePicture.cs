@@ -137,7 +137,8 @@ internal static class DevicePicture
     private static Color[] ColoursOf(Wiring wiring, Terminal t) =>
         Duties(wiring, t) is { Count: > 0 } duties ? [.. duties.Select(d => d.Colour).Distinct()] : [Look.Metal];
 
-    private static NameTag TagOf(Contact contact, string role, Color colour)
+    /// <summary>The name of a contact with what it does, beside it.</summary>
+    internal static NameTag TagOf(Contact contact, string role, Color colour)
     {
         string text = contact.Name + role;
         Point2[] points = SheetFrame.Points(contact.Shape);

@@ -8,10 +8,13 @@ internal static class CommandList
     public static IEnumerable<Command> All() =>
     [
         CheckCommand.Create(),
+        MeshCommand.Create(),
         DriveCommand.Create(),
         BandsCommand.Create(),
         LockinCommand.Create(),
         TurnCommand.Create(),
+        ToleranceCommand.Create(),
+        GatherCommand.Create(),
         OpenCommand.Create(),
     ];
 }

@@ -15,13 +15,14 @@ internal static class DriveCommand
 {
     private const double QuickFactor = 10;
 
-    private sealed record Choices(string Device, string Folder, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json);
+    private sealed record Choices(string Device, string Folder, string? Mesh, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json, string[] Shifts);
 
     public static Command Create()
     {
         Argument<string> device = SharedOptions.Device();
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        Option<string?> mesh = SharedOptions.Mesh();
         var maps = new Option<string>("--maps")
         {
             Description = "Potential maps to write (.vtu): all, last (the last current of each wiring) or none.",
@@ -32,12 +33,13 @@ internal static class DriveCommand
         var allSigns = new Option<bool>("--all-signs") { Description = "Also write the rows at the reversed currents." };
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; curves, maps and run.json only." };
         var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+        Option<string[]> shift = ShiftOption.Create();
         var command = new Command(
             "drive",
             "Potential, field, current and probe voltages as the drive increases.\n\n"
             + "Example: fieldsolve drive meshes/disc-12.toml --out results --maps all")
         {
-            device, folder, maps, allSigns, noPictures, quick, quiet, json,
+            device, folder, mesh, maps, allSigns, noPictures, quick, shift, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -46,12 +48,14 @@ internal static class DriveCommand
                 new Choices(
                     path,
                     parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-drive",
+                    parsed.GetValue(mesh),
                     Enum.Parse<MapChoice>(parsed.GetValue(maps)!, ignoreCase: true),
                     parsed.GetValue(allSigns),
                     !parsed.GetValue(noPictures),
                     parsed.GetValue(quick),
                     parsed.GetValue(quiet),
-                    parsed.GetValue(json)),
+                    parsed.GetValue(json),
+                    parsed.GetValue(shift)!),
                 cancel));
         });
         return command;
@@ -64,6 +68,12 @@ internal static class DriveCommand
             return ExitCode.WrongInput;
         }
 
+        if (ShiftOption.Apply(device, choices.Shifts) is not { } shifted)
+        {
+            return ExitCode.WrongInput;
+        }
+
+        device = shifted;
         if (device.Drive is null)
         {
             Console.Error.WriteLine(new Fault(
@@ -76,12 +86,17 @@ internal static class DriveCommand
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
         }
 
+        if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
+        {
+            return ExitCode.WrongInput;
+        }
+
         var screen = new Screen(choices.Quiet);
         DriveResult result;
         try
         {
             result = DriveRun.Execute(
-                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures }, screen, cancel);
+                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures, Mesh = mesh }, screen, cancel);
             if (choices.Quick)
             {
                 result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
@@ -96,7 +111,7 @@ internal static class DriveCommand
 
         Directory.CreateDirectory(choices.Folder);
         result = DriveFiles.Write(
-            result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick), screen, cancel);
+            result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick, choices.Shifts), screen, cancel);
         screen.Clear();
         foreach (string text in result.Cautions)
         {

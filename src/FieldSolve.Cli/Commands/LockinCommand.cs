@@ -13,13 +13,14 @@ internal static class LockinCommand
 {
     private const double QuickFactor = 10;
 
-    private sealed record Choices(string Device, string Folder, bool Pictures, bool Quick, bool Quiet, bool Json);
+    private sealed record Choices(string Device, string Folder, string? Mesh, bool Pictures, bool Quick, bool Quiet, bool Json);
 
     public static Command Create()
     {
         Argument<string> device = SharedOptions.Device();
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        Option<string?> mesh = SharedOptions.Mesh();
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; harmonics and run.json only." };
         var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
         var command = new Command(
@@ -27,7 +28,7 @@ internal static class LockinCommand
             "AC drive: the harmonics of every pair as a lock-in amplifier reads them.\n\n"
             + "Example: fieldsolve lockin meshes/disc-12.toml --out results")
         {
-            device, folder, noPictures, quick, quiet, json,
+            device, folder, mesh, noPictures, quick, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -36,6 +37,7 @@ internal static class LockinCommand
                 new Choices(
                     path,
                     parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-lockin",
+                    parsed.GetValue(mesh),
                     !parsed.GetValue(noPictures),
                     parsed.GetValue(quick),
                     parsed.GetValue(quiet),
@@ -63,11 +65,16 @@ internal static class LockinCommand
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
         }
 
+        if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
+        {
+            return ExitCode.WrongInput;
+        }
+
         var screen = new Screen(choices.Quiet);
         LockinResult result;
         try
         {
-            result = LockinRun.Execute(device, new LockinOptions { Frames = choices.Pictures }, screen, cancel);
+            result = LockinRun.Execute(device, new LockinOptions { Frames = choices.Pictures, Mesh = mesh }, screen, cancel);
             if (choices.Quick)
             {
                 result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };

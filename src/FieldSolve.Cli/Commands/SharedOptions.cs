@@ -37,6 +37,12 @@ internal static class SharedOptions
         return option;
     }
 
+    public static Option<string?> Mesh() => new("--mesh")
+    {
+        Description = "Use this mesh (.vtu, as 'fieldsolve mesh' writes it) as it is; its uniform split gives the answers.",
+        HelpName = "FILE",
+    };
+
     public static Option<bool> Quiet() => new("--quiet") { Description = "No summary and no progress; warnings and faults are still shown." };
 
     public static Option<bool> Json() => new("--json") { Description = "Print the summary as JSON." };

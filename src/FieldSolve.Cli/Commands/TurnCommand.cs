@@ -18,13 +18,14 @@ internal static class TurnCommand
     private const double MostRatio = 1000;
 
     internal sealed record Choices(
-        string Device, string Folder, int AxisSteps, string? Wiring, IReadOnlyList<double> Ratios, bool Pictures, bool Quick, bool Quiet, bool Json);
+        string Device, string Folder, string? Mesh, int AxisSteps, string? Wiring, IReadOnlyList<double> Ratios, bool Pictures, bool Quick, bool Quiet, bool Json);
 
     public static Command Create()
     {
         Argument<string> device = SharedOptions.Device();
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
+        Option<string?> mesh = SharedOptions.Mesh();
         var steps = new Option<int>("--turn-axis")
         {
             Description = "Keep the contacts and turn the crystal axis in so many steps through 360 degrees.",
@@ -64,7 +65,7 @@ internal static class TurnCommand
             + "or turns the crystal under one wiring (--turn-axis).\n\n"
             + "Example: fieldsolve turn meshes/disc-12.toml --out results --ratio 1,2,4,8")
         {
-            device, folder, steps, wiring, ratios, noPictures, quick, quiet, json,
+            device, folder, mesh, steps, wiring, ratios, noPictures, quick, quiet, json,
         };
         command.SetAction((ParseResult parsed, CancellationToken cancel) =>
         {
@@ -73,6 +74,7 @@ internal static class TurnCommand
                 new Choices(
                     path,
                     parsed.GetValue(folder) ?? Path.GetFileNameWithoutExtension(path) + "-turn",
+                    parsed.GetValue(mesh),
                     parsed.GetValue(steps),
                     parsed.GetValue(wiring),
                     Ratios(parsed.GetValue(ratios) ?? "") ?? [],
@@ -126,13 +128,18 @@ internal static class TurnCommand
             device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
         }
 
+        if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
+        {
+            return ExitCode.WrongInput;
+        }
+
         var screen = new Screen(choices.Quiet);
         TurnResult result;
         try
         {
             result = TurnRun.Execute(
                 device,
-                new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures },
+                new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures, Mesh = mesh },
                 screen, cancel);
             if (choices.Quick)
             {

@@ -47,6 +47,18 @@ internal static class DeviceText
                 + (d.BothSigns ? ", both signs" : ", one sign"));
         }
 
+        foreach (var g in (device.Tolerance?.Causes ?? []).GroupBy(c => (c.Kind, c.Sigma, c.Shape)))
+        {
+            string size = string.Create(CultureInfo.InvariantCulture, $"{g.Key.Sigma / g.First().UnitSize:G6} {g.First().Unit}");
+            string whom = g.First().Target.Name.Length == 0 ? "" : $" of {string.Join(", ", g.Select(c => c.Target.Name))}";
+            Line("tolerance", $"{g.Key.Kind.Key}{whom}: {size}{(g.Key.Shape == CauseShape.Uniform ? ", uniform" : "")}");
+        }
+
+        foreach (string note in device.Tolerance?.Notes ?? [])
+        {
+            Line("note", note);
+        }
+
         Line("accuracy", string.Create(
             CultureInfo.InvariantCulture,
             $"error {device.Mesh.Error:G3} of the largest along voltage, even parts to {device.Mesh.EvenError:G3} of themselves, at most {device.Mesh.MaxUnknowns} unknowns"));

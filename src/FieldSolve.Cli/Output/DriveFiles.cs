@@ -11,7 +11,7 @@ namespace FieldSolve.Cli.Output;
 internal static class DriveFiles
 {
     /// <summary>What to write, and what run.json says about how it came about.</summary>
-    internal sealed record Choices(MapChoice Maps, bool AllSigns, bool Pictures, bool Quick);
+    internal sealed record Choices(MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, IReadOnlyList<string> Shifts);
 
     /// <returns>The result; marked as cancelled if that came while the pictures were drawn: all else is written then.</returns>
     public static DriveResult Write(
@@ -38,17 +38,23 @@ internal static class DriveFiles
             }
         }
 
+        var options = new Dictionary<string, string>
+        {
+            ["maps"] = choices.Maps.ToString().ToLower(CultureInfo.InvariantCulture),
+            ["all-signs"] = choices.AllSigns ? "true" : "false",
+            ["pictures"] = choices.Pictures ? "true" : "false",
+            ["quick"] = choices.Quick ? "true" : "false",
+        };
+        if (choices.Shifts.Count > 0)
+        {
+            options["shift"] = string.Join("; ", choices.Shifts);
+        }
+
         RunRecord.Write(
             Path.Combine(folder, "run.json"),
             result with { Stages = [.. result.Stages, .. clock.Times] },
             "drive",
-            new Dictionary<string, string>
-            {
-                ["maps"] = choices.Maps.ToString().ToLower(CultureInfo.InvariantCulture),
-                ["all-signs"] = choices.AllSigns ? "true" : "false",
-                ["pictures"] = choices.Pictures ? "true" : "false",
-                ["quick"] = choices.Quick ? "true" : "false",
-            });
+            options);
         return result;
     }
 

@@ -224,7 +224,7 @@ class LayoutStage {
         const step = e.shiftKey ? 0.1 : 1, by = { ArrowLeft: step, ArrowUp: step, ArrowRight: -step, ArrowDown: -step }[e.key];
         if (by) {
           e.preventDefault();
-          this.act.turn(this.state.axis + by, this.#keyGesture('axis'));
+          this.act.turn(this.#from('axis', this.state.axis, v => v + by), this.#keyGesture('axis'));
         }
       },
     });
@@ -321,7 +321,7 @@ class LayoutStage {
     if (to) {
       e.preventDefault();
       const { middle } = this.state.contacts.find(c => c.name === contact.name), along = contact.kind === 'edge' ? this.#tangent(contact, to) : to;
-      this.act.move(contact.name, middle[0] + along[0], middle[1] + along[1], this.#keyGesture(contact.name));
+      this.act.move(contact.name, ...this.#from(contact.name, middle, ([x, y]) => [x + along[0], y + along[1]]), this.#keyGesture(contact.name));
     } else if (e.key === 'Delete') {
       e.preventDefault();
       this.act.drop(contact.name);
@@ -339,6 +339,13 @@ class LayoutStage {
 
   #gesture() {
     return `g${++this.gestures}-${Math.round(performance.now())}`;
+  }
+
+  // The next place of what the keys move: from where it is, or from where it was sent while that is on its way, so that no press is lost.
+  #from(what, now, step) {
+    const sent = this.act.busy() && this.sent?.what === what ? this.sent.value : now;
+    this.sent = { what, value: step(sent) };
+    return this.sent.value;
   }
 
   // Keys that follow one another soon are one change to undo.

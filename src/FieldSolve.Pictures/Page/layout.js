@@ -5,7 +5,7 @@ const HERE = new URL('.', location.href);
 /** Changes on their way to the server, one at a time; those of one drag that wait are replaced by the newest. */
 class Link {
   constructor(refused) {
-    Object.assign(this, { refused, queue: [], busy: false, sent: 0 });
+    Object.assign(this, { refused, queue: [], busy: false, sent: 0, version: 0 });
   }
 
   edit(ops, gesture = null) {
@@ -42,6 +42,7 @@ class Link {
       answer = { status: 0, body: { faults: [{ text: '', message: 'the program does not answer; the change was not made', path: null }] } };
     }
     this.busy = false;
+    this.version = Math.max(this.version, answer.body?.version ?? 0);
     this.refused(answer.status === 200 ? [] : answer.body?.faults ?? []);
     resolve?.(answer);
     this.#next();
@@ -93,11 +94,13 @@ class LayoutApp {
     const partTools = html('div', { class: 'part-tools' }, this.dropButton = button('Remove contact', 'Remove the chosen contact or tip (Delete)', () => this.#drop(this.selected), 'drop'),
       button('Add wiring', 'A wiring like the last one with the current turned round', () => this.link.edit([{ op: 'add', kind: 'wiring', x: 0, y: 0 }]), 'add-wiring'), this.dropWiring = button('Remove wiring', 'Remove the wiring on show', () => this.#drop(this.wiring), 'drop-wiring'));
     const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
-    document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, '')));
+    document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, 'Served on this machine alone. Nothing is written unless you save; closing the last page ends the program.')));
     this.stage = new LayoutStage(mapHost, {
       move: (name, x, y, gesture) => this.link.edit([{ op: 'move', name, x, y }], gesture),
       turn: (degrees, gesture) => this.link.edit([{ op: 'set', path: 'law.axis', value: `${Number(degrees.toFixed(2))} deg` }], gesture),
       select: name => this.#select(name), drop: name => this.#drop(name),
+      // A change is on its way, or made and not yet told.
+      busy: () => this.link.busy || this.link.queue.length > 0 || this.link.version > this.state.version,
       place: (kind, x, y) => { this.link.edit([{ op: 'add', kind, x, y }]); this.#tool('move'); },
     });
     this.stage.painted = answer => this.#painted(answer);
@@ -137,7 +140,6 @@ class LayoutApp {
     this.undoButton.disabled = !state.canUndo;
     this.redoButton.disabled = !state.canRedo;
     this.saveButton.disabled = state.saved && !state.changedOnDisk;
-    this.foot.textContent = 'Served on this machine alone. Nothing is written unless you save; closing the last page ends the program.';
     const names = state.wirings.map(w => w.name);
     if (!names.includes(this.wiring)) {
       this.#look(names[0]);

@@ -56,8 +56,9 @@ public static class DeviceFile
         TurnSpec? turn = RunReader.Turn(root, contacts, wirings);
         MeshSpec mesh = RunReader.Mesh(root);
         CautionSpec caution = RunReader.Caution(root);
-        root.Take("tolerance"); // these two belong to the commands of the same name, which read them
-        root.Take("fit");
+        ToleranceReader tolerance = new(root, contacts);
+        tolerance.Read();
+        root.Take("fit"); // belongs to the command of the same name, which reads it
         NeedTwo(root, contacts);
         root.Finish();
         PlacementReport.Check(sheet, contacts, faults);
@@ -67,30 +68,31 @@ public static class DeviceFile
         }
 
         Outline live = sheet.Live!;
-        return new DeviceReading(
-            new SheetDevice
-            {
-                Title = title?.Value ?? Path.GetFileName(path),
-                Path = path,
-                Sha256 = input.Sha256,
-                Domain = DomainBuilder.Build(live, [.. contacts.Contacts.Select(c => c.Placement!)], [.. contacts.Tips.Select(t => t.At!.Value)]),
-                Shape = sheet.Plan!.Shape,
-                Drawn = sheet.Plan.Drawn.Loops,
-                Law = law!,
-                Axis = axis,
-                Contacts = [.. contacts.Contacts.Select(c => c.Build(live))],
-                Tips = [.. contacts.Tips.Select(t => new Tip(t.Name!, t.At!.Value))],
-                Wirings = wirings,
-                Drive = drive,
-                Turn = turn,
-                Mesh = mesh,
-                Caution = caution,
-                Thickness = sheet.Thickness,
-                MeanFreePath = sheet.MeanFreePath,
-                GateCapacitance = sheet.GateCapacitance,
-                DeadEdge = sheet.DeadEdge,
-            },
-            []);
+        var device = new SheetDevice
+        {
+            Title = title?.Value ?? Path.GetFileName(path),
+            Path = path,
+            Sha256 = input.Sha256,
+            Layout = new(live, [.. contacts.Contacts.Select(c => c.Placement!)]),
+            Domain = DomainBuilder.Build(live, [.. contacts.Contacts.Select(c => c.Placement!)], [.. contacts.Tips.Select(t => t.At!.Value)]),
+            Shape = sheet.Plan!.Shape,
+            Drawn = sheet.Plan.Drawn.Loops,
+            Law = law!,
+            Axis = axis,
+            Contacts = [.. contacts.Contacts.Select(c => c.Build(live))],
+            Tips = [.. contacts.Tips.Select(t => new Tip(t.Name!, t.At!.Value))],
+            Wirings = wirings,
+            Drive = drive,
+            Turn = turn,
+            Mesh = mesh,
+            Caution = caution,
+            Thickness = sheet.Thickness,
+            MeanFreePath = sheet.MeanFreePath,
+            GateCapacitance = sheet.GateCapacitance,
+            DeadEdge = sheet.DeadEdge,
+        };
+        device = device with { Tolerance = tolerance.Resolve(device) };
+        return faults.Count > 0 ? new DeviceReading(null, faults.InOrder()) : new DeviceReading(device, []);
     }
 
     private static void NeedTwo(Section root, ContactReader contacts)

@@ -6,6 +6,8 @@ namespace FieldSolve.Device;
 /// <summary>A validated device: geometry resolved, names turned into indices, every quantity in SI.</summary>
 public sealed record SheetDevice
 {
+    private readonly SheetLayout? layout;
+
     /// <summary>Title from the file; never empty (the file's name if none was given).</summary>
     public required string Title { get; init; }
 
@@ -17,6 +19,14 @@ public sealed record SheetDevice
 
     /// <summary>The live sheet as the mesher needs it.</summary>
     public required Domain Domain { get; init; }
+
+    /// <summary>What <see cref="Domain"/> was made from; causes of error change it.</summary>
+    /// <exception cref="InvalidOperationException">The device was made from a bare domain.</exception>
+    public SheetLayout Layout
+    {
+        get => layout ?? throw new InvalidOperationException("The device was made from a bare domain, without a layout to change.");
+        init => layout = value;
+    }
 
     /// <summary>Name of the sheet's shape in the file: disc, bar, hall_bar, ring, outline.</summary>
     public required string Shape { get; init; }
@@ -44,6 +54,9 @@ public sealed record SheetDevice
 
     /// <summary>How the directions of a turn come about; null when the file does not say.</summary>
     public TurnSpec? Turn { get; init; }
+
+    /// <summary>Causes of error and their sizes; null when the file has no [tolerance].</summary>
+    public ToleranceSpec? Tolerance { get; init; }
 
     /// <summary>Wanted accuracy.</summary>
     public MeshSpec Mesh { get; init; } = new();

@@ -39,6 +39,39 @@ public sealed class FieldSpace
         (Pattern, TrianglePlaces) = UnknownPattern.Build(this);
     }
 
+    // The same unknowns and pattern on a mesh whose vertices have moved.
+    private FieldSpace(FieldSpace from, TriangleMesh mesh, IReadOnlyList<Contact> contacts)
+    {
+        Mesh = mesh;
+        Contacts = contacts;
+        (Nodes, Unknown, ContactUnknown, Size) = (from.Nodes, from.Unknown, from.ContactUnknown, from.Size);
+        (Pattern, TrianglePlaces, Curved) = (from.Pattern, from.TrianglePlaces, from.Curved);
+        int nv = mesh.VertexCount;
+        NodeX = new double[from.NodeCount];
+        NodeY = new double[from.NodeCount];
+        mesh.X.CopyTo(NodeX, 0);
+        mesh.Y.CopyTo(NodeY, 0);
+        for (int t = 0; t < mesh.TriangleCount; t++)
+        {
+            for (int k = 0; k < 3; k++)
+            {
+                int a = Nodes[(6 * t) + k], b = Nodes[(6 * t) + ((k + 1) % 3)], m = Nodes[(6 * t) + 3 + k];
+                NodeX[m] = 0.5 * (NodeX[a] + NodeX[b]);
+                NodeY[m] = 0.5 * (NodeY[a] + NodeY[b]);
+            }
+        }
+
+        foreach (MeshEdge e in mesh.Edges)
+        {
+            if (Bends(from.Mesh, e))
+            {
+                Point2 p = mesh.Domain.Edges[e.DomainEdge].Curve.At(0.5 * (e.FromT + e.ToT));
+                int m = MiddleOf(e);
+                (NodeX[m], NodeY[m]) = (p.X, p.Y);
+            }
+        }
+    }
+
     /// <summary>The triangles.</summary>
     public TriangleMesh Mesh { get; }
 
@@ -95,6 +128,11 @@ public sealed class FieldSpace
         return space;
     }
 
+    /// <summary>The same nodes and unknowns on a mesh with the same triangles whose vertices have moved.</summary>
+    /// <param name="mesh">Same corners and edges as <see cref="Mesh"/>; other places.</param>
+    /// <param name="device">Its contacts, ideal and resistive ones as before.</param>
+    internal FieldSpace Moved(TriangleMesh mesh, SheetDevice device) => new(this, mesh, device.Contacts);
+
     /// <summary>Unknown that a terminal reads.</summary>
     public int UnknownOf(Terminal terminal) => terminal.IsTip
         ? Unknown[Mesh.Domain.Tips[terminal.Index]]
@@ -146,19 +184,29 @@ public sealed class FieldSpace
         return (x, y);
     }
 
-    // Moves the middles of edges on arcs onto the arc. Where the rise of the arc over its chord is below 1e-9 of the chord, the
-    // triangle stays straight: its error would be far below rounding in the results, and straight triangles are cheaper.
-    private bool[] BendRim(int[] edge)
+    /// <summary>
+    /// Whether the middle of an edge lies on an arc. Where the rise of the arc over its chord is below 1e-9 of the chord, the triangle stays
+    /// straight: its error would be far below rounding in the results, and straight triangles are cheaper.
+    /// </summary>
+    internal static bool Bends(TriangleMesh mesh, MeshEdge e)
     {
         const double NegligibleRise = 1e-9;
+        Curve curve = mesh.Domain.Edges[e.DomainEdge].Curve;
+        return curve.IsArc && Math.Abs(curve.Sweep) * (e.ToT - e.FromT) / 8 >= NegligibleRise;
+    }
+
+    // Moves the middles of edges on arcs onto the arc.
+    private bool[] BendRim(int[] edge)
+    {
         bool[] curved = new bool[Mesh.TriangleCount];
         foreach (MeshEdge e in Mesh.Edges)
         {
-            Curve curve = Mesh.Domain.Edges[e.DomainEdge].Curve;
-            if (!curve.IsArc || Math.Abs(curve.Sweep) * (e.ToT - e.FromT) / 8 < NegligibleRise)
+            if (!Bends(Mesh, e))
             {
                 continue;
             }
+
+            Curve curve = Mesh.Domain.Edges[e.DomainEdge].Curve;
 
             int k = EdgeNumbers.LocalEdge(Mesh, e.LeftTriangle, e.A, e.B);
             int m = Mesh.VertexCount + edge[(3 * e.LeftTriangle) + k];

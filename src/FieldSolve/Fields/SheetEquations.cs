@@ -36,6 +36,9 @@ public sealed class SheetEquations
         (straight, curved, metals, metalPlaces) = (other.straight, other.curved, other.metals, other.metalPlaces);
     }
 
+    /// <summary>Couplings between sheet and resistive metal.</summary>
+    internal IReadOnlyList<MetalCoupling> Metals => metals;
+
     /// <summary>Unknowns and nodes.</summary>
     public FieldSpace Space { get; }
 

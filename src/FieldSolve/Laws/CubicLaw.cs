@@ -8,7 +8,7 @@ namespace FieldSolve.Laws;
 /// with the same l = 1 / (1 + (|E|/F)²) as the second order where there is a field limit F, else 1.
 /// </summary>
 /// <remarks>The law as written; <see cref="LawCatalogue"/> makes it with its guard.</remarks>
-public sealed class CubicLaw : ILawDetail
+public sealed class CubicLaw : IParametricLaw
 {
     private readonly Formula formula;
 
@@ -67,6 +67,26 @@ public sealed class CubicLaw : ILawDetail
         ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb,
         Span<double> daa, Span<double> dab, Span<double> dba, Span<double> dbb) =>
         VectorLoop.Slope(formula, ea, eb, ka, kb, daa, dab, dba, dbb);
+
+    LawKind IParametricLaw.Made => Registration;
+
+    double IParametricLaw.ParameterValue(string key) => key == "field_limit"
+        ? formula.Fade.Limit
+        : AtZeroField.Parameter(key) ?? formula.Second.Parameter(key) ?? formula.Third.Parameter(key) ?? throw ParameterSlopes.Unknown(Kind, key);
+
+    void IParametricLaw.ParameterSlope(string key, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb)
+    {
+        if (key == "field_limit")
+        {
+            Evaluate(ea, eb, ka, kb);
+            ParameterSlopes.BeyondOhmic(AtZeroField, ea, eb, ka, kb);
+            ParameterSlopes.FieldLimit(formula.Fade.Limit, ea, eb, ka, kb);
+        }
+        else if (!ParameterSlopes.Ohmic(key, ea, eb, ka, kb) && !ParameterSlopes.Expansion(key, formula.Fade.Limit, ea, eb, ka, kb))
+        {
+            throw ParameterSlopes.Unknown(Kind, key);
+        }
+    }
 
     /// <inheritdoc/>
     public void EvaluatePure(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb) =>

@@ -22,6 +22,9 @@ public sealed class GuardedLaw : ILawDetail
         this.guard = guard;
     }
 
+    /// <summary>The law without its guard.</summary>
+    internal ILawDetail AsWritten => law;
+
     /// <inheritdoc/>
     public string Kind => law.Kind;
 
@@ -151,7 +154,8 @@ public sealed class GuardedLaw : ILawDetail
         return beyond;
     }
 
-    private void Pull(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ua, Span<double> ub)
+    /// <summary>The pulled-back fields u = g(|E|) E/|E|.</summary>
+    internal void Pull(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ua, Span<double> ub)
     {
         for (int i = 0; i < ea.Length; i++)
         {

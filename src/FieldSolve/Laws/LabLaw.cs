@@ -105,6 +105,27 @@ public sealed class LabLaw
         }
     }
 
+    /// <summary>dK/dp at each field for a parameter of the law, with the guard; see <see cref="LawSensitivity.Slope"/>.</summary>
+    /// <param name="key">Key of the parameter.</param>
+    /// <param name="ex">E along lab x, V/m.</param>
+    /// <param name="ey">E along lab y, V/m.</param>
+    /// <param name="kx">Takes dK_x/dp.</param>
+    /// <param name="ky">Takes dK_y/dp.</param>
+    /// <exception cref="ArgumentException">The law has no such parameter.</exception>
+    public void ParameterSlope(string key, ReadOnlySpan<double> ex, ReadOnlySpan<double> ey, Span<double> kx, Span<double> ky)
+    {
+        VectorLoop.RequireLength(ex.Length, ey.Length, kx.Length, ky.Length);
+        Span<double> ea = stackalloc double[Chunk], eb = stackalloc double[Chunk];
+        for (int start = 0; start < ex.Length; start += Chunk)
+        {
+            int n = Math.Min(Chunk, ex.Length - start);
+            Span<double> kx1 = kx.Slice(start, n), ky1 = ky.Slice(start, n);
+            Turn(ex.Slice(start, n), ey.Slice(start, n), ea[..n], eb[..n], -s);
+            LawSensitivity.Slope(Law, key, ea[..n], eb[..n], kx1, ky1);
+            Turn(kx1, ky1, kx1, ky1, s);
+        }
+    }
+
     private void Evaluate(ReadOnlySpan<double> ex, ReadOnlySpan<double> ey, Span<double> kx, Span<double> ky, bool pure)
     {
         VectorLoop.RequireLength(ex.Length, ey.Length, kx.Length, ky.Length);

@@ -6,7 +6,7 @@ namespace FieldSolve.Laws;
 /// <summary>
 /// K_a = s_a E_a + s_h E_b, K_b = s_b E_b - s_h E_a. The Hall part carries no power: K·E = s_a E_a² + s_b E_b².
 /// </summary>
-public sealed class OhmicLaw : ILawDetail
+public sealed class OhmicLaw : IParametricLaw
 {
     private readonly Formula formula;
 
@@ -56,6 +56,18 @@ public sealed class OhmicLaw : ILawDetail
         ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb,
         Span<double> daa, Span<double> dab, Span<double> dba, Span<double> dbb) =>
         VectorLoop.Slope(formula, ea, eb, ka, kb, daa, dab, dba, dbb);
+
+    LawKind IParametricLaw.Made => Registration;
+
+    double IParametricLaw.ParameterValue(string key) => AtZeroField.Parameter(key) ?? throw ParameterSlopes.Unknown(Kind, key);
+
+    void IParametricLaw.ParameterSlope(string key, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb)
+    {
+        if (!ParameterSlopes.Ohmic(key, ea, eb, ka, kb))
+        {
+            throw ParameterSlopes.Unknown(Kind, key);
+        }
+    }
 
     /// <inheritdoc/>
     public void EvaluatePure(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb) =>

@@ -9,7 +9,7 @@ namespace FieldSolve.Laws;
 /// Without a limit dK/dE loses definiteness at some field along some direction, since its second-order part is odd in E.
 /// </summary>
 /// <remarks>The law as written; <see cref="LawCatalogue"/> makes it with its guard.</remarks>
-public sealed class QuadraticLaw : ILawDetail
+public sealed class QuadraticLaw : IParametricLaw
 {
     private readonly Formula formula;
 
@@ -63,6 +63,26 @@ public sealed class QuadraticLaw : ILawDetail
         ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb,
         Span<double> daa, Span<double> dab, Span<double> dba, Span<double> dbb) =>
         VectorLoop.Slope(formula, ea, eb, ka, kb, daa, dab, dba, dbb);
+
+    LawKind IParametricLaw.Made => Registration;
+
+    double IParametricLaw.ParameterValue(string key) => key == "field_limit"
+        ? formula.Fade.Limit
+        : AtZeroField.Parameter(key) ?? formula.Second.Parameter(key) ?? throw ParameterSlopes.Unknown(Kind, key);
+
+    void IParametricLaw.ParameterSlope(string key, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb)
+    {
+        if (key == "field_limit")
+        {
+            Evaluate(ea, eb, ka, kb);
+            ParameterSlopes.BeyondOhmic(AtZeroField, ea, eb, ka, kb);
+            ParameterSlopes.FieldLimit(formula.Fade.Limit, ea, eb, ka, kb);
+        }
+        else if (!ParameterSlopes.Ohmic(key, ea, eb, ka, kb) && !ParameterSlopes.Expansion(key, formula.Fade.Limit, ea, eb, ka, kb))
+        {
+            throw ParameterSlopes.Unknown(Kind, key);
+        }
+    }
 
     /// <inheritdoc/>
     public void EvaluatePure(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb) =>

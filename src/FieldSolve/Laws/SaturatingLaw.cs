@@ -9,7 +9,7 @@ namespace FieldSolve.Laws;
 /// saturated current turns against that of E and dK/dE loses definiteness at finite fields; equal products are necessary for
 /// definiteness at every field but not sufficient when F_a and F_b are far apart, so the guard looks at the law itself.
 /// </remarks>
-public sealed class SaturatingLaw : ILawDetail
+public sealed class SaturatingLaw : IParametricLaw
 {
     private readonly double a, b, hall, fieldA, fieldB, sharpness;
 
@@ -109,6 +109,55 @@ public sealed class SaturatingLaw : ILawDetail
             dba[i] = -hall - (wb * rb * c * s);
             dbb[i] = wb * (1 - (rb * s * s));
         }
+    }
+
+    LawKind IParametricLaw.Made => Registration;
+
+    double IParametricLaw.ParameterValue(string key) => key switch
+    {
+        "field_a" => fieldA,
+        "field_b" => fieldB,
+        "sharpness" => sharpness,
+        _ => AtZeroField.Parameter(key) ?? throw ParameterSlopes.Unknown(Kind, key),
+    };
+
+    // With w = (1 + x^m)^(-1/m), x = |E|/F and r = x^m / (1 + x^m): dw/dF = w r / F, d ln w/dm = ln(1 + x^m)/m² - r ln(x)/m.
+    void IParametricLaw.ParameterSlope(string key, ReadOnlySpan<double> ea, ReadOnlySpan<double> eb, Span<double> ka, Span<double> kb)
+    {
+        if (key == "hall")
+        {
+            ParameterSlopes.Ohmic(key, ea, eb, ka, kb);
+            return;
+        }
+
+        for (int i = 0; i < ea.Length; i++)
+        {
+            double p = ea[i], q = eb[i], f = double.Hypot(p, q);
+            double wa = Saturation(f / fieldA, out double ra), wb = Saturation(f / fieldB, out double rb);
+            (ka[i], kb[i]) = key switch
+            {
+                "a" => (p * wa, 0),
+                "b" => (0, q * wb),
+                "field_a" => (a * p * wa * ra / fieldA, 0),
+                "field_b" => (0, b * q * wb * rb / fieldB),
+                "sharpness" => (a * p * wa * BySharpness(f / fieldA, ra), b * q * wb * BySharpness(f / fieldB, rb)),
+                _ => throw ParameterSlopes.Unknown(Kind, key),
+            };
+        }
+    }
+
+    // From x^-m where x^m could overflow; zero at zero field, where x^m ln x is.
+    private double BySharpness(double x, double r)
+    {
+        if (x == 0)
+        {
+            return 0;
+        }
+
+        double log = Math.Log(x);
+        return x > 1
+            ? (double.LogP1(Math.Pow(x, -sharpness)) / (sharpness * sharpness)) + ((1 - r) * log / sharpness)
+            : (double.LogP1(Math.Pow(x, sharpness)) / (sharpness * sharpness)) - (r * log / sharpness);
     }
 
     /// <inheritdoc/>

@@ -23,6 +23,17 @@ public readonly record struct SecondOrder(double D11, double D12, double D16, do
     internal string Terms => LawSummary.Terms(
         "A m/V^2", ("d11", D11), ("d12", D12), ("d16", D16), ("d21", D21), ("d22", D22), ("d26", D26));
 
+    internal double? Parameter(string key) => key switch
+    {
+        "d11" => D11,
+        "d12" => D12,
+        "d16" => D16,
+        "d21" => D21,
+        "d22" => D22,
+        "d26" => D26,
+        _ => null,
+    };
+
     internal void RequireFinite()
     {
         Expect.Finite(D11, "A m/V^2", "d11");

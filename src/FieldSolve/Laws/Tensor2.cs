@@ -17,6 +17,15 @@ public readonly record struct Tensor2(double Aa, double Ab, double Ba, double Bb
         }
     }
 
+    /// <summary>The ohmic tensor's element behind a parameter a, b or hall; null for another key.</summary>
+    internal double? Parameter(string key) => key switch
+    {
+        "a" => Aa,
+        "b" => Bb,
+        "hall" => Ab,
+        _ => null,
+    };
+
     /// <summary>The same tensor seen from a frame in which the crystal axis a lies at the given angle (radians).</summary>
     public Tensor2 ToLab(double axis)
     {

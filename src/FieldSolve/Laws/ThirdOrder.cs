@@ -18,6 +18,15 @@ public readonly record struct ThirdOrder(double C11, double C12, double C21, dou
 
     internal string Terms => LawSummary.Terms("A m^2/V^3", ("c11", C11), ("c12", C12), ("c21", C21), ("c22", C22));
 
+    internal double? Parameter(string key) => key switch
+    {
+        "c11" => C11,
+        "c12" => C12,
+        "c21" => C21,
+        "c22" => C22,
+        _ => null,
+    };
+
     internal void RequireFinite()
     {
         Expect.Finite(C11, "A m^2/V^3", "c11");

@@ -10,6 +10,9 @@ public sealed record LockinOptions
 {
     /// <summary>Keep the maps over a cycle at the largest current of each wiring. Default true.</summary>
     public bool Frames { get; init; } = true;
+
+    /// <summary>A mesh of the device to use as it is, without refinement; null to make one.</summary>
+    public TriangleMesh? Mesh { get; init; }
 }
 
 /// <summary>Potential and field at one phase of a cycle.</summary>

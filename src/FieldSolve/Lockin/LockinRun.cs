@@ -56,9 +56,9 @@ public static class LockinRun
         int total = plans.Length * drive.Currents.Count;
         void Tell(string stage) => progress?.Report(new(stage, 0, total));
         bool bothSigns = !device.Law.IsLinear;
-        MeshRefinement refinement = MeshRefinement.Run(device, law, plans, largest, bothSigns, Tell, clock, cancel);
+        MeshRefinement refinement = MeshRefinement.Run(device, law, plans, largest, bothSigns, Tell, clock, cancel, given: options.Mesh);
         double weakest = Math.Sqrt(2) * drive.Currents.Where(i => i > 0).DefaultIfEmpty(0).Min();
-        if (bothSigns && weakest > 0 && weakest < peak)
+        if (options.Mesh is null && bothSigns && weakest > 0 && weakest < peak)
         {
             refinement = refinement.Extended(device, law, plans, weakest, bothSigns, Tell, clock, cancel);
         }

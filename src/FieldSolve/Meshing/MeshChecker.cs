@@ -14,8 +14,10 @@ public static class MeshChecker
     /// of the outline (exact), that the pieces of each domain edge follow each other from its start to its end on the true curve, the area, that the
     /// domain's vertices come first and every vertex is used, and the pads' regions.
     /// </summary>
+    /// <param name="mesh">The mesh.</param>
+    /// <param name="delaunay">False leaves out the Delaunay property.</param>
     /// <exception cref="ArgumentNullException">The mesh is null.</exception>
-    public static IReadOnlyList<string> Check(TriangleMesh mesh)
+    public static IReadOnlyList<string> Check(TriangleMesh mesh, bool delaunay = true)
     {
         ArgumentNullException.ThrowIfNull(mesh);
         Report report = new();
@@ -23,7 +25,7 @@ public static class MeshChecker
         {
             CheckTriangles(mesh, report);
             bool[] constrained = CheckEdges(mesh, report);
-            CheckNeighbours(mesh, constrained, report);
+            CheckNeighbours(mesh, constrained, delaunay, report);
             CheckVertices(mesh, report);
             CheckArea(mesh, report);
             CheckRegions(mesh, constrained, report);
@@ -74,7 +76,7 @@ public static class MeshChecker
         }
     }
 
-    private static void CheckNeighbours(TriangleMesh m, bool[] constrained, Report report)
+    private static void CheckNeighbours(TriangleMesh m, bool[] constrained, bool delaunay, Report report)
     {
         // Each directed edge may occur once.
         (long Key, int Side)[] sides = new (long, int)[m.Corners.Length];
@@ -110,7 +112,7 @@ public static class MeshChecker
                 report.Add($"Edge {a}-{b} of triangle {k / 3} ends the sheet but is no piece of the rim.");
             }
 
-            if (across > k && !constrained[k])
+            if (delaunay && across > k && !constrained[k])
             {
                 CheckDelaunay(m, k, across, report);
             }

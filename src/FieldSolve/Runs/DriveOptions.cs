@@ -1,3 +1,5 @@
+using FieldSolve.Meshing;
+
 namespace FieldSolve.Runs;
 
 /// <summary>Which potential maps a drive keeps.</summary>
@@ -21,6 +23,9 @@ public sealed record DriveOptions
 
     /// <summary>Also keep the maps that the pictures need (a few currents of each wiring). Default true.</summary>
     public bool ForPictures { get; init; } = true;
+
+    /// <summary>A mesh of the device to use as it is, without refinement (its uniform split gives the answers); null to make one.</summary>
+    public TriangleMesh? Mesh { get; init; }
 
     /// <summary>Also keep the potential at every current, as live pages show it, without the fields that still pictures need. Default false.</summary>
     public bool Frames { get; init; }

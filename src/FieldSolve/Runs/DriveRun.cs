@@ -39,7 +39,7 @@ public static class DriveRun
         int total = plans.Length * drive.Currents.Count;
         MeshRefinement refinement = MeshRefinement.Run(
             device, law, plans, largest, drive.BothSigns, stage => progress?.Report(new(stage, 0, total)), clock, cancel,
-            oneCurve: options.OneCurve);
+            oneCurve: options.OneCurve, given: options.Mesh);
 
         var work = new DriveWork(device, options, refinement.Meshes, plans);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));

@@ -13,9 +13,9 @@ namespace FieldSolve.Runs;
 internal sealed class MeshPair
 {
     // On the linear problems of benchmarks/accuracy.md the correction misses 1 to 15 % of itself. The triangles do not follow a strongly anisotropic sheet's
-    // stretch, so the rates are reached later there: at a ratio of 1000 it missed 40 %.
+    // stretch, so the rates are reached later there: at a ratio of 1000 it missed 70 %.
     private const double Doubt = 0.15;
-    private const double DoubtPerDecade = 0.1;
+    private const double DoubtPerDecade = 0.25;
 
     private readonly Falloff[] kinds;  // per vertex of the domain
     private readonly ConcurrentDictionary<(ReadingPlan, double), (double[] Coarse, double[] Fine)> known = new();

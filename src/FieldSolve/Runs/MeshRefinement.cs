@@ -77,10 +77,11 @@ internal sealed class MeshRefinement
     /// <param name="laws">The law of each plan, where they differ; null when all have <paramref name="law"/>.</param>
     /// <param name="start">Sizes of the first mesh, from earlier measures; null to start from the shape.</param>
     /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
+    /// <param name="given">A mesh to measure as it is, without refinement; null to make one.</param>
     public static MeshRefinement Run(
         SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, double largest, bool bothSigns, Action<string> tell,
         StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null, ISizeField? start = null,
-        bool oneCurve = false)
+        bool oneCurve = false, TriangleMesh? given = null)
     {
         ISizeField size = start ?? MeshSizes.First(device);
         var levels = new List<RefinementLevel>();
@@ -96,7 +97,7 @@ internal sealed class MeshRefinement
         int stalls = 0;
         for (int level = 0; ; level++)
         {
-            TriangleMesh? mesh = clock.Time("mesh", () => Mesh(device, size, best is null ? int.MaxValue : mostTriangles, cancel));
+            TriangleMesh? mesh = clock.Time("mesh", () => given ?? Mesh(device, size, best is null ? int.MaxValue : mostTriangles, cancel));
             if (mesh is null)
             {
                 return new(best!, goals, levels, false);
@@ -123,7 +124,7 @@ internal sealed class MeshRefinement
 
             stalls = now > StallShare * worst ? stalls + 1 : 0;
             worst = Math.Min(worst, now);
-            if (now <= (level == 0 && start is null ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
+            if (given is not null || now <= (level == 0 && start is null ? TrustOfFirst : 1) || level == MostLevels - 1 || stalls == MostStalls)
             {
                 return new(best, goals, levels, worst <= 1);
             }

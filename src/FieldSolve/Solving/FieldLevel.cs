@@ -13,16 +13,15 @@ namespace FieldSolve.Solving;
 /// </summary>
 public sealed class FieldLevel
 {
-    private readonly double[] atZeroValues;
+    private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
     private readonly ConcurrentBag<JacobianRoom> spare = [];
 
-    private FieldLevel(FieldSpace space, SheetEquations equations, SparseAnalysis analysis, SparseLu atZero, double[] atZeroValues)
+    private FieldLevel(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
     {
-        Space = space;
+        Space = equations.Space;
         Equations = equations;
         Analysis = analysis;
-        AtZero = atZero;
-        this.atZeroValues = atZeroValues;
+        atZero = new(() => FactorAtZero(cancel));
     }
 
     /// <summary>Nodes and unknowns.</summary>
@@ -35,7 +34,7 @@ public sealed class FieldLevel
     public SparseAnalysis Analysis { get; }
 
     /// <summary>Factor of the Jacobian at zero field.</summary>
-    public SparseLu AtZero { get; }
+    public SparseLu AtZero => atZero.Value.Factor;
 
     /// <summary>Sets up a mesh.</summary>
     /// <param name="device">Gives the contacts.</param>
@@ -60,13 +59,26 @@ public sealed class FieldLevel
     /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
     public FieldLevel WithLaw(LabLaw law, CancellationToken cancel) => AtRest(Equations.WithLaw(law), Analysis, cancel);
 
+    /// <summary>The level of a moved mesh or another law: unknowns, pattern and ordering stay; its own factor is made when first asked for.</summary>
+    /// <param name="device">Its contacts, ideal and resistive ones as before.</param>
+    /// <param name="mesh">Same triangles as this level's mesh, vertices elsewhere; or this level's mesh.</param>
+    /// <param name="law">The law.</param>
+    public FieldLevel Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(new SheetEquations(Space.Moved(mesh, device), law), Analysis, CancellationToken.None);
+
     private static FieldLevel AtRest(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
     {
-        var factor = new SparseLu(analysis, equations.Law.IsSymmetricAtZero);
-        double[] values = new double[equations.Space.Pattern.Count + 1];
-        equations.Jacobian(new double[equations.Length], values);
-        SharedCores.Factor(factor, values.AsSpan(0, equations.Space.Pattern.Count), cancel);
-        return new(equations.Space, equations, analysis, factor, values);
+        var level = new FieldLevel(equations, analysis, cancel);
+        _ = level.AtZero;
+        return level;
+    }
+
+    private (SparseLu Factor, double[] Values) FactorAtZero(CancellationToken cancel)
+    {
+        var factor = new SparseLu(Analysis, Equations.Law.IsSymmetricAtZero);
+        double[] values = new double[Space.Pattern.Count + 1];
+        Equations.Jacobian(new double[Equations.Length], values);
+        SharedCores.Factor(factor, values.AsSpan(0, Space.Pattern.Count), cancel);
+        return (factor, values);
     }
 
     /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
@@ -92,7 +104,7 @@ public sealed class FieldLevel
     /// <summary>The Jacobian at zero field times a vector of potentials, A.</summary>
     public void ZeroFieldProduct(ReadOnlySpan<double> u, Span<double> current)
     {
-        SparseProduct.Multiply(Space.Pattern, atZeroValues.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
+        SparseProduct.Multiply(Space.Pattern, atZero.Value.Values.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
         current[Space.Size] = 0;
     }
 
@@ -103,6 +115,7 @@ public sealed class FieldLevel
     internal double ResidualRounding(ReadOnlySpan<double> u)
     {
         int[] start = Space.Pattern.Start, column = Space.Pattern.Column;
+        double[] atZeroValues = atZero.Value.Values;
         double squares = 0;
         for (int i = 0; i < Space.Size; i++)
         {

@@ -28,6 +28,7 @@ public sealed class NewtonSolver
     private const int MostHalvings = 12;
 
     private readonly FieldLevel level;
+    private readonly double tolerance;
     private readonly double[] residual;
     private readonly double[] trialResidual;
     private readonly double[] step;
@@ -35,17 +36,25 @@ public sealed class NewtonSolver
     private readonly StepMixer mixer;
     private JacobianRoom? own;
 
-    /// <summary>Makes a solver that starts with the factor at zero field.</summary>
-    public NewtonSolver(FieldLevel level)
+    private SparseLu? start;
+
+    /// <summary>Makes a solver.</summary>
+    /// <param name="level">Mesh and equations.</param>
+    /// <param name="start">A factor to start with, for instance of the same state on a mesh that lies a little differently; null for the level's
+    /// own at zero field.</param>
+    /// <param name="relativeResidual">Residual over current at which a solve ends.</param>
+    public NewtonSolver(FieldLevel level, SparseLu? start = null, double relativeResidual = Tolerance)
     {
         ArgumentNullException.ThrowIfNull(level);
         this.level = level;
+        this.start = start;
+        tolerance = relativeResidual;
         residual = new double[level.Equations.Length];
         trialResidual = new double[residual.Length];
         step = new double[residual.Length];
         trial = new double[residual.Length];
         mixer = new StepMixer(level.Space.Size);
-        Factor = level.AtZero;
+        Factor = start ?? level.AtZero;
     }
 
     /// <summary>The factor that the last step used.</summary>
@@ -79,7 +88,7 @@ public sealed class NewtonSolver
 
         bool fresh = false;
         mixer.Reset();
-        while (norm > Tolerance * scale)
+        while (norm > tolerance * scale)
         {
             cancel.ThrowIfCancellationRequested();
             if (steps++ >= MostSteps)
@@ -93,7 +102,7 @@ public sealed class NewtonSolver
             bool valid = TryResidual(trial, source, drain, current, trialResidual, out double next, out refused);
             if (valid && next <= GoodContraction * norm)
             {
-                double stepsLeft = Math.Log(Tolerance * scale / next) / Math.Log(next / norm);
+                double stepsLeft = Math.Log(tolerance * scale / next) / Math.Log(next / norm);
                 norm = Accept(u, next);
                 fresh = false;
                 if (stepsLeft > WorthNewFactor && TryFactor(u, cancel))
@@ -150,8 +159,11 @@ public sealed class NewtonSolver
         return Outcome(true);
     }
 
-    /// <summary>Forgets the factor of an earlier Jacobian and starts again with the one at zero field.</summary>
-    public void Restart() => Factor = level.AtZero;
+    /// <summary>Forgets the factor of an earlier Jacobian and starts again with the first one.</summary>
+    public void Restart() => Factor = start ?? level.AtZero;
+
+    /// <summary>Starts again with another factor.</summary>
+    public void Restart(SparseLu factor) => Factor = start = factor;
 
     /// <summary>
     /// Factors the Jacobian at a state; null when it is not positive definite there or the law cannot be evaluated. Valid until the next solve.
@@ -238,7 +250,7 @@ public sealed class NewtonSolver
         }
         catch (Exception e) when (e is PivotException or LawRefusedException)
         {
-            Factor = level.AtZero;
+            Restart();
             return false;
         }
 

@@ -1,5 +1,6 @@
 using FieldSolve.Device;
 using FieldSolve.Laws;
+using FieldSolve.Meshing;
 using FieldSolve.Runs;
 
 namespace FieldSolve.Turning;
@@ -19,7 +20,7 @@ internal sealed record AxisMesh(
 
     /// <summary>Makes it.</summary>
     public static AxisMesh Make(
-        SheetDevice device, IReadOnlyList<TurnPlace> places, Action<string> tell, StageClock clock, CancellationToken cancel)
+        SheetDevice device, IReadOnlyList<TurnPlace> places, TriangleMesh? given, Action<string> tell, StageClock clock, CancellationToken cancel)
     {
         DriveSpec drive = device.Drive!;
 
@@ -32,7 +33,7 @@ internal sealed record AxisMesh(
         double largest = MeshRefinement.Largest(drive.Currents);
         MeshRefinement first = MeshRefinement.Run(
             device, laws[0], [.. chosen.Select(k => plans[k])], largest, drive.BothSigns, tell, clock, cancel, [.. chosen.Select(k => laws[k])],
-            oneCurve: true);
+            oneCurve: true, given: given);
         if (few == solved)
         {
             return new(first.Meshes, plans, first.Goals, first.Levels);
@@ -42,7 +43,7 @@ internal sealed record AxisMesh(
         tell("estimating the errors of all axes");
         IReadOnlyList<GoalMeasure> goals = clock.Time("estimate", () => MeshRefinement.Measure(
             device, first.Meshes, plans, laws, [.. plans.Select(_ => largest == 0 ? 1 : largest)], lower, drive.BothSigns, cancel, oneCurve: true));
-        if (!first.IsMet || goals.All(g => g.Error.Bar <= g.Wanted))
+        if (given is not null || !first.IsMet || goals.All(g => g.Error.Bar <= g.Wanted))
         {
             return new(first.Meshes, plans, goals, first.Levels);
         }

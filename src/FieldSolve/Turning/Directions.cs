@@ -50,8 +50,10 @@ public static class Directions
 
         return [.. Enumerable.Range(0, ring.Count).Select(step =>
         {
-            int Contact(int c) => ring[(place[c] + step) % ring.Count];
-            Pair Turned(Pair p) => new(p.Name, new(false, Contact(p.Plus.Index)), new(false, Contact(p.Minus.Index)));
+            // What does not belong to the ring stays where it is, such as a drain in the middle.
+            int Contact(int c) => place[c] < 0 ? c : ring[(place[c] + step) % ring.Count];
+            Terminal End(Terminal t) => t.IsTip ? t : new(false, Contact(t.Index));
+            Pair Turned(Pair p) => new(p.Name, End(p.Plus), End(p.Minus));
             int source = Contact(first.Source), drain = Contact(first.Drain);
             return new Wiring(
                 $"{device.Contacts[source].Name} to {device.Contacts[drain].Name}", source, drain,

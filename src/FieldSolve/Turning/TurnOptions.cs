@@ -1,3 +1,5 @@
+using FieldSolve.Meshing;
+
 namespace FieldSolve.Turning;
 
 /// <summary>Choices of a turn that are not part of the device.</summary>
@@ -14,4 +16,7 @@ public sealed record TurnOptions
 
     /// <summary>Keep the maps of three directions for the pictures. Default true.</summary>
     public bool ForPictures { get; init; } = true;
+
+    /// <summary>A mesh of the device to use as it is, without refinement; null to make one.</summary>
+    public TriangleMesh? Mesh { get; init; }
 }

@@ -78,7 +78,7 @@ public static class TurnRun
     {
         SheetDevice turned = device with { Wirings = Directions.Of(device) };
         TurnPlace[] places = [.. turned.Wirings.Select(w => new TurnPlace(w, CurrentDirection.Degrees(device, w), 0))];
-        var drive = new DriveOptions { Maps = options.ForPictures ? MapChoice.Last : MapChoice.None, ForPictures = false, OneCurve = true };
+        var drive = new DriveOptions { Maps = options.ForPictures ? MapChoice.Last : MapChoice.None, ForPictures = false, OneCurve = true, Mesh = options.Mesh };
         (DriveResult result, MeshPair meshes) = DriveRun.Run(turned, drive, progress, clock, cancel);
         List<CurveRow>[] rows = [.. places.Select(p => result.Rows.Where(r => r.Wiring == p.Wiring.Name).ToList())];
         TurnMap[] maps = [.. Mapped(places).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
@@ -100,7 +100,7 @@ public static class TurnRun
         TurnPlace[] places = [.. Enumerable.Range(0, options.AxisSteps).Select(k => new TurnPlace(wiring, direction, 360.0 * k / options.AxisSteps))];
 
         DriveSpec drive = device.Drive!;
-        AxisMesh mesh = AxisMesh.Make(one, places, stage => progress?.Report(new(stage, 0, places.Length * drive.Currents.Count)), clock, cancel);
+        AxisMesh mesh = AxisMesh.Make(one, places, options.Mesh, stage => progress?.Report(new(stage, 0, places.Length * drive.Currents.Count)), clock, cancel);
         var work = new AxisWork(one, places, mesh, options.ForPictures ? Mapped(places) : []);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
         (List<(int Place, CurveRow Row)> rows, List<CurveRow> reversed) = work.Rows();

@@ -28,8 +28,6 @@ public class GoodFileTests
             [caution]
             sheet_current_density = "10 A/m"
             power_density = "2 mW/um^2"
-            [tolerance]
-            anything = { goes = 1 }
             [fit]
             here = ["too"]
             """);

@@ -65,13 +65,23 @@ public class DirectionsTests
     }
 
     [Fact]
-    public void A_terminal_outside_the_ring_is_a_fault_at_its_place()
+    public void What_is_not_of_the_ring_stays_where_it_is()
     {
-        string text = DeviceText.Disc(Radius, Law).Contacts(6, 3, Radius).RimTip("tip", 45, Radius).Wiring("w", "c4", "c1", "c3 tip").ToString();
+        SheetDevice device = TestDrive.Device(DeviceText.Disc(Radius, Law).Contacts(6, 3, Radius).RimTip("tip", 45, Radius).Wiring("w", "c4", "c1", "c3 tip").Drive(1e-6));
+        IReadOnlyList<Wiring> all = Directions.Of(device);
+        Assert.Equal(6, all.Count);
+        Assert.All(all, w => Assert.Equal(device.Wirings[0].Along!.Minus, w.Along!.Minus));
+        Assert.Equal(6, all.Select(w => w.Along!.Plus).Distinct().Count());
+    }
+
+    [Fact]
+    public void A_current_outside_the_ring_is_a_fault_at_its_place()
+    {
+        string text = DeviceText.Disc(Radius, Law).Contacts(6, 3, Radius).Arc("e", 30, 3, Radius).Arc("f", 210, 3, Radius).Wiring("w", "e", "f", "c3 c2").ToString();
         DeviceReading reading = DeviceFile.Parse(text, "test.toml", ".");
         Fault fault = Assert.Single(reading.Faults);
         int line = 1 + Array.FindIndex(text.ReplaceLineEndings("\n").Split('\n'), l => l.StartsWith("around", StringComparison.Ordinal));
         Assert.StartsWith($"test.toml:{line}:", fault.ToString(), StringComparison.Ordinal);
-        Assert.Contains("point 'tip' does not belong to it", fault.ToString(), StringComparison.Ordinal);
+        Assert.Contains("neither its source nor its drain belongs to it", fault.ToString(), StringComparison.Ordinal);
     }
 }

@@ -23,35 +23,7 @@ internal sealed record ContactDraft(string? Name, Place NameAt, Place At)
     public ContactPlacement? Placement => Span is null && Pad is null ? null : new(Span, Pad, Pad is not null && Resistivity == 0);
 
     /// <summary>The contact on a live rim.</summary>
-    public Contact Build(Outline live)
-    {
-        if (Span is { } span)
-        {
-            return new Contact(Name!, ContactKind.Edge, LineResistance, 0, live.Stretch(span), span.Length)
-            {
-                Middle = live.At(span.Loop, span.From + (span.Length / 2)),
-            };
-        }
-
-        (double area, Point2 middle) = Measure(Pad!);
-        return new Contact(Name!, ContactKind.Pad, 0, Resistivity, OutlinePolygons.Segments(Pad!), Math.Sqrt(area)) { Middle = middle };
-    }
-
-    /// <summary>Area and centre of mass of a polygon, from its triangles with the first corner.</summary>
-    private static (double Area, Point2 Middle) Measure(IReadOnlyList<Point2> corners)
-    {
-        double twice = 0;
-        Point2 moment = default;
-        for (int k = 2; k < corners.Count; k++)
-        {
-            Point2 a = corners[k - 1] - corners[0], b = corners[k] - corners[0];
-            double cross = Point2.Cross(a, b);
-            twice += cross;
-            moment += cross * (a + b);
-        }
-
-        return (Math.Abs(twice) / 2, corners[0] + (1 / (3 * twice) * moment));
-    }
+    public Contact Build(Outline live) => ContactShape.On(live, Placement!, Name!, LineResistance, Resistivity);
 }
 
 /// <summary>A point tip as read.</summary>

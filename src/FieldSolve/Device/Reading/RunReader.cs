@@ -48,27 +48,22 @@ internal static class RunReader
 
         if (ring is not null && wirings.Count > 0)
         {
-            RequireInRing(turn, around!, ring, contacts, wirings[0]);
+            RequireInRing(turn, around!, ring, wirings[0]);
         }
 
         turn.Finish();
         return new TurnSpec(ring?.Prefix, ring is null ? [] : [.. Enumerable.Range(ring.First, ring.Count)]);
     }
 
-    // A terminal that cannot step with the others would make every direction a different measurement.
-    private static void RequireInRing(Section turn, TomlText around, RingDraft ring, ContactReader contacts, Wiring wiring)
+    // A current that does not turn gives the same direction every time.
+    private static void RequireInRing(Section turn, TomlText around, RingDraft ring, Wiring wiring)
     {
-        IEnumerable<Terminal> used = [new(false, wiring.Source), new(false, wiring.Drain), .. wiring.Pairs.SelectMany(p => new[] { p.Plus, p.Minus })];
-        foreach (Terminal t in used)
+        bool Belongs(int contact) => contact >= ring.First && contact < ring.First + ring.Count;
+        if (!Belongs(wiring.Source) && !Belongs(wiring.Drain))
         {
-            if (t.IsTip || t.Index < ring.First || t.Index >= ring.First + ring.Count)
-            {
-                string? name = t.IsTip ? contacts.Tips[t.Index].Name : contacts.Contacts[t.Index].Name;
-                turn.Faults.Add(
-                    around.At,
-                    $"the first wiring '{wiring.Name}' is stepped round the ring '{ring.Prefix}', but its {(t.IsTip ? "point" : "contact")} '{name}' does not belong to it; use contacts of the ring, or leave 'around' out and write every direction as a [[wiring]]");
-                return;
-            }
+            turn.Faults.Add(
+                around.At,
+                $"the first wiring '{wiring.Name}' is stepped round the ring '{ring.Prefix}', but neither its source nor its drain belongs to it; use contacts of the ring, or leave 'around' out and write every direction as a [[wiring]]");
         }
     }
 

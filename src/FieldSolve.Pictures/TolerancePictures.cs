@@ -1,0 +1,58 @@
+using FieldSolve.Files;
+using FieldSolve.Runs;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>All pictures of a tolerance run.</summary>
+public static class TolerancePictures
+{
+    /// <summary>Most wirings that get bars and histograms of their own.</summary>
+    public const int MostWirings = 12;
+
+    /// <summary>Draws the pictures and writes each as PNG and SVG; the same result always gives the same bytes.</summary>
+    /// <param name="result">The run.</param>
+    /// <param name="folder">Where they go; made when missing.</param>
+    /// <param name="cancel">Stops between pictures; those already written stay.</param>
+    /// <returns>The pictures in the order of the report.</returns>
+    /// <exception cref="OperationCanceledException">The run was cancelled.</exception>
+    /// <exception cref="IOException">A file cannot be written.</exception>
+    /// <exception cref="UnauthorizedAccessException">A file may not be written.</exception>
+    public static IReadOnlyList<PictureFile> Write(ToleranceResult result, string folder, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(result);
+        ArgumentNullException.ThrowIfNull(folder);
+        EmbeddedFont.Use();
+        var files = new List<PictureFile>();
+        void Add(string kind, string? wiring, string name, string caption, Func<Figure?> draw)
+        {
+            cancel.ThrowIfCancellationRequested();
+            using Figure? figure = draw();
+            if (figure is not null)
+            {
+                PictureFile file = new(kind, wiring, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
+                figure.Save(file.PngPath, file.SvgPath);
+                files.Add(file);
+            }
+        }
+
+        Add(
+            "share", null, "contacts",
+            "Each contact shaded by the share of the variance of the odd part of V_across that its own causes carry; what is missing to 100 % comes from the sheet, the law and common shifts.",
+            () => SharePicture.Draw(result));
+        IReadOnlyList<string> names = SafeNames.Of(result.Device.Wirings.Select(w => w.Name));
+        for (int w = 0; w < Math.Min(names.Count, MostWirings); w++)
+        {
+            string wiring = result.Device.Wirings[w].Name;
+            Add(
+                "budget", wiring, "budget-" + names[w],
+                "The ten largest contributions to each reading, each for one standard deviation of its cause, with its sign.",
+                () => BudgetPicture.Draw(result, wiring));
+            Add(
+                "histogram", wiring, "samples-" + names[w],
+                "Sampled devices with all causes at once, each solved in full; the curve is what first derivatives predict, with the sampled number of devices.",
+                () => HistogramPicture.Draw(result, wiring));
+        }
+
+        return files;
+    }
+}

@@ -1,0 +1,192 @@
+using System.Globalization;
+using System.Text;
+using FieldSolve.Runs;
+
+namespace FieldSolve.Files;
+
+/// <summary>A file of samples does not fit the run, or is no such file; the message says what to do.</summary>
+public sealed class JournalException : Exception
+{
+    /// <summary>Without a message.</summary>
+    public JournalException()
+    {
+    }
+
+    /// <summary>With the reason in plain words.</summary>
+    public JournalException(string message)
+        : base(message)
+    {
+    }
+
+    /// <summary>With the reason and what brought it about.</summary>
+    public JournalException(string message, Exception innerException)
+        : base(message, innerException)
+    {
+    }
+}
+
+/// <summary>Which run a file of samples belongs to.</summary>
+/// <param name="Design">Fingerprint of design, causes and seed.</param>
+/// <param name="Shard">Which shard, from 1.</param>
+/// <param name="Shards">Of how many.</param>
+/// <param name="Samples">Samples of the whole run.</param>
+/// <param name="Seed">Seed.</param>
+/// <param name="Device">Path of the device file as it was given.</param>
+public sealed record JournalHead(string Design, int Shard, int Shards, int Samples, ulong Seed, string Device);
+
+/// <summary>
+/// Finished samples in a file that grows by one line each, so that a run that was killed goes on where it was. Every line ends with a check sum:
+/// a line that was cut short counts as not there. The design's fingerprint in the first line keeps apart what does not belong together.
+/// </summary>
+public sealed class SampleJournal : ISampleStore, IDisposable
+{
+    /// <summary>Name of the file in the folder of results.</summary>
+    public const string FileName = "samples.part.csv";
+
+    private const string Mark = "# FieldSolve samples";
+
+    private readonly string path;
+    private readonly ToleranceOptions options;
+    private readonly string device;
+    private Dictionary<int, SampleResult> known = [];
+    private StreamWriter? writer;
+
+    /// <summary>Names the file; nothing is opened yet.</summary>
+    /// <param name="folder">Folder of results; made when missing.</param>
+    /// <param name="options">Shard, seed and number of samples.</param>
+    /// <param name="device">Path of the device file.</param>
+    public SampleJournal(string folder, ToleranceOptions options, string device)
+    {
+        path = Path.Combine(folder, FileName);
+        this.options = options;
+        this.device = device;
+    }
+
+    /// <inheritdoc/>
+    public IReadOnlyDictionary<int, SampleResult> Known => known;
+
+    /// <inheritdoc/>
+    /// <exception cref="JournalException">The file there belongs to another run.</exception>
+    /// <exception cref="IOException">The file cannot be read or written, or another run is writing it.</exception>
+    public void Open(string design, int values)
+    {
+        var head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
+        if (File.Exists(path))
+        {
+            (JournalHead there, known) = Read(path);
+            if (there.Design != design || there.Shard != head.Shard || there.Shards != head.Shards)
+            {
+                throw new JournalException(
+                    $"'{path}' holds samples of another run (another device, seed, shard or version); name another --out or remove the file");
+            }
+
+            foreach (int index in known.Where(k => k.Value.Values.Length > 0 && k.Value.Values.Length != values).Select(k => k.Key).ToArray())
+            {
+                known.Remove(index);
+            }
+        }
+
+        // Written anew without what cannot be trusted, then added to.
+        var text = new StringBuilder(HeadLine(head));
+        foreach (SampleResult sample in known.Values.OrderBy(s => s.Index))
+        {
+            text.Append(Line(sample));
+        }
+
+        WholeFile.WriteText(path, text.ToString());
+        writer = new StreamWriter(new FileStream(path, FileMode.Append, FileAccess.Write, FileShare.Read), new UTF8Encoding(false)) { AutoFlush = true };
+    }
+
+    /// <inheritdoc/>
+    public void Add(SampleResult sample)
+    {
+        ArgumentNullException.ThrowIfNull(sample);
+        (writer ?? throw new InvalidOperationException("The file of samples is not open.")).Write(Line(sample));
+    }
+
+    /// <summary>Closes the file.</summary>
+    public void Dispose() => writer?.Dispose();
+
+    /// <summary>Closes the file and removes it, once its samples stand elsewhere.</summary>
+    public void Remove()
+    {
+        Dispose();
+        File.Delete(path);
+    }
+
+    /// <summary>Reads a file; lines that are cut short or damaged are left out.</summary>
+    /// <exception cref="JournalException">It is no file of samples.</exception>
+    /// <exception cref="IOException">The file cannot be read.</exception>
+    public static (JournalHead Head, Dictionary<int, SampleResult> Samples) Read(string path)
+    {
+        using var stream = new FileStream(path, FileMode.Open, FileAccess.Read, FileShare.ReadWrite);
+        using var reader = new StreamReader(stream, new UTF8Encoding(false));
+        string[] lines = reader.ReadToEnd().Split('\n');
+        JournalHead head = Head(lines[0]) ?? throw new JournalException($"'{path}' is no file of samples of a tolerance run");
+        var samples = new Dictionary<int, SampleResult>();
+
+        // What stands after the last line end was cut short.
+        foreach (string line in lines[1..^1])
+        {
+            if (Sample(line) is { } sample)
+            {
+                samples[sample.Index] = sample;
+            }
+        }
+
+        return (head, samples);
+    }
+
+    private static string HeadLine(JournalHead h)
+    {
+        string text = string.Create(CultureInfo.InvariantCulture, $"{Mark};{h.Design};{h.Shard};{h.Shards};{h.Samples};{h.Seed};{h.Device}");
+        return $"{text};{Check(text)}\n";
+    }
+
+    private static JournalHead? Head(string line)
+    {
+        int last = line.LastIndexOf(';');
+        if (last < 0 || line[(last + 1)..] != Check(line[..last]) || line[..last].Split(';', 7) is not [Mark, var design, var shard, var shards, var samples, var seed, var device])
+        {
+            return null;
+        }
+
+        CultureInfo c = CultureInfo.InvariantCulture;
+        return new(design, int.Parse(shard, c), int.Parse(shards, c), int.Parse(samples, c), ulong.Parse(seed, c), device);
+    }
+
+    private static string Line(SampleResult sample)
+    {
+        string text = string.Join(',', [
+            sample.Index.ToString(CultureInfo.InvariantCulture), SamplesCsv.StatusText(sample.Status),
+            .. sample.Values.Select(v => v.ToString("R", CultureInfo.InvariantCulture))]);
+        return $"{text},{Check(text)}\n";
+    }
+
+    private static SampleResult? Sample(string line)
+    {
+        int last = line.LastIndexOf(',');
+        if (last < 0 || line[(last + 1)..] != Check(line[..last]))
+        {
+            return null;
+        }
+
+        string[] cells = line[..last].Split(',');
+        SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => SamplesCsv.StatusText(s!.Value) == cells[1]);
+        return status is null ? null : new(
+            int.Parse(cells[0], CultureInfo.InvariantCulture), status.Value,
+            [.. cells[2..].Select(v => double.Parse(v, CultureInfo.InvariantCulture))]);
+    }
+
+    // FNV-1a, 32 bits: G. Fowler, L. C. Noll, K.-P. Vo (1991); enough to tell a whole line from a cut one.
+    private static string Check(string text)
+    {
+        uint hash = 2166136261;
+        foreach (char c in text)
+        {
+            hash = (hash ^ c) * 16777619;
+        }
+
+        return hash.ToString("x8", CultureInfo.InvariantCulture);
+    }
+}

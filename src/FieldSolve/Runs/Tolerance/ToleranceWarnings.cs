@@ -1,0 +1,44 @@
+using System.Globalization;
+using FieldSolve.Readings;
+
+namespace FieldSolve.Runs;
+
+/// <summary>Says in words what to distrust in a tolerance.</summary>
+internal static class ToleranceWarnings
+{
+    private const double Far = 0.1;
+
+    public static IEnumerable<string> Of(ToleranceModel model, IReadOnlyList<SampleResult> samples, IReadOnlyList<SampleStatistics> statistics)
+    {
+        foreach (DesignState s in model.States.Where(s => s.Row.Status != RowStatus.Ok))
+        {
+            yield return $"Wiring '{s.Plan.Wiring.Name}' as designed is {(s.Row.Status == RowStatus.OutsideLaw ? "outside its law" : "above its wanted numerical error")} at this current; run 'drive' for the details. Its budget holds for the law as continued there.";
+        }
+
+        for (int c = 0; c < model.Causes.Count; c++)
+        {
+            if (model.WithoutSlope[c])
+            {
+                yield return $"'{model.Causes[c].Label}' changes more than places at once (a corner of metal lies on the edge), so it has no derivative and is left out of the budget; the samples contain it.";
+            }
+        }
+
+        int none = samples.Count(s => s.Status == SampleStatus.NoDevice), failed = samples.Count(s => s.Status == SampleStatus.NotConverged);
+        if (none > 0)
+        {
+            yield return Text($"{none} of {samples.Count} samples make no device (contacts overlap, or a width or resistance is no longer positive) and are left out; the tolerances are wide for this device.");
+        }
+
+        if (failed > 0)
+        {
+            yield return Text($"{failed} of {samples.Count} samples have no solution at {model.Current:G4} A and are left out.");
+        }
+
+        foreach (SampleStatistics s in statistics.Where(s => s.Count > 1 && s.SpreadError > Far * s.Deviation.Value))
+        {
+            yield return Text($"The spread of {s.Quantity.Label} of wiring '{s.Quantity.Wiring}' ({s.Deviation.Value:G3}{(s.Quantity.IsRatio ? "" : " V")}) is not far above its numerical error ({s.SpreadError:G3}); lower [mesh] error.");
+        }
+    }
+
+    private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
+}

@@ -109,6 +109,14 @@ internal sealed class OpenServer : IAsyncDisposable
         {
             await Refuse(context, [(new Fault(session.State.Path, 1, 1, e.Message), null)]);
         }
+        catch (Exception e) when (e is Runs.ToleranceException or Fields.FieldSpaceException or Meshing.MeshException or Sparse.PivotException)
+        {
+            await Refuse(context, [(new Fault(session.State.Path, 1, 1, e.Message.ReplaceLineEndings(" ")), null)]);
+        }
+        catch (OperationCanceledException)
+        {
+            // Whoever asked went away.
+        }
         catch (Microsoft.AspNetCore.Http.BadHttpRequestException e)
         {
             await Send(context, e.StatusCode, "text/plain; charset=utf-8", "the request is too large or broken");
@@ -138,6 +146,12 @@ internal sealed class OpenServer : IAsyncDisposable
                 break;
             case "events":
                 await hub.Serve(context, context.Request.Query["page"].ToString(), context.Request.Query["wiring"].ToString(), stop.Token);
+                break;
+            case "sensitivity":
+                string wiring = context.Request.Query["wiring"].ToString();
+                SessionState asked = session.State;
+                IReadOnlyList<ContactEffect> effects = await Task.Run(() => LayoutSensitivity.Of(asked, wiring, context.RequestAborted));
+                await Send(context, 200, "application/json", JsonSerializer.Serialize(new { version = asked.Version, contacts = effects }, EditJson.Options));
                 break;
             case "report.html":
                 byte[] report = await Task.Run(() => ReportMaker.Of(session.State, context.RequestAborted));

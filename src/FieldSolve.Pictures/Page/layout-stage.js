@@ -178,8 +178,8 @@ class LayoutStage {
         }
         group.append(svg('path', { class: 'halo', 'stroke-width': wide + 2.5, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': wide, d }));
       }
-      if (this.marks?.[c.name] !== undefined) {
-        group.append(svg('circle', { class: 'sense', cx: u.toFixed(1), cy: v.toFixed(1), r: (4 + 16 * Math.sqrt(this.marks[c.name])).toFixed(1) }));
+      if (this.marks?.[c.name] > 0) {
+        group.append(svg('circle', { class: 'sense', cx: u.toFixed(1), cy: v.toFixed(1), r: (26 * Math.sqrt(this.marks[c.name])).toFixed(1) }));
       }
       nodes.push(group);
       // Names of edges stand outside the sheet, those of pads and tips beside them.

@@ -86,14 +86,15 @@ class LayoutApp {
     }
     const mapHost = html('div', { class: 'map-host' }), bar = html('div', { class: 'bar' }, this.wiringBox,
       choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }), this.toolBox,
-      html('span', { class: 'zooms' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in')));
+      this.senseBox = tick('sensitivity', false, on => this.#sense(on)), html('span', { class: 'zooms' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in')));
     this.hint = html('p', { class: 'note-line hint-line' }, '');
+    this.senseLine = html('p', { class: 'note-line sense-line', hidden: true });
     this.fault = html('p', { class: 'fault-line', role: 'alert', hidden: true });
     const readings = html('div', null), readingsBox = html('section', { class: 'live' }, html('div', { class: 'readings-head' }, html('h3', null, 'Readings'), this.badge), readings), charts = html('section', { class: 'live' });
     this.fieldsHost = html('section', { class: 'live fields-host', 'aria-label': 'Values of the device file' });
     const partTools = html('div', { class: 'part-tools' }, this.dropButton = button('Remove contact', 'Remove the chosen contact or tip (Delete)', () => this.#drop(this.selected), 'drop'),
       button('Add wiring', 'A wiring like the last one with the current turned round', () => this.link.edit([{ op: 'add', kind: 'wiring', x: 0, y: 0 }]), 'add-wiring'), this.dropWiring = button('Remove wiring', 'Remove the wiring on show', () => this.#drop(this.wiring), 'drop-wiring'));
-    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
+    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.senseLine, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
     document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, 'Served on this machine alone. Nothing is written unless you save; closing the last page ends the program.')));
     this.stage = new LayoutStage(mapHost, {
       move: (name, x, y, gesture) => this.link.edit([{ op: 'move', name, x, y }], gesture),
@@ -166,6 +167,9 @@ class LayoutApp {
     this.readings.show(answer, this.wiring);
     this.readings.curves(answer, this.state?.wirings.map(w => w.name) ?? []);
     this.stage.answerWith(answer, this.wiring);
+    if (answer.accurate && this.senseBox.input.checked) {
+      this.#sense();
+    }
     this.#badge();
   }
 
@@ -202,6 +206,9 @@ class LayoutApp {
     if (this.state) {
       this.stage.setWiring(this.state.wirings.findIndex(w => w.name === name));
       this.fields.show(this.state, this.selected, name);
+      if (this.senseBox.input.checked) {
+        this.#sense();
+      }
       if (this.answer) {
         this.readings.show(this.answer, name);
         this.stage.answerWith(this.answer, name);
@@ -226,6 +233,39 @@ class LayoutApp {
     }
     this.stage.stage.dataset.tool = key;
     this.hint.textContent = { move: 'Drag contacts, pads and tips, or turn the dial; Tab and the arrow keys do the same. Shift makes small steps, Delete removes.', edge: 'Click at the edge.', pad: 'Click where the pad belongs.', point: 'Click where the tip belongs.' }[key];
+  }
+
+  // Circles on the contacts: what a misplacement of each does to the across voltage. Worked out anew when the layout rests.
+  async #sense(on = this.senseBox.input.checked) {
+    this.senseLine.hidden = !on;
+    if (!on) {
+      this.stage.marks = null;
+      this.stage.draw();
+      return;
+    }
+    const key = `${this.state.version} ${this.wiring}`;
+    if (this.senseKey === key) {
+      return;
+    }
+    this.senseKey = key;
+    this.senseLine.textContent = 'Working out what misplaced contacts do …';
+    const at = new URL('sensitivity', HERE);
+    at.searchParams.set('wiring', this.wiring);
+    let body;
+    try {
+      const response = await fetch(at);
+      body = await response.json();
+    } catch {
+      body = { faults: [{ message: 'the program does not answer' }] };
+    }
+    if (this.senseKey !== key || !this.senseBox.input.checked) {
+      return;
+    }
+    const list = body.contacts ?? [], most = Math.max(0, ...list.map(c => c.odd));
+    this.stage.marks = list.length ? Object.fromEntries(list.map(c => [c.contact, most > 0 ? c.odd / most : 0])) : null;
+    this.senseLine.textContent = body.faults ? `No sensitivity: ${body.faults.map(f => f.message).join('; ')}.`
+      : `Circles, area in proportion: standard deviation of V_across, odd, by a misplaced contact. Largest: ${list.slice(0, 3).map(c => `${c.contact} (${c.causes}) ${plusMinus(c.odd, c.oddError, 'V')}${c.even ? `, even part ${plusMinus(c.even, c.evenError, 'V')}` : ''}`).join('; ')}.`;
+    this.stage.draw();
   }
 
   #drop(name) {

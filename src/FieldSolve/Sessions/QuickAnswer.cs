@@ -6,6 +6,7 @@ using FieldSolve.Meshing;
 using FieldSolve.Meshing.SizeFields;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
+using FieldSolve.Sensitivity;
 using FieldSolve.Sparse;
 
 namespace FieldSolve.Sessions;
@@ -65,7 +66,7 @@ internal sealed class QuickAnswer
 
     private TriangleMesh Mesh(SheetDevice device, CancellationToken cancel)
     {
-        if (last is not null && mover?.Moved(device.Domain) is { } moved)
+        if (last is not null && mover?.Move(device.Domain) is { } moved)
         {
             return moved;
         }

@@ -1,7 +1,5 @@
 using System.Collections.Concurrent;
 using FieldSolve.Geometry;
-using FieldSolve.Meshing;
-using FieldSolve.Meshing.SizeFields;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Sessions;
@@ -110,22 +108,5 @@ public sealed class AnswerLoopTests : IDisposable
             // And it is worth looking at.
             Assert.True(p.Second.Error < 0.02 * fast.Readings.Max(r => Math.Abs(r.Value)));
         });
-    }
-
-    [Fact]
-    public void A_moved_mesh_is_a_sound_mesh_of_the_new_sheet_and_another_structure_is_refused()
-    {
-        EditSession session = EditSession.Open(folder.Write("round.toml", Round)).Session!;
-        TriangleMesh mesh = Mesher.Generate(session.State.Device.Domain, MeshSizes.First(session.State.Device));
-        MeshMover mover = new(mesh);
-        Assert.Empty(session.Apply((t, d) => LayoutEdit.Move(t, d, "c3", new Point2(4e-6, 0).Turned(124 * Math.PI / 180)), null));
-        TriangleMesh moved = mover.Moved(session.State.Device.Domain)!;
-        Assert.NotNull(moved);
-        Assert.Equal(mesh.Corners, moved.Corners);
-
-        // Moved nodes keep the sheet, but not the Delaunay property.
-        Assert.Empty(MeshChecker.Check(moved).Where(m => !m.Contains("not Delaunay", StringComparison.Ordinal)));
-        Assert.Empty(session.Apply((t, d) => LayoutParts.Add(t, d, "point", new(1e-6, 0)), null));
-        Assert.Null(mover.Moved(session.State.Device.Domain));
     }
 }

@@ -134,6 +134,9 @@ class LayoutApp {
     if (this.state && state.version !== this.state.version) {
       this.changed = performance.now();
     }
+    if (this.state?.byPath.has('turn.around') && !state.byPath.has('turn.around')) {
+      this.hint.textContent = 'The ring is now written as single contacts, so [turn] takes each wiring as one direction. Undo brings the ring back.';
+    }
     this.state = state;
     document.title = `${state.title} – layout`;
     this.title.textContent = state.title;

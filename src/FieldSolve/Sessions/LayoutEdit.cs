@@ -53,7 +53,9 @@ public static class LayoutEdit
         return text.With(block + ".shift", EditableToml.Quoted(QuantityText.Like(old, before + moved, step, NearUnit(device))));
     }
 
-    /// <summary>Writes a ring of contacts as single contacts, each at the place it has; does nothing to other contacts.</summary>
+    /// <summary>
+    /// Writes a ring of contacts as single contacts, each at the place it has, and takes it out of [turn]; does nothing to other contacts.
+    /// </summary>
     /// <param name="text">The device file.</param>
     /// <param name="name">A contact.</param>
     /// <returns>The text and the path of the contact's own table.</returns>
@@ -70,6 +72,9 @@ public static class LayoutEdit
                 && int.TryParse(name[prefix.Length..], NumberStyles.None, CultureInfo.InvariantCulture, out int k) && k >= 1 && k <= count)
             {
                 text = text.Replaced(ring.Path, Single(text, ring.Path, prefix, count));
+
+                // There is no ring left for [turn] to step round; it then takes each wiring as one direction.
+                text = text.Find("turn.around")?.Value == prefix ? text.Without("turn.around") : text;
                 return (text, BlockOf(text, name, "contact"));
             }
         }

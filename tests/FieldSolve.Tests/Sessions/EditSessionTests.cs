@@ -44,6 +44,9 @@ public sealed class EditSessionTests : IDisposable
             Assert.Equal(before.Contacts[k].Width, session.State.Device.Contacts[k].Width, 1e-18);
         }
 
+        // The ring that [turn] steps round is gone, so [turn] no longer names it.
+        Assert.Equal("c", before.Turn?.Around);
+        Assert.Null(session.State.Device.Turn!.Around);
         Assert.StartsWith(File.ReadAllText(folder["disc-12.toml"])[..400], session.State.Text.Text, StringComparison.Ordinal);
     }
 

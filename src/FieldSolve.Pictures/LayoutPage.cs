@@ -1,7 +1,7 @@
 using System.Text.Json;
 using FieldSolve.Device;
-using FieldSolve.Files;
 using FieldSolve.Fields;
+using FieldSolve.Files;
 using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Readings;

@@ -109,7 +109,7 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
     private static async Task<double> Shown(IPage page, string pair) =>
         double.Parse((await page.GetAttributeAsync($"tr[data-pair='{pair}']", "data-value"))!, CultureInfo.InvariantCulture);
 
-    private async Task Drag(IPage page, string name, float dx, float dy, int moves)
+    private static async Task Drag(IPage page, string name, float dx, float dy, int moves)
     {
         LocatorBoundingBoxResult box = (await page.Locator($"[data-contact='{name}'] .grip").BoundingBoxAsync())!;
         (float x, float y) = (box.X + (box.Width / 2), box.Y + (box.Height / 2));

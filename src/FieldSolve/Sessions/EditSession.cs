@@ -37,6 +37,7 @@ public enum SaveOutcome
 public sealed class EditSession
 {
     private const int MostUndo = 1000;
+    private const string NotInNames = "/\\:*?\"<>|";
 
     private readonly Lock gate = new();
     private readonly List<string> undo = [];
@@ -165,7 +166,7 @@ public sealed class EditSession
     public SaveOutcome SaveAs(string name, bool overwrite)
     {
         ArgumentNullException.ThrowIfNull(name);
-        if (name.Length is 0 or > 200 || Path.GetFileName(name) != name || name.AsSpan().IndexOfAny("/\\:*?\"<>|") >= 0 || name.Any(char.IsControl) || name.StartsWith('.')
+        if (name.Length is 0 or > 200 || Path.GetFileName(name) != name || name.Any(c => char.IsControl(c) || NotInNames.Contains(c, StringComparison.Ordinal)) || name.StartsWith('.')
             || !name.EndsWith(".toml", StringComparison.OrdinalIgnoreCase))
         {
             throw new LayoutEditException("the name must be a plain file name that ends in .toml, for example \"variant.toml\"; it is saved beside the device file");

@@ -63,7 +63,7 @@ public static class LayoutParts
 
     private static EditableToml Wiring(EditableToml text, SheetDevice device, string? after)
     {
-        Wiring? like = device.Wirings.LastOrDefault();
+        Wiring? like = device.Wirings.Count > 0 ? device.Wirings[^1] : null;
         string source = device.Contacts[like?.Drain ?? 0].Name, drain = device.Contacts[like?.Source ?? 1].Name;
         string name = "reversed";
         for (int k = 2; device.Wirings.Any(w => w.Name == name); k++)

@@ -66,7 +66,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         device, $"{what}, {Look.Short(map.Wiring, 24)}, I = {SiScale.Text(map.Current, "A")}", true, (MapMargin, MapMargin), MapSize);
 
     /// <summary>The colour bar at the right of a map.</summary>
-    internal static void AddBar(Plot plot, MapImage image, string label, ITickGenerator? ticks)
+    internal static void AddBar(Plot plot, IHasColorAxis image, string label, ITickGenerator? ticks)
     {
         ScottPlot.Panels.ColorBar bar = plot.Add.ColorBar(image);
         bar.Label = label;

@@ -62,15 +62,7 @@ internal static class BandsCommand
         Directory.CreateDirectory(folder);
         bool cancelled = BandsFiles.Write(result, folder, pictures, screen, cancel);
         screen.Clear();
-        foreach (string text in result.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
+        RunManners.Say(result.Cautions, result.Warnings);
 
         screen.Print(json ? BandsText.Json(result, folder) : BandsText.Plain(result, folder));
         return cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;

@@ -15,6 +15,8 @@ internal static class CommandList
         TurnCommand.Create(),
         ToleranceCommand.Create(),
         GatherCommand.Create(),
+        FitCommand.Create(),
+        OverlayCommand.Create(),
         OpenCommand.Create(),
     ];
 }

@@ -13,8 +13,6 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve drive DEVICE --out DIR.</summary>
 internal static class DriveCommand
 {
-    private const double QuickFactor = 10;
-
     private sealed record Choices(string Device, string Folder, string? Mesh, MapChoice Maps, bool AllSigns, bool Pictures, bool Quick, bool Quiet, bool Json, string[] Shifts);
 
     public static Command Create()
@@ -83,7 +81,7 @@ internal static class DriveCommand
 
         if (choices.Quick)
         {
-            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+            device = RunManners.Quick(device);
         }
 
         if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
@@ -99,7 +97,7 @@ internal static class DriveCommand
                 device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures, Mesh = mesh }, screen, cancel);
             if (choices.Quick)
             {
-                result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
+                result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
             }
         }
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
@@ -113,15 +111,7 @@ internal static class DriveCommand
         result = DriveFiles.Write(
             result, choices.Folder, new(choices.Maps, choices.AllSigns, choices.Pictures && !result.Cancelled, choices.Quick, choices.Shifts), screen, cancel);
         screen.Clear();
-        foreach (string text in result.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
+        RunManners.Say(result.Cautions, result.Warnings);
 
         screen.Print(choices.Json ? DriveText.Json(result, choices.Folder) : DriveText.Plain(result, choices.Folder));
         return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;

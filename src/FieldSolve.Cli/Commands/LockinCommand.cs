@@ -11,8 +11,6 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve lockin DEVICE --out DIR.</summary>
 internal static class LockinCommand
 {
-    private const double QuickFactor = 10;
-
     private sealed record Choices(string Device, string Folder, string? Mesh, bool Pictures, bool Quick, bool Quiet, bool Json);
 
     public static Command Create()
@@ -62,7 +60,7 @@ internal static class LockinCommand
 
         if (choices.Quick)
         {
-            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+            device = RunManners.Quick(device);
         }
 
         if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
@@ -77,7 +75,7 @@ internal static class LockinCommand
             result = LockinRun.Execute(device, new LockinOptions { Frames = choices.Pictures, Mesh = mesh }, screen, cancel);
             if (choices.Quick)
             {
-                result = result with { Warnings = [.. result.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."] };
+                result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
             }
         }
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
@@ -90,15 +88,7 @@ internal static class LockinCommand
         Directory.CreateDirectory(choices.Folder);
         result = LockinFiles.Write(result, choices.Folder, choices.Pictures && !result.Cancelled, choices.Quick, screen, cancel);
         screen.Clear();
-        foreach (string text in result.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
+        RunManners.Say(result.Cautions, result.Warnings);
 
         screen.Print(choices.Json ? LockinText.Json(result, choices.Folder) : LockinText.Plain(result, choices.Folder));
         return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;

@@ -119,7 +119,7 @@ internal static class ToleranceCommand
         if (options.Shards > 1)
         {
             screen.Clear();
-            ToleranceText.Warn(result);
+            RunManners.Say(result.Cautions, result.Warnings);
             screen.Print(FormattableString.Invariant(
                 $"shard {options.Shard} of {options.Shards}: {result.Samples.Count} samples, {result.Solved} of them new, in {folder}{(result.Cancelled ? "; cancelled, the same command goes on from here" : "")}\n"));
             return result.Cancelled ? ExitCode.Cancelled : ExitCode.Done;
@@ -161,7 +161,7 @@ internal static class ToleranceCommand
         }
 
         screen.Clear();
-        ToleranceText.Warn(result);
+        RunManners.Say(result.Cautions, result.Warnings);
         screen.Print(json ? ToleranceText.Json(result, folder) : ToleranceText.Plain(result, folder));
         return result.Cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;
     }

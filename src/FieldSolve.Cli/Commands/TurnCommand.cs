@@ -13,7 +13,6 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve turn DEVICE --out DIR.</summary>
 internal static class TurnCommand
 {
-    private const double QuickFactor = 10;
     private const int MostSteps = 720;
     private const double MostRatio = 1000;
 
@@ -125,7 +124,7 @@ internal static class TurnCommand
 
         if (choices.Quick)
         {
-            device = device with { Mesh = device.Mesh with { Error = QuickFactor * device.Mesh.Error, EvenError = QuickFactor * device.Mesh.EvenError } };
+            device = RunManners.Quick(device);
         }
 
         if (!MeshLoading.TryLoad(choices.Mesh, device, out TriangleMesh? mesh))
@@ -147,7 +146,7 @@ internal static class TurnCommand
                 {
                     Drive = result.Drive with
                     {
-                        Warnings = [.. result.Drive.Warnings, "Quick run: the wanted errors are ten times those of the device file; the error bars are those of this run."],
+                        Warnings = [.. result.Drive.Warnings, RunManners.QuickWarning],
                     },
                 };
             }
@@ -162,15 +161,7 @@ internal static class TurnCommand
         Directory.CreateDirectory(choices.Folder);
         result = TurnFiles.Write(result, choices, screen, cancel);
         screen.Clear();
-        foreach (string text in result.Drive.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Drive.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
+        RunManners.Say(result.Drive.Cautions, result.Drive.Warnings);
 
         screen.Print(choices.Json ? TurnText.Json(result, choices.Folder) : TurnText.Plain(result, choices.Folder));
         return result.Drive.Cancelled ? ExitCode.Cancelled : result.Drive.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;

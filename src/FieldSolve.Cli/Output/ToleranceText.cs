@@ -56,20 +56,6 @@ internal static class ToleranceText
         return null;
     }
 
-    /// <summary>Cautions and warnings to standard error.</summary>
-    public static void Warn(ToleranceResult result)
-    {
-        foreach (string text in result.Cautions)
-        {
-            Console.Error.WriteLine("caution: " + text);
-        }
-
-        foreach (string text in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + text);
-        }
-    }
-
     public static string Plain(ToleranceResult result, string folder)
     {
         var text = new StringBuilder();

@@ -58,7 +58,8 @@ public static class DeviceFile
         CautionSpec caution = RunReader.Caution(root);
         ToleranceReader tolerance = new(root, contacts);
         tolerance.Read();
-        root.Take("fit"); // belongs to the command of the same name, which reads it
+        FitReader fit = new(root, contacts);
+        fit.Read();
         NeedTwo(root, contacts);
         root.Finish();
         PlacementReport.Check(sheet, contacts, faults);
@@ -91,7 +92,7 @@ public static class DeviceFile
             GateCapacitance = sheet.GateCapacitance,
             DeadEdge = sheet.DeadEdge,
         };
-        device = device with { Tolerance = tolerance.Resolve(device) };
+        device = device with { Tolerance = tolerance.Resolve(device), Fit = fit.Resolve(device) };
         return faults.Count > 0 ? new DeviceReading(null, faults.InOrder()) : new DeviceReading(device, []);
     }
 

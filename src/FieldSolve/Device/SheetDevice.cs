@@ -58,6 +58,9 @@ public sealed record SheetDevice
     /// <summary>Causes of error and their sizes; null when the file has no [tolerance].</summary>
     public ToleranceSpec? Tolerance { get; init; }
 
+    /// <summary>What a fit may change; null when the file has no [fit].</summary>
+    public FitSpec? Fit { get; init; }
+
     /// <summary>Wanted accuracy.</summary>
     public MeshSpec Mesh { get; init; } = new();
 

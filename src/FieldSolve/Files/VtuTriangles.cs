@@ -24,7 +24,7 @@ public static class VtuTriangles
     {
         try
         {
-            (double[] x, double[] y, int[] corners) = new Reading(path, File.ReadAllBytes(path)).Triangles();
+            (double[] x, double[] y, int[] corners) = new Grid(path, File.ReadAllBytes(path)).Triangles();
             return (x, y, corners, null);
         }
         catch (Exception e) when (e is IOException or UnauthorizedAccessException)
@@ -48,7 +48,7 @@ public static class VtuTriangles
         public int Column { get; } = at is IXmlLineInfo i && i.HasLineInfo() ? i.LinePosition : 1;
     }
 
-    private sealed class Reading
+    private sealed class Grid
     {
         private readonly XElement root;
         private readonly byte[] bytes;
@@ -56,7 +56,7 @@ public static class VtuTriangles
         private readonly int header;
         private readonly bool compressed;
 
-        public Reading(string path, byte[] bytes)
+        public Grid(string path, byte[] bytes)
         {
             this.bytes = bytes;
 

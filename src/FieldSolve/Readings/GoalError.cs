@@ -18,10 +18,10 @@ internal sealed class GoalError
     private const double MixedDistrust = 0.25;
 
     // However badly the correction did on the mesh before, it is not worse than this.
-    private const double MostDoubt = 2;
+    private const double MostDoubt = 10;
 
-    // A correction that missed this share of itself on the mesh before may do so again, and somewhat worse.
-    private const double Repeat = 1.25;
+    // Two meshes of about the same size say little; their corrections count as differing by this share at least.
+    private const double LeastStep = 0.25;
 
     private readonly double corrected;  // sum of the sizes of what the correction consists of
     private readonly double rest;       // part of the bar that does not depend on how good the correction is
@@ -77,8 +77,9 @@ internal sealed class GoalError
     /// <param name="moved">Corrected value less the corrected value on the mesh before, V.</param>
     public GoalError AfterMove(GoalError before, double moved)
     {
-        double missed = Math.Abs(moved) - before.rest;
-        return With(missed > 0 && before.corrected > 0 ? Math.Clamp(Repeat * missed / before.corrected, least, MostDoubt) : least);
+        // If both corrections miss the same share k of themselves, the corrected value moves by k times their difference.
+        double missed = Math.Abs(moved) - before.rest, step = Math.Max(before.corrected - corrected, LeastStep * before.corrected);
+        return With(missed > 0 && step > 0 ? Math.Clamp(missed / step, least, MostDoubt) : least);
     }
 
     private GoalError With(double doubt, bool forGood = false)

@@ -9,10 +9,18 @@ internal sealed class ReadingPlan
     public const string Source = "source";
 
     public ReadingPlan(Wiring wiring)
+        : this(wiring, true, false)
+    {
+    }
+
+    /// <param name="wiring">Source, drain and pairs.</param>
+    /// <param name="withSource">The two-terminal voltage is read too.</param>
+    /// <param name="allEven">The even part of every pair is wanted, not only along and across.</param>
+    public ReadingPlan(Wiring wiring, bool withSource, bool allEven)
     {
         Wiring = wiring;
-        Pairs = [.. wiring.Pairs, new Pair(Source, new(false, wiring.Source), new(false, wiring.Drain))];
-        HasEven = [.. Pairs.Select(p => p == wiring.Along || p == wiring.Across)];
+        Pairs = [.. wiring.Pairs, .. withSource ? [new Pair(Source, new(false, wiring.Source), new(false, wiring.Drain))] : Array.Empty<Pair>()];
+        HasEven = [.. Pairs.Select(p => allEven || p == wiring.Along || p == wiring.Across)];
     }
 
     public Wiring Wiring { get; }

@@ -16,18 +16,20 @@ namespace FieldSolve.Sensitivity;
 public sealed class StateSensitivity
 {
     private readonly string[] keys;
+    private readonly bool hasPlaces;
     private readonly double[,] law;        // reading, 0 = axis, then the keys
     private readonly double[,] contact;    // reading, contact
     private readonly double[][] nodeX;     // reading: gradient with respect to the nodes
     private readonly double[][] nodeY;
     private readonly Dictionary<(NodeMotion, int), (double[] X, double[] Y)> pulled = [];
 
-    private StateSensitivity(FieldLevel level, double[][] adjoints, SparseLu factor)
+    private StateSensitivity(FieldLevel level, double[][] adjoints, SparseLu factor, IReadOnlyCollection<string>? only, bool places)
     {
+        hasPlaces = places;
         Level = level;
         Adjoints = adjoints;
         Factor = factor;
-        keys = [.. LawSensitivity.Parameters(level.Equations.Law.Law).Select(p => p.Key)];
+        keys = [.. LawSensitivity.Parameters(level.Equations.Law.Law).Select(p => p.Key).Where(k => only is null || only.Contains(k))];
         law = new double[adjoints.Length, keys.Length + 1];
         contact = new double[adjoints.Length, level.Space.Contacts.Count];
         nodeX = [.. adjoints.Select(_ => new double[level.Space.NodeCount])];
@@ -53,7 +55,20 @@ public sealed class StateSensitivity
     /// <param name="cancel">Stops the work.</param>
     /// <exception cref="PivotException">The Jacobian of the state is not positive definite.</exception>
     /// <exception cref="LawRefusedException">A table law was asked beyond its grid.</exception>
-    public static StateSensitivity Of(FieldLevel level, ReadOnlySpan<double> u, IReadOnlyList<double[]> readings, CancellationToken cancel)
+    public static StateSensitivity Of(FieldLevel level, ReadOnlySpan<double> u, IReadOnlyList<double[]> readings, CancellationToken cancel) =>
+        Of(level, u, readings, null, true, cancel);
+
+    /// <summary>Measures some derivatives of a state.</summary>
+    /// <param name="level">Mesh and equations.</param>
+    /// <param name="u">The converged potentials, V.</param>
+    /// <param name="readings">Each reading as a vector over the unknowns.</param>
+    /// <param name="only">Parameters of the law that are wanted; null for all. The axis always is.</param>
+    /// <param name="places">Whether the places of nodes are wanted.</param>
+    /// <param name="cancel">Stops the work.</param>
+    /// <exception cref="PivotException">The Jacobian of the state is not positive definite.</exception>
+    /// <exception cref="LawRefusedException">A table law was asked beyond its grid.</exception>
+    internal static StateSensitivity Of(
+        FieldLevel level, ReadOnlySpan<double> u, IReadOnlyList<double[]> readings, IReadOnlyCollection<string>? only, bool places, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(level);
         ArgumentNullException.ThrowIfNull(readings);
@@ -75,8 +90,8 @@ public sealed class StateSensitivity
 
         factor.SolveTransposedMany(many, many, readings.Count);
         double[][] adjoints = [.. Enumerable.Range(0, readings.Count).Select(r => (double[])[.. many.AsSpan(r * n, n), 0])];
-        var found = new StateSensitivity(level, adjoints, factor);
-        new TriangleSlopes(level.Equations, found.keys, found.law, found.nodeX, found.nodeY).Add(u, adjoints);
+        var found = new StateSensitivity(level, adjoints, factor, only, places);
+        new TriangleSlopes(level.Equations, found.keys, found.law, found.nodeX, found.nodeY, places).Add(u, adjoints);
         for (int r = 0; r < adjoints.Length; r++)
         {
             MetalSlopes.Add(level.Equations, u, adjoints[r], r, found.contact, found.nodeX[r], found.nodeY[r]);
@@ -108,6 +123,11 @@ public sealed class StateSensitivity
     public double ByMotion(int reading, MotionField field)
     {
         ArgumentNullException.ThrowIfNull(field);
+        if (!hasPlaces)
+        {
+            throw new InvalidOperationException("The state was measured without the places of its nodes.");
+        }
+
         if (!pulled.TryGetValue((field.Motion, reading), out (double[] X, double[] Y) g))
         {
             pulled[(field.Motion, reading)] = g = (field.Motion.Pull(nodeX[reading]), field.Motion.Pull(nodeY[reading]));

@@ -6,7 +6,7 @@ namespace FieldSolve.Sensitivity;
 /// The integrals over the triangles behind <see cref="StateSensitivity"/>. With g = grad z: dV/dp = integral of dK/dp.g, and for the place of a node with
 /// shape function N, dV/dx_i = integral of S_ij dN/dx_j, S_ij = (K.g) d_ij - E_i (D' g)_j - g_i K_j with D = dK/dE.
 /// </summary>
-internal sealed class TriangleSlopes(SheetEquations equations, string[] keys, double[,] law, double[][] nodeX, double[][] nodeY)
+internal sealed class TriangleSlopes(SheetEquations equations, string[] keys, double[,] law, double[][] nodeX, double[][] nodeY, bool places)
 {
     private const int Q = TriangleRule.Count;
     private const int Block = 24;
@@ -58,7 +58,10 @@ internal sealed class TriangleSlopes(SheetEquations equations, string[] keys, do
                     law[r, k] += sum;
                 }
 
-                AddNodes(first, count, nodeX[r], nodeY[r]);
+                if (places)
+                {
+                    AddNodes(first, count, nodeX[r], nodeY[r]);
+                }
             }
         }
     }

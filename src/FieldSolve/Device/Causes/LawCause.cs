@@ -10,6 +10,17 @@ public sealed class LawCause(LawParameter parameter) : CauseKind
     /// <inheritdoc/>
     public override string Key => parameter.Key;
 
+    /// <summary>The number is greater than zero by its nature.</summary>
+    public bool IsPositive => parameter.Bound is ParameterBound.Positive or ParameterBound.AtLeastOne;
+
+    /// <summary>Smallest number the law takes; minus infinity where any will do.</summary>
+    public double Least => parameter.Bound switch
+    {
+        ParameterBound.Positive or ParameterBound.NonNegative => 0,
+        ParameterBound.AtLeastOne => 1,
+        _ => double.NegativeInfinity,
+    };
+
     /// <inheritdoc/>
     public override CauseScope Scope => CauseScope.Sheet;
 

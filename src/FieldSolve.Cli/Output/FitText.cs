@@ -1,0 +1,71 @@
+using System.Globalization;
+using System.Text;
+using System.Text.Json;
+using System.Text.Json.Nodes;
+using FieldSolve.Files;
+using FieldSolve.Runs;
+
+namespace FieldSolve.Cli.Output;
+
+/// <summary>Summary of a fit.</summary>
+internal static class FitText
+{
+    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
+
+    public static string Json(FitResult result, string folder)
+    {
+        JsonObject json = FitRecord.Json(result);
+        json["out"] = folder;
+        return json.ToJsonString(Indented) + "\n";
+    }
+
+    public static string Plain(FitResult result, string folder)
+    {
+        var text = new StringBuilder();
+        FitQuality q = result.Quality;
+        text.Append(CultureInfo.InvariantCulture, $"{result.Device.Title}: {result.Data.Count} voltages, {result.Parameters.Count} free numbers{(result.Robust ? ", robust" : "")}\n\n");
+        foreach (FittedParameter p in result.Parameters)
+        {
+            text.Append("  ").Append(p.Parameter.Label.PadRight(18)).Append(Value(p)).Append('\n');
+        }
+
+        text.Append(CultureInfo.InvariantCulture, $"\nchi squared {q.ChiSquared:G5} for {q.Freedom} degrees of freedom");
+        text.Append(q.Probability is { } chance ? string.Create(CultureInfo.InvariantCulture, $", by chance with probability {chance:0.###}") : "");
+        text.Append(CultureInfo.InvariantCulture, $"; numerical error at most {100 * result.NumericalShare:G2} % of a datum's sigma\n");
+        foreach (FormulaValue f in result.Formulas)
+        {
+            text.Append(CultureInfo.InvariantCulture, $"{f.Method}: {f.Key} = {f.Value:G5} {f.Unit}");
+            text.Append(f.Fitted is { } v ? string.Create(CultureInfo.InvariantCulture, $", fit {v:G5}") : "");
+            text.Append(f.Off is { } off ? string.Create(CultureInfo.InvariantCulture, $", {off:+0.#;-0.#} sigmas off\n") : "\n");
+        }
+
+        for (int k = 0; k < result.Next.Count; k++)
+        {
+            NextReading n = result.Next[k];
+            text.Append(CultureInfo.InvariantCulture, $"next {k + 1}: {n.Source} to {n.Drain}, read {n.Plus} - {n.Minus} at {Engineering.Text(n.Current, "A", 3)}: ");
+            text.Append(CultureInfo.InvariantCulture, $"joint uncertainty / {n.Gain:G3}, {n.Helped} most ({n.After / n.Before:0.##} of its standard error)\n");
+        }
+
+        return text.Append("\nresults in ").Append(folder).Append('\n').ToString();
+    }
+
+    private static string Value(FittedParameter p)
+    {
+        if (p.Value is not { } v || p.StandardError is not { } e)
+        {
+            return "not determined by these data";
+        }
+
+        double unit = p.Parameter.UnitSize;
+        string end(double? x) => x is { } y ? (y / unit).ToString("G5", CultureInfo.InvariantCulture) : "bound";
+        string interval = p.Interval is { } i ? $"  95 %: {end(i.Low)} to {end(i.High)}" : "";
+        return string.Create(CultureInfo.InvariantCulture, $"{Rounded(v / unit, e / unit)} +- {e / unit:G2} {p.Parameter.Unit}{interval}");
+    }
+
+    // One digit beyond the first of the standard error.
+    private static string Rounded(double value, double error)
+    {
+        int digits = value == 0 || !(error > 0) ? 3 : (int)Math.Clamp(Math.Floor(Math.Log10(Math.Abs(value))) - Math.Floor(Math.Log10(error)) + 2, 2, 12);
+        return value.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+    }
+}

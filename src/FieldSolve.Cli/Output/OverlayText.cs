@@ -1,0 +1,53 @@
+using System.Globalization;
+using System.Text;
+using System.Text.Json;
+using System.Text.Json.Nodes;
+using FieldSolve.Files;
+using FieldSolve.Runs;
+
+namespace FieldSolve.Cli.Output;
+
+/// <summary>Summary of an overlay.</summary>
+internal static class OverlayText
+{
+    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
+
+    public static string Json(OverlayResult result, string folder)
+    {
+        JsonObject json = OverlayRecord.Json(result);
+        json["out"] = folder;
+        return json.ToJsonString(Indented) + "\n";
+    }
+
+    public static string Plain(OverlayResult result, string folder)
+    {
+        var text = new StringBuilder();
+        string unit = result.Unit;
+        text.Append(CultureInfo.InvariantCulture, $"{result.Device.Title}: {result.Points.Count(p => p.Model is not null)} of {result.Measured.Points.Count} points on the sheet, matched with wiring {result.Map.Wiring} at {Engineering.Text(result.Map.Current, "A")}\n\n");
+        Line("shift x", result.ShiftX, "m", 1);
+        Line("shift y", result.ShiftY, "m", 1);
+        Line("turn", result.Turn, "deg", Math.PI / 180);
+        Line("scale", result.Scale, "", 1);
+        Line("gain", result.Gain, "", 1);
+        Line("offset", result.Offset, unit, 1);
+        text.Append($"\nresiduals {Engineering.Text(result.Rms, unit, 3)} root mean square, noise {Engineering.Text(result.Noise, unit, 3)}{(result.NoiseIsEstimated ? " (estimated from the residuals)" : "")}\n");
+        foreach (OverlayPlace p in result.Places)
+        {
+            text.Append($"beyond the noise at ({Engineering.Text(p.Place.X, "m", 3)}, {Engineering.Text(p.Place.Y, "m", 3)}): {Engineering.Text(p.Mean, unit, 3)}, ");
+            text.Append(CultureInfo.InvariantCulture, $"{Math.Abs(p.Significance):G3} standard deviations within {Engineering.Text(p.Radius, "m", 2)}\n");
+        }
+
+        if (result.Places.Count == 0)
+        {
+            text.Append("nowhere beyond the noise\n");
+        }
+
+        return text.Append("\nresults in ").Append(folder).Append('\n').ToString();
+
+        void Line(string name, Registered r, string u, double scale)
+        {
+            string Of(double v, int digits) => u is "deg" or "" ? string.Create(CultureInfo.InvariantCulture, $"{v / scale:G5} {u}").TrimEnd() : Engineering.Text(v, u, digits);
+            text.Append("  ").Append(name.PadRight(10)).Append(r.StandardError > 0 ? $"{Of(r.Value, 5)} +- {Of(double.Parse(r.StandardError.ToString("G2", CultureInfo.InvariantCulture), CultureInfo.InvariantCulture), 2)}" : $"{Of(r.Value, 5)} (not free)").Append('\n');
+        }
+    }
+}

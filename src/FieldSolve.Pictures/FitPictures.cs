@@ -1,0 +1,55 @@
+using FieldSolve.Runs;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>All pictures of a fit.</summary>
+public static class FitPictures
+{
+    /// <summary>Draws the pictures and writes each as PNG and SVG; the same result always gives the same bytes.</summary>
+    /// <param name="result">The fit.</param>
+    /// <param name="folder">Where they go; made when missing.</param>
+    /// <param name="cancel">Stops between pictures; those already written stay.</param>
+    /// <returns>The pictures in the order of the report.</returns>
+    /// <exception cref="OperationCanceledException">The run was cancelled.</exception>
+    /// <exception cref="IOException">A file cannot be written.</exception>
+    /// <exception cref="UnauthorizedAccessException">A file may not be written.</exception>
+    public static IReadOnlyList<PictureFile> Write(FitResult result, string folder, CancellationToken cancel)
+    {
+        ArgumentNullException.ThrowIfNull(result);
+        ArgumentNullException.ThrowIfNull(folder);
+        EmbeddedFont.Use();
+        var files = new List<PictureFile>();
+        Add("fit-curves", "Measured voltages with their standard deviations against current; the lines join the fitted model at the same currents.", () => FitCurvePicture.Draw(result));
+        Add(
+            "fit-directions", "Voltage over current at the largest current against the direction of the current, from source to drain; the open squares are the fitted model.",
+            () => FitDirectionPicture.Draw(result));
+        Add(
+            "fit-residuals", "Measured less model in standard deviations, in the order of the data, and how often; the curve is the normal distribution. Ringed points are more than four deviations off.",
+            () => FitResidualPicture.Draw(result));
+        Add("fit-correlations", "Correlations of the fitted numbers in per cent: near 100 or −100 the data know a combination better than either number.", () => CorrelationPicture.Draw(result));
+        return files;
+
+        void Add(string name, string caption, Func<Figure?> draw)
+        {
+            cancel.ThrowIfCancellationRequested();
+            using Figure? figure = draw();
+            if (figure is not null)
+            {
+                PictureFile file = new(name, null, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
+                figure.Save(file.PngPath, file.SvgPath);
+                files.Add(file);
+            }
+        }
+    }
+
+    /// <summary>"V_along", "2nd harmonic of V_across".</summary>
+    internal static string Quantity(string pair, int? harmonic) => harmonic switch
+    {
+        null => $"V_{pair}",
+        0 => $"DC part of V_{pair}",
+        1 => $"1st harmonic of V_{pair}",
+        2 => $"2nd harmonic of V_{pair}",
+        3 => $"3rd harmonic of V_{pair}",
+        { } n => FormattableString.Invariant($"{n}th harmonic of V_{pair}"),
+    };
+}

@@ -1,0 +1,121 @@
+using System.Globalization;
+using FieldSolve.Device;
+using MathNet.Numerics.LinearAlgebra;
+using MathNet.Numerics.LinearAlgebra.Double;
+using MathNet.Numerics.LinearAlgebra.Factorization;
+
+namespace FieldSolve.Runs;
+
+/// <summary>Which combinations of parameters the data determine: singular values of the sensitivities over sigma, in natural scales, with the priors as further data.</summary>
+internal static class Identifiability
+{
+    /// <summary>A deviation of more than this many natural scales is none that a number could be given with.</summary>
+    public const double MostDeviation = 0.5;
+
+    // Parts of a direction below this share of its largest are left out of the words.
+    private const double Said = 0.15;
+
+    // Directions whose deviation exceeds this many natural scales count as without any information.
+    private const double NoInformation = 1e6;
+
+    /// <summary>Directions, the best determined first.</summary>
+    public static IReadOnlyList<FitDirection> Of(IReadOnlyList<FitParameter> parameters, double[,] jacobian, double[] sigma, double[] weights, double[] scales, double[] p)
+    {
+        (double[] values, double[][] directions) = Singular(parameters, jacobian, sigma, weights, scales);
+        return [.. values.Select((s, k) =>
+        {
+            bool determined = s > 0 && 1 / s <= MostDeviation;
+            return new FitDirection(s, directions[k], determined, determined ? "" : Words(parameters, directions[k], s, scales, p));
+        })];
+    }
+
+    /// <summary>Covariance in SI from the same decomposition; directions without any information count as very wide.</summary>
+    public static double[,] Covariance(IReadOnlyList<FitDirection> directions, double[] scales)
+    {
+        int m = scales.Length;
+        double[,] c = new double[m, m];
+        foreach (FitDirection d in directions)
+        {
+            double deviation = d.SingularValue > 1 / NoInformation ? 1 / d.SingularValue : NoInformation;
+            for (int i = 0; i < m; i++)
+            {
+                for (int j = 0; j < m; j++)
+                {
+                    c[i, j] += deviation * deviation * d.Direction[i] * scales[i] * d.Direction[j] * scales[j];
+                }
+            }
+        }
+
+        return c;
+    }
+
+    private static (double[] Values, double[][] Directions) Singular(
+        IReadOnlyList<FitParameter> parameters, double[,] jacobian, double[] sigma, double[] weights, double[] scales)
+    {
+        int n = sigma.Length, m = parameters.Count;
+        var a = new DenseMatrix(n + m, m);
+        for (int j = 0; j < m; j++)
+        {
+            for (int i = 0; i < n; i++)
+            {
+                a[i, j] = Math.Sqrt(weights[i]) * jacobian[i, j] * scales[j] / sigma[i];
+            }
+
+            a[n + j, j] = parameters[j].PriorSigma is { } prior ? scales[j] / prior : 0;
+        }
+
+        // Of the small square factor: as many singular values, and no matrix of n by n.
+        Svd<double> svd = a.QR(QRMethod.Thin).R.Svd();
+        double[][] directions = [.. Enumerable.Range(0, m).Select(k =>
+        {
+            double[] v = [.. svd.VT.Row(k)];
+            double sign = Math.Sign(v[Array.FindIndex(v, x => Math.Abs(x) == v.Max(Math.Abs))]);
+            return v.Select(x => sign * x).ToArray();
+        })];
+        return ([.. svd.S], directions);
+    }
+
+    private static string Words(IReadOnlyList<FitParameter> parameters, double[] v, double singular, double[] scales, double[] p)
+    {
+        double most = v.Max(Math.Abs);
+        int[] part = [.. Enumerable.Range(0, v.Length).Where(j => Math.Abs(v[j]) >= Said * most).OrderByDescending(j => Math.Abs(v[j]))];
+        string[] names = [.. part.Select(j => parameters[j].Label)];
+        if (part.Length == 1)
+        {
+            return $"{names[0]} is not determined by these data";
+        }
+
+        string all = string.Join(", ", names.SkipLast(1)) + " and " + names[^1];
+        if (part.Length == 2)
+        {
+            int[] pair = [.. part.Order()];
+            (int i, int j) = (pair[0], pair[1]);
+            return $"{parameters[i].Label} and {parameters[j].Label} are not determined one by one: only {Kept(parameters, i, j, v, scales)} is determined by these data";
+        }
+
+        string together = string.Join(", ", part.Take(4).Select(j => $"{parameters[j].Label} by {Change(parameters[j], v[j] / most, scales[j])}"));
+        return $"{all} are not determined one by one: changing {together}{(part.Length > 4 ? " and so on" : "")} together changes no reading by much more than its noise";
+    }
+
+    // With the direction (v_i, v_j) free, what stays is the product (logarithms) or the sum along (v_j, -v_i).
+    private static string Kept(IReadOnlyList<FitParameter> parameters, int i, int j, double[] v, double[] scales)
+    {
+        (double wi, double wj) = (v[j], -v[i]);
+        if (parameters[i].IsPositive && parameters[j].IsPositive)
+        {
+            double ratio = wj / wi;
+            string a = parameters[i].Label, b = parameters[j].Label;
+            return Math.Abs(ratio - 1) < 0.1 ? $"sqrt({a} {b})"
+                : Math.Abs(ratio + 1) < 0.1 ? $"{a}/{b}"
+                : $"{a} {b}^{ratio.ToString("0.##", CultureInfo.InvariantCulture)}";
+        }
+
+        double ci = wi / scales[i] * parameters[i].UnitSize, cj = wj / scales[j] * parameters[j].UnitSize;
+        string factor = (cj / ci).ToString("G3", CultureInfo.InvariantCulture);
+        return $"{parameters[i].Label} + ({factor}) {parameters[j].Label} (in {parameters[i].Unit} and {parameters[j].Unit})";
+    }
+
+    private static string Change(FitParameter q, double share, double scale) => q.IsPositive
+        ? $"{(share > 0 ? "+" : "")}{(10 * share).ToString("0.#", CultureInfo.InvariantCulture)} %"
+        : $"{(0.1 * share * scale / q.UnitSize).ToString("G2", CultureInfo.InvariantCulture)} {q.Unit}";
+}

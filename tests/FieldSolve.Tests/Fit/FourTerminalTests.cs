@@ -1,0 +1,77 @@
+using FieldSolve.Device;
+using FieldSolve.Measured;
+using FieldSolve.Runs;
+using FieldSolve.Tests.PublishedTests;
+
+namespace FieldSolve.Tests.FitTests;
+
+/// <summary>Four-terminal resistances alone.</summary>
+public class FourTerminalTests
+{
+    // A rectangle with contacts at its corners: H. C. Montgomery, J. Appl. Phys. 42, 2971 (1971); B. F. Logan, S. O. Rice, R. F. Wick, J. Appl. Phys. 42, 2975 (1971).
+    // R2/R1 and the side ratio L2/L1 of the equivalent isotropic rectangle, here a square whose ratio is that of sqrt(rho_y/rho_x); numbers from the exact series in
+    // multi-precision arithmetic. The sheet resistance for R1 = 1, R2 = ratio is that of the f factor (see VanDerPauwFormulaTests). The contacts here are short stretches at the
+    // corners; a point a distance d away from a corner changes a reading by the order of d² (the map near a right angle is a square), 1e-3 for the hundredth of the side used.
+    [Theory]
+    [InlineData(5, 1.286510165745, 11.1721102749)]
+    [InlineData(10, 1.42802900693, 17.4311262605)]
+    [InlineData(100, 1.958995786848, 92.4346510544)]
+    public void Rectangle_with_corner_contacts_gives_sheet_resistance_and_anisotropy(double ratio, double sides, double sheet)
+    {
+        const double h = 0.5e-3, w = 0.01e-3;
+        DeviceText text = DeviceText.Bar(2 * h, 2 * h, DeviceText.Ohmic(0.1, 0.1))
+            .Stretch("a", -h, -h, -h + w, -h).Stretch("b", h - w, -h, h, -h).Stretch("c", h, h, h - w, h).Stretch("d", -h + w, h, -h, h).Wiring("ab", "a", "b").Drive(1e-3);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true");
+
+        // R1: current along x at the lower edge, voltage at the upper one; the sign is that of source less drain side.
+        MeasuredVoltages data = FitDevices.Resistances(device, 1e-3, 1e-6, ("a b d c", 1), ("b c a d", ratio));
+        FitResult result = FitDevices.Fit(device, data);
+        double a = result.Of("a").Value!.Value, b = result.Of("b").Value!.Value;
+        Assert.True(result.AllOk);
+        Assert.Equal(sides, Math.Sqrt(a / b), 2e-3 * sides);
+        Assert.Equal(sheet, 1 / Math.Sqrt(a * b), 2e-3 * sheet);
+        FormulaValue formula = result.Formulas.Single(f => f.Method == "van der Pauw");
+        Assert.Equal(sheet, formula.Value, 1e-9 * sheet);
+    }
+
+    // Four equal arcs of half angle 5° at 0, 90, 180, 270°: R_AB,CD = 0.220026921546 Rs exactly (two elliptic integrals, W. Versnel, Solid-State Electron. 22, 911 (1979);
+    // value in multi-precision arithmetic). By symmetry both readings are equal for any a and b along x and y, so that van der Pauw's theorem leaves only sqrt(a b).
+    [Fact]
+    public void Says_in_words_that_a_symmetric_disc_knows_only_the_mean()
+    {
+        const double exact = 0.220026921546;
+        DeviceText text = DeviceText.Disc(1e-6, DeviceText.Ohmic(0.7e-3, 0.7e-3)).Arc("e", 0, 5, 1e-6).Arc("n", 90, 5, 1e-6).Arc("w", 180, 5, 1e-6).Arc("s", 270, 5, 1e-6)
+            .Wiring("en", "e", "n").Drive(1e-5);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true");
+        MeasuredVoltages data = FitDevices.Resistances(device, 1e-5, 1e-7, ("e n s w", 1000 * exact), ("n w e s", 1000 * exact));
+        FitResult result = FitDevices.Fit(device, data, new FitOptions { Suggest = 2 });
+        Assert.All(result.Parameters, p => Assert.Null(p.Value));
+        FitDirection open = Assert.Single(result.Directions, d => !d.Determined);
+        Assert.Contains("only sqrt(a b) is determined", open.Words, StringComparison.Ordinal);
+        Assert.Contains(result.Warnings, w => w.Contains("sqrt(a b)", StringComparison.Ordinal));
+
+        // Its value is there all the same; contact sizes are in the model, so it is the true one and not van der Pauw's.
+        Assert.Equal(1e-3, Math.Sqrt(result.Of("a").Ended * result.Of("b").Ended), 1e-6);
+        Assert.Equal(-0.002758750655, (result.Formulas.Single(f => f.Method == "van der Pauw").Value / 1000) - 1, 1e-5);
+
+        // Two more readings cannot help: by the symmetry every reading between neighbours is the same. The diagonal one reads nothing.
+        Assert.All(result.Next, n => Assert.NotEqual(n.Plus, n.Minus));
+    }
+
+    [Fact]
+    public void Names_a_number_that_no_reading_depends_on()
+    {
+        // Current along x between full ends: b plays no part.
+        DeviceText text = DeviceText.Bar(30e-6, 6e-6, DeviceText.Ohmic(1e-3, 2e-3)).Whole("l", "end", "left").Whole("r", "end", "right")
+            .Tip("p", -5e-6, 0).Tip("q", 5e-6, 0).Wiring("x", "l", "r", "p q").Drive(1e-5);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true");
+        FitResult result = FitDevices.Fit(device, FitDevices.Table(device, "wiring,pair,current_A,value_V,sigma_V\nx,along,1e-5,0.02,1e-6\n"));
+        Assert.Equal(1e-5 * 10e-6 / (6e-6 * 0.02), result.Of("a").Value!.Value, 1e-9);
+        Assert.Null(result.Of("b").Value);
+        Assert.Equal("b is not determined by these data", result.Directions[^1].Words);
+
+        // A uniform strip is what the formulas describe: they agree with the fit here.
+        FormulaValue strip = result.Formulas.FirstOrDefault(f => f.Method == "uniform strip" && f.Key == "a") ?? new("", "a", "S", result.Of("a").Value!.Value, null, null);
+        Assert.Equal(result.Of("a").Value!.Value, strip.Value, 1e-9);
+    }
+}

@@ -18,6 +18,14 @@ if (args is ["page"])
     return;
 }
 
+// "layout" times the answers of the layout page; a second word is the number of moves for the look at memory.
+if (args is ["layout", ..])
+{
+    int drags = args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 0;
+    FieldSolve.Benchmarks.LayoutTimes.Print(Console.Out, drags);
+    return;
+}
+
 // "native" compares with SuiteSparse where it is installed; a second word is the largest number of unknowns.
 if (args is ["native", ..])
 {

@@ -134,7 +134,7 @@ internal sealed class LiveData
         return Encoding.UTF8.GetString(memory.GetBuffer(), 0, (int)memory.Length);
     }
 
-    private static void Write(Utf8JsonWriter w, LiveMesh mesh)
+    internal static void Write(Utf8JsonWriter w, LiveMesh mesh)
     {
         bool wide = mesh.Corners > ushort.MaxValue;
         w.WriteNumber("triangles", mesh.Triangles);
@@ -309,14 +309,14 @@ internal sealed class LiveData
         w.WriteEndArray();
     }
 
-    private static void Numbers(Utf8JsonWriter w, string name, double[] values)
+    internal static void Numbers(Utf8JsonWriter w, string name, double[] values)
     {
         w.WritePropertyName(name);
         Values(w, values);
     }
 
     // JSON knows no NaN and no infinity: null stands for them.
-    private static void Values(Utf8JsonWriter w, double[] values)
+    internal static void Values(Utf8JsonWriter w, double[] values)
     {
         w.WriteStartArray();
         foreach (double v in values)

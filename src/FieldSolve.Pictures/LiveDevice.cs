@@ -35,9 +35,11 @@ internal static class LiveDevice
     public static LiveLaw Law(SheetDevice device, IEnumerable<(LiveMesh Mesh, double[] Potential)> maps) =>
         new(device.Law, device.Axis, FieldMargin * maps.Select(m => m.Mesh.LargestSlope(m.Potential)).DefaultIfEmpty(0).Max());
 
-    private static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
+    /// <summary>x, y, x, y, …</summary>
+    public static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
 
-    private static string Role(Wiring wiring, Terminal t) =>
+    /// <summary>Role of a terminal in a wiring; empty for none.</summary>
+    public static string Role(Wiring wiring, Terminal t) =>
         t == new Terminal(false, wiring.Source) ? "source"
         : t == new Terminal(false, wiring.Drain) ? "drain"
         : t == wiring.Along?.Plus ? "along+"

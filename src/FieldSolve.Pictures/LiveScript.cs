@@ -23,7 +23,7 @@ internal static class LiveScript
     public static string Policy { get; } =
         $"default-src 'none'; img-src data:; script-src '{Hash(Script)}'; style-src '{Hash(Style)}'; base-uri 'none'; form-action 'none'";
 
-    private static string Read(string name)
+    internal static string Read(string name)
     {
         using Stream stream = Assembly.GetExecutingAssembly().GetManifestResourceStream("Page." + name)
             ?? throw new InvalidOperationException($"The embedded file {name} is missing from the assembly.");

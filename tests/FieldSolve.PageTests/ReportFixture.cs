@@ -102,6 +102,9 @@ public sealed class ReportFixture : IAsyncLifetime
         Directory.Delete(folder, recursive: true);
     }
 
+    /// <summary>A window of its own, with the network.</summary>
+    internal Task<IBrowserContext> Window(BrowserNewContextOptions options) => browser!.NewContextAsync(options);
+
     internal void Write(string path) => ReportPage.Write(Result, DrivePictures.Write(Result, Other("pictures"), CancellationToken.None), path);
 
     /// <summary>The same disc with its wiring stepped round the ring, made when first asked for.</summary>

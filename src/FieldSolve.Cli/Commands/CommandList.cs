@@ -17,5 +17,6 @@ internal static class CommandList
         GatherCommand.Create(),
         FitCommand.Create(),
         OverlayCommand.Create(),
+        OpenCommand.Create(),
     ];
 }

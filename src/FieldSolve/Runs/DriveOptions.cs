@@ -27,6 +27,9 @@ public sealed record DriveOptions
     /// <summary>A mesh of the device to use as it is, without refinement (its uniform split gives the answers); null to make one.</summary>
     public TriangleMesh? Mesh { get; init; }
 
+    /// <summary>Also keep the potential at every current, as live pages show it, without the fields that still pictures need. Default false.</summary>
+    public bool Frames { get; init; }
+
     /// <summary>
     /// The wirings are points of one curve: an even part need not be better known than a tenth of the curve's largest, where a row by itself would be measured
     /// by a tenth of its own largest.

@@ -199,7 +199,7 @@ internal sealed class DriveWork
     private bool WantsFrame(int k)
     {
         int each = Math.Max(1, PotentialFrame.MostNodalValues / (plans.Length * meshes.Fine.Space.NodeCount)), stride = (currents.Count + each - 1) / each;
-        return options.ForPictures && (currents.Count - 1 - k) % stride == 0;
+        return (options.ForPictures || options.Frames) && (currents.Count - 1 - k) % stride == 0;
     }
 
     private bool WantsMap(int k)

@@ -66,13 +66,13 @@ internal sealed class MeshPair
     public (double[] Coarse, double[] Fine)? Known(ReadingPlan plan, double current) =>
         known.TryGetValue((plan, current), out (double[] Coarse, double[] Fine) found) ? found : null;
 
-    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
+    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0, MeshPair? like = null)
     {
         FieldLevel? coarse = null, fine = null;
         Parallel.Invoke(
             new ParallelOptions { CancellationToken = cancel },
-            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground),
-            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground));
+            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground, like?.Fine),
+            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground, like?.Coarse));
         return new(coarse!, fine!);
     }
 

@@ -42,13 +42,17 @@ public sealed class FieldLevel
     /// <param name="law">In the lab frame.</param>
     /// <param name="cancel">Stops the work.</param>
     /// <param name="ground">Contact whose metal is the zero of the potential.</param>
+    /// <param name="like">A level whose ordering is used again when its unknowns are joined in the same way, as after its nodes were moved; null for none.</param>
     /// <exception cref="FieldSpaceException">A part of the sheet is joined to the rest by no metal.</exception>
     /// <exception cref="PivotException">The Jacobian at zero field is not positive definite.</exception>
-    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
+    public static FieldLevel Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0, FieldLevel? like = null)
     {
         FieldSpace space = FieldSpace.Build(device, mesh, ground);
         (double[] x, double[] y) = space.Places();
-        return AtRest(new SheetEquations(space, law), SparseAnalysis.Analyse(space.Pattern, x, y, cancel), cancel);
+        bool alike = like is not null && like.Space.Pattern.Start.AsSpan().SequenceEqual(space.Pattern.Start)
+            && like.Space.Pattern.Column.AsSpan().SequenceEqual(space.Pattern.Column);
+        SparseAnalysis analysis = alike ? like!.Analysis : SparseAnalysis.Analyse(space.Pattern, x, y, cancel);
+        return AtRest(new SheetEquations(space, law), analysis, cancel);
     }
 
     /// <summary>The same mesh under another law: equations and factor at zero field are new, unknowns, geometry and ordering are shared.</summary>

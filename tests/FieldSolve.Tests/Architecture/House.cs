@@ -10,7 +10,7 @@ internal static class House
     /// <summary>Folders of src/FieldSolve; each may use only those before it.</summary>
     public static readonly string[] Floors =
     [
-        "Quantities", "Geometry", "Laws", "Device", "Bands", "Measured", "Meshing", "Sparse", "Fields", "Solving", "Readings", "Sensitivity", "Runs", "Lockin", "Turning", "Files",
+        "Quantities", "Geometry", "Laws", "Device", "Bands", "Measured", "Meshing", "Sparse", "Fields", "Solving", "Readings", "Sensitivity", "Runs", "Lockin", "Turning", "Files", "Sessions",
     ];
 
     private static readonly ArchUnitNET.Domain.Architecture Code = new ArchLoader()

@@ -1,0 +1,260 @@
+using System.Text.Json;
+using FieldSolve.Device;
+using FieldSolve.Fields;
+using FieldSolve.Files;
+using FieldSolve.Geometry;
+using FieldSolve.Laws;
+using FieldSolve.Readings;
+using FieldSolve.Sessions;
+
+namespace FieldSolve.Pictures;
+
+/// <summary>
+/// The page on which a layout is tried: its HTML, script and style, and what it is told of layouts and answers. The page draws with the same parts as the report. Text
+/// always travels as JSON and goes into the page as text.
+/// </summary>
+public static class LayoutPage
+{
+    // In the order in which they use one another; the first ones are those of the report.
+    private static readonly string[] Parts =
+    [
+        "base.js", "colours.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "chart.js", "frames.js", "layout-stage.js", "layout-fields.js", "layout-readings.js",
+        "layout.js",
+    ];
+
+    /// <summary>The page; it names its script and style as page.js and page.css beside it.</summary>
+    public static string Html { get; } = Page();
+
+    /// <summary>The script.</summary>
+    public static string Script { get; } = "'use strict';\n(() => {\n" + string.Concat(Parts.Select(LiveScript.Read)) + "})();\n";
+
+    /// <summary>The style sheet.</summary>
+    public static string Style { get; } = LiveScript.Style + LiveScript.Read("layout.css");
+
+    /// <summary>Content of the policy header: nothing but the page's own script, style and server.</summary>
+    public const string Policy =
+        "default-src 'none'; script-src 'self'; style-src 'self'; img-src 'self' data: blob:; connect-src 'self'; base-uri 'none'; form-action 'none'; frame-ancestors 'none'";
+
+    /// <summary>Writes what the page must know of a layout: the sheet, what touches it, and every value of the file.</summary>
+    /// <param name="w">Where to.</param>
+    /// <param name="state">The session.</param>
+    public static void WriteState(Utf8JsonWriter w, SessionState state)
+    {
+        ArgumentNullException.ThrowIfNull(w);
+        ArgumentNullException.ThrowIfNull(state);
+        SheetDevice device = state.Device;
+        w.WriteStartObject();
+        w.WriteNumber("version", state.Version);
+        w.WriteString("title", device.Title);
+        w.WriteString("file", Path.GetFileName(state.Path));
+        w.WriteString("program", RunRecord.Version);
+        w.WriteBoolean("canUndo", state.CanUndo);
+        w.WriteBoolean("canRedo", state.CanRedo);
+        w.WriteBoolean("saved", state.IsSaved);
+        w.WriteBoolean("changedOnDisk", state.ChangedOnDisk);
+        w.WriteString("shape", device.Shape);
+        w.WriteNumber("axis", device.Axis * 180 / Math.PI);
+        w.WriteNumber("size", device.Domain.Size);
+        w.WriteStartArray("rim");
+        foreach (Point2[] loop in SheetFrame.RimLoops(device.Domain))
+        {
+            LiveData.Values(w, LiveDevice.Flat(loop));
+        }
+
+        w.WriteEndArray();
+        Contacts(w, device);
+        Wirings(w, device);
+        w.WriteStartArray("values");
+        foreach (TomlPiece piece in state.Text.Pieces)
+        {
+            w.WriteStartObject();
+            w.WriteString("path", piece.Path);
+            w.WriteString("kind", piece.Kind);
+            w.WriteString("value", piece.Value);
+            w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+        w.WriteStartArray("tables");
+        foreach (TomlBlock block in state.Text.Blocks)
+        {
+            w.WriteStringValue(block.Path);
+        }
+
+        w.WriteEndArray();
+        Laws(w);
+        w.WriteEndObject();
+    }
+
+    /// <summary>Writes an answer: rows as in curves.csv, and the potential at the largest current.</summary>
+    /// <param name="w">Where to.</param>
+    /// <param name="answer">The answer.</param>
+    public static void WriteAnswer(Utf8JsonWriter w, LayoutAnswer answer)
+    {
+        ArgumentNullException.ThrowIfNull(w);
+        ArgumentNullException.ThrowIfNull(answer);
+        w.WriteStartObject();
+        w.WriteNumber("version", answer.Version);
+        w.WriteBoolean("accurate", answer.IsAccurate);
+        w.WriteBoolean("complete", answer.Drive is not null || (answer.IsAccurate && answer.Failure is not null));
+        w.WriteNumber("milliseconds", Math.Round(answer.Milliseconds, 1));
+        w.WriteString("failure", answer.Failure);
+        w.WriteStartArray("rows");
+        foreach (CurveRow row in answer.Rows)
+        {
+            Row(w, row);
+        }
+
+        w.WriteEndArray();
+        w.WriteStartArray("cautions");
+        foreach (string text in (answer.Drive?.Cautions ?? []).Concat(answer.Drive?.Warnings ?? []))
+        {
+            w.WriteStringValue(text);
+        }
+
+        w.WriteEndArray();
+        if (answer.Frames.Count > 0)
+        {
+            PotentialFrame first = answer.Frames[0];
+            LiveMesh mesh = new(first.X, first.Y, first.Nodes);
+            w.WriteStartObject("mesh");
+            LiveData.Write(w, mesh);
+            w.WriteEndObject();
+            w.WriteStartArray("frames");
+            foreach (PotentialFrame frame in answer.Frames.Where(f => ReferenceEquals(f.Nodes, first.Nodes)))
+            {
+                w.WriteStartObject();
+                w.WriteString("wiring", frame.Wiring);
+                w.WriteNumber("current", frame.Current);
+                (byte[] bytes, double low, double high) = mesh.Pack(frame.Potential);
+                w.WriteNumber("low", low);
+                w.WriteNumber("high", high);
+                if (high > low)
+                {
+                    w.WriteBase64String("phi", bytes);
+                }
+
+                w.WriteEndObject();
+            }
+
+            w.WriteEndArray();
+        }
+
+        w.WriteEndObject();
+    }
+
+    private static void Row(Utf8JsonWriter w, CurveRow row)
+    {
+        w.WriteStartObject();
+        w.WriteString("wiring", row.Wiring);
+        w.WriteNumber("current", row.Current);
+        w.WriteString("status", CurvesCsv.StatusText(row.Status));
+        w.WriteStartArray("readings");
+        foreach (Reading r in row.Readings)
+        {
+            w.WriteStartObject();
+            w.WriteString("pair", r.Pair);
+            Number("value", r.Value);
+            Number("error", r.Error);
+            Number("odd", r.Odd);
+            Number("even", r.Even);
+            Number("evenError", r.EvenError);
+            w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+        w.WriteEndObject();
+
+        void Number(string name, double? value)
+        {
+            if (value is { } v && double.IsFinite(v))
+            {
+                w.WriteNumber(name, v);
+            }
+        }
+    }
+
+    private static void Contacts(Utf8JsonWriter w, SheetDevice device)
+    {
+        w.WriteStartArray("contacts");
+        foreach (Contact c in device.Contacts)
+        {
+            One(c.Name, c.Kind == ContactKind.Pad ? "pad" : "edge", LiveDevice.Flat(SheetFrame.Points(c.Shape)), c.Middle, c.Width);
+        }
+
+        foreach (Tip t in device.Tips)
+        {
+            One(t.Name, "tip", [t.At.X, t.At.Y], t.At, 0);
+        }
+
+        w.WriteEndArray();
+
+        void One(string name, string kind, double[] points, Point2 middle, double width)
+        {
+            w.WriteStartObject();
+            w.WriteString("name", name);
+            w.WriteString("kind", kind);
+            w.WriteNumber("width", width);
+            LiveData.Numbers(w, "points", points);
+            LiveData.Numbers(w, "middle", [middle.X, middle.Y]);
+            w.WriteEndObject();
+        }
+    }
+
+    private static void Wirings(Utf8JsonWriter w, SheetDevice device)
+    {
+        w.WriteStartArray("wirings");
+        foreach (Wiring wiring in device.Wirings)
+        {
+            w.WriteStartObject();
+            w.WriteString("name", wiring.Name);
+            w.WriteStartArray("roles");
+            for (int k = 0; k < device.Contacts.Count + device.Tips.Count; k++)
+            {
+                w.WriteStringValue(LiveDevice.Role(wiring, k < device.Contacts.Count ? new(false, k) : new(true, k - device.Contacts.Count)));
+            }
+
+            w.WriteEndArray();
+            w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+    }
+
+    private static void Laws(Utf8JsonWriter w)
+    {
+        w.WriteStartArray("laws");
+        foreach (LawKind law in LawCatalogue.Kinds)
+        {
+            w.WriteStartObject();
+            w.WriteString("name", law.Name);
+            w.WriteString("summary", law.Summary);
+            w.WriteStartArray("keys");
+            foreach (LawParameter p in law.Parameters)
+            {
+                w.WriteStartObject();
+                w.WriteString("key", p.Key);
+                w.WriteString("meaning", p.Meaning);
+                w.WriteBoolean("required", p.Required);
+                w.WriteString("example", p.IsFile ? "table.csv" : p.Dimension == Quantities.Dimension.None ? "2" : p.Dimension.Example);
+                w.WriteBoolean("plain", !p.IsFile && p.Dimension == Quantities.Dimension.None);
+                w.WriteEndObject();
+            }
+
+            w.WriteEndArray();
+            w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+    }
+
+    private static string Page()
+    {
+        Html page = new();
+        page.Raw("<!DOCTYPE html>").Raw("<html lang=\"en\">").Raw("<head>").Raw("<meta charset=\"utf-8\">");
+        page.Raw("<meta name=\"viewport\" content=\"width=device-width, initial-scale=1\">").Raw("<meta name=\"referrer\" content=\"no-referrer\">");
+        page.Element("title", "FieldSolve layout").Raw("<link rel=\"icon\" href=\"data:,\">").Raw("<link rel=\"stylesheet\" href=\"page.css\">");
+        page.Raw("<script src=\"page.js\" defer></script>").Raw("</head>").Raw("<body class=\"layout\">").Raw("<noscript>This page needs scripts.</noscript>");
+        return page.Raw("</body>").Raw("</html>").ToString();
+    }
+}

@@ -85,6 +85,7 @@ internal static class FitLive
             {
                 Curve = (fine, [.. fine.Select(z => residuals.Length * width * Math.Exp(-z * z / 2) / Math.Sqrt(2 * Math.PI))]),
             },
-        ]) { Kind = "histogram" };
+        ])
+        { Kind = "histogram" };
     }
 }

@@ -27,6 +27,9 @@ internal sealed class GuardSearch
         .. Enumerable.Range(1, 36).Select(k => k / 12.0), 3.25, 3.5, 4, 4.5, 5, 6, 7, 8, 10, 15, 20, 40, 100, 1e3, 1e5,
     ];
 
+    // A guard below this share of the lowest field looked at would leave nothing of the law but its ohmic part.
+    private const double Hopeless = 1e-9;
+
     private readonly ILawDetail law;
     private readonly FieldScan scan;
     private readonly Tensor2 s;
@@ -50,6 +53,7 @@ internal sealed class GuardSearch
     }
 
     /// <summary>The guard of a law as written; null when it keeps definiteness at every field.</summary>
+    /// <exception cref="LawException">Definiteness is lost at once.</exception>
     public static FieldGuard? Find(ILawDetail law)
     {
         FieldScan scan = law.Scan;
@@ -72,10 +76,16 @@ internal sealed class GuardSearch
 
         // N is of second order in E, so a small enough limit always holds.
         double high = good / FromShare, low = high;
-        while (!GuardedHolds(low))
+        while (low > Hopeless * scan.Lowest && !GuardedHolds(low))
         {
             high = low;
             low /= 1.5;
+        }
+
+        if (!(low > Hopeless * scan.Lowest))
+        {
+            throw new LawException(
+                "the symmetric part of dK/dE is not positive definite at any but vanishing fields, so a current would have no certain field; check signs, units and outliers of the law");
         }
 
         for (int k = 0; low < high && k < 10; k++)

@@ -13,13 +13,16 @@ namespace FieldSolve.Laws;
 public sealed record LawParameter(
     string Key, Dimension Dimension, bool Required, double Default, ParameterBound Bound, string Meaning, bool IsFile = false)
 {
+    /// <summary>Beyond this an exponent says no more than "a corner", and its powers leave the range of doubles.</summary>
+    public const double LargestExponent = 100;
+
     /// <summary>True when a given value is allowed: finite and within <see cref="Bound"/>.</summary>
     /// <param name="value">SI.</param>
     public bool Allows(double value) => double.IsFinite(value) && Bound switch
     {
         ParameterBound.Positive => value > 0,
         ParameterBound.NonNegative => value >= 0,
-        ParameterBound.AtLeastOne => value >= 1,
+        ParameterBound.AtLeastOne => value is >= 1 and <= LargestExponent,
         _ => true,
     };
 
@@ -28,7 +31,7 @@ public sealed record LawParameter(
     {
         ParameterBound.Positive => "finite and greater than zero",
         ParameterBound.NonNegative => "finite and zero or greater",
-        ParameterBound.AtLeastOne => "finite and one or greater",
+        ParameterBound.AtLeastOne => string.Create(System.Globalization.CultureInfo.InvariantCulture, $"from 1 to {LargestExponent}"),
         _ => "finite",
     };
 }

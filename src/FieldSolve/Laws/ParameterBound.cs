@@ -12,6 +12,6 @@ public enum ParameterBound
     /// <summary>Zero or greater.</summary>
     NonNegative,
 
-    /// <summary>One or greater.</summary>
+    /// <summary>From 1 to <see cref="LawParameter.LargestExponent"/>.</summary>
     AtLeastOne,
 }

@@ -40,6 +40,9 @@ internal static class LevelMeasure
 {
     private const int MostHalvings = 20;
 
+    // Where the split changes the largest reading by more than this, no rate of convergence is reached. On meshes that resolve the sheet it is far below a hundredth.
+    private const double UnresolvedChange = 0.02;
+
     /// <summary>Measures one wiring.</summary>
     /// <param name="meshes">Coarse and fine mesh.</param>
     /// <param name="plan">Wiring and pairs.</param>
@@ -52,6 +55,10 @@ internal static class LevelMeasure
         State weak = State.Weak(meshes, plan);
         GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
             meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
+        double change = weak.Fine.Zip(weak.Coarse, (f, c) => Math.Abs(f - c)).DefaultIfEmpty(0).Max() / weak.Fine.Select(Math.Abs).DefaultIfEmpty(0).Max();
+        GoalError Judged(GoalError error, double value, double difference) =>
+            change > UnresolvedChange ? error.Unresolved(Math.Max(Math.Abs(difference), change * Math.Abs(value))) : error;
+        weakErrors = [.. weakErrors.Select((e, k) => Judged(e, weak.Fine[k], weak.Fine[k] - weak.Coarse[k]))];
         if (meshes.Fine.Equations.Law.IsLinear)
         {
             return [.. weakErrors.Select((e, k) => new GoalMeasure(
@@ -85,7 +92,7 @@ internal static class LevelMeasure
         {
             list.Add(new(
                 plan, k, false, reached, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
-                GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])])
+                Judged(GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])]), plus.Fine[k], plus.Fine[k] - plus.Coarse[k])
                     .Beside(weakErrors[k], reached),
                 weak.Fine[k] - weak.Coarse[k], weakErrors[k], meshes.Exponent));
             if (minus is not null && plan.HasEven[k])
@@ -93,9 +100,11 @@ internal static class LevelMeasure
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;
                 list.Add(new(
                     plan, k, true, reached, fine, fine - coarse,
-                    GoalError.Of(
-                        meshes.Between, evenShares, fine - coarse,
-                        [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])]),
+                    Judged(
+                        GoalError.Of(
+                            meshes.Between, evenShares, fine - coarse,
+                            [(0.5, plus.Residual, plus.Details[k]), (0.5, minus.Residual, minus.Details[k])]),
+                        fine, fine - coarse),
                     0, null, plus.EvenExponent));
             }
         }

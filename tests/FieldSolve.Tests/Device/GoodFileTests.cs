@@ -29,7 +29,7 @@ public class GoodFileTests
             sheet_current_density = "10 A/m"
             power_density = "2 mW/um^2"
             [fit]
-            here = ["too"]
+            a = true
             """);
         Assert.Equal("Disc", d.Title);
         Assert.Equal("disc", d.Shape);
@@ -122,7 +122,7 @@ public class GoodFileTests
             [[wiring]]
             name = "a"
             source = "c1"
-            drain = "i"
+            drain = "c3"
             pairs = { far = ["c2", "c4"] }
             [turn]
             around = "c"

@@ -32,6 +32,35 @@ public class ReadmeTests
     }
 
     [Fact]
+    public void The_law_of_the_readme_stands_there_as_it_is_compiled()
+    {
+        string source = File.ReadAllText(Path.Combine(Repository.Root, "tests", "FieldSolve.Tests", "Documents", "ReadmeLaw.cs"));
+        string example = source.ReplaceLineEndings("\n").Split("// begin\n")[1].Split("// end")[0].Trim();
+        Assert.Contains("ISheetLaw", example, StringComparison.Ordinal);
+        Assert.Contains(example, Readme.ReplaceLineEndings("\n"), StringComparison.Ordinal);
+    }
+
+    // In a bar between full ends the field is the same everywhere: I = w s E (1 + E²/F²), V = E l.
+    [Fact]
+    public void The_law_of_the_readme_is_solved()
+    {
+        const double S = 1e-3, F = 2e3, Field = 3e3, Length = 12e-6, Width = 4e-6;
+        double current = Width * S * Field * (1 + (Field * Field / (F * F)));
+        string text = SmallDevice.Text.Replace("from = \"0 uA\"", FormattableString.Invariant($"from = \"{-current:R} A\""), StringComparison.Ordinal)
+            .Replace("to = \"30 uA\"", FormattableString.Invariant($"to = \"{current:R} A\""), StringComparison.Ordinal);
+
+        // Contacts on the sides would short-circuit a piece of the edge.
+        string[] blocks = text.ReplaceLineEndings("\n").Split("\n\n");
+        string bare = string.Join("\n\n", blocks.Where(b => !b.Contains("\"top 1\"\nedge", StringComparison.Ordinal) && !b.Contains("\"top 2\"\nedge", StringComparison.Ordinal) && !b.Contains("\"bottom 1\"\nedge", StringComparison.Ordinal)))
+            .Replace("along = [\"top 1\", \"top 2\"]\nacross = [\"top 1\", \"bottom 1\"]\n", "along = [\"left\", \"right\"]\n", StringComparison.Ordinal);
+        SheetDevice device = DeviceTests.DeviceTexts.Good(bare) with { Law = new RisingLaw(S, F), Axis = 0.4 };
+        DriveResult result = DriveRun.Execute(device, new DriveOptions { Maps = MapChoice.None, ForPictures = false }, null, CancellationToken.None);
+        Reading along = result.Rows[^1].Of("along")!;
+        Assert.Equal(Field * Length, along.Value, Math.Max(along.Error, 1e-9 * Field * Length));
+        Assert.Equal(RowStatus.Ok, result.Rows[^1].Status);
+    }
+
+    [Fact]
     public void Links_and_the_picture_exist() => Assert.All(
         System.Text.RegularExpressions.Regex.Matches(Readme, @"\]\(([^)#:]+)\)").Select(m => m.Groups[1].Value),
         link => Assert.True(Path.Exists(Path.Combine(Repository.Root, link)), link));

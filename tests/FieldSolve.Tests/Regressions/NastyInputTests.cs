@@ -36,6 +36,52 @@ public sealed class NastyInputTests : IDisposable
         AssertOnly(Outline, 2, 20, "no plain file");
     }
 
+    // Its powers once overflowed into a law without current.
+    [Theory]
+    [InlineData("1e300")]
+    [InlineData("101")]
+    [InlineData("0.5")]
+    public void An_exponent_beyond_any_corner_is_refused(string sharpness) => AssertOnly(
+        DeviceTexts.Disc.Replace("kind = \"ohmic\"", $"kind = \"saturating\"\nfield_a = \"1 kV/m\"\nfield_b = \"1 kV/m\"\nsharpness = {sharpness}", StringComparison.Ordinal), 8, 13, "from 1 to 100");
+
+    // Answered once with error bars a thousand times too small.
+    [Theory]
+    [InlineData("\"4 mS\"", "\"40 S\"", "factor of 4E+04")]
+    [InlineData("\"1 mS\"", "\"1 mS\"\nhall = \"1 S\"", "is 500")]
+    public void A_sheet_that_no_mesh_resolves_is_refused(string old, string text, string fragment) =>
+        AssertOnly(DeviceTexts.Disc.Replace(old, text, StringComparison.Ordinal), 4, 1, fragment);
+
+    // One wild value once sent the search for the guard to a field of zero, and the reader out with an exception.
+    [Fact]
+    public void A_table_with_a_wild_value_is_refused()
+    {
+        string table = File.ReadAllText(Path.Combine(EndToEndTests.Repository.Root, "meshes", "bar-table.csv"));
+        File.WriteAllText(Path.Combine(folder, "law.csv"), table.Replace("3000,-6000,7.52467,-5.94951", "3000,-6000,7.52467,-2147483649", StringComparison.Ordinal));
+        string text = DeviceTexts.Bar.ReplaceLineEndings("\n").Replace("kind = \"ohmic\"\na = \"4 mS\"\nb = \"1 mS\"", "kind = \"table\"\nfile = \"law.csv\"", StringComparison.Ordinal);
+        AssertOnly(text, 3, 1, "not positive definite");
+    }
+
+    // Each is what the parser of TOML says in its own words; all must say what would be right.
+    [Theory]
+    [InlineData("a = 01", "0")]
+    [InlineData("a = 1_", "number")]
+    [InlineData("a = \"\\q\"", "single quotes")]
+    [InlineData("a = \"\\x4\"", "single quotes")]
+    [InlineData("a = 0xG", "quotes")]
+    [InlineData("a = 1.", "quotes")]
+    [InlineData("a = 1e", "quotes")]
+    [InlineData("a = \"\u0007\"", "remove it")]
+    [InlineData("a.", "key = value")]
+    [InlineData("a.b", "key = value")]
+    [InlineData("a = {b", "key = value")]
+    [InlineData("[a].b = 1", "key = value")]
+    public void A_syntax_fault_says_what_would_be_right(string line, string fragment)
+    {
+        Fault fault = DeviceFile.Parse(DeviceTexts.Disc + "\n" + line + "\n", "d.toml", "").Faults[0];
+        Assert.Equal(("d.toml", 27), (fault.File, fault.Line));
+        Assert.Contains(fragment, fault.Message, StringComparison.Ordinal);
+    }
+
     [Fact]
     public void An_empty_outline_file_is_said_to_be_empty()
     {

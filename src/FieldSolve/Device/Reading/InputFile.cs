@@ -33,6 +33,14 @@ internal sealed record InputFile(string Text, bool HasBadBytes, string Sha256, F
                 return Bad(path, $"this is a directory; name {words.Kind} (TOML)");
             }
 
+            // Pipes and devices show no length: opening a pipe may block for ever, and a device may have no end.
+            FileInfo info = new(path);
+            info = info.ResolveLinkTarget(true) as FileInfo ?? info;
+            if (info is { Exists: true, Length: 0 })
+            {
+                return Empty(path, words, " (or no plain file)");
+            }
+
             using FileStream stream = new(path, FileMode.Open, FileAccess.Read, FileShare.ReadWrite);
             if (stream.CanSeek && stream.Length > LargestFile)
             {
@@ -73,7 +81,7 @@ internal sealed record InputFile(string Text, bool HasBadBytes, string Sha256, F
         text = text.StartsWith(ByteOrderMark) ? text[1..] : text;
         if (string.IsNullOrWhiteSpace(text))
         {
-            return Bad(path, $"the file is empty; {words.Least}");
+            return Empty(path, words, "");
         }
 
         return text.Count(c => char.IsControl(c) && c is not ('\n' or '\r' or '\t')) > text.Length / TextPerControl
@@ -90,6 +98,8 @@ internal sealed record InputFile(string Text, bool HasBadBytes, string Sha256, F
 
     private static InputFile TooLarge(string path, InputWords words) => Bad(path, string.Create(
         CultureInfo.InvariantCulture, $"the file is larger than {LargestFile / 1000} kB, which no {words.Kind[2..]} is; {words.Large}"));
+
+    private static InputFile Empty(string path, InputWords words, string orElse) => Bad(path, $"the file is empty{orElse}; {words.Least}");
 
     private static InputFile Bad(string path, string message) => new("", false, "", new Fault(path, 1, 1, message));
 }

@@ -1,3 +1,4 @@
+using System.Globalization;
 using FieldSolve.Laws;
 using FieldSolve.Quantities;
 
@@ -6,6 +7,8 @@ namespace FieldSolve.Device;
 /// <summary>Reads [law].</summary>
 internal static class LawReader
 {
+    private const double LargestAnisotropy = 10_000, LargestHallTangent = 100, Rounding = 1 + 1e-6;
+
     /// <returns>The law, null with faults if it is no good, and the angle from lab x to crystal a in radians.</returns>
     public static (ISheetLaw? Law, double Axis) Read(Section root, FileSource files)
     {
@@ -86,7 +89,8 @@ internal static class LawReader
 
         try
         {
-            return kind.Build(new LawValues(kind, numbers, texts));
+            ISheetLaw law = kind.Build(new LawValues(kind, numbers, texts));
+            return Resolvable(law, section) ? law : null;
         }
         catch (LawException e) when (e.File is not null)
         {
@@ -101,6 +105,30 @@ internal static class LawReader
         }
 
         return null;
+    }
+
+    // Meshes have triangles of good shape; far larger anisotropies and Hall angles squeeze the current into layers that no mesh of bearable size resolves,
+    // and an unresolved answer is wrong by orders of magnitude. Up to these the error bars were seen to hold.
+    private static bool Resolvable(ISheetLaw law, Section section)
+    {
+        Tensor2 t = law.AtZeroField;
+        double mean = (t.Aa + t.Bb) / 2, radius = double.Hypot((t.Aa - t.Bb) / 2, (t.Ab + t.Ba) / 2), hall = Math.Abs(t.Ab - t.Ba) / 2;
+        double ratio = (mean + radius) / Math.Max(double.Epsilon, mean - radius), tangent = hall / Math.Sqrt((mean + radius) * Math.Max(double.Epsilon, mean - radius));
+        if (!(ratio <= LargestAnisotropy * Rounding))
+        {
+            section.Faults.Add(section.At, string.Create(
+                CultureInfo.InvariantCulture, $"[law]: the sheet conductances along its principal axes differ by a factor of {ratio:G3}; no mesh resolves more than {LargestAnisotropy}; check the units of 'a' and 'b'"));
+            return false;
+        }
+
+        if (!(tangent <= LargestHallTangent * Rounding))
+        {
+            section.Faults.Add(section.At, string.Create(
+                CultureInfo.InvariantCulture, $"[law]: the tangent of the Hall angle, hall / sqrt(a b), is {tangent:G3}; no mesh resolves more than {LargestHallTangent}; check the unit of 'hall'"));
+            return false;
+        }
+
+        return true;
     }
 
     private static double? Number(LawParameter p, TomlValue value, FaultList faults)

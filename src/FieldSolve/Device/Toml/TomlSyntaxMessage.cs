@@ -12,7 +12,7 @@ internal static partial class TomlSyntaxMessage
         if (Expecting().Match(message) is { Success: true } m)
         {
             return m.Groups[1].Value == "`<eof>`" || m.Groups[1].Value.Length == 0
-                ? "unexpected end of the line"
+                ? "the line ends too early; a line is a [table], a key = value or a # comment"
                 : $"{Quoted(m.Groups[1].Value)} may not follow here; a line holds one key = value, and {Quotes}";
         }
 
@@ -60,7 +60,25 @@ internal static partial class TomlSyntaxMessage
 
         return Unexpected().Match(message) is { Success: true } u
             ? $"'{u.Groups[1].Value}' is not expected here; a line is a [table], a key = value or a # comment"
-            : TokenNames().Replace(message, "").Replace('`', '\'');
+            : Plain(message) + Remedy(message);
+    }
+
+    // The parser's own words, without the names of its tokens and its full stops.
+    private static string Plain(string message)
+    {
+        string text = TokenNames().Replace(message, "").Replace('`', '\'').Trim().TrimEnd('.');
+        return text.Length == 0 ? "this line cannot be read" : char.ToLowerInvariant(text[0]) + text[1..];
+    }
+
+    private static string Remedy(string message)
+    {
+        bool Says(params string[] words) => words.Any(w => message.Contains(w, StringComparison.OrdinalIgnoreCase));
+        return Says("escape", "Unicode scalar", "surrogate") ? "; write \\\\ for a backslash, or put the text in single quotes"
+            : Says("control character", "\\r not followed") ? "; remove it, or save the file as plain text"
+            : Says("end-of-line found while expecting a value") ? "; write key = value, and " + Quotes
+            : Says("digit", "leading zero", "underscore", "integer", "float", "hexadecimal", "octal", "binary", "date", "prefix")
+                ? "; write a plain number such as 5, -0.2 or 1e-3, and put everything else in quotes, for example \"5 um\""
+            : "; a line is a [table], a key = value or a # comment";
     }
 
     private static string Quoted(string token)

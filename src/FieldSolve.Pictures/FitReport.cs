@@ -19,6 +19,7 @@ public static class FitReport
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(pictures);
         SheetDevice device = result.Device;
+        LiveData data = FitLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "fit", $"Fit of {device.Path} to {result.Measured.Path}, FieldSolve {RunRecord.Version}");
         page.Box("Cautions", "caution", result.Cautions);
@@ -26,13 +27,20 @@ public static class FitReport
         page.Element("h2", "Fitted numbers");
         Numbers(page, result);
         page.Element("p", Words(result));
-        ReportPage.AddPictures(page, pictures);
+        page.Raw("<div class=\"charts\">");
+        data.Charts.ForEach(c => PageShell.Chart(page, c.Id));
+        page.Raw("</div>");
+        ReportPage.AddStill(page, pictures.Where(p => Replaced(p, data)));
+        ReportPage.AddPictures(page, pictures.Where(p => !Replaced(p, data)));
         page.Element("h2", "What the data determine");
         Directions(page, result);
         Next(page, result);
         Formulas(page, result);
-        PageShell.End(page, null, $"SHA-256 of the device file: {device.Sha256}; of the data: {result.Measured.Sha256}", path);
+        PageShell.End(page, data.Charts.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}; of the data: {result.Measured.Sha256}", path);
     }
+
+    // The live charts show the same and more.
+    private static bool Replaced(PictureFile picture, LiveData data) => data.Charts.Any(c => c.Id == picture.Kind);
 
     private static void Numbers(Html page, FitResult result) => page.Table(
         "One standard error each, from the stated sigmas; 95 % intervals by profile likelihood where asked for.",

@@ -75,6 +75,9 @@ internal sealed record LiveView(string Label, string X, string XUnit, string Y, 
     /// </summary>
     public string Kind { get; init; } = "curve";
 
+    /// <summary>What the error bars of curves are, for files.</summary>
+    public string ErrorName { get; init; } = "numerical error";
+
     /// <summary>Names below the bars.</summary>
     public IReadOnlyList<string> Categories { get; init; } = [];
 
@@ -231,6 +234,7 @@ internal sealed class LiveData
             w.WriteString("y", v.Y);
             w.WriteString("yUnit", v.YUnit);
             w.WriteString("kind", v.Kind);
+            w.WriteString("errorName", v.ErrorName);
             w.WriteBoolean("logarithmic", v.Logarithmic);
             Words(w, "categories", v.Categories);
             Array(w, "marks", v.Marks, (w, m) =>

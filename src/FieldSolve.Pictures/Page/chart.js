@@ -290,7 +290,7 @@ class Chart {
     if (view.kind !== 'curve') {
       return barRows(view, this.#shown());
     }
-    return [['curve', `${view.x} (${view.xUnit})`, `${view.y} (${view.yUnit})`, `numerical error (${view.yUnit})`, 'ok'],
+    return [['curve', `${view.x} (${view.xUnit})`, `${view.y} (${view.yUnit})`, `${view.errorName} (${view.yUnit})`, 'ok'],
       ...this.#shown().flatMap(s => s.x.map((x, k) => [s.name, x, s.y[k], s.error[k], s.doubtful[k] ? 'no' : 'yes']))];
   }
 }

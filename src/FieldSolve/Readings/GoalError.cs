@@ -32,13 +32,16 @@ internal sealed class GoalError
 
     private readonly double least;      // least doubt
 
-    private GoalError(double correction, double corrected, double rest, double least, double doubt, double[] perTriangle)
+    private readonly double unresolved; // part of the bar of a mesh on which no rate is reached
+
+    private GoalError(double correction, double corrected, double rest, double least, double doubt, double[] perTriangle, double unresolved = 0)
     {
+        this.unresolved = unresolved;
         this.least = least;
         Correction = correction;
         this.corrected = corrected;
         this.rest = rest;
-        Bar = (doubt * corrected) + rest;
+        Bar = (doubt * corrected) + rest + unresolved;
         PerTriangle = perTriangle;
     }
 
@@ -55,7 +58,7 @@ internal sealed class GoalError
     public GoalError Times(double factor) =>
         new(
             factor * Correction, Math.Abs(factor) * corrected, Math.Abs(factor) * rest, least, least,
-            [.. PerTriangle.Select(e => Math.Abs(factor) * e)]);
+            [.. PerTriangle.Select(e => Math.Abs(factor) * e)], Math.Abs(factor) * unresolved);
 
     /// <summary>
     /// The same with a wider bar where the law bends the solution so much that the mesh lacks something else than it does in the limit of small drive:
@@ -75,7 +78,7 @@ internal sealed class GoalError
     public GoalError Unresolved(double difference)
     {
         double more = Lacking * Math.Abs(difference), wider = Bar > 0 ? (Bar + more) / Bar : 1;
-        return new(Correction, corrected, rest + more, least, least, [.. PerTriangle.Select(e => wider * e)]);
+        return new(Correction, corrected, rest, least, least, [.. PerTriangle.Select(e => wider * e)], more);
     }
 
     /// <summary>The same with a bar that trusts the correction no further than to its sign: for a mesh that nothing can be compared with yet.</summary>
@@ -96,8 +99,8 @@ internal sealed class GoalError
 
     private GoalError With(double doubt, bool forGood = false)
     {
-        double wider = Bar > 0 ? ((doubt * corrected) + rest) / Bar : 1;
-        return new(Correction, corrected, rest, forGood ? doubt : least, doubt, [.. PerTriangle.Select(e => wider * e)]);
+        double wider = Bar > 0 ? ((doubt * corrected) + rest + unresolved) / Bar : 1;
+        return new(Correction, corrected, rest, forGood ? doubt : least, doubt, [.. PerTriangle.Select(e => wider * e)], unresolved);
     }
 
     /// <summary>Collects the contributions.</summary>

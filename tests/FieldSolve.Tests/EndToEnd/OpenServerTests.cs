@@ -142,7 +142,16 @@ public sealed class OpenServerTests : IAsyncLifetime, IDisposable
         }
 
         Assert.Equal(HttpStatusCode.BadRequest, (await Ask("edit", "{")).Status);
-        Assert.Equal(HttpStatusCode.RequestEntityTooLarge, (await Ask("edit", "{\"gesture\":\"" + new string('x', 2 << 20) + "\"}")).Status);
+        try
+        {
+            Assert.Equal(HttpStatusCode.RequestEntityTooLarge, (await Ask("edit", "{\"gesture\":\"" + new string('x', 2 << 20) + "\"}")).Status);
+        }
+        catch (HttpRequestException)
+        {
+            // The server hung up before all of it was sent: refused as well.
+        }
+
+        Assert.Equal(2, session.State.Version);
         Assert.Equal(["device.toml", "secret.txt"], folder.Files);
     }
 

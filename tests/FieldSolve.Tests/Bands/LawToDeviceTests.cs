@@ -5,6 +5,7 @@ using FieldSolve.Laws;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Tests.EndToEndTests;
+using FieldSolve.Turning;
 using static FieldSolve.Tests.BandsTests.BandSamples;
 
 namespace FieldSolve.Tests.BandsTests;
@@ -112,7 +113,7 @@ public class LawToDeviceTests
         DriveResult? steepest = null;
         foreach (double tilt in new[] { 0, 0.25, 0.5 })
         {
-            DriveResult drive = steepest = Drive(Run(Model(Cone(tilt))));
+            DriveResult drive = steepest = Turn(Run(Model(Cone(tilt))));
             Reading along = Across(drive, "0"), between = Across(drive, "45"), across = Across(drive, "90");
             double scale = drive.Rows[0].Of("along")!.Value;
             Assert.InRange(Math.Abs(along.Even!.Value), 0, along.EvenError!.Value + (1e-8 * scale));
@@ -130,7 +131,7 @@ public class LawToDeviceTests
         }
 
         // The crystal turned by a right angle: what was read along 90 degrees is read along 180 (the reversed 0), with its sign.
-        DriveResult plain = steepest!, turned = Drive(Run(Model(Cone(0.5)) with { Axis = Math.PI / 2 }));
+        DriveResult plain = steepest!, turned = Turn(Run(Model(Cone(0.5)) with { Axis = Math.PI / 2 }));
         Reading before = Across(plain, "90"), after = Across(turned, "0");
         Assert.Equal(-before.Even!.Value, after.Even!.Value, before.EvenError!.Value + after.EvenError!.Value);
         Assert.InRange(Math.Abs(Across(turned, "90").Even!.Value), 0, Across(turned, "90").EvenError!.Value + 1e-9);
@@ -143,8 +144,9 @@ public class LawToDeviceTests
         return row.Of("across")!;
     }
 
-    private static DriveResult Drive(BandsResult result) => DriveRun.Execute(
-        Read(result), new DriveOptions { Maps = MapChoice.None, ForPictures = false }, progress: null, CancellationToken.None);
+    // The whole way: bands, law.toml, turn over the file's directions.
+    private static DriveResult Turn(BandsResult result) => TurnRun.Execute(
+        Read(result), new TurnOptions { ForPictures = false }, progress: null, CancellationToken.None).Drive;
 
     private static BandsResult Run(BandModel model) => BandsRun.Execute(
         new BandInput { Title = model.Title, Path = "bands.toml", Sha256 = "0", Axis = model.Axis, Model = model }, CancellationToken.None);

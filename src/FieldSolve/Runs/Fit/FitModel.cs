@@ -133,7 +133,8 @@ internal sealed class FitModel : IFitFunction
         level, u, vectors, [.. problem.Parameters.Where(q => q.Kind.Effect == CauseEffect.Law).Select(q => q.Kind.Key)],
         problem.Parameters.Any(q => q.Kind.Effect == CauseEffect.Motion), cancel);
 
-    /// <summary>Velocities of the mesh under the parameters that move something.</summary>
+    /// <summary>Velocities of the mesh under the parameters that move something; null for the others.</summary>
+    /// <exception cref="FitException">A parameter stands where the sheet changes in more than places, so that there is no derivative.</exception>
     public MotionField?[] Fields(double[] p)
     {
         var fields = new MotionField?[problem.Parameters.Count];
@@ -142,10 +143,11 @@ internal sealed class FitModel : IFitFunction
             CauseKind kind = problem.Parameters[j].Kind;
             if (kind.Effect == CauseEffect.Motion)
             {
-                fields[j] = motion.Velocity(by => DomainAt(p, j, by), kind.LargeChange(problem.DeviceAt(p)));
+                fields[j] = motion.Velocity(by => problem.DomainAt(p, j, by), kind.LargeChange(problem.DeviceAt(p)));
             }
         });
-        return fields;
+        int jump = Enumerable.Range(0, fields.Length).FirstOrDefault(j => fields[j] is null && problem.Parameters[j].Kind.Effect == CauseEffect.Motion, -1);
+        return jump < 0 ? fields : throw problem.Jump(jump, p[jump]);
     }
 
     /// <summary>Derivatives from the sensitivities of a state.</summary>
@@ -162,7 +164,7 @@ internal sealed class FitModel : IFitFunction
                     CauseEffect.Axis => state.ByAxis(k),
                     CauseEffect.Law => state.ByLaw(k, q.Kind.Key),
                     CauseEffect.Resistance => state.ByContact(k, q.Target.Contacts[0]),
-                    _ => fields[j] is { } field ? state.ByMotion(k, field) : 0,
+                    _ => state.ByMotion(k, fields[j]!),
                 };
             }
         }
@@ -171,20 +173,6 @@ internal sealed class FitModel : IFitFunction
     }
 
     private static ParallelOptions Threads(CancellationToken cancel) => new() { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount };
-
-    private Domain? DomainAt(double[] p, int j, double by)
-    {
-        double[] q = [.. p];
-        q[j] += by;
-        try
-        {
-            return problem.DeviceAt(q).Domain;
-        }
-        catch (Exception e) when (e is LayoutException or LawException)
-        {
-            return null;
-        }
-    }
 
     private Trial At(double[] p, CancellationToken cancel)
     {

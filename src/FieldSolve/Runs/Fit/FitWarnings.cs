@@ -28,6 +28,11 @@ internal static class FitWarnings
             list.Add(char.ToUpperInvariant(d.Words[0]) + d.Words[1..] + ".");
         }
 
+        foreach (FittedParameter p in parameters.Where(p => p.NumericalError > p.StandardError))
+        {
+            Say($"The model's numerical errors together may move '{p.Parameter.Label}' by up to {p.NumericalError / p.StandardError!.Value:G2} standard errors; a smaller 'numerical_share' makes them smaller.");
+        }
+
         foreach (FittedParameter p in parameters.Where(p => p.AtBound))
         {
             Say($"'{p.Parameter.Label}' ended at a bound; its standard error says little.");

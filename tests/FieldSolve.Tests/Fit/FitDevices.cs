@@ -72,7 +72,8 @@ internal static class FitDevices
         FittedParameter p = result.Of(key);
         Assert.True(p.Value is not null, key + " is not determined");
         double error = p.StandardError!.Value;
-        Assert.True(Math.Abs(p.Value!.Value - truth) < 3 * error, $"{key}: {p.Value} +- {error}, truth {truth}");
+        string all = string.Join("; ", result.Parameters.Select(q => string.Create(CultureInfo.InvariantCulture, $"{q.Parameter.Key} {q.Value:G6} +- {q.StandardError:G2}, numerical {q.NumericalError:G2}")));
+        Assert.True(Math.Abs(p.Value!.Value - truth) < 3 * error, $"{key}: truth {truth} of {all}");
         Assert.True(error < share * (scale > 0 ? scale : Math.Abs(truth)), $"{key}: {p.Value} +- {error}");
     }
 

@@ -3,6 +3,7 @@ using FieldSolve.Fields;
 using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Meshing;
+using FieldSolve.Readings;
 using FieldSolve.Sensitivity;
 using FieldSolve.Solving;
 using FieldSolve.Sparse;
@@ -148,6 +149,43 @@ internal sealed class FitModel : IFitFunction
         });
         int jump = Enumerable.Range(0, fields.Length).FirstOrDefault(j => fields[j] is null && problem.Parameters[j].Kind.Effect == CauseEffect.Motion, -1);
         return jump < 0 ? fields : throw problem.Jump(jump, p[jump]);
+    }
+
+    /// <summary>
+    /// What the guarded zone of the law does to the data at the largest currents of each circuit: where the law is left, and per datum the influence, V; null for no exit
+    /// and for weaker currents.
+    /// </summary>
+    public (LawExit? Exit, double?[] Influence) Guarded(double[] p, CancellationToken cancel)
+    {
+        Trial trial = At(p, cancel);
+        var influence = new double?[problem.Data.Count];
+        LawExit? worst = null;
+        if (trial.Level.Equations.Law.Guard is null)
+        {
+            return (null, influence);
+        }
+
+        foreach (int[] states in byCircuit)
+        {
+            // The ends of the range of currents: the first and last of either sign.
+            foreach (int s in states.Where(s => states.All(o => Math.Abs(problem.States[o].Current) <= Math.Abs(problem.States[s].Current) * (1 + 1e-9)
+                || (problem.States[o].Current > 0) != (problem.States[s].Current > 0))))
+            {
+                ReadingPlan plan = problem.Plans[problem.States[s].Circuit];
+                StateSensitivity state = Measure(trial.Level, trial.U[s], plan.Vectors(trial.Level), cancel);
+                GuardZone zone = GuardZone.Measure(trial.Level.Equations, trial.U[s], state.Adjoints);
+                worst = zone.Exit is { } exit && !(exit.Field <= worst?.Field) ? exit : worst;
+                for (int i = 0; i < influence.Length && zone.Exit is not null; i++)
+                {
+                    if (problem.Terms[i].FirstOrDefault(t => t.State == s) is { Weight: not 0 } term)
+                    {
+                        influence[i] = (influence[i] ?? 0) + (term.Weight * zone.Share[problem.Reading[i]]);
+                    }
+                }
+            }
+        }
+
+        return (worst, influence);
     }
 
     /// <summary>Derivatives from the sensitivities of a state.</summary>

@@ -38,7 +38,8 @@ internal static class FitWarnings
 
         foreach (FitDirection d in directions.Where(d => !d.Determined))
         {
-            list.Add(char.ToUpperInvariant(d.Words[0]) + d.Words[1..] + ".");
+            // Names of numbers are case-sensitive: the sentence begins as they do.
+            list.Add(d.Words + ".");
         }
 
         foreach (FittedParameter p in parameters.Where(p => p.NumericalError > p.StandardError))

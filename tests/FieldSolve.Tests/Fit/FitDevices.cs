@@ -4,6 +4,7 @@ using FieldSolve.Device;
 using FieldSolve.Laws;
 using FieldSolve.Measured;
 using FieldSolve.Meshing;
+using FieldSolve.Meshing.SizeFields;
 using FieldSolve.Runs;
 using FieldSolve.Solving;
 using FieldSolve.Tests.PublishedTests;
@@ -44,11 +45,12 @@ internal static class FitDevices
 
     public static FittedParameter Of(this FitResult result, string key) => result.Parameters.Single(p => p.Parameter.Key == key);
 
-    /// <summary>The first mesh there is: coarse, but exact for tests of derivatives and statistics.</summary>
-    public static FieldLevel Coarse(FitProblem problem, double[] p)
+    /// <summary>The first mesh there is, or one of a size of triangles: coarse, but good for tests of derivatives and statistics.</summary>
+    public static FieldLevel Coarse(FitProblem problem, double[] p, double size = 0)
     {
         SheetDevice there = problem.DeviceAt(p);
-        return FieldLevel.Build(there, Mesher.Generate(there.Domain, MeshSizes.First(there)), new LabLaw(there.Law, there.Axis), default);
+        ISizeField sizes = size > 0 ? new UniformSize(size) : MeshSizes.First(there);
+        return FieldLevel.Build(there, Mesher.Generate(there.Domain, sizes), new LabLaw(there.Law, there.Axis), default);
     }
 
     /// <summary>

@@ -23,7 +23,7 @@ public static class FitRun
     private const double Settled = 0.05;
 
     // Singular values below so many times the lack of the mesh, in standard deviations of the data, are measured anew on the finer one.
-    private const double ClearOfMesh = 3;
+    private const double ClearOfMesh = 3, LeastClear = 20;
 
     // The axis turns by no more than this in one step, rad: beyond, the tensor is far from linear in it.
     private const double LargestTurn = 0.35;
@@ -237,7 +237,7 @@ public static class FitRun
         // What a mesh lacks changes with the numbers by about its own size for one natural scale: a direction that stands no clearer is looked at on the finer mesh, or the
         // irregular triangles would seem to tell what no reading can.
         double lack = Math.Sqrt(reference.Missing.Select((v, i) => v / task.Sigma[i]).Sum(v => v * v));
-        if (directions.Any(d => d.SingularValue < ClearOfMesh * lack))
+        if (directions.Any(d => d.SingularValue < Math.Max(ClearOfMesh * lack, LeastClear)))
         {
             end = end with { Jacobian = new FitModel(problem, reference.Meshes.Fine, new double[problem.Data.Count]).Jacobian(end.P, cancel) };
             directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);

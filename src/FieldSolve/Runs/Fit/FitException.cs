@@ -19,4 +19,7 @@ public sealed class FitException : Exception
         : base(message, innerException)
     {
     }
+
+    /// <summary>The measured data are at fault, not the device file.</summary>
+    public bool IsOfData { get; init; }
 }

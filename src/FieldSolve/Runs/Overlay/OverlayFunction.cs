@@ -51,8 +51,7 @@ internal sealed class OverlayFunction(ComputedMap map, IReadOnlyList<MapPoint> p
         for (int i = 0; i < points.Count; i++)
         {
             Point2 at = Place(p, points[i]);
-            double gx = p[Gain] * (At(new(at.X + h, at.Y), added) - At(new(at.X - h, at.Y), added)) / (2 * h);
-            double gy = p[Gain] * (At(new(at.X, at.Y + h), added) - At(new(at.X, at.Y - h), added)) / (2 * h);
+            double gx = p[Gain] * Slope(new(at.X + h, at.Y), at, new(at.X - h, at.Y), h, added), gy = p[Gain] * Slope(new(at.X, at.Y + h), at, new(at.X, at.Y - h), h, added);
             double rx = at.X - centre.X - p[ShiftX], ry = at.Y - centre.Y - p[ShiftY];
             jacobian[i, ShiftX] = gx;
             jacobian[i, ShiftY] = gy;
@@ -69,6 +68,15 @@ internal sealed class OverlayFunction(ComputedMap map, IReadOnlyList<MapPoint> p
 
         return jacobian;
     }
+
+    // At the rim one-sided, and none off the sheet: a step from the sheet's value to that of the nearest rim is no slope.
+    private double Slope(Point2 ahead, Point2 here, Point2 behind, double h, double[]? added) => (On(ahead, added), On(here, added), On(behind, added)) switch
+    {
+        ({ } a, _, { } b) => (a - b) / (2 * h),
+        ({ } a, { } m, _) => (a - m) / h,
+        (_, { } m, { } b) => (m - b) / h,
+        _ => 0,
+    };
 
     private void AddPatch(double[] p, double[,] jacobian)
     {
@@ -96,5 +104,7 @@ internal sealed class OverlayFunction(ComputedMap map, IReadOnlyList<MapPoint> p
         return [.. x.Zip(y, (a, b) => (p[MissingX] * a) + (p[MissingY] * b))];
     }
 
-    private double At(Point2 p, double[]? added) => map.Value(p) is { } v ? v + (added is null ? 0 : patch!.Value(added, p)) : map.AtRim(p);
+    private double At(Point2 p, double[]? added) => On(p, added) ?? map.AtRim(p);
+
+    private double? On(Point2 p, double[]? added) => map.Value(p) is { } v ? v + (added is null ? 0 : patch!.Value(added, p)) : null;
 }

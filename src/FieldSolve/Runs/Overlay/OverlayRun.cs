@@ -34,7 +34,12 @@ public static class OverlayRun
     /// <param name="cancel">Stops the run; nothing is returned then.</param>
     /// <exception cref="FitException">There is no such wiring, no current, no solution, or the map does not lie on the sheet.</exception>
     /// <exception cref="OperationCanceledException">Cancelled.</exception>
-    public static OverlayResult Execute(SheetDevice device, MeasuredMap measured, OverlayOptions options, IProgress<RunProgress>? progress, CancellationToken cancel)
+    public static OverlayResult Execute(SheetDevice device, MeasuredMap measured, OverlayOptions options, IProgress<RunProgress>? progress, CancellationToken cancel) =>
+        Registered(device, measured, options, progress, cancel).Result;
+
+    /// <summary>The same, with what was registered.</summary>
+    internal static (OverlayResult Result, Registration Registration, ComputedMap Map) Registered(
+        SheetDevice device, MeasuredMap measured, OverlayOptions options, IProgress<RunProgress>? progress, CancellationToken cancel)
     {
         ArgumentNullException.ThrowIfNull(device);
         ArgumentNullException.ThrowIfNull(measured);
@@ -65,7 +70,7 @@ public static class OverlayRun
         MapPoint[] near = [.. measured.Points.Where(q => Near(q, maps[0].Centre, maps[0].Extent, options))];
         if (near.Length < MapTable.FewestPoints)
         {
-            throw new FitException(string.Create(CultureInfo.InvariantCulture, $"Only {near.Length} points of the map can lie on the sheet; are its units right, and does its origin lie near that of the device file?"));
+            throw new FitException(string.Create(CultureInfo.InvariantCulture, $"Only {near.Length} points of the map can lie on the sheet; are its units right, and does its origin lie near that of the device file?")) { IsOfData = true };
         }
 
         double reference = Math.Max(0.01 * (near.Max(q => q.Value) - near.Min(q => q.Value)), double.Epsilon);
@@ -96,9 +101,9 @@ public static class OverlayRun
             registration = clock.Time("registration", () => Registration.Run(computed, near, options, registration.End.P, cancel));
         }
 
-        return clock.Time("residuals", () => Result(device, drive, measured, near, options, computed, registration, [.. found.Select(f => f.Candidate).OrderBy(c => c.Misfit)]))
-            with
-        { Stages = clock.Times };
+        OverlayResult result = clock.Time(
+            "residuals", () => Result(device, drive, measured, near, options, computed, registration, [.. found.Select(f => f.Candidate).OrderBy(c => c.Misfit)]));
+        return (result with { Stages = clock.Times }, registration, computed);
     }
 
     private static (DriveResult Result, MeshPair Meshes) Driven(SheetDevice device, TriangleMesh? mesh, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
@@ -129,7 +134,7 @@ public static class OverlayRun
         OverlaidPoint[] on = [.. points.Where(p => p.Model is not null)];
         if (on.Length < Math.Max(MapTable.FewestPoints, LeastOverlap * near.Length))
         {
-            throw new FitException(string.Create(CultureInfo.InvariantCulture, $"Only {on.Length} of {near.Length} points of the map end on the sheet; are its units right, and does its origin lie near that of the device file?"));
+            throw new FitException(string.Create(CultureInfo.InvariantCulture, $"Only {on.Length} of {near.Length} points of the map end on the sheet; are its units right, and does its origin lie near that of the device file?")) { IsOfData = true };
         }
 
         double rms = Math.Sqrt(on.Average(p => p.Residual!.Value * p.Residual.Value)), noise = Math.Sqrt(on.Average(p => p.Sigma * p.Sigma));

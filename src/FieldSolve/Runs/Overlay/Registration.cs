@@ -135,7 +135,7 @@ internal sealed class Registration
         On = [.. points.Select(q => function.Map.Value(function.Place(all.P, q)) is not null)];
         double scale = Estimate(all.Values, null);
         Settle(all, scale, cancel);
-        if (IsStructured && options.Patch)
+        if (IsStructured && options.Patch && On.Count(o => o) >= FewestForPatch)
         {
             FindPatch(all, cancel);
         }
@@ -212,6 +212,9 @@ internal sealed class Registration
 
         Settle(best, Estimate(best.Values, null), cancel);
     }
+
+    // Fewer points cannot tell a patch from anything else.
+    private const int FewestForPatch = 100;
 
     // A patch that explains less than this share of the misfit is not called one.
     private const double PatchGain = 0.6;
@@ -314,6 +317,11 @@ internal sealed class Registration
         Rejected = (double)rejected / on.Length;
         Structure = Pattern(on, z);
         IsStructured = Structure > MostPattern || Misfit > MostMisfit;
+        if (!(a.ConditionNumber() < MostCondition))
+        {
+            throw new FitException("The map does not determine the registration: some of shift, turn, gain and offset do the same to it. Hold some of them (--fixed-gain, --fixed-offset, --most-shift 0, --most-turn \"0 deg\"), or map more of the sheet.") { IsOfData = true };
+        }
+
         Matrix<double> inverse = a.Inverse(), spread = inverse * b * inverse;
         Vector<double> moved = inverse * push;
         (Noise, Numerical, Weighting) = (new double[function.Length], new double[function.Length], new double[function.Length]);
@@ -325,6 +333,9 @@ internal sealed class Registration
             Weighting[free[k]] = other is null ? 0 : Math.Abs(other.P[free[k]] - End.P[free[k]]);
         }
     }
+
+    // Of the normal matrix scaled to ones on its diagonal: beyond it rounding makes the errors.
+    private const double MostCondition = 1e12;
 
     // Beyond these the residuals are no noise any more (chance makes the first 1.0 to 1.2).
     private const double MostPattern = 1.4, MostMisfit = 1.5;

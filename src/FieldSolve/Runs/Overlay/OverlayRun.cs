@@ -78,7 +78,7 @@ public static class OverlayRun
         foreach (ComputedMap map in maps)
         {
             progress?.Report(new($"registering on {map.Map.Wiring}", 0, 0));
-            Registration r = clock.Time("registration", () => Registration.Run(map, near, options, null, cancel));
+            Registration r = clock.Time("registration", () => Registration.Run(map, near, options with { Patch = false }, null, cancel));
 
             // Misfits of wirings are compared with one measure: the stated noise, or a hundredth of the range where none is stated.
             double misfit = Registration.Median([.. near.Select((q, i) => Math.Abs(q.Value - r.End.Values[i]) / (q.Sigma ?? reference))]) / Registration.MedianShare;
@@ -88,6 +88,12 @@ public static class OverlayRun
         (OverlayCandidate best, Registration registration) = found.OrderBy(f => f.Candidate.Misfit).First();
         ComputedMap computed = maps.First(m => m.Map.Wiring == best.Wiring);
         Wiring wiring = wirings.First(w => w.Name == best.Wiring);
+        if (registration.IsStructured && options.Patch)
+        {
+            progress?.Report(new("looking for a patch", 0, 0));
+            registration = clock.Time("registration", () => Registration.Run(computed, near, options, registration.End.P, cancel));
+        }
+
         for (int split = 0; split < MostSplits && !IsFine(registration) && 4 * meshes.Fine.Space.Size <= Math.Min(MostUnknowns, device.Mesh.MaxUnknowns); split++)
         {
             progress?.Report(new("splitting the mesh for the map", 0, 0));

@@ -161,7 +161,7 @@ internal sealed class Registration
     {
         int[] on = [.. Enumerable.Range(0, points.Length).Where(i => On[i])];
         Point2[] at = [.. points.Select(q => function.Place(all.P, q))];
-        double area = on.Length > 0 ? function.Map.Extent.X * function.Map.Extent.Y / on.Length : 0;
+        double area = function.Map.Extent.X * function.Map.Extent.Y / on.Length;
         PatchResponse patch = function.Map.Patch(Math.Max(Math.Sqrt(area), LeastPatch * function.Map.Size), cancel);
         double[] total = Total(all.P, 1);
         int stride = (on.Length / MostScreened) + 1;
@@ -223,12 +223,11 @@ internal sealed class Registration
     private const double LeastPatch = 0.025;
     private const int MostPatches = 3, NetPoints = 120;
 
-    private static IEnumerable<Point2> Net(Point2[] at, int[] on)
+    // One point of the map in each box of a net over the sheet.
+    private IEnumerable<Point2> Net(Point2[] at, int[] on)
     {
-        int stride = (on.Length / NetPoints) + 1;
-
-        // A stride that shares no factor with the raster's rows would be better still; half a row of overlap is enough.
-        return on.Where((_, k) => k % stride == 0).Select(i => at[i]);
+        double box = Math.Sqrt(function.Map.Extent.X * function.Map.Extent.Y / NetPoints);
+        return on.Select(i => at[i]).GroupBy(p => (Math.Floor(p.X / box), Math.Floor(p.Y / box))).Select(g => g.First());
     }
 
     // Points that play no part keep this many times their sigma.
@@ -292,7 +291,7 @@ internal sealed class Registration
         Free = [.. task.Held.Select(h => !h)];
         int[] free = [.. Enumerable.Range(0, function.Length).Where(k => Free[k])], on = [.. Enumerable.Range(0, points.Length).Where(i => On[i])];
         int rejected = 0;
-        double[] norm = [.. free.Select(k => Math.Sqrt(on.Sum(i => Math.Pow(End.Jacobian[i, k] / total[i], 2))))];
+        double[] norm = [.. free.Select(k => Math.Max(Math.Sqrt(on.Sum(i => Math.Pow(End.Jacobian[i, k] / total[i], 2))), double.Epsilon))];
         double[] z = [.. points.Select((q, i) => (q.Value - End.Values[i]) / total[i])];
         var a = new DenseMatrix(free.Length, free.Length);
         var b = new DenseMatrix(free.Length, free.Length);

@@ -342,6 +342,7 @@ class Comparison {
     r.textContent = reading(this.difference[point], spec.unit, 4);
     readout.replaceChildren(
       item('point at', `(${fixed(this.x[point] * f)}, ${fixed(this.y[point] * f)}) ${unit.unit}`), item('measured', m.textContent), item('computed', c.textContent), item('residual', r.textContent),
+      ...(spec.hasPatch ? [item('beside the patch', reading(this.difference[point] - this.patch[point], spec.unit, 4))] : []),
       item('in standard deviations', number(this.difference[point] / this.sigma[point], 3)), item('weight', number(this.weight[point], 3)), item('line', String(this.spec.lines[point])));
   }
 

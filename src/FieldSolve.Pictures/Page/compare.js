@@ -288,7 +288,7 @@ class Comparison {
     // Said aloud only when the keys move the point: a mouse would chatter.
     this.readout.setAttribute('aria-live', aloud ? 'polite' : 'off');
     this.#write();
-    (this.mark ??= perFrame(() => this.#marks()))();
+    this.#marks();
   }
 
   /** Keys on any of the three. */

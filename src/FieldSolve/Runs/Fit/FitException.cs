@@ -35,4 +35,7 @@ public sealed class FitException : Exception
 
     /// <summary>Column, 1-based.</summary>
     public int Column { get; } = 1;
+
+    /// <summary>The measured data are at fault, not the device file.</summary>
+    public bool IsOfData { get; init; }
 }

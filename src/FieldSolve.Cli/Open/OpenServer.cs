@@ -34,7 +34,7 @@ internal sealed class OpenServer : IAsyncDisposable
         hub = new(options.Grace, () => ended.TrySetResult());
         hub.Tell(session.State);
         session.Changed += (_, _) => hub.Tell(session.State);
-        answers = new(session, () => hub.LookedAt, hub.Tell);
+        answers = new(session, () => hub.LookedAt, Tell);
         disk = new(_ => session.CheckDisk(), null, options.DiskCheck, options.DiskCheck);
     }
 
@@ -83,6 +83,16 @@ internal sealed class OpenServer : IAsyncDisposable
         await app.DisposeAsync();
         hub.Dispose();
         stop.Dispose();
+    }
+
+    private void Tell(LayoutAnswer answer)
+    {
+        hub.Tell(answer);
+        if (answer.Drive is not null)
+        {
+            // A page stays open for hours and mostly rests; what the solves needed goes back to the machine.
+            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
+        }
     }
 
     private async Task Answer(HttpContext context)

@@ -9,9 +9,9 @@ namespace FieldSolve.Sensitivity;
 /// </summary>
 public sealed class MeshMover
 {
-    // A moved triangle may lose this share of its shape measure 4 sqrt(3) area / (sum of squared edges) before a new mesh is asked for.
-    private const double KeptShape = 0.6;
+    private const double UsualShape = 0.6;
 
+    private readonly double keptShape;
     private readonly Extension extension;
     private readonly bool[] isGiven;
     private readonly double[] shape;
@@ -19,8 +19,17 @@ public sealed class MeshMover
     /// <summary>Prepares a mesh.</summary>
     /// <param name="mesh">The reference.</param>
     public MeshMover(TriangleMesh mesh)
+        : this(mesh, UsualShape)
+    {
+    }
+
+    /// <summary>Prepares a mesh whose errors will be measured anew wherever it is moved to, so that more may be asked of its triangles.</summary>
+    /// <param name="mesh">The reference.</param>
+    /// <param name="keptShape">What each triangle must keep of its shape measure 4 sqrt(3) area / (sum of squared edges) before a new mesh is asked for.</param>
+    internal MeshMover(TriangleMesh mesh, double keptShape)
     {
         ArgumentNullException.ThrowIfNull(mesh);
+        this.keptShape = keptShape;
         Mesh = mesh;
         isGiven = new bool[mesh.VertexCount];
         Array.Fill(isGiven, true, 0, mesh.Domain.Vertices.Count);
@@ -77,7 +86,7 @@ public sealed class MeshMover
         for (int t = 0; t < shape.Length; t++)
         {
             double now = Shape(Mesh.Corners, x, y, t) / shape[t];
-            if (!(now >= KeptShape))
+            if (!(now >= keptShape))
             {
                 return null;
             }

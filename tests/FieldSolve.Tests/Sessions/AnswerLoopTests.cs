@@ -116,7 +116,7 @@ public sealed class AnswerLoopTests : IDisposable
         foreach (string pair in new[] { "along", "across" })
         {
             Reading now = after.Of(pair)!, before = start.Of(pair)!;
-            double change = curves.Number(row, $"v_{pair}_V") - before.Value, bars = now.Error + curves.Number(row, $"err_{pair}_V");
+            double change = curves.Number(row, $"v_{pair}_V") - before.Value, bars = now.Error + curves.Number(row, $"v_{pair}_err_V");
             Assert.Equal(change, now.Value - before.Value, bars);
             Assert.True(Math.Abs(change) > 4 * bars, $"{pair} changed by {change} with bars of {bars}");
         }

@@ -60,8 +60,8 @@ internal static class LayoutPageTimes
                         await page.EvaluateAsync("watched.coarse.length = watched.accurate.length = 0");
                     }
 
-                    // There and back by some pixels; every tenth move the hand rests.
-                    await page.Mouse.MoveAsync(x + (float)(12 * Math.Sin(0.35 * k)), y);
+                    // To another of seven places, three pixels apart; every tenth move the hand rests.
+                    await page.Mouse.MoveAsync(x + (3 * (k * 5 % 7)) - 9, y);
                     await page.WaitForFunctionAsync("() => watched.kinds.has('coarse') || watched.kinds.has('accurate')");
                     if (k % EachRest == 0)
                     {

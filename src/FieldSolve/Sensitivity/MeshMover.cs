@@ -9,9 +9,9 @@ namespace FieldSolve.Sensitivity;
 /// </summary>
 public sealed class MeshMover
 {
-    private const double UsualShape = 0.6;
+    // A moved triangle may lose this share of its shape measure 4 sqrt(3) area / (sum of squared edges) before a new mesh is asked for.
+    private const double KeptShape = 0.6;
 
-    private readonly double keptShape;
     private readonly Extension extension;
     private readonly bool[] isGiven;
     private readonly double[] shape;
@@ -19,17 +19,8 @@ public sealed class MeshMover
     /// <summary>Prepares a mesh.</summary>
     /// <param name="mesh">The reference.</param>
     public MeshMover(TriangleMesh mesh)
-        : this(mesh, UsualShape)
-    {
-    }
-
-    /// <summary>Prepares a mesh whose errors will be measured anew wherever it is moved to, so that more may be asked of its triangles.</summary>
-    /// <param name="mesh">The reference.</param>
-    /// <param name="keptShape">What each triangle must keep of its shape measure 4 sqrt(3) area / (sum of squared edges) before a new mesh is asked for.</param>
-    internal MeshMover(TriangleMesh mesh, double keptShape)
     {
         ArgumentNullException.ThrowIfNull(mesh);
-        this.keptShape = keptShape;
         Mesh = mesh;
         isGiven = new bool[mesh.VertexCount];
         Array.Fill(isGiven, true, 0, mesh.Domain.Vertices.Count);
@@ -62,7 +53,7 @@ public sealed class MeshMover
     /// <summary>The same, and how well the shapes were kept.</summary>
     /// <param name="to">The moved domain.</param>
     /// <param name="kept">Least ratio of a triangle's shape measure to the one it had; 0 without a mesh.</param>
-    public TriangleMesh? Move(Domain to, out double kept)
+    internal TriangleMesh? Move(Domain to, out double kept)
     {
         ArgumentNullException.ThrowIfNull(to);
         kept = 0;
@@ -86,7 +77,7 @@ public sealed class MeshMover
         for (int t = 0; t < shape.Length; t++)
         {
             double now = Shape(Mesh.Corners, x, y, t) / shape[t];
-            if (!(now >= keptShape))
+            if (!(now >= KeptShape))
             {
                 return null;
             }

@@ -20,9 +20,6 @@ internal sealed class AccurateAnswer
     // Where the sheet's own tensor is changed by more than this share, nothing of the last drive is trusted.
     private const double SameLaw = 0.2;
 
-    // Errors are measured wherever the mesh is moved to, so its triangles may be bent far.
-    private const double KeptShape = 0.3;
-
     private MeshRefinement? last;
     private MeshMover? mover;
     private Tensor2 tensor;
@@ -55,7 +52,7 @@ internal sealed class AccurateAnswer
     }
 
     /// <summary>Prepares the mesh of the last drive for moves, while nobody waits.</summary>
-    public void Prepare() => mover ??= last is null ? null : new MeshMover(last.Meshes.Coarse.Space.Mesh, KeptShape);
+    public void Prepare() => mover ??= last is null ? null : new MeshMover(last.Meshes.Coarse.Space.Mesh);
 
     /// <summary>The wirings on show, on the mesh of the last drive; null when that does not serve or the wanted errors are missed there.</summary>
     /// <param name="device">With a drive.</param>

@@ -28,7 +28,6 @@ internal sealed class QuickAnswer
 
     // A mesh whose triangles have lost more of their shape than this is made anew when there is time.
     private const double WellKept = 0.8;
-    private const double KeptShape = 0.4;
 
     private readonly Dictionary<(int Source, int Drain, int Sign), FollowedState> states = [];
     private MeshMover? mover;
@@ -153,7 +152,7 @@ internal sealed class QuickAnswer
         Forget();
         TriangleMesh mesh = Mesher.Generate(device.Domain, new StretchedSize(MeshSizes.First(device), Stretch), null, cancel);
         MeshPair made = MeshPair.Build(device, mesh, law, cancel);
-        (mover, before, kept) = (new MeshMover(mesh, KeptShape), made, 1);
+        (mover, before, kept) = (new MeshMover(mesh), made, 1);
         return made;
     }
 }

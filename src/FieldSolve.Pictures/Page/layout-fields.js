@@ -43,8 +43,13 @@ class LayoutFields {
     return [null, false];
   }
 
-  show(state, selected, wiring) {
-    const [table, ring] = LayoutFields.tableOf(state, selected), wanted = [];
+  /** @param corner { loop, k } of the outline, or null. */
+  show(state, selected, wiring, corner = null) {
+    const [table, ring] = LayoutFields.tableOf(state, selected), wanted = [], loop = corner && state.outline?.loops[corner.loop];
+    if (loop) {
+      const count = loop.points.length / 2;
+      wanted.push([`corner ${loop.paths[corner.k] ?? ''}`, `Corner ${corner.k + 1} of ${count}${corner.loop ? `, hole ${corner.loop}` : ''}`, false, corner]);
+    }
     if (table) {
       wanted.push([table, ring ? `Ring of contacts with ${selected}` : selected, ring]);
     }
@@ -55,14 +60,18 @@ class LayoutFields {
     for (const t of ['drive', 'law', 'sheet', 'mesh']) {
       wanted.push([t, TABLE_NAMES[t], false]);
     }
-    const lists = wanted.map(([t, title, isRing]) => ({ table: t, title, isRing, values: state.values.filter(v => v.path.startsWith(t + '.') && ['text', 'number', 'flag'].includes(v.kind)) }));
-    const shape = JSON.stringify([lists.map(l => [l.table, l.title, l.values.map(v => v.path)]), state.contacts.map(c => c.name), state.values.find(v => v.path === 'law.kind')?.value]);
+    const lists = wanted.map(([t, title, isRing, at]) => {
+      // The corners of an outline have fields of their own, one corner at a time.
+      const own = at ? loop.paths[at.k] : null, inside = at ? v => own !== null && v.path.startsWith(own + '[') : v => v.path.startsWith(t + '.') && !/^sheet\.outline\.(corners|holes)/.test(v.path);
+      return { table: t, title, isRing, corner: at, values: state.values.filter(v => ['text', 'number', 'flag'].includes(v.kind) && inside(v)) };
+    });
+    const shape = JSON.stringify([lists.map(l => [l.table, l.title, l.values.map(v => v.path), state.outline?.file]), state.contacts.map(c => c.name), state.values.find(v => v.path === 'law.kind')?.value]);
     this.state = state;
     if (shape !== this.shape) {
       this.shape = shape;
       const open = new Map([...this.host.querySelectorAll('details')].map(d => [d.dataset.table.replace(/\[\d+\]$/, ''), d.open])), focus = document.activeElement?.dataset?.path;
       this.rows.clear();
-      this.host.replaceChildren(...lists.map(l => this.#section(l, open.get(l.table.replace(/\[\d+\]$/, '')))));
+      this.host.replaceChildren(...lists.map(l => this.#section(l, open.get(l.corner ? 'corner' : l.table.replace(/\[\d+\]$/, '')))));
       if (focus) {
         this.rows.get(focus)?.input.focus();
       }
@@ -105,8 +114,17 @@ class LayoutFields {
     row.input.removeAttribute('aria-invalid');
   }
 
-  #section({ table, title, isRing, values }, open) {
-    const body = html('div', { class: 'fields' }), box = html('details', { 'data-table': table, open: open ?? /^(contact|point|drive|law|wiring)/.test(table) }, html('summary', null, title), body);
+  #section({ table, title, isRing, values, corner }, open) {
+    const body = html('div', { class: 'fields' }), box = html('details', { 'data-table': corner ? 'corner' : table, open: open ?? /^(corner|contact|point|drive|law|wiring)/.test(table) }, html('summary', null, title), body);
+    if (corner) {
+      for (const v of values) {
+        body.append(this.#row(v, /\[0\]$/.test(v.path) ? 'x' : 'y'));
+      }
+      if (!values.length) {
+        body.append(html('p', { class: 'note-line' }, `The corners stand in ${this.state.outline.file}. When one is changed they are written into the device file, and that file stays as it is.`), html('button', { type: 'button', class: 'small', 'data-do': 'outline-own', onclick: () => this.act.ops([{ op: 'outline-own' }]) }, 'Write them into the device file'));
+      }
+      return box;
+    }
     for (const v of values) {
       if (!(isRing && v.path.endsWith('.prefix')) && !v.path.endsWith('.file')) {
         body.append(this.#row(v, v.path.slice(table.length + 1)));
@@ -131,7 +149,7 @@ class LayoutFields {
   }
 
   #row(v, rest) {
-    const table = v.path.slice(0, v.path.length - rest.length - 1), options = this.#options(table, rest), label = html('span', { class: 'field-label' }, fieldLabel(rest)), message = html('span', { class: 'field-message', role: 'alert', hidden: true });
+    const table = v.path.slice(0, Math.max(0, v.path.length - rest.length - 1)), options = this.#options(table, rest), label = html('span', { class: 'field-label' }, fieldLabel(rest)), message = html('span', { class: 'field-message', role: 'alert', hidden: true });
     const row = { path: v.path, message, shown: v.value };
     const send = (value, gesture) => {
       this.#clear(row);

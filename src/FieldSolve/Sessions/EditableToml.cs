@@ -189,6 +189,50 @@ public sealed class EditableToml
         return new(Text[..LineStart(piece.KeyStart)] + Text[AfterLine(LineEnd(piece.End))..]);
     }
 
+    /// <summary>The text with an item put before one of a list.</summary>
+    /// <param name="path">Path of the item that it goes before.</param>
+    /// <param name="literal">TOML.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml ItemBefore(string path, string literal)
+    {
+        TomlPiece piece = Item(path);
+        return new(Text[..piece.Start] + literal + ", " + Text[piece.Start..]);
+    }
+
+    /// <summary>The text with an item put behind one of a list.</summary>
+    /// <param name="path">Path of the item that it goes behind.</param>
+    /// <param name="literal">TOML.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml ItemAfter(string path, string literal)
+    {
+        TomlPiece piece = Item(path);
+        return new(Text[..piece.End] + ", " + literal + Text[piece.End..]);
+    }
+
+    /// <summary>The text without an item of a list; its comma goes along.</summary>
+    /// <param name="path">Path of the item.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml WithoutItem(string path)
+    {
+        TomlPiece piece = Item(path);
+        int open = path.LastIndexOf('['), k = int.Parse(path[(open + 1)..^1], CultureInfo.InvariantCulture);
+        if (Find(string.Create(CultureInfo.InvariantCulture, $"{path[..open]}[{k + 1}]")) is not null)
+        {
+            int end = Text.IndexOf(',', piece.End) + 1;
+            while (end < Text.Length && Text[end] is ' ' or '\t')
+            {
+                end++;
+            }
+
+            return new(Text[..piece.Start] + Text[end..]);
+        }
+
+        int start = k > 0 ? Item(string.Create(CultureInfo.InvariantCulture, $"{path[..open]}[{k - 1}]")).End : piece.Start;
+        return new(Text[..start] + Text[piece.End..]);
+    }
+
+    private TomlPiece Item(string path) => path.EndsWith(']') && Find(path) is { } piece ? piece : throw new LayoutEditException($"the device file has no item '{path}'");
+
     /// <summary>The text with a table added.</summary>
     /// <param name="table">Header and keys, lines parted by \n.</param>
     /// <param name="after">Path of the table it follows; null for the end of the text.</param>

@@ -31,12 +31,12 @@ internal sealed record EditRequest(string? Gesture, IReadOnlyList<EditOp>? Ops)
 }
 
 /// <summary>One step of a change.</summary>
-/// <param name="Op">"set", "remove", "move", "own", "drop", "add", "corner-move", "corner-add", "corner-drop", "outline-own", "trace-use".</param>
-/// <param name="Path">Of a value: "set" and "remove".</param>
+/// <param name="Op">"set", "remove", "move", "own", "drop", "add", "pair", "corner-move", "corner-add", "corner-drop", "outline-own", "trace-use".</param>
+/// <param name="Path">Of a value: "set" and "remove"; of a wiring: "pair".</param>
 /// <param name="Value">For "set": what was typed.</param>
 /// <param name="Plain">For "set" of a new key: a number or a flag, without quotes.</param>
 /// <param name="Name">Of a contact or tip: "move", "own" and "drop"; of a file: "trace-use".</param>
-/// <param name="Kind">For "add": "edge", "pad", "point" or "wiring".</param>
+/// <param name="Kind">For "add": "edge", "pad", "point" or "wiring"; for "pair": "along", "across" or "pairs".</param>
 /// <param name="X">Metres.</param>
 /// <param name="Y">Metres.</param>
 /// <param name="Loop">Of the outline: 0 is the rim, others are holes.</param>
@@ -52,6 +52,7 @@ internal sealed partial record EditOp(string? Op, string? Path, string? Value, b
         "own" when Name is not null => LayoutEdit.OwnBlock(text, Name).Text,
         "drop" when Name is not null => LayoutParts.Drop(text, device, Name),
         "add" when Kind is not null && double.IsFinite(X) && double.IsFinite(Y) => LayoutParts.Add(text, device, Kind, new Point2(X, Y)),
+        "pair" when Path is not null && Kind is not null => LayoutParts.AddPair(text, device, Path, Kind),
         "corner-move" when double.IsFinite(X) && double.IsFinite(Y) => LayoutOutline.Move(text, device, Loop, Corner, new Point2(X, Y)),
         "corner-add" when double.IsFinite(X) && double.IsFinite(Y) => LayoutOutline.Add(text, device, Loop, Corner, new Point2(X, Y)),
         "corner-drop" => LayoutOutline.Drop(text, device, Loop, Corner),

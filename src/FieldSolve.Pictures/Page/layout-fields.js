@@ -207,27 +207,35 @@ class LayoutFields {
     this.act.ops(ops);
   }
 
+  // Keys that may come in addition, and those that may go.
   #adder(table, present) {
     const { state } = this, law = state.laws.find(l => l.name === state.byPath.get('law.kind')?.value), isEdge = present.some(k => k.startsWith('edge'));
     const keys = table === 'law' ? [{ key: 'axis', example: '0 deg' }, ...(law?.keys ?? [])]
       : table.startsWith('contacts[') ? [{ key: 'first', example: '0 deg' }, { key: 'resistance', example: '100 ohm um' }, { key: 'shift', example: '0 nm' }]
       : table.startsWith('contact[') ? isEdge ? [{ key: 'resistance', example: '100 ohm um' }, { key: 'shift', example: '0 nm' }] : [{ key: 'resistivity', example: '1e-7 ohm cm^2' }]
+      : table.startsWith('wiring[') ? [{ key: 'along', pair: true, meaning: 'the pair along the current' }, { key: 'across', pair: true, meaning: 'the pair across the current' }, { key: 'pairs', pair: true, meaning: 'one more pair' }]
       : table === 'drive' ? [{ key: 'both_signs', example: 'true', plain: true }]
       : table === 'mesh' ? [{ key: 'error', example: '1e-4', plain: true }, { key: 'even_error', example: '1e-3', plain: true }, { key: 'max_unknowns', example: '400000', plain: true }]
       : table === 'sheet' ? [{ key: 'dead_edge', example: '0 nm' }, { key: 'thickness', example: '10 nm' }, { key: 'mean_free_path', example: '100 nm' }] : [];
-    const open = keys.filter(k => !present.includes(k.key));
-    if (!open.length) {
+    const has = key => present.some(k => k === key || k.startsWith(`${key}[`)), extra = [...new Set(present.map(k => /^(pairs\..+)\[\d\]$/.exec(k)?.[1]).filter(k => k))];
+    const open = keys.filter(k => !has(k.key)), gone = [...keys.filter(k => has(k.key) && !k.required).map(k => k.key), ...extra];
+    if (!open.length && !gone.length) {
       return null;
     }
     const select = html('select', {
-      'aria-label': `Add a value to ${table}`, onchange: () => {
-        const key = open.find(k => k.key === select.value);
+      'aria-label': `Add or remove values of ${table}`, onchange: () => {
+        const [what, name] = [select.value.slice(0, 1), select.value.slice(1)], key = open.find(k => k.key === name);
         select.value = '';
-        if (key) {
-          this.act.ops([{ op: 'set', path: `${table}.${key.key}`, value: key.example, plain: key.plain ?? false }]);
+        if (what === '-') {
+          this.act.ops([{ op: 'remove', path: `${table}.${name}` }]);
+        } else if (key) {
+          this.act.ops([key.pair ? { op: 'pair', path: table, kind: key.key } : { op: 'set', path: `${table}.${key.key}`, value: key.example, plain: key.plain ?? false }]);
         }
       },
-    }, html('option', { value: '' }, 'Add …'), ...open.map(k => html('option', { value: k.key }, k.meaning ? `${k.key}: ${k.meaning}` : k.key)));
+    }, html('option', { value: '' }, open.length ? gone.length ? 'Add or remove …' : 'Add …' : 'Remove …'));
+    const group = (label, options) => options.length && select.append(html('optgroup', { label }, ...options));
+    group('Add', open.map(k => html('option', { value: `+${k.key}` }, k.meaning ? `${k.key}: ${k.meaning}` : k.key)));
+    group('Remove', gone.map(k => html('option', { value: `-${k}` }, k.replace(/^pairs\./, 'pair '))));
     return html('div', { class: 'adder' }, select);
   }
 }

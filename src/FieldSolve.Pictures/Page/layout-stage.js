@@ -144,11 +144,11 @@ class LayoutStage extends Plane {
     const roles = state.wirings[this.wiring]?.roles ?? [];
     state.contacts.forEach((c, k) => {
       const { role, words } = roleOf(roles[k]);
-      nodes.push(this.#part(c, role, words));
-      names.append(this.#name(c, role, words));
+      nodes.push(partNode(this, c, role, words, (e, contact) => this.#key(e, contact)));
+      names.append(nameNode(this, c, role, words));
     });
     if (this.tool === 'corner' && state.outline) {
-      state.outline.loops.forEach((l, loop) => nodes.push(...this.#corners(l.points, loop)));
+      state.outline.loops.forEach((l, loop) => nodes.push(...cornerNodes(this, l.points, loop, (e, at, k) => this.#cornerKey(e, at, k))));
     }
     inside.replaceChildren(...nodes, names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross());
     if (focus) {
@@ -157,69 +157,6 @@ class LayoutStage extends Plane {
     }
     this.axes.replaceChildren(...this.axisNodes());
     this.#drawDial(right);
-  }
-
-  // One contact, pad or tip.
-  #part(c, role, words) {
-    const chosen = c.name === this.selected, mark = this.marks?.get(c.name), [u, v] = this.toScreen(...c.middle);
-    const group = svg('g', {
-      class: `part ${chosen ? 'chosen' : ''}`, 'data-contact': c.name, tabindex: this.tool === 'move' ? 0 : -1, role: 'button', 'aria-pressed': String(chosen),
-      'aria-label': `${{ edge: 'Contact', pad: 'Pad', tip: 'Tip' }[c.kind]} ${c.name}${words ? `, ${words.spoken}` : ''}; x ${number(c.middle[0] * this.unit.factor, 4)}, y ${number(c.middle[1] * this.unit.factor, 4)} ${this.unit.unit}. Arrow keys move it.${mark ? ` Misplaced it changes V_across by ${mark.text}.` : ''}`,
-      onkeydown: e => this.#key(e, c), onfocus: () => this.act.select(c.name),
-    });
-    if (c.kind === 'tip') {
-      group.append(svg('circle', { class: 'grip', cx: u.toFixed(1), cy: v.toFixed(1), r: 13 }), svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: chosen ? 6 : 4.5 }));
-      return group;
-    }
-    const d = this.pathOf(c.points, c.kind === 'pad'), wide = mark ? 8 : c.kind === 'pad' ? 2 : role ? 7 : 5;
-    group.append(svg('path', { class: 'grip', d, 'stroke-width': 22 }));
-    if (chosen) {
-      group.append(svg('path', { class: 'chosen-line', d, 'stroke-width': wide + 9 }));
-    }
-    if (mark) {
-      group.append(svg('path', { class: 'sensed-edge', 'stroke-width': wide + 3, d }), svg('path', { class: 'sensed', stroke: rgbText(RAMPS.ember, mark.share), fill: c.kind === 'pad' ? rgbText(RAMPS.ember, mark.share) : 'none', 'fill-opacity': 0.55, 'stroke-width': wide, d }));
-    } else {
-      group.append(svg('path', { class: 'halo', 'stroke-width': wide + 2.5, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': wide, d }));
-    }
-    return group;
-  }
-
-  // Names stand outside: those of edges and pads away from the middle of the sheet, those of tips above them.
-  #name(c, role, words) {
-    const [u, v] = this.toScreen(...c.middle), [mu, mv] = this.toScreen(this.extent.cx, this.extent.cy), far = Math.hypot(u - mu, v - mv) || 1, text = c.name + (words ? ` ${words.short}` : '');
-    let du = (u - mu) / far, dv = (v - mv) / far, x = u + 15 * du, y = v + 18 * dv + 4;
-    if (c.kind === 'tip') {
-      [du, x, y] = [0, u, v - 10];
-    } else if (c.kind === 'pad') {
-      // Beyond its outermost corner, up or down, unless the name fits into it.
-      const at = [];
-      for (let i = 0; i < c.points.length; i += 2) {
-        at.push(this.toScreen(c.points[i], c.points[i + 1]));
-      }
-      const low = Math.max(...at.map(p => p[1])), high = Math.min(...at.map(p => p[1])), wide = Math.max(...at.map(p => p[0])) - Math.min(...at.map(p => p[0]));
-      [du, x] = [0, u];
-      y = wide > 8 * text.length + 8 && low - high > 20 ? v + 4 : dv > 0 ? low + 15 : high - 6;
-    }
-    x = Math.max(this.margin.left + 4, Math.min(this.margin.left + this.inner.width - 4, x));
-    y = Math.max(this.margin.top + 12, Math.min(this.margin.top + this.inner.height - 4, y));
-    return svg('text', { class: `tag ${role}`, x: x.toFixed(1), y: y.toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle' }, text);
-  }
-
-  // Corners of the outline, and between them the places where one can be added.
-  #corners(points, loop) {
-    const n = points.length / 2, nodes = [];
-    for (let k = 0; k < n; k++) {
-      const j = (k + 1) % n, [u, v] = this.toScreen(points[2 * k], points[2 * k + 1]), [u1, v1] = this.toScreen(points[2 * j], points[2 * j + 1]), picked = this.picked?.loop === loop && this.picked.k === k;
-      if (Math.hypot(u1 - u, v1 - v) > 26) {
-        nodes.push(svg('circle', { class: 'mid', cx: ((u + u1) / 2).toFixed(1), cy: ((v + v1) / 2).toFixed(1), r: 4.5, 'data-mid': `${loop}:${k}` }, svg('title', null, 'Drag to add a corner')));
-      }
-      nodes.push(svg('rect', {
-        class: `corner ${picked ? 'picked' : ''}`, x: (u - 5).toFixed(1), y: (v - 5).toFixed(1), width: 10, height: 10, 'data-corner': `${loop}:${k}`, tabindex: 0, role: 'button',
-        'aria-label': `Corner ${k + 1} of ${loop ? `hole ${loop}` : 'the outline'}; x ${number(points[2 * k] * this.unit.factor, 4)}, y ${number(points[2 * k + 1] * this.unit.factor, 4)} ${this.unit.unit}. Arrow keys move it, Insert adds one behind it, Delete removes it.`,
-        onkeydown: e => this.#cornerKey(e, loop, k), onfocus: () => { if (!this.picked || this.picked.loop !== loop || this.picked.k !== k) { this.picked = { loop, k }; this.act.pickCorner(loop, k); this.draw(); } },
-      }));
-    }
-    return nodes;
   }
 
   // Where the keys would place something.
@@ -251,7 +188,7 @@ class LayoutStage extends Plane {
       svg('circle', { class: 'dial-face', cx, cy, r: r + 10 }),
       svg('path', { class: 'ink', fill: 'none', 'stroke-width': 2.2, d: `M${at(-r, 0)}L${at(r, 0)}` }), svg('path', { class: 'ink', fill: 'none', 'stroke-width': 1.4, 'stroke-dasharray': '4 3', d: `M${at(0, -r * 0.7)}L${at(0, r * 0.7)}` }),
       svg('text', { x: (cx + 0.55 * r * c - 11 * s).toFixed(1), y: (cy - 0.55 * r * s - 11 * c + 4).toFixed(1), 'text-anchor': 'middle' }, 'a'), svg('text', { x: (cx - 0.5 * r * s - 11 * c).toFixed(1), y: (cy - 0.5 * r * c + 11 * s + 4).toFixed(1), 'text-anchor': 'middle' }, 'b'),
-      svg('text', { x: cx, y: cy + r + 26, 'text-anchor': 'middle' }, `axis ${number(this.state.axis, 5)}°`), handle);
+      svg('text', { class: 'tag', x: cx, y: cy + r + 26, 'text-anchor': 'middle' }, `axis ${number(this.state.axis, 5)}°`), handle);
     if (held) {
       handle.focus({ preventScroll: true });
     }
@@ -445,11 +382,4 @@ class LayoutStage extends Plane {
     Object.assign(this, { keyWhat: what, keyTime: now });
     return this.keyName;
   }
-}
-
-/** What a contact does in a wiring, for its name on the map and in words; a contact may serve several pairs. */
-function roleOf(raw) {
-  const all = (raw ?? '').split(' ').filter(r => r), marks = { source: 'I+', drain: 'I−', along: '∥', across: '⊥' };
-  const parts = all.map(r => ({ role: r.replace(/[+-]$/, ''), sign: r.endsWith('+') ? '+' : r.endsWith('-') ? '−' : '' }));
-  return { role: parts[0]?.role ?? '', words: parts.length ? { short: parts.map(p => `${marks[p.role] ?? ''}${p.sign}`).join(' '), spoken: parts.map(p => `${p.role} ${p.sign}`.trim()).join(', ') } : null };
 }

@@ -86,8 +86,8 @@ class LayoutApp {
       this.toolBox.append(html('button', { type: 'button', class: 'small', title, 'data-tool': key, 'aria-pressed': String(key === 'move'), onclick: () => this.#tool(key) }, text));
     }
     const mapHost = html('div', { class: 'map-host' }), bar = html('div', { class: 'bar' }, this.wiringBox,
-      choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }), this.toolBox,
-      this.senseBox = tick('sensitivity', false, on => this.#sense(on)), html('span', { class: 'zooms', role: 'group', 'aria-label': 'Zoom' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in'), button('whole', 'Show the whole sheet', () => this.stage.whole(), 'zoom-whole')));
+      choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }),
+      this.senseBox = tick('sensitivity to misplaced contacts', false, on => this.#sense(on))), toolBar = html('div', { class: 'bar tool-bar' }, this.toolBox, html('span', { class: 'zooms', role: 'group', 'aria-label': 'Zoom' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in'), button('whole', 'Show the whole sheet', () => this.stage.whole(), 'zoom-whole')));
     this.hint = html('p', { class: 'note-line hint-line' }, '');
     this.senseLine = html('div', { class: 'sense-line', hidden: true });
     const pictureHost = html('div', null);
@@ -96,7 +96,7 @@ class LayoutApp {
     this.fieldsHost = html('section', { class: 'live fields-host', 'aria-label': 'Values of the device file' });
     const partTools = html('div', { class: 'part-tools' }, this.dropButton = button('Remove contact', 'Remove the chosen contact or tip (Delete)', () => this.#drop(this.selected), 'drop'),
       button('Add wiring', 'A wiring like the last one with the current turned round', () => this.link.edit([{ op: 'add', kind: 'wiring', x: 0, y: 0 }]), 'add-wiring'), this.dropWiring = button('Remove wiring', 'Remove the wiring on show', () => this.#drop(this.wiring), 'drop-wiring'));
-    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.senseLine, this.fault, this.hint, pictureHost), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
+    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, toolBar, mapHost, this.senseLine, this.fault, this.hint, pictureHost), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
     document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, 'Served on this machine alone. Nothing is written unless you save; closing the last page ends the program.')));
     this.stage = new LayoutStage(mapHost, {
       move: (name, x, y, gesture) => this.link.edit([{ op: 'move', name, x, y }], gesture),
@@ -314,7 +314,7 @@ class LayoutApp {
       this.senseLine.replaceChildren(html('p', { class: 'note-line' }, `No sensitivity: ${body.faults.map(f => f.message).join('; ')}.`));
     } else {
       const legend = svg('svg', { class: 'legend', role: 'img' }), even = list.some(c => c.even);
-      rampLegend(legend, 'sense-ramp', { low: 0, high: most, unit: 'V', log: false, table: RAMPS.ember, label: 'σ of V_across, odd, by a misplaced contact', words: '', width: this.stage.width, left: this.stage.margin.left });
+      rampLegend(legend, 'sense-ramp', { low: 0, high: most, unit: 'V', log: false, table: RAMPS.ember, label: 'V_across, odd, by a misplaced contact', words: new Set(list.map(c => c.causes)).size === 1 ? `; each by ${list[0].causes} (σ)` : ', one σ each', width: this.stage.width, left: this.stage.margin.left });
       this.senseLine.replaceChildren(legend, html('details', null, html('summary', null, 'Contact by contact'), html('div', { class: 'wide' }, html('table', null,
         html('thead', null, html('tr', null, ...['contact', 'misplaced by (σ)', 'changes V_across, odd', ...even ? ['even'] : []].map(t => html('th', { scope: 'col' }, t)))),
         html('tbody', null, ...list.map(c => html('tr', null, html('td', null, c.contact), html('td', null, c.causes), html('td', null, plusMinus(c.odd, c.oddError, 'V')), ...even ? [html('td', null, plusMinus(c.even, c.evenError, 'V'))] : [])))))));

@@ -48,9 +48,11 @@ function nameNode(stage, c, role, words) {
     [du, x] = [0, u];
     y = wide > 8 * text.length + 8 && low - high > 20 ? v + 4 : dv > 0 ? low + 15 : high - 6;
   }
-  x = Math.max(stage.margin.left + 4, Math.min(stage.margin.left + stage.inner.width - 4, x));
+  // Names stay within the frame; letters are about 8 pixels wide.
+  const anchor = du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle', wide = 8 * text.length, before = { start: 0, middle: wide / 2, end: wide }[anchor];
+  x = Math.max(stage.margin.left + 3 + before, Math.min(stage.margin.left + stage.inner.width - 3 - wide + before, x));
   y = Math.max(stage.margin.top + 12, Math.min(stage.margin.top + stage.inner.height - 4, y));
-  return svg('text', { class: `tag ${role}`, x: x.toFixed(1), y: y.toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle' }, text);
+  return svg('text', { class: `tag ${role}`, x: x.toFixed(1), y: y.toFixed(1), 'text-anchor': anchor }, text);
 }
 
 /** Corners of the outline, and between them the places where one can be added; onkey(e, loop, corner) gets their keys. */

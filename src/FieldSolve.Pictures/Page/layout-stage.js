@@ -170,7 +170,8 @@ class LayoutStage extends Plane {
 
   // The crystal axes beside the sheet: the longer line is a, the handle turns it.
   #drawDial(right) {
-    const cx = right - AXIS_DIAL - 14, cy = this.margin.top + AXIS_DIAL + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle), r = AXIS_DIAL;
+    // Smaller where there is little room.
+    const r = this.inner.width < 460 ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
     const held = document.activeElement?.classList?.contains('axis-handle');
     this.centre = [cx, cy];
     const at = (p, q) => `${(cx + p * c - q * s).toFixed(1)} ${(cy - p * s - q * c).toFixed(1)}`, [hu, hv] = at(r, 0).split(' ');

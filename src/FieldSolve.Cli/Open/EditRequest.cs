@@ -36,7 +36,7 @@ internal sealed record EditRequest(string? Gesture, IReadOnlyList<EditOp>? Ops)
 /// <param name="Value">For "set": what was typed.</param>
 /// <param name="Plain">For "set" of a new key: a number or a flag, without quotes.</param>
 /// <param name="Name">Of a contact or tip: "move", "own" and "drop"; of a file: "trace-use".</param>
-/// <param name="Kind">For "add": "edge", "pad", "point" or "wiring"; for "pair": "along", "across" or "pairs".</param>
+/// <param name="Kind">For "add": "edge", "pad", "point" or "wiring"; for "pair": "along", "across" or "pairs"; for "trace-use": "alone" when other contacts go.</param>
 /// <param name="X">Metres.</param>
 /// <param name="Y">Metres.</param>
 /// <param name="Loop">Of the outline: 0 is the rim, others are holes.</param>
@@ -57,7 +57,7 @@ internal sealed partial record EditOp(string? Op, string? Path, string? Value, b
         "corner-add" when double.IsFinite(X) && double.IsFinite(Y) => LayoutOutline.Add(text, device, Loop, Corner, new Point2(X, Y)),
         "corner-drop" => LayoutOutline.Drop(text, device, Loop, Corner),
         "outline-own" => LayoutOutline.Own(text, device),
-        "trace-use" when Name is not null => LayoutTrace.Use(text, device, Name),
+        "trace-use" when Name is not null => LayoutTrace.Use(text, device, Name, alone: Kind == "alone"),
         _ => throw new LayoutEditException("the request holds a change that is not known"),
     };
 

@@ -37,12 +37,14 @@ class PicturePanel {
     this.list = html('ul', { class: 'trace-list' });
     this.fileName = html('input', { type: 'text', value: 'trace.geojson', spellcheck: 'false', 'aria-label': 'Name of the file of the trace', 'data-do': 'trace-name' });
     this.saveButton = button('Save trace', 'trace-save', () => this.#save(), 'Write the trace as GeoJSON beside the device file');
-    this.useButton = button('Use in this device', 'trace-use', () => act.use(this.saved), 'The traced outline becomes the sheet, traced pads become contacts; a pad named like a contact takes its place. Undo brings back what was');
+    this.useButton = button('Use in this device', 'trace-use', () => act.use(this.saved, this.alone.input.checked), 'The traced outline becomes the sheet, traced pads become contacts; a pad named like a contact takes its place. Undo brings back what was');
+    this.alone = tick('with the traced pads as its only contacts', false, () => {});
+    this.alone.title = 'All other contacts, tips and wirings go; the first two pads become the wiring. Undo brings them back';
     this.note = html('p', { class: 'note-line', 'aria-live': 'polite' });
     this.box = html('details', { class: 'picture-box' }, html('summary', null, 'Micrograph and tracing'),
       html('div', { class: 'bar' }, choose, this.name), this.scaling,
       html('div', { class: 'bar' }, this.kinds, this.close, this.back), this.list,
-      html('div', { class: 'bar' }, html('label', { class: 'choice' }, html('span', null, 'File'), this.fileName), this.saveButton, this.useButton), this.message, this.note);
+      html('div', { class: 'bar' }, html('label', { class: 'choice' }, html('span', null, 'File'), this.fileName), this.saveButton, this.useButton, this.alone), this.message, this.note);
     host.append(this.box);
     this.show();
   }

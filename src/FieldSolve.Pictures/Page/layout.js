@@ -117,7 +117,7 @@ class LayoutApp {
     });
     this.readings = new LayoutReadings(readings, charts);
     this.pictures = new PicturePanel(pictureHost, this.stage, {
-      tool: key => this.#tool(key), save: body => this.link.ask('trace', body), use: name => this.link.edit([{ op: 'trace-use', name }]),
+      tool: key => this.#tool(key), save: body => this.link.ask('trace', body), use: (name, alone) => this.link.edit([{ op: 'trace-use', name, kind: alone ? 'alone' : null }]),
     });
     this.#tool('move');
   }

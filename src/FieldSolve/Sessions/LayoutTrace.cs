@@ -107,8 +107,10 @@ public static class LayoutTrace
     /// <param name="text">The device file.</param>
     /// <param name="device">What it says.</param>
     /// <param name="name">A file that <see cref="Save"/> wrote.</param>
-    /// <exception cref="LayoutEditException">There is no such file, or it holds no polygon.</exception>
-    public static EditableToml Use(EditableToml text, SheetDevice device, string name)
+    /// <param name="alone">The traced pads become the only contacts, the first two of them the only wiring; what names other contacts goes.</param>
+    /// <exception cref="LayoutEditException">There is no such file, or it is no trace.</exception>
+    /// <exception cref="IOException">It cannot be read.</exception>
+    public static EditableToml Use(EditableToml text, SheetDevice device, string name, bool alone)
     {
         ArgumentNullException.ThrowIfNull(text);
         ArgumentNullException.ThrowIfNull(device);
@@ -131,10 +133,16 @@ public static class LayoutTrace
             text = (device.Shape == "outline" ? text : text.Without("sheet." + device.Shape)).With("sheet.outline", $"{{ file = {file}, unit = \"{Unit}\" }}");
         }
 
-        foreach (string pad in polygons.Select(p => p.Name).OfType<string>().Where(n => n != OutlineName))
+        string[] pads = [.. polygons.Select(p => p.Name).OfType<string>().Where(n => n != OutlineName)];
+        if (alone)
+        {
+            text = WithoutContacts(text, pads);
+        }
+
+        foreach (string pad in pads)
         {
             string literal = $"{{ file = {file}, name = {EditableToml.Quoted(pad)}, unit = \"{Unit}\" }}";
-            if (device.Contacts.All(c => c.Name != pad))
+            if (alone || device.Contacts.All(c => c.Name != pad))
             {
                 string? after = text.Blocks.LastOrDefault(b => b.Path.StartsWith("contact[", StringComparison.Ordinal) || b.Path.StartsWith("contacts[", StringComparison.Ordinal))?.Path;
                 text = text.Appended($"[[contact]]\nname = {EditableToml.Quoted(pad)}\npad = {literal}", after);
@@ -148,6 +156,22 @@ public static class LayoutTrace
             }
 
             text = text.With(block + ".pad", literal);
+        }
+
+        return alone ? text.Appended($"[[wiring]]\nname = \"first\"\nsource = {EditableToml.Quoted(pads[0])}\ndrain = {EditableToml.Quoted(pads[1])}", after: null) : text;
+    }
+
+    private static EditableToml WithoutContacts(EditableToml text, string[] pads)
+    {
+        if (pads.Length < 2)
+        {
+            throw new LayoutEditException("a current needs two contacts; trace at least two pads");
+        }
+
+        string[] naming = ["contact", "contacts", "point", "wiring", "turn", "tolerance.contact", "tolerance.layer", "fit.contact"];
+        while (text.Blocks.LastOrDefault(b => naming.Contains(b.Path.Split('[')[0], StringComparer.Ordinal)) is { } block)
+        {
+            text = text.Without(block.Path);
         }
 
         return text;

@@ -63,7 +63,7 @@ public sealed class LayoutOutlineTests : IDisposable
     [InlineData("corners = [[\"0 um\", \"0 um\"], [\"9 um\", \"9 um\"], [\"9 um\", \"0 um\"], [\"0 um\", \"9 um\"]]", "the outline: ")]
     [InlineData(Corners + ", file = \"sheet.geojson\"", "an outline stands in a file or as 'corners', and both are given")]
     [InlineData("file = \"sheet.geojson\", unit = \"um\", holes = []", "'holes' goes with 'corners'")]
-    [InlineData(Corners + ", unit = \"kg\"", "'unit': \"kg\" is no unit of length")]
+    [InlineData(Corners + ", unit = \"V\"", "'unit': \"V\" is no unit of length")]
     [InlineData("corners = [[\"0 um\", \"0 um\"], [\"1 um\", \"0 V\"], [\"1 um\", \"1 um\"]]", "'corners', y: ")]
     public void Wrong_corners_are_faults_at_their_place(string outline, string message)
     {
@@ -155,12 +155,22 @@ public sealed class LayoutOutlineTests : IDisposable
         }
 
         Assert.Empty(session.Apply((t, d) => LayoutParts.Drop(t, d, "top"), null));
-        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
         SheetDevice device = session.State.Device;
         Assert.Equal(59.5e-12, new Outline(device.Drawn).Area, 1e-16);
         Assert.Equal(["left", "right", "new \"one\""], device.Contacts.Select(c => c.Name));
         Assert.All(device.Contacts, c => Assert.Equal(ContactKind.Pad, c.Kind));
         Assert.Equal(0, Point2.Distance(Named(session, "left").Middle, new(1.5e-6, 2e-6)), 1e-12);
+
+        // With its pads alone, on a device whose contacts would not fit.
+        EditSession disc = EditSession.Open(folder.Write("disc.toml", File.ReadAllText(Path.Combine(Repository.Root, "meshes", "disc-12.toml")))).Session!;
+        string before = disc.State.Text.Text;
+        Assert.NotEmpty(disc.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
+        Assert.Empty(disc.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", true), null));
+        Assert.Equal(["left", "right", "new \"one\""], disc.State.Device.Contacts.Select(c => c.Name));
+        Assert.Equal((0, 1), (disc.State.Device.Wirings.Single().Source, disc.State.Device.Wirings.Single().Drain));
+        Assert.True(disc.Undo());
+        Assert.Equal(before, disc.State.Text.Text);
     }
 
     [Fact]
@@ -197,7 +207,7 @@ public sealed class LayoutOutlineTests : IDisposable
         EditSession session = Open();
         TraceShape[] shapes = [new(TraceKind.Outline, "", [new(0, 0), new(1e-6, 0), new(0, 1e-6)])];
         Assert.Throws<LayoutEditException>(() => LayoutTrace.Save(session.State, name, shapes, overwrite: true));
-        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, name), null));
+        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, name, false), null));
         Assert.Single(Directory.GetFiles(folder[""]));
     }
 

@@ -13,7 +13,7 @@ function lengthOf(text) {
 
 /** A length as text with a unit that suits it. */
 function lengthText(metres, digits = 5) {
-  const scale = scaleFor(metres, 'm');
+  const scale = scaleFor(metres || 1e-6, 'm');
   return `${String(Number((metres * scale.factor).toPrecision(digits)))} ${scale.unit}`;
 }
 

@@ -150,7 +150,7 @@ class LayoutStage extends Plane {
     if (this.tool === 'corner' && state.outline) {
       state.outline.loops.forEach((l, loop) => nodes.push(...cornerNodes(this, l.points, loop, (e, at, k) => this.#cornerKey(e, at, k))));
     }
-    inside.replaceChildren(...nodes, names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross());
+    inside.replaceChildren(...nodes, names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k), taken: name => state.contacts.some(c => c.name === name) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross());
     if (focus) {
       const key = ['contact', 'corner', 'traced'].find(k => focus[k] !== undefined);
       [...inside.querySelectorAll(`[data-${key}]`)].find(n => n.dataset[key] === focus[key])?.focus({ preventScroll: true });

@@ -122,7 +122,7 @@ class Trace {
     this.shapes.forEach((s, index) => {
       const d = plane.pathOf(s.points.flat(), true);
       nodes.push(svg('path', { class: 'trace-halo', d }), svg('path', { class: `trace ${s.kind}`, d }));
-      if (s.name) {
+      if (s.name && !handlers.taken(s.name)) {
         const n = s.points.length, [u, v] = plane.toScreen(s.points.reduce((t, p) => t + p[0] / n, 0), s.points.reduce((t, p) => t + p[1] / n, 0));
         nodes.push(svg('text', { class: 'tag', x: u.toFixed(1), y: (v + 4).toFixed(1), 'text-anchor': 'middle' }, s.name));
       }

@@ -144,7 +144,7 @@ class LayoutApp {
     if (this.state && state.version !== this.state.version) {
       this.changed = performance.now();
     }
-    if (this.state?.byPath.has('turn.around') && !state.byPath.has('turn.around')) {
+    if (this.state?.byPath.has('turn.around') && !state.byPath.has('turn.around') && this.state.contacts.every(c => state.contacts.some(o => o.name === c.name))) {
       this.hint.textContent = 'The ring is now written as single contacts, so [turn] takes each wiring as one direction. Undo brings the ring back.';
     }
     if (this.state?.outline?.file && state.outline && !state.outline.file) {

@@ -126,7 +126,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         var samples = new Dictionary<int, SampleResult>();
 
         // What stands after the last line end was cut short.
-        foreach (string line in lines[1..^1])
+        foreach (string line in lines.Skip(1).SkipLast(1))
         {
             if (Sample(line) is { } sample)
             {
@@ -152,7 +152,10 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         CultureInfo c = CultureInfo.InvariantCulture;
-        return new(design, int.Parse(shard, c), int.Parse(shards, c), int.Parse(samples, c), ulong.Parse(seed, c), device);
+        return int.TryParse(shard, NumberStyles.None, c, out int k) && int.TryParse(shards, NumberStyles.None, c, out int n) && k >= 1 && k <= n
+            && int.TryParse(samples, NumberStyles.None, c, out int count) && count <= ToleranceOptions.MostSamples && ulong.TryParse(seed, NumberStyles.None, c, out ulong start)
+            ? new(design, k, n, count, start, device)
+            : null;
     }
 
     private static string Line(SampleResult sample)
@@ -172,14 +175,15 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         string[] cells = line[..last].Split(',');
-        SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => SamplesCsv.StatusText(s!.Value) == cells[1]);
-        return status is null ? null : new(
-            int.Parse(cells[0], CultureInfo.InvariantCulture), status.Value,
-            [.. cells[2..].Select(v => double.Parse(v, CultureInfo.InvariantCulture))]);
+        SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => cells.Length > 1 && SamplesCsv.StatusText(s!.Value) == cells[1]);
+        double[] values = [.. cells.Skip(2).Select(v => double.TryParse(v, NumberStyles.Float, CultureInfo.InvariantCulture, out double x) && double.IsFinite(x) ? x : double.NaN)];
+        return status is { } known && int.TryParse(cells[0], NumberStyles.None, CultureInfo.InvariantCulture, out int index) && !values.Contains(double.NaN)
+            ? new(index, known, values)
+            : null;
     }
 
     // FNV-1a, 32 bits: G. Fowler, L. C. Noll, K.-P. Vo (1991); enough to tell a whole line from a cut one.
-    private static string Check(string text)
+    internal static string Check(string text)
     {
         uint hash = 2166136261;
         foreach (char c in text)

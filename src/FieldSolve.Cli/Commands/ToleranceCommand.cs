@@ -118,6 +118,7 @@ internal static class ToleranceCommand
         if (options.Shards > 1)
         {
             screen.Clear();
+            journal.Keep();
             RunManners.Say(result.Cautions, result.Warnings);
             screen.Print(FormattableString.Invariant(
                 $"shard {options.Shard} of {options.Shards}: {result.Samples.Count} samples, {result.Solved} of them new, in {folder}{(result.Cancelled ? "; cancelled, the same command goes on from here" : "")}\n"));

@@ -49,6 +49,8 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     private readonly ToleranceOptions options;
     private readonly string device;
     private Dictionary<int, SampleResult> known = [];
+    private readonly List<SampleResult> added = [];
+    private JournalHead? head;
     private StreamWriter? writer;
 
     /// <summary>Names the file; nothing is opened yet.</summary>
@@ -66,13 +68,14 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     public IReadOnlyDictionary<int, SampleResult> Known => known;
 
     /// <inheritdoc/>
-    /// <exception cref="JournalException">The file there belongs to another run.</exception>
-    /// <exception cref="IOException">The file cannot be read or written, or another run is writing it.</exception>
+    /// <exception cref="JournalException">The file there belongs to another run, or another run is writing it.</exception>
+    /// <exception cref="IOException">The file cannot be read or written.</exception>
     public void Open(string design, int values)
     {
-        var head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
+        head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
         if (File.Exists(path))
         {
+            RefuseIfInUse();
             (JournalHead there, known) = Read(path);
             if (there.Design != design || there.Shard != head.Shard || there.Shards != head.Shards)
             {
@@ -87,13 +90,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         // Written anew without what cannot be trusted, then added to.
-        var text = new StringBuilder(HeadLine(head));
-        foreach (SampleResult sample in known.Values.OrderBy(s => s.Index))
-        {
-            text.Append(Line(sample));
-        }
-
-        WholeFile.WriteText(path, text.ToString());
+        WriteAll();
         writer = new StreamWriter(new FileStream(path, FileMode.Append, FileAccess.Write, FileShare.Read), new UTF8Encoding(false)) { AutoFlush = true };
     }
 
@@ -102,6 +99,17 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     {
         ArgumentNullException.ThrowIfNull(sample);
         (writer ?? throw new InvalidOperationException("The file of samples is not open.")).Write(Line(sample));
+        added.Add(sample);
+    }
+
+    /// <summary>Makes the file again where its folder vanished during the run.</summary>
+    /// <exception cref="IOException">The file cannot be written.</exception>
+    public void Keep()
+    {
+        if (writer is not null && !File.Exists(path))
+        {
+            WriteAll();
+        }
     }
 
     /// <summary>Closes the file.</summary>
@@ -135,6 +143,30 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         return (head, samples);
+    }
+
+    private void WriteAll()
+    {
+        var text = new StringBuilder(HeadLine(head!));
+        foreach (SampleResult sample in known.Values.Concat(added).OrderBy(s => s.Index))
+        {
+            text.Append(Line(sample));
+        }
+
+        WholeFile.WriteText(path, text.ToString());
+    }
+
+    // Whoever writes the file holds it open.
+    private void RefuseIfInUse()
+    {
+        try
+        {
+            using var alone = new FileStream(path, FileMode.Open, FileAccess.ReadWrite, FileShare.None);
+        }
+        catch (IOException e) when (e is not (FileNotFoundException or DirectoryNotFoundException))
+        {
+            throw new JournalException($"another run is writing '{path}'; wait for its end or name another --out", e);
+        }
     }
 
     private static string HeadLine(JournalHead h)

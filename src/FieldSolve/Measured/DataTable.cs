@@ -57,6 +57,12 @@ internal sealed class DataTable
                 return null;
             }
 
+            if (PlainFile.HasNoLength(path))
+            {
+                faults.Add(Place.Start, "the file is empty (or no plain file); name a table (CSV) with a header and at least one row");
+                return null;
+            }
+
             bytes = File.ReadAllBytes(path);
         }
         catch (Exception e) when (e is IOException or UnauthorizedAccessException or SecurityException or ArgumentException or NotSupportedException)

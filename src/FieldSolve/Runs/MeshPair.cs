@@ -76,6 +76,17 @@ internal sealed class MeshPair
         return new(coarse!, fine!);
     }
 
+    /// <summary>Lets go of the factors of large meshes before others are made; they come back, the same, when they are asked for.</summary>
+    public void ForgetIfLarge()
+    {
+        if (SharedCores.IsLarge(Fine.Space.Size))
+        {
+            Fine.Forget();
+            Coarse.Forget();
+            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
+        }
+    }
+
     /// <summary>The same two meshes under another law.</summary>
     public MeshPair WithLaw(LabLaw law, CancellationToken cancel) => new(this, law, cancel);
 

@@ -43,6 +43,9 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     /// <summary>Name of the file in the folder of results.</summary>
     public const string FileName = "samples.part.csv";
 
+    // V; no sheet reads more, and the squares of larger numbers overflow.
+    private const double LargestVoltage = 1e30;
+
     private const string Mark = "# FieldSolve samples";
 
     private readonly string path;
@@ -208,7 +211,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
 
         string[] cells = line[..last].Split(',');
         SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => cells.Length > 1 && SamplesCsv.StatusText(s!.Value) == cells[1]);
-        double[] values = [.. cells.Skip(2).Select(v => double.TryParse(v, NumberStyles.Float, CultureInfo.InvariantCulture, out double x) && double.IsFinite(x) ? x : double.NaN)];
+        double[] values = [.. cells.Skip(2).Select(v => double.TryParse(v, NumberStyles.Float, CultureInfo.InvariantCulture, out double x) && Math.Abs(x) < LargestVoltage ? x : double.NaN)];
         return status is { } known && int.TryParse(cells[0], NumberStyles.None, CultureInfo.InvariantCulture, out int index) && !values.Contains(double.NaN)
             ? new(index, known, values)
             : null;

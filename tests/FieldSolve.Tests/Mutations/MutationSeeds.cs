@@ -51,7 +51,10 @@ internal static class MutationSeeds
 
     public const string Voltages = "# made up\nwiring,pair,current_uA,value_mV,sigma_uV\nbar,along,10,40,100\nbar,along,20,80,100\nbar,across,20,-4,100\nbar,source,-20,-240,100\n";
 
-    public const string Map = "x_um,y_um,value_mV,sigma_mV\n-5,0,320,3\n-3,1,270,3\n-1,-1,200,3\n0,0,180,3\n1,1,160,3\n2,-1,110,3\n3,0,85,3\n4,1,60,3\n5,-1,30,3\n5.5,0,15,3\n-4,1.5,300,3\n-2,0,240,3\n";
+    /// <summary>What a probe sees of the small bar at 30 uA: 7.5 mV/um along, and a Hall field.</summary>
+    public static string Map { get; } = "x_um,y_um,value_mV,sigma_mV\n" + string.Concat(
+        from x in Enumerable.Range(-4, 9) from y in Enumerable.Range(-1, 3) select FormattableString.Invariant($"{x},{y},{(7.5 * (6 - x)) - (2.25 * y)},1\n"));
+
 
     /// <summary>What a page asks `open` to change.</summary>
     public const string Edit = """

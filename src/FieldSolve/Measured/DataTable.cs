@@ -15,6 +15,9 @@ internal sealed class DataTable
 {
     private const long LargestFile = 64_000_000;
 
+    // SI; no instrument reads less or more, and the squares of such numbers over- and underflow.
+    private const double Smallest = 1e-24, Largest = 1e12;
+
     private static readonly UTF8Encoding Strict = new(false, true);
 
     private readonly FaultList faults;
@@ -56,6 +59,12 @@ internal sealed class DataTable
             if (info.Length > LargestFile)
             {
                 faults.Add(Place.Start, "the file is larger than 64 MB; was another file meant?");
+                return null;
+            }
+
+            if (PlainFile.HasNoLength(path))
+            {
+                faults.Add(Place.Start, "the file is empty (or no plain file); name a table (CSV) with a header and at least one row");
                 return null;
             }
 
@@ -162,7 +171,14 @@ internal sealed class DataTable
             return null;
         }
 
-        return unit.Of(value);
+        double si = unit.Of(value);
+        if (si != 0 && Math.Abs(si) is < Smallest or > Largest)
+        {
+            faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is beyond anything that is measured ('{column}'); is its unit right?");
+            return null;
+        }
+
+        return si;
     }
 
     private bool Header(DataCell[] cells, IReadOnlyList<DataColumn> known)

@@ -35,7 +35,7 @@ internal static class FitCommand
         var command = new Command(
             "fit",
             "Numbers of the law, contacts and placement that [fit] leaves free, from measured voltages.\n\n"
-            + "Example: fieldsolve fit meshes/disc-12-fit.toml meshes/disc-12-data.csv --suggest 3 --out results")
+            + "Example: fieldsolve fit meshes/fit/disc-12.toml meshes/fit/disc-12-data.csv --suggest 3 --out results")
         {
             device, data, folder, noise, robust, suggest, starts, intervals, noPictures, quiet, json,
         };

@@ -36,8 +36,8 @@ public sealed partial class HouseKeepingTests
     public void Every_package_named_by_the_sources_and_every_embedded_file_has_its_notice()
     {
         string versions = File.ReadAllText(Path.Combine(Repository.Root, "Directory.Packages.props"));
-        Assert.All(PackageName().Matches(versions).Select(m => m.Groups[1].Value.Split('.')), parts =>
-            Assert.True(Notices.Contains(string.Join('.', parts), StringComparison.Ordinal) || Notices.Contains(parts[0] + " (", StringComparison.Ordinal) || Notices.Contains(parts[0] + ",", StringComparison.Ordinal), string.Join('.', parts)));
+        Assert.All(PackageName().Matches(versions).Select(m => m.Groups[1].Value), package => Assert.True(
+            package.Split('.').Where(p => p.Length > 3).Append(package).Any(p => Notices.Contains(p + " (", StringComparison.Ordinal) || Notices.Contains($"| {p} |", StringComparison.Ordinal)), package));
         Assert.All(
             Directory.GetFiles(Path.Combine(Repository.Root, "src", "FieldSolve.Pictures", "Fonts"), "*.ttf"),
             font => Assert.Contains("LICENCE-" + Path.GetFileNameWithoutExtension(font) + ".txt", Notices, StringComparison.Ordinal));
@@ -65,7 +65,7 @@ public sealed partial class HouseKeepingTests
     [GeneratedRegex(@"PackageVersion Include=""([^""]+)""")]
     private static partial Regex PackageName();
 
-    [GeneratedRegex(@"#pragma\s+warning\s+disable|\[(assembly: ?|module: ?)?(Unconditional)?SuppressMessage|<NoWarn>|<WarningsNotAsErrors>|severity\s*=\s*(none|silent)|#nullable\s+disable|<Nullable>disable")]
+    [GeneratedRegex(@"#pragma\s+warning\s+disable|\[(assembly: ?|module: ?)?(Unconditional)?SuppressMessage|<NoWarn[>]|<WarningsNotAsErrors[>]|severity\s*=\s*(none|silent)|#nullable\s+disable|<Nullable[>]disable")]
     private static partial Regex Silenced();
 
     [GeneratedRegex(@"//\s*\w{2,} \w|#\s+\w{2,} \w|<!--\s*\w{2,} \w|Justification\s*=\s*""\w{2,} \w")]

@@ -120,6 +120,14 @@ public sealed partial class SchemaTests
         }
 
         IEnumerable<string> known = Names().Matches(message.Split("allowed are")[1]).Select(m => m.Groups[1].Value);
+        if (message.EndsWith('\u2026'))
+        {
+            // A long list is cut short in the message; the causes are those of the catalogue.
+            Assert.Subset(at!.AsObject().Select(p => p.Key).ToHashSet(), known.ToHashSet());
+            string[] others = path.Contains("fit", StringComparison.Ordinal) ? ["numerical_share", "contacts", "contact"] : ["contacts", "contact", "layer"];
+            known = CauseCatalogue.Of(CauseScope.Sheet).Select(c => c.Key).Concat(others);
+        }
+
         Assert.Equal(known.Order(StringComparer.Ordinal), at!.AsObject().Select(p => p.Key).Order(StringComparer.Ordinal));
     }
 

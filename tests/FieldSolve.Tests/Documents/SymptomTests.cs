@@ -66,7 +66,7 @@ public sealed partial class SymptomTests
     [GeneratedRegex(@"""[^""]{25,}.*[.?]""[\])},;: ]*$")]
     private static partial Regex Sentence();
 
-    [GeneratedRegex(@"///|throw |Description|private const string Defer|""A page on this machine|""The page answers|contacts, axis, law and drive are changed|--out '|""The mesh alone|Progress")]
+    [GeneratedRegex(@"///|throw |Description|private const string Defer|""A page on this machine|""The page answers|contacts, axis, law and drive are changed|--out '|""The mesh alone|Progress|The file has no")]
     private static partial Regex NoMessage();
 
     [GeneratedRegex(@"""([^""]+)""")]

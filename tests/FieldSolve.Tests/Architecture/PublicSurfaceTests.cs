@@ -39,5 +39,5 @@ public class PublicSurfaceTests
 
     [Fact]
     public void Members_that_are_not_public_are_not_listed() =>
-        Assert.DoesNotContain(PublicSurface.Of(typeof(DeviceFile).Assembly), m => m.Contains("<", StringComparison.Ordinal) && m.Contains("$", StringComparison.Ordinal));
+        Assert.DoesNotContain(PublicSurface.Of(typeof(DeviceFile).Assembly), m => m.Contains('<') && m.Contains('$'));
 }

@@ -29,7 +29,7 @@ public sealed partial class SymptomTests
     {
         string[] phrases = Phrases("## What the program says");
         Assert.All(Speakers, speaker => Assert.NotEmpty(Messages(speaker)));
-        Assert.Empty(Speakers.SelectMany(Messages).Where(line => !phrases.Any(p => line.Contains(p, StringComparison.Ordinal))));
+        Assert.DoesNotContain(Speakers.SelectMany(Messages), line => !phrases.Any(p => line.Contains(p, StringComparison.Ordinal)));
     }
 
     // The other way round: what is explained is still said.
@@ -42,7 +42,7 @@ public sealed partial class SymptomTests
             .Where(f => !f.Contains("/obj/", StringComparison.Ordinal) && !f.Contains("\\obj\\", StringComparison.Ordinal)).Select(File.ReadAllText));
         string[] phrases = Phrases(heading);
         Assert.True(phrases.Length > 5);
-        Assert.Empty(phrases.Where(p => !source.Contains(p, StringComparison.Ordinal)));
+        Assert.DoesNotContain(phrases, p => !source.Contains(p, StringComparison.Ordinal));
     }
 
     // No warnings are collected anywhere else.

@@ -12,6 +12,11 @@ public class RunScriptTests
         using var folder = new TempFolder();
         Directory.CreateDirectory(folder["bin"]);
         string calls = folder["calls.txt"], tool = folder.Write("bin/dotnet", $"#!/bin/sh\necho \"$PWD|$*\" >> '{calls}'\n[ \"$1\" = test ] && exit 7\nexit 0\n");
+        if (OperatingSystem.IsWindows())
+        {
+            throw new PlatformNotSupportedException("The stand-in is a shell script.");
+        }
+
         File.SetUnixFileMode(tool, UnixFileMode.UserRead | UnixFileMode.UserWrite | UnixFileMode.UserExecute);
         string script = folder.Write("all.ps1", """
             param($run)
@@ -25,13 +30,12 @@ public class RunScriptTests
         Assert.True(exit == 0, output);
         Assert.Equal(["demo 0", "test 7", "bench 0", "pack 0", "refused"], output.Split('\n', StringSplitOptions.RemoveEmptyEntries | StringSplitOptions.TrimEntries));
         Assert.Equal(
-            new[]
-            {
-                "run --project src/FieldSolve.Cli -c Release -- drive meshes/disc-12.toml --out results --quick",
-                "test --filter Laws",
-                "run --project benchmarks/FieldSolve.Benchmarks -c Release -- --list flat",
-                "pack src/FieldSolve.Cli -c Release --output artifacts",
-            }.Select(a => $"{Repository.Root}|{a}"),
+            [
+                $"{Repository.Root}|run --project src/FieldSolve.Cli -c Release -- drive meshes/disc-12.toml --out results --quick",
+                $"{Repository.Root}|test --filter Laws",
+                $"{Repository.Root}|run --project benchmarks/FieldSolve.Benchmarks -c Release -- --list flat",
+                $"{Repository.Root}|pack src/FieldSolve.Cli -c Release --output artifacts",
+            ],
             File.ReadAllLines(calls));
     }
 }

@@ -6,7 +6,7 @@ namespace FieldSolve.Tests.EndToEndTests;
 [Collection(SampleRuns.Collection)]
 public class FitTests
 {
-    private const string Device = """
+    internal const string Device = """
         title = "Bar to fit"
         [sheet]
         bar = { length = "30 um", width = "6 um" }
@@ -36,7 +36,7 @@ public class FitTests
         """;
 
     // A uniform strip: V = I length / (a width), so that 2 mS, 6 um and 10 um make 833.3 ohm: 8.3333 mV at 10 uA.
-    private const string Data = "# made up\nwiring,pair,current_uA,value_mV,sigma_uV\nx,along,10,8.333,1\nx,along,20,16.667,1\nx,along,-20,-16.6665,1\n";
+    internal const string Data = "# made up\nwiring,pair,current_uA,value_mV,sigma_uV\nx,along,10,8.333,1\nx,along,20,16.667,1\nx,along,-20,-16.6665,1\n";
 
     [Fact]
     public void Fit_writes_its_files_whole_and_the_same_twice()

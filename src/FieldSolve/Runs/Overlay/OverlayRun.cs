@@ -115,9 +115,9 @@ public static class OverlayRun
     private static (DriveResult Result, MeshPair Meshes) Driven(SheetDevice device, TriangleMesh? mesh, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
     {
         // The drive's own clock: its stages are one here.
-        (DriveResult, MeshPair)? driven = null;
+        (DriveResult Result, MeshRefinement Refinement)? driven = null;
         clock.Time("drive", () => { driven = DriveRun.Run(device, new DriveOptions { Maps = MapChoice.Last, ForPictures = false, Mesh = mesh }, progress, new StageClock(), cancel); });
-        return driven!.Value;
+        return (driven!.Value.Result, driven.Value.Refinement.Meshes);
     }
 
     private static bool IsFine(Registration r) => Enumerable.Range(0, OverlayFunction.Count).All(k => r.Numerical[k] <= WantedShare * r.Noise[k]);

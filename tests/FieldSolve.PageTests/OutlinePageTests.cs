@@ -168,7 +168,7 @@ public sealed class OutlinePageTests(ReportFixture shared) : LayoutPageBase(shar
 
         await page.Keyboard.UpAsync("Alt");
         await Click(rim[0].I, rim[0].J);
-        foreach (double i in new[] { 70.0, 310.0 })
+        foreach (double i in new[] { 70.0, 290.0 })
         {
             await page.ClickAsync("[data-trace='pad']");
             foreach ((double x, double y) in new[] { (i, 80.0), (i + 30, 80.0), (i + 30, 120.0), (i, 120.0) })

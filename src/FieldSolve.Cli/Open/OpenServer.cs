@@ -196,6 +196,17 @@ internal sealed class OpenServer : IAsyncDisposable
                 SaveOutcome outcome = save.Name is null ? session.Save(save.Overwrite) : session.SaveAs(save.Name, save.Overwrite);
                 await Send(context, outcome == SaveOutcome.Saved ? 200 : 409, "application/json", JsonSerializer.Serialize(new { outcome = outcome.ToString() }));
                 break;
+            case "trace":
+                TraceRequest trace = await context.Request.ReadFromJsonAsync<TraceRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                SaveOutcome traced = LayoutTrace.Save(session.State, trace.Name ?? "", trace.Read(), trace.Overwrite);
+                if (traced == SaveOutcome.Saved && session.State.Text.Pieces.Any(p => p.Value == trace.Name) && session.ReadFiles() is { Count: > 0 } faults)
+                {
+                    await Result(context, [.. faults.Select(f => (f, (string?)null))]);
+                    break;
+                }
+
+                await Send(context, traced == SaveOutcome.Saved ? 200 : 409, "application/json", JsonSerializer.Serialize(new { outcome = traced.ToString() }));
+                break;
             case "reload":
                 await Result(context, [.. session.Reload().Select(f => (f, (string?)null))]);
                 break;

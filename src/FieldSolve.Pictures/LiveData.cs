@@ -113,6 +113,9 @@ internal sealed class LiveData
     /// <summary>Charts.</summary>
     public List<LiveChart> Charts { get; } = [];
 
+    /// <summary>A measured map beside the computed one; null for none.</summary>
+    public LiveComparison? Comparison { get; init; }
+
     /// <summary>Title of the device, for file names and pictures.</summary>
     public string Title { get; init; } = "";
 
@@ -126,6 +129,12 @@ internal sealed class LiveData
         Array(w, "laws", Laws, Write);
         Array(w, "maps", Maps, Write);
         Array(w, "charts", Charts, Write);
+        if (Comparison is not null)
+        {
+            w.WritePropertyName("comparison");
+            Comparison.Write(w, Meshes[Comparison.Mesh]);
+        }
+
         w.WriteEndObject();
     }
 
@@ -171,21 +180,7 @@ internal sealed class LiveData
         w.WriteNumber("law", map.Law);
         w.WriteNumber("direction", map.Direction);
         w.WriteString("note", map.Note);
-        w.WriteStartArray("rim");
-        foreach (double[] loop in map.Rim)
-        {
-            Values(w, loop);
-        }
-
-        w.WriteEndArray();
-        Array(w, "contacts", map.Contacts, (w, c) =>
-        {
-            w.WriteString("name", c.Name);
-            w.WriteString("role", c.Role);
-            w.WriteString("kind", c.Kind);
-            Numbers(w, "points", c.Points);
-            Numbers(w, "middle", [c.Middle.X, c.Middle.Y]);
-        });
+        WriteOutline(w, map.Rim, map.Contacts);
         int at = 0;
         Array(w, "frames", map.Frames, (w, f) =>
         {
@@ -218,6 +213,25 @@ internal sealed class LiveData
                 w.WriteBase64String("phi", bytes);
                 w.Flush();
             }
+        });
+    }
+
+    internal static void WriteOutline(Utf8JsonWriter w, IReadOnlyList<double[]> rim, IReadOnlyList<LiveContact> contacts)
+    {
+        w.WriteStartArray("rim");
+        foreach (double[] loop in rim)
+        {
+            Values(w, loop);
+        }
+
+        w.WriteEndArray();
+        Array(w, "contacts", contacts, (w, c) =>
+        {
+            w.WriteString("name", c.Name);
+            w.WriteString("role", c.Role);
+            w.WriteString("kind", c.Kind);
+            Numbers(w, "points", c.Points);
+            Numbers(w, "middle", [c.Middle.X, c.Middle.Y]);
         });
     }
 

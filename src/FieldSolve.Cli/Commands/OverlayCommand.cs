@@ -128,7 +128,7 @@ internal static class OverlayCommand
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException or FitException)
         {
             screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
+            Console.Error.WriteLine(new Fault(e is FitException { IsOfData: true } ? choices.Map : choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
         }
         catch (OperationCanceledException)

@@ -38,8 +38,14 @@ function start() {
     live = new LiveMap(host, data.maps, meshes, laws, (map, frame) => charts.forEach(c => c.shows(map, frame)));
     live.read(null);
   }
+  const pair = document.querySelector('[data-comparison]');
+  let comparison = null;
+  if (pair && data.comparison) {
+    pair.hidden = false;
+    comparison = new Comparison(pair, data.comparison, data.meshes.map(m => new Mesh(m)));
+  }
   // For tests and for the curious, on the console.
-  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law, Chart };
+  window.fieldsolve = { map: live, comparison, charts, RAMPS, DIVERGING, MeshCanvas, Law, Chart };
   document.documentElement.dataset.ready = 'yes';
 }
 

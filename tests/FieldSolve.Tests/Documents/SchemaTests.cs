@@ -37,6 +37,15 @@ public sealed partial class SchemaTests
     public void A_sample_satisfies_the_schema(string name) =>
         Assert.Equal("", Errors(DeviceSchema, Json(File.ReadAllText(Repository.Sample(name)))));
 
+    // Either a file or corners.
+    [Theory]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"9 um\", \"0 um\"], [\"9 um\", \"9 um\"]], unit = \"um\"", true)]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"9 um\", \"0 um\"]]", false)]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"9 um\", \"0 um\"], [\"9 um\", \"9 um\"]], file = \"a.wkt\"", false)]
+    [InlineData("file = \"a.wkt\", unit = \"um\", holes = []", false)]
+    public void An_outline_of_corners_satisfies_the_schema_or_not(string outline, bool good) => Assert.Equal(
+        good, Errors(DeviceSchema, Json(DeviceTexts.Disc.Replace("disc = { diameter = \"8 um\" }", $"outline = {{ {outline} }}", StringComparison.Ordinal))).Length == 0);
+
     // What the reader refuses for its keys or kinds of values the schema refuses too.
     [Theory]
     [InlineData("diameter", "diametre")]

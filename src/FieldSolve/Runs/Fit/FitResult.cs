@@ -14,6 +14,9 @@ public sealed record FittedParameter(FitParameter Parameter, double? Value, doub
 {
     /// <summary>Where the fit ended, SI, determined or not.</summary>
     public required double Ended { get; init; }
+
+    /// <summary>By how much the model's numerical errors may have moved it, SI: errors of one reading go together along the currents, those of all readings at their worst.</summary>
+    public double NumericalError { get; init; }
 }
 
 /// <summary>One datum beside the model.</summary>

@@ -27,7 +27,11 @@ class LiveMap {
   constructor(host, maps, meshes, laws, changed) {
     Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, zoom: 1, panX: 0, panY: 0, cursor: null });
     // A cycle passes most currents twice: such frames are one.
-    this.sets = maps.map(m => m.frames.reduce((list, f) => [...list, f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f) : list[f.same]], []));
+    this.sets = maps.map(m => {
+      const all = [];
+      m.frames.forEach(f => all.push(f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f, all) : all[f.same]));
+      return all;
+    });
     this.mapIndex = 0;
     this.words = SLIDERS[maps[0].by];
     // The last drive value, the crest of a cycle, the first direction.

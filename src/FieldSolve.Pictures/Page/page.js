@@ -6,6 +6,7 @@ function theme() {
   const apply = v => {
     root.dataset.theme = v === 'auto' ? dark.matches ? 'dark' : 'light' : v;
     window.fieldsolve?.map?.drawProfiles();
+    window.fieldsolve?.shares?.forEach(s => s.draw());
   };
   dark.addEventListener('change', () => apply(select.select.value));
   apply('auto');
@@ -31,6 +32,10 @@ function start() {
       host.hidden = false;
     }
   }
+  const shares = [...document.querySelectorAll('[data-share]')].map(place => {
+    place.hidden = false;
+    return new ShareMap(place, data.share);
+  });
   const host = document.querySelector('[data-maps]');
   if (host && data.maps.length) {
     host.hidden = false;
@@ -39,7 +44,7 @@ function start() {
     live.read(null);
   }
   // For tests and for the curious, on the console.
-  window.fieldsolve = { map: live, charts, RAMPS, MeshCanvas, Law, Chart };
+  window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart };
   document.documentElement.dataset.ready = 'yes';
 }
 

@@ -13,9 +13,16 @@ internal static class LockinWords
     {
         foreach (Wiring wiring in result.Device.Wirings)
         {
-            foreach (IGrouping<double?, LockinPoint> group in result.Points.Where(p => p.Wiring == wiring.Name).GroupBy(p => p.Frequency))
+            // The lowest frequency and the highest: what lies between stands in the tables.
+            IGrouping<double?, LockinPoint>[] groups = [.. result.Points.Where(p => p.Wiring == wiring.Name).GroupBy(p => p.Frequency).OrderBy(g => g.Key)];
+            foreach (IGrouping<double?, LockinPoint> group in groups.Where((_, k) => k == 0 || k == groups.Length - 1))
             {
-                yield return Sentence(result, wiring, group.Key, [.. group]);
+                yield return Sentence(result, wiring, group.Key, [.. group], group == groups[0]);
+            }
+
+            if (result.Limits.Where(l => l.Wiring == wiring.Name && l.Harmonic is >= 1 and <= 3).GroupBy(l => l.CurrentRms).MaxBy(g => g.Key)?.MinBy(l => l.Frequency) is { } limit)
+            {
+                yield return $"Wiring {wiring.Name}: below {SiScale.Text(limit.Frequency, "Hz", 3)} the gate's charge moves no reading by more than 1 %; the first to feel it is V_{limit.Pair}, harmonic {limit.Harmonic.ToString(CultureInfo.InvariantCulture)}.";
             }
         }
 
@@ -25,7 +32,7 @@ internal static class LockinWords
         }
     }
 
-    private static string Sentence(LockinResult result, Wiring wiring, double? frequency, LockinPoint[] points)
+    private static string Sentence(LockinResult result, Wiring wiring, double? frequency, LockinPoint[] points, bool first)
     {
         string head = $"Wiring {wiring.Name}" + (frequency is { } f ? $", {SiScale.Text(f, "Hz")}" : "");
         if (points.Where(p => p.Readings.Count > 0).MaxBy(p => p.CurrentRms) is not { } last)
@@ -36,7 +43,7 @@ internal static class LockinWords
         string Read(string pair, int harmonic)
         {
             HarmonicReading? r = last.Of(pair, harmonic);
-            return r is null ? "" : $"{ErrorText.Of(r.R, r.Error, "V")} at {SiScale.Number(Math.Round(r.PhaseDegrees, 2), 5)}°";
+            return r is null ? "" : $"{ErrorText.Of(r.R, r.Error, "V")} at {SiScale.Number(Math.Round(r.PhaseDegrees, 2) + 0.0, 5)}°";
         }
 
         // What is read and can be told from its own error.
@@ -59,14 +66,9 @@ internal static class LockinWords
         }
 
         string sentence = $"{head}, at {SiScale.Text(last.CurrentRms, "A")} RMS: " + (parts.Count > 0 ? string.Join("; ", parts) + "." : "nothing is read beyond the numerical error.");
-        if (result.Slopes.FirstOrDefault(s => s.Wiring == wiring.Name && s.Frequency == frequency && s.Pair == "across" && s.Harmonic == 2) is { } slope)
+        if (first && result.Slopes.FirstOrDefault(s => s.Wiring == wiring.Name && s.Frequency == frequency && s.Pair == "across" && s.Harmonic == 2) is { } slope)
         {
             sentence += $" The second harmonic across grows with the current to the power {slope.Slope.ToString("F3", CultureInfo.InvariantCulture)} (2 for a weak second-order law).";
-        }
-
-        if (result.Limits.Where(l => l.Wiring == wiring.Name && l.CurrentRms == last.CurrentRms && l.Harmonic is >= 1 and <= 3).MinBy(l => l.Frequency) is { } limit)
-        {
-            sentence += $" Below {SiScale.Text(limit.Frequency, "Hz", 3)} the gate's charge moves no reading by more than 1 % (the first to feel it: {limit.Pair}, harmonic {limit.Harmonic.ToString(CultureInfo.InvariantCulture)}).";
         }
 
         return sentence;

@@ -44,6 +44,11 @@ class LiveMap {
     this.drawProfiles = perFrame(() => this.drawProfilesNow());
     this.#select();
     this.#size();
+    // The map itself first; the profiles need all frames unpacked.
+    requestAnimationFrame(() => setTimeout(() => {
+      this.shownOnce = true;
+      this.drawProfilesNow();
+    }, 0));
     new ResizeObserver(perFrame(() => this.#size())).observe(this.stage.parentElement);
     for (const when of ['beforeprint', 'afterprint']) {
       addEventListener(when, () => this.#size());
@@ -320,6 +325,9 @@ class LiveMap {
   }
 
   drawProfilesNow() {
+    if (!this.shownOnce) {
+      return;
+    }
     const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.profileBox.firstChild.clientWidth - 2, { crossing } = this;
     const key = [crossing.version, this.name, this.mapIndex, width, isDark()].join();
     if (key !== this.profileKey) {

@@ -25,17 +25,6 @@ function start() {
     live?.show(map, frame);
     live?.host.scrollIntoView({ block: 'nearest', behavior: matchMedia('(prefers-reduced-motion: reduce)').matches ? 'auto' : 'smooth' });
   };
-  for (const host of document.querySelectorAll('[data-chart]')) {
-    const spec = data.charts.find(c => c.id === host.dataset.chart);
-    if (spec) {
-      charts.push(new Chart(host, spec, pick));
-      host.hidden = false;
-    }
-  }
-  const shares = [...document.querySelectorAll('[data-share]')].map(place => {
-    place.hidden = false;
-    return new ShareMap(place, data.share);
-  });
   const host = document.querySelector('[data-maps]');
   if (host && data.maps.length) {
     host.hidden = false;
@@ -43,9 +32,25 @@ function start() {
     live = new LiveMap(host, data.maps, meshes, laws, (map, frame) => charts.forEach(c => c.shows(map, frame)));
     live.read(null);
   }
-  // For tests and for the curious, on the console.
-  window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart };
-  document.documentElement.dataset.ready = 'yes';
+  // The map is painted before charts are made.
+  const rest = () => {
+    for (const host of document.querySelectorAll('[data-chart]')) {
+      const spec = data.charts.find(c => c.id === host.dataset.chart);
+      if (spec) {
+        charts.push(new Chart(host, spec, pick));
+        host.hidden = false;
+      }
+    }
+    const shares = [...document.querySelectorAll('[data-share]')].map(place => {
+      place.hidden = false;
+      return new ShareMap(place, data.share);
+    });
+    charts.forEach(c => live && c.shows(live.map.id, live.frameIndex));
+    // For tests and for the curious, on the console.
+    window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart };
+    document.documentElement.dataset.ready = 'yes';
+  };
+  live ? requestAnimationFrame(() => setTimeout(rest, 0)) : rest();
 }
 
 // The columns of the paper before the parts are laid out anew for it.

@@ -47,7 +47,7 @@ function start() {
     });
     charts.forEach(c => live && c.shows(live.map.id, live.frameIndex));
     // For tests and for the curious, on the console.
-    window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart };
+    window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart, PackedNumbers };
     document.documentElement.dataset.ready = 'yes';
   };
   live ? requestAnimationFrame(() => setTimeout(rest, 0)) : rest();

@@ -13,6 +13,15 @@ function theme() {
   document.querySelector('header')?.append(select);
 }
 
+// Still pictures can be kept too.
+function keepStills() {
+  for (const image of document.querySelectorAll('main > figure img, .figures > figure img')) {
+    const text = () => ({ text: decodeURIComponent(image.getAttribute('src').replace(/^[^,]*,/, '')), width: Number(image.getAttribute('width')), height: Number(image.getAttribute('height')) });
+    const name = image.getAttribute('alt').split(/[;:.,]/)[0].slice(0, 40);
+    image.after(saveButtons({ label: () => name, name: () => fileName(document.title, name) }, text));
+  }
+}
+
 function start() {
   const block = document.getElementById('data');
   if (!block) {
@@ -46,6 +55,7 @@ function start() {
       return new ShareMap(place, data.share);
     });
     charts.forEach(c => live && c.shows(live.map.id, live.frameIndex));
+    keepStills();
     // For tests and for the curious, on the console.
     window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart, PackedNumbers };
     document.documentElement.dataset.ready = 'yes';

@@ -65,7 +65,7 @@ public static class ToleranceReport
     {
         SampleStatistics[] sampled = [.. result.Statistics.Where(s => s.Count > 1 && s.Deviation.Value > 0)];
         return "The error beside each value as designed is the numerical error of that voltage; that beside each first-order scatter is what a finer mesh would change of it."
-            + (sampled.Length == 0 ? "" : $" Over all readings it is at most {SiScale.Number(100 * sampled.Max(s => s.SpreadError / s.Deviation.Value), 2)} % of the sampled scatter. Brackets are 95 % intervals from the number of samples.")
+            + (sampled.Length == 0 ? "" : $" Over all readings it is at most {SiScale.Number(100 * sampled.Max(s => s.SpreadError / s.Deviation.Value), 2)} % of the sampled scatter. The intervals are for the number of samples.")
             + " None of this says how well the sizes of the causes are known.";
     }
 
@@ -96,7 +96,7 @@ public static class ToleranceReport
         SampleStatistics[] own = [.. result.Statistics.Where(s => s.Quantity.Wiring == wiring.Name)];
         SiScale Scale(SampleStatistics s, double size) => s.Quantity.IsRatio ? new(1, "") : SiScale.For(size, "V");
 
-        // An estimate and its interval in one unit, so that the row stays short.
+        // An estimate and below it its interval, in one unit.
         string Of(SampleStatistics s, SampleEstimate e, int digits)
         {
             if (s.Count < 2)
@@ -106,11 +106,11 @@ public static class ToleranceReport
 
             SiScale scale = Scale(s, Math.Max(Math.Abs(e.Low), Math.Abs(e.High)));
             string Number(double v) => SiScale.Number(v * scale.Factor, digits);
-            return $"{Number(e.Value)} ({Number(e.Low)} to {Number(e.High)}) {scale.Unit}".TrimEnd();
+            return $"{Number(e.Value)} {scale.Unit}".TrimEnd() + $"\n{Number(e.Low)} to {Number(e.High)}";
         }
 
         page.Table(
-            "As designed with its numerical error; the scatter in first order with what a finer mesh would change of it; then the samples, with 95 % intervals in brackets.",
+            "As designed with its numerical error; the scatter in first order with what a finer mesh would change of it; then the samples, each with its 95 % interval below.",
             ["reading", "as designed", "sigma, first order", "mean", "sigma", "5 %", "50 %", "95 %"],
             [.. own.Select(s => new[]
             {

@@ -37,9 +37,12 @@ class ShareMap {
   }
 
   draw() {
-    const { data, view, plot } = this, width = Math.max(260, Math.round(plot.parentElement.clientWidth || 600)), box = extentOf([data]), room = width < 420 ? 62 : 96;
+    const { data, view, plot } = this, width = Math.max(260, Math.round(plot.parentElement.clientWidth || 600)), box = extentOf([data]);
+    // Room for the longest name at each side; where there is little the share goes below it.
+    const below = width < 560, most = Math.max(...view.share, 1e-9), roles = view.roles.map(r => ({ source: ' I+', drain: ' I−' })[r] ?? (r.startsWith('along') ? ' ∥' : r.startsWith('across') ? ' ⊥' : '') + (r.endsWith('+') ? '+' : r.endsWith('-') ? '−' : ''));
+    const fits = below ? 12 : 24, room = Math.min(0.3 * width, 24 + 7.9 * (Math.max(...data.contacts.map((c, k) => Math.min(fits, c.name.length) + roles[k].length)) + (below ? 0 : 7)));
     const scale = Math.min((width - 2 * room) / box.width, 400 / box.height), high = box.height * scale + 72, height = high + 52, unit = scaleFor(Math.max(box.width, box.height) / 2, 'm');
-    const at = (x, y) => [width / 2 + scale * (x - box.cx), high / 2 - scale * (y - box.cy)], most = Math.max(...view.share, 1e-9);
+    const at = (x, y) => [width / 2 + scale * (x - box.cx), high / 2 - scale * (y - box.cy)];
     const path = points => points.map((v, k) => k % 2 ? '' : `${k ? 'L' : 'M'}${at(v, points[k + 1]).map(c => c.toFixed(1)).join(' ')}`).join('');
     fill(plot, { width, height, viewBox: `0 0 ${width} ${height}`, 'aria-label': `${data.title}: ${view.wiring}, ${view.quantity}. Left and right arrow go from contact to contact.` }, []);
     plot.replaceChildren(...data.rim.map(loop => svg('path', { class: 'sheet', d: path(loop) + 'Z' })));
@@ -52,12 +55,11 @@ class ShareMap {
       } else if (d) {
         plot.append(svg('path', { d, fill: 'none', class: 'ink', 'stroke-width': 14 }), svg('path', { d, fill: 'none', stroke: this.#colour(t), 'stroke-width': 11 }));
       }
-      const role = { source: ' I+', drain: ' I−' }[view.roles[k]] ?? (view.roles[k].startsWith('along') ? ' ∥' : view.roles[k].startsWith('across') ? ' ⊥' : '') + (view.roles[k].endsWith('+') ? '+' : view.roles[k].endsWith('-') ? '−' : '');
       const out = c.kind === 'pad' && Math.abs(u - width / 2) < 0.3 * scale * box.width && Math.abs(v - high / 2) < 0.3 * scale * box.height ? 0 : 1;
       const anchor = du > 0.35 ? 'start' : du < -0.35 ? 'end' : 'middle', x = (u + 15 * du * out).toFixed(1), y = v + 20 * dv * out + 4;
-      const text = svg('text', { class: `tag ${view.roles[k].replace(/[+-]$/, '')}`, x, y: y.toFixed(1), 'text-anchor': anchor }, c.name + role);
+      const text = svg('text', { class: `tag ${view.roles[k].replace(/[+-]$/, '')}`, x, y: y.toFixed(1), 'text-anchor': anchor }, shortened(c.name, fits) + roles[k]);
       if (view.share[k] >= 0.005) {
-        text.append(svg('tspan', { class: 'amount', dx: 5 }, `${number(100 * view.share[k], 2)} %`));
+        text.append(svg('tspan', below ? { class: 'amount', x, dy: 14 } : { class: 'amount', dx: 5 }, `${number(100 * view.share[k], 2)} %`));
       }
       names.append(text);
       return { u, v };

@@ -94,7 +94,8 @@ class ShareMap {
       return;
     }
     this.marks.append(svg('circle', { class: 'cursor', cx: this.places[k].u.toFixed(1), cy: this.places[k].v.toFixed(1), r: 16 }));
-    this.spoken.textContent = `${data.contacts[k].name}: ${number(100 * view.share[k], 3)} % of the variance. ${view.words[k]}`;
+    const s = view.share[k];
+    this.spoken.textContent = `${data.contacts[k].name}: ${s > 0 && s < 1e-5 ? 'less than 0.001' : number(100 * s, 3)} % of the variance. ${view.words[k]}`;
   }
 
   #hover(e) {

@@ -131,14 +131,27 @@ internal static class FramePacker
             }
         }
 
+        [System.Runtime.CompilerServices.MethodImpl(System.Runtime.CompilerServices.MethodImplOptions.AggressiveOptimization)]
         private double[] Parts(double[] values)
         {
             double[] parts = new double[directions.Count];
             for (int j = 0; j < parts.Length; j++)
             {
                 double[] d = directions[j];
-                double sum = 0;
-                for (int i = 0; i < values.Length; i++)
+
+                // Four sums side by side: the processor need not wait for each, and their order is fixed.
+                double a = 0, b = 0, c = 0, e = 0;
+                int n = values.Length - (values.Length % 4);
+                for (int i = 0; i < n; i += 4)
+                {
+                    a += d[i] * values[i];
+                    b += d[i + 1] * values[i + 1];
+                    c += d[i + 2] * values[i + 2];
+                    e += d[i + 3] * values[i + 3];
+                }
+
+                double sum = a + b + (c + e);
+                for (int i = n; i < values.Length; i++)
                 {
                     sum += d[i] * values[i];
                 }

@@ -93,24 +93,32 @@ internal static class PageTimes
         return small with { Frames = frames };
     }
 
-    private static async Task InBrowser(TextWriter output, string[] pages)
+    /// <summary>Chromium on the PATH, or null.</summary>
+    internal static string? ChromiumProgram()
     {
         string[] names = ["chromium", "chromium-browser", "google-chrome"];
-        string? program = (Environment.GetEnvironmentVariable("PATH") ?? "").Split(Path.PathSeparator)
+        return (Environment.GetEnvironmentVariable("PATH") ?? "").Split(Path.PathSeparator)
             .SelectMany(p => names.Select(n => Path.Combine(p, n))).FirstOrDefault(File.Exists);
-        if (program is null)
+    }
+
+    /// <summary>Starts it without a window.</summary>
+    internal static Task<IBrowser> Launch(IPlaywright playwright, string program) => playwright.Chromium.LaunchAsync(new()
+    {
+        ExecutablePath = program,
+        Headless = true,
+        Args = ["--headless", "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"],
+    });
+
+    private static async Task InBrowser(TextWriter output, string[] pages)
+    {
+        if (ChromiumProgram() is not { } program)
         {
             await output.WriteLineAsync("no Chromium on the PATH: no times in the browser");
             return;
         }
 
         using IPlaywright playwright = await Playwright.CreateAsync();
-        await using IBrowser browser = await playwright.Chromium.LaunchAsync(new()
-        {
-            ExecutablePath = program,
-            Headless = true,
-            Args = ["--headless", "--no-sandbox", "--disable-gpu", "--disable-quic", "--no-first-run", "--disable-background-networking", "--disable-component-update", "--disable-sync"],
-        });
+        await using IBrowser browser = await Launch(playwright, program);
         foreach (string path in pages)
         {
             foreach (string draw in (string[])["plain", "webgl"])

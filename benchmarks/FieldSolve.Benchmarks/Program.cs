@@ -23,6 +23,7 @@ if (args is ["layout", ..])
 {
     int drags = args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 0;
     FieldSolve.Benchmarks.LayoutTimes.Print(Console.Out, drags);
+    await FieldSolve.Benchmarks.LayoutPageTimes.Print(Console.Out);
     return;
 }
 

@@ -1,5 +1,8 @@
 using System.CommandLine;
 using FieldSolve.Cli.Commands;
+using FieldSolve.Fields;
+using FieldSolve.Meshing;
+using FieldSolve.Sparse;
 
 // Paths may be printed in any script; the names of quantities carry µ and Ω.
 Console.OutputEncoding = new System.Text.UTF8Encoding(false);
@@ -37,8 +40,17 @@ catch (OperationCanceledException)
     Console.Error.WriteLine("fieldsolve: cancelled before the first row was finished; nothing was written");
     return ExitCode.Cancelled;
 }
-catch (Exception e) when (e is IOException or UnauthorizedAccessException)
+catch (Exception e) when (Reason(e) is not null)
 {
-    Console.Error.WriteLine("fieldsolve: " + e.Message.ReplaceLineEndings(" "));
+    Console.Error.WriteLine("fieldsolve: " + Reason(e)!.ReplaceLineEndings(" "));
     return ExitCode.WrongInput;
 }
+
+// What the surroundings or the device forbid, also where it befell one of several threads; null for a mistake of the program's own.
+static string? Reason(Exception e) => e switch
+{
+    AggregateException all => all.Flatten().InnerExceptions.Select(Reason).FirstOrDefault(r => r is not null),
+    IOException or UnauthorizedAccessException or FieldSpaceException or MeshException or PivotException => e.Message,
+    OutOfMemoryException => "the run needs more memory than there is; lower max_unknowns or ask for a larger error",
+    _ => null,
+};

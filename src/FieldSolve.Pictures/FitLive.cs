@@ -72,7 +72,7 @@ internal static class FitLive
         double[] at = [.. Enumerable.Range(0, CurvePoints + 1).Select(k => low + ((high - low) * k / CurvePoints))];
         double Parabola(double x) => (x - best) * (x - best) / (error * error);
         double[] x = [.. at.Select(v => v / size)], ends = [x[0], x[^1]];
-        MathNet.Numerics.Interpolation.IInterpolation root = MathNet.Numerics.Interpolation.CubicSpline.InterpolatePchip(
+        MathNet.Numerics.Interpolation.CubicSpline root = MathNet.Numerics.Interpolation.CubicSpline.InterpolatePchip(
             [.. Thick(p.Profile).Select(q => q.Value)], [.. Thick(p.Profile).Select(q => Math.Sign(q.Value - best) * Math.Sqrt(q.Rise))]);
         return new(p.Parameter.Label, p.Parameter.Label, unit, "rise of chi squared", "",
         [

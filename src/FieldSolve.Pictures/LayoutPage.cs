@@ -18,8 +18,8 @@ public static class LayoutPage
     // In the order in which they use one another; the first ones are those of the report.
     private static readonly string[] Parts =
     [
-        "base.js", "colours.js", "packed.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "matrix.js", "chart.js", "frames.js", "layout-stage.js", "layout-fields.js", "layout-readings.js",
-        "layout.js",
+        "base.js", "plane.js", "colours.js", "packed.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "matrix.js", "chart.js", "frames.js", "layout-image.js", "layout-trace.js", "layout-picture.js", "layout-marks.js",
+        "layout-stage.js", "layout-fields.js", "layout-readings.js", "layout.js",
     ];
 
     /// <summary>The page; it names its script and style as page.js and page.css beside it.</summary>
@@ -62,6 +62,7 @@ public static class LayoutPage
         }
 
         w.WriteEndArray();
+        Outline(w, state);
         Contacts(w, device);
         Wirings(w, device);
         w.WriteStartArray("values");
@@ -174,6 +175,36 @@ public static class LayoutPage
         }
     }
 
+    // Corners that can be moved: loops as drawn, and where each corner stands in the text.
+    private static void Outline(Utf8JsonWriter w, SessionState state)
+    {
+        if (state.Device.Shape != "outline" || state.Device.Drawn.Sum(l => l.Count) > LayoutOutline.MostCorners)
+        {
+            return;
+        }
+
+        IReadOnlyList<IReadOnlyList<string?>> paths = LayoutOutline.Paths(state.Text, state.Device);
+        w.WriteStartObject("outline");
+        w.WriteString("file", state.Text.Find("sheet.outline.file")?.Value);
+        w.WriteStartArray("loops");
+        for (int l = 0; l < paths.Count; l++)
+        {
+            w.WriteStartObject();
+            LiveData.Numbers(w, "points", LiveDevice.Flat([.. state.Device.Drawn[l].Select(c => c.Start)]));
+            w.WriteStartArray("paths");
+            foreach (string? path in paths[l])
+            {
+                w.WriteStringValue(path);
+            }
+
+            w.WriteEndArray();
+            w.WriteEndObject();
+        }
+
+        w.WriteEndArray();
+        w.WriteEndObject();
+    }
+
     private static void Contacts(Utf8JsonWriter w, SheetDevice device)
     {
         w.WriteStartArray("contacts");
@@ -211,7 +242,7 @@ public static class LayoutPage
             w.WriteStartArray("roles");
             for (int k = 0; k < device.Contacts.Count + device.Tips.Count; k++)
             {
-                w.WriteStringValue(LiveDevice.Role(wiring, k < device.Contacts.Count ? new(false, k) : new(true, k - device.Contacts.Count)));
+                w.WriteStringValue(LiveDevice.AllRoles(wiring, k < device.Contacts.Count ? new(false, k) : new(true, k - device.Contacts.Count)));
             }
 
             w.WriteEndArray();

@@ -117,6 +117,9 @@ internal sealed class LiveData
     /// <summary>The device coloured by its contacts' shares; null for none.</summary>
     public LiveShare? Share { get; init; }
 
+    /// <summary>A measured map beside the computed one; null for none.</summary>
+    public LiveComparison? Comparison { get; init; }
+
     /// <summary>Title of the device, for file names and pictures.</summary>
     public string Title { get; init; } = "";
 
@@ -131,6 +134,12 @@ internal sealed class LiveData
         Array(w, "maps", Maps, Write);
         Array(w, "charts", Charts, Write);
         Share?.Write(w);
+        if (Comparison is not null)
+        {
+            w.WritePropertyName("comparison");
+            Comparison.Write(w, Meshes[Comparison.Mesh]);
+        }
+
         w.WriteEndObject();
     }
 
@@ -153,7 +162,7 @@ internal sealed class LiveData
         w.WriteBase64String("bentPlaces", mesh.Places(bent: true));
     }
 
-    internal static void Write(Utf8JsonWriter w, LiveContact c)
+    private static void Write(Utf8JsonWriter w, LiveContact c)
     {
         w.WriteString("name", c.Name);
         w.WriteString("role", c.Role);
@@ -184,14 +193,7 @@ internal sealed class LiveData
         w.WriteNumber("law", map.Law);
         w.WriteNumber("direction", map.Direction);
         w.WriteString("note", map.Note);
-        w.WriteStartArray("rim");
-        foreach (double[] loop in map.Rim)
-        {
-            Values(w, loop);
-        }
-
-        w.WriteEndArray();
-        Array(w, "contacts", map.Contacts, Write);
+        WriteOutline(w, map.Rim, map.Contacts);
 
         // A cycle passes most currents twice.
         int[] same = [.. map.Frames.Select((f, at) => Enumerable.Range(0, at)
@@ -240,6 +242,18 @@ internal sealed class LiveData
                 w.Flush();
             }
         });
+    }
+
+    internal static void WriteOutline(Utf8JsonWriter w, IReadOnlyList<double[]> rim, IReadOnlyList<LiveContact> contacts)
+    {
+        w.WriteStartArray("rim");
+        foreach (double[] loop in rim)
+        {
+            Values(w, loop);
+        }
+
+        w.WriteEndArray();
+        Array(w, "contacts", contacts, Write);
     }
 
     private static void Write(Utf8JsonWriter w, LiveChart chart)

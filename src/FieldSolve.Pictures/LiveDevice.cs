@@ -38,6 +38,17 @@ internal static class LiveDevice
     /// <summary>x, y, x, y, …</summary>
     public static double[] Flat(Point2[] points) => [.. points.SelectMany(p => (double[])[p.X, p.Y])];
 
+    /// <summary>All roles of a terminal in a wiring, with blanks between; empty for none.</summary>
+    public static string AllRoles(Wiring wiring, Terminal t)
+    {
+        (string Name, Terminal? Who)[] roles =
+        [
+            ("source", new(false, wiring.Source)), ("drain", new(false, wiring.Drain)), ("along+", wiring.Along?.Plus), ("along-", wiring.Along?.Minus),
+            ("across+", wiring.Across?.Plus), ("across-", wiring.Across?.Minus),
+        ];
+        return string.Join(' ', roles.Where(r => r.Who == t).Select(r => r.Name));
+    }
+
     /// <summary>Role of a terminal in a wiring; empty for none.</summary>
     public static string Role(Wiring wiring, Terminal t) =>
         t == new Terminal(false, wiring.Source) ? "source"

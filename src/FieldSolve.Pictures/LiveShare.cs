@@ -56,14 +56,7 @@ internal sealed class LiveShare
         w.WriteString("title", "Which contact matters");
         w.WriteString("note", "Contributions of one standard deviation each, first order, squared and over their sum. Point at a contact, or go from one to the next with the arrow keys.");
         w.WriteNumber("axis", device.Axis);
-        w.WriteStartArray("rim");
-        foreach (double[] loop in LiveDevice.Rim(device))
-        {
-            LiveData.Values(w, loop);
-        }
-
-        w.WriteEndArray();
-        LiveData.Array(w, "contacts", LiveDevice.Contacts(device, device.Wirings[0]).Take(device.Contacts.Count), LiveData.Write);
+        LiveData.WriteOutline(w, LiveDevice.Rim(device), [.. LiveDevice.Contacts(device, device.Wirings[0]).Take(device.Contacts.Count)]);
         LiveData.Array(w, "views", Views, (w, v) =>
         {
             w.WriteString("wiring", v.Wiring);

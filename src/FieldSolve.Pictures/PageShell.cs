@@ -23,6 +23,9 @@ internal static class PageShell
     /// <summary>A place that the script fills with the live maps.</summary>
     public static void Maps(Html page) => page.Raw("<section class=\"live\" data-maps hidden></section>");
 
+    /// <summary>A place that the script fills with a measured map, the computed one and their difference.</summary>
+    public static void Comparison(Html page) => page.Raw("<section class=\"live\" data-comparison hidden></section>");
+
     /// <summary>A place that the script fills with a live chart.</summary>
     /// <param name="page">The page.</param>
     /// <param name="id">Name of the chart, of letters, digits and hyphens.</param>

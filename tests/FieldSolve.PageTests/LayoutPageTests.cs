@@ -1,16 +1,15 @@
 using System.Globalization;
-using FieldSolve.Cli.Open;
 using FieldSolve.Device;
+using FieldSolve.Geometry;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
-using FieldSolve.Sessions;
 using Microsoft.Playwright;
 
 namespace FieldSolve.PageTests;
 
 /// <summary>The page on which layouts are tried, in a real browser, served by the program.</summary>
 [Collection(ReportCollection.Name)]
-public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
+public sealed class LayoutPageTests(ReportFixture shared) : LayoutPageBase(shared, LayoutPageTests.Text)
 {
     private const string Text = """
         title = '''<img src=x onerror="document.body.dataset.broken='yes'"> & disc'''   # stays as it is
@@ -44,90 +43,20 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
         even_error = 5e-2
         """;
 
-    private readonly string folder = Directory.CreateTempSubdirectory("layout-").FullName;
-    private readonly List<string> complaints = [];
-    private EditSession session = null!;
-    private OpenServer server = null!;
-    private IBrowserContext context = null!;
-
-    private string Device => Path.Combine(folder, "device.toml");
-
-    /// <inheritdoc/>
-    public async Task InitializeAsync()
-    {
-        if (Chromium.Missing is not null)
-        {
-            return;
-        }
-
-        await File.WriteAllTextAsync(Device, Text);
-        session = EditSession.Open(Device).Session!;
-        server = await OpenServer.Start(session, new OpenOptions());
-        context = await shared.Window(new() { ViewportSize = new() { Width = 1400, Height = 1000 }, ReducedMotion = ReducedMotion.Reduce });
-    }
-
-    /// <inheritdoc/>
-    public async Task DisposeAsync()
-    {
-        if (Chromium.Missing is null)
-        {
-            await context.DisposeAsync();
-            await server.DisposeAsync();
-        }
-
-        Directory.Delete(folder, recursive: true);
-    }
-
-    private async Task<IPage> Open()
-    {
-        IPage page = await context.NewPageAsync();
-        page.SetDefaultTimeout(120_000);
-        page.Console += (_, m) => Complain(m.Type, m.Text);
-        page.PageError += (_, m) => Complain("error", m);
-        await page.GotoAsync(server.Address);
-        await Accurate(page);
-        return page;
-    }
-
-    // A refused change is an answer of 422, which the browser also writes to its console.
-    private void Complain(string kind, string text)
-    {
-        if (kind is "error" or "warning" && !text.Contains("status of 422", StringComparison.Ordinal))
-        {
-            complaints.Add($"{kind}: {text}");
-        }
-    }
-
-    // The accurate answer of the newest layout stands.
-    private async Task Accurate(IPage page)
-    {
-        await page.WaitForFunctionAsync(
-            "version => { const a = window.fieldsolve?.app; return a?.answer?.complete && a.answer.version === version && a.state?.version === version && a.badge.dataset.accuracy === 'accurate'; }",
-            session.State.Version);
-    }
-
-    private static async Task<double> Shown(IPage page, string pair) =>
-        double.Parse((await page.GetAttributeAsync($"tr[data-pair='{pair}']", "data-value"))!, CultureInfo.InvariantCulture);
-
-    private static async Task Drag(IPage page, string name, float dx, float dy, int moves)
-    {
-        LocatorBoundingBoxResult box = (await page.Locator($"[data-contact='{name}'] .grip").BoundingBoxAsync())!;
-        (float x, float y) = (box.X + (box.Width / 2), box.Y + (box.Height / 2));
-        await page.Mouse.MoveAsync(x, y);
-        await page.Mouse.DownAsync();
-        await page.Mouse.MoveAsync(x + dx, y + dy, new() { Steps = moves });
-        await page.Mouse.UpAsync();
-        await page.WaitForFunctionAsync("() => !fieldsolve.app.link.busy && !fieldsolve.app.link.queue.length");
-    }
-
     [BrowserFact]
     public async Task A_drag_of_many_moves_leaves_one_answer_that_of_drive_for_the_saved_file_and_undo_the_same_bytes()
     {
         IPage page = await Open();
         double before = await Shown(page, "across");
-        await Drag(page, "c3", -30, 14, 200);
+        await Drag(page, page.Locator("[data-contact='c3'] .grip"), -30, 14, 200);
         await Accurate(page);
-        Assert.InRange(await page.EvaluateAsync<int>("fieldsolve.app.painted.accurate.length"), 1, 2);
+
+        // Moves that wait for their turn make way for the newest: of 200 at once the first and the last are sent.
+        int sent = await page.EvaluateAsync<int>(
+            "() => { const { app } = fieldsolve, c = app.state.contacts.find(x => x.name === 'c3'), before = app.link.sent; for (let k = 0; k < 200; k++) { app.stage.act.move('c3', c.middle[0] - k * 1e-9, c.middle[1] - k * 5e-10, 'many'); } return before; }");
+        await Settled(page);
+        Assert.Equal(sent + 2, await page.EvaluateAsync<int>("fieldsolve.app.link.sent"));
+        await Accurate(page);
         double after = await Shown(page, "across");
         Assert.NotEqual(before, after);
         await page.Keyboard.PressAsync("Control+s");
@@ -135,17 +64,32 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
         DriveResult drive = DriveRun.Execute(DeviceFile.Read(Device).Device!, new DriveOptions { ForPictures = false }, null, CancellationToken.None);
         Assert.Equal(drive.Rows[^1].Of("across")!.Value, after);
 
+        // As the file of before with "drive --shift c3=…": the length of rim between the two angles. Another mesh, so within both bars.
+        SheetDevice was = DeviceFile.Parse(Text, Device, Folder).Device!, now = DeviceFile.Read(Device).Device!;
+        Point2 from = was.Contacts[2].Middle, to = now.Contacts[2].Middle;
+        double metres = 4e-6 * (Math.Atan2(to.Y, to.X) - Math.Atan2(from.Y, from.X));
+        Assert.True(metres > 1e-7, "The contact hardly moved.");
+        SheetDevice shifted = CauseText.Apply(was, [string.Create(CultureInfo.InvariantCulture, $"c3={metres * 1e9:R}nm")]).Device!;
+        Reading reference = DriveRun.Execute(shifted, new DriveOptions { ForPictures = false }, null, CancellationToken.None).Rows[^1].Of("across")!;
+        Assert.InRange(Math.Abs(reference.Value - after), 0, reference.Error + await Shown(page, "across", "error"));
+        Assert.True(Math.Abs(after - before) > 5 * reference.Error, "The change is too small to tell.");
+
         // What was not touched stayed: comments, order, spacing.
         string saved = await File.ReadAllTextAsync(Device);
         Assert.StartsWith(Text[..Text.IndexOf("[[contacts]]", StringComparison.Ordinal)], saved, StringComparison.Ordinal);
         Assert.EndsWith(Text[Text.IndexOf("[[point]]", StringComparison.Ordinal)..], saved, StringComparison.Ordinal);
-        await page.ClickAsync("[data-do='undo']");
+        for (int k = 0; k < 2; k++)
+        {
+            await page.ClickAsync("[data-do='undo']");
+            await Settled(page);
+        }
+
         await page.WaitForFunctionAsync("() => !fieldsolve.app.state.canUndo");
-        Assert.Equal(Text, session.State.Text.Text);
+        Assert.Equal(Text, Session.State.Text.Text);
         await page.Locator("[data-do='save']").ClickAsync();
         await page.WaitForFunctionAsync("() => fieldsolve.app.state.saved");
         Assert.Equal(Text, await File.ReadAllTextAsync(Device));
-        Assert.Empty(complaints);
+        Assert.Empty(Complaints);
     }
 
     [BrowserFact]
@@ -158,15 +102,15 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
         await field.PressAsync("Enter");
         ILocator message = page.Locator(".field:has([data-path='law.a']) .field-message");
         await message.WaitForAsync();
-        string expected = DeviceFile.Parse(Text.Replace("a = \"4 mS\"", "a = \"4 S/m\"", StringComparison.Ordinal), Device, folder).Faults.Single().Message;
+        string expected = DeviceFile.Parse(Text.Replace("a = \"4 mS\"", "a = \"4 S/m\"", StringComparison.Ordinal), Device, Folder).Faults.Single().Message;
         Assert.Equal(expected, await message.InnerTextAsync());
         Assert.Equal(before, await Shown(page, "across"));
-        Assert.Equal(1, session.State.Version);
+        Assert.Equal(1, Session.State.Version);
         await field.FillAsync("3 mS");
         await field.PressAsync("Enter");
         await message.WaitForAsync(new() { State = WaitForSelectorState.Hidden });
-        Assert.Equal(3e-3, session.State.Device.Law.AtZeroField.Aa);
-        Assert.Empty(complaints);
+        Assert.Equal(3e-3, Session.State.Device.Law.AtZeroField.Aa);
+        Assert.Empty(Complaints);
     }
 
     [BrowserFact]
@@ -183,7 +127,7 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
         await two.Locator(".axis-handle").FocusAsync();
         await two.Keyboard.PressAsync("ArrowLeft");
         await one.WaitForFunctionAsync("() => fieldsolve.app.state.axis === 21");
-        Assert.Contains("axis = \"21 deg\"   # as measured", session.State.Text.Text, StringComparison.Ordinal);
+        Assert.Contains("axis = \"21 deg\"   # as measured", Session.State.Text.Text, StringComparison.Ordinal);
         await Accurate(one);
         await Accurate(two);
         Assert.Equal(await Shown(one, "across"), await Shown(two, "across"));
@@ -201,7 +145,7 @@ public sealed class LayoutPageTests(ReportFixture shared) : IAsyncLifetime
         await File.AppendAllTextAsync(Device, "\n# somebody else\n");
         await one.ClickAsync("[data-do='take']");
         await two.WaitForFunctionAsync("() => !fieldsolve.app.state.changedOnDisk");
-        Assert.EndsWith("# somebody else\n", session.State.Text.Text, StringComparison.Ordinal);
-        Assert.Empty(complaints);
+        Assert.EndsWith("# somebody else\n", Session.State.Text.Text, StringComparison.Ordinal);
+        Assert.Empty(Complaints);
     }
 }

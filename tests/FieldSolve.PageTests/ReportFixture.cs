@@ -185,7 +185,12 @@ public sealed class ReportFixture : IAsyncLifetime
     /// <summary>Path of a report by its kind.</summary>
     internal string PathOf(string kind) => kind switch
     {
-        "drive" => Path, "ring" => Ring.Path, "axis" => Axis.Path, "lockin" => Lockin.Path, "tolerance" => Tolerance.Path, _ => Fit.Path,
+        "drive" => Path,
+        "ring" => Ring.Path,
+        "axis" => Axis.Path,
+        "lockin" => Lockin.Path,
+        "tolerance" => Tolerance.Path,
+        _ => Fit.Path,
     };
 
     internal void WriteTolerance(string path) => ToleranceReport.Write(

@@ -1,13 +1,10 @@
 using System.CommandLine;
 using System.CommandLine.Parsing;
 using FieldSolve.Cli.Output;
-using FieldSolve.Device;
-using FieldSolve.Fields;
+using FieldSolve.Lockin;
 using FieldSolve.Measured;
-using FieldSolve.Meshing;
 using FieldSolve.Quantities;
 using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -35,7 +32,7 @@ internal static class FitCommand
         var command = new Command(
             "fit",
             "Numbers of the law, contacts and placement that [fit] leaves free, from measured voltages.\n\n"
-            + "Example: fieldsolve fit meshes/disc-12-fit.toml meshes/disc-12-data.csv --suggest 3 --out results")
+            + "Example: fieldsolve fit meshes/fit/disc-12.toml meshes/fit/disc-12-data.csv --suggest 3 --out results")
         {
             device, data, folder, noise, robust, suggest, starts, intervals, noPictures, quiet, json,
         };
@@ -51,6 +48,7 @@ internal static class FitCommand
                         Suggest = parsed.GetValue(suggest),
                         Starts = parsed.GetValue(starts),
                         AllIntervals = parsed.GetValue(intervals),
+                        Memory = new GateMemory(),
                     },
                     !parsed.GetValue(noPictures), parsed.GetValue(quiet), parsed.GetValue(json)),
                 cancel));
@@ -75,53 +73,16 @@ internal static class FitCommand
         },
     };
 
-    private static int Run(Choices choices, CancellationToken cancel)
+    private static int Run(Choices choices, CancellationToken cancel) => new MeasuredRun<MeasuredVoltages, FitResult>
     {
-        if (DeviceLoading.Load(choices.Device) is not { } device)
-        {
-            return ExitCode.WrongInput;
-        }
-
-        (MeasuredVoltages? data, IReadOnlyList<Fault> faults) = VoltageTable.Read(choices.Data, device, choices.Noise);
-        foreach (Fault fault in faults)
-        {
-            Console.Error.WriteLine(fault);
-        }
-
-        if (data is null)
-        {
-            return ExitCode.WrongInput;
-        }
-
-        var screen = new Screen(choices.Quiet);
-        FitResult result;
-        try
-        {
-            result = FitRun.Execute(device, data, choices.Options, screen, cancel);
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException or FitException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
-            return ExitCode.WrongInput;
-        }
-        catch (OperationCanceledException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine("cancelled before the fit stood; nothing was written");
-            return ExitCode.Cancelled;
-        }
-
-        bool cancelled = FitFiles.Write(result, choices.Folder, choices.Options, choices.Pictures, screen, cancel);
-        screen.Clear();
-        foreach (string warning in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + warning);
-        }
-
-        screen.Print(choices.Json ? FitText.Json(result, choices.Folder) : FitText.Plain(result, choices.Folder));
-        return cancelled ? ExitCode.Cancelled : result.AllOk ? ExitCode.Done : ExitCode.ToleranceNotReached;
-    }
+        What = "fit",
+        Read = device => VoltageTable.Read(choices.Data, device, choices.Noise),
+        Execute = (device, data, screen) => FitRun.Execute(device, data, choices.Options, screen, cancel),
+        Write = (result, screen) => FitFiles.Write(result, choices.Folder, choices.Options, choices.Pictures, screen, cancel),
+        Warnings = result => result.Warnings,
+        Summary = result => choices.Json ? FitText.Json(result, choices.Folder) : FitText.Plain(result, choices.Folder),
+        IsOk = result => result.AllOk,
+    }.Of(choices.Device, choices.Quiet);
 
     private static void Within(OptionResult result, int value, int least, int most, string name)
     {

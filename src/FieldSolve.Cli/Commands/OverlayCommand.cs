@@ -67,7 +67,7 @@ internal static class OverlayCommand
         var command = new Command(
             "overlay",
             "Lays a measured map of the potential or of |E| on the computed one and says where they differ by more than the noise.\n\n"
-            + "Example: fieldsolve overlay meshes/hall-bar.toml map.csv --current \"50 uA\" --out results")
+            + "Example: fieldsolve overlay meshes/fit/bar.toml meshes/fit/bar-map.csv --wiring along --out results")
         {
             device, map, folder, wiring, current, quantity, noise, scale, gain, offset, shift, turn, noPictures, quiet, json,
         };
@@ -128,7 +128,7 @@ internal static class OverlayCommand
         catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException or FitException)
         {
             screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
+            Console.Error.WriteLine(new Fault(e is FitException { IsOfData: true } ? choices.Map : choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
         }
         catch (OperationCanceledException)

@@ -12,7 +12,6 @@ namespace FieldSolve.Cli.Commands;
 /// <summary>fieldsolve tolerance DEVICE --out DIR.</summary>
 internal static class ToleranceCommand
 {
-    private const int MostSamples = 10_000_000;
     private const int UsualSamples = 256;
 
     private sealed record Choices(string Device, string Folder, ToleranceOptions Options, bool Pictures, bool Quiet, bool Json, int? Slurm);
@@ -23,7 +22,7 @@ internal static class ToleranceCommand
         Option<string?> folder = SharedOptions.Out();
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
         Option<int?> samples = new("--samples") { Description = "Most devices to sample; 0 for the budget alone. Default 256 (a hundred times that with --confidence).", HelpName = "N" };
-        samples.Validators.Add(r => Within(r, r.GetValueOrDefault<int?>(), 0, MostSamples, "--samples"));
+        samples.Validators.Add(r => Within(r, r.GetValueOrDefault<int?>(), 0, ToleranceOptions.MostSamples, "--samples"));
         Option<double?> confidence = new("--confidence")
         {
             Description = "Stop once every standard deviation is known to this part of itself (95 %), for example 0.05.",
@@ -119,6 +118,7 @@ internal static class ToleranceCommand
         if (options.Shards > 1)
         {
             screen.Clear();
+            journal.Keep();
             RunManners.Say(result.Cautions, result.Warnings);
             screen.Print(FormattableString.Invariant(
                 $"shard {options.Shard} of {options.Shards}: {result.Samples.Count} samples, {result.Solved} of them new, in {folder}{(result.Cancelled ? "; cancelled, the same command goes on from here" : "")}\n"));

@@ -18,7 +18,6 @@ namespace FieldSolve.Cli.Open;
 /// <summary>Serves the page of one session on 127.0.0.1 at a free port.</summary>
 internal sealed class OpenServer : IAsyncDisposable
 {
-    private const long LargestRequest = 1 << 20;
 
     private readonly EditSession session;
     private readonly WebApplication app;
@@ -35,7 +34,7 @@ internal sealed class OpenServer : IAsyncDisposable
         hub = new(options.Grace, () => ended.TrySetResult());
         hub.Tell(session.State);
         session.Changed += (_, _) => hub.Tell(session.State);
-        answers = new(session, () => hub.LookedAt, hub.Tell);
+        answers = new(session, () => hub.LookedAt, Tell);
         disk = new(_ => session.CheckDisk(), null, options.DiskCheck, options.DiskCheck);
     }
 
@@ -51,7 +50,7 @@ internal sealed class OpenServer : IAsyncDisposable
         {
             kestrel.Listen(IPAddress.Loopback, 0, listen => listen.Protocols = HttpProtocols.Http1);
             kestrel.AddServerHeader = false;
-            kestrel.Limits.MaxRequestBodySize = LargestRequest;
+            kestrel.Limits.MaxRequestBodySize = RequestBody.LargestRead;
         });
         WebApplication app = builder.Build();
         PageGuard guard = new();
@@ -84,6 +83,16 @@ internal sealed class OpenServer : IAsyncDisposable
         await app.DisposeAsync();
         hub.Dispose();
         stop.Dispose();
+    }
+
+    private void Tell(LayoutAnswer answer)
+    {
+        hub.Tell(answer);
+        if (answer.Drive is not null)
+        {
+            // A page stays open for hours and mostly rests; what the solves needed goes back to the machine.
+            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
+        }
     }
 
     private async Task Answer(HttpContext context)
@@ -119,7 +128,7 @@ internal sealed class OpenServer : IAsyncDisposable
         }
         catch (Microsoft.AspNetCore.Http.BadHttpRequestException e)
         {
-            await Send(context, e.StatusCode, "text/plain; charset=utf-8", "the request is too large or broken");
+            await Send(context, e.StatusCode, "text/plain; charset=utf-8", e.StatusCode == 413 ? "the request is too long" : "the request is broken");
         }
         catch (JsonException)
         {
@@ -171,7 +180,7 @@ internal sealed class OpenServer : IAsyncDisposable
         switch (what)
         {
             case "edit":
-                EditRequest edit = await context.Request.ReadFromJsonAsync<EditRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                EditRequest edit = await RequestBody.Read<EditRequest>(context);
                 await Result(context, edit.Apply(session));
                 break;
             case "undo":
@@ -183,15 +192,26 @@ internal sealed class OpenServer : IAsyncDisposable
                 await Result(context, []);
                 break;
             case "save":
-                SaveRequest save = await context.Request.ReadFromJsonAsync<SaveRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                SaveRequest save = await RequestBody.Read<SaveRequest>(context);
                 SaveOutcome outcome = save.Name is null ? session.Save(save.Overwrite) : session.SaveAs(save.Name, save.Overwrite);
                 await Send(context, outcome == SaveOutcome.Saved ? 200 : 409, "application/json", JsonSerializer.Serialize(new { outcome = outcome.ToString() }));
+                break;
+            case "trace":
+                TraceRequest trace = await context.Request.ReadFromJsonAsync<TraceRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                SaveOutcome traced = LayoutTrace.Save(session.State, trace.Name ?? "", trace.Read(), trace.Overwrite);
+                if (traced == SaveOutcome.Saved && session.State.Text.Pieces.Any(p => p.Value == trace.Name) && session.ReadFiles() is { Count: > 0 } faults)
+                {
+                    await Result(context, [.. faults.Select(f => (f, (string?)null))]);
+                    break;
+                }
+
+                await Send(context, traced == SaveOutcome.Saved ? 200 : 409, "application/json", JsonSerializer.Serialize(new { outcome = traced.ToString() }));
                 break;
             case "reload":
                 await Result(context, [.. session.Reload().Select(f => (f, (string?)null))]);
                 break;
             case "look":
-                LookRequest look = await context.Request.ReadFromJsonAsync<LookRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                LookRequest look = await RequestBody.Read<LookRequest>(context);
                 if (hub.Look(look.Page ?? "", look.Wiring ?? ""))
                 {
                     answers.Again();

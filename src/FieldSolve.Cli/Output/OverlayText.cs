@@ -31,6 +31,17 @@ internal static class OverlayText
         Line("gain", result.Gain, "", 1);
         Line("offset", result.Offset, unit, 1);
         text.Append($"\nresiduals {Engineering.Text(result.Rms, unit, 3)} root mean square, noise {Engineering.Text(result.Noise, unit, 3)}{(result.NoiseIsEstimated ? " (estimated from the residuals)" : "")}\n");
+        if (result.Patch is { } patch)
+        {
+            text.Append($"a patch of other conductance at ({Engineering.Text(patch.X.Value, "m", 3)}, {Engineering.Text(patch.Y.Value, "m", 3)}), fitted along");
+            text.Append(patch.Radius > 0 ? $"; it does what a dead disc of radius {Engineering.Text(patch.Radius, "m", 3)} would\n" : "; it conducts better than the sheet\n");
+        }
+
+        if (result.IsStructured)
+        {
+            text.Append(CultureInfo.InvariantCulture, $"the misfit has a pattern: {100 * result.Rejected:F0} % of the points count nothing, and the errors hold what another weighting does\n");
+        }
+
         foreach (OverlayPlace p in result.Places)
         {
             text.Append($"beyond the noise at ({Engineering.Text(p.Place.X, "m", 3)}, {Engineering.Text(p.Place.Y, "m", 3)}): {Engineering.Text(p.Mean, unit, 3)}, ");

@@ -43,8 +43,13 @@ class LayoutFields {
     return [null, false];
   }
 
-  show(state, selected, wiring) {
-    const [table, ring] = LayoutFields.tableOf(state, selected), wanted = [];
+  /** @param corner { loop, k } of the outline, or null. */
+  show(state, selected, wiring, corner = null) {
+    const [table, ring] = LayoutFields.tableOf(state, selected), wanted = [], loop = corner && state.outline?.loops[corner.loop];
+    if (loop) {
+      const count = loop.points.length / 2;
+      wanted.push([`corner ${loop.paths[corner.k] ?? ''}`, `Corner ${corner.k + 1} of ${count}${corner.loop ? `, hole ${corner.loop}` : ''}`, false, corner]);
+    }
     if (table) {
       wanted.push([table, ring ? `Ring of contacts with ${selected}` : selected, ring]);
     }
@@ -55,14 +60,18 @@ class LayoutFields {
     for (const t of ['drive', 'law', 'sheet', 'mesh']) {
       wanted.push([t, TABLE_NAMES[t], false]);
     }
-    const lists = wanted.map(([t, title, isRing]) => ({ table: t, title, isRing, values: state.values.filter(v => v.path.startsWith(t + '.') && ['text', 'number', 'flag'].includes(v.kind)) }));
-    const shape = JSON.stringify([lists.map(l => [l.table, l.title, l.values.map(v => v.path)]), state.contacts.map(c => c.name), state.values.find(v => v.path === 'law.kind')?.value]);
+    const lists = wanted.map(([t, title, isRing, at]) => {
+      // The corners of an outline have fields of their own, one corner at a time.
+      const own = at ? loop.paths[at.k] : null, inside = at ? v => own !== null && v.path.startsWith(own + '[') : v => v.path.startsWith(t + '.') && !/^sheet\.outline\.(corners|holes)/.test(v.path);
+      return { table: t, title, isRing, corner: at, values: state.values.filter(v => ['text', 'number', 'flag'].includes(v.kind) && inside(v)) };
+    });
+    const shape = JSON.stringify([lists.map(l => [l.table, l.title, l.values.map(v => v.path), state.outline?.file]), state.contacts.map(c => c.name), state.values.find(v => v.path === 'law.kind')?.value]);
     this.state = state;
     if (shape !== this.shape) {
       this.shape = shape;
       const open = new Map([...this.host.querySelectorAll('details')].map(d => [d.dataset.table.replace(/\[\d+\]$/, ''), d.open])), focus = document.activeElement?.dataset?.path;
       this.rows.clear();
-      this.host.replaceChildren(...lists.map(l => this.#section(l, open.get(l.table.replace(/\[\d+\]$/, '')))));
+      this.host.replaceChildren(...lists.map(l => this.#section(l, open.get(l.corner ? 'corner' : l.table.replace(/\[\d+\]$/, '')))));
       if (focus) {
         this.rows.get(focus)?.input.focus();
       }
@@ -105,8 +114,17 @@ class LayoutFields {
     row.input.removeAttribute('aria-invalid');
   }
 
-  #section({ table, title, isRing, values }, open) {
-    const body = html('div', { class: 'fields' }), box = html('details', { 'data-table': table, open: open ?? /^(contact|point|drive|law|wiring)/.test(table) }, html('summary', null, title), body);
+  #section({ table, title, isRing, values, corner }, open) {
+    const body = html('div', { class: 'fields' }), box = html('details', { 'data-table': corner ? 'corner' : table, open: open ?? /^(corner|contact|point|drive|law|wiring)/.test(table) }, html('summary', null, title), body);
+    if (corner) {
+      for (const v of values) {
+        body.append(this.#row(v, /\[0\]$/.test(v.path) ? 'x' : 'y'));
+      }
+      if (!values.length) {
+        body.append(html('p', { class: 'note-line' }, `The corners stand in ${this.state.outline.file}. When one is changed they are written into the device file, and that file stays as it is.`), html('button', { type: 'button', class: 'small', 'data-do': 'outline-own', onclick: () => this.act.ops([{ op: 'outline-own' }]) }, 'Write them into the device file'));
+      }
+      return box;
+    }
     for (const v of values) {
       if (!(isRing && v.path.endsWith('.prefix')) && !v.path.endsWith('.file')) {
         body.append(this.#row(v, v.path.slice(table.length + 1)));
@@ -131,7 +149,7 @@ class LayoutFields {
   }
 
   #row(v, rest) {
-    const table = v.path.slice(0, v.path.length - rest.length - 1), options = this.#options(table, rest), label = html('span', { class: 'field-label' }, fieldLabel(rest)), message = html('span', { class: 'field-message', role: 'alert', hidden: true });
+    const table = v.path.slice(0, Math.max(0, v.path.length - rest.length - 1)), options = this.#options(table, rest), label = html('span', { class: 'field-label' }, fieldLabel(rest)), message = html('span', { class: 'field-message', role: 'alert', hidden: true });
     const row = { path: v.path, message, shown: v.value };
     const send = (value, gesture) => {
       this.#clear(row);
@@ -189,27 +207,35 @@ class LayoutFields {
     this.act.ops(ops);
   }
 
+  // Keys that may come in addition, and those that may go.
   #adder(table, present) {
     const { state } = this, law = state.laws.find(l => l.name === state.byPath.get('law.kind')?.value), isEdge = present.some(k => k.startsWith('edge'));
     const keys = table === 'law' ? [{ key: 'axis', example: '0 deg' }, ...(law?.keys ?? [])]
       : table.startsWith('contacts[') ? [{ key: 'first', example: '0 deg' }, { key: 'resistance', example: '100 ohm um' }, { key: 'shift', example: '0 nm' }]
       : table.startsWith('contact[') ? isEdge ? [{ key: 'resistance', example: '100 ohm um' }, { key: 'shift', example: '0 nm' }] : [{ key: 'resistivity', example: '1e-7 ohm cm^2' }]
+      : table.startsWith('wiring[') ? [{ key: 'along', pair: true, meaning: 'the pair along the current' }, { key: 'across', pair: true, meaning: 'the pair across the current' }, { key: 'pairs', pair: true, meaning: 'one more pair' }]
       : table === 'drive' ? [{ key: 'both_signs', example: 'true', plain: true }]
       : table === 'mesh' ? [{ key: 'error', example: '1e-4', plain: true }, { key: 'even_error', example: '1e-3', plain: true }, { key: 'max_unknowns', example: '400000', plain: true }]
       : table === 'sheet' ? [{ key: 'dead_edge', example: '0 nm' }, { key: 'thickness', example: '10 nm' }, { key: 'mean_free_path', example: '100 nm' }] : [];
-    const open = keys.filter(k => !present.includes(k.key));
-    if (!open.length) {
+    const has = key => present.some(k => k === key || k.startsWith(`${key}[`)), extra = [...new Set(present.map(k => /^(pairs\..+)\[\d\]$/.exec(k)?.[1]).filter(k => k))];
+    const open = keys.filter(k => !has(k.key)), gone = [...keys.filter(k => has(k.key) && !k.required).map(k => k.key), ...extra];
+    if (!open.length && !gone.length) {
       return null;
     }
     const select = html('select', {
-      'aria-label': `Add a value to ${table}`, onchange: () => {
-        const key = open.find(k => k.key === select.value);
+      'aria-label': `Add or remove values of ${table}`, onchange: () => {
+        const [what, name] = [select.value.slice(0, 1), select.value.slice(1)], key = open.find(k => k.key === name);
         select.value = '';
-        if (key) {
-          this.act.ops([{ op: 'set', path: `${table}.${key.key}`, value: key.example, plain: key.plain ?? false }]);
+        if (what === '-') {
+          this.act.ops([{ op: 'remove', path: `${table}.${name}` }]);
+        } else if (key) {
+          this.act.ops([key.pair ? { op: 'pair', path: table, kind: key.key } : { op: 'set', path: `${table}.${key.key}`, value: key.example, plain: key.plain ?? false }]);
         }
       },
-    }, html('option', { value: '' }, 'Add …'), ...open.map(k => html('option', { value: k.key }, k.meaning ? `${k.key}: ${k.meaning}` : k.key)));
+    }, html('option', { value: '' }, open.length ? gone.length ? 'Add or remove …' : 'Add …' : 'Remove …'));
+    const group = (label, options) => options.length && select.append(html('optgroup', { label }, ...options));
+    group('Add', open.map(k => html('option', { value: `+${k.key}` }, k.meaning ? `${k.key}: ${k.meaning}` : k.key)));
+    group('Remove', gone.map(k => html('option', { value: `-${k}` }, k.replace(/^pairs\./, 'pair '))));
     return html('div', { class: 'adder' }, select);
   }
 }

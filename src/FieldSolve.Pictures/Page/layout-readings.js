@@ -28,23 +28,25 @@ class LayoutReadings {
       this.host.replaceChildren(html('p', { class: 'note-line' }, answer?.failure ? `No answer: ${answer.failure}.` : 'Waiting for an answer.'));
       return;
     }
-    const head = ['', reference ? 'reading, and change from the reference' : 'reading', 'odd part', 'even part'], body = html('tbody', null);
+    const head = ['', 'reading', 'odd part', 'even part'], body = html('tbody', null);
     const largest = Math.max(...row.readings.map(r => Math.abs(r.value)));
     for (const r of row.readings) {
       const share = largest > 0 ? Math.abs(r.value) / largest : 0, bar = svg('svg', { class: 'bar-line', viewBox: '0 0 100 6', preserveAspectRatio: 'none', 'aria-hidden': 'true' },
         svg('rect', { class: 'bar-back', x: 0, y: 0, width: 100, height: 6 }), svg('rect', { class: 'bar-fill', x: 0, y: 0, width: (100 * share).toFixed(2), height: 6 }),
         svg('rect', { class: 'bar-error', x: Math.max(0, 100 * share - 100 * r.error / (largest || 1)).toFixed(2), y: 0, width: Math.min(100, Math.max(0.6, 200 * r.error / (largest || 1))).toFixed(2), height: 6 }));
-      const cells = [html('th', { scope: 'row' }, r.pair), html('td', { class: 'main' }, plusMinus(r.value, r.error, 'V'), bar)];
-      cells.push(html('td', null, r.odd === undefined ? '–' : plusMinus(r.odd, r.error, 'V')), html('td', null, r.even === undefined ? '–' : plusMinus(r.even, r.evenError ?? 0, 'V')));
-      if (reference) {
-        const old = reference.readings.find(o => o.pair === r.pair);
-        cells[1].append(html('div', { class: 'change' }, old ? `Δ ${plusMinus(r.value - old.value, r.error + old.error, 'V')}` : 'Δ –'));
-      }
+      const old = reference?.readings.find(o => o.pair === r.pair);
+      // Errors of two answers are not independent; their sum is on the safe side.
+      const change = (now, error, before, beforeError) => reference && now !== undefined ? [html('div', { class: 'change' }, before === undefined ? 'Δ –' : `Δ ${plusMinus(now - before, error + beforeError, 'V')}`)] : [];
+      const cells = [
+        html('th', { scope: 'row' }, r.pair), html('td', { class: 'main' }, plusMinus(r.value, r.error, 'V'), bar, ...change(r.value, r.error, old?.value, old?.error ?? 0)),
+        html('td', null, r.odd === undefined ? '–' : plusMinus(r.odd, r.error, 'V'), ...change(r.odd, r.error, old?.odd, old?.error ?? 0)),
+        html('td', null, r.even === undefined ? '–' : plusMinus(r.even, r.evenError ?? 0, 'V'), ...change(r.even, r.evenError ?? 0, old?.even, old?.evenError ?? 0)),
+      ];
       body.append(html('tr', { 'data-pair': r.pair, 'data-value': r.value, 'data-error': r.error }, ...cells));
     }
     const status = row.status === 'ok' || !answer.accurate ? '' : ` Status ${row.status}.`;
     this.host.replaceChildren(
-      html('div', { class: 'wide' }, html('table', { class: 'readings' }, html('caption', null, `${wiring} at ${quantity(row.current, 'A')}; errors are those of the numerics.${status}`), html('thead', null, html('tr', null, ...head.map(h => html('th', { scope: 'col' }, h)))), body)));
+      html('div', { class: 'wide' }, html('table', { class: 'readings' }, html('caption', null, `${wiring} at ${quantity(row.current, 'A')}; errors are those of the numerics.${reference ? ` Δ is the change from the pinned reference${reference.current === row.current ? '' : `, which was at ${quantity(reference.current, 'A')}`}.` : ''}${status}`), html('thead', null, html('tr', null, ...head.map(h => html('th', { scope: 'col' }, h)))), body)));
     if (answer.cautions?.length) {
       this.host.append(html('details', { class: 'cautions' }, html('summary', null, `${answer.cautions.length} caution${answer.cautions.length > 1 ? 's' : ''} and warnings`), html('ul', null, ...answer.cautions.map(c => html('li', null, c)))));
     }

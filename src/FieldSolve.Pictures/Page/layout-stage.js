@@ -2,47 +2,62 @@
 
 const AXIS_DIAL = 40;
 
-class LayoutStage {
+// What a click does with each tool besides moving, and where the keys first put their cross.
+const PLACING = ['edge', 'pad', 'point', 'trace', 'measure'];
+
+class LayoutStage extends Plane {
   /**
    * @param host element to fill.
-   * @param act { move(name, x, y, gesture), turn(degrees, gesture), select(name), place(kind, x, y) }.
+   * @param act { move(name, x, y, gesture), turn(degrees, gesture), select(name), drop(name), place(kind, x, y), measure(x, y), corner(loop, k, x, y, gesture), cornerAdd(…),
+   * cornerDrop(loop, k), pickCorner(loop, k), busy() }.
    */
   constructor(host, act) {
-    Object.assign(this, { host, act, zoom: 1, panX: 0, panY: 0, selected: null, tool: 'move', quantity: 'phi', state: null, answer: null, frame: null, mesh: null, gestures: 0 });
+    super(0.1, 500);
+    Object.assign(this, { host, act, selected: null, tool: 'move', quantity: 'phi', mapStrength: 1, state: null, answer: null, frame: null, mesh: null, gestures: 0, picked: null });
     this.canvas = html('canvas', { 'aria-hidden': 'true' });
     this.window = svg('rect', null);
-    this.under = svg('g', { 'clip-path': 'url(#stage-clip)' });
     this.inside = svg('g', { 'clip-path': 'url(#stage-clip)' });
     this.axes = svg('g', null);
     this.dial = svg('g', { class: 'dial' });
     this.overlay = svg('svg', { class: 'overlay' }, svg('defs', null, svg('clipPath', { id: 'stage-clip' }, this.window)), this.inside, this.axes, this.dial);
-    this.stage = html('div', { class: 'stage layout-stage', role: 'application', 'aria-label': 'Layout. Tab goes from contact to contact, arrow keys move the one in focus, with Shift in small steps.' }, this.canvas, this.overlay);
+    this.picture = new Micrograph(this);
+    this.trace = new Trace(this, { changed: () => { this.draw(); this.act.traced(); }, others: () => [...(this.state?.outline?.loops ?? []).map(l => l.points), ...(this.state?.contacts ?? []).filter(c => c.kind === 'pad').map(c => c.points)] });
+    this.stage = html('div', { class: 'stage layout-stage', role: 'application', 'aria-label': 'Layout. Tab goes from contact to contact, arrow keys move the one in focus, with Shift in small steps.' }, this.picture.frame, this.canvas, this.overlay);
     this.legend = svg('svg', { class: 'legend', role: 'img' });
     host.append(this.stage, this.legend);
     this.draw = perFrame(() => this.drawNow());
     this.stage.addEventListener('pointerdown', e => this.#down(e));
     this.stage.addEventListener('pointermove', e => this.#hover(e));
+    this.stage.addEventListener('keydown', e => this.#placeKey(e));
     for (const end of ['pointerup', 'pointercancel']) {
       this.stage.addEventListener(end, e => this.#up(e));
     }
     this.stage.addEventListener('wheel', e => {
       if (e.ctrlKey || e.metaKey || e.shiftKey) {
-        e.preventDefault();
-        this.zoomBy(Math.exp(-(e.deltaY || e.deltaX) / 300), ...this.#where(e));
+        this.wheel(e);
       }
     }, { passive: false });
     new ResizeObserver(perFrame(() => this.#size())).observe(host);
+  }
+
+  /** Chooses what a click does. */
+  use(tool) {
+    this.tool = tool;
+    this.trace.near = null;
+    this.stage.dataset.tool = tool;
+    if (PLACING.includes(tool)) {
+      this.stage.setAttribute('tabindex', '0');
+    } else {
+      this.stage.removeAttribute('tabindex');
+    }
+    this.draw();
   }
 
   /** Shows another layout. */
   show(state) {
     const first = !this.state;
     this.state = state;
-    const xs = [], ys = [];
-    for (const points of [...state.rim, ...state.contacts.map(c => c.points)]) {
-      points.forEach((v, k) => (k % 2 ? ys : xs).push(v));
-    }
-    const x0 = Math.min(...xs), x1 = Math.max(...xs), y0 = Math.min(...ys), y1 = Math.max(...ys), box = { cx: (x0 + x1) / 2, cy: (y0 + y1) / 2, width: x1 - x0, height: y1 - y0 };
+    const box = extentOf([...state.rim, ...state.contacts.map(c => c.points)]);
     // The view stays while something is dragged, so that the pointer keeps what it holds.
     if (first || (!this.drag && ['cx', 'cy', 'width', 'height'].some(k => Math.abs(box[k] - this.extent[k]) > 0.02 * Math.max(box.width, box.height)))) {
       this.extent = box;
@@ -81,47 +96,10 @@ class LayoutStage {
     }
     const width = Math.max(260, this.host.clientWidth), box = this.extent, margin = { left: 52, right: 12, top: 14, bottom: 38 };
     const room = width - margin.left - margin.right, most = Math.max(280, Math.min(700, innerHeight - 250)), pad = 56;
-    const scale = Math.min((room - 2 * pad) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(260, box.height * scale + 2 * pad)) };
+    const scale = Math.min((room - 2 * pad) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 330 : 260, box.height * scale + 2 * pad)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
-    fill(this.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
-    for (const [name, value] of [['width', inner.width], ['height', inner.height], ['left', margin.left], ['top', margin.top]]) {
-      this.canvas.style[name] = value + 'px';
-    }
-    this.stage.style.height = this.height + 'px';
+    this.layOut(this.overlay, this.canvas, this.picture.frame);
     this.draw();
-  }
-
-  toScreen(x, y) {
-    const s = this.fit * this.zoom, box = this.extent;
-    return [this.margin.left + this.inner.width / 2 + this.panX + s * (x - box.cx), this.margin.top + this.inner.height / 2 + this.panY - s * (y - box.cy)];
-  }
-
-  toPlace(u, v) {
-    const s = this.fit * this.zoom, box = this.extent;
-    return [box.cx + (u - this.margin.left - this.inner.width / 2 - this.panX) / s, box.cy - (v - this.margin.top - this.inner.height / 2 - this.panY) / s];
-  }
-
-  /** Zooms about a point of the stage; the middle by default. */
-  zoomBy(factor, u = this.margin.left + this.inner.width / 2, v = this.margin.top + this.inner.height / 2) {
-    const [x, y] = this.toPlace(u, v);
-    this.zoom = Math.max(1, Math.min(500, this.zoom * factor));
-    if (this.zoom === 1) {
-      this.panX = this.panY = 0;
-    } else {
-      const [u1, v1] = this.toScreen(x, y);
-      this.panX += u - u1;
-      this.panY += v - v1;
-    }
-    this.draw();
-  }
-
-  #path(points, close = false) {
-    let d = '';
-    for (let i = 0; i < points.length; i += 2) {
-      const [u, v] = this.toScreen(points[i], points[i + 1]);
-      d += `${i ? 'L' : 'M'}${u.toFixed(1)} ${v.toFixed(1)}`;
-    }
-    return close ? d + 'Z' : d;
   }
 
   drawNow() {
@@ -129,6 +107,8 @@ class LayoutStage {
       return;
     }
     const { margin, inner, fields } = this, q = QUANTITIES[this.quantity];
+    this.picture.draw();
+    this.canvas.style.opacity = String(this.picture.there ? this.mapStrength : 1);
     if (fields && this.view) {
       let [low, high] = fields.range(this.quantity), values = fields.values(this.quantity);
       const ends = [low, high];
@@ -143,7 +123,7 @@ class LayoutStage {
       // While answers are coarse they come fast: one pixel of the page each is enough then.
       this.view.look(inner.width, inner.height, this.answer.accurate ? Math.min(2, devicePixelRatio || 1) : 1, this.fit * this.zoom, u - margin.left, v - margin.top);
       this.view.draw();
-      this.#drawLegend(ends, q);
+      rampLegend(this.legend, 'stage-ramp', { low: ends[0], high: ends[1], unit: q.unit, log: q.log && ends[1] > 0, table: RAMPS[q.table], label: q.label, width: this.width, left: margin.left, words: `; lines every ${quantity(this.step, 'V')}` });
     } else {
       this.canvas.width = this.canvas.width;
       this.legend.replaceChildren();
@@ -153,68 +133,45 @@ class LayoutStage {
   }
 
   #drawOver() {
-    const { margin, inner, inside, state } = this, right = margin.left + inner.width, bottom = margin.top + inner.height;
+    const { margin, inner, inside, state } = this, right = margin.left + inner.width;
     fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
-    const held = document.activeElement?.closest?.('[data-contact]')?.dataset.contact, nodes = [], names = svg('g', { class: 'names' });
+    const focus = document.activeElement?.closest?.('[data-contact], [data-corner], [data-traced]')?.dataset, nodes = [], names = svg('g', { class: 'names' });
     for (const loop of state.rim) {
-      nodes.push(svg('path', { class: 'rim', d: this.#path(loop, true) }));
+      const d = this.pathOf(loop, true);
+      // Over a picture the rim needs a bright line beside the dark one.
+      nodes.push(...this.picture.there ? [svg('path', { class: 'trace-halo', d })] : [], svg('path', { class: 'rim', d }));
     }
     const roles = state.wirings[this.wiring]?.roles ?? [];
     state.contacts.forEach((c, k) => {
-      const raw = roles[k] ?? '', role = raw.replace(/[+-]$/, ''), sign = raw.endsWith('+') ? '+' : raw.endsWith('-') ? '−' : '', chosen = c.name === this.selected;
-      const [u, v] = this.toScreen(...c.middle), word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
-      const group = svg('g', {
-        class: `part ${chosen ? 'chosen' : ''}`, 'data-contact': c.name, tabindex: 0, role: 'button', 'aria-pressed': String(chosen),
-        'aria-label': `${{ edge: 'Contact', pad: 'Pad', tip: 'Tip' }[c.kind]} ${c.name}${role ? `, ${role} ${sign}` : ''}; x ${number(c.middle[0] * this.unit.factor, 4)}, y ${number(c.middle[1] * this.unit.factor, 4)} ${this.unit.unit}. Arrow keys move it.`,
-        onkeydown: e => this.#key(e, c), onfocus: () => this.act.select(c.name),
-      });
-      if (c.kind === 'tip') {
-        group.append(svg('circle', { class: 'grip', cx: u.toFixed(1), cy: v.toFixed(1), r: 13 }), svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: chosen ? 6 : 4.5 }));
-      } else {
-        const d = this.#path(c.points, c.kind === 'pad'), wide = c.kind === 'pad' ? 2 : role ? 7 : 5;
-        group.append(svg('path', { class: 'grip', d, 'stroke-width': 22 }));
-        if (chosen) {
-          group.append(svg('path', { class: 'chosen-line', d, 'stroke-width': wide + 9 }));
-        }
-        group.append(svg('path', { class: 'halo', 'stroke-width': wide + 2.5, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': wide, d }));
-      }
-      if (this.marks?.[c.name] > 0) {
-        group.append(svg('circle', { class: 'sense', cx: u.toFixed(1), cy: v.toFixed(1), r: (26 * Math.sqrt(this.marks[c.name])).toFixed(1) }));
-      }
-      nodes.push(group);
-      // Names of edges stand outside the sheet, those of pads and tips beside them.
-      const [mu, mv] = this.toScreen(this.extent.cx, this.extent.cy), far = Math.hypot(u - mu, v - mv) || 1, out = c.kind === 'edge' ? 1 : 0, du = out * (u - mu) / far, dv = out * (v - mv) / far;
-      names.append(svg('text', {
-        class: `tag ${role}`, x: (u + 15 * du).toFixed(1), y: (v + (out ? 18 * dv + 4 : c.kind === 'tip' ? -10 : 4)).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
-      }, c.name + word + sign));
+      const { role, words } = roleOf(roles[k]);
+      nodes.push(partNode(this, c, role, words, (e, contact) => this.#key(e, contact)));
+      names.append(nameNode(this, c, role, words));
     });
-    inside.replaceChildren(...nodes, names);
-    if (held) {
-      [...inside.querySelectorAll('[data-contact]')].find(n => n.dataset.contact === held)?.focus({ preventScroll: true });
+    if (this.tool === 'corner' && state.outline) {
+      state.outline.loops.forEach((l, loop) => nodes.push(...cornerNodes(this, l.points, loop, (e, at, k) => this.#cornerKey(e, at, k))));
     }
-    this.#drawAxes(right, bottom);
+    inside.replaceChildren(...nodes, names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k), taken: name => state.contacts.some(c => c.name === name) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross());
+    if (focus) {
+      const key = ['contact', 'corner', 'traced'].find(k => focus[k] !== undefined);
+      [...inside.querySelectorAll(`[data-${key}]`)].find(n => n.dataset[key] === focus[key])?.focus({ preventScroll: true });
+    }
+    this.axes.replaceChildren(...this.axisNodes());
     this.#drawDial(right);
   }
 
-  #drawAxes(right, bottom) {
-    const { margin, axes } = this, f = this.unit.factor, [x0, y1] = this.toPlace(margin.left, margin.top), [x1, y0] = this.toPlace(right, bottom), step = roundStep((x1 - x0) * f, 7), nodes = [];
-    nodes.push(svg('path', { class: 'frame', d: `M${margin.left} ${margin.top}H${right}V${bottom}H${margin.left}Z` }));
-    const text = v => number(Math.abs(v) < 1e-9 * step ? 0 : v, 6);
-    for (const v of multiples(x0 * f, x1 * f, step)) {
-      const [u] = this.toScreen(v / f, 0);
-      nodes.push(svg('path', { class: 'frame', d: `M${u.toFixed(1)} ${bottom}v5` }), svg('text', { x: u.toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, text(v)));
+  // Where the keys would place something.
+  #cross() {
+    if (!this.cross || !PLACING.includes(this.tool) || document.activeElement !== this.stage || (this.tool === 'trace' && this.trace.near)) {
+      return [];
     }
-    for (const v of multiples(y0 * f, y1 * f, step)) {
-      const [, w] = this.toScreen(0, v / f);
-      nodes.push(svg('path', { class: 'frame', d: `M${margin.left} ${w.toFixed(1)}h-5` }), svg('text', { x: margin.left - 8, y: (w + 4).toFixed(1), 'text-anchor': 'end' }, text(v)));
-    }
-    nodes.push(svg('text', { x: (margin.left + right) / 2, y: bottom + 34, 'text-anchor': 'middle' }, `x (${this.unit.unit})`), svg('text', { transform: `translate(14 ${(margin.top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, `y (${this.unit.unit})`));
-    axes.replaceChildren(...nodes);
+    const [u, v] = this.toScreen(...this.cross), d = `M${u - 12} ${v}h24M${u} ${v - 12}v24`;
+    return [svg('path', { class: 'trace-halo', d }), svg('path', { class: 'measure', d })];
   }
 
   // The crystal axes beside the sheet: the longer line is a, the handle turns it.
   #drawDial(right) {
-    const cx = right - AXIS_DIAL - 14, cy = this.margin.top + AXIS_DIAL + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle), r = AXIS_DIAL;
+    // Smaller where there is little room.
+    const r = this.inner.width < 460 ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
     const held = document.activeElement?.classList?.contains('axis-handle');
     this.centre = [cx, cy];
     const at = (p, q) => `${(cx + p * c - q * s).toFixed(1)} ${(cy - p * s - q * c).toFixed(1)}`, [hu, hv] = at(r, 0).split(' ');
@@ -232,92 +189,161 @@ class LayoutStage {
       svg('circle', { class: 'dial-face', cx, cy, r: r + 10 }),
       svg('path', { class: 'ink', fill: 'none', 'stroke-width': 2.2, d: `M${at(-r, 0)}L${at(r, 0)}` }), svg('path', { class: 'ink', fill: 'none', 'stroke-width': 1.4, 'stroke-dasharray': '4 3', d: `M${at(0, -r * 0.7)}L${at(0, r * 0.7)}` }),
       svg('text', { x: (cx + 0.55 * r * c - 11 * s).toFixed(1), y: (cy - 0.55 * r * s - 11 * c + 4).toFixed(1), 'text-anchor': 'middle' }, 'a'), svg('text', { x: (cx - 0.5 * r * s - 11 * c).toFixed(1), y: (cy - 0.5 * r * c + 11 * s + 4).toFixed(1), 'text-anchor': 'middle' }, 'b'),
-      svg('text', { x: cx, y: cy + r + 26, 'text-anchor': 'middle' }, `axis ${number(this.state.axis, 5)}°`), handle);
+      svg('text', { class: 'tag', x: cx, y: cy + r + 26, 'text-anchor': 'middle' }, `axis ${number(this.state.axis, 5)}°`), handle);
     if (held) {
       handle.focus({ preventScroll: true });
     }
-  }
-
-  #drawLegend([low, high], q) {
-    const { legend, width } = this, left = this.margin.left, right = width - 16, table = RAMPS[q.table], defs = svg('linearGradient', { id: 'stage-ramp' });
-    for (let k = 0; k <= 32; k++) {
-      defs.append(svg('stop', { offset: k / 32, 'stop-color': rgbText(table, k / 32) }));
-    }
-    const scale = scaleFor(Math.max(Math.abs(low), Math.abs(high)), q.unit), log = q.log && high > 0, axis = makeAxis(low * scale.factor, (high > low ? high : low + 1) * scale.factor, left, right, log);
-    fill(legend, { width, height: 54, viewBox: `0 0 ${width} 54`, 'aria-label': `Colours: ${q.label} from ${quantity(low, q.unit)} to ${quantity(high, q.unit)}` }, []);
-    legend.replaceChildren(svg('defs', null, defs), svg('rect', { x: left, y: 4, width: right - left, height: 13, fill: 'url(#stage-ramp)', class: 'frame-line' }));
-    for (const v of axis.ticks) {
-      const u = axis.at(v);
-      if (u >= left - 1 && u <= right + 1) {
-        legend.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} 17v4` }), svg('text', { x: u.toFixed(1), y: 33, 'text-anchor': 'middle' }, number(v, 5)));
-      }
-    }
-    legend.append(svg('text', { x: left, y: 50 }, `${q.label} (${scale.unit})${log ? ', logarithmic' : ''}; lines every ${quantity(this.step, 'V')}`));
-  }
-
-  #where(e) {
-    const box = this.stage.getBoundingClientRect();
-    return [e.clientX - box.left, e.clientY - box.top];
   }
 
   #down(e) {
     if (e.button !== 0 || this.drag || !this.state) {
       return;
     }
-    const [u, v] = this.#where(e), part = e.target.closest?.('[data-contact]'), place = this.toPlace(u, v);
+    const [u, v] = this.where(e), part = e.target.closest?.('[data-contact]'), place = this.toPlace(u, v), { corner, mid, traced } = e.target.dataset ?? {};
     if (e.target.classList?.contains('axis-handle')) {
       e.target.focus({ preventScroll: true });
       this.drag = { what: 'axis', gesture: this.#gesture() };
-    } else if (this.tool !== 'move') {
-      this.act.place(this.tool, ...place);
+    } else if (corner !== undefined || mid !== undefined) {
+      const [loop, k] = (corner ?? mid).split(':').map(Number), gesture = this.#gesture();
+      if (mid !== undefined) {
+        this.act.cornerAdd(loop, k, ...place, gesture);
+      }
+      this.picked = { loop, k: mid !== undefined ? k + 1 : k };
+      this.act.pickCorner(this.picked.loop, this.picked.k);
+      e.target.focus({ preventScroll: true });
+      this.drag = { what: 'corner', ...this.picked, start: [u, v], gesture };
+    } else if (traced !== undefined) {
+      e.target.focus({ preventScroll: true });
+      const [index, k] = traced.split(':').map(Number);
+      this.drag = { what: 'traced', shape: this.trace.shapes[index], index: k };
+    } else if (PLACING.includes(this.tool)) {
+      this.stage.focus({ preventScroll: true });
+      this.#click(place, e.altKey);
+      e.preventDefault();
       return;
-    } else if (part) {
+    } else if (this.tool === 'picture' && this.picture.there) {
+      this.drag = { what: 'picture', last: place };
+    } else if (part && this.tool === 'move') {
       part.focus({ preventScroll: true });
       const contact = this.state.contacts.find(c => c.name === part.dataset.contact);
       this.act.select(contact.name);
       this.drag = { what: 'contact', name: contact.name, offset: [contact.middle[0] - place[0], contact.middle[1] - place[1]], start: [u, v], gesture: this.#gesture() };
-    } else if (this.zoom > 1) {
-      this.drag = { what: 'pan', last: [u, v] };
     } else {
       this.act.select(null);
-      return;
+      this.drag = { what: 'pan' };
     }
-    e.preventDefault();
-    this.stage.setPointerCapture(e.pointerId);
+    this.hold(e);
+  }
+
+  // What a click at a place does with the tool in hand.
+  #click(place, free) {
+    if (this.tool === 'trace') {
+      this.trace.add(place, free);
+    } else if (this.tool === 'measure') {
+      this.act.measure(...place);
+    } else {
+      this.act.place(this.tool, ...place);
+    }
   }
 
   #hover(e) {
-    const { drag } = this;
+    const { drag } = this, [u, v] = this.where(e), [x, y] = this.toPlace(u, v);
     if (!drag) {
+      if (this.tool === 'trace') {
+        this.trace.near = e.target.dataset?.traced === undefined ? this.trace.snap([x, y], e.altKey) : null;
+        this.draw();
+      }
       return;
     }
-    const [u, v] = this.#where(e);
     if (drag.what === 'pan') {
-      this.panX += u - drag.last[0];
-      this.panY += v - drag.last[1];
-      drag.last = [u, v];
-      this.draw();
+      this.shift(u, v);
     } else if (drag.what === 'axis') {
       const degrees = Math.atan2(this.centre[1] - v, u - this.centre[0]) * 180 / Math.PI;
       // Stays near the angle it had, so that 359 goes on to 360 and not back to 0.
       this.act.turn(Math.round(10 * (degrees + 360 * Math.round((this.state.axis - degrees) / 360))) / 10, drag.gesture);
+    } else if (drag.what === 'picture') {
+      this.act.shiftPicture(x - drag.last[0], y - drag.last[1]);
+      drag.last = [x, y];
+    } else if (drag.what === 'traced') {
+      const at = this.trace.snap([x, y], e.altKey, drag);
+      drag.shape.points[drag.index] = [at.x, at.y];
+      this.trace.near = at;
+      this.draw();
     } else if (drag.moved || Math.hypot(u - drag.start[0], v - drag.start[1]) > 2) {
       drag.moved = true;
-      const [x, y] = this.toPlace(u, v);
-      this.act.move(drag.name, x + drag.offset[0], y + drag.offset[1], drag.gesture);
+      if (drag.what === 'corner') {
+        this.act.corner(drag.loop, drag.k, x, y, drag.gesture);
+      } else {
+        this.act.move(drag.name, x + drag.offset[0], y + drag.offset[1], drag.gesture);
+      }
     }
   }
 
   #up(e) {
     if (this.drag) {
-      this.drag = null;
+      this.drag = this.trace.near = null;
       this.stage.releasePointerCapture?.(e.pointerId);
       this.show(this.state);
     }
   }
 
+  // Tools that place something take the arrow keys for their cross, and Enter for the click.
+  #placeKey(e) {
+    if (e.target !== this.stage || !PLACING.includes(this.tool) || !this.state) {
+      return;
+    }
+    const step = this.extent.width / this.zoom / (e.shiftKey ? 1000 : 100), [x, y] = this.cross ?? [this.extent.cx, this.extent.cy], to = { ArrowLeft: [-step, 0], ArrowRight: [step, 0], ArrowUp: [0, step], ArrowDown: [0, -step] }[e.key];
+    if (to) {
+      this.cross = [x + to[0], y + to[1]];
+      this.trace.near = { x: this.cross[0], y: this.cross[1], by: '' };
+    } else if (e.key === 'Enter' || e.key === ' ') {
+      // The keys snap to the first corner alone, since it ends a polygon.
+      const first = this.trace.open?.[0], near = this.tool === 'trace' && first && Math.hypot(first[0] - x, first[1] - y) < 1.5 * step;
+      this.#click(near ? first : [x, y], !near);
+    } else if (e.key === 'Backspace' && this.tool === 'trace') {
+      this.trace.back();
+    } else {
+      return;
+    }
+    e.preventDefault();
+    this.draw();
+  }
+
+  #arrow(e) {
+    const step = this.state.size / this.zoom / (e.shiftKey ? 4000 : 400);
+    return { ArrowLeft: [-step, 0], ArrowRight: [step, 0], ArrowUp: [0, step], ArrowDown: [0, -step] }[e.key];
+  }
+
+  #cornerKey(e, loop, k) {
+    const to = this.#arrow(e), points = this.state.outline.loops[loop].points, n = points.length / 2, what = `corner ${loop}:${k}`;
+    if (to) {
+      this.act.corner(loop, k, ...this.#from(what, [points[2 * k], points[2 * k + 1]], ([x, y]) => [x + to[0], y + to[1]]), this.#keyGesture(what));
+    } else if (e.key === 'Delete') {
+      this.act.cornerDrop(loop, k);
+    } else if (e.key === 'Insert' || e.key === 'Enter') {
+      const j = (k + 1) % n;
+      this.act.cornerAdd(loop, k, (points[2 * k] + points[2 * j]) / 2, (points[2 * k + 1] + points[2 * j + 1]) / 2, null);
+    } else {
+      return;
+    }
+    e.preventDefault();
+  }
+
+  #tracedKey(e, index, k) {
+    const to = this.#arrow(e), shape = this.trace.shapes[index];
+    if (to) {
+      shape.points[k] = [shape.points[k][0] + to[0], shape.points[k][1] + to[1]];
+    } else if (e.key === 'Delete' && shape.points.length > 3) {
+      shape.points.splice(k, 1);
+    } else {
+      return;
+    }
+    e.preventDefault();
+    this.trace.changed();
+  }
+
   #key(e, contact) {
-    const step = this.state.size / this.zoom / (e.shiftKey ? 4000 : 400), to = { ArrowLeft: [-step, 0], ArrowRight: [step, 0], ArrowUp: [0, step], ArrowDown: [0, -step] }[e.key];
+    const to = this.#arrow(e);
     if (to) {
       e.preventDefault();
       const { middle } = this.state.contacts.find(c => c.name === contact.name), along = contact.kind === 'edge' ? this.#tangent(contact, to) : to;

@@ -8,10 +8,11 @@ class Link {
     Object.assign(this, { refused, queue: [], busy: false, sent: 0, version: 0 });
   }
 
-  edit(ops, gesture = null) {
+  /** @param keep true: a later change of the gesture comes in addition, not instead. */
+  edit(ops, gesture = null, keep = false) {
     const last = this.queue[this.queue.length - 1];
-    const entry = { what: 'edit', body: { gesture, ops }, gesture };
-    if (last && gesture !== null && last.gesture === gesture) {
+    const entry = { what: 'edit', body: { gesture, ops }, gesture, keep };
+    if (last && !last.keep && gesture !== null && last.gesture === gesture) {
       this.queue[this.queue.length - 1] = entry;
     } else {
       this.queue.push(entry);
@@ -81,25 +82,31 @@ class LayoutApp {
     this.wiringBox = html('label', { class: 'choice' }, html('span', null, 'Wiring'), html('select', { onchange: e => this.#look(e.target.value) }));
     this.wiringSelect = this.wiringBox.lastChild;
     this.toolBox = html('div', { class: 'segments', role: 'group', 'aria-label': 'What a click on the map does' });
-    for (const [key, text, title] of [['move', 'Move', 'Drag contacts, pads and tips'], ['edge', '+ Contact', 'Click where an edge contact belongs'], ['pad', '+ Pad', 'Click where a pad belongs'], ['point', '+ Tip', 'Click where a tip belongs']]) {
+    for (const [key, text, title] of [['move', 'Move', 'Drag contacts, pads and tips'], ['corner', 'Corners', 'Drag, add and remove the corners of the outline'], ['edge', '+ Contact', 'Click where an edge contact belongs'], ['pad', '+ Pad', 'Click where a pad belongs'], ['point', '+ Tip', 'Click where a tip belongs']]) {
       this.toolBox.append(html('button', { type: 'button', class: 'small', title, 'data-tool': key, 'aria-pressed': String(key === 'move'), onclick: () => this.#tool(key) }, text));
     }
     const mapHost = html('div', { class: 'map-host' }), bar = html('div', { class: 'bar' }, this.wiringBox,
-      choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }), this.toolBox,
-      this.senseBox = tick('sensitivity', false, on => this.#sense(on)), html('span', { class: 'zooms' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in')));
+      choice('Show', [['phi', 'potential φ'], ['e', 'field |E|']], 'phi', v => { this.stage.quantity = v; this.stage.draw(); }),
+      this.senseBox = tick('sensitivity to misplaced contacts', false, on => this.#sense(on))), toolBar = html('div', { class: 'bar tool-bar' }, this.toolBox, html('span', { class: 'zooms', role: 'group', 'aria-label': 'Zoom' }, button('−', 'Zoom out', () => this.stage.zoomBy(1 / 1.5), 'zoom-out'), button('+', 'Zoom in', () => this.stage.zoomBy(1.5), 'zoom-in'), button('whole', 'Show the whole sheet', () => this.stage.whole(), 'zoom-whole')));
     this.hint = html('p', { class: 'note-line hint-line' }, '');
-    this.senseLine = html('p', { class: 'note-line sense-line', hidden: true });
+    this.senseLine = html('div', { class: 'sense-line', hidden: true });
+    const pictureHost = html('div', null);
     this.fault = html('p', { class: 'fault-line', role: 'alert', hidden: true });
     const readings = html('div', null), readingsBox = html('section', { class: 'live' }, html('div', { class: 'readings-head' }, html('h3', null, 'Readings'), this.badge), readings), charts = html('section', { class: 'live' });
     this.fieldsHost = html('section', { class: 'live fields-host', 'aria-label': 'Values of the device file' });
     const partTools = html('div', { class: 'part-tools' }, this.dropButton = button('Remove contact', 'Remove the chosen contact or tip (Delete)', () => this.#drop(this.selected), 'drop'),
       button('Add wiring', 'A wiring like the last one with the current turned round', () => this.link.edit([{ op: 'add', kind: 'wiring', x: 0, y: 0 }]), 'add-wiring'), this.dropWiring = button('Remove wiring', 'Remove the wiring on show', () => this.#drop(this.wiring), 'drop-wiring'));
-    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, mapHost, this.senseLine, this.fault, this.hint), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
+    const left = html('div', { class: 'layout-left' }, html('section', { class: 'live' }, bar, toolBar, mapHost, this.senseLine, this.fault, this.hint, pictureHost), charts), right = html('div', { class: 'layout-right' }, readingsBox, html('div', null, partTools, this.fieldsHost));
     document.body.append(header, this.notice, html('main', { class: 'layout-grid' }, left, right), html('footer', null, this.foot = html('p', null, 'Served on this machine alone. Nothing is written unless you save; closing the last page ends the program.')));
     this.stage = new LayoutStage(mapHost, {
       move: (name, x, y, gesture) => this.link.edit([{ op: 'move', name, x, y }], gesture),
       turn: (degrees, gesture) => this.link.edit([{ op: 'set', path: 'law.axis', value: `${Number(degrees.toFixed(2))} deg` }], gesture),
       select: name => this.#select(name), drop: name => this.#drop(name),
+      corner: (loop, corner, x, y, gesture) => this.link.edit([{ op: 'corner-move', loop, corner, x, y }], gesture),
+      cornerAdd: (loop, corner, x, y, gesture) => this.link.edit([{ op: 'corner-add', loop, corner, x, y }], gesture, true),
+      cornerDrop: (loop, corner) => this.link.edit([{ op: 'corner-drop', loop, corner }]),
+      pickCorner: (loop, k) => this.#pickCorner(loop, k),
+      measure: (x, y) => this.pictures.measure(x, y), shiftPicture: (dx, dy) => this.pictures.shift(dx, dy), traced: () => this.pictures?.show(),
       // A change is on its way, or made and not yet told.
       busy: () => this.link.busy || this.link.queue.length > 0 || this.link.version > this.state.version,
       place: (kind, x, y) => { this.link.edit([{ op: 'add', kind, x, y }]); this.#tool('move'); },
@@ -109,6 +116,9 @@ class LayoutApp {
       set: (path, value, gesture = null) => this.link.edit([{ op: 'set', path, value }], gesture), ops: ops => this.link.edit(ops), own: () => this.link.edit([{ op: 'own', name: this.selected }]),
     });
     this.readings = new LayoutReadings(readings, charts);
+    this.pictures = new PicturePanel(pictureHost, this.stage, {
+      tool: key => this.#tool(key), save: body => this.link.ask('trace', body), use: (name, alone) => this.link.edit([{ op: 'trace-use', name, kind: alone ? 'alone' : null }]),
+    });
     this.#tool('move');
   }
 
@@ -134,8 +144,11 @@ class LayoutApp {
     if (this.state && state.version !== this.state.version) {
       this.changed = performance.now();
     }
-    if (this.state?.byPath.has('turn.around') && !state.byPath.has('turn.around')) {
+    if (this.state?.byPath.has('turn.around') && !state.byPath.has('turn.around') && this.state.contacts.every(c => state.contacts.some(o => o.name === c.name))) {
       this.hint.textContent = 'The ring is now written as single contacts, so [turn] takes each wiring as one direction. Undo brings the ring back.';
+    }
+    if (this.state?.outline?.file && state.outline && !state.outline.file) {
+      this.hint.textContent = `The corners now stand in the device file; ${this.state.outline.file} stays as it is. Undo brings it back.`;
     }
     this.state = state;
     document.title = `${state.title} – layout`;
@@ -158,10 +171,18 @@ class LayoutApp {
       this.selected = this.stage.selected = null;
     }
     this.dropButton.disabled = !this.selected;
+    this.toolBox.querySelector('[data-tool="corner"]').hidden = !state.outline;
+    if (!state.outline && this.stage.tool === 'corner') {
+      this.#tool('move');
+    }
+    const { picked } = this.stage;
+    if (picked && !(state.outline?.loops[picked.loop]?.points.length > 2 * picked.k)) {
+      this.stage.picked = null;
+    }
     this.#diskNotice();
     this.stage.setWiring(names.indexOf(this.wiring));
     this.stage.show(state);
-    this.fields.show(state, this.selected, this.wiring);
+    this.#showFields();
     this.#badge();
   }
 
@@ -208,7 +229,7 @@ class LayoutApp {
     this.link.ask('look', { page: this.id, wiring: name });
     if (this.state) {
       this.stage.setWiring(this.state.wirings.findIndex(w => w.name === name));
-      this.fields.show(this.state, this.selected, name);
+      this.#showFields();
       if (this.senseBox.input.checked) {
         this.#sense();
       }
@@ -225,20 +246,43 @@ class LayoutApp {
     }
     this.selected = this.stage.selected = name;
     this.dropButton.disabled = !name;
-    this.fields.show(this.state, name, this.wiring);
+    this.#showFields();
+    this.stage.draw();
+  }
+
+  #showFields() {
+    this.fields.show(this.state, this.selected, this.wiring, this.stage.tool === 'corner' ? this.stage.picked : null);
+  }
+
+  #pickCorner(loop, k) {
+    this.stage.picked = { loop, k };
+    this.#showFields();
     this.stage.draw();
   }
 
   #tool(key) {
-    this.stage.tool = key;
     for (const b of this.toolBox.children) {
       b.setAttribute('aria-pressed', String(b.dataset.tool === key));
     }
-    this.stage.stage.dataset.tool = key;
-    this.hint.textContent = { move: 'Drag contacts, pads and tips, or turn the dial; Tab and the arrow keys do the same. Shift makes small steps, Delete removes.', edge: 'Click at the edge.', pad: 'Click where the pad belongs.', point: 'Click where the tip belongs.' }[key];
+    this.stage.use(key);
+    this.hint.textContent = {
+      move: 'Drag contacts, pads and tips, or turn the dial; Tab and the arrow keys do the same. Shift makes small steps, Delete removes.',
+      corner: 'Drag a corner, or a round mark to add one. Tab and the arrow keys do the same; Insert adds a corner, Delete removes the one in focus. Contacts keep their share of an edge.',
+      edge: 'Click at the edge, or move the cross by the arrow keys and press Enter.', pad: 'Click where the pad belongs, or move the cross by the arrow keys and press Enter.',
+      point: 'Click where the tip belongs, or move the cross by the arrow keys and press Enter.',
+      picture: 'Drag the picture to where it belongs.', measure: 'Click two points whose distance you know, such as the ends of a scale bar.',
+      trace: 'Click corner by corner; the first corner ends it. Backspace takes one back, Alt leaves snapping out.',
+    }[key];
+    this.pictures?.show();
+    if (this.state) {
+      this.#showFields();
+    }
+    if (['edge', 'pad', 'point', 'trace', 'measure'].includes(key)) {
+      this.stage.stage.focus({ preventScroll: true });
+    }
   }
 
-  // Circles on the contacts: what a misplacement of each does to the across voltage. Worked out anew when the layout rests.
+  // Colours of the contacts: what a misplacement of each does to the across voltage. Worked out anew when the layout rests.
   async #sense(on = this.senseBox.input.checked) {
     this.senseLine.hidden = !on;
     if (!on) {
@@ -251,7 +295,7 @@ class LayoutApp {
       return;
     }
     this.senseKey = key;
-    this.senseLine.textContent = 'Working out what misplaced contacts do …';
+    this.senseLine.replaceChildren(html('p', { class: 'note-line' }, 'Working out what misplaced contacts do …'));
     const at = new URL('sensitivity', HERE);
     at.searchParams.set('wiring', this.wiring);
     let body;
@@ -265,9 +309,16 @@ class LayoutApp {
       return;
     }
     const list = body.contacts ?? [], most = Math.max(0, ...list.map(c => c.odd));
-    this.stage.marks = list.length ? Object.fromEntries(list.map(c => [c.contact, most > 0 ? c.odd / most : 0])) : null;
-    this.senseLine.textContent = body.faults ? `No sensitivity: ${body.faults.map(f => f.message).join('; ')}.`
-      : `Circles, area in proportion: standard deviation of V_across, odd, by a misplaced contact. Largest: ${list.slice(0, 3).map(c => `${c.contact} (${c.causes}) ${plusMinus(c.odd, c.oddError, 'V')}${c.even ? `, even part ${plusMinus(c.even, c.evenError, 'V')}` : ''}`).join('; ')}.`;
+    this.stage.marks = list.length ? new Map(list.map(c => [c.contact, { share: most > 0 ? c.odd / most : 0, text: plusMinus(c.odd, c.oddError, 'V') }])) : null;
+    if (body.faults) {
+      this.senseLine.replaceChildren(html('p', { class: 'note-line' }, `No sensitivity: ${body.faults.map(f => f.message).join('; ')}.`));
+    } else {
+      const legend = svg('svg', { class: 'legend', role: 'img' }), even = list.some(c => c.even);
+      rampLegend(legend, 'sense-ramp', { low: 0, high: most, unit: 'V', log: false, table: RAMPS.ember, label: 'V_across, odd, by a misplaced contact', words: new Set(list.map(c => c.causes)).size === 1 ? `; each by ${list[0].causes} (σ)` : ', one σ each', width: this.stage.width, left: this.stage.margin.left });
+      this.senseLine.replaceChildren(legend, html('details', null, html('summary', null, 'Contact by contact'), html('div', { class: 'wide' }, html('table', null,
+        html('thead', null, html('tr', null, ...['contact', 'misplaced by (σ)', 'changes V_across, odd', ...even ? ['even'] : []].map(t => html('th', { scope: 'col' }, t)))),
+        html('tbody', null, ...list.map(c => html('tr', null, html('td', null, c.contact), html('td', null, c.causes), html('td', null, plusMinus(c.odd, c.oddError, 'V')), ...even ? [html('td', null, plusMinus(c.even, c.evenError, 'V'))] : [])))))));
+    }
     this.stage.draw();
   }
 
@@ -327,7 +378,11 @@ class LayoutApp {
     const typing = e.target.matches?.('input[type="text"]');
     if (!(e.ctrlKey || e.metaKey)) {
       if (e.key === 'Escape') {
-        this.#tool('move');
+        if (this.stage.trace.open) {
+          this.stage.trace.cancel();
+        } else {
+          this.#tool('move');
+        }
       }
       return;
     }

@@ -1,19 +1,5 @@
 // The live map: colours, level lines and lines of current of one frame of one wiring, a cursor that reads values, and the crossing lines.
 
-/** Box around the rims, contacts and tips of maps, metres. */
-function extentOf(maps) {
-  let x0 = Infinity, x1 = -Infinity, y0 = Infinity, y1 = -Infinity;
-  for (const points of maps.flatMap(m => [...m.rim, ...m.contacts.map(c => c.points)])) {
-    for (let i = 0; i < points.length; i += 2) {
-      x0 = Math.min(x0, points[i]);
-      x1 = Math.max(x1, points[i]);
-      y0 = Math.min(y0, points[i + 1]);
-      y1 = Math.max(y1, points[i + 1]);
-    }
-  }
-  return { cx: (x0 + x1) / 2, cy: (y0 + y1) / 2, width: x1 - x0, height: y1 - y0 };
-}
-
 // Words for what the slider turns.
 const SLIDERS = {
   current: { name: 'Drive value', all: 'the whole drive', others: 'the other values of the drive, darker for smaller ones' },
@@ -22,10 +8,11 @@ const SLIDERS = {
   axis: { name: 'Crystal axis', all: 'all axes', others: 'the other axes' },
 };
 
-class LiveMap {
+class LiveMap extends Plane {
   /** @param host element; maps that share this view; meshes and laws of the page. */
   constructor(host, maps, meshes, laws, changed) {
-    Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, zoom: 1, panX: 0, panY: 0, cursor: null });
+    super(1, 4000);
+    Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, cursor: null });
     // A cycle passes most currents twice: such frames are one.
     this.sets = maps.map(m => {
       const all = [];
@@ -38,7 +25,7 @@ class LiveMap {
     this.frameIndex = { current: maps[0].frames.length - 1, phase: this.sets[0].reduce((best, f, k, all) => f.frame.high > all[best].frame.high ? k : best, 0) }[maps[0].by] ?? 0;
     this.mesh = meshes[maps[0].mesh];
     this.crossing = new Crossing(this.mesh, maps[0].direction);
-    this.extent = extentOf(maps);
+    this.extent = extentOf(maps.flatMap(m => [...m.rim, ...m.contacts.map(c => c.points)]));
     this.#build();
     this.draw = perFrame(() => this.drawNow());
     this.drawProfiles = perFrame(() => this.drawProfilesNow());
@@ -111,9 +98,7 @@ class LiveMap {
     }, this.canvas, this.top.overlay);
     this.stage.addEventListener('wheel', e => {
       if (e.ctrlKey || document.activeElement === this.stage) {
-        e.preventDefault();
-        const box = this.stage.getBoundingClientRect();
-        this.zoomBy(Math.exp(-e.deltaY / 400), e.clientX - box.left, e.clientY - box.top);
+        this.wheel(e);
       }
     }, { passive: false });
     this.readout = html('output', { class: 'readout', 'aria-live': 'polite' });
@@ -121,7 +106,7 @@ class LiveMap {
       html('span', { role: 'group', 'aria-label': 'Zoom' },
         html('button', { type: 'button', class: 'small', 'aria-label': 'Zoom in', onclick: () => this.zoomBy(1.5) }, '+'),
         html('button', { type: 'button', class: 'small', 'aria-label': 'Zoom out', onclick: () => this.zoomBy(1 / 1.5) }, '−'),
-        html('button', { type: 'button', class: 'small', onclick: () => { this.zoom = 1; this.panX = this.panY = 0; this.draw(); } }, 'whole sheet')),
+        html('button', { type: 'button', class: 'small', onclick: () => this.whole() }, 'whole sheet')),
       saveButtons({ label: () => 'map', name: () => fileName(document.title, this.map.title, this.map.frames[this.frameIndex].label, this.name) }, () => this.#paper(), () => this.#csv()));
 
     const numberBox = (label, step, read) => {
@@ -162,38 +147,9 @@ class LiveMap {
     const room = width - margin.left - margin.right, scale = Math.min((room - 24) / box.width, Math.max(260, Math.min(620, innerHeight * 0.72) - (this.extent.width > 1.7 * this.extent.height ? 140 : 0)) / box.height);
     const inner = { width: room, height: Math.max(150, Math.round(box.height * scale + 24)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
-    fill(this.top.overlay, { width, height: this.height, viewBox: `0 0 ${width} ${this.height}` }, []);
-    for (const [name, value] of [['width', inner.width], ['height', inner.height], ['left', margin.left], ['top', margin.top]]) {
-      this.canvas.style[name] = value + 'px';
-    }
-    this.stage.style.height = this.height + 'px';
+    this.layOut(this.top.overlay, this.canvas);
     this.drawNow();
     this.drawProfilesNow();
-  }
-
-  /** Pixels of the stage for a place, and back. */
-  toScreen(x, y) {
-    const s = this.fit * this.zoom, box = this.extent;
-    return [this.margin.left + this.inner.width / 2 + this.panX + s * (x - box.cx), this.margin.top + this.inner.height / 2 + this.panY - s * (y - box.cy)];
-  }
-
-  toPlace(u, v) {
-    const s = this.fit * this.zoom, box = this.extent;
-    return [box.cx + (u - this.margin.left - this.inner.width / 2 - this.panX) / s, box.cy - (v - this.margin.top - this.inner.height / 2 - this.panY) / s];
-  }
-
-  /** Zooms about a point of the stage; the middle by default. */
-  zoomBy(factor, u = this.margin.left + this.inner.width / 2, v = this.margin.top + this.inner.height / 2) {
-    const [x, y] = this.toPlace(u, v);
-    this.zoom = Math.max(1, Math.min(4000, this.zoom * factor));
-    if (this.zoom === 1) {
-      this.panX = this.panY = 0;
-    } else {
-      const [u1, v1] = this.toScreen(x, y);
-      this.panX += u - u1;
-      this.panY += v - v1;
-    }
-    this.draw();
   }
 
   #select() {
@@ -341,18 +297,10 @@ class LiveMap {
     this.profiles.forEach((plot, line) => plot.shown(this.#curveOf(this.fields)(line)));
   }
 
-  #where(e) {
-    const box = this.stage.getBoundingClientRect();
-    return [e.clientX - box.left, e.clientY - box.top];
-  }
-
   #hover(e) {
-    const [u, v] = this.#where(e);
+    const [u, v] = this.where(e);
     if (this.dragging === 'pan') {
-      this.panX += u - this.last[0];
-      this.panY += v - this.last[1];
-      this.last = [u, v];
-      this.draw();
+      this.shift(u, v);
     } else if (this.dragging) {
       this.#drag(u, v);
     } else {
@@ -366,11 +314,10 @@ class LiveMap {
     if (e.button !== 0 || this.dragging) {
       return;
     }
-    const [u, v] = this.#where(e);
+    const [u, v] = this.where(e);
     if (this.zoom > 1 && e.pointerType === 'mouse') {
       this.dragging = 'pan';
-      this.last = [u, v];
-      this.stage.setPointerCapture(e.pointerId);
+      this.hold(e);
     }
     this.#read(this.toPlace(u, v));
   }
@@ -381,10 +328,9 @@ class LiveMap {
 
   #grab(e, what) {
     e.stopPropagation();
-    e.preventDefault();
     e.target.focus();
     this.dragging = what;
-    this.stage.setPointerCapture(e.pointerId);
+    this.hold(e);
   }
 
   #drag(u, v) {

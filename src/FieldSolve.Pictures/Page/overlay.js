@@ -23,38 +23,29 @@ class MapOverlay {
     this.overlayKey = this.legendKey = null;
   }
 
-  #path(points) {
-    let d = '';
-    for (let i = 0; i < points.length; i += 2) {
-      const [u, v] = this.view.toScreen(points[i], points[i + 1]);
-      d += `${i ? 'L' : 'M'}${u.toFixed(1)} ${v.toFixed(1)}`;
-    }
-    return d;
-  }
-
   draw() {
     const key = [this.view.zoom, this.view.panX, this.view.panY, this.view.width, this.view.height, this.view.mapIndex, this.view.crossing.version, this.view.flow && this.view.fields.flow ? this.view.frameIndex : '', this.view.map.frames[0].roles || this.view.map.by === 'axis' ? this.view.frameIndex : '', this.view.cursor?.x, this.view.cursor?.y].join();
     if (key === this.overlayKey) {
       return;
     }
     this.overlayKey = key;
-    const { map, margin, inner, fields } = this.view, { inside, axes } = this, right = margin.left + inner.width, bottom = margin.top + inner.height;
+    const { map, margin, inner, fields } = this.view, { inside, axes } = this;
     fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
     inside.replaceChildren();
     axes.replaceChildren();
     if (this.view.flow && fields.flow) {
-      const d = fields.flow.map(line => this.#path(line)).join(''), arrows = fields.flow.map(line => this.#arrow(line)).join('');
+      const d = fields.flow.map(line => this.view.pathOf(line)).join(''), arrows = fields.flow.map(line => this.#arrow(line)).join('');
       inside.append(
         svg('path', { d, fill: 'none', stroke: '#000', 'stroke-opacity': 0.45, 'stroke-width': 3 }), svg('path', { d, fill: 'none', stroke: '#fff', 'stroke-width': 1.3 }),
         svg('path', { d: arrows, fill: '#fff', stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 0.7 }));
     }
     for (const loop of map.rim) {
-      inside.append(svg('path', { class: 'rim', d: this.#path(loop) }));
+      inside.append(svg('path', { class: 'rim', d: this.view.pathOf(loop) }));
     }
     const names = svg('g', { class: 'names' });
     map.contacts.forEach((c, number) => {
       const whole = this.view.roleOf(number), role = whole.replace(/[+-]$/, ''), sign = whole.endsWith('+') ? '+' : whole.endsWith('-') ? '−' : '';
-      const d = c.kind === 'tip' ? null : this.#path(c.points), [u, v] = this.view.toScreen(...c.middle);
+      const d = c.kind === 'tip' ? null : this.view.pathOf(c.points), [u, v] = this.view.toScreen(...c.middle);
       if (d) {
         inside.append(svg('path', { class: 'halo', 'stroke-width': c.kind === 'pad' ? 4 : role ? 9 : 7, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': c.kind === 'pad' ? 2 : role ? 6.5 : 4, d }));
       } else {
@@ -73,7 +64,7 @@ class MapOverlay {
     }
     this.#drawCrossing(inside);
     inside.append(names);
-    this.#drawAxes(axes, right, bottom);
+    axes.append(...this.view.axisNodes());
     if (this.view.cursor) {
       const [u, v] = this.view.toScreen(this.view.cursor.x, this.view.cursor.y);
       inside.append(svg('path', { class: 'cross screen', d: `M${u - 12} ${v}H${u - 4}M${u + 4} ${v}H${u + 12}M${u} ${v - 12}V${v - 4}M${u} ${v + 4}V${v + 12}` }));
@@ -129,47 +120,15 @@ class MapOverlay {
     }
   }
 
-  #drawAxes(axes, right, bottom) {
-    const { margin } = this.view, f = this.view.unit.factor, [x0, y1] = this.view.toPlace(margin.left, margin.top), [x1, y0] = this.view.toPlace(right, bottom), step = roundStep((x1 - x0) * f, 7);
-    for (const v of multiples(x0 * f, x1 * f, step)) {
-      const [u] = this.view.toScreen(v / f, 0);
-      axes.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} ${bottom}v5` }), svg('text', { x: u.toFixed(1), y: bottom + 18, 'text-anchor': 'middle' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
-    }
-    for (const v of multiples(y0 * f, y1 * f, step)) {
-      const [, w] = this.view.toScreen(0, v / f);
-      axes.append(svg('path', { class: 'frame', d: `M${margin.left} ${w.toFixed(1)}h-5` }), svg('text', { x: margin.left - 8, y: (w + 4).toFixed(1), 'text-anchor': 'end' }, number(Math.abs(v) < 1e-9 * step ? 0 : v, 6)));
-    }
-    axes.append(
-      svg('path', { class: 'frame', d: `M${margin.left} ${margin.top}V${bottom}H${right}V${margin.top}Z` }),
-      svg('text', { x: right, y: bottom + 34, 'text-anchor': 'end' }, `x (${this.view.unit.unit})`),
-      svg('text', { transform: `translate(13 ${margin.top + 30}) rotate(-90)`, 'text-anchor': 'middle' }, `y (${this.view.unit.unit})`));
-  }
-
   drawLegend([low, high], q) {
     const key = [low, high, this.view.name, this.view.step, this.view.levels && this.view.fields.frame.high > this.view.fields.frame.low, this.view.width].join();
     if (key === this.legendKey) {
       return;
     }
     this.legendKey = key;
-    const { legend } = this, width = this.view.width, left = this.view.margin.left, right = width - 16, table = RAMPS[q.table], defs = svg('linearGradient', { id: 'map-ramp' });
-    for (let k = 0; k <= 32; k++) {
-      defs.append(svg('stop', { offset: k / 32, 'stop-color': rgbText(table, k / 32) }));
-    }
-    const scale = scaleFor(Math.max(Math.abs(low), Math.abs(high)), q.unit), log = q.log && high > 0;
-    const axis = makeAxis(low * scale.factor, (high > low ? high : low + 1) * scale.factor, left, right, log);
-    legend.setAttribute('width', width);
-    legend.setAttribute('height', 54);
-    legend.setAttribute('viewBox', `0 0 ${width} 54`);
-    legend.setAttribute('aria-label', `Colours: ${q.label} from ${quantity(low, q.unit)} to ${quantity(high, q.unit)}`);
-    legend.replaceChildren(svg('defs', null, defs), svg('rect', { x: left, y: 4, width: right - left, height: 13, fill: 'url(#map-ramp)', class: 'frame-line' }));
-    for (const v of axis.ticks) {
-      const u = axis.at(v);
-      if (u >= left - 1 && u <= right + 1) {
-        legend.append(svg('path', { class: 'frame', d: `M${u.toFixed(1)} 17v4` }), svg('text', { x: u.toFixed(1), y: 33, 'text-anchor': 'middle' }, number(v, 5)));
-      }
-    }
-    const lines = this.view.levels && this.view.fields.frame.high > this.view.fields.frame.low ? `; lines every ${quantity(this.view.step, 'V')}` : '';
-    const narrow = width < 460;
-    legend.append(svg('text', { x: narrow ? 4 : left, y: 50 }, `${q.label}${scale.unit ? ` (${scale.unit})` : ''}${log && !narrow ? ', logarithmic' : ''}${lines}`));
+    rampLegend(this.legend, 'map-ramp', {
+      low, high, unit: q.unit, log: q.log && high > 0, table: RAMPS[q.table], label: q.label, width: this.view.width, left: this.view.margin.left,
+      words: this.view.levels && this.view.fields.frame.high > this.view.fields.frame.low ? `; lines every ${quantity(this.view.step, 'V')}` : '',
+    });
   }
 }

@@ -41,6 +41,12 @@ function start() {
     live = new LiveMap(host, data.maps, meshes, laws, (map, frame) => charts.forEach(c => c.shows(map, frame)));
     live.read(null);
   }
+  const pair = document.querySelector('[data-comparison]');
+  let comparison = null;
+  if (pair && data.comparison) {
+    pair.hidden = false;
+    comparison = new Comparison(pair, data.comparison, data.meshes.map(m => new Mesh(m)));
+  }
   // The map is painted before charts are made.
   const rest = () => {
     for (const host of document.querySelectorAll('[data-chart]')) {
@@ -57,7 +63,7 @@ function start() {
     charts.forEach(c => live && c.shows(live.map.id, live.frameIndex));
     keepStills();
     // For tests and for the curious, on the console.
-    window.fieldsolve = { map: live, charts, shares, RAMPS, MeshCanvas, Law, Chart, PackedNumbers };
+    window.fieldsolve = { map: live, comparison, charts, shares, RAMPS, DIVERGING, MeshCanvas, Law, Chart, PackedNumbers };
     document.documentElement.dataset.ready = 'yes';
   };
   live ? requestAnimationFrame(() => setTimeout(rest, 0)) : rest();

@@ -37,7 +37,7 @@ class ShareMap {
   }
 
   draw() {
-    const { data, view, plot } = this, width = Math.max(260, Math.round(plot.parentElement.clientWidth || 600)), box = extentOf([data]);
+    const { data, view, plot } = this, width = Math.max(260, Math.round(plot.parentElement.clientWidth || 600)), box = extentOf([...data.rim, ...data.contacts.map(c => c.points)]);
     // Room for the longest name at each side; where there is little the share goes below it.
     const below = width < 560, most = Math.max(...view.share, 1e-9), roles = view.roles.map(r => ({ source: ' I+', drain: ' I−' })[r] ?? (r.startsWith('along') ? ' ∥' : r.startsWith('across') ? ' ⊥' : '') + (r.endsWith('+') ? '+' : r.endsWith('-') ? '−' : ''));
     const fits = below ? 12 : 24, room = Math.min(0.3 * width, 24 + 7.9 * (Math.max(...data.contacts.map((c, k) => Math.min(fits, c.name.length) + roles[k].length)) + (below ? 0 : 7)));

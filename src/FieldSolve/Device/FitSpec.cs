@@ -15,6 +15,9 @@ namespace FieldSolve.Device;
 public sealed record FitParameter(
     CauseKind Kind, CauseTarget Target, double Designed, double Start, double Least, double Most, double PriorMean, double? PriorSigma, bool Interval)
 {
+    /// <summary>Where it is left free in the device file: line and column, 1-based.</summary>
+    public (int Line, int Column) At { get; init; } = (1, 1);
+
     /// <summary>"a", "axis", "position of c4".</summary>
     public string Label => Target.Name.Length == 0 ? Kind.Key : $"{Kind.Key} of {Target.Name}";
 

@@ -104,6 +104,7 @@ public static class FitRecord
             ["value"] = p.Value / unit,
             ["standard_error"] = p.StandardError / unit,
             ["standard_error_scaled"] = poor ? p.StandardError / unit * Math.Sqrt(q.ChiSquared / q.Freedom) : p.StandardError / unit,
+            ["numerical_error"] = p.Value is null ? null : p.NumericalError / unit,
             ["interval_95"] = p.Interval is { } i ? new JsonArray(i.Low / unit, i.High / unit) : null,
             ["at_bound"] = p.AtBound,
             ["start"] = p.Parameter.Start / unit,

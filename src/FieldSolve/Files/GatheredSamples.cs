@@ -77,6 +77,11 @@ public sealed class GatheredSamples : ISampleStore
         {
             throw new JournalException("the device file (or the version of the program) is not the one the shards were made with");
         }
+
+        if (samples.Values.FirstOrDefault(s => s.Values.Length != 0 && s.Values.Length != values) is { } odd)
+        {
+            throw new JournalException(Text($"sample {odd.Index} has {odd.Values.Length} values, not {values}: a shard's {SampleJournal.FileName} was changed by hand; run that shard again"));
+        }
     }
 
     /// <inheritdoc/>

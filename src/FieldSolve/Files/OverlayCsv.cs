@@ -14,13 +14,13 @@ public static class OverlayCsv
         ArgumentNullException.ThrowIfNull(result);
         string unit = result.Measured.Quantity == MapQuantity.Potential ? "V" : "V_per_m";
         StringBuilder text = new();
-        CurvesCsv.AddLine(text, ["x_m", "y_m", "sheet_x_m", "sheet_y_m", "value_" + unit, "sigma_" + unit, "model_" + unit, "residual_" + unit, "residual_sigma", "weight", "line"]);
+        CurvesCsv.AddLine(text, ["x_m", "y_m", "sheet_x_m", "sheet_y_m", "value_" + unit, "sigma_" + unit, "model_" + unit, "residual_" + unit, "residual_sigma", "weight", "line", "model_err_" + unit, "patch_" + unit]);
         foreach (OverlaidPoint p in result.Points)
         {
             CurvesCsv.AddLine(text,
             [
                 Digits.Of(p.Point.X), Digits.Of(p.Point.Y), Digits.Of(p.Place.X), Digits.Of(p.Place.Y), Digits.Of(p.Point.Value), Digits.Of(p.Sigma), Digits.Of(p.Model),
-                Digits.Of(p.Residual), Digits.Of(p.Residual / p.Sigma), Digits.Of(p.Weight), p.Point.Line.ToString(CultureInfo.InvariantCulture),
+                Digits.Of(p.Residual), Digits.Of(p.Residual / p.Sigma), Digits.Of(p.Weight), p.Point.Line.ToString(CultureInfo.InvariantCulture), p.Model is null ? "" : Digits.Of(p.MapError), p.Model is null ? "" : Digits.Of(p.OfPatch),
             ]);
         }
 

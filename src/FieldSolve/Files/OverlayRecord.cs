@@ -40,7 +40,7 @@ public static class OverlayRecord
     {
         ArgumentNullException.ThrowIfNull(result);
         string unit = result.Measured.Quantity == MapQuantity.Potential ? "V" : "V_per_m";
-        JsonObject Number(Registered r, double scale = 1) => new() { ["value"] = r.Value / scale, ["standard_error"] = r.StandardError / scale, ["free"] = r.StandardError > 0 };
+        JsonObject Number(Registered r, double scale = 1) => new() { ["value"] = r.Value / scale, ["standard_error"] = r.StandardError / scale, ["noise_error"] = r.Noise / scale, ["numerical_error"] = r.Numerical / scale, ["weighting_error"] = r.Weighting / scale, ["free"] = r.StandardError > 0 };
         Reading? source = result.Row.Of("source");
         return new JsonObject
         {
@@ -67,6 +67,17 @@ public static class OverlayRecord
             ["noise_" + unit] = result.Noise,
             ["noise_is_estimated"] = result.NoiseIsEstimated,
             ["rms_over_noise"] = result.Rms / result.Noise,
+            ["rejected_share"] = result.Rejected,
+            ["misfit_over_noise"] = result.Misfit,
+            ["misfit_pattern"] = result.Structure,
+            ["misfit_is_structured"] = result.IsStructured,
+            ["patch"] = result.Patch is not { } patch ? null : new JsonObject
+            {
+                ["x_m"] = Number(patch.X),
+                ["y_m"] = Number(patch.Y),
+                ["missing_A_m"] = Number(patch.Missing),
+                ["dead_disc_radius_m"] = patch.Radius,
+            },
             ["beyond_noise"] = new JsonArray([.. result.Places.Select(p => (JsonNode)new JsonObject
             {
                 ["x_m"] = p.Place.X,

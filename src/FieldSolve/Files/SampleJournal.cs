@@ -43,12 +43,17 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     /// <summary>Name of the file in the folder of results.</summary>
     public const string FileName = "samples.part.csv";
 
+    // V; no sheet reads more, and the squares of larger numbers overflow.
+    private const double LargestVoltage = 1e30;
+
     private const string Mark = "# FieldSolve samples";
 
     private readonly string path;
     private readonly ToleranceOptions options;
     private readonly string device;
     private Dictionary<int, SampleResult> known = [];
+    private readonly List<SampleResult> added = [];
+    private JournalHead? head;
     private StreamWriter? writer;
 
     /// <summary>Names the file; nothing is opened yet.</summary>
@@ -66,13 +71,14 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     public IReadOnlyDictionary<int, SampleResult> Known => known;
 
     /// <inheritdoc/>
-    /// <exception cref="JournalException">The file there belongs to another run.</exception>
-    /// <exception cref="IOException">The file cannot be read or written, or another run is writing it.</exception>
+    /// <exception cref="JournalException">The file there belongs to another run, or another run is writing it.</exception>
+    /// <exception cref="IOException">The file cannot be read or written.</exception>
     public void Open(string design, int values)
     {
-        var head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
+        head = new JournalHead(design, options.Shard, options.Shards, options.Samples, options.Seed, device);
         if (File.Exists(path))
         {
+            RefuseIfInUse();
             (JournalHead there, known) = Read(path);
             if (there.Design != design || there.Shard != head.Shard || there.Shards != head.Shards)
             {
@@ -87,13 +93,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         // Written anew without what cannot be trusted, then added to.
-        var text = new StringBuilder(HeadLine(head));
-        foreach (SampleResult sample in known.Values.OrderBy(s => s.Index))
-        {
-            text.Append(Line(sample));
-        }
-
-        WholeFile.WriteText(path, text.ToString());
+        WriteAll();
         writer = new StreamWriter(new FileStream(path, FileMode.Append, FileAccess.Write, FileShare.Read), new UTF8Encoding(false)) { AutoFlush = true };
     }
 
@@ -102,6 +102,17 @@ public sealed class SampleJournal : ISampleStore, IDisposable
     {
         ArgumentNullException.ThrowIfNull(sample);
         (writer ?? throw new InvalidOperationException("The file of samples is not open.")).Write(Line(sample));
+        added.Add(sample);
+    }
+
+    /// <summary>Makes the file again where its folder vanished during the run.</summary>
+    /// <exception cref="IOException">The file cannot be written.</exception>
+    public void Keep()
+    {
+        if (writer is not null && !File.Exists(path))
+        {
+            WriteAll();
+        }
     }
 
     /// <summary>Closes the file.</summary>
@@ -126,7 +137,7 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         var samples = new Dictionary<int, SampleResult>();
 
         // What stands after the last line end was cut short.
-        foreach (string line in lines[1..^1])
+        foreach (string line in lines.Skip(1).SkipLast(1))
         {
             if (Sample(line) is { } sample)
             {
@@ -135,6 +146,30 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         return (head, samples);
+    }
+
+    private void WriteAll()
+    {
+        var text = new StringBuilder(HeadLine(head!));
+        foreach (SampleResult sample in known.Values.Concat(added).OrderBy(s => s.Index))
+        {
+            text.Append(Line(sample));
+        }
+
+        WholeFile.WriteText(path, text.ToString());
+    }
+
+    // Whoever writes the file holds it open.
+    private void RefuseIfInUse()
+    {
+        try
+        {
+            using var alone = new FileStream(path, FileMode.Open, FileAccess.ReadWrite, FileShare.None);
+        }
+        catch (IOException e) when (e is not (FileNotFoundException or DirectoryNotFoundException))
+        {
+            throw new JournalException($"another run is writing '{path}'; wait for its end or name another --out", e);
+        }
     }
 
     private static string HeadLine(JournalHead h)
@@ -152,7 +187,10 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         CultureInfo c = CultureInfo.InvariantCulture;
-        return new(design, int.Parse(shard, c), int.Parse(shards, c), int.Parse(samples, c), ulong.Parse(seed, c), device);
+        return int.TryParse(shard, NumberStyles.None, c, out int k) && int.TryParse(shards, NumberStyles.None, c, out int n) && k >= 1 && k <= n
+            && int.TryParse(samples, NumberStyles.None, c, out int count) && count <= ToleranceOptions.MostSamples && ulong.TryParse(seed, NumberStyles.None, c, out ulong start)
+            ? new(design, k, n, count, start, device)
+            : null;
     }
 
     private static string Line(SampleResult sample)
@@ -172,14 +210,15 @@ public sealed class SampleJournal : ISampleStore, IDisposable
         }
 
         string[] cells = line[..last].Split(',');
-        SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => SamplesCsv.StatusText(s!.Value) == cells[1]);
-        return status is null ? null : new(
-            int.Parse(cells[0], CultureInfo.InvariantCulture), status.Value,
-            [.. cells[2..].Select(v => double.Parse(v, CultureInfo.InvariantCulture))]);
+        SampleStatus? status = Enum.GetValues<SampleStatus>().Cast<SampleStatus?>().FirstOrDefault(s => cells.Length > 1 && SamplesCsv.StatusText(s!.Value) == cells[1]);
+        double[] values = [.. cells.Skip(2).Select(v => double.TryParse(v, NumberStyles.Float, CultureInfo.InvariantCulture, out double x) && Math.Abs(x) < LargestVoltage ? x : double.NaN)];
+        return status is { } known && int.TryParse(cells[0], NumberStyles.None, CultureInfo.InvariantCulture, out int index) && !values.Contains(double.NaN)
+            ? new(index, known, values)
+            : null;
     }
 
     // FNV-1a, 32 bits: G. Fowler, L. C. Noll, K.-P. Vo (1991); enough to tell a whole line from a cut one.
-    private static string Check(string text)
+    internal static string Check(string text)
     {
         uint hash = 2166136261;
         foreach (char c in text)

@@ -24,6 +24,11 @@ public static class VtuTriangles
     {
         try
         {
+            if (PlainFile.HasNoLength(path))
+            {
+                return ([], [], [], new(path, 1, 1, "the mesh file is empty (or no plain file); name a .vtu file written by 'fieldsolve mesh'"));
+            }
+
             (double[] x, double[] y, int[] corners) = new Grid(path, File.ReadAllBytes(path)).Triangles();
             return (x, y, corners, null);
         }

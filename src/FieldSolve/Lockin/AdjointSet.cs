@@ -1,3 +1,4 @@
+using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Solving;
 using FieldSolve.Sparse;

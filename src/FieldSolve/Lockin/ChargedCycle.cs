@@ -1,4 +1,5 @@
 using FieldSolve.Device;
+using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Solving;
 using FieldSolve.Sparse;

@@ -1,4 +1,5 @@
 using FieldSolve.Fields;
+using FieldSolve.Readings;
 using FieldSolve.Solving;
 using FieldSolve.Sparse;
 

@@ -8,18 +8,23 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Measured;
 
 /// <summary>
-/// A table of measured data: CSV (RFC 4180) with one header, whose columns end with their unit ("value_uV", "x_um", "value (uV)"). Lines that begin with # and
-/// empty lines are passed over.
+/// A table of measured data: CSV (RFC 4180) with one header, whose columns end with their unit ("value_uV", "x_um", "value (uV)"). Semicolons or tabulators may stand for
+/// the commas. Lines that begin with # and empty lines are passed over.
 /// </summary>
 internal sealed class DataTable
 {
     private const long LargestFile = 64_000_000;
+
+    // SI; no instrument reads less or more, and the squares of such numbers over- and underflow.
+    private const double Smallest = 1e-24, Largest = 1e12;
 
     private static readonly UTF8Encoding Strict = new(false, true);
 
     private readonly FaultList faults;
     private readonly List<DataCell[]> rows = [];
     private readonly Dictionary<string, (int Index, Unit Unit)> columns = new(StringComparer.Ordinal);
+
+    private char separator = ',';
 
     private DataTable(FaultList faults) => this.faults = faults;
 
@@ -54,6 +59,12 @@ internal sealed class DataTable
             if (info.Length > LargestFile)
             {
                 faults.Add(Place.Start, "the file is larger than 64 MB; was another file meant?");
+                return null;
+            }
+
+            if (PlainFile.HasNoLength(path))
+            {
+                faults.Add(Place.Start, "the file is empty (or no plain file); name a table (CSV) with a header and at least one row");
                 return null;
             }
 
@@ -96,6 +107,8 @@ internal sealed class DataTable
                 continue;
             }
 
+            // Spreadsheets of half the world write semicolons, instruments tabulators; the header has no other use for them.
+            table.separator = header is not null || content.Contains(',') ? table.separator : content.Contains(';') ? ';' : content.Contains('\t') ? '\t' : ',';
             if (table.Cells(raw, line) is not { } cells)
             {
                 continue;
@@ -153,12 +166,19 @@ internal sealed class DataTable
 
         if (!double.TryParse(cell.Text.Replace('\u2212', '-'), NumberStyles.Float, CultureInfo.InvariantCulture, out double value) || !double.IsFinite(value))
         {
-            string why = cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
+            string why = separator != ',' && cell.Text.Contains(',') ? "; write a decimal point" : cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
             faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is no finite number ('{column}'){why}");
             return null;
         }
 
-        return unit.Of(value);
+        double si = unit.Of(value);
+        if (si != 0 && Math.Abs(si) is < Smallest or > Largest)
+        {
+            faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is beyond anything that is measured ('{column}'); is its unit right?");
+            return null;
+        }
+
+        return si;
     }
 
     private bool Header(DataCell[] cells, IReadOnlyList<DataColumn> known)
@@ -210,7 +230,7 @@ internal sealed class DataTable
     {
         foreach (DataColumn k in known.OrderByDescending(k => k.Name.Length))
         {
-            if (text.StartsWith(k.Name, StringComparison.Ordinal))
+            if (text.StartsWith(k.Name, StringComparison.OrdinalIgnoreCase))
             {
                 string rest = text[k.Name.Length..];
                 if (rest.Length == 0)
@@ -241,7 +261,7 @@ internal sealed class DataTable
         int at = 0;
         while (true)
         {
-            while (at < raw.Length && raw[at] is ' ' or '\t')
+            while (at < raw.Length && raw[at] != separator && raw[at] is ' ' or '\t')
             {
                 at++;
             }
@@ -270,7 +290,7 @@ internal sealed class DataTable
                     }
                 }
 
-                int next = raw[at..].IndexOf(',');
+                int next = raw[at..].IndexOf(separator);
                 ReadOnlySpan<char> behind = next < 0 ? raw[at..] : raw.Slice(at, next);
                 if (!closed || !behind.Trim().IsEmpty)
                 {
@@ -288,7 +308,7 @@ internal sealed class DataTable
                 continue;
             }
 
-            int comma = raw[at..].IndexOf(',');
+            int comma = raw[at..].IndexOf(separator);
             ReadOnlySpan<char> cell = comma < 0 ? raw[at..] : raw.Slice(at, comma);
             cells.Add(new(cell.Trim().ToString(), line, column));
             if (comma < 0)

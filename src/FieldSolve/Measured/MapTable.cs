@@ -4,7 +4,7 @@ using FieldSolve.Quantities;
 
 namespace FieldSolve.Measured;
 
-/// <summary>Reads a measured map: columns x, y, value and perhaps sigma, with their units in the header. Rows with a blank value are points that were not measured.</summary>
+/// <summary>Reads a measured map: columns x, y, value and perhaps sigma, with their units in the header. Rows whose value is blank or nan are points that were not measured.</summary>
 public static class MapTable
 {
     /// <summary>Fewer points than these register nothing.</summary>
@@ -58,7 +58,8 @@ public static class MapTable
         var points = new List<MapPoint>();
         foreach (DataCell[] row in table.Rows)
         {
-            if (table.Cell(row, "value").Text.Length == 0)
+            // Instruments that scan a frame write one or the other where the tip met nothing.
+            if (table.Cell(row, "value").Text is "" or "nan" or "NaN" or "NAN" or "--")
             {
                 continue;
             }
@@ -84,6 +85,16 @@ public static class MapTable
         if (faults.Count == 0 && points.Count < FewestPoints)
         {
             faults.Add(new(table.HeaderLine, 1), string.Create(CultureInfo.InvariantCulture, $"the map has {points.Count} points; at least {FewestPoints} are needed to register it"));
+        }
+
+        if (faults.Count == 0 && points.TrueForAll(p => p.Value == points[0].Value))
+        {
+            faults.Add(new(table.HeaderLine, 1), "all values of the map are the same; there is nothing to register it by");
+        }
+
+        if (faults.Count == 0 && points.TrueForAll(p => p.X == points[0].X && p.Y == points[0].Y))
+        {
+            faults.Add(new(table.HeaderLine, 1), "all points of the map lie at one place; are x and y the right columns?");
         }
 
         return faults.Count > 0 ? (null, faults.InOrder()) : (new(path, table.Sha256, quantity, points), []);

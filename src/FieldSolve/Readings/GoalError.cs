@@ -31,13 +31,14 @@ internal sealed class GoalError
     private readonly double rest;       // part of the bar that does not depend on how good the correction is
 
     private readonly double least;      // least doubt
+    private readonly double doubt;      // doubt in the bar
 
     private readonly double unresolved; // part of the bar of a mesh on which no rate is reached
 
     private GoalError(double correction, double corrected, double rest, double least, double doubt, double[] perTriangle, double unresolved = 0)
     {
         this.unresolved = unresolved;
-        this.least = least;
+        (this.least, this.doubt) = (least, doubt);
         Correction = correction;
         this.corrected = corrected;
         this.rest = rest;
@@ -83,6 +84,10 @@ internal sealed class GoalError
 
     /// <summary>The same with a bar that trusts the correction no further than to its sign: for a mesh that nothing can be compared with yet.</summary>
     public GoalError Untried() => With(1);
+
+    /// <summary>The same with a bar that trusts the correction as far as that of the same reading did on these triangles before they were moved a little.</summary>
+    /// <param name="before">Error of that reading.</param>
+    public GoalError TriedAs(GoalError before) => With(Math.Max(least, before.doubt));
 
     /// <summary>
     /// The same with a wider bar when the corrected value moved by more than could be expected since the mesh before: the rates are not reached

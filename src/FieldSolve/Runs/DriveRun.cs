@@ -28,8 +28,8 @@ public static class DriveRun
         return Run(device, options, progress, new StageClock(), cancel).Result;
     }
 
-    /// <summary>The same, with the meshes that the answers come from; for what builds on a drive.</summary>
-    internal static (DriveResult Result, MeshPair Meshes) Run(
+    /// <summary>The same, with the meshes that the answers come from and the errors measured there; for what builds on a drive.</summary>
+    internal static (DriveResult Result, MeshRefinement Refinement) Run(
         SheetDevice device, DriveOptions options, IProgress<RunProgress>? progress, StageClock clock, CancellationToken cancel)
     {
         DriveSpec drive = device.Drive ?? throw new ArgumentException("The device has no [drive].", nameof(device));
@@ -64,6 +64,6 @@ public static class DriveRun
             Stages = clock.Times,
             Cancelled = cancelled,
         };
-        return (result, refinement.Meshes);
+        return (result, refinement);
     }
 }

@@ -89,7 +89,7 @@ internal sealed class DriveWork
             // One thread takes one task at a time; tasks are as long as a whole curve, so hand them out one by one.
             Parallel.ForEach(
                 Partitioner.Create(Enumerable.Range(0, plans.Length * signs), EnumerablePartitionerOptions.NoBuffering),
-                new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
+                new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) },
                 job => Follow(job / signs, job % signs, signs, peaks, progress, cancel));
         }
         catch (OperationCanceledException)

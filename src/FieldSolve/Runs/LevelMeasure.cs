@@ -82,8 +82,7 @@ internal static class LevelMeasure
             }
 
             cancel.ThrowIfCancellationRequested();
-            plus = State.Solve(meshes, plan, reached, cancel);
-            minus = bothSigns && plus is not null ? State.Solve(meshes, plan, -reached, cancel) : null;
+            Side(meshes, plan, reached, bothSigns, cancel, out plus, out minus);
         }
 
         ErrorShares evenShares = meshes.EvenShares(plus.EvenExponent);
@@ -110,6 +109,14 @@ internal static class LevelMeasure
         }
 
         return list;
+    }
+
+    // Both signs side by side.
+    private static void Side(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, CancellationToken cancel, out State? plus, out State? minus)
+    {
+        State?[] found = new State?[bothSigns ? 2 : 1];
+        Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel }, k => found[k] = State.Solve(meshes, plan, k == 0 ? current : -current, cancel));
+        (plus, minus) = (found[0], bothSigns && found[0] is not null ? found[1] : null);
     }
 
     // A coarse and a fine solution with the fine residual of the coarse one and the details of the adjoints.

@@ -1,4 +1,5 @@
 using System.Collections.Concurrent;
+using System.Runtime.ExceptionServices;
 using FieldSolve.Device;
 using FieldSolve.Fields;
 using FieldSolve.Geometry;
@@ -66,14 +67,44 @@ internal sealed class MeshPair
     public (double[] Coarse, double[] Fine)? Known(ReadingPlan plan, double current) =>
         known.TryGetValue((plan, current), out (double[] Coarse, double[] Fine) found) ? found : null;
 
-    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0, MeshPair? like = null)
+    public static MeshPair Build(SheetDevice device, TriangleMesh mesh, LabLaw law, CancellationToken cancel, int ground = 0)
     {
         FieldLevel? coarse = null, fine = null;
-        Parallel.Invoke(
-            new ParallelOptions { CancellationToken = cancel },
-            () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground, like?.Fine),
-            () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground, like?.Coarse));
+        try
+        {
+            Parallel.Invoke(
+                new ParallelOptions { CancellationToken = cancel },
+                () => fine = FieldLevel.Build(device, UniformSplit.Split(mesh), law, cancel, ground),
+                () => coarse = FieldLevel.Build(device, mesh, law, cancel, ground));
+        }
+        catch (AggregateException e)
+        {
+            // Both meshes fail alike; whoever asked waits for the fault itself.
+            ExceptionDispatchInfo.Throw(e.Flatten().InnerExceptions[0]);
+        }
+
         return new(coarse!, fine!);
+    }
+
+    /// <summary>The same triangles, unknowns and ordering after vertices have moved, the law has changed, or both; factors at zero field are made when first asked for.</summary>
+    /// <param name="device">Its contacts, ideal and resistive ones as before; see <see cref="Serves"/>.</param>
+    /// <param name="mesh">The coarse mesh, moved, or as it is.</param>
+    /// <param name="law">In the lab frame.</param>
+    public MeshPair Moved(SheetDevice device, TriangleMesh mesh, LabLaw law) => new(Coarse.Moved(device, mesh, law), Fine.Moved(device, UniformSplit.Split(mesh), law));
+
+    /// <summary>Whether the unknowns are those of a device whose domain differs in places alone: the same contacts are ideal, and the same have a line of metal or a layer.</summary>
+    public bool Serves(SheetDevice device) => Coarse.Space.Contacts.Count == device.Contacts.Count && Coarse.Space.Contacts.Zip(device.Contacts)
+        .All(p => (p.First.LineResistance == 0, p.First.Resistivity == 0) == (p.Second.LineResistance == 0, p.Second.Resistivity == 0));
+
+    /// <summary>Lets go of the factors of large meshes before others are made; they come back, the same, when they are asked for.</summary>
+    public void ForgetIfLarge()
+    {
+        if (SharedCores.IsLarge(Fine.Space.Size))
+        {
+            Fine.Forget();
+            Coarse.Forget();
+            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
+        }
     }
 
     /// <summary>The same two meshes under another law.</summary>

@@ -3,6 +3,7 @@ using FieldSolve.Laws;
 using FieldSolve.Meshing;
 using FieldSolve.Meshing.SizeFields;
 using FieldSolve.Readings;
+using FieldSolve.Solving;
 
 namespace FieldSolve.Runs;
 
@@ -130,6 +131,7 @@ internal sealed class MeshRefinement
             }
 
             size = MeshSizes.Next(meshes, measured, level, (int)(0.95 * mostTriangles));
+            meshes.ForgetIfLarge();
         }
     }
 
@@ -165,6 +167,7 @@ internal sealed class MeshRefinement
             }
 
             tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
+            meshes.ForgetIfLarge();
             MeshPair next = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
             now = new(next, now.Goals, [.. now.Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [])], now.IsMet);
         }
@@ -218,7 +221,7 @@ internal sealed class MeshRefinement
     {
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
-            0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount },
+            0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) },
             k => perPlan[k] = LevelMeasure.Of(
                 laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel));
         for (int k = 0; k < plans.Count; k++)

@@ -48,9 +48,15 @@ public sealed class MeshMover
     }
 
     /// <summary>The mesh on a moved domain; null when the domain differs in more than places or a triangle loses its shape: then mesh anew.</summary>
-    public TriangleMesh? Move(Domain to)
+    public TriangleMesh? Move(Domain to) => Move(to, out _);
+
+    /// <summary>The same, and how well the shapes were kept.</summary>
+    /// <param name="to">The moved domain.</param>
+    /// <param name="kept">Least ratio of a triangle's shape measure to the one it had; 0 without a mesh.</param>
+    internal TriangleMesh? Move(Domain to, out double kept)
     {
         ArgumentNullException.ThrowIfNull(to);
+        kept = 0;
         if (!Alike(Mesh.Domain, to))
         {
             return null;
@@ -67,13 +73,19 @@ public sealed class MeshMover
         }
 
         Places(to, (v, p) => (x[v], y[v]) = (p.X, p.Y));
+        double least = 1;
         for (int t = 0; t < shape.Length; t++)
         {
-            if (!(Shape(Mesh.Corners, x, y, t) >= KeptShape * shape[t]))
+            double now = Shape(Mesh.Corners, x, y, t) / shape[t];
+            if (!(now >= KeptShape))
             {
                 return null;
             }
+
+            least = Math.Min(least, now);
         }
+
+        kept = least;
 
         return new TriangleMesh
         {

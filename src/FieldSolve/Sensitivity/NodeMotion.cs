@@ -15,6 +15,8 @@ public sealed class NodeMotion
     // sheet the error is the fourth power of the step, and rounding stays at 1e-12.
     private const double Step = 1e-4;
 
+    private static readonly (double At, double Weight)[] Stencil = [(-2, 1.0 / 12), (-1, -8.0 / 12), (1, 8.0 / 12), (2, -1.0 / 12)];
+
     private readonly MeshMover mover;
     private readonly int vertices;
     private readonly int[] parentA;     // of nodes from `vertices` on
@@ -106,6 +108,17 @@ public sealed class NodeMotion
         return list;
     }
 
+    /// <summary>Whether a domain changes in places alone when a cause changes a little either way, so that it has velocities.</summary>
+    /// <param name="at">The domain at the reference.</param>
+    /// <param name="domain">The domain at a value of the cause counted from the reference; null where there is none.</param>
+    /// <param name="scale">A value of the cause that moves things by about the size of the sheet.</param>
+    public static bool IsSmooth(Domain at, Func<double, Domain?> domain, double scale)
+    {
+        ArgumentNullException.ThrowIfNull(at);
+        ArgumentNullException.ThrowIfNull(domain);
+        return Stencil.All(s => domain(s.At * Step * scale) is { } moved && MeshMover.Alike(at, moved));
+    }
+
     /// <summary>
     /// Velocity of the places when a cause moves the domain.
     /// </summary>
@@ -117,8 +130,7 @@ public sealed class NodeMotion
         ArgumentNullException.ThrowIfNull(domain);
         double step = Step * scale;
         double[] x = new double[Count], y = new double[Count];
-        ReadOnlySpan<(double At, double Weight)> stencil = [(-2, 1.0 / 12), (-1, -8.0 / 12), (1, 8.0 / 12), (2, -1.0 / 12)];
-        foreach ((double at, double weight) in stencil)
+        foreach ((double at, double weight) in Stencil)
         {
             if (domain(at * step) is not { } moved || !MeshMover.Alike(mover.Mesh.Domain, moved))
             {

@@ -1,10 +1,4 @@
-using System.Diagnostics;
 using FieldSolve.Device;
-using FieldSolve.Fields;
-using FieldSolve.Meshing;
-using FieldSolve.Readings;
-using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Sessions;
 
@@ -15,17 +9,18 @@ namespace FieldSolve.Sessions;
 public sealed class AnswerLoop : IDisposable
 {
     // A hand that moves a contact pauses no longer than this.
-    private const int RestMilliseconds = 120;
+    private const int RestMilliseconds = 80;
 
     private readonly EditSession session;
     private readonly Action<LayoutAnswer> publish;
     private readonly Func<IReadOnlySet<string>> lookedAt;
     private readonly QuickAnswer quick = new();
+    private readonly AccurateAnswer accurate = new();
     private readonly SemaphoreSlim wake = new(0);
     private readonly CancellationTokenSource stop = new();
     private readonly Lock gate = new();
     private readonly Thread thread;
-    private CancellationTokenSource? accurate;
+    private CancellationTokenSource? underWay;
     private int solved;
 
     /// <summary>Starts answering.</summary>
@@ -61,7 +56,7 @@ public sealed class AnswerLoop : IDisposable
         wake.Release();
         lock (gate)
         {
-            accurate?.Cancel();
+            underWay?.Cancel();
         }
 
         thread.Join();
@@ -75,7 +70,7 @@ public sealed class AnswerLoop : IDisposable
         {
             if (session.State.Version != solved)
             {
-                accurate?.Cancel();
+                underWay?.Cancel();
             }
         }
 
@@ -118,18 +113,36 @@ public sealed class AnswerLoop : IDisposable
                 }
             }
 
-            // The wirings that are looked at come first; the whole drive, whose numbers are those of the drive command, follows.
-            Wiring[] shown = [.. state.Device.Wirings.Where(w => lookedAt().Contains(w.Name))];
-            shown = shown.Length > 0 ? shown : [.. state.Device.Wirings.Take(1)];
-            if (shown.Length < state.Device.Wirings.Count && Accurate(state, state.Device with { Wirings = shown }) is { } first)
-            {
-                publish(first with { Drive = null });
-            }
+            Rest(state);
+        }
+    }
 
-            if (Accurate(state, state.Device) is { } answer)
+    // The wirings that are looked at come first, on the mesh at hand if that serves; the whole drive, whose numbers are those of the drive command, follows. What is left is
+    // made ready for the next move.
+    private void Rest(SessionState state)
+    {
+        SheetDevice device = state.Device;
+        Wiring[] shown = [.. device.Wirings.Where(w => lookedAt().Contains(w.Name))];
+        shown = shown.Length > 0 ? shown : [.. device.Wirings.Take(1)];
+        if (!Publish(state, cancel =>
+            accurate.Moved(device, shown, state.Version, cancel)
+            ?? (shown.Length == device.Wirings.Count ? null : accurate.Drive(device with { Wirings = shown }, device, state.Version, cancel) with { Drive = null })))
+        {
+            return;
+        }
+
+        if (Publish(state, cancel => accurate.Drive(device, device, state.Version, cancel)))
+        {
+            Publish(state, cancel =>
             {
-                publish(answer);
-            }
+                accurate.Prepare();
+                if (quick.IsWorn)
+                {
+                    quick.Renew(device, lookedAt(), cancel);
+                }
+
+                return null;
+            });
         }
     }
 
@@ -140,46 +153,38 @@ public sealed class AnswerLoop : IDisposable
         }
     }
 
-    // Null when a newer text came.
-    private LayoutAnswer? Accurate(SessionState state, SheetDevice device)
+    // False when a newer text came.
+    private bool Publish(SessionState state, Func<CancellationToken, LayoutAnswer?> make)
     {
-        Stopwatch watch = Stopwatch.StartNew();
         using CancellationTokenSource cancel = CancellationTokenSource.CreateLinkedTokenSource(stop.Token);
         lock (gate)
         {
-            if (session.State.Version != state.Version)
+            if (session.State.Version != state.Version || solved != state.Version)
             {
-                return null;
+                return false;
             }
 
-            accurate = cancel;
+            underWay = cancel;
         }
 
         try
         {
-            DriveResult result = DriveRun.Execute(device, new DriveOptions { Maps = MapChoice.None, ForPictures = false, Frames = true }, null, cancel.Token);
-            if (result.Cancelled)
+            if (make(cancel.Token) is { } answer)
             {
-                return null;
+                publish(answer);
             }
 
-            int last = device.Drive!.Currents.Select((c, k) => (Math.Abs(c), k)).Max().k;
-            return new(
-                state.Version, state.Device, true, result.Rows, [.. result.Frames.Where(f => f.CurrentIndex == last)], null, watch.Elapsed.TotalMilliseconds, result);
+            return true;
         }
         catch (OperationCanceledException)
         {
-            return null;
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
-        {
-            return new(state.Version, state.Device, true, [], [], e.Message.ReplaceLineEndings(" "), watch.Elapsed.TotalMilliseconds, null);
+            return false;
         }
         finally
         {
             lock (gate)
             {
-                accurate = null;
+                underWay = null;
             }
         }
     }

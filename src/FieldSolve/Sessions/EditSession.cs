@@ -37,7 +37,6 @@ public enum SaveOutcome
 public sealed class EditSession
 {
     private const int MostUndo = 1000;
-    private const string NotInNames = "/\\:*?\"<>|";
 
     private readonly Lock gate = new();
     private readonly List<string> undo = [];
@@ -166,17 +165,12 @@ public sealed class EditSession
     public SaveOutcome SaveAs(string name, bool overwrite)
     {
         ArgumentNullException.ThrowIfNull(name);
-        if (name.Length is 0 or > 200 || Path.GetFileName(name) != name || name.Any(c => char.IsControl(c) || NotInNames.Contains(c, StringComparison.Ordinal)) || name.StartsWith('.')
-            || !name.EndsWith(".toml", StringComparison.OrdinalIgnoreCase))
-        {
-            throw new LayoutEditException("the name must be a plain file name that ends in .toml, for example \"variant.toml\"; it is saved beside the device file");
-        }
-
+        PlainName.Check(name, ".toml", "variant.toml");
         SaveOutcome outcome;
         lock (gate)
         {
             string target = Path.Combine(Path.GetDirectoryName(path) ?? "", name);
-            if (Directory.Exists(target) || (File.Exists(target) && (File.ResolveLinkTarget(target, false) is not null || !overwrite)))
+            if (!PlainName.IsFree(target, overwrite))
             {
                 return SaveOutcome.Exists;
             }
@@ -215,6 +209,24 @@ public sealed class EditSession
             }
 
             (diskHash, savedText, changedOnDisk, lastGesture) = (hash, disk, false, null);
+        }
+
+        Changed?.Invoke(this, EventArgs.Empty);
+        return [];
+    }
+
+    /// <summary>Reads the files anew that the device names, after one of them was written.</summary>
+    /// <returns>Empty, or the faults they now have; the session then stays as it was.</returns>
+    public IReadOnlyList<Fault> ReadFiles()
+    {
+        lock (gate)
+        {
+            if (Take(text.Text) is { Count: > 0 } faults)
+            {
+                return faults;
+            }
+
+            version++;
         }
 
         Changed?.Invoke(this, EventArgs.Empty);

@@ -161,8 +161,8 @@ public sealed class EditableToml
     }
 
     /// <summary>The text without a key, or without a whole table; the line goes with its comment.</summary>
-    /// <param name="path">Path of a key under a header, or of a table with a header.</param>
-    /// <exception cref="LayoutEditException">There is no such key or table, or it is written inside braces.</exception>
+    /// <param name="path">Path of a key under a header or in braces, or of a table with a header.</param>
+    /// <exception cref="LayoutEditException">There is no such key or table, or it is written inside a list.</exception>
     public EditableToml Without(string path)
     {
         if (blocks.FirstOrDefault(b => b.Path == path) is { } block)
@@ -183,11 +183,87 @@ public sealed class EditableToml
 
         if (Text[LineStart(piece.KeyStart)..piece.KeyStart].Trim().Length > 0)
         {
-            throw new LayoutEditException($"'{path}' is written inside braces or a list; take it out of the file by hand");
+            return Find(path[..Math.Max(0, path.LastIndexOf('.'))]) is { Kind: "table" }
+                ? WithoutInBraces(piece)
+                : throw new LayoutEditException($"'{path}' is written inside a list; take it out of the file by hand");
         }
 
         return new(Text[..LineStart(piece.KeyStart)] + Text[AfterLine(LineEnd(piece.End))..]);
     }
+
+    // With the comma that follows, or else with the one before.
+    private EditableToml WithoutInBraces(TomlPiece piece)
+    {
+        int start = piece.KeyStart, end = piece.End, next = end, before = start;
+        while (next < Text.Length && Text[next] is ' ' or '\t')
+        {
+            next++;
+        }
+
+        while (before > 0 && Text[before - 1] is ' ' or '\t')
+        {
+            before--;
+        }
+
+        if (next < Text.Length && Text[next] == ',')
+        {
+            end = next + 1;
+            while (end < Text.Length && Text[end] is ' ' or '\t')
+            {
+                end++;
+            }
+        }
+        else if (before > 0 && Text[before - 1] == ',')
+        {
+            start = before - 1;
+        }
+
+        return new(Text[..start] + Text[end..]);
+    }
+
+    /// <summary>The text with an item put before one of a list.</summary>
+    /// <param name="path">Path of the item that it goes before.</param>
+    /// <param name="literal">TOML.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml ItemBefore(string path, string literal)
+    {
+        TomlPiece piece = Item(path);
+        return new(Text[..piece.Start] + literal + ", " + Text[piece.Start..]);
+    }
+
+    /// <summary>The text with an item put behind one of a list.</summary>
+    /// <param name="path">Path of the item that it goes behind.</param>
+    /// <param name="literal">TOML.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml ItemAfter(string path, string literal)
+    {
+        TomlPiece piece = Item(path);
+        return new(Text[..piece.End] + ", " + literal + Text[piece.End..]);
+    }
+
+    /// <summary>The text without an item of a list; its comma goes along.</summary>
+    /// <param name="path">Path of the item.</param>
+    /// <exception cref="LayoutEditException">There is no such item.</exception>
+    public EditableToml WithoutItem(string path)
+    {
+        TomlPiece piece = Item(path);
+        int open = path.LastIndexOf('['), k = int.Parse(path[(open + 1)..^1], CultureInfo.InvariantCulture);
+        if (Find(string.Create(CultureInfo.InvariantCulture, $"{path[..open]}[{k + 1}]")) is not null)
+        {
+            int end = Text.IndexOf(',', piece.End) + 1;
+            while (end < Text.Length && Text[end] is ' ' or '\t')
+            {
+                end++;
+            }
+
+            return new(Text[..piece.Start] + Text[end..]);
+        }
+
+        int start = k > 0 ? Item(string.Create(CultureInfo.InvariantCulture, $"{path[..open]}[{k - 1}]")).End : piece.Start;
+        return new(Text[..start] + Text[piece.End..]);
+    }
+
+    private TomlPiece Item(string path) => path.EndsWith(']') && Find(path) is { } piece ? piece : throw new LayoutEditException($"the device file has no item '{path}'");
 
     /// <summary>The text with a table added.</summary>
     /// <param name="table">Header and keys, lines parted by \n.</param>

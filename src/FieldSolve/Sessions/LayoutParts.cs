@@ -61,6 +61,40 @@ public static class LayoutParts
         }
     }
 
+    /// <summary>Adds a pair to a wiring, of probes that serve no pair yet where there are such.</summary>
+    /// <param name="text">The device file.</param>
+    /// <param name="device">What it says.</param>
+    /// <param name="block">Path of the wiring, such as "wiring[0]".</param>
+    /// <param name="kind">"along", "across", or "pairs" for a further one with a name that is free.</param>
+    /// <exception cref="LayoutEditException">There is no such wiring or kind, or fewer than two probes.</exception>
+    public static EditableToml AddPair(EditableToml text, SheetDevice device, string block, string kind)
+    {
+        ArgumentNullException.ThrowIfNull(text);
+        ArgumentNullException.ThrowIfNull(device);
+        if (text.Blocks.All(b => b.Path != block) || device.Wirings.FirstOrDefault(w => w.Name == text.Find(block + ".name")?.Value) is not { } wiring || kind is not ("along" or "across" or "pairs"))
+        {
+            throw new LayoutEditException("there is no such wiring, or no such pair");
+        }
+
+        HashSet<Terminal> used = [new(false, wiring.Source), new(false, wiring.Drain), .. wiring.Pairs.SelectMany(p => new[] { p.Plus, p.Minus })];
+        Terminal[] all = [.. device.Contacts.Select((_, k) => new Terminal(false, k)), .. device.Tips.Select((_, k) => new Terminal(true, k))];
+        string[] names = [.. all.OrderBy(t => used.Contains(t)).Select(t => NameOf(device, t))];
+        string literal = $"[{EditableToml.Quoted(names[0])}, {EditableToml.Quoted(names[1])}]";
+        if (kind != "pairs")
+        {
+            return text.With($"{block}.{kind}", literal);
+        }
+
+        int n = 1;
+        while (text.Find(string.Create(CultureInfo.InvariantCulture, $"{block}.pairs.pair{n}")) is not null)
+        {
+            n++;
+        }
+
+        string key = string.Create(CultureInfo.InvariantCulture, $"pair{n}");
+        return text.Find(block + ".pairs") is null ? text.With(block + ".pairs", $"{{ {key} = {literal} }}") : text.With($"{block}.pairs.{key}", literal);
+    }
+
     private static EditableToml Wiring(EditableToml text, SheetDevice device, string? after)
     {
         Wiring? like = device.Wirings.Count > 0 ? device.Wirings[^1] : null;

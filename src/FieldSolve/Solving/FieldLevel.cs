@@ -13,7 +13,9 @@ namespace FieldSolve.Solving;
 /// </summary>
 public sealed class FieldLevel
 {
-    private readonly Lazy<(SparseLu Factor, double[] Values)> atZero;
+    private readonly CancellationToken cancel;
+    private readonly Lock gate = new();
+    private RestState? atZero;
     private readonly ConcurrentBag<JacobianRoom> spare = [];
 
     private FieldLevel(SheetEquations equations, SparseAnalysis analysis, CancellationToken cancel)
@@ -21,8 +23,10 @@ public sealed class FieldLevel
         Space = equations.Space;
         Equations = equations;
         Analysis = analysis;
-        atZero = new(() => FactorAtZero(cancel));
+        this.cancel = cancel;
     }
+
+    private sealed record RestState(SparseLu Factor, double[] Values);
 
     /// <summary>Nodes and unknowns.</summary>
     public FieldSpace Space { get; }
@@ -34,7 +38,7 @@ public sealed class FieldLevel
     public SparseAnalysis Analysis { get; }
 
     /// <summary>Factor of the Jacobian at zero field.</summary>
-    public SparseLu AtZero => atZero.Value.Factor;
+    public SparseLu AtZero => Rest().Factor;
 
     /// <summary>Sets up a mesh.</summary>
     /// <param name="device">Gives the contacts.</param>
@@ -72,13 +76,37 @@ public sealed class FieldLevel
         return level;
     }
 
-    private (SparseLu Factor, double[] Values) FactorAtZero(CancellationToken cancel)
+    /// <summary>Lets go of all factors, the largest pieces of memory; they are made again, the same, when they are asked for.</summary>
+    internal void Forget()
+    {
+        lock (gate)
+        {
+            atZero = null;
+        }
+
+        spare.Clear();
+    }
+
+    private RestState Rest()
+    {
+        if (Volatile.Read(ref atZero) is { } there)
+        {
+            return there;
+        }
+
+        lock (gate)
+        {
+            return atZero ??= FactorAtZero();
+        }
+    }
+
+    private RestState FactorAtZero()
     {
         var factor = new SparseLu(Analysis, Equations.Law.IsSymmetricAtZero);
         double[] values = new double[Space.Pattern.Count + 1];
         Equations.Jacobian(new double[Equations.Length], values);
         SharedCores.Factor(factor, values.AsSpan(0, Space.Pattern.Count), cancel);
-        return (factor, values);
+        return new(factor, values);
     }
 
     /// <summary>Room for a Jacobian at any field and its factor: some that was returned, or new.</summary>
@@ -104,7 +132,7 @@ public sealed class FieldLevel
     /// <summary>The Jacobian at zero field times a vector of potentials, A.</summary>
     public void ZeroFieldProduct(ReadOnlySpan<double> u, Span<double> current)
     {
-        SparseProduct.Multiply(Space.Pattern, atZero.Value.Values.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
+        SparseProduct.Multiply(Space.Pattern, Rest().Values.AsSpan(0, Space.Pattern.Count), u[..Space.Size], current[..Space.Size]);
         current[Space.Size] = 0;
     }
 
@@ -115,7 +143,7 @@ public sealed class FieldLevel
     internal double ResidualRounding(ReadOnlySpan<double> u)
     {
         int[] start = Space.Pattern.Start, column = Space.Pattern.Column;
-        double[] atZeroValues = atZero.Value.Values;
+        double[] atZeroValues = Rest().Values;
         double squares = 0;
         for (int i = 0; i < Space.Size; i++)
         {

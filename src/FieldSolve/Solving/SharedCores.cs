@@ -11,7 +11,17 @@ internal static class SharedCores
     /// <summary>Additions and multiplications from which on more threads are worth their room for work space.</summary>
     private const double WorthThreads = 3e8;
 
+    // From here on every factor takes so much memory (some 1.2 GB for a million unknowns) that wirings and signs wait for each other.
+    private const int Large = 250_000;
+
     private static int running;
+
+    /// <summary>Whether factors are so large that memory decides what is done side by side.</summary>
+    public static bool IsLarge(int unknowns) => unknowns > Large;
+
+    /// <summary>How many wirings and signs are followed side by side.</summary>
+    /// <param name="unknowns">Of the finest mesh.</param>
+    public static int Jobs(int unknowns) => IsLarge(unknowns) ? 1 : Environment.ProcessorCount;
 
     /// <summary>Factors a matrix.</summary>
     /// <param name="factor">Where the factor goes.</param>

@@ -80,7 +80,8 @@ public static class TurnRun
         SheetDevice turned = device with { Wirings = Directions.Of(device) };
         TurnPlace[] places = [.. turned.Wirings.Select(w => new TurnPlace(w, CurrentDirection.Degrees(device, w), 0))];
         var drive = new DriveOptions { Maps = options.ForPictures ? MapChoice.Last : MapChoice.None, ForPictures = false, OneCurve = true, Mesh = options.Mesh };
-        (DriveResult result, MeshPair meshes) = DriveRun.Run(turned, drive, progress, clock, cancel);
+        (DriveResult result, MeshRefinement refinement) = DriveRun.Run(turned, drive, progress, clock, cancel);
+        MeshPair meshes = refinement.Meshes;
         List<CurveRow>[] rows = [.. places.Select(p => result.Rows.Where(r => r.Wiring == p.Wiring.Name).ToList())];
         TurnMap[] maps = [.. Mapped(places).Select(k => result.Maps.FirstOrDefault(m => m.Wiring == places[k].Wiring.Name) is { } map
             ? new TurnMap(places[k].DirectionDegrees, places[k].AxisDegrees(device), map)

@@ -58,6 +58,18 @@ public class ToleranceFileTests
     [InlineData("[[tolerance.contact]]\nname = \"n\"\nresistance = \"1 ohm um\"", "contact 'n' is ideal; give the contact a 'resistance'")]
     [InlineData("[[tolerance.contact]]\nname = \"n\"\nx = \"1 nm\"", "contact 'n' is an edge contact; give it 'position' or 'width'")]
     [InlineData("[[tolerance.layer]]\nname = \"gold\"\ncontacts = [\"w\", \"w\"]\nx = \"1 nm\"", "contact 'w' stands twice")]
+    [InlineData("axis = { shape = \"uniform\" }", "needs 'sigma' or 'half_width', one of them")]
+    [InlineData("axis = { half_width = \"1 deg\", shape = \"normal\" }", "a normal distribution has no half width; give 'sigma'")]
+    [InlineData("axis = { half_width = \"1 deg\", shape = \"square\" }", "it must be normal or uniform")]
+    [InlineData("[[tolerance.contact]]\nname = \"n\"\nwidth = \"1 nm\"\n[[tolerance.contact]]\nname = \"n\"\nposition = \"1 nm\"", "contact 'n' already has its [[tolerance.contact]]; write its causes together")]
+    [InlineData("[[tolerance.layer]]\nname = \"gold\"\nx = \"1 nm\"\n[[tolerance.layer]]\nname = \"gold\"\ny = \"1 nm\"", "there is a layer 'gold' already")]
+    [InlineData("[[tolerance.layer]]\nname = \"gold\"\ncontacts = []\nx = \"1 nm\"", "lists the names of the layer's contacts")]
+    [InlineData("[[tolerance.layer]]\nname = \"gold\"\ncontacts = [\"q\"]\nx = \"1 nm\"", "there is no contact 'q'")]
+    [InlineData("[[tolerance.layer]]\nx = \"1 nm\"", "'name'")]
+    [InlineData("[[tolerance.layer]]\nname = \"gold\"\nabout = \"here\"\nx = \"1 nm\"", "'about'")]
+    [InlineData("sharpness = \"two\"", "'sharpness'")]
+    [InlineData("sharpness = 0.1", "'sharpness' is no parameter with a value of the law 'ohmic'")]
+    [InlineData("contacts = 3", "contacts")]
     public void Faults_say_what_would_be_right(string tolerance, string message)
     {
         string fault = Fault(tolerance);
@@ -102,5 +114,14 @@ public class ToleranceFileTests
         Assert.Equal((0.72e-6, 5e-3), (wide.Contacts[2].Width, wide.Law.AtZeroField.Aa));
         Assert.Equal(3 * Math.PI / 180, wide.Axis, 1e-15);
         Assert.Equal(3.95e-6, wide.Contacts[2].Middle.Y, 1e-18);
+    }
+
+    [Fact]
+    public void A_cause_that_befalls_no_contact_is_said()
+    {
+        DeviceReading r = DeviceFile.Parse(DeviceTexts.Disc + "\n[tolerance.contacts]\nresistivity = \"1e-12 ohm m^2\"\nposition = \"0 nm\"\n", "device.toml", "");
+        Assert.Empty(r.Faults);
+        Assert.Equal("'resistivity' befalls no contact of this device.", Assert.Single(r.Device!.Tolerance!.Notes));
+        Assert.Empty(r.Device.Tolerance.Causes);
     }
 }

@@ -8,21 +8,18 @@ namespace FieldSolve.Tests.EndToEndTests;
 [Collection(SampleRuns.Collection)]
 public class FaultTests
 {
+    /// <summary>Moments at which a run is killed.</summary>
+    internal static readonly int Kills = int.TryParse(Environment.GetEnvironmentVariable("FIELDSOLVE_KILLS"), NumberStyles.None, CultureInfo.InvariantCulture, out int n) ? n : 3;
+
     private const string Coarse = "[mesh]\nerror = 1e-2\neven_error = 0.1\n";
 
     /// <summary>
     /// Kills a drive with pictures at several moments, over the results of another: every file with a proper name is whole, old or new.
     /// FIELDSOLVE_KILLS sets the number of moments; a temporary file may be left behind, and none has a name that anything reads.
     /// </summary>
-    [Fact]
+    [LinuxFact]
     public void A_kill_leaves_every_file_whole()
     {
-        if (!OperatingSystem.IsLinux())
-        {
-            return; // SIGKILL
-        }
-
-        int kills = int.TryParse(Environment.GetEnvironmentVariable("FIELDSOLVE_KILLS"), NumberStyles.None, CultureInfo.InvariantCulture, out int n) ? n : 3;
         using var folder = new TempFolder();
         string device = folder.Write("bar.toml", SmallDevice.Text);
         var clock = Stopwatch.StartNew();
@@ -30,7 +27,7 @@ public class FaultTests
         double whole = clock.Elapsed.TotalSeconds;
         string[] names = [.. TempFolder.FilesIn(folder["out"])];
         var random = new Random(3);
-        for (int k = 0; k < kills; k++)
+        for (int k = 0; k < Kills; k++)
         {
             using Process process = Command.Start(["drive", device, "--out", folder["out"]]);
             process.StandardOutput.Close();
@@ -62,14 +59,9 @@ public class FaultTests
         Assert.Equal(File.ReadAllText(folder["alone/curves.csv"]), File.ReadAllText(folder["out/curves.csv"]));
     }
 
-    [Fact]
+    [BoundUserFact]
     public void A_folder_that_may_not_be_written_is_named()
     {
-        if (OperatingSystem.IsWindows() || Environment.UserName == "root")
-        {
-            return; // root may write everywhere; the full device below stands in for it
-        }
-
         using var folder = new TempFolder();
         Directory.CreateDirectory(folder["fixed"], UnixFileMode.UserRead | UnixFileMode.UserExecute);
         CommandResult result = Command.Run("drive", folder.Write("bar.toml", SmallDevice.Text), "--out", folder["fixed"], "--no-pictures");
@@ -78,47 +70,14 @@ public class FaultTests
         File.SetUnixFileMode(folder["fixed"], UnixFileMode.UserRead | UnixFileMode.UserWrite | UnixFileMode.UserExecute);
     }
 
-    [Fact]
+    [LinuxFact]
     public void A_place_where_no_folder_can_be_made_is_named_without_a_stack_trace()
     {
-        if (!OperatingSystem.IsLinux())
-        {
-            return; // needs /proc
-        }
-
         using var folder = new TempFolder();
         CommandResult result = Command.Run("drive", folder.Write("bar.toml", SmallDevice.Text), "--out", "/proc/none", "--no-pictures");
         Assert.Equal((2, ""), (result.Exit, result.Out));
         Assert.StartsWith("fieldsolve: ", Assert.Single(result.ErrorLines), StringComparison.Ordinal);
         Assert.Contains("/proc/none", result.ErrorLines[0], StringComparison.Ordinal);
-    }
-
-    [Fact]
-    public void A_full_disk_is_said_and_leaves_the_old_file()
-    {
-        // A small file system of our own needs root and a kernel that lets it mount; elsewhere there is nothing to test with.
-        using var folder = new TempFolder();
-        Directory.CreateDirectory(folder["small"]);
-        if (!OperatingSystem.IsLinux() || !Quietly("mount", "-t", "tmpfs", "-o", "size=64k", "tmpfs", folder["small"]))
-        {
-            return;
-        }
-
-        try
-        {
-            File.WriteAllText(folder["small/curves.csv"], "old\r\n");
-            File.WriteAllBytes(folder["small/ballast"], new byte[60_000]);
-            CommandResult result = Command.Run("drive", folder.Write("bar.toml", SmallDevice.Text), "--out", folder["small"], "--no-pictures");
-            Assert.Equal(2, result.Exit);
-            Assert.StartsWith("fieldsolve: ", result.ErrorLines[^1], StringComparison.Ordinal);
-            Assert.DoesNotContain("   at ", result.Error, StringComparison.Ordinal);
-            Assert.DoesNotContain(TempFolder.FilesIn(folder["small"]), f => f.EndsWith(".part", StringComparison.Ordinal));
-            Whole(folder["small/curves.csv"]);
-        }
-        finally
-        {
-            Quietly("umount", folder["small"]);
-        }
     }
 
     [Fact]
@@ -171,6 +130,8 @@ public class FaultTests
             ["XDG_DATA_HOME"] = "",
             ["XDG_CACHE_HOME"] = "",
             ["DOTNET_CLI_HOME"] = folder["no home"],
+            ["FONTCONFIG_FILE"] = "/dev/null", // no fonts either
+            ["FONTCONFIG_PATH"] = folder["no fonts"],
         };
         CommandResult one = Command.Run(["drive", device, "--out", folder["out"]], odd);
         CommandResult two = Command.Run(["check", device, "--json"], odd), plain = Command.Run("check", device, "--json");
@@ -201,23 +162,23 @@ public class FaultTests
         Assert.StartsWith(device + ":", Command.Run("check", device).ErrorLines[0], StringComparison.Ordinal);
     }
 
-    [Fact]
-    public void A_pipe_in_place_of_the_device_file_does_not_block()
+    [PosixFact]
+    public void A_pipe_in_place_of_a_file_does_not_block()
     {
         using var folder = new TempFolder();
-        if (OperatingSystem.IsWindows() || !Quietly("mkfifo", folder["pipe.toml"]))
+        Assert.True(SmallDisk.Quietly("mkfifo", folder["pipe"]), "no pipe could be made");
+        string device = folder.Write("bar.toml", SmallDevice.Text);
+        foreach (string[] command in (string[][])[["check", folder["pipe"]], ["drive", device, "--mesh", folder["pipe"]], ["overlay", device, folder["pipe"]]])
         {
-            return; // no pipes with names
+            CommandResult result = Command.Run(command);
+            Assert.Equal((2, ""), (result.Exit, result.Out));
+            Assert.StartsWith(folder["pipe"] + ":1:1: ", Assert.Single(result.ErrorLines), StringComparison.Ordinal);
+            Assert.Contains("no plain file", result.Error, StringComparison.Ordinal);
         }
-
-        CommandResult result = Command.Run("check", folder["pipe.toml"]);
-        Assert.Equal((2, ""), (result.Exit, result.Out));
-        Assert.StartsWith(folder["pipe.toml"] + ":1:1: ", Assert.Single(result.ErrorLines), StringComparison.Ordinal);
-        Assert.Contains("no plain file", result.Error, StringComparison.Ordinal);
     }
 
     // Cut short, each of these fails to be read to its end.
-    private static void Whole(string path)
+    internal static void Whole(string path)
     {
         byte[] bytes = File.ReadAllBytes(path);
         switch (Path.GetExtension(path))
@@ -240,21 +201,6 @@ public class FaultTests
             default:
                 Assert.EndsWith("</html>", System.Text.Encoding.UTF8.GetString(bytes).TrimEnd(), StringComparison.Ordinal);
                 break;
-        }
-    }
-
-    private static bool Quietly(string program, params string[] arguments)
-    {
-        try
-        {
-            using Process process = Process.Start(new ProcessStartInfo(program, arguments) { RedirectStandardError = true, RedirectStandardOutput = true })!;
-            process.StandardError.ReadToEnd();
-            process.WaitForExit();
-            return process.ExitCode == 0;
-        }
-        catch (System.ComponentModel.Win32Exception)
-        {
-            return false; // no such program
         }
     }
 }

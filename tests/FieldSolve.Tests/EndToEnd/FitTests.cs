@@ -6,7 +6,7 @@ namespace FieldSolve.Tests.EndToEndTests;
 [Collection(SampleRuns.Collection)]
 public class FitTests
 {
-    private const string Device = """
+    internal const string Device = """
         title = "Bar to fit"
         [sheet]
         bar = { length = "30 um", width = "6 um" }
@@ -36,7 +36,7 @@ public class FitTests
         """;
 
     // A uniform strip: V = I length / (a width), so that 2 mS, 6 um and 10 um make 833.3 ohm: 8.3333 mV at 10 uA.
-    private const string Data = "# made up\nwiring,pair,current_uA,value_mV,sigma_uV\nx,along,10,8.333,1\nx,along,20,16.667,1\nx,along,-20,-16.6665,1\n";
+    internal const string Data = "# made up\nwiring,pair,current_uA,value_mV,sigma_uV\nx,along,10,8.333,1\nx,along,20,16.667,1\nx,along,-20,-16.6665,1\n";
 
     [Fact]
     public void Fit_writes_its_files_whole_and_the_same_twice()
@@ -106,10 +106,14 @@ public class FitTests
         Assert.Equal("along", json.RootElement.GetProperty("wiring").GetString());
         JsonElement worst = json.RootElement.GetProperty("beyond_noise")[0];
 
-        // The patch that the map was made with: 5 to 7.4 um by 0.5 to 2.5 um.
+        // The patch that the map was made with: 5 to 7.4 um by 0.5 to 2.5 um. The gain of the probe is 1.15; without the patch in the fit it would be 1.20.
         Assert.InRange(worst.GetProperty("x_m").GetDouble(), 3e-6, 9e-6);
         Assert.InRange(worst.GetProperty("y_m").GetDouble(), -1e-6, 4e-6);
-        Assert.Equal(4, json.RootElement.GetProperty("turn_deg").GetProperty("value").GetDouble(), 1.0);
+        JsonElement patch = json.RootElement.GetProperty("patch");
+        Assert.InRange(patch.GetProperty("x_m").GetProperty("value").GetDouble(), 5.9e-6, 6.5e-6);
+        Assert.InRange(patch.GetProperty("y_m").GetProperty("value").GetDouble(), 1.2e-6, 1.8e-6);
+        Assert.Equal(1.15, json.RootElement.GetProperty("gain").GetProperty("value").GetDouble(), 0.005);
+        Assert.Equal(4, json.RootElement.GetProperty("turn_deg").GetProperty("value").GetDouble(), 0.15);
     }
 
     [Fact]

@@ -142,15 +142,12 @@ public sealed class OpenServerTests : IAsyncLifetime, IDisposable
         }
 
         Assert.Equal(HttpStatusCode.BadRequest, (await Ask("edit", "{")).Status);
-        try
-        {
-            Assert.Equal(HttpStatusCode.RequestEntityTooLarge, (await Ask("edit", "{\"gesture\":\"" + new string('x', 2 << 20) + "\"}")).Status);
-        }
-        catch (HttpRequestException)
-        {
-            // The server hung up before all of it was sent: refused as well.
-        }
 
+        // Clearly refused, whether its length is told at the start or not; the connection goes on.
+        string lengthy = "{\"gesture\":\"" + new string('x', 3 << 20) + "\"}";
+        Assert.Equal((HttpStatusCode.RequestEntityTooLarge, "the request is too long"), Two(await Ask("edit", lengthy)));
+        Assert.Equal((HttpStatusCode.RequestEntityTooLarge, "the request is too long"), Two(await Ask("save", lengthy, r => r.Headers.TransferEncodingChunked = true)));
+        Assert.Equal((HttpStatusCode.Forbidden, "wrong token"), Two(await Ask("/edit", lengthy)));
         Assert.Equal(2, session.State.Version);
         Assert.Equal(["device.toml", "secret.txt"], folder.Files);
     }
@@ -167,6 +164,26 @@ public sealed class OpenServerTests : IAsyncLifetime, IDisposable
         Assert.Equal(HttpStatusCode.OK, (await Ask("save", """{"overwrite":true}""")).Status);
         Assert.Equal(session.State.Text.Text, File.ReadAllText(folder["x.toml"]));
         Assert.Equal(["device.toml", "secret.txt", "x.toml"], folder.Files);
+    }
+
+    [Fact]
+    public async Task A_trace_is_written_beside_the_device_file_and_nowhere_else()
+    {
+        const string Shapes = """[{"kind":"pad","name":"w","corners":[0,0,1e-6,0,1e-6,1e-6]}]""";
+        Assert.Equal(HttpStatusCode.OK, (await Ask("trace", $$"""{"name":"t.geojson","shapes":{{Shapes}}}""")).Status);
+        Assert.Equal(HttpStatusCode.Conflict, (await Ask("trace", $$"""{"name":"t.geojson","shapes":{{Shapes}}}""")).Status);
+        Assert.Equal(HttpStatusCode.OK, (await Ask("trace", $$"""{"name":"t.geojson","overwrite":true,"shapes":{{Shapes}}}""")).Status);
+        string[] files = Directory.GetFileSystemEntries(folder[""], "*", SearchOption.AllDirectories);
+        foreach (string name in new[] { "../t.geojson", "/t.geojson", "x/t.geojson", "..\\t.geojson", "secret.txt", "device.toml", "" })
+        {
+            (HttpStatusCode status, string text, _) = await Ask("trace", $$"""{"name":"{{name}}","overwrite":true,"shapes":{{Shapes}}}""");
+            Assert.Equal((HttpStatusCode)422, status);
+            Assert.Contains("plain file name", text, StringComparison.Ordinal);
+        }
+
+        Assert.Equal((HttpStatusCode)422, (await Ask("trace", """{"name":"u.geojson","shapes":[{"kind":"blot","corners":[0,0,1,0,1,1]}]}""")).Status);
+        Assert.Equal(files, Directory.GetFileSystemEntries(folder[""], "*", SearchOption.AllDirectories));
+        Assert.Equal("not to be read", File.ReadAllText(folder["secret.txt"]));
     }
 
     [Fact]
@@ -195,6 +212,43 @@ public sealed class OpenServerTests : IAsyncLifetime, IDisposable
         }
 
         await ended.WaitAsync(TimeSpan.FromMinutes(2));
+    }
+
+    [Fact]
+    public async Task A_page_that_lost_its_connection_comes_back_to_the_newest_state_and_answer()
+    {
+        await using OpenServer patient = await OpenServer.Start(session, new OpenOptions { Grace = TimeSpan.FromHours(1) });
+        Task ended = patient.Ended(CancellationToken.None);
+        Uri events = new(new Uri(patient.Address), "events?page=1&wiring=bar");
+        string[] first = await Until(events, "\"accurate\":true");
+        Assert.Equal("event: state", first[0]);
+        Assert.StartsWith("data: {\"version\":1,", first[1], StringComparison.Ordinal);
+
+        // While it is away the layout changes twice; it is told of the last layout alone.
+        foreach (string a in new[] { "2 mS", "3 mS" })
+        {
+            Assert.Empty(session.Apply((t, _) => t.With("law.a", $"\"{a}\""), null));
+        }
+
+        string[] second = await Until(events, "\"version\":3,\"accurate\":true");
+        Assert.Equal("event: state", second[0]);
+        Assert.StartsWith("data: {\"version\":3,", second[1], StringComparison.Ordinal);
+        Assert.Equal(["event: state"], second.Where(l => l == "event: state"));
+        Assert.False(ended.IsCompleted);
+    }
+
+    // The lines of a page's events up to one with a text; then the connection is dropped.
+    private async Task<string[]> Until(Uri events, string text)
+    {
+        using HttpResponseMessage response = await client.GetAsync(events, HttpCompletionOption.ResponseHeadersRead);
+        using StreamReader reader = new(await response.Content.ReadAsStreamAsync());
+        List<string> lines = [];
+        while (lines.Count == 0 || !lines[^1].Contains(text, StringComparison.Ordinal))
+        {
+            lines.Add((await reader.ReadLineAsync())!);
+        }
+
+        return [.. lines];
     }
 
     private static (HttpStatusCode Status, string Text) Two((HttpStatusCode Status, string Text, HttpResponseMessage Response) answer) => (answer.Status, answer.Text);

@@ -13,9 +13,11 @@ public class FourTerminalTests
     // multi-precision arithmetic. The sheet resistance for R1 = 1, R2 = ratio is that of the f factor (see VanDerPauwFormulaTests). The contacts here are short stretches at the
     // corners; a point a distance d away from a corner changes a reading by the order of d² (the map near a right angle is a square), 1e-3 for the hundredth of the side used.
     [Theory]
+    [InlineData(2, 1.115752502267, 6.52850260527)]
     [InlineData(5, 1.286510165745, 11.1721102749)]
     [InlineData(10, 1.42802900693, 17.4311262605)]
     [InlineData(100, 1.958995786848, 92.4346510544)]
+    [InlineData(1000, 2.553409270221, 598.192629441)]
     public void Rectangle_with_corner_contacts_gives_sheet_resistance_and_anisotropy(double ratio, double sides, double sheet)
     {
         const double h = 0.5e-3, w = 0.01e-3;
@@ -56,6 +58,22 @@ public class FourTerminalTests
 
         // Two more readings cannot help: by the symmetry every reading between neighbours is the same. The diagonal one reads nothing.
         Assert.All(result.Next, n => Assert.NotEqual(n.Plus, n.Minus));
+    }
+
+    // The same with contacts so small beside the disc that the triangles of a coarse mesh, which have no symmetry, seemed to tell a from b; and with all that a sheet of
+    // unknown anisotropy leaves free. R = Rs ln2/pi for points.
+    [Fact]
+    public void The_mesh_does_not_tell_what_the_readings_cannot()
+    {
+        DeviceText text = DeviceText.Disc(0.5e-3, DeviceText.Ohmic(1e-3, 1e-3)).Contacts(4, 1.15, 0.5e-3).Wiring("one", "c1", "c2", "c4 c3").Drive(1e-5);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\nhall = true\naxis = true");
+        MeasuredVoltages data = FitDevices.Resistances(device, 1e-5, 1e-6, ("c1 c2 c4 c3", 220.6356), ("c2 c3 c1 c4", 220.6356), ("c1 c3 c2 c4", 5));
+        FitResult result = FitDevices.Fit(device, data);
+        string directions = string.Join("; ", result.Directions.Select(d => $"{d.SingularValue} {string.Join(' ', d.Direction)} {d.Words}"));
+        Assert.True(result.Of("a").Value is null && result.Of("b").Value is null && result.Of("axis").Value is null, directions);
+        Assert.True(result.Of("hall").Value is not null, directions);
+        Assert.True(result.Directions.Any(d => d.Words.Contains("sqrt(a b)", StringComparison.Ordinal)), directions);
+        Assert.Equal(1e-3, Math.Sqrt(result.Of("a").Ended * result.Of("b").Ended), 1e-6);
     }
 
     [Fact]

@@ -1,4 +1,5 @@
 using FieldSolve.Lockin;
+using FieldSolve.Readings;
 
 namespace FieldSolve.Tests.LockinTests;
 

@@ -3,6 +3,7 @@ using System.Text;
 using System.Text.Json;
 using System.Text.Json.Nodes;
 using System.Text.RegularExpressions;
+using FieldSolve.Files;
 
 namespace FieldSolve.Tests.MutationTests;
 
@@ -13,6 +14,8 @@ internal enum TextKind
     GeoJson,
     Wkt,
     Csv,
+    Vtu,
+    Journal,
 }
 
 /// <summary>Makes bad input from good: edits that keep most of the structure, so that they get past the first check, and plain bytes.</summary>
@@ -44,10 +47,19 @@ internal sealed partial class Mutator(Random random)
     [GeneratedRegex(@"(?<=^(?:a|b|hall|d11|d12|field_\w+|sharpness|axis|current|at|frequency|v_a|v_b|tilt_a|gap|chemical_potential|relaxation_time|\w*error) = [^\n]*)(?<![\w.])[-+]?\d+(\.\d+)?([eE][-+]?\d+)?", RegexOptions.Multiline)]
     private static partial Regex Solved();
 
+    private static readonly string[] Columns = ["ea_V_per_m", "value_V", "value_mV", "sigma_V", "current_A", "current_rms_uA", "harmonic", "wiring", "pair", "source", "x_um", "y", "direction_deg", "value_m"];
+
+    private static readonly string[] GridWords =
+    [
+        "Float64", "Float32", "Int64", "Int32", "Int8", "UInt8", "UInt16", "UInt64", "UInt32", "ascii", "binary", "appended", "vtkZLibDataCompressor", "vtkLZ4DataCompressor", "BigEndian",
+        "connectivity", "offsets", "types", "Points", "", "-1", "0", "1", "3", "20000001", "9223372036854775807", "18446744073709551615",
+    ];
+
     [GeneratedRegex("\"([^\"\\n]*)\"")]
     private static partial Regex Quoted();
 
     /// <summary>One to four edits of a good text.</summary>
+    /// <remarks>A grid's bytes are the characters of Latin-1, since a part of it is binary.</remarks>
     public byte[] Mutate(string good, TextKind kind)
     {
         string text = good;
@@ -58,11 +70,13 @@ internal sealed partial class Mutator(Random random)
                 TextKind.Toml => TomlEdit(text),
                 TextKind.GeoJson => JsonEdit(text),
                 TextKind.Wkt => NumberEdit(text),
-                _ => CellEdit(text),
+                TextKind.Vtu => GridEdit(text),
+                TextKind.Journal => Sealed(CellEdit(text, random.Next(4) == 0 ? ';' : ',')),
+                _ => CellEdit(text, ','),
             } : PlainEdit(text);
         }
 
-        byte[] bytes = Encoding.UTF8.GetBytes(text);
+        byte[] bytes = (kind == TextKind.Vtu ? Encoding.Latin1 : Encoding.UTF8).GetBytes(text);
         return random.Next(8) == 0 ? BytesEdit(bytes) : bytes;
     }
 
@@ -209,7 +223,49 @@ internal sealed partial class Mutator(Random random)
         return root!.ToJsonString();
     }
 
-    private string CellEdit(string text)
+    private string GridEdit(string text)
+    {
+        int tail = text.IndexOf("<AppendedData", StringComparison.Ordinal);
+        (string xml, string rest) = tail < 0 ? (text, "") : (text[..tail], text[tail..]);
+        List<string> lines = [.. xml.Split('\n')];
+        int i = random.Next(lines.Count), j = random.Next(lines.Count);
+        switch (random.Next(8))
+        {
+            case 0:
+                lines.RemoveAt(i);
+                break;
+            case 1:
+                lines.Insert(j, lines[i]);
+                break;
+            case 2:
+                (lines[i], lines[j]) = (lines[j], lines[i]);
+                break;
+            case 3:
+                return At(Quoted(), xml, _ => $"\"{Pick(GridWords)}\"") + rest;
+            case 4:
+                MatchCollection all = Quoted().Matches(xml);
+                return (all.Count == 0 ? xml : At(Quoted(), xml, _ => all[random.Next(all.Count)].Value)) + rest;
+            case 5:
+                return NumberEdit(xml) + rest;
+            case 6: // a number from elsewhere: another vertex, another length
+                MatchCollection numbers = Number().Matches(xml);
+                return (numbers.Count == 0 ? xml : At(Number(), xml, _ => numbers[random.Next(numbers.Count)].Value)) + rest;
+            default: // lengths stand at the beginning of the binary part
+                int at = Math.Min(rest.Length, random.Next(2) == 0 ? random.Next(200) : random.Next(rest.Length + 1)), count = Math.Min(random.Next(1, 9), rest.Length - at);
+                return xml + rest[..at] + string.Concat(Enumerable.Range(0, count).Select(_ => (char)random.Next(256))) + rest[(at + count)..];
+        }
+
+        return string.Join('\n', lines) + rest;
+    }
+
+    // Every line gets the check sum that it would have: what is wrong then lies in its cells.
+    private string Sealed(string text) => random.Next(3) == 0 ? text : string.Join('\n', text.Split('\n').Select(line =>
+    {
+        int last = line.LastIndexOfAny([',', ';']);
+        return last < 0 ? line : line[..(last + 1)] + SampleJournal.Check(line[..last]);
+    }));
+
+    private string CellEdit(string text, char comma)
     {
         List<string> lines = [.. text.Split('\n')];
         int i = random.Next(lines.Count), j = random.Next(lines.Count);
@@ -225,9 +281,9 @@ internal sealed partial class Mutator(Random random)
                 (lines[i], lines[j]) = (lines[j], lines[i]);
                 break;
             case 3:
-                string[] cells = lines[i].Split(',');
-                cells[random.Next(cells.Length)] = Pick([.. Numbers, "", "\"", "\"a\"", "x", "ea_V_per_m", "#"]);
-                lines[i] = string.Join(',', cells);
+                string[] cells = lines[i].Split(comma);
+                cells[random.Next(cells.Length)] = Pick([.. Numbers, "", "\"", "\"a\"", "x", "#", .. Columns]);
+                lines[i] = string.Join(comma, cells);
                 break;
             default:
                 return NumberEdit(text);

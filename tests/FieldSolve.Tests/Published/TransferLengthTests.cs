@@ -27,4 +27,20 @@ public class TransferLengthTests(ITestOutputHelper output)
         honesty.Reading(name, r, "front", Current * pad.Front);
         honesty.Reading(name, r, "far", Current * pad.End);
     }
+
+    // Ohm's law in series: the sheet between the ends, and twice the line resistance over the width. Nothing bends the current, so it is exact.
+    [Theory]
+    [InlineData(100, 2e-4, 5e-4)]
+    [InlineData(2000, 1e-3, 0)]
+    public void Resistive_ends_of_a_bar_add_to_its_resistance(double sheet, double first, double second)
+    {
+        const double Width = 1e-5, Bar = 2e-5, Current = 1e-4;
+        static string End(string which, double resistance) => FormattableString.Invariant($"edge = {{ end = \"{which}\" }}\nresistance = \"{resistance:R} ohm m\"");
+        DriveResult r = TestDrive.Run(DeviceText.Bar(Bar, Width, DeviceText.Ohmic(1 / sheet, 1 / sheet))
+            .Contact("in", End("left", first)).Contact("out", End("right", second)).Tip("p", -Bar / 4, 0)
+            .Wiring("w", "in", "out", null, null, "far: p out").Drive(Current));
+        string name = FormattableString.Invariant($"resistive ends, {first:G3} and {second:G3} ohm m");
+        honesty.Reading(name, r, "source", Current * ((sheet * Bar) + first + second) / Width);
+        honesty.Reading(name, r, "far", Current * ((sheet * 3 * Bar / 4) + second) / Width);
+    }
 }

@@ -1,6 +1,7 @@
 using FieldSolve.Device;
 using FieldSolve.Laws;
 using FieldSolve.Tests.DeviceTests;
+using FieldSolve.Tests.EndToEndTests;
 
 namespace FieldSolve.Tests.RegressionTests;
 
@@ -23,14 +24,9 @@ public sealed class NastyInputTests : IDisposable
 
     public void Dispose() => Directory.Delete(folder, true);
 
-    [Fact]
+    [PosixFact]
     public void A_device_without_end_is_no_outline()
     {
-        if (OperatingSystem.IsWindows())
-        {
-            return; // there is no such path there
-        }
-
         AssertOnly(Outline.Replace("flake.geojson", "/dev/zero", StringComparison.Ordinal), 2, 20, "no plain file");
         File.CreateSymbolicLink(Path.Combine(folder, "flake.geojson"), "/dev/zero");
         AssertOnly(Outline, 2, 20, "no plain file");

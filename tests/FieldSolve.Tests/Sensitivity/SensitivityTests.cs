@@ -39,9 +39,7 @@ public class SensitivityTests
         current = { from = "200 uA", to = "200 uA", steps = 1 }
         """;
 
-    private const string Flake = """
-        [sheet]
-        bar = { length = "10 um", width = "6 um" }
+    private const string Flake = ContactedBar.Sheet + """
         [law]
         kind = "saturating"
         axis = "20 deg"
@@ -51,13 +49,8 @@ public class SensitivityTests
         field_a = "200 kV/m"
         field_b = "500 kV/m"
         sharpness = 2.5
-        [[contact]]
-        name = "s"
-        edge = { from = ["-5 um", "-1 um"], to = ["-5 um", "2 um"] }
-        resistance = "200 ohm um"
-        [[contact]]
-        name = "d"
-        pad = [["4 um", "-2.5 um"], ["6 um", "-2 um"], ["6 um", "2 um"], ["4.2 um", "2 um"]]
+
+        """ + ContactedBar.Ends + """
         [[contact]]
         name = "p"
         pad = [["-1 um", "1 um"], ["0.5 um", "1.2 um"], ["0.5 um", "4 um"], ["-1 um", "4 um"]]
@@ -66,12 +59,8 @@ public class SensitivityTests
         name = "q"
         pad = [["-0.5 um", "-2 um"], ["0.5 um", "-1.8 um"], ["0.2 um", "-1 um"]]
         resistivity = "1e-7 ohm cm^2"
-        [[wiring]]
-        name = "one"
-        source = "s"
-        drain = "d"
-        along = ["s", "p"]
-        across = ["p", "q"]
+
+        """ + ContactedBar.Wiring + """
         [drive]
         current = { from = "300 uA", to = "300 uA", steps = 1 }
         """;

@@ -44,7 +44,11 @@ public class EditableTomlTests
         string without = text.Without("contact[0]").Text;
         Assert.Contains("counts as one\r\n# between\r\n[[contact]]\r\nname = \"m\"", without, StringComparison.Ordinal);
         Assert.EndsWith("steps = 3 }\r\n", text.Without("drive.both_signs").Text, StringComparison.Ordinal);
-        Assert.Throws<LayoutEditException>(() => text.Without("drive.current.steps"));
+        Assert.Contains("current = { from = \"0 uA\", to = \"1 uA\" }\r\n", text.Without("drive.current.steps").Text, StringComparison.Ordinal);
+        Assert.Contains("edge = { width=\"1 um\" }\r\n", text.Without("contact[0].edge.at").Text, StringComparison.Ordinal);
+        Assert.Contains("along = [ \"m\" ] # two", text.WithoutItem("wiring[0].along[0]").Text.Replace("\r\n  ", "", StringComparison.Ordinal), StringComparison.Ordinal);
+        Assert.Contains("along = [ \"n\" ] # two", text.WithoutItem("wiring[0].along[1]").Text, StringComparison.Ordinal);
+        Assert.Throws<LayoutEditException>(() => text.Without("wiring[0].along[0]"));
         Assert.Throws<LayoutEditException>(() => text.Without("law"));
     }
 

@@ -2,15 +2,14 @@ using FieldSolve.Device;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
 using FieldSolve.Tests.PublishedTests;
+using FieldSolve.Tests.SensitivityTests;
 
 namespace FieldSolve.Tests.ToleranceTests;
 
 /// <summary>Budgets against finite differences of whole runs on meshes of their own, and what symmetry says must be zero.</summary>
 public class BudgetTests
 {
-    private const string Flake = """
-        [sheet]
-        bar = { length = "10 um", width = "6 um" }
+    private const string Flake = ContactedBar.Sheet + """
         [law]
         kind = "quadratic"
         axis = "20 deg"
@@ -19,13 +18,8 @@ public class BudgetTests
         d12 = "1e-9 A m/V^2"
         d21 = "1e-9 A m/V^2"
         field_limit = "200 kV/m"
-        [[contact]]
-        name = "s"
-        edge = { from = ["-5 um", "-1 um"], to = ["-5 um", "2 um"] }
-        resistance = "200 ohm um"
-        [[contact]]
-        name = "d"
-        pad = [["4 um", "-2.5 um"], ["6 um", "-2 um"], ["6 um", "2 um"], ["4.2 um", "2 um"]]
+
+        """ + ContactedBar.Ends + """
         resistivity = "1e-7 ohm cm^2"
         [[contact]]
         name = "p"
@@ -35,12 +29,8 @@ public class BudgetTests
         name = "q"
         edge = { from = ["-1 um", "-3 um"], to = ["0.5 um", "-3 um"] }
         resistance = "100 ohm um"
-        [[wiring]]
-        name = "one"
-        source = "s"
-        drain = "d"
-        along = ["s", "p"]
-        across = ["p", "q"]
+
+        """ + ContactedBar.Wiring + """
         [drive]
         current = { from = "200 uA", to = "200 uA", steps = 1 }
         both_signs = true

@@ -6,6 +6,24 @@ namespace FieldSolve.Tests.TurningTests;
 /// <summary>The algebra behind the fits.</summary>
 public class FitTests
 {
+    // The law itself is the check: the field that the two readings mean, put into K = sigma E with the Hall part, is the current again (README, signs and law "ohmic").
+    [Theory]
+    [InlineData(0)]
+    [InlineData(30)]
+    [InlineData(135)]
+    public void Strip_formula_gives_the_field_whose_current_is_the_current(double degrees)
+    {
+        const double A = 2e-3, B = 1e-3, Hall = 0.5e-3, Length = 3e-6, Width = 0.7e-6;
+        (double s, double c) = Math.SinCos(degrees * Math.PI / 180);
+        var strip = new StripFormula(new(A, B, 0, Hall), Length, Width);
+
+        // Per ampere, in the crystal frame: along the current, and to its left, where the first across probe lies.
+        double along = strip.Along(degrees * Math.PI / 180) / Length, left = -strip.Across(degrees * Math.PI / 180) / Width;
+        double ea = (along * c) - (left * s), eb = (along * s) + (left * c);
+        Assert.Equal(c / Width, (A * ea) + (Hall * eb), 1e-12 / Width);
+        Assert.Equal(s / Width, (B * eb) - (Hall * ea), 1e-12 / Width);
+    }
+
     // Second-order strip of section "uniform strip, fixed current": rho_1 = 1/2, rho_2 = 1, d11 = 0.03, d12 = 0.05, d16 = 0.01, d21 = -0.04, d22 = 0.02, d26 = -0.02; E_across2 / E_along²
     // and E_along2 / E_along², each found outside this project by solving the law's two equations at +-1e-5 of current and taking the even part.
     [Theory]

@@ -117,7 +117,7 @@ internal sealed class FitReader(Section root, ContactReader contacts)
             _ => 0,
         };
         double start = g.Start ?? designed;
-        var whole = new FitParameter(g.Kind, target, designed, start, double.NegativeInfinity, double.PositiveInfinity, g.Mean ?? start, g.Sigma, g.Interval);
+        var whole = new FitParameter(g.Kind, target, designed, start, double.NegativeInfinity, double.PositiveInfinity, g.Mean ?? start, g.Sigma, g.Interval) { At = (g.At.Line, g.At.Column) };
         double least = whole.IsPositive ? start / MostFactor : double.NegativeInfinity, most = whole.IsPositive ? start * MostFactor : double.PositiveInfinity;
         if (g.Kind is LawCause law)
         {

@@ -33,10 +33,7 @@ internal sealed record InputFile(string Text, bool HasBadBytes, string Sha256, F
                 return Bad(path, $"this is a directory; name {words.Kind} (TOML)");
             }
 
-            // Pipes and devices show no length: opening a pipe may block for ever, and a device may have no end.
-            FileInfo info = new(path);
-            info = info.ResolveLinkTarget(true) as FileInfo ?? info;
-            if (info is { Exists: true, Length: 0 })
+            if (PlainFile.HasNoLength(path))
             {
                 return Empty(path, words, " (or no plain file)");
             }

@@ -7,6 +7,9 @@ namespace FieldSolve.Device;
 /// <summary>Reads [law].</summary>
 internal static class LawReader
 {
+    // SI; far outside what any number of a law can be, far inside what doubles hold.
+    private const double Smallest = 1e-60, Largest = 1e60;
+
     private const double LargestAnisotropy = 10_000, LargestHallTangent = 100, Rounding = 1 + 1e-6;
 
     /// <returns>The law, null with faults if it is no good, and the angle from lab x to crystal a in radians.</returns>
@@ -137,7 +140,19 @@ internal static class LawReader
         double? number = p.Dimension == Dimension.None
             ? Values.Number(value, what, Range.Any, integer: false, faults)
             : Values.Quantity(value, what, p.Dimension, Range.Any, faults);
-        if (number is null || p.Allows(number.Value))
+        if (number is null)
+        {
+            return null;
+        }
+
+        // A denormal field once let the search for the guard step without getting on.
+        if (number != 0 && Math.Abs(number.Value) is < Smallest or > Largest)
+        {
+            faults.Add(value.At, string.Create(CultureInfo.InvariantCulture, $"{what} ({p.Meaning}) is {number.Value:G3} in SI units, beyond any sheet; check its unit"));
+            return null;
+        }
+
+        if (p.Allows(number.Value))
         {
             return number;
         }

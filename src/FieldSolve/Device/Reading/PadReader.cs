@@ -6,7 +6,6 @@ namespace FieldSolve.Device;
 /// <summary>Reads the polygon of a pad, from the device file or from a file of polygons.</summary>
 internal sealed class PadReader(SheetReading sheet, FileSource files, FaultList faults)
 {
-    private const double SameCorner = 1e-9; // of the pad's size
     private const string Example = "[[\"1 um\", \"1 um\"], [\"3 um\", \"1 um\"], [\"2 um\", \"3 um\"]] or { file = \"pads.geojson\", name = \"w\" }";
 
     /// <summary>The corners in metres, not repeated at the end; null, with faults, if they are no good.</summary>
@@ -15,7 +14,7 @@ internal sealed class PadReader(SheetReading sheet, FileSource files, FaultList 
         switch (pad.Value)
         {
             case TomlArray { OfTables: false } list:
-                return Corners(list);
+                return CornerList.Read(list, "'pad'", $"a pad needs at least three corners, for example {Example}", faults);
             case TomlTable table:
                 Section section = new(table, "'pad'", faults);
                 IReadOnlyList<Point2>? corners = FromFile(section);
@@ -25,26 +24,6 @@ internal sealed class PadReader(SheetReading sheet, FileSource files, FaultList 
                 faults.Add(pad.Value.At, $"'pad' is {pad.Value.Kind}; write a list of corners or a file: {Example}");
                 return null;
         }
-    }
-
-    private List<Point2>? Corners(TomlArray list)
-    {
-        List<Point2?> points = [.. list.Items.Select(i => Values.Point(i, "'pad'", faults))];
-        if (points.Any(p => p is null))
-        {
-            return null;
-        }
-
-        Point2[] given = [.. points.Select(p => p!.Value)];
-        double size = given.Length == 0 ? 0 : Math.Max(given.Max(p => p.X) - given.Min(p => p.X), given.Max(p => p.Y) - given.Min(p => p.Y));
-        List<Point2> corners = OutlinePolygons.Distinct(given, SameCorner * size);
-        if (corners.Count >= 3)
-        {
-            return corners;
-        }
-
-        faults.Add(list.At, $"a pad needs at least three corners, for example {Example}");
-        return null;
     }
 
     private IReadOnlyList<Point2>? FromFile(Section section)

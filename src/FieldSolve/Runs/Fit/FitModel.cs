@@ -3,6 +3,7 @@ using FieldSolve.Fields;
 using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Meshing;
+using FieldSolve.Readings;
 using FieldSolve.Sensitivity;
 using FieldSolve.Solving;
 using FieldSolve.Sparse;
@@ -133,7 +134,8 @@ internal sealed class FitModel : IFitFunction
         level, u, vectors, [.. problem.Parameters.Where(q => q.Kind.Effect == CauseEffect.Law).Select(q => q.Kind.Key)],
         problem.Parameters.Any(q => q.Kind.Effect == CauseEffect.Motion), cancel);
 
-    /// <summary>Velocities of the mesh under the parameters that move something.</summary>
+    /// <summary>Velocities of the mesh under the parameters that move something; null for the others.</summary>
+    /// <exception cref="FitException">A parameter stands where the sheet changes in more than places, so that there is no derivative.</exception>
     public MotionField?[] Fields(double[] p)
     {
         var fields = new MotionField?[problem.Parameters.Count];
@@ -142,10 +144,48 @@ internal sealed class FitModel : IFitFunction
             CauseKind kind = problem.Parameters[j].Kind;
             if (kind.Effect == CauseEffect.Motion)
             {
-                fields[j] = motion.Velocity(by => DomainAt(p, j, by), kind.LargeChange(problem.DeviceAt(p)));
+                fields[j] = motion.Velocity(by => problem.DomainAt(p, j, by), kind.LargeChange(problem.DeviceAt(p)));
             }
         });
-        return fields;
+        int jump = Enumerable.Range(0, fields.Length).FirstOrDefault(j => fields[j] is null && problem.Parameters[j].Kind.Effect == CauseEffect.Motion, -1);
+        return jump < 0 ? fields : throw problem.Jump(jump, p[jump]);
+    }
+
+    /// <summary>
+    /// What the guarded zone of the law does to the data at the largest currents of each circuit: where the law is left, and per datum the influence, V; null for no exit
+    /// and for weaker currents.
+    /// </summary>
+    public (LawExit? Exit, double?[] Influence) Guarded(double[] p, CancellationToken cancel)
+    {
+        Trial trial = At(p, cancel);
+        var influence = new double?[problem.Data.Count];
+        LawExit? worst = null;
+        if (trial.Level.Equations.Law.Guard is null)
+        {
+            return (null, influence);
+        }
+
+        foreach (int[] states in byCircuit)
+        {
+            // The ends of the range of currents: the first and last of either sign.
+            foreach (int s in states.Where(s => states.All(o => Math.Abs(problem.States[o].Current) <= Math.Abs(problem.States[s].Current) * (1 + 1e-9)
+                || (problem.States[o].Current > 0) != (problem.States[s].Current > 0))))
+            {
+                ReadingPlan plan = problem.Plans[problem.States[s].Circuit];
+                StateSensitivity state = Measure(trial.Level, trial.U[s], plan.Vectors(trial.Level), cancel);
+                GuardZone zone = GuardZone.Measure(trial.Level.Equations, trial.U[s], state.Adjoints);
+                worst = zone.Exit is { } exit && !(exit.Field <= worst?.Field) ? exit : worst;
+                for (int i = 0; i < influence.Length && zone.Exit is not null; i++)
+                {
+                    if (problem.Terms[i].FirstOrDefault(t => t.State == s) is { Weight: not 0 } term)
+                    {
+                        influence[i] = (influence[i] ?? 0) + (term.Weight * zone.Share[problem.Reading[i]]);
+                    }
+                }
+            }
+        }
+
+        return (worst, influence);
     }
 
     /// <summary>Derivatives from the sensitivities of a state.</summary>
@@ -162,7 +202,7 @@ internal sealed class FitModel : IFitFunction
                     CauseEffect.Axis => state.ByAxis(k),
                     CauseEffect.Law => state.ByLaw(k, q.Kind.Key),
                     CauseEffect.Resistance => state.ByContact(k, q.Target.Contacts[0]),
-                    _ => fields[j] is { } field ? state.ByMotion(k, field) : 0,
+                    _ => state.ByMotion(k, fields[j]!),
                 };
             }
         }
@@ -171,20 +211,6 @@ internal sealed class FitModel : IFitFunction
     }
 
     private static ParallelOptions Threads(CancellationToken cancel) => new() { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount };
-
-    private Domain? DomainAt(double[] p, int j, double by)
-    {
-        double[] q = [.. p];
-        q[j] += by;
-        try
-        {
-            return problem.DeviceAt(q).Domain;
-        }
-        catch (Exception e) when (e is LayoutException or LawException)
-        {
-            return null;
-        }
-    }
 
     private Trial At(double[] p, CancellationToken cancel)
     {

@@ -12,6 +12,11 @@ public sealed record FitOptions
     /// <summary>How many readings to suggest next.</summary>
     public int Suggest { get; init; }
 
+    /// <summary>
+    /// What harmonics owe to charge over a gate; needed where the device has a gate and the data hold harmonics. The lock-in run knows it: <c>Lockin.GateMemory</c>.
+    /// </summary>
+    public ICycleMemory? Memory { get; init; }
+
     /// <summary>Intervals by profile likelihood for all parameters without a prior, not only for those that ask for one.</summary>
     public bool AllIntervals { get; init; }
 }

@@ -1,7 +1,10 @@
+using System.Globalization;
 using FieldSolve.Device;
 using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Measured;
+using FieldSolve.Readings;
+using FieldSolve.Sensitivity;
 
 namespace FieldSolve.Runs;
 
@@ -14,8 +17,8 @@ internal readonly record struct FitTerm(int State, double Weight);
 /// <summary>What a fit has to solve and how its data come out of it.</summary>
 internal sealed class FitProblem
 {
-    // Nodes over half a period: the n-th harmonic is then exact up to what the (2N - n)-th one holds.
-    private const int HarmonicNodes = 8;
+    // A harmonic wants so many phases more over half a period than its order: the n-th is exact up to what the (2N - n)-th holds.
+    private const int PhasesBeyond = 4;
 
     /// <summary>V/I is a smooth function of the current: a polynomial through this many of Chebyshev's points has it well below any noise at weak drive.</summary>
     public const int FewestNodes = 8;
@@ -33,12 +36,15 @@ internal sealed class FitProblem
     /// <param name="parameters">Free numbers.</param>
     /// <param name="measured">The table.</param>
     /// <param name="data">Its rows to fit.</param>
-    /// <param name="nodes">A circuit with more DC currents than these is solved at so many, and V/I interpolated between.</param>
+    /// <param name="nodes">A circuit with more DC currents than these is solved at so many, and V/I interpolated between; a cycle has so many intervals between its peaks.</param>
+    /// <param name="memory">What harmonics owe to a memory of the sheet; null where it has none.</param>
     public FitProblem(
-        SheetDevice device, IReadOnlyList<FitParameter> parameters, MeasuredVoltages measured, IReadOnlyList<MeasuredVoltage> data, int nodes = FewestNodes)
+        SheetDevice device, IReadOnlyList<FitParameter> parameters, MeasuredVoltages measured, IReadOnlyList<MeasuredVoltage> data, int nodes = FewestNodes,
+        ICycleMemory? memory = null)
     {
         this.device = device;
         Nodes = nodes;
+        Memory = memory;
         Parameters = parameters;
         Measured = measured;
         Data = data;
@@ -57,6 +63,9 @@ internal sealed class FitProblem
 
     /// <summary>Points of the interpolation in the current.</summary>
     public int Nodes { get; }
+
+    /// <summary>What harmonics owe to a memory of the sheet; null where it has none.</summary>
+    public ICycleMemory? Memory { get; }
 
     public IReadOnlyList<FitParameter> Parameters { get; }
 
@@ -108,12 +117,53 @@ internal sealed class FitProblem
     }
 
     /// <summary>The same with fewer data.</summary>
-    public FitProblem With(IReadOnlyList<MeasuredVoltage> data) => new(device, Parameters, Measured, data, Nodes);
+    public FitProblem With(IReadOnlyList<MeasuredVoltage> data) => new(device, Parameters, Measured, data, Nodes, Memory);
 
     /// <summary>The same with more points.</summary>
-    public FitProblem With(int nodes) => new(device, Parameters, Measured, Data, nodes);
+    public FitProblem With(int nodes) => new(device, Parameters, Measured, Data, nodes, Memory);
 
-    /// <summary>Per datum: what the interpolation may miss, V, from the last two terms of its Chebyshev series.</summary>
+    /// <summary>The domain when one number changes; null when there is none.</summary>
+    public Domain? DomainAt(double[] p, int j, double by)
+    {
+        double[] q = [.. p];
+        q[j] += by;
+        try
+        {
+            return DeviceAt(q).Domain;
+        }
+        catch (Exception e) when (e is LayoutException or LawException)
+        {
+            return null;
+        }
+    }
+
+    /// <summary>Refuses numbers at which the sheet changes in more than places, so that readings have no derivative there.</summary>
+    /// <exception cref="FitException">There is such a number.</exception>
+    public void RefuseJumps(double[] p)
+    {
+        SheetDevice there = DeviceAt(p);
+        for (int j = 0; j < p.Length; j++)
+        {
+            CauseKind kind = Parameters[j].Kind;
+            if (kind.Effect == CauseEffect.Motion && !NodeMotion.IsSmooth(there.Domain, by => DomainAt(p, j, by), kind.LargeChange(there)))
+            {
+                throw Jump(j, p[j]);
+            }
+        }
+    }
+
+    /// <summary>What to say of a number without a derivative.</summary>
+    public FitException Jump(int j, double value)
+    {
+        FitParameter q = Parameters[j];
+        return new(
+            string.Create(
+                CultureInfo.InvariantCulture,
+                $"'{q.Kind.Key}'{(q.Target.Name.Length > 0 ? $": contact '{q.Target.Name}'" : "")} cannot be free at {value / q.UnitSize:G6} {q.Unit}: there the smallest change makes an edge of the metal or of the sheet meet another, appear or vanish, and the readings have no derivative; start elsewhere (start = …), keep away from that place with 'min' and 'max', or draw it clear of the edge"),
+            q.At.Line, q.At.Column);
+    }
+
+    /// <summary>Per datum: what the interpolation in the current or the rule over the phases may miss, V, from the last terms of the Chebyshev series.</summary>
     /// <param name="readings">Readings of every state, V.</param>
     public double[] InterpolationErrors(double[][] readings)
     {
@@ -121,7 +171,18 @@ internal sealed class FitProblem
         for (int i = 0; i < errors.Length; i++)
         {
             MeasuredVoltage d = Data[i];
-            if (Proportional || d.Harmonic is not null || ranges[d.Circuit] is not { } range || d.Current == 0)
+            if (Proportional || d.Current == 0)
+            {
+                continue;
+            }
+
+            if (d.Harmonic is { } n)
+            {
+                errors[i] = PhaseError(d, n, k => readings[k][Reading[i]]);
+                continue;
+            }
+
+            if (ranges[d.Circuit] is not { } range)
             {
                 continue;
             }
@@ -177,21 +238,30 @@ internal sealed class FitProblem
             return d.Current == 0 ? [] : ranges[d.Circuit] is { } range ? Interpolated(d, range) : [new(State(d.Circuit, d.Current), 1)];
         }
 
-        // V is a function of I = I0 + sqrt(2) I cos(t), t counted from the crest: a series of cos(n t), by Chebyshev's points. Back to the phase counted from
-        // the zero of sin: cos(n t) is sin, -cos, -sin, cos of n times it for n = 1, 2, 3, 4.
-        int nodes = Math.Max(HarmonicNodes, n + 4);
-        double scale = (n == 0 ? 1.0 : Math.Sqrt(2)) * (n % 4 is 2 or 3 ? -1 : 1) / nodes;
-        var terms = new List<FitTerm>();
-        for (int k = 0; k < nodes; k++)
-        {
-            double t = Math.PI * (k + 0.5) / nodes, current = offset + (Math.Sqrt(2) * d.Current * Math.Cos(t));
-            if (current != 0)
-            {
-                terms.Add(new(State(d.Circuit, current), scale * Math.Cos(n * t)));
-            }
-        }
+        PhaseNodes phases = PhasesOf(n);
+        (int sine, int cosine) = PhaseNodes.Direction(n);
+        double scale = (sine + cosine) / (n == 0 ? 1 : Math.Sqrt(2));
+        return
+        [
+            .. phases.Sine.Select((s, k) => (Current: CurrentAt(d, s, offset), Weight: scale * phases.Weight(n, k))).Where(t => t.Current != 0)
+                .Select(t => new FitTerm(State(d.Circuit, t.Current), t.Weight)),
+        ];
+    }
 
-        return [.. terms];
+    private PhaseNodes PhasesOf(int harmonic) => new(Math.Max(Nodes, harmonic + PhasesBeyond + (harmonic % 2)));
+
+    private static double CurrentAt(MeasuredVoltage d, double sine, double offset) => offset + (Math.Sqrt(2) * d.Current * sine);
+
+    // The n-th amplitude of N intervals also holds the (2N - n)-th. The last amplitudes and how fast they fall tell how large that is.
+    private double PhaseError(MeasuredVoltage d, int n, Func<int, double> reading)
+    {
+        PhaseNodes phases = PhasesOf(n);
+        double offset = device.Drive?.Offset ?? 0;
+        double[] values = [.. phases.Sine.Select(s => CurrentAt(d, s, offset) is var current && current != 0 ? reading(known[(d.Circuit, current)]) : 0)];
+        double Pair(int from) => Math.Abs(phases.Amplitude(from, values)) + Math.Abs(phases.Amplitude(from + 1, values));
+        int most = phases.Intervals;
+        double last = Pair(most - 2), before = Pair(most - 4), fall = before > 0 ? Math.Min(1, last / before) : 1;
+        return last * Math.Pow(fall, (most - n) / 2.0) / (n == 0 ? 1 : Math.Sqrt(2));
     }
 
     // Lagrange's formula for V/I in its barycentric form at Chebyshev's points (J.-P. Berrut, L. N. Trefethen, SIAM Rev. 46, 501 (2004)).

@@ -13,14 +13,17 @@ internal sealed class FitReference
 {
     private readonly IReadOnlyList<GoalMeasure> goals;
     private readonly FitProblem problem;
+    private readonly IReadOnlyDictionary<MeasuredVoltage, (double Shift, double Error)>? memory;
 
-    private FitReference(FitProblem problem, MeshPair meshes, IReadOnlyList<GoalMeasure> goals)
+    private FitReference(
+        FitProblem problem, MeshPair meshes, IReadOnlyList<GoalMeasure> goals, IReadOnlyDictionary<MeasuredVoltage, (double Shift, double Error)>? memory)
     {
         this.problem = problem;
         this.goals = goals;
+        this.memory = memory;
         Meshes = meshes;
         Missing = Of(problem);
-        Bars = [.. problem.Data.Select((d, i) => Bar(d, problem.Reading[i]))];
+        Bars = [.. problem.Data.Select((d, i) => Bar(d, problem.Reading[i]) + (memory?.GetValueOrDefault(d).Error ?? 0))];
     }
 
     public MeshPair Meshes { get; }
@@ -37,28 +40,28 @@ internal sealed class FitReference
     /// <summary>Meshes until the numerical errors are small beside the data's standard deviations.</summary>
     public static FitReference Refine(FitProblem problem, double[] p, double share, Action<string> tell, StageClock clock, CancellationToken cancel)
     {
-        SheetDevice device = Prepared(problem, problem.DeviceAt(p), share);
+        SheetDevice there = problem.DeviceAt(p), device = Prepared(problem, there, share);
         MeshRefinement refinement = MeshRefinement.Run(
             device, new LabLaw(device.Law, device.Axis), problem.Plans, problem.LargestCurrent, !device.Law.IsLinear, tell, clock, cancel);
-        return new(problem, refinement.Meshes, refinement.Goals);
+        return new(problem, refinement.Meshes, refinement.Goals, problem.Memory?.Of(there, refinement.Meshes.Coarse.Space.Mesh, problem.Measured, cancel));
     }
 
     /// <summary>The same triangles, moved, measured anew.</summary>
     public static FitReference Again(FitProblem problem, double[] p, TriangleMesh moved, double share, CancellationToken cancel)
     {
-        SheetDevice device = Prepared(problem, problem.DeviceAt(p), share);
+        SheetDevice there = problem.DeviceAt(p), device = Prepared(problem, there, share);
         MeshPair meshes = MeshPair.Build(device, moved, new LabLaw(device.Law, device.Axis), cancel);
         var found = new IReadOnlyList<GoalMeasure>[problem.Plans.Length];
         Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount }, c => found[c] =
             LevelMeasure.Of(meshes, problem.Plans[c], problem.LargestCurrent, [problem.LargestCurrent], !device.Law.IsLinear, cancel));
-        return new(problem, meshes, [.. found.SelectMany(g => g)]);
+        return new(problem, meshes, [.. found.SelectMany(g => g)], problem.Memory?.Of(there, moved, problem.Measured, cancel));
     }
 
     /// <summary>The same for another list of states.</summary>
-    public FitReference For(FitProblem other) => new(other, Meshes, [.. goals.Select(g => g with { Plan = other.Plans[Array.IndexOf(problem.Plans, g.Plan)] })]);
+    public FitReference For(FitProblem other) => new(other, Meshes, [.. goals.Select(g => g with { Plan = other.Plans[Array.IndexOf(problem.Plans, g.Plan)] })], memory);
 
     /// <summary>What is missing from the data of another problem on the same plans.</summary>
-    public double[] Of(FitProblem other) => [.. other.Data.Select((_, i) => other.Terms[i].Sum(t =>
+    public double[] Of(FitProblem other) => [.. other.Data.Select((d, i) => (memory?.GetValueOrDefault(d).Shift ?? 0) + other.Terms[i].Sum(t =>
         t.Weight * MissingOf(other.States[t.State].Circuit, other.Reading[i], other.States[t.State].Current)))];
 
     // Errors are asked for relative to the largest along voltage, so the data's own voltages say how small they must be.

@@ -17,6 +17,9 @@ public sealed record FittedParameter(FitParameter Parameter, double? Value, doub
 
     /// <summary>Points of the profile likelihood that the interval was found from, by value; empty when none was asked for.</summary>
     public IReadOnlyList<LikelihoodPoint> Profile { get; init; } = [];
+
+    /// <summary>By how much the model's numerical errors may have moved it, SI: errors of one reading go together along the currents, those of all readings at their worst.</summary>
+    public double NumericalError { get; init; }
 }
 
 /// <summary>A point of a profile likelihood.</summary>

@@ -16,8 +16,14 @@ public static class FitRun
 {
     private const int MostRounds = 4, MostSteps = 40, MostThinSteps = 12;
 
+    // What a gate adds depends on the numbers more than the error of a mesh does; the derivatives leave that out.
+    private const int MostRoundsWithMemory = 15;
+
     // Rounds end when the new correction moves no number by more than this share of its standard error.
     private const double Settled = 0.05;
+
+    // Singular values below so many times the lack of the mesh, in standard deviations of the data, are measured anew on the finer one.
+    private const double ClearOfMesh = 3, LeastClear = 20;
 
     // The axis turns by no more than this in one step, rad: beyond, the tensor is far from linear in it.
     private const double LargestTurn = 0.35;
@@ -48,7 +54,13 @@ public static class FitRun
 
         var clock = new StageClock();
         void Tell(string stage) => progress?.Report(new(stage, 0, 0));
-        var problem = new FitProblem(device, spec.Parameters, measured, measured.Data);
+        bool gated = device.GateCapacitance > 0 && measured.Data.Any(d => d.Harmonic is not null && d.Current > 0);
+        if (gated && options.Memory is null)
+        {
+            throw new FitException("The data hold harmonics of a sheet over a gate, and nothing was given that knows what its charge does to them.");
+        }
+
+        var problem = new FitProblem(device, spec.Parameters, measured, measured.Data, memory: gated ? options.Memory : null);
         if (problem.States.Count == 0)
         {
             throw new FitException("All currents of the data are zero; there is nothing to fit.");
@@ -56,7 +68,11 @@ public static class FitRun
 
         FitTask task = TaskOf(problem, options.Robust);
         double[] p = problem.Start;
-        FitReference reference = Reached(() => FitReference.Refine(problem, p, spec.NumericalShare, Tell, clock, cancel));
+        FitReference reference = Reached(() =>
+        {
+            problem.RefuseJumps(p);
+            return FitReference.Refine(problem, p, spec.NumericalShare, Tell, clock, cancel);
+        });
         (IReadOnlyList<FitStart> starts, p) = clock.Time("starts", () => Starts(problem, reference, p, options, Tell, cancel));
         (int States, int Adjoints) solves = (0, 0);
         while (true)
@@ -168,13 +184,13 @@ public static class FitRun
 
             // What the new correction would move, to first order.
             double moved = Shift(problem, task, end, next.Missing.Zip(reference.Missing, (a, b) => a - b).ToArray());
-            if (!ReferenceEquals(next.Meshes, reference.Meshes) && (moved > Settled || !end.Converged) && round < MostRounds - 1)
+            if ((moved > Settled || !end.Converged) && round < (problem.Memory is null ? MostRounds : MostRoundsWithMemory) - 1)
             {
                 (reference, p) = (next, end.P);
                 continue;
             }
 
-            return (end, model, next, (states, adjoints));
+            return (end with { Converged = end.Converged && moved <= Settled }, model, next, (states, adjoints));
         }
     }
 
@@ -217,6 +233,16 @@ public static class FitRun
         double largestVoltage = problem.Data.Max(d => Math.Abs(d.Value));
         double[] scales = FitScales.Of(fittedDevice, q, end.P, largestVoltage);
         IReadOnlyList<FitDirection> directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
+
+        // What a mesh lacks changes with the numbers by about its own size for one natural scale: a direction that stands no clearer is looked at on the finer mesh, or the
+        // irregular triangles would seem to tell what no reading can.
+        double lack = Math.Sqrt(reference.Missing.Select((v, i) => v / task.Sigma[i]).Sum(v => v * v));
+        if (directions.Any(d => d.SingularValue < Math.Max(ClearOfMesh * lack, LeastClear)))
+        {
+            end = end with { Jacobian = new FitModel(problem, reference.Meshes.Fine, new double[problem.Data.Count]).Jacobian(end.P, cancel) };
+            directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
+        }
+
         double[,] covariance = Identifiability.Covariance(directions, scales);
         double widen = options.Robust ? RobustFactor(task, end) : 1;
         int m = q.Count;
@@ -229,6 +255,7 @@ public static class FitRun
         }
 
         bool[] determined = [.. Enumerable.Range(0, m).Select(j => Math.Sqrt(covariance[j, j]) <= Identifiability.MostDeviation * scales[j])];
+        double[] numerical = NumericalErrors(problem, task, end, covariance, widen, bars);
         var parameters = new FittedParameter[m];
         for (int j = 0; j < m; j++)
         {
@@ -240,6 +267,7 @@ public static class FitRun
             {
                 Ended = end.P[j],
                 Profile = profile?.Points ?? [],
+                NumericalError = determined[j] ? numerical[j] : 0,
             };
         }
 
@@ -278,9 +306,29 @@ public static class FitRun
             Steps = end.Steps,
             Solves = solves,
             Unknowns = (reference.Meshes.Coarse.Space.Size, reference.Meshes.Fine.Space.Size),
-            Warnings = FitWarnings.Of(device, parameters, directions, quality, share, end, options),
+            Warnings = [.. FitWarnings.Of(device, parameters, directions, quality, share, end, options), .. FitWarnings.Guarded(problem, model, end.P, device.Fit.NumericalShare, cancel)],
             Stages = [],
         };
+    }
+
+    // To first order dp = C J' W dV / sigma², with C the inverse of the curvature. The lack of a mesh is a smooth function of the current of each reading, so there it cannot
+    // average out; between readings the worst is taken.
+    private static double[] NumericalErrors(FitProblem problem, FitTask task, FitEnd end, double[,] covariance, double widen, double[] bars)
+    {
+        int m = end.P.Length;
+        double[] errors = new double[m];
+        foreach (IGrouping<(int, int, int?), int> reading in Enumerable.Range(0, bars.Length)
+            .GroupBy(i => (problem.Data[i].Circuit, problem.Data[i].Pair, problem.Data[i].Harmonic)))
+        {
+            for (int j = 0; j < m; j++)
+            {
+                errors[j] += Math.Abs(reading.Sum(i =>
+                    Enumerable.Range(0, m).Sum(k => covariance[j, k] / widen * end.Jacobian[i, k]) * end.Weights[i] * Math.Sign(problem.Data[i].Current) * bars[i]
+                    / (task.Sigma[i] * task.Sigma[i])));
+            }
+        }
+
+        return errors;
     }
 
     // Of the estimate, not of the data: mean of psi² over the squared mean of psi' (P. J. Huber, Robust Statistics (1981), section 7.6). The directions were measured with

@@ -1,5 +1,6 @@
 using System.Globalization;
 using FieldSolve.Device;
+using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
 
@@ -7,6 +8,18 @@ namespace FieldSolve.Runs;
 internal static class FitWarnings
 {
     private const double Unlikely = 0.001, MostRuns = 3.5;
+
+    /// <summary>Where the fitted sheet leaves its law by enough to matter.</summary>
+    public static IReadOnlyList<string> Guarded(FitProblem problem, FitModel model, double[] p, double share, CancellationToken cancel)
+    {
+        (LawExit? exit, double?[] influence) = model.Guarded(p, cancel);
+        (double Sigmas, int Line) worst = influence.Select((v, i) => (Math.Abs(v ?? 0) / problem.Data[i].Sigma, problem.Data[i].Line)).Max();
+        return exit is { } there && worst.Sigmas > share
+            ? [string.Create(
+                CultureInfo.InvariantCulture,
+                $"The field reaches {there.Field:G3} V/m at ({there.X:G3} m, {there.Y:G3} m), beyond the {there.From:G3} V/m up to which the fitted law is used as written; what comes after moves line {worst.Line} of the data by {worst.Sigmas:G2} standard deviations. Give the law a field_limit or the contacts a resistance, or leave out the largest currents.")]
+            : [];
+    }
 
     public static IReadOnlyList<string> Of(
         SheetDevice device, IReadOnlyList<FittedParameter> parameters, IReadOnlyList<FitDirection> directions, FitQuality quality, double share, FitEnd end, FitOptions options)
@@ -25,7 +38,13 @@ internal static class FitWarnings
 
         foreach (FitDirection d in directions.Where(d => !d.Determined))
         {
-            list.Add(char.ToUpperInvariant(d.Words[0]) + d.Words[1..] + ".");
+            // Names of numbers are case-sensitive: the sentence begins as they do.
+            list.Add(d.Words + ".");
+        }
+
+        foreach (FittedParameter p in parameters.Where(p => p.NumericalError > p.StandardError))
+        {
+            Say($"The model's numerical errors together may move '{p.Parameter.Label}' by up to {p.NumericalError / p.StandardError!.Value:G2} standard errors; a smaller 'numerical_share' makes them smaller.");
         }
 
         foreach (FittedParameter p in parameters.Where(p => p.AtBound))

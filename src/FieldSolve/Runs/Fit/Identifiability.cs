@@ -25,7 +25,7 @@ internal static class Identifiability
         return [.. values.Select((s, k) =>
         {
             bool determined = s > 0 && 1 / s <= MostDeviation;
-            return new FitDirection(s, directions[k], determined, determined ? "" : Words(parameters, directions[k], s, scales, p));
+            return new FitDirection(s, directions[k], determined, determined ? "" : Words(parameters, directions[k], scales, p) + AlsoOpen(parameters, directions[k], s));
         })];
     }
 
@@ -36,7 +36,7 @@ internal static class Identifiability
         double[,] c = new double[m, m];
         foreach (FitDirection d in directions)
         {
-            double deviation = d.SingularValue > 1 / NoInformation ? 1 / d.SingularValue : NoInformation;
+            double deviation = Deviation(d.SingularValue);
             for (int i = 0; i < m; i++)
             {
                 for (int j = 0; j < m; j++)
@@ -48,6 +48,18 @@ internal static class Identifiability
 
         return c;
     }
+
+    private static double Deviation(double singular) => singular > 1 / NoInformation ? 1 / singular : NoInformation;
+
+    // Numbers that take a small part in a direction nothing is known of have no value either.
+    private static string AlsoOpen(IReadOnlyList<FitParameter> parameters, double[] v, double singular)
+    {
+        double most = v.Max(Math.Abs);
+        string[] names = [.. parameters.Where((_, j) => Math.Abs(v[j]) < Said * most && Math.Abs(v[j]) * Deviation(singular) > MostDeviation).Select(q => q.Label)];
+        return names.Length == 0 ? "" : $", and that leaves {List(names)} without a number too";
+    }
+
+    private static string List(string[] names) => names.Length == 1 ? names[0] : string.Join(", ", names.SkipLast(1)) + " and " + names[^1];
 
     private static (double[] Values, double[][] Directions) Singular(
         IReadOnlyList<FitParameter> parameters, double[,] jacobian, double[] sigma, double[] weights, double[] scales)
@@ -75,7 +87,7 @@ internal static class Identifiability
         return ([.. svd.S], directions);
     }
 
-    private static string Words(IReadOnlyList<FitParameter> parameters, double[] v, double singular, double[] scales, double[] p)
+    private static string Words(IReadOnlyList<FitParameter> parameters, double[] v, double[] scales, double[] p)
     {
         double most = v.Max(Math.Abs);
         int[] part = [.. Enumerable.Range(0, v.Length).Where(j => Math.Abs(v[j]) >= Said * most).OrderByDescending(j => Math.Abs(v[j]))];
@@ -85,7 +97,7 @@ internal static class Identifiability
             return $"{names[0]} is not determined by these data";
         }
 
-        string all = string.Join(", ", names.SkipLast(1)) + " and " + names[^1];
+        string all = List(names);
         if (part.Length == 2)
         {
             int[] pair = [.. part.Order()];

@@ -25,4 +25,7 @@ public sealed record OverlayOptions
 
     /// <summary>Largest rotation either way, rad.</summary>
     public double MostTurn { get; init; } = 15 * Math.PI / 180;
+
+    /// <summary>One patch of other conductance is looked for where the residuals have a pattern. Default true.</summary>
+    public bool Patch { get; init; } = true;
 }

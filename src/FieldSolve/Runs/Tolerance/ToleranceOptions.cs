@@ -3,6 +3,9 @@ namespace FieldSolve.Runs;
 /// <summary>Choices of a tolerance run that are not part of the device.</summary>
 public sealed record ToleranceOptions
 {
+    /// <summary>No run draws more samples.</summary>
+    public const int MostSamples = 10_000_000;
+
     /// <summary>Most samples; 0 for the budget alone.</summary>
     public int Samples { get; init; } = 256;
 

@@ -1,5 +1,6 @@
 using System.Collections.Concurrent;
 using System.Globalization;
+using System.Runtime.ExceptionServices;
 using System.Runtime.InteropServices;
 using System.Security.Cryptography;
 using FieldSolve.Device;
@@ -114,6 +115,11 @@ public static class ToleranceRun
         catch (AggregateException e) when (e.InnerExceptions.All(x => x is OperationCanceledException))
         {
             return (solved, true);
+        }
+        catch (AggregateException e)
+        {
+            // A disk that is full, for example: said as what it is.
+            ExceptionDispatchInfo.Throw(e.InnerExceptions[0]);
         }
 
         return (solved, false);

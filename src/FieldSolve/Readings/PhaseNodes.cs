@@ -1,4 +1,4 @@
-namespace FieldSolve.Lockin;
+namespace FieldSolve.Readings;
 
 /// <summary>
 /// Phases at which a memoryless response to I(t) = I_dc + sqrt(2) I_rms sin(theta) is solved. Since sin(theta) = sin(pi - theta), the 2n equally

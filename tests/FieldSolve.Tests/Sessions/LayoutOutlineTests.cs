@@ -1,0 +1,234 @@
+using System.Text.Json;
+using FieldSolve.Device;
+using FieldSolve.Geometry;
+using FieldSolve.Sessions;
+using FieldSolve.Tests.EndToEndTests;
+
+namespace FieldSolve.Tests.SessionsTests;
+
+/// <summary>Corners of an outline and traces, as changes of the device file.</summary>
+public sealed class LayoutOutlineTests : IDisposable
+{
+    // Clockwise on purpose, with a hole.
+    private const string Corners = "corners = [[\"0 um\", \"0 um\"], [\"0 um\", \"4 um\"], [\"10 um\", \"4 um\"], [\"10 um\", \"0 um\"]], holes = [[[\"4 um\", \"1 um\"], [\"5 um\", \"1 um\"], [\"5 um\", \"2 um\"]]]";
+
+    private const string Text = """
+        [sheet]
+        outline = { CORNERS }   # kept
+        [law]
+        kind = "ohmic"
+        a = "1 mS"
+        b = "1 mS"
+        [[contact]]
+        name = "left"
+        edge = { from = ["0 um", "1 um"], to = ["0 um", "3 um"] }
+        [[contact]]
+        name = "right"
+        edge = { from = ["10 um", "1 um"], to = ["10 um", "3 um"] }
+        [[contact]]
+        name = "top"
+        edge = { from = ["2 um", "4 um"], to = ["3 um", "4 um"] }
+        [[wiring]]
+        name = "bar"
+        source = "left"
+        drain = "right"
+        [drive]
+        current = { from = "0 uA", to = "1 uA", steps = 2 }
+        """;
+
+    private readonly TempFolder folder = new("outline");
+
+    public void Dispose() => folder.Dispose();
+
+    private EditSession Open(string outline = Corners) => EditSession.Open(folder.Write("device.toml", Text.Replace("CORNERS", outline, StringComparison.Ordinal))).Session!;
+
+    private static int Find(SheetDevice device, double x, double y) =>
+        device.Drawn[0].Select(c => c.Start).ToList().FindIndex(p => Point2.Distance(p, new(x * 1e-6, y * 1e-6)) < 1e-12);
+
+    private static Contact Named(EditSession session, string name) => session.State.Device.Contacts.Single(c => c.Name == name);
+
+    [Fact]
+    public void An_outline_of_corners_is_that_of_the_same_file()
+    {
+        folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[0,4],[10,4],[10,0],[0,0]],[[4,1],[5,1],[5,2],[4,1]]]}""");
+        SheetDevice here = Open().State.Device, file = Open("file = \"sheet.geojson\", unit = \"um\"").State.Device;
+        Assert.Equal("outline", here.Shape);
+        Assert.Equal(file.Drawn.SelectMany(l => l).Select(c => c.Start), here.Drawn.SelectMany(l => l).Select(c => c.Start));
+        Assert.Equal([4, 3], here.Drawn.Select(l => l.Count));
+    }
+
+    [Theory]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"1 um\", \"0 um\"]]", "'corners': at least three corners are needed")]
+    [InlineData("corners = \"all\"", "'corners' is text; write a list of corners")]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"9 um\", \"9 um\"], [\"9 um\", \"0 um\"], [\"0 um\", \"9 um\"]]", "the outline: ")]
+    [InlineData(Corners + ", file = \"sheet.geojson\"", "an outline stands in a file or as 'corners', and both are given")]
+    [InlineData("file = \"sheet.geojson\", unit = \"um\", holes = []", "'holes' goes with 'corners'")]
+    [InlineData(Corners + ", unit = \"V\"", "'unit': \"V\" is no unit of length")]
+    [InlineData("corners = [[\"0 um\", \"0 um\"], [\"1 um\", \"0 V\"], [\"1 um\", \"1 um\"]]", "'corners', y: ")]
+    public void Wrong_corners_are_faults_at_their_place(string outline, string message)
+    {
+        folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[10,0],[10,4],[0,4],[0,0]]]}""");
+        IReadOnlyList<Fault> faults = DeviceFile.Read(folder.Write("device.toml", Text.Replace("CORNERS", outline, StringComparison.Ordinal))).Faults;
+        Assert.Contains(faults, f => f.Line == 2 && f.Message.StartsWith(message, StringComparison.Ordinal));
+    }
+
+    [Fact]
+    public void A_moved_corner_takes_the_contacts_of_its_edges_along_and_a_file_stays_as_it_is()
+    {
+        string geo = folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[0,4],[10,4],[10,0],[0,0]],[[4,1],[5,1],[5,2],[4,1]]]}""");
+        foreach (string outline in new[] { Corners, "file = \"sheet.geojson\", unit = \"um\"" })
+        {
+            EditSession session = Open(outline);
+            string before = session.State.Text.Text, file = File.ReadAllText(geo);
+            int corner = Find(session.State.Device, 0, 4);
+            Assert.Empty(session.Apply((t, d) => LayoutOutline.Move(t, d, 0, corner, new(-2e-6, 6e-6)), null));
+            Assert.True(Find(session.State.Device, -2, 6) >= 0);
+
+            // By hand: a quarter and three quarters of the way from (0, 0) to (-2, 6); top: 2/10 and 3/10 of the way from (-2, 6) to (10, 4).
+            Contact left = Named(session, "left"), top = Named(session, "top");
+            Assert.Equal(0, Point2.Distance(left.Middle, new(-1e-6, 3e-6)), 2e-9);
+            Assert.Equal(Math.Sqrt(10) * 1e-6, left.Width, 3e-9);
+            Assert.Equal(0, Point2.Distance(top.Middle, new((-2 + (0.25 * 12)) * 1e-6, (6 - (0.25 * 2)) * 1e-6)), 2e-9);
+            Assert.Contains("# kept", session.State.Text.Text, StringComparison.Ordinal);
+            Assert.Equal(file, File.ReadAllText(geo));
+            Assert.True(session.Undo());
+            Assert.Equal(before, session.State.Text.Text);
+        }
+    }
+
+    [Fact]
+    public void Corners_come_and_go_and_the_contacts_stay_on_the_edge()
+    {
+        EditSession session = Open();
+        string before = session.State.Text.Text;
+
+        // Every edge, in a text whose order runs against the sheet's.
+        for (int k = 0; k < 4; k++)
+        {
+            Curve edge = session.State.Device.Drawn[0][k];
+            Point2 middle = edge.At(0.5), at = middle + new Point2(0, 0.3e-6);
+            Assert.Empty(session.Apply((t, d) => LayoutOutline.Add(t, d, 0, k, at), null));
+            Assert.Equal(5, session.State.Device.Drawn[0].Count);
+            int added = Find(session.State.Device, at.X * 1e6, at.Y * 1e6), n = 5;
+            Assert.Equal(edge.Start, session.State.Device.Drawn[0][(added + n - 1) % n].Start);
+            Assert.Equal(edge.End, session.State.Device.Drawn[0][(added + 1) % n].Start);
+            Assert.Empty(session.Apply((t, d) => LayoutOutline.Drop(t, d, 0, added), null));
+            Assert.Equal(0, Point2.Distance(Named(session, "left").Middle, new(0, 2e-6)), 0.1e-6);
+            Assert.True(session.Undo());
+            Assert.True(session.Undo());
+            Assert.Equal(before, session.State.Text.Text);
+        }
+
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Drop(t, d, 1, 0), null));
+        Assert.Single(session.State.Device.Drawn);
+        int last = Find(session.State.Device, 0, 0);
+        Assert.Empty(session.Apply((t, d) => LayoutParts.Drop(t, d, "top"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Move(t, d, 0, last, new(-1e-6, 0)), null));
+        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Move(t, d, 0, 9, default), null));
+        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Move(t, d, 3, 0, default), null));
+    }
+
+    [Fact]
+    public void A_trace_is_geojson_as_its_standard_wants_it_and_becomes_the_sheet()
+    {
+        EditSession session = Open();
+        Point2[] rim = [new(0, 0), new(0, 5e-6), new(12e-6, 5e-6), new(12e-6, 0)], hole = [new(5e-6, 1e-6), new(6e-6, 1e-6), new(6e-6, 2e-6)];
+        TraceShape Pad(string name, double x) => new(TraceKind.Pad, name, [new(x * 1e-6, 1e-6), new(x * 1e-6, 3e-6), new((x + 1) * 1e-6, 3e-6), new((x + 1) * 1e-6, 1e-6)]);
+        TraceShape[] shapes = [Pad("left", 1), new(TraceKind.Hole, "", hole), new(TraceKind.Outline, "", rim), Pad("right", 10), Pad("new \"one\"", 3)];
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "t.geojson", shapes, overwrite: false));
+        Assert.Equal(SaveOutcome.Exists, LayoutTrace.Save(session.State, "t.geojson", shapes, overwrite: false));
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "t.geojson", shapes, overwrite: true));
+
+        // RFC 7946, sections 3.1.6 and 3.3: rings are closed, the outer one counter-clockwise, holes clockwise; features in a collection.
+        using JsonDocument json = JsonDocument.Parse(File.ReadAllText(folder["t.geojson"]));
+        Assert.Equal("FeatureCollection", json.RootElement.GetProperty("type").GetString());
+        JsonElement first = json.RootElement.GetProperty("features")[0];
+        Assert.Equal("Feature", first.GetProperty("type").GetString());
+        JsonElement rings = first.GetProperty("geometry").GetProperty("coordinates");
+        Assert.Equal(2, rings.GetArrayLength());
+        for (int k = 0; k < 2; k++)
+        {
+            double[][] ring = [.. rings[k].EnumerateArray().Select(p => p.EnumerateArray().Select(v => v.GetDouble()).ToArray())];
+            Assert.Equal(ring[0], ring[^1]);
+            double area = ring.Zip(ring.Skip(1), (p, q) => ((p[0] * q[1]) - (p[1] * q[0])) / 2).Sum();
+            Assert.Equal(k == 0 ? 60 : -0.5, area, 1e-9);
+        }
+
+        Assert.Empty(session.Apply((t, d) => LayoutParts.Drop(t, d, "top"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
+        SheetDevice device = session.State.Device;
+        Assert.Equal(59.5e-12, new Outline(device.Drawn).Area, 1e-16);
+        Assert.Equal(["left", "right", "new \"one\""], device.Contacts.Select(c => c.Name));
+        Assert.All(device.Contacts, c => Assert.Equal(ContactKind.Pad, c.Kind));
+        Assert.Equal(0, Point2.Distance(Named(session, "left").Middle, new(1.5e-6, 2e-6)), 1e-12);
+
+        // With its pads alone, on a device whose contacts would not fit.
+        EditSession disc = EditSession.Open(folder.Write("disc.toml", File.ReadAllText(Path.Combine(Repository.Root, "meshes", "disc-12.toml")))).Session!;
+        string before = disc.State.Text.Text;
+        Assert.NotEmpty(disc.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
+        Assert.Empty(disc.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", true), null));
+        Assert.Equal(["left", "right", "new \"one\""], disc.State.Device.Contacts.Select(c => c.Name));
+        Assert.Equal((0, 1), (disc.State.Device.Wirings.Single().Source, disc.State.Device.Wirings.Single().Drain));
+        Assert.True(disc.Undo());
+        Assert.Equal(before, disc.State.Text.Text);
+    }
+
+    [Fact]
+    public void A_trace_that_makes_no_sheet_is_refused_with_the_reason()
+    {
+        TraceShape Shape(TraceKind kind, string name, params double[] xy) => new(kind, name, [.. xy.Chunk(2).Select(p => new Point2(p[0] * 1e-6, p[1] * 1e-6))]);
+        TraceShape good = Shape(TraceKind.Outline, "", 0, 0, 4, 0, 4, 4);
+        (TraceShape[] Shapes, string Message)[] cases =
+        [
+            ([], "nothing was traced yet"),
+            ([good, good], "a sheet has one outline"),
+            ([Shape(TraceKind.Hole, "", 0, 0, 1, 0, 1, 1)], "a hole needs an outline"),
+            ([Shape(TraceKind.Outline, "", 0, 0, 4, 4, 4, 0, 0, 4)], "the outline: "),
+            ([good, Shape(TraceKind.Hole, "", 3, 3, 9, 3, 9, 9)], "the outline: "),
+            ([good, Shape(TraceKind.Pad, "", 0, 0, 1, 0, 1, 1)], "every pad needs a name"),
+            ([good, Shape(TraceKind.Pad, "outline", 0, 0, 1, 0, 1, 1)], "a pad cannot be named 'outline'"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0, 1, 1), Shape(TraceKind.Pad, "a", 0, 0, 1, 0, 1, 1)], "two pads are named 'a'"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0)], "a traced polygon needs at least three corners"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0, double.NaN, 2)], "a traced polygon needs at least three corners"),
+        ];
+        Assert.All(cases, c => Assert.StartsWith(c.Message, Assert.Throws<LayoutEditException>(() => LayoutTrace.GeoJson(c.Shapes)).Message, StringComparison.Ordinal));
+    }
+
+    [Theory]
+    [InlineData("../t.geojson")]
+    [InlineData("t.toml")]
+    [InlineData(".t.geojson")]
+    [InlineData("a/t.geojson")]
+    [InlineData("a\\t.geojson")]
+    [InlineData("t\n.geojson")]
+    [InlineData("")]
+    public void A_trace_is_saved_and_used_under_a_plain_name_only(string name)
+    {
+        EditSession session = Open();
+        TraceShape[] shapes = [new(TraceKind.Outline, "", [new(0, 0), new(1e-6, 0), new(0, 1e-6)])];
+        Assert.Throws<LayoutEditException>(() => LayoutTrace.Save(session.State, name, shapes, overwrite: true));
+        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, name, false), null));
+        Assert.Single(Directory.GetFiles(folder[""]));
+    }
+
+    [Fact]
+    public void Pairs_come_and_go()
+    {
+        EditSession session = Open();
+        string before = session.State.Text.Text;
+        Assert.Empty(session.Apply((t, d) => LayoutParts.AddPair(t, d, "wiring[0]", "along"), null));
+        Assert.NotNull(session.State.Device.Wirings[0].Along);
+        Assert.Empty(session.Apply((t, d) => LayoutParts.AddPair(t, d, "wiring[0]", "pairs"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutParts.AddPair(t, d, "wiring[0]", "pairs"), null));
+        Assert.Equal(["along", "pair1", "pair2"], session.State.Device.Wirings[0].Pairs.Select(p => p.Name));
+        Assert.Empty(session.Apply((t, _) => t.Without("wiring[0].pairs.pair1"), null));
+        Assert.Equal(["along", "pair2"], session.State.Device.Wirings[0].Pairs.Select(p => p.Name));
+        Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutParts.AddPair(t, d, "wiring[7]", "along"), null));
+        for (int k = 0; k < 4; k++)
+        {
+            Assert.True(session.Undo());
+        }
+
+        Assert.Equal(before, session.State.Text.Text);
+    }
+}

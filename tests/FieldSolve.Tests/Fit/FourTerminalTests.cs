@@ -60,22 +60,6 @@ public class FourTerminalTests
         Assert.All(result.Next, n => Assert.NotEqual(n.Plus, n.Minus));
     }
 
-    // The same with contacts so small beside the disc that the triangles of a coarse mesh, which have no symmetry, seemed to tell a from b; and with all that a sheet of
-    // unknown anisotropy leaves free. R = Rs ln2/pi for points.
-    [Fact]
-    public void The_mesh_does_not_tell_what_the_readings_cannot()
-    {
-        DeviceText text = DeviceText.Disc(0.5e-3, DeviceText.Ohmic(1e-3, 1e-3)).Contacts(4, 1.15, 0.5e-3).Wiring("one", "c1", "c2", "c4 c3").Drive(1e-5);
-        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\nhall = true\naxis = true");
-        MeasuredVoltages data = FitDevices.Resistances(device, 1e-5, 1e-6, ("c1 c2 c4 c3", 220.6356), ("c2 c3 c1 c4", 220.6356), ("c1 c3 c2 c4", 5));
-        FitResult result = FitDevices.Fit(device, data);
-        string directions = string.Join("; ", result.Directions.Select(d => $"{d.SingularValue} {string.Join(' ', d.Direction)} {d.Words}"));
-        Assert.True(result.Of("a").Value is null && result.Of("b").Value is null && result.Of("axis").Value is null, directions);
-        Assert.True(result.Of("hall").Value is not null, directions);
-        Assert.True(result.Directions.Any(d => d.Words.Contains("sqrt(a b)", StringComparison.Ordinal)), directions);
-        Assert.Equal(1e-3, Math.Sqrt(result.Of("a").Ended * result.Of("b").Ended), 1e-6);
-    }
-
     [Fact]
     public void Names_a_number_that_no_reading_depends_on()
     {

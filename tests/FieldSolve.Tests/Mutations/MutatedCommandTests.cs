@@ -16,6 +16,8 @@ namespace FieldSolve.Tests.MutationTests;
 /// </summary>
 public sealed partial class MutatedCommandTests(ITestOutputHelper log) : IDisposable
 {
+    // From here on some input of every command survives.
+    private const int EnoughForAll = 4000;
     private const int MostFailures = 40;
     private static readonly TimeSpan Limit = TimeSpan.FromSeconds(5), Hang = TimeSpan.FromMinutes(2);
 
@@ -81,7 +83,8 @@ public sealed partial class MutatedCommandTests(ITestOutputHelper log) : IDispos
         }
 
         Assert.True(failures.Count == 0, string.Join("\n=====\n", failures));
-        foreach (string command in seeds.Select(s => s.Command).Distinct())
+        Assert.Contains(counts.Keys, c => c.EndsWith(" 0", StringComparison.Ordinal)); // else the mutations are too wild to say anything
+        foreach (string command in MutationSettings.Commands < EnoughForAll ? [] : seeds.Select(s => s.Command).Distinct())
         {
             Assert.Contains(counts.Keys, c => c == command + " 0" || c == command + " 3");
         }

@@ -144,7 +144,20 @@ internal sealed partial class Mutator(Random random)
         return string.Join('\n', lines);
     }
 
+    // Half a surrogate pair or a key twice is no tree to edit.
     private string JsonEdit(string text)
+    {
+        try
+        {
+            return TreeEdit(text);
+        }
+        catch (Exception e) when (e is JsonException or InvalidOperationException or ArgumentException)
+        {
+            return NumberEdit(text);
+        }
+    }
+
+    private string TreeEdit(string text)
     {
         List<JsonNode> nodes = [];
         void Walk(JsonNode? n)
@@ -161,17 +174,8 @@ internal sealed partial class Mutator(Random random)
             }
         }
 
-        JsonNode? root;
-        try
-        {
-            root = JsonNode.Parse(text);
-            Walk(root);
-        }
-        catch (Exception e) when (e is JsonException or InvalidOperationException or ArgumentException) // half a surrogate pair, a key twice
-        {
-            return NumberEdit(text);
-        }
-
+        JsonNode? root = JsonNode.Parse(text);
+        Walk(root);
         JsonNode at = nodes[random.Next(nodes.Count)];
         switch (at)
         {

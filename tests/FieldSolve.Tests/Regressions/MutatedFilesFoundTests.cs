@@ -33,7 +33,7 @@ public class MutatedFilesFoundTests
     [InlineData("1e-100")]
     public void A_field_too_small_for_any_sheet_is_refused(string field)
     {
-        string law = $"kind = \"saturating\"\nfield_a = \"1 kV/m\"\nfield_b = \"{field} kV/m\"";
+        string law = $"kind = \"saturating\"\nfield_a = \"1 kV/m\"\nfield_b = \"{field} kV/m\"\nsharpness = 2";
         Fault fault = Assert.Single(DeviceFile.Parse(DeviceTexts.Disc.Replace("kind = \"ohmic\"", law, StringComparison.Ordinal), "d.toml", "").Faults);
         Assert.Equal((7, 11), (fault.Line, fault.Column));
         Assert.Contains("beyond any sheet", fault.Message, StringComparison.Ordinal);

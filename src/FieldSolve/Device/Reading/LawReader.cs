@@ -145,6 +145,12 @@ internal static class LawReader
             return null;
         }
 
+        if (!p.Allows(number.Value))
+        {
+            faults.Add(value.At, $"{what} ({p.Meaning}) must be {p.BoundText}");
+            return null;
+        }
+
         // A denormal field once let the search for the guard step without getting on.
         if (number != 0 && Math.Abs(number.Value) is < Smallest or > Largest)
         {
@@ -152,13 +158,7 @@ internal static class LawReader
             return null;
         }
 
-        if (p.Allows(number.Value))
-        {
-            return number;
-        }
-
-        faults.Add(value.At, $"{what} ({p.Meaning}) must be {p.BoundText}");
-        return null;
+        return number;
     }
 
     private static string Example(LawParameter p) =>

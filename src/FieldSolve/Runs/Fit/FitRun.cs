@@ -22,9 +22,6 @@ public static class FitRun
     // Rounds end when the new correction moves no number by more than this share of its standard error.
     private const double Settled = 0.05;
 
-    // Singular values below so many times the lack of the mesh, in standard deviations of the data, are measured anew on the finer one.
-    private const double ClearOfMesh = 3, LeastClear = 20;
-
     // The axis turns by no more than this in one step, rad: beyond, the tensor is far from linear in it.
     private const double LargestTurn = 0.35;
 
@@ -233,16 +230,6 @@ public static class FitRun
         double largestVoltage = problem.Data.Max(d => Math.Abs(d.Value));
         double[] scales = FitScales.Of(fittedDevice, q, end.P, largestVoltage);
         IReadOnlyList<FitDirection> directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
-
-        // What a mesh lacks changes with the numbers by about its own size for one natural scale: a direction that stands no clearer is looked at on the finer mesh, or the
-        // irregular triangles would seem to tell what no reading can.
-        double lack = Math.Sqrt(reference.Missing.Select((v, i) => v / task.Sigma[i]).Sum(v => v * v));
-        if (directions.Any(d => d.SingularValue < Math.Max(ClearOfMesh * lack, LeastClear)))
-        {
-            end = end with { Jacobian = new FitModel(problem, reference.Meshes.Fine, new double[problem.Data.Count]).Jacobian(end.P, cancel) };
-            directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
-        }
-
         double[,] covariance = Identifiability.Covariance(directions, scales);
         double widen = options.Robust ? RobustFactor(task, end) : 1;
         int m = q.Count;

@@ -18,7 +18,13 @@ if (args is ["page"])
     return;
 }
 
-// "layout" times the answers of the layout page; a second word is the number of moves for the look at memory.
+// "layout" times the answers of the layout page; a second word is the number of moves for the look at memory, or "browser" for the times in the browser alone.
+if (args is ["layout", "browser"])
+{
+    await FieldSolve.Benchmarks.LayoutPageTimes.Print(Console.Out);
+    return;
+}
+
 if (args is ["layout", ..])
 {
     int drags = args.Length > 1 ? int.Parse(args[1], System.Globalization.CultureInfo.InvariantCulture) : 0;

@@ -199,8 +199,9 @@ class LayoutApp {
 
   #badge() {
     const { answer, state } = this, newest = answer && state && answer.version === state.version;
+    const took = answer && (answer.milliseconds < 1000 ? `${number(answer.milliseconds, 3)} ms` : `${number(answer.milliseconds / 1000, 3)} s`);
     const kind = this.lost ? 'lost' : !answer ? 'none' : answer.failure ? 'failed' : !newest ? 'stale' : answer.accurate ? 'accurate' : 'coarse';
-    const text = { lost: 'connection lost, trying again …', none: 'solving …', failed: 'no answer', stale: 'solving …', accurate: `accurate · ${number(answer?.milliseconds, 3)} ms${answer?.complete ? '' : ', other wirings follow …'}`, coarse: `coarse · ${number(answer?.milliseconds, 3)} ms, refining …` }[kind];
+    const text = { lost: 'connection lost, trying again …', none: 'solving …', failed: 'no answer', stale: 'solving …', accurate: `accurate · ${took}${answer?.complete ? '' : ', other wirings follow …'}`, coarse: `coarse · ${took}, refining …` }[kind];
     if (this.badge.dataset.accuracy !== kind || kind !== 'stale') {
       this.badge.textContent = text;
       this.badge.dataset.accuracy = kind;

@@ -44,7 +44,9 @@ internal static class DeviceText
         if (device.Drive is { } d)
         {
             Line("drive", (d.Steps == 1 ? Engineering.Text(d.From, "A") : $"{Engineering.Text(d.From, "A")} to {Engineering.Text(d.To, "A")} in {d.Steps} values")
-                + (d.BothSigns ? ", both signs" : ", one sign"));
+                + (d.BothSigns ? ", both signs" : ", one sign; no odd and even parts without both_signs = true")
+                + (d.Frequencies.Count > 0 ? $"; lockin at {string.Join(", ", d.Frequencies.Select(f => Engineering.Text(f, "Hz")))}" : "")
+                + (d.Offset != 0 ? $", offset {Engineering.Text(d.Offset, "A")}" : ""));
         }
 
         foreach (var g in (device.Tolerance?.Causes ?? []).GroupBy(c => (c.Kind, c.Sigma, c.Shape)))

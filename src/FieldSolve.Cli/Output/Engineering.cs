@@ -66,8 +66,13 @@ internal static class Engineering
         int decimals = Math.Clamp(1 - (int)Math.Floor(Math.Log10(error)), -12, 12);
         string format = "F" + Math.Max(decimals, 0).ToString(CultureInfo.InvariantCulture);
         double grain = Math.Pow(10, Math.Max(-decimals, 0));
-        string Of(double x) => (Math.Round(x / grain) * grain).ToString(format, CultureInfo.InvariantCulture);
-        return decimals >= 0 ? (value.ToString(format, CultureInfo.InvariantCulture), error.ToString(format, CultureInfo.InvariantCulture)) : (Of(value), Of(error));
+        string Of(double x)
+        {
+            string text = (grain > 1 ? Math.Round(x / grain) * grain : x).ToString(format, CultureInfo.InvariantCulture);
+            return text.AsSpan().IndexOfAnyExcept("-0.") < 0 ? text.TrimStart('-') : text; // no minus before what rounds to zero
+        }
+
+        return (Of(value), Of(error));
     }
 
     // Fewer than three digits of 100 and more would show an exponent: 9E+02.

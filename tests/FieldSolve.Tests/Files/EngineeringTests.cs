@@ -10,7 +10,7 @@ public class EngineeringTests
     [InlineData(0.03099315, 3.7e-7, "30.99315 mV +- 0.00037 mV")]
     [InlineData(-1.139256e-4, 3.4e-9, "-113.9256 µV +- 0.0034 µV")]
     [InlineData(1.21244e-6, 9e-10, "1.21244 µV +- 0.00090 µV")]
-    [InlineData(2e-9, 4e-7, "2 nV +- 400 nV")]
+    [InlineData(2e-9, 4e-7, "0 nV +- 400 nV")]
     [InlineData(0, 4e-7, "0 nV +- 400 nV")]
     [InlineData(12.345e-3, 0, "12.345 mV")]
     [InlineData(-0.2e-9, 5e-6, "0.0 µV +- 5.0 µV")]

@@ -19,4 +19,7 @@ public sealed class MeshException : Exception
     public MeshException()
     {
     }
+
+    /// <summary>More triangles are needed than allowed.</summary>
+    internal bool IsTooMany { get; init; }
 }

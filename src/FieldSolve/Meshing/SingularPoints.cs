@@ -6,7 +6,11 @@ namespace FieldSolve.Meshing;
 /// <param name="Vertex">Index in the domain.</param>
 /// <param name="Exponent">The potential goes like r to this power: pi/(2 w) where a contact meets a free edge, pi/w at a corner of interior angle w.</param>
 /// <param name="Reach">Length of the shorter stretch that ends there, metres.</param>
-public readonly record struct SingularPoint(int Vertex, double Exponent, double Reach);
+public readonly record struct SingularPoint(int Vertex, double Exponent, double Reach)
+{
+    /// <summary>Contact and free edge meet here, at whatever angle.</summary>
+    internal bool IsContactEnd { get; init; }
+}
 
 /// <summary>
 /// Finds contact ends and re-entrant corners. The exponents are those of the Laplace equation in a wedge (P. Grisvard, Elliptic Problems in
@@ -24,7 +28,7 @@ public static class SingularPoints
             double exponent = mixed ? Math.PI / (2 * angle) : Math.PI / angle;
             if (exponent < below && (mixed || exponent < 0.97))
             {
-                list.Add(new(v, exponent, Math.Min(before.Curve.Length, after.Curve.Length)));
+                list.Add(new(v, exponent, Math.Min(before.Curve.Length, after.Curve.Length)) { IsContactEnd = mixed });
             }
         }
 

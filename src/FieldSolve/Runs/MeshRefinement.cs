@@ -13,7 +13,7 @@ internal sealed class MeshRefinement
     private const int MostLevels = 12;
 
     // Quadratic triangles have about two nodes each, and the split has four times as many triangles.
-    private const double UnknownsPerCoarseTriangle = 8.2;
+    internal const double UnknownsPerCoarseTriangle = 8.2;
 
     // A voltage beside which the along voltage is tiny (a source behind megaohms) is resolved to nine digits of itself, no further.
     private const double ResolvedShare = 1e-9;
@@ -84,7 +84,7 @@ internal sealed class MeshRefinement
         StageClock clock, CancellationToken cancel, IReadOnlyList<LabLaw>? laws = null, ISizeField? start = null,
         bool oneCurve = false, TriangleMesh? given = null)
     {
-        ISizeField size = start ?? MeshSizes.First(device);
+        ISizeField? size = start;
         var levels = new List<RefinementLevel>();
         MeshPair? best = null;
         IReadOnlyList<GoalMeasure> goals = [], before = [];
@@ -98,7 +98,7 @@ internal sealed class MeshRefinement
         int stalls = 0;
         for (int level = 0; ; level++)
         {
-            TriangleMesh? mesh = clock.Time("mesh", () => given ?? Mesh(device, size, best is null ? int.MaxValue : mostTriangles, cancel));
+            TriangleMesh? mesh = clock.Time("mesh", () => given ?? (size is null ? FirstMesh.Make(device, cancel) : Mesh(device, size, best is null ? int.MaxValue : mostTriangles, cancel)));
             if (mesh is null)
             {
                 return new(best!, goals, levels, false);
@@ -188,12 +188,12 @@ internal sealed class MeshRefinement
             try
             {
                 TriangleMesh mesh = Mesher.Generate(device.Domain, stretch == 1 ? size : new StretchedSize(size, stretch), null, cancel);
-                if (mesh.TriangleCount <= mostTriangles)
+                if (mesh.TriangleCount <= mostTriangles && (mostTriangles == int.MaxValue || UnknownsOfSplit(mesh) <= device.Mesh.MaxUnknowns))
                 {
                     return mesh;
                 }
 
-                stretch *= Math.Sqrt(1.1 * mesh.TriangleCount / mostTriangles);
+                stretch *= Math.Sqrt(1.1 * Math.Max(mesh.TriangleCount / (double)mostTriangles, UnknownsOfSplit(mesh) / device.Mesh.MaxUnknowns));
             }
             catch (MeshException) when (mostTriangles < int.MaxValue)
             {
@@ -204,6 +204,9 @@ internal sealed class MeshRefinement
 
         return null;
     }
+
+    // Nodes of the quadratic triangles of the split, by Euler's formula, but for holes and metal.
+    private static double UnknownsOfSplit(TriangleMesh mesh) => (4.0 * mesh.VertexCount) + (6.0 * mesh.TriangleCount);
 
     /// <summary>Errors of all readings on a pair of meshes, with what is wanted of each.</summary>
     /// <param name="device">For the wanted errors.</param>

@@ -21,7 +21,7 @@ public static class MeshRun
         ArgumentNullException.ThrowIfNull(device);
         if (device.Drive is not { } drive || device.Wirings.Count == 0)
         {
-            return (Mesher.Generate(device.Domain, MeshSizes.First(device), null, cancel), [], true);
+            return (FirstMesh.Make(device, cancel), [], true);
         }
 
         ReadingPlan[] plans = [.. device.Wirings.Select(w => new ReadingPlan(w))];

@@ -29,7 +29,9 @@ internal static class MeshSizes
     private const double LessEachLevel = 0.95;
 
     /// <summary>Sizes of the first mesh.</summary>
-    public static ISizeField First(SheetDevice device)
+    /// <param name="device">Sheet and contacts.</param>
+    /// <param name="corners">Small triangles at re-entrant corners too, not at contact ends alone.</param>
+    public static ISizeField First(SheetDevice device, bool corners = true)
     {
         Domain domain = device.Domain;
 
@@ -38,6 +40,7 @@ internal static class MeshSizes
         double stretch = Math.Clamp(Math.Pow(Math.Max(tensor.Aa / tensor.Bb, tensor.Bb / tensor.Aa), 0.25), 1, 2);
         double background = domain.Size / (FirstAcross * stretch);
         var points = SingularPoints.Of(domain)
+            .Where(p => corners || p.IsContactEnd)
             .Select(p => new SizePoint(
                 domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ContactEndFirst * p.Reach / stretch), FirstGrowth))
             .ToList();

@@ -62,6 +62,7 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
         ];
         int good = 0, count = MutationSettings.Count, from = MutationSettings.From;
         double slowest = 0;
+        double[] spent = new double[readings.Length];
         long most = 0;
         var failures = new List<string>();
         foreach (int k in Enumerable.Range(from, count))
@@ -89,10 +90,11 @@ public sealed class MutatedFileTests(ITestOutputHelper log) : IDisposable
             }
 
             slowest = Math.Max(slowest, clock.Elapsed.TotalSeconds);
+            spent[k % readings.Length] += clock.Elapsed.TotalSeconds;
             most = Math.Max(most, GC.GetAllocatedBytesForCurrentThread() - before);
         }
 
-        log.WriteLine(string.Create(CultureInfo.InvariantCulture, $"{count} inputs, {good} still good; slowest {slowest:F2} s; most allocated {most / 1e6:F1} MB"));
+        log.WriteLine(string.Create(CultureInfo.InvariantCulture, $"{count} inputs, {good} still good; slowest {slowest:F2} s; most allocated {most / 1e6:F1} MB; s per kind: {string.Join(' ', spent.Select(t => $"{t:F1}"))}"));
         Assert.True(failures.Count == 0, string.Join("\n=====\n", failures.Take(MostFailures)));
         Assert.InRange(good, count / 50, count - (count / 50)); // else the mutations are too wild, or too tame, to say anything
         Assert.InRange(most, 0, 500_000_000);

@@ -250,11 +250,12 @@ public static class FitRun
         {
             bool atBound = end.P[j] <= task.Least[j] || end.P[j] >= task.Most[j];
             bool asked = q[j].Interval || (options.AllIntervals && q[j].PriorSigma is null);
-            parameters[j] = new(
-                q[j], determined[j] ? end.P[j] : null, determined[j] ? Math.Sqrt(covariance[j, j]) : null,
-                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, widen, j, cancel) : null, atBound)
+            ((double? Low, double? High) Interval, IReadOnlyList<LikelihoodPoint> Points)? profile =
+                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, widen, j, cancel) : null;
+            parameters[j] = new(q[j], determined[j] ? end.P[j] : null, determined[j] ? Math.Sqrt(covariance[j, j]) : null, profile?.Interval, atBound)
             {
                 Ended = end.P[j],
+                Profile = profile?.Points ?? [],
                 NumericalError = determined[j] ? numerical[j] : 0,
             };
         }

@@ -1,0 +1,45 @@
+using FieldSolve.Device;
+using FieldSolve.Geometry;
+using FieldSolve.Meshing;
+
+namespace FieldSolve.Runs;
+
+/// <summary>The mesh before anything is known of the solution, within the limit of unknowns as far as the outline allows.</summary>
+internal static class FirstMesh
+{
+    // A mesh of this size costs little and shows where the next one needs its triangles, however low the limit is.
+    private const int AlwaysAllowed = 12_000;
+
+    // An outline of very many corners has no mesh within the limit; up to here it is answered all the same (2.5 million unknowns).
+    private const int MostForTheOutline = 300_000;
+
+    /// <summary>Makes it.</summary>
+    /// <param name="device">Sheet, contacts and limit.</param>
+    /// <param name="cancel">Checked on the way.</param>
+    /// <exception cref="MeshException">The device cannot be meshed, or its outline alone needs far more than the limit.</exception>
+    public static TriangleMesh Make(SheetDevice device, CancellationToken cancel)
+    {
+        int most = Math.Max((int)(device.Mesh.MaxUnknowns / MeshRefinement.UnknownsPerCoarseTriangle), AlwaysAllowed), last = Math.Max(most, MostForTheOutline);
+        try
+        {
+            return Mesher.Generate(device.Domain, MeshSizes.First(device), new MeshOptions { MaxTriangles = most }, cancel);
+        }
+        catch (MeshException e) when (e.IsTooMany)
+        {
+            // Thousands of corners, each with its own fan of small triangles: the estimate says which of them matter.
+        }
+
+        try
+        {
+            return Mesher.Generate(device.Domain, MeshSizes.First(device, corners: false), new MeshOptions { MaxTriangles = last }, cancel);
+        }
+        catch (MeshException e) when (e.IsTooMany)
+        {
+            int corners = device.Domain.Edges.Count(edge => edge.IsRim);
+            throw new MeshException(
+                FormattableString.Invariant(
+                    $"The rim has {corners} edges, down to {device.Domain.Edges.Where(edge => edge.IsRim).Min(edge => edge.Curve.Length):G3} m long; even the coarsest mesh along them has more than {(int)(last * MeshRefinement.UnknownsPerCoarseTriangle / 1e4) * 1e4:F0} unknowns. Leave out corners that do not matter, or raise [mesh] max_unknowns."),
+                e);
+        }
+    }
+}

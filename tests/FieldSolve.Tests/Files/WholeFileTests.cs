@@ -44,7 +44,8 @@ public sealed class WholeFileTests : IDisposable
     public void What_a_killed_writer_left_is_removed_and_nothing_else()
     {
         string path = Path.Combine(folder, "x.toml");
-        string[] stay = [path, .. new[] { ".x.toml.7-2.part", ".x.toml.part", ".y.toml.7-1.part", ".x.toml.7-1.part.txt", ".x.toml.b-1.part" }.Select(n => Path.Combine(folder, n))];
+        string[] others = [".x.toml.7-2.part", ".x.toml.part", ".y.toml.7-1.part", ".x.toml.7-1.part.txt", ".x.toml.b-1.part"];
+        string[] stay = [path, .. others.Select(n => Path.Combine(folder, n))];
         string left = Path.Combine(folder, ".x.toml.7-1.part");
         foreach (string file in stay.Append(left))
         {

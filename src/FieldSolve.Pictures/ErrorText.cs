@@ -18,7 +18,9 @@ internal static class ErrorText
             return "–";
         }
 
-        SiScale scale = unit.StartsWith("1/", StringComparison.Ordinal) ? new(1, unit) : SiScale.For(v == 0 ? error ?? 0 : v, unit);
+        // A value far below its error is shown in the error's unit: 0 ± 17 nV, not 189 ± 16779005476 aV.
+        double size = error is { } e && double.IsFinite(e) ? Math.Max(Math.Abs(v), e) : v;
+        SiScale scale = unit.StartsWith("1/", StringComparison.Ordinal) ? new(1, unit) : SiScale.For(size, unit);
         return $"{In(scale, v, error)} {scale.Unit}";
     }
 

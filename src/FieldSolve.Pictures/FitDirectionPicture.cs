@@ -8,7 +8,10 @@ namespace FieldSolve.Pictures;
 /// <summary>Measured and fitted resistances at the largest current against the direction of the current.</summary>
 internal static class FitDirectionPicture
 {
-    private const int MostPanels = 6, FewestDirections = 3;
+    /// <summary>Fewer are no curve.</summary>
+    public const int FewestDirections = 3;
+
+    private const int MostPanels = 6;
 
     /// <summary>Draws the picture; null with fewer than three directions.</summary>
     public static Figure? Draw(FitResult result)
@@ -16,8 +19,7 @@ internal static class FitDirectionPicture
         var panels = new List<Plot>();
         foreach (var group in result.Data.Where(d => d.Datum.Current != 0).GroupBy(d => (d.Pair.Name, d.Datum.Harmonic)))
         {
-            (double Direction, FittedVoltage Datum)[] points = [.. group.GroupBy(d => d.Datum.Circuit)
-                .Select(g => g.MaxBy(d => d.Datum.Current)!).Select(d => (Direction(result.Device, d.Circuit.Wiring), d)).OrderBy(p => p.Item1)];
+            (double Direction, FittedVoltage Datum)[] points = Points(result, group);
             if (points.Select(p => Math.Round(p.Direction, 3)).Distinct().Count() >= FewestDirections && panels.Count < MostPanels)
             {
                 panels.Add(Panel(points, group.Key.Name, group.Key.Harmonic));
@@ -27,6 +29,10 @@ internal static class FitDirectionPicture
         KeyEntry[] key = [new("measured", Look.Line(0), 0, null, MarkerShape.FilledCircle), new("fitted model", Look.Line(1), 1.2f, [6, 4], MarkerShape.OpenSquare)];
         return panels.Count == 0 ? null : Figure.Rows(panels, panels.Count > 1 ? 2 : 1, 480, 310).WithKeyBelow(key, 84);
     }
+
+    /// <summary>The voltage at the largest current of each circuit, by the direction of its current in degrees.</summary>
+    public static (double Direction, FittedVoltage Datum)[] Points(FitResult result, IEnumerable<FittedVoltage> data) => [.. data.GroupBy(d => d.Datum.Circuit)
+        .Select(g => g.MaxBy(d => d.Datum.Current)!).Select(d => (Direction(result.Device, d.Circuit.Wiring), d)).OrderBy(p => p.Item1)];
 
     private static Plot Panel((double Direction, FittedVoltage Datum)[] points, string pair, int? harmonic)
     {

@@ -5,6 +5,8 @@ namespace FieldSolve.Pictures;
 /// <summary>All pictures of a fit.</summary>
 public static class FitPictures
 {
+    private const int MostWirings = 2;
+
     /// <summary>Draws the pictures and writes each as PNG and SVG; the same result always gives the same bytes.</summary>
     /// <param name="result">The fit.</param>
     /// <param name="folder">Where they go; made when missing.</param>
@@ -19,6 +21,7 @@ public static class FitPictures
         ArgumentNullException.ThrowIfNull(folder);
         EmbeddedFont.Use();
         var files = new List<PictureFile>();
+        Add("device", "The device with its contacts and crystal axis as in its file, and the first wirings of the data.", () => Device(result) is { Wirings.Count: > 0 } device ? DevicePicture.Draw(device) : null);
         Add("fit-curves", "Measured voltages with their standard deviations against current; the lines join the fitted model at the same currents.", () => FitCurvePicture.Draw(result));
         Add(
             "fit-directions", "Voltage over current at the largest current against the direction of the current, from source to drain; the open squares are the fitted model.",
@@ -41,6 +44,10 @@ public static class FitPictures
             }
         }
     }
+
+    // Wirings stand in the data: those of the file serve only where the data name them.
+    private static Device.SheetDevice Device(FitResult result) =>
+        result.Device with { Wirings = [.. result.Measured.Circuits.Select(c => c.Wiring).DistinctBy(w => w.Name).Take(MostWirings)] };
 
     /// <summary>"V_along", "2nd harmonic of V_across".</summary>
     internal static string Quantity(string pair, int? harmonic) => harmonic switch

@@ -22,20 +22,30 @@ public static class FitReport
         LiveData data = FitLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "fit", $"Fit of {device.Path} to {result.Measured.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Answer(page, FitWords.Answer(result));
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "Fitted numbers");
         Numbers(page, result);
-        page.Element("p", Words(result));
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "device"));
+        page.Element("h2", "Data, model and what is left");
         page.Raw("<div class=\"charts\">");
         data.Charts.ForEach(c => PageShell.Chart(page, c.Id));
         page.Raw("</div>");
         ReportPage.AddStill(page, pictures.Where(p => Replaced(p, data)));
-        ReportPage.AddPictures(page, pictures.Where(p => !Replaced(p, data)));
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind != "device" && !Replaced(p, data)));
+        if (!result.Parameters.Any(p => p.Profile.Count > 0))
+        {
+            page.Element("p", "Profile likelihoods are shown where a number of [fit] asks for its interval, or for all of them with --intervals.");
+        }
+
         page.Element("h2", "What the data determine");
         Directions(page, result);
         Next(page, result);
         Formulas(page, result);
+        page.Element("h2", "Accuracy").Element("p", Accuracy(result));
+        page.Element("h2", "Settings");
+        Settings(page, result);
         PageShell.End(page, data.Charts.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}; of the data: {result.Measured.Sha256}", path);
     }
 
@@ -53,7 +63,7 @@ public static class FitReport
             {
                 $"{p.Parameter.Label}: {p.Parameter.Kind.Meaning}",
                 p.Value is { } v ? Fitted(v / u, p.StandardError!.Value / u) : "not determined",
-                Unit(p.Parameter.Unit),
+                FitWords.Unit(p.Parameter.Unit),
                 p.Interval is { } i ? $"{end(i.Low)} to {end(i.High)}" : "–",
                 SiScale.Number(p.Parameter.Start / u, 6),
                 p.Parameter.PriorSigma is { } s ? $"{SiScale.Number(p.Parameter.PriorMean / u, 4)} ± {SiScale.Number(s / u, 3)}" : "–",
@@ -74,15 +84,25 @@ public static class FitReport
         return $"({ErrorText.In(new(Math.Pow(10, -exponent), ""), value, error)})·10{SiScale.Raised(exponent)}";
     }
 
-    private static string Words(FitResult result)
+    private static string Accuracy(FitResult result)
     {
         FitQuality q = result.Quality;
-        string chance = q.Probability is { } p ? string.Create(CultureInfo.InvariantCulture, $" (so much or more by chance: {p:0.###})") : "";
-        string runs = q.RunsZ is { } z ? string.Create(CultureInfo.InvariantCulture, $" Runs of signs along the currents: {z:0.0} standard deviations from chance.") : "";
+        string runs = q.RunsZ is { } z ? string.Create(CultureInfo.InvariantCulture, $" Runs of equal signs along the currents: {z:0.0} standard deviations from chance.").Replace('-', '−') : "";
         return string.Create(
             CultureInfo.InvariantCulture,
-            $"{result.Data.Count} voltages. Chi squared {q.ChiSquared:G5} for {q.Freedom} degrees of freedom{chance}.{runs} The largest residual is {q.Largest:0.0} sigma, in line {q.LargestLine} of the data. The numerical error of the model is at most {100 * result.NumericalShare:G2} % of a datum's sigma, on {ReportWords.Grouped(result.Unknowns.Coarse)} unknowns corrected by {ReportWords.Grouped(result.Unknowns.Fine)}.{(result.Robust ? " Outliers count less (Student's t, four degrees of freedom)." : "")}");
+            $"The numerical error of the model is at most {100 * result.NumericalShare:G2} % of a datum's standard deviation ({100 * result.WantedShare:G2} % were allowed), on {ReportWords.Grouped(result.Unknowns.Coarse)} unknowns corrected by {ReportWords.Grouped(result.Unknowns.Fine)}. The largest of {result.Data.Count} residuals is {Math.Abs(q.Largest):0.0} standard deviations, in line {q.LargestLine} of the data; so large a one is found by chance with a probability of {q.LargestProbability:G2}.")
+            + runs + (result.Robust ? " Outliers count less (Student's t, four degrees of freedom)." : "");
     }
+
+    private static void Settings(Html page, FitResult result) => page.Table(
+        "", ["setting or figure", "value"],
+        [
+            ["device file", result.Device.Path], ["data", result.Measured.Path], ["sheet law", result.Device.Law.Kind],
+            ["voltages", ReportWords.Grouped(result.Data.Count)], ["free numbers", ReportWords.Grouped(result.Parameters.Count)],
+            ["loss", result.Robust ? "Student's t, four degrees of freedom" : "squares"], ["steps of the last fit", ReportWords.Grouped(result.Steps)],
+            ["starts", ReportWords.Grouped(result.Starts.Count)], ["states solved", ReportWords.Grouped(result.Solves.States)], ["adjoint states solved", ReportWords.Grouped(result.Solves.Adjoints)],
+        ],
+        null, 0);
 
     private static void Directions(Html page, FitResult result) => page.Table(
         "Singular values of the sensitivities over sigma, in natural scales of the numbers (a and b by their own size): one over the standard deviation of the combination beside.",
@@ -125,10 +145,8 @@ public static class FitReport
             ["formula", "number", "by the formula", "fit", "unit", "off, in standard errors of the fit"],
             [.. result.Formulas.Select(f => new[]
             {
-                f.Method, f.Key, SiScale.Number(f.Value, 5), f.Fitted is { } v ? SiScale.Number(v, 5) : "–", Unit(f.Unit), f.Off is { } off ? SiScale.Number(off, 3) : "–",
+                f.Method, f.Key, SiScale.Number(f.Value, 5), f.Fitted is { } v ? SiScale.Number(v, 5) : "–", FitWords.Unit(f.Unit), f.Off is { } off ? SiScale.Number(off, 3) : "–",
             })],
             null, 0, 1);
     }
-
-    private static string Unit(string unit) => unit == "1" ? "" : unit.Replace("^2", "²", StringComparison.Ordinal).Replace("^3", "³", StringComparison.Ordinal).Replace("ohm", "Ω", StringComparison.Ordinal);
 }

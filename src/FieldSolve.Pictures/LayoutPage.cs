@@ -18,7 +18,7 @@ public static class LayoutPage
     // In the order in which they use one another; the first ones are those of the report.
     private static readonly string[] Parts =
     [
-        "base.js", "plane.js", "colours.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "chart.js", "frames.js", "layout-image.js", "layout-trace.js", "layout-picture.js", "layout-marks.js",
+        "base.js", "plane.js", "colours.js", "packed.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "matrix.js", "chart.js", "frames.js", "layout-image.js", "layout-trace.js", "layout-picture.js", "layout-marks.js",
         "layout-stage.js", "layout-fields.js", "layout-readings.js", "layout.js",
     ];
 

@@ -71,7 +71,8 @@ internal sealed record LiveSeries(
 internal sealed record LiveView(string Label, string X, string XUnit, string Y, string YUnit, IReadOnlyList<LiveSeries> Series)
 {
     /// <summary>
-    /// "curve"; "bars": one bar per series and category, X of the series counts the categories; "histogram": bars between the edges X, one more than Y.
+    /// "curve"; "bars": one bar per series and category, X of the series counts the categories; "histogram": bars between the edges X, one more than Y;
+    /// "matrix": Y of the only series holds, row by row, a number from -1 to 1 for each two categories.
     /// </summary>
     public string Kind { get; init; } = "curve";
 
@@ -113,6 +114,9 @@ internal sealed class LiveData
     /// <summary>Charts.</summary>
     public List<LiveChart> Charts { get; } = [];
 
+    /// <summary>The device coloured by its contacts' shares; null for none.</summary>
+    public LiveShare? Share { get; init; }
+
     /// <summary>A measured map beside the computed one; null for none.</summary>
     public LiveComparison? Comparison { get; init; }
 
@@ -129,6 +133,7 @@ internal sealed class LiveData
         Array(w, "laws", Laws, Write);
         Array(w, "maps", Maps, Write);
         Array(w, "charts", Charts, Write);
+        Share?.Write(w);
         if (Comparison is not null)
         {
             w.WritePropertyName("comparison");
@@ -148,14 +153,22 @@ internal sealed class LiveData
 
     internal static void Write(Utf8JsonWriter w, LiveMesh mesh)
     {
-        bool wide = mesh.Corners > ushort.MaxValue;
         w.WriteNumber("triangles", mesh.Triangles);
         w.WriteNumber("count", mesh.Count);
-        w.WriteNumber("cornerBytes", wide ? 4 : 2);
+        w.WriteNumber("cornerCount", mesh.Corners);
         w.WriteBase64String("places", mesh.Places(bent: false));
-        w.WriteBase64String("corners", LiveMesh.Pack(mesh.CornerNumbers, wide));
-        w.WriteBase64String("bent", LiveMesh.Pack(mesh.Bent, wide: true));
+        w.WriteBase64String("corners", mesh.PackedCorners());
+        w.WriteBase64String("bent", LiveMesh.Pack(mesh.Bent));
         w.WriteBase64String("bentPlaces", mesh.Places(bent: true));
+    }
+
+    private static void Write(Utf8JsonWriter w, LiveContact c)
+    {
+        w.WriteString("name", c.Name);
+        w.WriteString("role", c.Role);
+        w.WriteString("kind", c.Kind);
+        Numbers(w, "points", c.Points);
+        Numbers(w, "middle", [c.Middle.X, c.Middle.Y]);
     }
 
     private static void Write(Utf8JsonWriter w, LiveLaw law)
@@ -181,6 +194,12 @@ internal sealed class LiveData
         w.WriteNumber("direction", map.Direction);
         w.WriteString("note", map.Note);
         WriteOutline(w, map.Rim, map.Contacts);
+
+        // A cycle passes most currents twice.
+        int[] same = [.. map.Frames.Select((f, at) => Enumerable.Range(0, at)
+            .FirstOrDefault(k => ReferenceEquals(map.Frames[k].Potential, f.Potential) && map.Frames[k].Turn == f.Turn, -1))];
+        int[] own = [.. Enumerable.Range(0, same.Length).Where(k => same[k] < 0)];
+        PackedFrame[] packed = FramePacker.Pack(Meshes[map.Mesh], [.. own.Select(k => map.Frames[k].Potential)]);
         int at = 0;
         Array(w, "frames", map.Frames, (w, f) =>
         {
@@ -197,20 +216,29 @@ internal sealed class LiveData
                 Words(w, "roles", f.Roles);
             }
 
-            // A cycle passes most currents twice.
-            int same = Enumerable.Range(0, at++).FirstOrDefault(k => ReferenceEquals(map.Frames[k].Potential, f.Potential) && map.Frames[k].Turn == f.Turn, -1);
-            if (same >= 0)
+            int number = at++;
+            if (same[number] >= 0)
             {
-                w.WriteNumber("same", same);
+                w.WriteNumber("same", same[number]);
                 return;
             }
 
-            (byte[] bytes, double low, double high) = Meshes[map.Mesh].Pack(f.Potential);
-            w.WriteNumber("low", low);
-            w.WriteNumber("high", high);
-            if (high > low)
+            PackedFrame frame = packed[System.Array.IndexOf(own, number)];
+            w.WriteNumber("low", frame.Low);
+            w.WriteNumber("high", frame.High);
+            if (frame.Bytes is { } bytes)
             {
-                w.WriteBase64String("phi", bytes);
+                w.WriteStartArray("from");
+                foreach (int k in frame.From)
+                {
+                    w.WriteNumberValue(own[k]);
+                }
+
+                w.WriteEndArray();
+                Numbers(w, "by", frame.By);
+                w.WriteNumber("plus", frame.Plus);
+                w.WriteBoolean("smooth", frame.Smooth);
+                w.WriteBase64String("rest", bytes);
                 w.Flush();
             }
         });
@@ -225,14 +253,7 @@ internal sealed class LiveData
         }
 
         w.WriteEndArray();
-        Array(w, "contacts", contacts, (w, c) =>
-        {
-            w.WriteString("name", c.Name);
-            w.WriteString("role", c.Role);
-            w.WriteString("kind", c.Kind);
-            Numbers(w, "points", c.Points);
-            Numbers(w, "middle", [c.Middle.X, c.Middle.Y]);
-        });
+        Array(w, "contacts", contacts, Write);
     }
 
     private static void Write(Utf8JsonWriter w, LiveChart chart)
@@ -303,7 +324,7 @@ internal sealed class LiveData
         });
     }
 
-    private static void Array<T>(Utf8JsonWriter w, string name, IEnumerable<T> items, Action<Utf8JsonWriter, T> write)
+    internal static void Array<T>(Utf8JsonWriter w, string name, IEnumerable<T> items, Action<Utf8JsonWriter, T> write)
     {
         w.WriteStartArray(name);
         foreach (T item in items)
@@ -316,7 +337,7 @@ internal sealed class LiveData
         w.WriteEndArray();
     }
 
-    private static void Words(Utf8JsonWriter w, string name, IEnumerable<string> words)
+    internal static void Words(Utf8JsonWriter w, string name, IEnumerable<string> words)
     {
         w.WriteStartArray(name);
         foreach (string word in words)

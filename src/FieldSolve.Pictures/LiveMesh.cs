@@ -9,6 +9,7 @@ namespace FieldSolve.Pictures;
 internal sealed class LiveMesh
 {
     private readonly int[] source;  // node of the run for each node of the page
+    private (int[] First, int[] Second)? before;
 
     /// <summary>Packs the triangles of a run.</summary>
     /// <param name="x">x of each node, metres.</param>
@@ -101,6 +102,76 @@ internal sealed class LiveMesh
         return bytes;
     }
 
+    /// <summary>Values of the run's nodes in the order of the page's.</summary>
+    public double[] InOrder(double[] values) => [.. source.Select(n => values[n])];
+
+    /// <summary>Corners as the page counts them up: 0 for the next new one, else how far back it lies.</summary>
+    public byte[] PackedCorners()
+    {
+        long[] back = new long[CornerNumbers.Length];
+        int next = 0;
+        for (int i = 0; i < back.Length; i++)
+        {
+            back[i] = next - CornerNumbers[i];
+            next += back[i] == 0 ? 1 : 0;
+        }
+
+        return BitPacker.Pack(back);
+    }
+
+    /// <summary>Whole numbers at the page's nodes less the mean, rounded down, of two that come before: the ends of its edge for a middle, the known corners of its first triangle for a corner.</summary>
+    public long[] AgainstNeighbours(long[] values)
+    {
+        (int[] first, int[] second) = before ??= Before();
+        long[] rest = new long[values.Length];
+        for (int i = 0; i < values.Length; i++)
+        {
+            rest[i] = values[i] - (first[i] < 0 ? 0 : (values[first[i]] + values[second[i]]) >> 1);
+        }
+
+        return rest;
+    }
+
+    private (int[] First, int[] Second) Before()
+    {
+        int[] first = new int[Count], second = new int[Count];
+        Array.Fill(first, -1);
+        Array.Fill(second, -1);
+        int next = 0, middle = Corners;
+        HashSet<(int, int)> seen = [];
+        for (int t = 0; t < Triangles; t++)
+        {
+            Span<int> corner = CornerNumbers.AsSpan(3 * t, 3);
+            for (int k = 0; k < 3; k++)
+            {
+                if (corner[k] == next)
+                {
+                    foreach (int other in corner)
+                    {
+                        if (other < next)
+                        {
+                            (first[next], second[next]) = (other, first[next] < 0 ? other : first[next]);
+                        }
+                    }
+
+                    next++;
+                }
+            }
+
+            for (int k = 0; k < 3; k++)
+            {
+                int a = corner[k], b = corner[(k + 1) % 3];
+                if (seen.Add((Math.Min(a, b), Math.Max(a, b))))
+                {
+                    (first[middle], second[middle]) = (a, b);
+                    middle++;
+                }
+            }
+        }
+
+        return (first, second);
+    }
+
     /// <summary>Values at the nodes as whole numbers of 32 bits that span their range: finer than a float of the same size.</summary>
     /// <param name="values">One per node of the run.</param>
     /// <returns>Little-endian bytes, and the range.</returns>
@@ -117,20 +188,13 @@ internal sealed class LiveMesh
         return (bytes, low, high);
     }
 
-    /// <summary>Whole numbers as little-endian bytes, two each where they fit, else four.</summary>
-    public static byte[] Pack(int[] numbers, bool wide)
+    /// <summary>Whole numbers as little-endian bytes, four each.</summary>
+    public static byte[] Pack(int[] numbers)
     {
-        byte[] bytes = new byte[(wide ? 4 : 2) * numbers.Length];
+        byte[] bytes = new byte[4 * numbers.Length];
         for (int i = 0; i < numbers.Length; i++)
         {
-            if (wide)
-            {
-                BinaryPrimitives.WriteInt32LittleEndian(bytes.AsSpan(4 * i), numbers[i]);
-            }
-            else
-            {
-                BinaryPrimitives.WriteUInt16LittleEndian(bytes.AsSpan(2 * i), (ushort)numbers[i]);
-            }
+            BinaryPrimitives.WriteInt32LittleEndian(bytes.AsSpan(4 * i), numbers[i]);
         }
 
         return bytes;

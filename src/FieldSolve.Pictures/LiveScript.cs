@@ -11,7 +11,7 @@ namespace FieldSolve.Pictures;
 internal static class LiveScript
 {
     // In the order in which they use one another.
-    private static readonly string[] Parts = ["base.js", "plane.js", "colours.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "chart.js", "sections.js", "frames.js", "overlay.js", "map.js", "compare.js", "page.js"];
+    private static readonly string[] Parts = ["base.js", "plane.js", "colours.js", "packed.js", "mesh.js", "law.js", "lines.js", "canvas.js", "bars.js", "matrix.js", "chart.js", "share.js", "sections.js", "frames.js", "overlay.js", "map.js", "compare.js", "page.js"];
 
     /// <summary>The script.</summary>
     public static string Script { get; } = "'use strict';\n(() => {\n" + string.Concat(Parts.Select(Read)) + "})();\n";

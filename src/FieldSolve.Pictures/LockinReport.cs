@@ -28,6 +28,7 @@ public static class LockinReport
         LiveData data = LockinLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "lock-in", $"AC drive of {device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Answer(page, LockinWords.Answer(result));
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
         page.Element("h2", "What was computed");

@@ -31,6 +31,23 @@ internal static class PageShell
     /// <param name="id">Name of the chart, of letters, digits and hyphens.</param>
     public static void Chart(Html page, string id) => page.Raw($"<section class=\"live\" data-chart=\"{id}\" hidden></section>");
 
+    /// <summary>A place that the script fills with the device coloured by its contacts' shares.</summary>
+    public static void Share(Html page) => page.Raw("<section class=\"live\" data-share hidden></section>");
+
+    /// <summary>Answers in words: a list of sentences that begin with a capital letter.</summary>
+    /// <param name="page">The page.</param>
+    /// <param name="sentences">One or two sentences each.</param>
+    public static void Answer(Html page, IEnumerable<string> sentences)
+    {
+        page.Raw("<section class=\"answer\">").Element("h2", "Answer").Raw("<ul>");
+        foreach (string sentence in sentences.Where(s => s.Length > 0))
+        {
+            page.Element("li", char.ToUpperInvariant(sentence[0]) + sentence[1..]);
+        }
+
+        page.Raw("</ul></section>");
+    }
+
     /// <summary>Adds the footer, the data and the script, and writes the file.</summary>
     /// <param name="page">The page with all its sections.</param>
     /// <param name="data">What the script shows; null leaves out data and script.</param>

@@ -17,7 +17,7 @@ internal static class ToleranceLive
     /// <summary>Collects the charts.</summary>
     public static LiveData Of(ToleranceResult result)
     {
-        LiveData data = new() { Title = result.Device.Title };
+        LiveData data = new() { Title = result.Device.Title, Share = LiveShare.Of(result) };
         for (int w = 0; w < result.Device.Wirings.Count; w++)
         {
             string name = result.Device.Wirings[w].Name;

@@ -35,6 +35,7 @@ public static class TolerancePictures
             }
         }
 
+        Add("device", null, "device", "The device with its contacts and crystal axis as in its file, as wired.", () => result.Device.Wirings.Count == 0 ? null : DevicePicture.Draw(result.Device));
         Add(
             "share", null, "contacts",
             "Each contact shaded by the share of the variance of the odd part of V_across that its own causes carry; what is missing to 100 % comes from the sheet, the law and common shifts.",

@@ -1,4 +1,5 @@
 using System.Globalization;
+using System.Text.RegularExpressions;
 using FieldSolve.Device;
 using FieldSolve.Files;
 using FieldSolve.Runs;
@@ -24,18 +25,20 @@ public static class ToleranceReport
         LiveData data = ToleranceLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "tolerance", $"Tolerance of {device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Answer(page, result.Answers.Select(Printed));
         page.Box("Cautions", "caution", result.Cautions);
         page.Box("Warnings", "", result.Warnings);
-        page.Element("h2", "Answers");
-        foreach (string answer in result.Answers)
-        {
-            page.Element("p", char.ToUpperInvariant(answer[0]) + answer[1..]);
-        }
-
         page.Element("h2", "What was computed");
         page.Element("p", $"{device.Tolerance!.Causes.Count} causes of error at {SiScale.Text(result.Current, "A")} and reversed. The budget multiplies the exact derivative of each reading with the standard deviation of each cause. The samples are {ReportWords.Grouped(result.Samples.Count)} devices with all causes at once, each solved in full with the law as it stands, on a mesh of {ReportWords.Grouped(result.Unknowns.Coarse)} unknowns that moves with the contacts; what a mesh of {ReportWords.Grouped(result.Unknowns.Fine)} unknowns adds to the design is added to each.");
         Causes(page, device);
-        ReportPage.AddPictures(page, pictures.Where(p => p.Wiring is null));
+        ReportPage.AddPictures(page, pictures.Where(p => p.Kind == "device"));
+        if (data.Share is not null)
+        {
+            page.Element("h2", "Contacts");
+            PageShell.Share(page);
+            ReportPage.AddStill(page, pictures.Where(p => p.Kind == "share"));
+        }
+
         for (int w = 0; w < device.Wirings.Count; w++)
         {
             Wiring wiring = device.Wirings[w];
@@ -49,8 +52,32 @@ public static class ToleranceReport
             Largest(page, result, wiring);
         }
 
-        PageShell.End(page, data.Charts.Count > 0 ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
+        page.Element("h2", "Accuracy").Element("p", Accuracy(result));
+        page.Element("h2", "Settings");
+        Settings(page, result);
+        PageShell.End(page, data.Charts.Count > 0 || data.Share is not null ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
+
+    // Answers are also said on a terminal, which may know neither the micro sign nor a true minus.
+    private static string Printed(string answer) => Regex.Replace(Regex.Replace(answer, @"(?<=\d )u(?=[A-Za-z])", "µ"), @"(?<=[\s(])-(?=\d)", "−");
+
+    private static string Accuracy(ToleranceResult result)
+    {
+        SampleStatistics[] sampled = [.. result.Statistics.Where(s => s.Count > 1 && s.Deviation.Value > 0)];
+        return "The error beside each value as designed is the numerical error of that voltage; that beside each first-order scatter is what a finer mesh would change of it."
+            + (sampled.Length == 0 ? "" : $" Over all readings it is at most {SiScale.Number(100 * sampled.Max(s => s.SpreadError / s.Deviation.Value), 2)} % of the sampled scatter. The intervals are for the number of samples.")
+            + " None of this says how well the sizes of the causes are known.";
+    }
+
+    private static void Settings(Html page, ToleranceResult result) => page.Table(
+        "", ["setting or figure", "value"],
+        [
+            ["current, with both signs", SiScale.Text(result.Current, "A")], ["samples", ReportWords.Grouped(result.Samples.Count)], ["solved in this run", ReportWords.Grouped(result.Solved)],
+            ["sheet law", result.Device.Law.Kind], ["causes", ReportWords.Grouped(result.Device.Tolerance!.Causes.Count)],
+            ["unknowns of the finest mesh", ReportWords.Grouped(result.Unknowns.Fine)], ["unknowns of the mesh of the samples", ReportWords.Grouped(result.Unknowns.Coarse)],
+            ["wanted error of a voltage, relative to the largest along voltage", SiScale.Number(result.Device.Mesh.Error)],
+        ],
+        null, 0);
 
     private static void Causes(Html page, SheetDevice device) => page.Table(
         "Causes, one standard deviation each.",
@@ -67,18 +94,30 @@ public static class ToleranceReport
     private static void Statistics(Html page, ToleranceResult result, Wiring wiring)
     {
         SampleStatistics[] own = [.. result.Statistics.Where(s => s.Quantity.Wiring == wiring.Name)];
-        string Unit(SampleStatistics s) => s.Quantity.IsRatio ? "" : "V";
-        string Text(SampleStatistics s, double v, int digits) => s.Quantity.IsRatio ? SiScale.Number(v, digits) : SiScale.Text(v, "V", digits);
-        string Of(SampleStatistics s, SampleEstimate e, int digits) => s.Count < 2 ? "–" : $"{Text(s, e.Value, digits)} ({Text(s, e.Low, digits)} to {Text(s, e.High, digits)})";
+        SiScale Scale(SampleStatistics s, double size) => s.Quantity.IsRatio ? new(1, "") : SiScale.For(size, "V");
+
+        // An estimate and below it its interval, in one unit.
+        string Of(SampleStatistics s, SampleEstimate e, int digits)
+        {
+            if (s.Count < 2)
+            {
+                return "–";
+            }
+
+            SiScale scale = Scale(s, Math.Max(Math.Abs(e.Low), Math.Abs(e.High)));
+            string Number(double v) => SiScale.Number(v * scale.Factor, digits);
+            return $"{Number(e.Value)} {scale.Unit}".TrimEnd() + $"\n{Number(e.Low)} to {Number(e.High)}";
+        }
+
         page.Table(
-            "As designed with its numerical error, then the scatter: first order with what a finer mesh would change of it, and the samples with 95 % intervals.",
+            "As designed with its numerical error; the scatter in first order with what a finer mesh would change of it; then the samples, each with its 95 % interval below.",
             ["reading", "as designed", "sigma, first order", "mean", "sigma", "5 %", "50 %", "95 %"],
             [.. own.Select(s => new[]
             {
                 s.Quantity.Label,
-                s.Quantity.IsRatio ? ErrorText.In(new(1, ""), s.Design, s.NumericalError) : ErrorText.Of(s.Design, s.NumericalError, Unit(s)),
-                $"{Text(s, s.FirstOrder, 4)} ± {Text(s, s.SpreadError, 1)}",
-                Of(s, s.Mean, 5), Of(s, s.Deviation, 3), Of(s, s.Percentiles[0], 4), Of(s, s.Percentiles[1], 4), Of(s, s.Percentiles[2], 4),
+                s.Quantity.IsRatio ? ErrorText.In(new(1, ""), s.Design, s.NumericalError) : ErrorText.Of(s.Design, s.NumericalError, "V"),
+                $"{ErrorText.In(Scale(s, s.FirstOrder), s.FirstOrder, s.SpreadError)} {Scale(s, s.FirstOrder).Unit}".TrimEnd(),
+                Of(s, s.Mean, 4), Of(s, s.Deviation, 3), Of(s, s.Percentiles[0], 3), Of(s, s.Percentiles[1], 3), Of(s, s.Percentiles[2], 3),
             })],
             k => own[k].Count > 1 && own[k].SpreadError > 0.1 * own[k].Deviation.Value);
     }

@@ -26,6 +26,7 @@ public static class TurnReport
         LiveData data = TurnLive.Of(result);
         Html page = new();
         PageShell.Begin(page, device.Title, "turn", $"Turn of {device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Answer(page, TurnWords.Answer(result));
         page.Box("Cautions", "caution", drive.Cautions);
         page.Box("Warnings", "", drive.Warnings);
         page.Element("h2", "What was computed");

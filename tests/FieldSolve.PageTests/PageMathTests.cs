@@ -82,6 +82,18 @@ public class PageMathTests(ReportFixture report)
         }
     }
 
+    [BrowserFact]
+    public async Task The_page_reads_packed_numbers_of_every_size()
+    {
+        Random random = new(5);
+        long[] numbers = [0, 1, -1, 1L << 42, -(1L << 42), .. Enumerable.Range(0, 700).Select(k => (long)((random.NextDouble() - 0.5) * Math.Pow(2, k % 43))), .. new long[300], 7];
+        byte[] packed = BitPacker.Pack(numbers);
+        double[] read = await (await report.Shared()).EvaluateAsync<double[]>(
+            "([text, count]) => { const out = []; new fieldsolve.PackedNumbers(text).read(count, v => out.push(v)); return out; }", new object[] { Convert.ToBase64String(packed), numbers.Length });
+        Assert.Equal(numbers, read.Select(v => (long)v));
+        Assert.True(BitPacker.Pack(new long[9600]).Length < 1300, "Zeros take about a bit each.");
+    }
+
     [Fact]
     public void The_laws_tested_are_all_there_are() =>
         Assert.Equal(["cubic", "ohmic", "quadratic", "saturating", "table"], LawCatalogue.Kinds.Select(k => k.Name).Order(StringComparer.Ordinal));

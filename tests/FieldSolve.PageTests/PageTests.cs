@@ -262,9 +262,9 @@ public class PageTests(ReportFixture report)
             data.Json());
         double[] b = boxes[0], h = boxes[1];
         Assert.Equal(12, b.Length);
-        Assert.Equal(2 * b[3], b[7], 0.1);   // heights as 1 : 2 : 4, the second below zero
-        Assert.Equal(4 * b[3], b[11], 0.1);
-        Assert.Equal(b[1] + b[3], b[5], 0.1);
+        Assert.Equal(2 * b[2], b[6], 0.1);   // lengths as 1 : 2 : 4, the second below zero
+        Assert.Equal(4 * b[2], b[10], 0.1);
+        Assert.Equal(b[0], b[4] + b[6], 0.1);
         Assert.Equal(8, h.Length);
         Assert.Equal(h[0] + h[2], h[4], 0.1);
         Assert.Equal(3 * h[7], h[3], 0.1);

@@ -40,7 +40,7 @@ public class TolerancePageTests(ReportFixture report)
         Assert.Equal(values.Length, bins.Sum(b => b[2]));
         double least = 1e-9 * (values.Max() - values.Min());
         Assert.All(bins, b => Assert.InRange(b[2], values.Count(v => v > b[0] + least && v < b[1] - least), values.Count(v => v >= b[0] - least && v <= b[1] + least)));
-        Assert.Equal(["5 %", "50 %", "designed", "95 %"], (await page.Locator("[data-chart=samples-0] .plot text").AllTextContentsAsync()).Where(t => t.EndsWith('%') || t == "designed"));
+        Assert.Equal(["5 %", "50 %", "95 %", "designed"], (await page.Locator("[data-chart=samples-0] .plot text").AllTextContentsAsync()).Where(t => t.EndsWith('%') || t == "designed").Order(StringComparer.Ordinal));
         await page.Locator("[data-chart=samples-0] select").SelectOptionAsync("1");
         await page.WaitForTimeoutAsync(200);
         Assert.Empty(open.Complaints);
@@ -48,5 +48,54 @@ public class TolerancePageTests(ReportFixture report)
         string again = report.Other("again-tolerance.html");
         report.WriteTolerance(again);
         Assert.Equal(await File.ReadAllBytesAsync(path), await File.ReadAllBytesAsync(again));
+    }
+
+    [BrowserFact]
+    public async Task The_device_reads_the_share_of_each_contact()
+    {
+        (ToleranceResult result, string path) = report.Tolerance;
+        await using OpenReport open = await report.Open(path: path);
+        IPage page = open.Page;
+        ILocator section = page.Locator("[data-share]"), plot = section.Locator(".plot"), spoken = section.Locator(".spoken");
+
+        // From the budget itself: the contact's own squared contributions over all.
+        double Share(string wiring, string quantity, int contact)
+        {
+            BudgetEntry[] entries = [.. result.Budget.Where(e => e.Quantity.Wiring == wiring && e.Quantity.Label == quantity && e.Order == 1)];
+            return entries.Where(e => e.Cause.Target.Contacts.Count == 1 && e.Cause.Target.Contacts[0] == contact).Sum(e => e.Contribution * e.Contribution) / entries.Sum(e => e.Contribution * e.Contribution);
+        }
+
+        void Same(double share, string text, string contact)
+        {
+            Assert.StartsWith(contact + ": ", text, StringComparison.Ordinal);
+            if (share is > 0 and < 1e-5)
+            {
+                Assert.StartsWith(contact + ": less than 0.001 %", text, StringComparison.Ordinal);
+                return;
+            }
+
+            double shown = double.Parse(text[(contact.Length + 2)..].Split(" %")[0], CultureInfo.InvariantCulture);
+            Assert.Equal(100 * share, shown, 0.6 * Math.Pow(10, Math.Floor(Math.Log10(Math.Max(100 * share, 1e-6))) - 2));
+        }
+
+        string wiring = result.Device.Wirings[0].Name, other = result.Device.Wirings[1].Name;
+        await plot.FocusAsync();
+        for (int contact = 0; contact < result.Device.Contacts.Count; contact++)
+        {
+            await page.Keyboard.PressAsync("ArrowRight");
+            Same(Share(wiring, "across odd", contact), await spoken.InnerTextAsync(), result.Device.Contacts[contact].Name);
+        }
+
+        // Another wiring and reading, by the pointer.
+        await section.Locator("select").Nth(0).SelectOptionAsync(other);
+        await section.Locator("select").Nth(1).SelectOptionAsync("along odd");
+        double[] place = await page.EvaluateAsync<double[]>("[fieldsolve.shares[0].places[4].u, fieldsolve.shares[0].places[4].v]");
+        await plot.HoverAsync(new() { Position = new() { X = (float)place[0], Y = (float)place[1] } });
+        Same(Share(other, "along odd", 4), await spoken.InnerTextAsync(), result.Device.Contacts[4].Name);
+        IDownload file = await page.RunAndWaitForDownloadAsync(() => section.GetByRole(AriaRole.Button, new() { Name = "CSV", Exact = true }).ClickAsync());
+        string[][] rows = [.. (await File.ReadAllTextAsync((await file.PathAsync())!)).Split("\r\n", StringSplitOptions.RemoveEmptyEntries).Skip(1).Select(l => l.Split(','))];
+        string[] row = rows.Single(r => r[0] == other && r[1] == "along odd" && r[2] == result.Device.Contacts[4].Name);
+        Assert.Equal(Share(other, "along odd", 4), double.Parse(row[3], CultureInfo.InvariantCulture), 1e-12);
+        Assert.Empty(open.Complaints);
     }
 }

@@ -139,15 +139,18 @@ function savePng(name, text, width, height) {
   image.src = 'data:image/svg+xml;charset=utf-8,' + encodeURIComponent(text);
 }
 
-/** The buttons that keep a picture and its data. */
+/** The buttons that keep a picture and its data; without rows the picture alone. */
 function saveButtons(what, svgText, csvRows) {
-  const bar = html('div', { class: 'saves', role: 'group', 'aria-label': `Save ${what.label()}` });
+  const bar = html('div', { class: 'saves screen', role: 'group', 'aria-label': `Save ${what.label()}` });
   const button = (text, run) => bar.append(html('button', { type: 'button', class: 'small', onclick: run, title: `Save as ${text}` }, text));
   button('SVG', () => save(what.name() + '.svg', svgText().text, 'image/svg+xml'));
   button('PNG', () => {
     const picture = svgText();
     savePng(what.name() + '.png', picture.text, picture.width, picture.height);
   });
+  if (!csvRows) {
+    return bar;
+  }
   button('CSV', () => save(what.name() + '.csv', csv(csvRows()), 'text/csv'));
   return bar;
 }

@@ -14,7 +14,7 @@ const MARKERS = [
 const PAPER = `text{font:12px "DejaVu Sans",Verdana,Geneva,sans-serif;fill:#222}.grid{stroke:#ddd}.frame{stroke:#666;fill:none}.ink{stroke:#222}.inkfill{fill:#222}
 .ring{fill:none;stroke:#222;stroke-width:1.3}.now{fill:none;stroke:#222;stroke-width:2}.title{font-weight:600}.tag{paint-order:stroke;stroke:#fff;stroke-width:3px}.rim{fill:none;stroke:#222;stroke-width:1.4}
 .metal{fill:none;stroke:#222;stroke-width:4}.pad{fill:none;stroke-width:2}.halo{fill:none;stroke:#fff}.source{stroke:#D55E00;fill:#D55E00}.drain{stroke:#0072B2;fill:#0072B2}
-.along{stroke:#00795A;fill:#00795A}.across{stroke:#A0517E;fill:#A0517E}.tag.source,.tag.drain,.tag.along,.tag.across{stroke:#fff}path.source,path.drain,path.along,path.across{fill:none}` + SERIES.map((c, k) => `.s${k}{stroke:${c}}.f${k}{fill:${c}}`).join('');
+.along{stroke:#00795A;fill:#00795A}.across{stroke:#A0517E;fill:#A0517E}.tag.source,.tag.drain,.tag.along,.tag.across{stroke:#fff}path.source,path.drain,path.along,path.across{fill:none}` + SERIES.map((c, k) => `.s${k}{stroke:${c}}.f${k}{fill:${c}}`).join('') + 'text.on{fill:#fff}.self{fill:#ddd}.sheet{fill:#f1f3f2;stroke:#222;stroke-width:1.4}.amount{fill:#222}';
 
 const strokeOf = look => ({ class: `s${look % SERIES.length}` });
 const fillOf = look => ({ class: `f${look % SERIES.length}` });
@@ -65,6 +65,7 @@ class Chart {
     const what = { label: () => spec.title, name: () => fileName(document.title, spec.id, this.view.label) };
     this.plot = svg('svg', {
       class: 'plot', tabindex: 0, role: 'application', 'aria-roledescription': 'chart', onkeydown: e => this.#key(e), onblur: () => this.#point(null), onfocus: () => this.#speak(),
+      onpointermove: e => this.#hover(e), onpointerdown: e => this.#hover(e), onpointerleave: e => { if (e.pointerType === 'mouse') { this.#point(null); } },
     });
     this.spoken = html('output', { class: 'spoken', 'aria-live': 'polite' });
     this.key = html('div', { class: 'key', role: 'group', 'aria-label': 'Curves shown' });
@@ -96,11 +97,16 @@ class Chart {
 
   #makeKey() {
     this.key.replaceChildren();
+    if (this.view.kind === 'matrix') {
+      this.key.append(...matrixKey());
+      return;
+    }
     for (const s of this.view.series) {
       const { name } = s;
       const sample = svg('svg', { width: 34, height: 14, 'aria-hidden': 'true' },
-        svg('path', { d: 'M1 7H33', fill: 'none', 'stroke-width': 2, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }),
-        s.x.length ? svg('path', { d: markerPath(s.look, 4), transform: 'translate(17 7)', ...fillOf(s.look) }) : '');
+        this.view.kind !== 'curve' && s.x.length ? svg('rect', { x: 8, y: 1, width: 18, height: 12, ...fillOf(s.look) })
+          : s.curve && !s.curve[0].length ? '' : svg('path', { d: 'M1 7H33', fill: 'none', 'stroke-width': 2, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }),
+        this.view.kind === 'curve' && s.x.length ? svg('path', { d: markerPath(s.look, 4), transform: 'translate(17 7)', ...fillOf(s.look) }) : '');
       const button = html('button', {
         type: 'button', 'aria-pressed': String(!this.hidden.has(name)), onclick: () => {
           const on = !this.hidden.delete(name);
@@ -125,10 +131,14 @@ class Chart {
   draw() {
     const width = Math.max(260, Math.round(this.plot.parentElement.clientWidth || 600)), height = Math.round(Math.max(230, Math.min(380, width * 0.56)));
     const { view, logX, logY, plot } = this, series = this.#shown(), points = [];
+    this.traces = [];
     if (view.kind !== 'curve') {
-      this.placed = [];
-      drawBars(plot, view, series, width, height);
-      plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${view.categories.length || series.length} ${view.categories.length ? 'bars' : 'distributions'}; the numbers can be saved as CSV.`);
+      this.placed = view.kind === 'matrix' ? drawMatrix(plot, view, width) : drawBars(plot, view, series, width, height);
+      const what = view.kind === 'matrix' ? `${view.categories.length} by ${view.categories.length} numbers` : view.kind === 'bars' ? `${view.categories.length} bars` : `${series.length} distributions`;
+      plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${what}. Left and right arrow go from one to the next${view.kind === 'matrix' ? ', up and down from row to row' : ''}.`);
+      this.marks = svg('g', { class: 'screen' });
+      plot.append(this.marks);
+      this.#mark();
       return;
     }
     for (const s of series) {
@@ -144,7 +154,7 @@ class Chart {
     plot.setAttribute('height', height);
     plot.setAttribute('viewBox', `0 0 ${width} ${height}`);
     plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${points.length} points. Left and right arrow go from point to point, up and down from curve to curve, Enter shows the map.`);
-    const left = 72, right = width - 14, top = view.marks.length ? 24 : 10, bottom = height - 46;
+    const left = 80, right = width - 14, top = view.marks.length ? 24 : 10, bottom = height - 46;
     const curves = series.filter(s => s.curve).map(s => [s, s.curve[0].map((x, k) => [logX ? Math.abs(x) : x, logY ? Math.abs(s.curve[1][k]) : s.curve[1][k]]).filter(([x, y]) => (!logX || x > 0) && (!logY || y > 0))]);
     const along = curves.flatMap(([, c]) => c);
     const xs = [...points.map(p => p.x), ...along.map(c => c[0])], ys = [...points.flatMap(p => logY ? [p.y] : [p.y - p.e, p.y + p.e]), ...logY ? [] : along.map(c => c[1])];
@@ -174,14 +184,15 @@ class Chart {
       svg('text', { transform: `translate(15 ${(top + bottom) / 2}) rotate(-90)`, 'text-anchor': 'middle' }, named(view.y, sy.unit, logY && view.series.some(s => s.y.some(v => v < 0)))));
     const clip = `${this.spec.id}-clip`;
     plot.append(
-      svg('defs', null, svg('clipPath', { id: clip }, svg('rect', { x: left - 8, y: top - 8, width: right - left + 16, height: bottom - top + 16 }))),
+      svg('defs', null, svg('clipPath', { id: clip }, svg('rect', { x: left - 8, y: top - 8, width: right - left + 16, height: bottom - top + 16 })),
+        svg('clipPath', { id: `${clip}-lines` }, svg('rect', { x: left, y: top, width: right - left, height: bottom - top }))),
       grid, svg('path', { class: 'frame', d: `M${left} ${top}V${bottom}H${right}V${top}Z` }), labels);
-    const body = svg('g', { 'clip-path': `url(#${clip})` }), hits = svg('g', { class: 'screen' });
+    const lines = svg('g', { 'clip-path': `url(#${clip}-lines)` }), body = svg('g', { 'clip-path': `url(#${clip})` }), hits = svg('g', { class: 'screen' });
     for (const m of view.marks) {
       const u = ax.at(m.x * sx.factor).toFixed(1);
       labels.append(svg('path', { class: 'frame', 'stroke-dasharray': '2 4', d: `M${u} ${top}V${bottom}` }), svg('text', { x: u, y: top - 6, 'text-anchor': 'middle' }, m.name));
     }
-    plot.append(body);
+    plot.append(lines, body);
     this.placed = [];
     for (const s of series) {
       const own = points.filter(p => p.s === s).map(p => ({ ...p, u: ax.at(p.x * sx.factor), v: ay.at(p.y * sy.factor) })).filter(p => Number.isFinite(p.u) && Number.isFinite(p.v));
@@ -189,7 +200,8 @@ class Chart {
       const curve = curves.find(([c]) => c === s)?.[1];
       if (curve) {
         const d = curve.map(([x, y], k) => `${k ? 'L' : 'M'}${ax.at(x * sx.factor).toFixed(1)} ${ay.at(y * sy.factor).toFixed(1)}`).join('');
-        body.append(svg('path', { d, fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
+        this.traces.push(...curve.length < 30 ? [] : curve.map(([x, y]) => ({ words: `${s.name}: ${view.x} ${quantity(x, view.xUnit, 5)}, ${view.y} ${quantity(y, view.yUnit, 4)}`, u: ax.at(x * sx.factor), v: ay.at(y * sy.factor) })));
+        lines.append(svg('path', { d, fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
       } else if (s.line) {
         const d = [], end = own.length ? 1.08 * Math.max(...own.map(p => p.x)) * sx.factor : x1, start = logX ? x0 : 0;
         for (let k = 0; k <= 80; k++) {
@@ -199,9 +211,9 @@ class Chart {
             d.push(`${d.length ? 'L' : 'M'}${ax.at(shown).toFixed(1)} ${Math.max(-1e4, Math.min(1e4, v)).toFixed(1)}`);
           }
         }
-        body.append(svg('path', { d: d.join(''), fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
+        lines.append(svg('path', { d: d.join(''), fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
       } else {
-        body.append(svg('path', { d: own.map((p, k) => `${k ? 'L' : 'M'}${p.u.toFixed(1)} ${p.v.toFixed(1)}`).join(''), fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
+        lines.append(svg('path', { d: own.map((p, k) => `${k ? 'L' : 'M'}${p.u.toFixed(1)} ${p.v.toFixed(1)}`).join(''), fill: 'none', 'stroke-width': 1.6, 'stroke-dasharray': dashOf(s.look), ...strokeOf(s.look) }));
       }
       for (const p of own) {
         const high = ay.at((p.y + p.e) * sy.factor), low = ay.at((logY ? Math.max(p.y - p.e, y0 / sy.factor) : p.y - p.e) * sy.factor);
@@ -227,6 +239,9 @@ class Chart {
   }
 
   #words(p) {
+    if (p.words) {
+      return p.words;
+    }
     const { view } = this, error = p.e > 0 ? ` ± ${quantity(p.e, view.yUnit, 2)}` : '';
     return `${p.s.name}: ${view.x} ${quantity(p.s.x[p.k], view.xUnit, 5)}, ${view.y} ${quantity(p.s.y[p.k], view.yUnit, 6)}${error}${p.s.doubtful[p.k] ? ', not ok' : ''}`;
   }
@@ -244,20 +259,42 @@ class Chart {
         this.marks.append(svg('circle', { class: 'now', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 7.5 }));
       }
     }
-    const p = this.cursor && this.placed[this.cursor[0]]?.[this.cursor[1]];
+    const p = this.cursor && this.placed[this.cursor[0]]?.[this.cursor[1]] || this.trace;
     if (p) {
-      this.marks.append(svg('circle', { class: 'cursor', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: 11 }));
+      this.marks?.append(svg('circle', { class: 'cursor', cx: p.u.toFixed(1), cy: p.v.toFixed(1), r: p === this.trace ? 4 : 11 }));
     }
   }
 
-  #point(cursor) {
-    this.cursor = cursor;
+  // What lies under the pointer or, on curves, next to it.
+  #hover(e) {
+    const box = this.plot.getBoundingClientRect(), u = (e.clientX - box.left) * this.plot.getAttribute('width') / (box.width || 1), v = (e.clientY - box.top) * this.plot.getAttribute('height') / (box.height || 1);
+    let best = null, least = 26;
+    this.placed.forEach((list, s) => list.forEach((p, k) => {
+      const inside = p.box && u >= p.box[0] && u < p.box[2] && v >= p.box[1] && v < p.box[3], away = inside ? Math.hypot(u - p.u, v - p.v) / 1e6 : p.box ? Infinity : Math.hypot(u - p.u, v - p.v);
+      if (away < least) {
+        [best, least] = [[s, k], away];
+      }
+    }));
+    let trace = null;
+    if (!best) {
+      for (const p of this.traces) {
+        const away = Math.hypot(u - p.u, v - p.v);
+        [trace, least] = away < least ? [p, away] : [trace, least];
+      }
+    }
+    // Said aloud only when keys move the point: a mouse would chatter.
+    this.spoken.setAttribute('aria-live', 'off');
+    this.#point(best, trace);
+  }
+
+  #point(cursor, trace = null) {
+    Object.assign(this, { cursor, trace });
     this.#mark();
     this.#speak();
   }
 
   #speak() {
-    const p = this.cursor && this.placed[this.cursor[0]]?.[this.cursor[1]];
+    const p = this.cursor && this.placed[this.cursor[0]]?.[this.cursor[1]] || this.trace;
     this.spoken.textContent = p ? this.#words(p) : '';
   }
 
@@ -274,6 +311,7 @@ class Chart {
     }[e.key];
     if (to) {
       e.preventDefault();
+      this.spoken.setAttribute('aria-live', 'polite');
       const [ns, nk] = to();
       this.#point([ns, Math.min(nk, this.placed[ns].length - 1)]);
     } else if ((e.key === 'Enter' || e.key === ' ') && this.cursor) {
@@ -288,7 +326,7 @@ class Chart {
   #csv() {
     const { view } = this;
     if (view.kind !== 'curve') {
-      return barRows(view, this.#shown());
+      return view.kind === 'matrix' ? matrixRows(view) : barRows(view, this.#shown());
     }
     return [['curve', `${view.x} (${view.xUnit})`, `${view.y} (${view.yUnit})`, `${view.errorName} (${view.yUnit})`, 'ok'],
       ...this.#shown().flatMap(s => s.x.map((x, k) => [s.name, x, s.y[k], s.error[k], s.doubtful[k] ? 'no' : 'yes']))];

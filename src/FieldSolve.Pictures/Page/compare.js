@@ -96,7 +96,7 @@ class Comparison {
     const raw = new Uint32Array(bytesOf(spec.values).buffer), step = (spec.high - spec.low) / 4294967295;
     this.nodes = Float64Array.from(raw, v => spec.low + v * step);
     this.floats = Float32Array.from(this.nodes);
-    this.extent = extentOf([spec]);
+    this.extent = extentOf([...spec.rim, ...spec.contacts.map(c => c.points)]);
     this.unit = scaleFor(this.mesh.box.diagonal / 2, 'm');
     this.#build();
     this.draw = perFrame(() => this.drawNow());

@@ -16,13 +16,20 @@ function anisotropy(d) {
 
 /** Values of one frame at the nodes, worked out when they are first asked for. */
 class FrameFields {
-  constructor(mesh, law, frame) {
-    Object.assign(this, { mesh, law, frame });
+  /** @param all the fields of all frames of the map, from which a packed one is foretold. */
+  constructor(mesh, law, frame, all) {
+    Object.assign(this, { mesh, law, frame, all });
   }
 
   get phi() {
     if (!this.potential) {
-      const { frame, mesh } = this, phi = new Float64Array(mesh.count).fill(frame.low);
+      const { frame, mesh } = this;
+      if (frame.rest) {
+        this.potential = unpackFrame(mesh, frame, frame.from.map(k => this.all[k].phi));
+        frame.rest = null;
+        return this.potential;
+      }
+      const phi = new Float64Array(mesh.count).fill(frame.low);
       if (frame.phi) {
         const raw = new Uint32Array(bytesOf(frame.phi).buffer), step = (frame.high - frame.low) / 4294967295;
         for (let i = 0; i < raw.length; i++) {

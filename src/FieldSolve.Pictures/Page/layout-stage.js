@@ -21,7 +21,7 @@ class LayoutStage extends Plane {
     this.dial = svg('g', { class: 'dial' });
     this.overlay = svg('svg', { class: 'overlay' }, svg('defs', null, svg('clipPath', { id: 'stage-clip' }, this.window)), this.inside, this.axes, this.dial);
     this.picture = new Micrograph(this);
-    this.trace = new Trace(this, { changed: () => { this.draw(); this.act.traced(); }, others: () => [...(this.state?.outline?.loops ?? []).map(l => l.points), ...(this.state?.contacts ?? []).filter(c => c.kind === 'pad').map(c => c.points)] });
+    this.trace = new Trace(this, { changed: () => { this.draw(); this.act.traced(); }, rims: () => (this.state?.outline?.loops ?? []).map((l, k) => sheetLeft(l.points, k > 0)), others: () => [...(this.state?.contacts ?? []).filter(c => c.kind === 'pad').map(c => c.points)] });
     this.stage = html('div', { class: 'stage layout-stage', role: 'application', 'aria-label': 'Layout. Tab goes from contact to contact, arrow keys move the one in focus, with Shift in small steps.' }, this.picture.frame, this.canvas, this.overlay);
     this.legend = svg('svg', { class: 'legend', role: 'img' });
     host.append(this.stage, this.legend);

@@ -1,11 +1,13 @@
 // Polygons traced on the sheet or on a micrograph: an outline, holes, pads. They snap to corners, to edges, and to the horizontal and the vertical.
 
 const SNAP = 9;
+// How far across the rim a corner of a pad is set, pixels: one on the rim itself, rounded in a file, would leave a strip of sheet of next to no width.
+const ACROSS = 5;
 
 class Trace {
-  /** @param plane the view; changed() is told of every change; others() gives polygons [x, y, …] to snap to. */
-  constructor(plane, { changed, others }) {
-    Object.assign(this, { plane, changed, others, shapes: [], open: null, kind: 'outline', near: null, held: null });
+  /** @param plane the view; changed() is told of every change; rims() and others() give polygons [x, y, …] to snap to, the sheet left of the rims. */
+  constructor(plane, { changed, rims, others }) {
+    Object.assign(this, { plane, changed, rims, others, shapes: [], open: null, kind: 'outline', near: null, held: null });
   }
 
   /** Where a point goes: to a corner, an edge, or level with the last corner; free with the Alt key. */
@@ -14,7 +16,10 @@ class Trace {
     if (free) {
       return { x, y, by: '' };
     }
-    const lists = [...this.others(), ...this.shapes.map(s => s.points.flatMap((p, k) => s === without?.shape && k === without.index ? [] : p))];
+    const pad = (without ? without.shape.kind : this.kind) === 'pad', traced = this.shapes.map(s => ({ kind: s.kind, list: s.points.flatMap((p, k) => s === without?.shape && k === without.index ? [] : p) }));
+    // A traced outline is to replace the sheet on show.
+    const rims = traced.some(s => s.kind === 'outline') ? traced.filter(s => s.kind !== 'pad').map(s => sheetLeft(s.list, s.kind === 'hole')) : this.rims();
+    const lists = [...this.others(), ...pad ? [] : this.rims(), ...traced.filter(s => !pad || s.kind === 'pad').map(s => s.list)];
     let best = null;
     const corner = (p, by) => {
       const [a, b] = plane.toScreen(...p), d = Math.hypot(a - u, b - v);
@@ -41,8 +46,9 @@ class Trace {
         }
       }
     }
-    if (best) {
-      return best;
+    const over = pad ? across(plane, rims, [u, v], best?.d ?? SNAP) : null;
+    if (over ?? best) {
+      return over ?? best;
     }
     // Level with the last corner, and with the first, which gives rectangles.
     const made = { x, y, by: '' };
@@ -150,6 +156,44 @@ class Trace {
     }
     return nodes;
   }
+}
+
+/** The polygon with the sheet on its left: counter-clockwise, a hole clockwise. */
+function sheetLeft(list, hole) {
+  let area = 0;
+  for (let i = 0, n = list.length; i < n; i += 2) {
+    area += list[i] * list[(i + 3) % n] - list[(i + 2) % n] * list[i + 1];
+  }
+  return area > 0 === hole ? list.map((_, i) => list[list.length - 2 - i + 2 * (i % 2)]) : list;
+}
+
+/** The place across the rim beside a point that lies within a distance of it, both in pixels; null for others. */
+function across(plane, rims, p, within) {
+  let best = null;
+  for (const rim of rims) {
+    const at = [];
+    for (let i = 0; i + 1 < rim.length; i += 2) {
+      const q = plane.toScreen(rim[i], rim[i + 1]), last = at[at.length - 1];
+      if (!last || Math.hypot(q[0] - last[0], q[1] - last[1]) > 0.01) {
+        at.push(q);
+      }
+    }
+    // The screen's second axis points down, so the way out, right of the rim, is (-dy, dx) there.
+    const out = k => {
+      const a = at.at(k), b = at[(k + 1 + at.length) % at.length], l = Math.hypot(b[0] - a[0], b[1] - a[1]);
+      return [-(b[1] - a[1]) / l, (b[0] - a[0]) / l];
+    };
+    for (let k = 0; at.length >= 3 && k < at.length; k++) {
+      const a = at[k], b = at[(k + 1) % at.length], t = nearestOn(a, b, p), q = [a[0] + t * (b[0] - a[0]), a[1] + t * (b[1] - a[1])], d = Math.hypot(q[0] - p[0], q[1] - p[1]);
+      if (d < (best?.d ?? within)) {
+        // Across both edges at a corner.
+        const n = out(k), m = t === 0 ? out(k - 1) : t === 1 ? out((k + 1) % at.length) : n, s = ACROSS / Math.max(0.2, 1 + n[0] * m[0] + n[1] * m[1]);
+        const [x, y] = plane.toPlace(q[0] + s * (n[0] + m[0]), q[1] + s * (n[1] + m[1]));
+        best = { x, y, by: 'across the edge', d };
+      }
+    }
+  }
+  return best;
 }
 
 /** Share of the way from a to b at which the line is nearest to p. */

@@ -14,7 +14,11 @@ class LiveMap extends Plane {
     super(1, 4000);
     Object.assign(this, { host, maps, meshes, laws, changed, name: 'phi', wholeDrive: true, levels: true, flow: false, cursor: null });
     // A cycle passes most currents twice: such frames are one.
-    this.sets = maps.map(m => m.frames.reduce((list, f) => [...list, f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f) : list[f.same]], []));
+    this.sets = maps.map(m => {
+      const all = [];
+      m.frames.forEach(f => all.push(f.same === undefined ? new FrameFields(meshes[m.mesh], laws[m.law].turned(f.turn), f, all) : all[f.same]));
+      return all;
+    });
     this.mapIndex = 0;
     this.words = SLIDERS[maps[0].by];
     // The last drive value, the crest of a cycle, the first direction.
@@ -27,6 +31,11 @@ class LiveMap extends Plane {
     this.drawProfiles = perFrame(() => this.drawProfilesNow());
     this.#select();
     this.#size();
+    // The map itself first; the profiles need all frames unpacked.
+    requestAnimationFrame(() => setTimeout(() => {
+      this.shownOnce = true;
+      this.drawProfilesNow();
+    }, 0));
     new ResizeObserver(perFrame(() => this.#size())).observe(this.stage.parentElement);
     for (const when of ['beforeprint', 'afterprint']) {
       addEventListener(when, () => this.#size());
@@ -272,6 +281,9 @@ class LiveMap extends Plane {
   }
 
   drawProfilesNow() {
+    if (!this.shownOnce) {
+      return;
+    }
     const q = QUANTITIES[this.name], sets = this.sets[this.mapIndex], width = this.profileBox.firstChild.clientWidth - 2, { crossing } = this;
     const key = [crossing.version, this.name, this.mapIndex, width, isDark()].join();
     if (key !== this.profileKey) {

@@ -2,8 +2,12 @@
 
 class Mesh {
   constructor(data) {
-    const places = doublesOf(data.places), raw = bytesOf(data.corners);
-    const corners = data.cornerBytes === 4 ? new Int32Array(raw.buffer) : new Uint16Array(raw.buffer);
+    const places = doublesOf(data.places), corners = new Int32Array(3 * data.triangles);
+    let next = 0;
+    new PackedNumbers(data.corners).read(corners.length, (back, i) => {
+      corners[i] = next - back;
+      next += back === 0 ? 1 : 0;
+    });
     const firstMiddle = places.length / 2, count = data.count, triangles = data.triangles;
     this.triangles = triangles;
     this.count = count;
@@ -14,6 +18,7 @@ class Mesh {
       this.y[i] = places[2 * i + 1];
     }
     this.nodes = new Int32Array(6 * triangles);
+    this.before = { first: new Int32Array(count).fill(-1), second: new Int32Array(count).fill(-1) };
     this.#findMiddles(corners, firstMiddle);
     const bent = new Int32Array(bytesOf(data.bent).buffer), bentPlaces = doublesOf(data.bentPlaces), isBent = new Uint8Array(count);
     bent.forEach((n, i) => {
@@ -34,15 +39,30 @@ class Mesh {
 
   // Middles are numbered as they appear, going through the triangles and their edges 01, 12, 20.
   #findMiddles(corners, firstMiddle) {
-    const seen = new Map();
-    let next = firstMiddle;
+    const seen = new Map(), { first, second } = this.before;
+    let next = firstMiddle, corner = 0;
     for (let t = 0; t < this.triangles; t++) {
+      // What a frame's values may be foretold from: the known corners of the first triangle of each corner, the ends of each edge.
+      for (let k = 0; k < 3; k++) {
+        if (corners[3 * t + k] === corner) {
+          for (let j = 0; j < 3; j++) {
+            const other = corners[3 * t + j];
+            if (other < corner) {
+              second[corner] = first[corner] < 0 ? other : first[corner];
+              first[corner] = other;
+            }
+          }
+          corner++;
+        }
+      }
       for (let k = 0; k < 3; k++) {
         const a = corners[3 * t + k], b = corners[3 * t + (k + 1) % 3], key = a < b ? a * firstMiddle + b : b * firstMiddle + a;
         let m = seen.get(key);
         if (m === undefined) {
           m = next++;
           seen.set(key, m);
+          first[m] = a;
+          second[m] = b;
           this.x[m] = 0.5 * (this.x[a] + this.x[b]);
           this.y[m] = 0.5 * (this.y[a] + this.y[b]);
         }

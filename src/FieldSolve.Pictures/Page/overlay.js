@@ -96,7 +96,7 @@ class MapOverlay {
       const { points } = crossing.lines[line], a = points[0], b = points[points.length - 1], [u0, v0] = this.view.toScreen(a.x, a.y), [u1, v1] = this.view.toScreen(b.x, b.y);
       const d = `M${u0.toFixed(1)} ${v0.toFixed(1)}L${u1.toFixed(1)} ${v1.toFixed(1)}`, dash = line ? '3 4' : '10 4';
       inside.append(svg('path', { d, stroke: '#000', 'stroke-opacity': 0.5, 'stroke-width': 3 }), svg('path', { d, stroke: '#fff', 'stroke-width': 1.8, 'stroke-dasharray': dash }));
-      const [c, s] = crossing.along(line), [u, v] = this.view.toScreen(crossing.x + 0.82 * crossing.lines[line].high * c, crossing.y + 0.82 * crossing.lines[line].high * s);
+      const [c, s] = crossing.along(line), [u, v] = this.view.toScreen(crossing.x + 0.74 * crossing.lines[line].high * c, crossing.y + 0.74 * crossing.lines[line].high * s);
       inside.append(svg('text', { class: 'tag', x: (u + 11 * s).toFixed(1), y: (v + 4 + 11 * c).toFixed(1), 'text-anchor': 'middle' }, String(line + 1)));
     });
     const [c, s] = crossing.along(0), reach = 0.55 * crossing.lines[0].high;

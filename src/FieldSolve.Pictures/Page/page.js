@@ -6,10 +6,20 @@ function theme() {
   const apply = v => {
     root.dataset.theme = v === 'auto' ? dark.matches ? 'dark' : 'light' : v;
     window.fieldsolve?.map?.drawProfiles();
+    window.fieldsolve?.shares?.forEach(s => s.draw());
   };
   dark.addEventListener('change', () => apply(select.select.value));
   apply('auto');
   document.querySelector('header')?.append(select);
+}
+
+// Still pictures can be kept too.
+function keepStills() {
+  for (const image of document.querySelectorAll('main > figure img, .figures > figure img')) {
+    const text = () => ({ text: decodeURIComponent(image.getAttribute('src').replace(/^[^,]*,/, '')), width: Number(image.getAttribute('width')), height: Number(image.getAttribute('height')) });
+    const name = image.getAttribute('alt').split(/[;:.,]/)[0].slice(0, 40);
+    image.after(saveButtons({ label: () => name, name: () => fileName(document.title, name) }, text));
+  }
 }
 
 function start() {
@@ -24,13 +34,6 @@ function start() {
     live?.show(map, frame);
     live?.host.scrollIntoView({ block: 'nearest', behavior: matchMedia('(prefers-reduced-motion: reduce)').matches ? 'auto' : 'smooth' });
   };
-  for (const host of document.querySelectorAll('[data-chart]')) {
-    const spec = data.charts.find(c => c.id === host.dataset.chart);
-    if (spec) {
-      charts.push(new Chart(host, spec, pick));
-      host.hidden = false;
-    }
-  }
   const host = document.querySelector('[data-maps]');
   if (host && data.maps.length) {
     host.hidden = false;
@@ -44,9 +47,26 @@ function start() {
     pair.hidden = false;
     comparison = new Comparison(pair, data.comparison, data.meshes.map(m => new Mesh(m)));
   }
-  // For tests and for the curious, on the console.
-  window.fieldsolve = { map: live, comparison, charts, RAMPS, DIVERGING, MeshCanvas, Law, Chart };
-  document.documentElement.dataset.ready = 'yes';
+  // The map is painted before charts are made.
+  const rest = () => {
+    for (const host of document.querySelectorAll('[data-chart]')) {
+      const spec = data.charts.find(c => c.id === host.dataset.chart);
+      if (spec) {
+        charts.push(new Chart(host, spec, pick));
+        host.hidden = false;
+      }
+    }
+    const shares = [...document.querySelectorAll('[data-share]')].map(place => {
+      place.hidden = false;
+      return new ShareMap(place, data.share);
+    });
+    charts.forEach(c => live && c.shows(live.map.id, live.frameIndex));
+    keepStills();
+    // For tests and for the curious, on the console.
+    window.fieldsolve = { map: live, comparison, charts, shares, RAMPS, DIVERGING, MeshCanvas, Law, Chart, PackedNumbers };
+    document.documentElement.dataset.ready = 'yes';
+  };
+  live ? requestAnimationFrame(() => setTimeout(rest, 0)) : rest();
 }
 
 // The columns of the paper before the parts are laid out anew for it.

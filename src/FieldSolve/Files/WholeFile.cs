@@ -1,4 +1,6 @@
+using System.Diagnostics;
 using System.Text;
+using System.Text.RegularExpressions;
 
 namespace FieldSolve.Files;
 
@@ -6,7 +8,7 @@ namespace FieldSolve.Files;
 /// Writes a file so that a reader sees either the old one or the whole new one, never a part: the bytes go to a temporary
 /// name in the same folder, are flushed to the disk and then moved into place.
 /// </summary>
-public static class WholeFile
+public static partial class WholeFile
 {
     private static readonly UTF8Encoding Utf8 = new(encoderShouldEmitUTF8Identifier: false);
     private static int counter;
@@ -53,6 +55,35 @@ public static class WholeFile
         ArgumentNullException.ThrowIfNull(text);
         Write(path, stream => stream.Write(Utf8.GetBytes(text)));
     }
+
+    /// <summary>
+    /// Removes what killed writers of this file left beside it: temporary files by the name that <see cref="Write"/> gives, last written before this program started.
+    /// One that is being written now is younger.
+    /// </summary>
+    internal static void RemoveLeftovers(string path)
+    {
+        try
+        {
+            string full = Path.GetFullPath(path), prefix = $".{Path.GetFileName(full)}.";
+            using Process here = Process.GetCurrentProcess();
+            DateTime start = here.StartTime.ToUniversalTime();
+            foreach (string file in Directory.EnumerateFiles(Path.GetDirectoryName(full) ?? ".", ".*.part"))
+            {
+                string name = Path.GetFileName(file);
+                if (name.StartsWith(prefix, StringComparison.Ordinal) && WriterMark().IsMatch(name.AsSpan(prefix.Length)) && File.GetLastWriteTimeUtc(file) < start)
+                {
+                    TryDelete(file);
+                }
+            }
+        }
+        catch (Exception e) when (e is IOException or UnauthorizedAccessException)
+        {
+            // Tidying up is no part of the work.
+        }
+    }
+
+    [GeneratedRegex(@"\A[0-9]+-[0-9]+\.part\z", RegexOptions.CultureInvariant)]
+    private static partial Regex WriterMark();
 
     private static void TryDelete(string path)
     {

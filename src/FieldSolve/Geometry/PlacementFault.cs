@@ -41,4 +41,7 @@ public enum PlacementFault
 
     /// <summary>A tip lies inside the metal of an ideal pad.</summary>
     TipInPad,
+
+    /// <summary>Between a pad's side and the rim, or another side, the sheet runs out into a point of no angle.</summary>
+    PadLeavesCusp,
 }

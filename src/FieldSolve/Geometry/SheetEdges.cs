@@ -11,6 +11,7 @@ internal sealed class SheetEdges
     private readonly int[] _contactOf; // of each rim piece: the edge contact there, or -1
     private readonly bool[] _gone; // rim below an ideal pad
     private readonly HashSet<(int Rim, int Pad)> _together = []; // rim that runs along a pad's edge
+    private readonly List<int> _padOf = []; // of each pad edge in the sheet
     private readonly bool[] _onSheet; // pads with some area on the sheet
     private readonly SortedDictionary<(int, int), (PlacementFault Fault, Point2 At)> _meetings = [];
 
@@ -28,6 +29,7 @@ internal sealed class SheetEdges
         CoverRim();
         AddProblems();
         All = [.. RimEdges(), .. padEdges];
+        AddCusps(All.Count - padEdges.Count);
     }
 
     /// <summary>Rim first, in the order of its loops, then the pads' edges by contact.</summary>
@@ -88,6 +90,7 @@ internal sealed class SheetEdges
                 else if (_live.SignedDistance(0.5 * (_vertices[a] + _vertices[b])) > 0)
                 {
                     _onSheet[i] = true;
+                    _padOf.Add(i);
                     edges.Add(pad.IsIdeal
                         ? new(b, a, Curve.Segment(_vertices[b], _vertices[a]), true, pad.Contact)
                         : new(a, b, Curve.Segment(_vertices[a], _vertices[b]), false, -1));
@@ -145,6 +148,24 @@ internal sealed class SheetEdges
             if (!_onSheet[i])
             {
                 _problems.Add(new(_pads[i].Contact, -1, -1, PlacementFault.PadOutside, _pads[i].Corners[0]));
+            }
+        }
+    }
+
+    // Where a pad's side leaves the rim at no angle. Points of the outline itself are the mesher's to refuse.
+    private void AddCusps(int firstPadEdge)
+    {
+        if (_problems.Count > 0)
+        {
+            return; // edges that cross need not close
+        }
+
+        foreach (SheetWedge wedge in SheetWedges.Of(All, _vertices.Count))
+        {
+            int edge = Math.Max(wedge.First, wedge.Second);
+            if (wedge.Angle < SheetWedges.Cusp && edge >= firstPadEdge)
+            {
+                _problems.Add(new(_pads[_padOf[edge - firstPadEdge]].Contact, -1, -1, PlacementFault.PadLeavesCusp, _vertices[wedge.Vertex]));
             }
         }
     }

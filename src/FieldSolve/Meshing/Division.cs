@@ -108,7 +108,8 @@ internal static class Division
         if (pieces > most)
         {
             throw new MeshException(FormattableString.Invariant(
-                $"The edge of the outline from ({curve.Start.X:G9}, {curve.Start.Y:G9}) m alone needs more than the {most} triangles allowed. Ask for larger triangles or allow more of them.")) { IsTooMany = true };
+                $"The edge of the outline from ({curve.Start.X:G9}, {curve.Start.Y:G9}) m alone needs more than the {most} triangles allowed. Ask for larger triangles or allow more of them."))
+            { IsTooMany = true };
         }
     }
 }

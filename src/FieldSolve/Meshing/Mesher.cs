@@ -52,7 +52,8 @@ public static class Mesher
         if (result.TriangleCount > options.MaxTriangles)
         {
             throw new MeshException(string.Create(CultureInfo.InvariantCulture,
-                $"The mesh has {result.TriangleCount} triangles, more than the {options.MaxTriangles} allowed. Ask for larger triangles or allow more of them.")) { IsTooMany = true };
+                $"The mesh has {result.TriangleCount} triangles, more than the {options.MaxTriangles} allowed. Ask for larger triangles or allow more of them."))
+            { IsTooMany = true };
         }
 
         return result;
@@ -64,7 +65,8 @@ public static class Mesher
         if (pieces > options.MaxTriangles)
         {
             throw new MeshException(string.Create(CultureInfo.InvariantCulture,
-                $"The outline alone needs {pieces} edges, more than the {options.MaxTriangles} triangles allowed. Ask for larger triangles or allow more of them.")) { IsTooMany = true };
+                $"The outline alone needs {pieces} edges, more than the {options.MaxTriangles} triangles allowed. Ask for larger triangles or allow more of them."))
+            { IsTooMany = true };
         }
     }
 }

@@ -117,7 +117,8 @@ internal sealed class Refiner
         if (mesh.TriangleCount > 4L * options.MaxTriangles + 1000 || mesh.VertexCount > (options.MaxTriangles / 2L) + 1000 + domain.Vertices.Count)
         {
             throw new MeshException(string.Create(CultureInfo.InvariantCulture,
-                $"More than {options.MaxTriangles} triangles are needed; the last one was at {mesh.Place(mesh.VertexCount - 1)}. Ask for larger triangles or allow more of them.")) { IsTooMany = true };
+                $"More than {options.MaxTriangles} triangles are needed; the last one was at {mesh.Place(mesh.VertexCount - 1)}. Ask for larger triangles or allow more of them."))
+            { IsTooMany = true };
         }
     }
 

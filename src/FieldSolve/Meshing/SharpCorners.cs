@@ -10,9 +10,7 @@ namespace FieldSolve.Meshing;
 /// </summary>
 internal sealed class SharpCorners
 {
-    private const double Sharp = (Math.PI / 3) - Noise;
-    private const double Noise = 1e-9;
-    private const double Cusp = 1e-6;
+    private const double Sharp = (Math.PI / 3) - 1e-9;
     private readonly Domain domain;
     private readonly bool[] sharpStart;
     private readonly bool[] sharpEnd;
@@ -25,55 +23,22 @@ internal sealed class SharpCorners
         sharpStart = new bool[domain.Edges.Count];
         sharpEnd = new bool[domain.Edges.Count];
         sharpVertex = new bool[domain.Vertices.Count];
-        List<(int Edge, bool AtStart, Point2 Away)>?[] at = new List<(int, bool, Point2)>?[domain.Vertices.Count];
-        for (int e = 0; e < domain.Edges.Count; e++)
+        foreach (SheetWedge wedge in SheetWedges.Of(domain.Edges, domain.Vertices.Count))
         {
-            DomainEdge edge = domain.Edges[e];
-            (at[edge.From] ??= []).Add((e, true, edge.Curve.Tangent(0)));
-            (at[edge.To] ??= []).Add((e, false, -edge.Curve.Tangent(1)));
-        }
-
-        for (int v = 0; v < at.Length; v++)
-        {
-            List<(int Edge, bool AtStart, Point2 Away)>? fan = at[v];
-            for (int i = 0; fan != null && i < fan.Count; i++)
+            if (wedge.Angle < SheetWedges.Cusp)
             {
-                // The wedge counter-clockwise from this edge to the next one.
-                int next = -1;
-                double wedge = 2 * Math.PI;
-                for (int j = 0; j < fan.Count; j++)
-                {
-                    double turn = j == i ? 2 * Math.PI : Turn(fan[i].Away, fan[j].Away);
-                    if (turn < wedge)
-                    {
-                        (next, wedge) = (j, turn);
-                    }
-                }
+                Point2 p = domain.Vertices[wedge.Vertex];
+                throw new MeshException(FormattableString.Invariant(
+                    $"The sheet runs out into a point of no angle at ({p.X:G9}, {p.Y:G9}) m. Cut the point off, or let the edges meet at an angle."));
+            }
 
-                // The sheet lies left of a rim edge that leaves.
-                bool inSheet = !domain.Edges[fan[i].Edge].IsRim || fan[i].AtStart;
-                if (inSheet && wedge < Cusp)
-                {
-                    Point2 p = domain.Vertices[v];
-                    throw new MeshException(FormattableString.Invariant(
-                        $"The sheet runs out into a point of no angle at ({p.X:G9}, {p.Y:G9}) m. Cut the point off, or let the edges meet at an angle."));
-                }
-
-                if (inSheet && wedge < Sharp)
-                {
-                    (fan[i].AtStart ? sharpStart : sharpEnd)[fan[i].Edge] = true;
-                    (fan[next].AtStart ? sharpStart : sharpEnd)[fan[next].Edge] = true;
-                    sharpVertex[v] = true;
-                }
+            if (wedge.Angle < Sharp)
+            {
+                (wedge.FirstAtStart ? sharpStart : sharpEnd)[wedge.First] = true;
+                (wedge.SecondAtStart ? sharpStart : sharpEnd)[wedge.Second] = true;
+                sharpVertex[wedge.Vertex] = true;
             }
         }
-    }
-
-    // Counter-clockwise angle from a to b, 0 to 2 pi.
-    private static double Turn(Point2 a, Point2 b)
-    {
-        double turn = Math.Atan2(Point2.Cross(a, b), Point2.Dot(a, b));
-        return turn >= -Noise ? Math.Max(0, turn) : turn + (2 * Math.PI);
     }
 
     /// <summary>Whether either end of an edge is a sharp corner.</summary>

@@ -290,6 +290,7 @@ public sealed class EditSession
 
     private SaveOutcome Write(string target)
     {
+        WholeFile.RemoveLeftovers(target);
         WholeFile.WriteText(target, text.Text);
         (savedText, diskHash, changedOnDisk) = (text.Text, HashOf(target), false);
         return SaveOutcome.Saved;

@@ -60,6 +60,7 @@ public class FaultTests
     }
 
     [BoundUserFact]
+    [System.Runtime.Versioning.UnsupportedOSPlatform("windows")]
     public void A_folder_that_may_not_be_written_is_named()
     {
         using var folder = new TempFolder();

@@ -41,6 +41,25 @@ public sealed class WholeFileTests : IDisposable
     }
 
     [Fact]
+    public void What_a_killed_writer_left_is_removed_and_nothing_else()
+    {
+        string path = Path.Combine(folder, "x.toml");
+        string[] others = [".x.toml.7-2.part", ".x.toml.part", ".y.toml.7-1.part", ".x.toml.7-1.part.txt", ".x.toml.b-1.part"];
+        string[] stay = [path, .. others.Select(n => Path.Combine(folder, n))];
+        string left = Path.Combine(folder, ".x.toml.7-1.part");
+        foreach (string file in stay.Append(left))
+        {
+            File.WriteAllText(file, "text");
+            File.SetLastWriteTimeUtc(file, new DateTime(2020, 1, 1, 0, 0, 0, DateTimeKind.Utc));
+        }
+
+        File.SetLastWriteTimeUtc(stay[1], DateTime.UtcNow.AddMinutes(1)); // being written
+        WholeFile.RemoveLeftovers(path);
+        Assert.Equal(stay.Order(StringComparer.Ordinal), Directory.GetFileSystemEntries(folder).Order(StringComparer.Ordinal));
+        WholeFile.RemoveLeftovers(Path.Combine(folder, "no", "such.toml"));
+    }
+
+    [Fact]
     public void A_folder_in_the_way_is_reported_and_nothing_is_left_behind()
     {
         string path = Path.Combine(folder, "taken");

@@ -14,6 +14,7 @@ namespace FieldSolve.Tests.FitTests;
 public class FittedLawTests
 {
     private const double Degree = Math.PI / 180;
+    private static readonly string[] Pairs = ["along", "across", "source"];
 
     // A bar between resistive ends, the crystal askew, tips on both edges: no field without bound, so that coarse meshes serve.
     private static DeviceText Bar(string law, double left)
@@ -24,7 +25,7 @@ public class FittedLawTests
     }
 
     private static MeasuredVoltages Layout(SheetDevice device, double sigma, params double[] currents) => FitDevices.Table(
-        device, "wiring,pair,current_A,value_V,sigma_V\n" + string.Concat(new[] { "along", "across", "source" }.SelectMany(pair => currents.Select(current =>
+        device, "wiring,pair,current_A,value_V,sigma_V\n" + string.Concat(Pairs.SelectMany(pair => currents.Select(current =>
             string.Create(CultureInfo.InvariantCulture, $"x,{pair},{current:R},0,{sigma:R}\n")))));
 
     [Fact]

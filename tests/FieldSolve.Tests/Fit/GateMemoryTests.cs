@@ -19,7 +19,8 @@ public class GateMemoryTests
         DeviceText text = DeviceText.Bar(Length, Width, DeviceText.Ohmic(2e-7, 3e-7)).Whole("l", "end", "left").Whole("r", "end", "right")
             .Tip("p", -8e-6, 1e-6).Tip("q", 5e-6, 1e-6).Wiring("x", "l", "r", "p q");
         return FitDevices.Read(
-            text, "a = true\n[drive]\ncurrent = { from = \"1 nA\", to = \"1 nA\", steps = 1 }\n" + frequency) with { GateCapacitance = C };
+            text, "a = true\n[drive]\ncurrent = { from = \"1 nA\", to = \"1 nA\", steps = 1 }\n" + frequency) with
+        { GateCapacitance = C };
     }
 
     // A strip between full ends over a gate is a line of distributed resistance and capacitance (as in any text on transmission lines): sigma V'' = i w c V, the current I enters

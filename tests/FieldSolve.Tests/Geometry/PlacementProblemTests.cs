@@ -84,6 +84,24 @@ public class PlacementProblemTests
     }
 
     [Fact]
+    public void A_pad_may_touch_the_rim_with_a_corner_or_a_side_but_leaves_no_cusp()
+    {
+        foreach (bool ideal in new[] { true, false })
+        {
+            Assert.Empty(Check(new ContactPlacement(null, [new(-1, -2), new(0, 0), new(-2, 0)], ideal))); // by a corner
+            Assert.Empty(Check(Pad(ideal, -1, -2, 1, 0))); // by a side
+            Assert.Empty(Check(new ContactPlacement(null, [new(-1, -2), new(1, -2 + 1e-10), new(1, 0), new(-1, 0)], ideal))); // within rounding
+            Assert.Empty(Check(new ContactPlacement(null, [new(-1, -2), new(1, -2 + 1e-3), new(1, 0), new(-1, 0)], ideal))); // thin, but an angle
+            Assert.Empty(Check(new ContactPlacement(null, [new(-1, -2.1), new(1, -2.1), new(1, 0), new(-1, 0)], ideal))); // across
+            foreach (double off in new[] { 1e-7, 1e-6 })
+            {
+                PlacementProblem cusp = One(new ContactPlacement(null, [new(-1, -2), new(1, -2 + off), new(1, 0), new(-1, 0)], ideal));
+                Assert.Equal(new(0, -1, -1, PlacementFault.PadLeavesCusp, new(-1, -2)), cusp);
+            }
+        }
+    }
+
+    [Fact]
     public void Tips_must_be_on_bare_sheet()
     {
         IReadOnlyList<PlacementProblem> problems = DomainBuilder.Check(

@@ -107,7 +107,7 @@ public sealed partial class MutatedCommandTests(ITestOutputHelper log) : IDispos
         if (result.Exit == 2)
         {
             Assert.Equal("", result.Out);
-            Assert.Empty(written.Where(f => Path.GetFileName(f) != SampleJournal.FileName));
+            Assert.DoesNotContain(written, f => Path.GetFileName(f) != SampleJournal.FileName);
             Assert.NotEmpty(result.ErrorLines);
             Assert.All(result.ErrorLines, line => Assert.True(
                 line.StartsWith("fieldsolve: ", StringComparison.Ordinal) ? seed.Command is "tolerance" or "gather"

@@ -58,6 +58,8 @@ internal static class PlacementReport
             PlacementFault.SpansTouch or PlacementFault.PadsTouch or PlacementFault.PadTouchesContact =>
                 $"{me} touches {it} {where}; leave a gap, or make one contact of the two",
             PlacementFault.PadOutside => $"the pad of {me} lies outside the sheet",
+            PlacementFault.PadLeavesCusp =>
+                $"a side of the pad of {me} leaves the rim at no angle {where}; move the pad's corner there across the rim, or well inside",
             PlacementFault.PadInvalid => $"the pad of {me} crosses itself or has no area, {where}",
             _ => $"{me} is misplaced {where}",
         };

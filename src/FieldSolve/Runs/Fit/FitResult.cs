@@ -15,9 +15,17 @@ public sealed record FittedParameter(FitParameter Parameter, double? Value, doub
     /// <summary>Where the fit ended, SI, determined or not.</summary>
     public required double Ended { get; init; }
 
+    /// <summary>Points of the profile likelihood that the interval was found from, by value; empty when none was asked for.</summary>
+    public IReadOnlyList<LikelihoodPoint> Profile { get; init; } = [];
+
     /// <summary>By how much the model's numerical errors may have moved it, SI: errors of one reading go together along the currents, those of all readings at their worst.</summary>
     public double NumericalError { get; init; }
 }
+
+/// <summary>A point of a profile likelihood.</summary>
+/// <param name="Value">Where the number was held, SI.</param>
+/// <param name="Rise">By how much the least sum of squares over sigma rises above that of the fit (robust fits: in units that make 3.84 the 95 % point).</param>
+public sealed record LikelihoodPoint(double Value, double Rise);
 
 /// <summary>One datum beside the model.</summary>
 /// <param name="Datum">As measured.</param>

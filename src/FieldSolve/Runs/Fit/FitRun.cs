@@ -226,10 +226,12 @@ public static class FitRun
         IReadOnlyList<FitStart> starts, (int, int) solves, CancellationToken cancel)
     {
         IReadOnlyList<FitParameter> q = problem.Parameters;
+        (end, double? openAxis) = IsotropicEnd.Of(problem, model, task, end, cancel);
         SheetDevice fittedDevice = problem.DeviceAt(end.P);
         double largestVoltage = problem.Data.Max(d => Math.Abs(d.Value));
         double[] scales = FitScales.Of(fittedDevice, q, end.P, largestVoltage);
         IReadOnlyList<FitDirection> directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
+        directions = openAxis is { } open ? IsotropicEnd.Explain(directions, q, open) : directions;
         double[,] covariance = Identifiability.Covariance(directions, scales);
         double widen = options.Robust ? RobustFactor(task, end) : 1;
         int m = q.Count;
@@ -248,11 +250,12 @@ public static class FitRun
         {
             bool atBound = end.P[j] <= task.Least[j] || end.P[j] >= task.Most[j];
             bool asked = q[j].Interval || (options.AllIntervals && q[j].PriorSigma is null);
-            parameters[j] = new(
-                q[j], determined[j] ? end.P[j] : null, determined[j] ? Math.Sqrt(covariance[j, j]) : null,
-                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, widen, j, cancel) : null, atBound)
+            ((double? Low, double? High) Interval, IReadOnlyList<LikelihoodPoint> Points)? profile =
+                determined[j] && asked ? ProfileInterval.Of(model, task, end, covariance, widen, j, cancel) : null;
+            parameters[j] = new(q[j], determined[j] ? end.P[j] : null, determined[j] ? Math.Sqrt(covariance[j, j]) : null, profile?.Interval, atBound)
             {
                 Ended = end.P[j],
+                Profile = profile?.Points ?? [],
                 NumericalError = determined[j] ? numerical[j] : 0,
             };
         }

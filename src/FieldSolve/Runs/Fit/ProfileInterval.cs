@@ -18,11 +18,27 @@ internal static class ProfileInterval
     /// <param name="widen">By how much the covariance of a robust fit exceeds the inverse of its objective's curvature; 1 for squares.</param>
     /// <param name="j">Which number.</param>
     /// <param name="cancel">Stops the work.</param>
-    public static (double? Low, double? High) Of(IFitFunction model, FitTask task, FitEnd best, double[,] covariance, double widen, int j, CancellationToken cancel)
+    /// <returns>The interval, and the rises of the sum of squares on the way, over <paramref name="widen"/>, by value.</returns>
+    public static ((double? Low, double? High) Interval, IReadOnlyList<LikelihoodPoint> Points) Of(IFitFunction model, FitTask task, FitEnd best, double[,] covariance, double widen, int j, CancellationToken cancel)
     {
         double limit = Math.Sqrt(widen * ChiSquared.InvCDF(1, 0.95)), error = Math.Sqrt(covariance[j, j]);
         FitTask held = task with { Held = [.. task.Held.Select((h, k) => h || k == j)] };
-        return (Side(-1), Side(1));
+        List<LikelihoodPoint> points = [new(best.P[j], 0)];
+        (double? Low, double? High) interval = (Side(-1), Side(1));
+        foreach (double? end in (double?[])[interval.Low, interval.High])
+        {
+            // One more point halfway to each end, so that the curve between them is seen and not only assumed.
+            if (end is { } far && LeastSquares.Run(model, held, Along(best.P, (best.P[j] + far) / 2), MostSteps, cancel) is { } half)
+            {
+                points.Add(new(half.P[j], Math.Max(0, half.Objective - best.Objective) / widen));
+            }
+        }
+
+        return (interval, [.. points.OrderBy(p => p.Value)]);
+
+        // Where the others lie when the number is held at a value, to first order.
+        double[] Along(double[] from, double value) =>
+            [.. from.Select((v, k) => k == j ? value : Math.Clamp(v + (covariance[k, j] / covariance[j, j] * (value - from[j])), task.Least[k], task.Most[k]))];
 
         double? Side(int sign)
         {
@@ -33,14 +49,14 @@ internal static class ProfileInterval
             {
                 bool bound = at <= task.Least[j] || at >= task.Most[j];
                 at = Math.Clamp(at, task.Least[j], task.Most[j]);
-                double[] start = [.. from.Select((v, k) => k == j ? at : Math.Clamp(v + (covariance[k, j] / covariance[j, j] * (at - from[j])), task.Least[k], task.Most[k]))];
-                if (LeastSquares.Run(model, held, start, MostSteps, cancel) is not { } end)
+                if (LeastSquares.Run(model, held, Along(from, at), MostSteps, cancel) is not { } end)
                 {
                     at = (at + inner) / 2;
                     continue;
                 }
 
                 double rise = Math.Sqrt(Math.Max(0, end.Objective - best.Objective));
+                points.Add(new(at, rise * rise / widen));
                 if (Math.Abs(rise - limit) < CloseEnough)
                 {
                     return at;

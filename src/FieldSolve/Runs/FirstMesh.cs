@@ -1,5 +1,4 @@
 using FieldSolve.Device;
-using FieldSolve.Geometry;
 using FieldSolve.Meshing;
 
 namespace FieldSolve.Runs;
@@ -13,6 +12,8 @@ internal static class FirstMesh
     // An outline of very many corners has no mesh within the limit; up to here it is answered all the same (2.5 million unknowns).
     private const int MostForTheOutline = 300_000;
 
+    private const double CoarseEnds = 0.4;
+
     /// <summary>Makes it.</summary>
     /// <param name="device">Sheet, contacts and limit.</param>
     /// <param name="cancel">Checked on the way.</param>
@@ -20,18 +21,20 @@ internal static class FirstMesh
     public static TriangleMesh Make(SheetDevice device, CancellationToken cancel)
     {
         int most = Math.Max((int)(device.Mesh.MaxUnknowns / MeshRefinement.UnknownsPerCoarseTriangle), AlwaysAllowed), last = Math.Max(most, MostForTheOutline);
-        try
+        if (Try(MeshSizes.First(device), most) is { } mesh)
         {
-            return Mesher.Generate(device.Domain, MeshSizes.First(device), new MeshOptions { MaxTriangles = most }, cancel);
+            return mesh;
         }
-        catch (MeshException e) when (e.IsTooMany)
+
+        // Thousands of corners or contacts, each with its own fan of small triangles: the estimate says which of them matter.
+        if (Try(MeshSizes.First(device, corners: false), most) is { } ends)
         {
-            // Thousands of corners, each with its own fan of small triangles: the estimate says which of them matter.
+            return ends;
         }
 
         try
         {
-            return Mesher.Generate(device.Domain, MeshSizes.First(device, corners: false), new MeshOptions { MaxTriangles = last }, cancel);
+            return Mesher.Generate(device.Domain, MeshSizes.First(device, corners: false, ends: CoarseEnds), new MeshOptions { MaxTriangles = last }, cancel);
         }
         catch (MeshException e) when (e.IsTooMany)
         {
@@ -40,6 +43,18 @@ internal static class FirstMesh
                 FormattableString.Invariant(
                     $"The rim has {corners} edges, down to {device.Domain.Edges.Where(edge => edge.IsRim).Min(edge => edge.Curve.Length):G3} m long; even the coarsest mesh along them has more than {(int)(last * MeshRefinement.UnknownsPerCoarseTriangle / 1e4) * 1e4:F0} unknowns. Leave out corners that do not matter, or raise [mesh] max_unknowns."),
                 e);
+        }
+
+        TriangleMesh? Try(ISizeField size, int most)
+        {
+            try
+            {
+                return Mesher.Generate(device.Domain, size, new MeshOptions { MaxTriangles = most }, cancel);
+            }
+            catch (MeshException e) when (e.IsTooMany)
+            {
+                return null;
+            }
         }
     }
 }

@@ -183,7 +183,7 @@ internal sealed class MeshRefinement
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
     {
         double stretch = 1;
-        for (int attempt = 0; attempt < 4; attempt++)
+        for (int attempt = 0; attempt < 6; attempt++)
         {
             try
             {

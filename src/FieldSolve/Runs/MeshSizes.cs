@@ -31,7 +31,8 @@ internal static class MeshSizes
     /// <summary>Sizes of the first mesh.</summary>
     /// <param name="device">Sheet and contacts.</param>
     /// <param name="corners">Small triangles at re-entrant corners too, not at contact ends alone.</param>
-    public static ISizeField First(SheetDevice device, bool corners = true)
+    /// <param name="ends">Size at contact ends, as a share of the shorter stretch that ends there.</param>
+    public static ISizeField First(SheetDevice device, bool corners = true, double ends = ContactEndFirst)
     {
         Domain domain = device.Domain;
 
@@ -42,7 +43,7 @@ internal static class MeshSizes
         var points = SingularPoints.Of(domain)
             .Where(p => corners || p.IsContactEnd)
             .Select(p => new SizePoint(
-                domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ContactEndFirst * p.Reach / stretch), FirstGrowth))
+                domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ends * p.Reach / stretch), FirstGrowth))
             .ToList();
         foreach (Curve arc in domain.Edges.Select(e => e.Curve).Where(c => c.IsArc && FirstTurn * c.Radius < background))
         {

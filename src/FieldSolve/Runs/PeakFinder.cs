@@ -20,17 +20,12 @@ internal sealed class PeakFinder
         this.equations = equations;
         TriangleMesh mesh = equations.Space.Mesh;
         IReadOnlyList<SingularPoint> singular = SingularPoints.Of(mesh.Domain);
+        var tree = new BoxTree([.. singular.Select(s => Box.Of(mesh.Domain.Vertices[s.Vertex]).Grown(LeftOut * s.Reach))]);
         var list = new List<int>();
         for (int t = 0; t < mesh.TriangleCount; t++)
         {
             Point2 centre = Centre(mesh, t);
-            bool near = false;
-            foreach (SingularPoint s in singular)
-            {
-                near |= Point2.Distance(centre, mesh.Domain.Vertices[s.Vertex]) < LeftOut * s.Reach;
-            }
-
-            if (!near)
+            if (!tree.Query(Box.Of(centre)).Exists(k => Point2.Distance(centre, mesh.Domain.Vertices[singular[k].Vertex]) < LeftOut * singular[k].Reach))
             {
                 list.Add(t);
             }

@@ -70,5 +70,5 @@ internal static class EvenPicture
 
     private static string Legend(string name, EvenSlope? fit) => fit is null || !double.IsFinite(fit.RSquared)
         ? Look.Short(name, 20)
-        : $"{Look.Short(name, 20)}: slope {ErrorText.Of(fit.Slope, fit.SlopeError, "1/V")}, R² = {SiScale.Number(fit.RSquared, 5)}";
+        : $"{Look.Short(name, 20)}: slope {ErrorText.Of(fit.Slope, fit.SlopeError, "1/V")}, R² = {SiScale.Number(fit.RSquared, 6)}";
 }

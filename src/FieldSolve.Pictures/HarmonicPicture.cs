@@ -59,7 +59,7 @@ internal static class HarmonicPicture
         (double y0, double y1) = (lines.Min(l => l.Points.Min(p => p.Y)) - 0.4, lines.Max(l => l.Points.Max(p => p.Y)) + 0.4);
         SiScale scaleI = SiScale.For(Math.Pow(10, x1), "A"), scaleV = SiScale.For(Math.Pow(10, y1), "V");
         double sx = Math.Log10(scaleI.Factor), sy = Math.Log10(scaleV.Factor);
-        Plot plot = Look.NewPlot($"Harmonics of {quantity}", $"current, RMS ({scaleI.Unit})", $"{quantity}, RMS ({scaleV.Unit})");
+        Plot plot = Look.NewPlot($"Harmonics of {quantity}; dashed: slopes 1, 2, 3", $"current, RMS ({scaleI.Unit})", $"{quantity}, RMS ({scaleV.Unit})");
         List<KeyEntry> key = [];
         foreach ((int h, (double X, double Y, RowStatus Status)[] own) in lines)
         {

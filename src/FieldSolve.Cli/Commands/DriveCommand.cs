@@ -71,7 +71,8 @@ internal static class DriveCommand
             return ExitCode.WrongInput;
         }
 
-        device = shifted;
+        // The report and the summary say what was changed by hand.
+        device = choices.Shifts.Length == 0 ? shifted : shifted with { Title = $"{shifted.Title} with {string.Join(", ", choices.Shifts)}" };
         if (device.Drive is null)
         {
             Console.Error.WriteLine(new Fault(

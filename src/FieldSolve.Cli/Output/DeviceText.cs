@@ -20,14 +20,14 @@ internal static class DeviceText
         void Line(string name, string value) => text.Append(name.PadRight(11)).Append(value).Append('\n');
         Line("title", device.Title);
         Line("sheet", $"{device.Shape}, {Engineering.Text(Area(device) * 1e12, "µm²", 6)} conducting, "
-            + $"{Engineering.Text(device.Domain.Size, "m", 4)} across the corners"
+            + Extent(device)
             + (device.DeadEdge > 0 ? $", dead edge {Engineering.Text(device.DeadEdge, "m")}" : "")
             + (device.Thickness is { } t ? $", {Engineering.Text(t, "m")} thick" : ""));
         Line("law", LawSummary.Describe(device.Law).ReplaceLineEndings("\n" + new string(' ', 11)));
         Line("axis", string.Create(CultureInfo.InvariantCulture, $"crystal a at {device.Axis * 180 / Math.PI:G6} deg from lab x"));
         foreach (Contact c in device.Contacts)
         {
-            Line("contact", $"{c.Name}: {Place(device, c)}, {Engineering.Text(c.Width, "m")} {(c.Kind == ContactKind.Edge ? "wide" : "across")}{Resistance(c)}");
+            Line("contact", $"{c.Name}: {Place(device, c)}, {Engineering.Text(c.Width, "m")} {(c.Kind == ContactKind.Edge ? "wide" : "across")}{Resistance(c)}{(Floats(device, c) ? ", floats in every wiring" : "")}");
         }
 
         foreach (Tip p in device.Tips)
@@ -43,13 +43,16 @@ internal static class DeviceText
 
         if (device.Drive is { } d)
         {
-            Line("drive", $"{Engineering.Text(d.From, "A")} to {Engineering.Text(d.To, "A")} in {d.Steps} value{(d.Steps == 1 ? "" : "s")}"
-                + (d.BothSigns ? ", both signs" : ", one sign"));
+            Line("drive", (d.Steps == 1 ? Engineering.Text(d.From, "A") : $"{Engineering.Text(d.From, "A")} to {Engineering.Text(d.To, "A")} in {d.Steps} values")
+                + (d.BothSigns ? ", both signs" : ", one sign; no odd and even parts without both_signs = true")
+                + (d.Frequencies.Count > 0 ? $"; lockin at {string.Join(", ", d.Frequencies.Select(f => Engineering.Text(f, "Hz")))}" : "")
+                + (d.Offset != 0 ? $", offset {Engineering.Text(d.Offset, "A")}" : ""));
         }
 
         foreach (var g in (device.Tolerance?.Causes ?? []).GroupBy(c => (c.Kind, c.Sigma, c.Shape)))
         {
-            string size = string.Create(CultureInfo.InvariantCulture, $"{g.Key.Sigma / g.First().UnitSize:G6} {g.First().Unit}");
+            string size = g.First().Unit is "m" or "S" ? Engineering.Text(g.Key.Sigma, g.First().Unit)
+                : string.Create(CultureInfo.InvariantCulture, $"{g.Key.Sigma / g.First().UnitSize:G6} {g.First().Unit}");
             string whom = g.First().Target.Name.Length == 0 ? "" : $" of {string.Join(", ", g.Select(c => c.Target.Name))}";
             Line("tolerance", $"{g.Key.Kind.Key}{whom}: {size}{(g.Key.Shape == CauseShape.Uniform ? ", uniform" : "")}");
         }
@@ -115,8 +118,20 @@ internal static class DeviceText
     }
 
     private static string Resistance(Contact c) => c.LineResistance > 0
-        ? $", {Engineering.Text(c.LineResistance, "ohm m")}"
-        : c.Resistivity > 0 ? $", {Engineering.Text(c.Resistivity, "ohm m²")}" : "";
+        ? string.Create(CultureInfo.InvariantCulture, $", {c.LineResistance * 1e6:G5} ohm um")
+        : c.Resistivity > 0 ? string.Create(CultureInfo.InvariantCulture, $", {c.Resistivity * 1e4:G5} ohm cm^2") : "";
+
+    // Width and height of the box about the live sheet; an arc may bulge beyond its ends.
+    private static string Extent(SheetDevice device)
+    {
+        Point2[] points = [.. device.Domain.Edges.Where(e => e.IsRim).SelectMany(e => Enumerable.Range(0, 33).Select(k => e.Curve.At(k / 32.0)))];
+        double width = points.Max(p => p.X) - points.Min(p => p.X), height = points.Max(p => p.Y) - points.Min(p => p.Y);
+        return $"{Engineering.Text(width, "m", 4)} wide, {Engineering.Text(height, "m", 4)} high";
+    }
+
+    private static bool Floats(SheetDevice device, Contact c) => device.Wirings.Count > 0 && !device.Wirings.Any(
+        w => device.Contacts[w.Source] == c || device.Contacts[w.Drain] == c
+            || w.Pairs.Any(p => (!p.Plus.IsTip && device.Contacts[p.Plus.Index] == c) || (!p.Minus.IsTip && device.Contacts[p.Minus.Index] == c)));
 
     // Green's theorem over the rim; exact on arcs.
     private static double Area(SheetDevice device)

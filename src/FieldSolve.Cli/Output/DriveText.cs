@@ -26,14 +26,23 @@ internal static class DriveText
             if (s.Slope is { } line)
             {
                 Line("V_across_even / V_along_odd²", string.Create(
-                    CultureInfo.InvariantCulture, $"{line.Slope:G6} 1/V{(line.Points > 2 ? FormattableString.Invariant($" +- {line.SlopeError:G2}") : "")} (R² = {line.RSquared:F6}, {line.Points} rows)"));
+                    CultureInfo.InvariantCulture, $"{Engineering.MeasuredPlain(line.Slope, line.Points > 2 ? line.SlopeError : 0, "1/V")} (R² = {line.RSquared:F6}, {line.Points} rows)"));
             }
 
-            Line("law left from", s.LeftLawAt is { } left ? Engineering.Text(left, "A") : "nowhere");
+            if (result.Rows.Where(r => r.Wiring == s.Wiring && r.Readings.Count > 0).MaxBy(r => r.Current) is { } last)
+            {
+                foreach (Reading r in last.Readings)
+                {
+                    Line($"V_{r.Pair} at {Engineering.Text(last.Current, "A")}", Engineering.Measured(r.Value, r.Error, "V")
+                        + (r.Even is { } even && Math.Abs(even) > (r.EvenError ?? 0) ? $"; even part {Engineering.Measured(even, r.EvenError ?? 0, "V")}" : ""));
+                }
+            }
+
+            Line("law holds", s.LeftLawAt is { } left ? $"below {Engineering.Text(left, "A")}" : "at all currents");
         }
 
         Dictionary<RowStatus, int> counts = result.Rows.GroupBy(r => r.Status).ToDictionary(g => g.Key, g => g.Count());
-        text.Append('\n').Append(CultureInfo.InvariantCulture, $"{result.Rows.Count} rows: ");
+        text.Append('\n').Append(CultureInfo.InvariantCulture, $"{result.Rows.Count} row{(result.Rows.Count == 1 ? "" : "s")}: ");
         text.AppendJoin(", ", Enum.GetValues<RowStatus>().Where(counts.ContainsKey).Select(k => $"{counts[k].ToString(CultureInfo.InvariantCulture)} {CurvesCsv.StatusText(k)}"));
         text.Append(CultureInfo.InvariantCulture, $"; {result.Figures.Unknowns} unknowns on {result.Figures.Triangles} triangles\n");
         if (result.Cancelled)

@@ -56,16 +56,11 @@ internal static class FitText
             return "not determined by these data";
         }
 
-        double unit = p.Parameter.UnitSize;
-        string end(double? x) => x is { } y ? (y / unit).ToString("G5", CultureInfo.InvariantCulture) : "bound";
+        // Only units of one letter take a prefix: "A m/V^2" with one would not be what the file says.
+        (double unit, string name) = (p.Parameter.UnitSize, p.Parameter.Unit);
+        bool prefixed = name is "S" or "m";
+        string end(double? x) => x is not { } y ? "bound" : prefixed ? Engineering.Text(y, name) : (y / unit).ToString("G5", CultureInfo.InvariantCulture);
         string interval = p.Interval is { } i ? $"  95 %: {end(i.Low)} to {end(i.High)}" : "";
-        return string.Create(CultureInfo.InvariantCulture, $"{Rounded(v / unit, e / unit)} +- {e / unit:G2} {p.Parameter.Unit}{interval}");
-    }
-
-    // One digit beyond the first of the standard error.
-    private static string Rounded(double value, double error)
-    {
-        int digits = value == 0 || !(error > 0) ? 3 : (int)Math.Clamp(Math.Floor(Math.Log10(Math.Abs(value))) - Math.Floor(Math.Log10(error)) + 2, 2, 12);
-        return value.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+        return (prefixed ? Engineering.Measured(v, e, name) : Engineering.MeasuredPlain(v / unit, e / unit, name)) + interval;
     }
 }

@@ -37,7 +37,7 @@ internal static class LockinText
                         double? slope = SlopeOf(result, point, pair, h);
                         Line(
                             $"{pair}, harmonic {h.ToString(CultureInfo.InvariantCulture)}",
-                            string.Create(CultureInfo.InvariantCulture, $"{Engineering.Text(r.R, "V", 6)} at {r.PhaseDegrees:F2} deg, +- {Engineering.Text(r.Error, "V", 2)}")
+                            string.Create(CultureInfo.InvariantCulture, $"{Engineering.Measured(r.R, r.Error, "V")} at {r.PhaseDegrees:F2} deg")
                                 + (slope is { } s ? string.Create(CultureInfo.InvariantCulture, $", grows like I^{s:F3}") : ""));
                     }
                 }
@@ -55,7 +55,7 @@ internal static class LockinText
         }
 
         Dictionary<RowStatus, int> counts = result.Points.GroupBy(p => p.Status).ToDictionary(g => g.Key, g => g.Count());
-        text.Append('\n').Append(CultureInfo.InvariantCulture, $"{result.Points.Count} points: ");
+        text.Append('\n').Append(CultureInfo.InvariantCulture, $"{result.Points.Count} point{(result.Points.Count == 1 ? "" : "s")}: ");
         text.AppendJoin(", ", Enum.GetValues<RowStatus>().Where(counts.ContainsKey).Select(k => $"{counts[k].ToString(CultureInfo.InvariantCulture)} {CurvesCsv.StatusText(k)}"));
         text.Append(CultureInfo.InvariantCulture, $"; {result.Figures.Unknowns} unknowns on {result.Figures.Triangles} triangles\n");
         if (result.Cancelled)

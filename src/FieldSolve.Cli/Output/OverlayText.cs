@@ -57,8 +57,8 @@ internal static class OverlayText
 
         void Line(string name, Registered r, string u, double scale)
         {
-            string Of(double v, int digits) => u is "deg" or "" ? string.Create(CultureInfo.InvariantCulture, $"{v / scale:G5} {u}").TrimEnd() : Engineering.Text(v, u, digits);
-            text.Append("  ").Append(name.PadRight(10)).Append(r.StandardError > 0 ? $"{Of(r.Value, 5)} +- {Of(double.Parse(r.StandardError.ToString("G2", CultureInfo.InvariantCulture), CultureInfo.InvariantCulture), 2)}" : $"{Of(r.Value, 5)} (not free)").Append('\n');
+            string both = u is "deg" or "" ? Engineering.MeasuredPlain(r.Value / scale, r.StandardError / scale, u) : Engineering.Measured(r.Value, r.StandardError, u);
+            text.Append("  ").Append(name.PadRight(10)).Append(both).Append(r.StandardError > 0 ? "\n" : " (not free)\n");
         }
     }
 }

@@ -37,6 +37,11 @@ internal static class TurnText
                 }
             }
 
+            if (fit.Strip is null && result.Drive.Device.Wirings.All(w => w.Pairs.All(p => p.Name != "along")))
+            {
+                text.Append("  - : these fits read the 'along' pair, and no wiring has one\n");
+            }
+
             text.Append('\n');
         }
 
@@ -86,6 +91,6 @@ internal static class TurnText
     private static string Digits(double value) => value.ToString("G5", CultureInfo.InvariantCulture);
 
     private static string Value(Fitted? value, string unit) => value is { } v
-        ? string.Create(CultureInfo.InvariantCulture, $"{v.Value:G5} +- {v.Error:G2}{unit}")
+        ? Engineering.MeasuredPlain(v.Value, v.Error, unit)
         : "-";
 }

@@ -154,7 +154,7 @@ class Chart {
     plot.setAttribute('height', height);
     plot.setAttribute('viewBox', `0 0 ${width} ${height}`);
     plot.setAttribute('aria-label', `${this.spec.title}: ${view.label}. ${points.length} points. Left and right arrow go from point to point, up and down from curve to curve, Enter shows the map.`);
-    const left = 72, right = width - 14, top = view.marks.length ? 24 : 10, bottom = height - 46;
+    const left = 80, right = width - 14, top = view.marks.length ? 24 : 10, bottom = height - 46;
     const curves = series.filter(s => s.curve).map(s => [s, s.curve[0].map((x, k) => [logX ? Math.abs(x) : x, logY ? Math.abs(s.curve[1][k]) : s.curve[1][k]]).filter(([x, y]) => (!logX || x > 0) && (!logY || y > 0))]);
     const along = curves.flatMap(([, c]) => c);
     const xs = [...points.map(p => p.x), ...along.map(c => c[0])], ys = [...points.flatMap(p => logY ? [p.y] : [p.y - p.e, p.y + p.e]), ...logY ? [] : along.map(c => c[1])];

@@ -150,6 +150,7 @@ public class ToleranceTests
         CommandResult moved = Command.Run("drive", device, "--no-pictures", "--maps", "none", "--shift", "c2=200nm", "--shift", "axis=1deg", "--out", folder["moved"]);
         Assert.Equal((0, 0), (plain.Exit, moved.Exit));
         Assert.NotEqual(CsvTable.Read(folder["plain/curves.csv"]).Number(0, "v_across_V"), CsvTable.Read(folder["moved/curves.csv"]).Number(0, "v_across_V"));
+        Assert.Contains(" with c2=200nm, axis=1deg\n", moved.Out, StringComparison.Ordinal);
         Assert.Contains("\"shift\": \"c2=200nm; axis=1deg\"", File.ReadAllText(folder["moved/run.json"]), StringComparison.Ordinal);
         CommandResult wrong = Command.Run("drive", device, "--shift", "c9=200nm", "--out", folder["wrong"]);
         Assert.Equal(2, wrong.Exit);

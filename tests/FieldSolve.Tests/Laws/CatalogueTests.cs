@@ -104,10 +104,10 @@ public class CatalogueTests
         {
             CultureInfo.CurrentCulture = new CultureInfo(string.Empty) { NumberFormat = { NumberDecimalSeparator = "," } };
             Assert.Equal(
-                "ohmic: a = 0.004 S, b = 0.001 S, hall = 0.0005 S\nthe same dK/dE at every field",
+                "ohmic: a = 4 mS, b = 1 mS, hall = 500 uS\nthe same dK/dE at every field",
                 LawSummary.Describe(Make("ohmic", new() { ["a"] = 4e-3, ["b"] = 1e-3, ["hall"] = 5e-4 })));
             string text = LawSummary.Describe(Make("quadratic", new() { ["a"] = 4e-3, ["b"] = 1e-3, ["d12"] = 2e-9 }));
-            Assert.StartsWith("quadratic: a = 0.004 S, b = 0.001 S, d12 = 2E-09 A m/V^2\nas written up to ", text, StringComparison.Ordinal);
+            Assert.StartsWith("quadratic: a = 4 mS, b = 1 mS, d12 = 2E-09 A m/V^2\nas written up to ", text, StringComparison.Ordinal);
             Assert.Contains("sharpness = 2", LawSummary.Describe(new SaturatingLaw(1, 1, 0, 1, 1, 2)), StringComparison.Ordinal);
         }
         finally

@@ -45,7 +45,18 @@ internal sealed class ContactReader(Section root, SheetReading sheet, FileSource
                 break;
             }
 
-            if (ring)
+            bool single = table.Find("edge") is not null || table.Find("pad") is not null, many = table.Find("ring") is not null;
+            if (ring && single && !many)
+            {
+                faults.Add(table.At, "[[contacts]] makes a ring of equal contacts; one contact is written [[contact]], without the s");
+                NamesComplete = false;
+            }
+            else if (!ring && many && !single)
+            {
+                faults.Add(table.At, "[[contact]] is one contact; a ring of equal contacts is written [[contacts]], with an s");
+                NamesComplete = false;
+            }
+            else if (ring)
             {
                 Ring(new Section(table, "[[contacts]]", faults));
             }

@@ -31,7 +31,7 @@ internal static class Values
 
         if (got != dimension)
         {
-            faults.Add(text.At, got == Dimension.None ? $"{what}: {quoted} has no unit; {wanted}" : $"{what}: {quoted} is {got.NameWithArticle}; {wanted}");
+            faults.Add(text.At, got == Dimension.None ? $"{what}: {quoted} has no unit; {wanted}" : $"{what}: {quoted} is {got.NameWithArticle}; {wanted}{Inverse(si, got, dimension)}");
             return null;
         }
 
@@ -43,6 +43,12 @@ internal static class Values
 
         return si;
     }
+
+    // A sheet resistance where its inverse is wanted: the habit of a data sheet.
+    private static string Inverse(double si, Dimension got, Dimension wanted) =>
+        got == Dimension.Resistance && wanted == Dimension.SheetConductance && si > 0
+            ? string.Create(CultureInfo.InvariantCulture, $"; 1 over this is \"{1e3 / si:G6} mS\"")
+            : "";
 
     /// <summary>A plain number.</summary>
     public static double? Number(TomlValue value, string what, Range range, bool integer, FaultList faults)
@@ -128,7 +134,8 @@ internal static class Values
     /// <summary>A length for a message, for example "3.25 um".</summary>
     public static string Length(double metres)
     {
-        (double scale, string unit) = Math.Abs(metres) switch
+        // What rounds to 1000 of a unit is written in the next.
+        (double scale, string unit) = (Math.Abs(metres) * (1 + 1e-9)) switch
         {
             < Nothing => (double.PositiveInfinity, "um"),
             < 1e-6 => (1e-9, "nm"),

@@ -18,7 +18,10 @@ internal static partial class TomlSyntaxMessage
 
         if (NoValue().Match(message) is { Success: true } v)
         {
-            return v.Groups[1].Value == "`<eof>`" ? "the value is missing" : $"{Quoted(v.Groups[1].Value)} is no value; {Quotes}";
+            return v.Groups[1].Value == "`<eof>`" ? "the value is missing"
+                : v.Groups[1].Value.Trim('`') is { } word && word.ToUpperInvariant() is "TRUE" or "FALSE" or "YES" or "NO" or "ON" or "OFF"
+                    ? $"{Quoted(v.Groups[1].Value)} is no value; write true or false, in small letters and without quotes"
+                    : $"{Quoted(v.Groups[1].Value)} is no value; {Quotes}";
         }
 
         if (message.Contains("`=` after a key", StringComparison.Ordinal))

@@ -160,7 +160,7 @@ internal static class ToleranceAnswers
 
     private static string Scaled(double v, string unit)
     {
-        (double Size, string Prefix)[] prefixes = [(1e3, "k"), (1, ""), (1e-3, "m"), (1e-6, "u"), (1e-9, "n"), (1e-12, "p")];
+        (double Size, string Prefix)[] prefixes = [(1e3, "k"), (1, ""), (1e-3, "m"), (1e-6, "µ"), (1e-9, "n"), (1e-12, "p")];
         (double size, string prefix) = prefixes.FirstOrDefault(p => Math.Abs(v) >= p.Size * 0.9995, prefixes[^1]);
         return v == 0 ? $"0 {unit}" : Text($"{v / size:G3} {prefix}{unit}");
     }

@@ -17,7 +17,7 @@ namespace FieldSolve.Tests.FitTests;
 public class CoverageTests
 {
     private const int Draws = 200;
-    private const double Placement = 60e-9, Noise = 4e-6, CoarseSize = 1.5e-6;
+    private const double Placement = 60e-9, Noise = 4e-6, CoarseSize = 0.9e-6;
 
     private static readonly string[] Wanted = ["a", "b", "axis"];
 

@@ -76,6 +76,7 @@ internal static class FitCommand
     private static int Run(Choices choices, CancellationToken cancel) => new MeasuredRun<MeasuredVoltages, FitResult>
     {
         What = "fit",
+        DataPath = choices.Data,
         Read = device => VoltageTable.Read(choices.Data, device, choices.Noise),
         Execute = (device, data, screen) => FitRun.Execute(device, data, choices.Options, screen, cancel),
         Write = (result, screen) => FitFiles.Write(result, choices.Folder, choices.Options, choices.Pictures, screen, cancel),

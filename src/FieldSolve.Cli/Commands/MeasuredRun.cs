@@ -16,6 +16,9 @@ internal sealed record MeasuredRun<TData, TResult>
     /// <summary>"fit": for the message of a cancelled run.</summary>
     public required string What { get; init; }
 
+    /// <summary>Path of the table, for faults of the data.</summary>
+    public required string DataPath { get; init; }
+
     /// <summary>Reads the table.</summary>
     public required Func<SheetDevice, (TData? Data, IReadOnlyList<Fault> Faults)> Read { get; init; }
 
@@ -63,7 +66,7 @@ internal sealed record MeasuredRun<TData, TResult>
         {
             screen.Clear();
             (int line, int column) = e is FitException fit ? (fit.Line, fit.Column) : (1, 1);
-            Console.Error.WriteLine(new Fault(devicePath, line, column, e.Message.ReplaceLineEndings(" ")));
+            Console.Error.WriteLine(new Fault(e is FitException { IsOfData: true } ? DataPath : devicePath, line, column, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
         }
         catch (OperationCanceledException)

@@ -1,12 +1,8 @@
 using System.CommandLine;
 using FieldSolve.Cli.Output;
-using FieldSolve.Device;
-using FieldSolve.Fields;
 using FieldSolve.Measured;
-using FieldSolve.Meshing;
 using FieldSolve.Quantities;
 using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -93,61 +89,28 @@ internal static class OverlayCommand
         return command;
     }
 
-    private static int Run(Choices choices, CancellationToken cancel)
+    private static int Run(Choices choices, CancellationToken cancel) => new MeasuredRun<MeasuredMap, OverlayResult>
     {
-        if (DeviceLoading.Load(choices.Device) is not { } device)
+        What = "overlay",
+        DataPath = choices.Map,
+        Read = _ =>
         {
-            return ExitCode.WrongInput;
-        }
+            NoiseRule? noise = null;
+            if (choices.Noise is not null
+                && !NoiseRule.TryParse(choices.Noise, choices.Quantity == MapQuantity.Potential ? Dimension.Voltage : Dimension.Field, out noise, out string? error))
+            {
+                Console.Error.WriteLine("fieldsolve: --noise " + error);
+                return (null, []);
+            }
 
-        NoiseRule? noise = null;
-        if (choices.Noise is not null
-            && !NoiseRule.TryParse(choices.Noise, choices.Quantity == MapQuantity.Potential ? Dimension.Voltage : Dimension.Field, out noise, out string? error))
-        {
-            Console.Error.WriteLine("fieldsolve: --noise " + error);
-            return ExitCode.WrongInput;
-        }
-
-        (MeasuredMap? map, IReadOnlyList<Fault> faults) = MapTable.Read(choices.Map, choices.Quantity, noise);
-        foreach (Fault fault in faults)
-        {
-            Console.Error.WriteLine(fault);
-        }
-
-        if (map is null)
-        {
-            return ExitCode.WrongInput;
-        }
-
-        var screen = new Screen(choices.Quiet);
-        OverlayResult result;
-        try
-        {
-            result = OverlayRun.Execute(device, map, choices.Options, screen, cancel);
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException or FitException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(e is FitException { IsOfData: true } ? choices.Map : choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
-            return ExitCode.WrongInput;
-        }
-        catch (OperationCanceledException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine("cancelled before the overlay stood; nothing was written");
-            return ExitCode.Cancelled;
-        }
-
-        bool cancelled = OverlayFiles.Write(result, choices.Folder, choices.Options, choices.Pictures, screen, cancel);
-        screen.Clear();
-        foreach (string warning in result.Warnings)
-        {
-            Console.Error.WriteLine("warning: " + warning);
-        }
-
-        screen.Print(choices.Json ? OverlayText.Json(result, choices.Folder) : OverlayText.Plain(result, choices.Folder));
-        return cancelled ? ExitCode.Cancelled : result.Converged && result.Row.Status == Readings.RowStatus.Ok ? ExitCode.Done : ExitCode.ToleranceNotReached;
-    }
+            return MapTable.Read(choices.Map, choices.Quantity, noise);
+        },
+        Execute = (device, map, screen) => OverlayRun.Execute(device, map, choices.Options, screen, cancel),
+        Write = (result, screen) => OverlayFiles.Write(result, choices.Folder, choices.Options, choices.Pictures, screen, cancel),
+        Warnings = result => result.Warnings,
+        Summary = result => choices.Json ? OverlayText.Json(result, choices.Folder) : OverlayText.Plain(result, choices.Folder),
+        IsOk = result => result.Converged && result.Row.Status == Readings.RowStatus.Ok,
+    }.Of(choices.Device, choices.Quiet);
 
     private static double? Read(System.CommandLine.Parsing.ArgumentResult result, string name, Dimension dimension)
     {

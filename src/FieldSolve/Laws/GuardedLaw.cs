@@ -47,6 +47,9 @@ public sealed class GuardedLaw : ILawDetail
 
     void ILawDetail.RequireInside(ReadOnlySpan<double> ea, ReadOnlySpan<double> eb) => law.RequireInside(ea, eb);
 
+    /// <summary>The same law bent elsewhere.</summary>
+    internal GuardedLaw With(FieldGuard other) => new(law, other);
+
     /// <summary>The law with its guard; the law itself where it needs none.</summary>
     internal static ISheetLaw Around(ILawDetail law) =>
         GuardSearch.Find(law) is { } guard ? new GuardedLaw(law, guard) : law;

@@ -17,7 +17,7 @@ namespace FieldSolve.Tests.FitTests;
 public class CoverageTests
 {
     private const int Draws = 200;
-    private const double Placement = 60e-9, Noise = 4e-6;
+    private const double Placement = 60e-9, Noise = 4e-6, CoarseSize = 1.5e-6;
 
     private static readonly string[] Wanted = ["a", "b", "axis"];
 
@@ -31,7 +31,7 @@ public class CoverageTests
         (SheetDevice device, MeasuredVoltages layout) = Flake(folder);
         var problem = new FitProblem(device, device.Fit!.Parameters, layout, layout.Data);
         double[] truth = problem.Start;
-        FieldLevel level = FitDevices.Coarse(problem, truth, 0.5e-6);
+        FieldLevel level = FitDevices.Coarse(problem, truth, CoarseSize);
         var reference = new FitModel(problem, level, new double[layout.Data.Count]);
         double[] values = reference.Values(truth, default)!;
         var linear = new Linear(truth, values, reference.Jacobian(truth, default));
@@ -113,7 +113,7 @@ public class CoverageTests
         (SheetDevice device, MeasuredVoltages layout) = Flake(folder);
         var problem = new FitProblem(device, device.Fit!.Parameters, layout, layout.Data);
         double[] truth = problem.Start;
-        var full = new FitModel(problem, FitDevices.Coarse(problem, truth, 0.5e-6), new double[layout.Data.Count]);
+        var full = new FitModel(problem, FitDevices.Coarse(problem, truth, CoarseSize), new double[layout.Data.Count]);
         var linear = new Linear(truth, full.Values(truth, default)!, full.Jacobian(truth, default));
         int a = problem.Parameters.ToList().FindIndex(p => p.Key == "a"), covered = 0;
         var random = new Random(7);

@@ -60,6 +60,73 @@ public class FourTerminalTests
         Assert.All(result.Next, n => Assert.NotEqual(n.Plus, n.Minus));
     }
 
+    // With the axis free too. A first-order change of the conductance of a disc between points on its rim: dR = -(1/s²) integral of grad u . dS grad w, u and w the fields of the
+    // source pair and of the probe pair for s = 1. With f(z) = -(1/pi) [1/(z - source) - 1/(z - drain)] for E = conj(f), dS = diag(1, -1) gives Re f g and dS = offdiag(1, 1) gives -Im f g; an
+    // analytic function integrates to pi times its value at the centre (mean value property), f(0) g(0) = (1/source - 1/drain)(1/plus - 1/minus)/pi². Contacts at 0, 90, 180, 270°:
+    // ±2i for the two van der Pauw resistances, so an anisotropy along a contact changes neither and one at 45° changes both, in opposite ways, by 2/(pi s) for a part dS = s.
+    [Theory]
+    [InlineData(0)]
+    [InlineData(20)]
+    [InlineData(45)]
+    public void Isotropic_disc_has_no_axis_and_only_one_part_of_its_anisotropy_is_known(double axis)
+    {
+        const double s = 1e-3, current = 1e-5;
+        DeviceText text = DeviceText.Disc(0.5e-3, DeviceText.Ohmic(s, s, 0, axis)).Contacts(4, 1.15, 0.5e-3).Wiring("one", "c1", "c2", "c4 c3").Drive(current);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\nhall = true\naxis = true");
+        MeasuredVoltages data = FitDevices.Resistances(device, current, 1e-6, ("c1 c2 c4 c3", 220.6356), ("c2 c3 c1 c4", 220.6356), ("c1 c3 c2 c4", 5));
+        var problem = new FitProblem(device, device.Fit!.Parameters, data, data.Data);
+        int a = problem.Parameters.ToList().FindIndex(p => p.Key == "a"), b = problem.Parameters.ToList().FindIndex(p => p.Key == "b");
+        double[,] jacobian = new FitModel(problem, FitDevices.Coarse(problem, problem.Start), new double[3]).Jacobian(problem.Start, default);
+
+        // (a - b)/2 changes by s. A contact of half angle 0.02 is nearly a point.
+        double expected = 2 / (Math.PI * s) * current * Math.Sin(2 * axis * Math.PI / 180);
+        Assert.Equal(expected, s * (jacobian[0, a] - jacobian[0, b]), 2e-3 * current / s);
+        Assert.Equal(-expected, s * (jacobian[1, a] - jacobian[1, b]), 2e-3 * current / s);
+
+        FitResult result = FitDevices.Fit(device, data);
+        string all = string.Join("; ", result.Directions.Select(d => $"{d.SingularValue} {string.Join(' ', d.Direction)} {d.Words}"));
+        Assert.True(result.Of("a").Value is null && result.Of("b").Value is null && result.Of("axis").Value is null, all);
+        Assert.True(result.Of("hall").Value is not null, all);
+        Assert.Equal(1e-3, Math.Sqrt(result.Of("a").Ended * result.Of("b").Ended), 1e-6);
+        Assert.Contains("axis is not determined by these data", result.Directions.Select(d => d.Words));
+        Assert.Contains(
+            result.Warnings, w => w.Contains("only sqrt(a b) is determined by these data; isotropic or not, with its axis along 0 or 90 deg the sheet gives the same", StringComparison.Ordinal));
+    }
+
+    // With an axis that is known the same contacts tell a from b unless it lies along a contact.
+    [Theory]
+    [InlineData(0, false)]
+    [InlineData(45, true)]
+    public void Known_axis_decides_whether_a_symmetric_disc_tells_a_from_b(double axis, bool told)
+    {
+        DeviceText text = DeviceText.Disc(0.5e-3, DeviceText.Ohmic(1e-3, 1e-3, 0, axis)).Contacts(4, 1.15, 0.5e-3).Wiring("one", "c1", "c2", "c4 c3").Drive(1e-5);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\nhall = true");
+        MeasuredVoltages data = FitDevices.Resistances(device, 1e-5, 1e-6, ("c1 c2 c4 c3", 220.6356), ("c2 c3 c1 c4", 220.6356), ("c1 c3 c2 c4", 5));
+        FitResult result = FitDevices.Fit(device, data);
+        Assert.Equal(told, result.Of("a").Value is not null);
+        Assert.Equal(told, result.Of("b").Value is not null);
+        Assert.NotNull(result.Of("hall").Value);
+        if (told)
+        {
+            Assert.Equal(1e-3, result.Of("a").Value!.Value, 2e-6);
+        }
+    }
+
+    // Six contacts know both parts: a and b have numbers, the axis has none as they are equal. R = ln[|13| |24| / (|14| |23|)]/(pi s) for points on the rim of a disc (L. J. van der Pauw,
+    // Philips Res. Rep. 13, 1 (1958)); with chords of sqrt 3, 2 and 1 radii ln(3/2)/(pi s).
+    [Fact]
+    public void Isotropic_disc_with_six_contacts_knows_a_and_b_but_no_axis()
+    {
+        DeviceText text = DeviceText.Disc(0.5e-3, DeviceText.Ohmic(1.05e-3, 0.97e-3, 0, 10)).Contacts(6, 1.15, 0.5e-3).Wiring("one", "c1", "c2", "c4 c3").Drive(1e-5);
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\naxis = true");
+        MeasuredVoltages same = FitDevices.Resistances(
+            device, 1e-5, 1e-6, [.. Enumerable.Range(1, 6).Select(k => ($"c{k} c{(k % 6) + 1} c{((k + 2) % 6) + 1} c{((k + 1) % 6) + 1}", 1000 / Math.PI * Math.Log(1.5)))]);
+        FitResult result = FitDevices.Fit(device, same);
+        Assert.Equal(1e-3, result.Of("a").Value!.Value, 3e-6);
+        Assert.Equal(1e-3, result.Of("b").Value!.Value, 3e-6);
+        Assert.Null(result.Of("axis").Value);
+    }
+
     [Fact]
     public void Names_a_number_that_no_reading_depends_on()
     {

@@ -226,10 +226,12 @@ public static class FitRun
         IReadOnlyList<FitStart> starts, (int, int) solves, CancellationToken cancel)
     {
         IReadOnlyList<FitParameter> q = problem.Parameters;
+        (end, double? openAxis) = IsotropicEnd.Of(problem, model, task, end, cancel);
         SheetDevice fittedDevice = problem.DeviceAt(end.P);
         double largestVoltage = problem.Data.Max(d => Math.Abs(d.Value));
         double[] scales = FitScales.Of(fittedDevice, q, end.P, largestVoltage);
         IReadOnlyList<FitDirection> directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
+        directions = openAxis is { } open ? IsotropicEnd.Explain(directions, q, open) : directions;
         double[,] covariance = Identifiability.Covariance(directions, scales);
         double widen = options.Robust ? RobustFactor(task, end) : 1;
         int m = q.Count;

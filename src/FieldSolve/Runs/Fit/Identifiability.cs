@@ -15,8 +15,14 @@ internal static class Identifiability
     // Parts of a direction below this share of its largest are left out of the words.
     private const double Said = 0.15;
 
-    // Directions whose deviation exceeds this many natural scales count as without any information.
-    private const double NoInformation = 1e6;
+    // A change of one natural scale that moves all readings together by less than this, in standard deviations, is rounding.
+    private const double Unseen = 1e-6;
+
+    /// <summary>
+    /// No number is taken to be off by more than so many natural scales: a direction without any information would else carry what the triangles' irregularity, some 1e-6 of a
+    /// derivative, makes of the numbers that take no part in it.
+    /// </summary>
+    public const double NoInformation = 30;
 
     /// <summary>Directions, the best determined first.</summary>
     public static IReadOnlyList<FitDirection> Of(IReadOnlyList<FitParameter> parameters, double[,] jacobian, double[] sigma, double[] weights, double[] scales, double[] p)
@@ -76,15 +82,31 @@ internal static class Identifiability
             a[n + j, j] = parameters[j].PriorSigma is { } prior ? scales[j] / prior : 0;
         }
 
-        // Of the small square factor: as many singular values, and no matrix of n by n.
-        Svd<double> svd = a.QR(QRMethod.Thin).R.Svd();
-        double[][] directions = [.. Enumerable.Range(0, m).Select(k =>
+        // A number that nothing depends on is a direction of its own: where another is open as well, the two would be mixed by rounding.
+        int[] seen = [.. Enumerable.Range(0, m).Where(j => a.Column(j).L2Norm() > Unseen)], unseen = [.. Enumerable.Range(0, m).Except(seen)];
+        if (seen.Length == 0)
         {
-            double[] v = [.. svd.VT.Row(k)];
-            double sign = Math.Sign(v[Array.FindIndex(v, x => Math.Abs(x) == v.Max(Math.Abs))]);
-            return v.Select(x => sign * x).ToArray();
-        })];
-        return ([.. svd.S], directions);
+            return (new double[m], [.. unseen.Select(j => Along(m, [j], [1]))]);
+        }
+
+        // Of the small square factor: as many singular values, and no matrix of n by n.
+        Svd<double> svd = DenseMatrix.OfColumnVectors(seen.Select(j => a.Column(j))).QR(QRMethod.Thin).R.Svd();
+        return (
+            [.. svd.S, .. unseen.Select(_ => 0.0)],
+            [.. Enumerable.Range(0, seen.Length).Select(k => Along(m, seen, [.. svd.VT.Row(k)])), .. unseen.Select(j => Along(m, [j], [1]))]);
+    }
+
+    // A vector of all numbers with the largest part positive.
+    private static double[] Along(int count, int[] at, double[] parts)
+    {
+        double[] v = new double[count];
+        double sign = Math.Sign(parts.MaxBy(Math.Abs));
+        for (int k = 0; k < at.Length; k++)
+        {
+            v[at[k]] = sign * parts[k];
+        }
+
+        return v;
     }
 
     private static string Words(IReadOnlyList<FitParameter> parameters, double[] v, double[] scales, double[] p)

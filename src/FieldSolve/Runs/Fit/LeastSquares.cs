@@ -84,6 +84,9 @@ public static class LeastSquares
     private const double FirstDamping = 1e-3, LeastDamping = 1e-9, MostDamping = 1e8;
     private const double Factor = 5;
 
+    // A number whose largest step changes the values by less than this, in standard deviations, has a derivative of rounding alone (the axis of an isotropic sheet).
+    private const double Rounding = 1e-6;
+
     // A step that is expected to lower the sum of squares by less than this ends the fit: the numbers are then within a hundredth of their standard errors.
     private const double LeastGain = 1e-4;
 
@@ -200,7 +203,7 @@ public static class LeastSquares
             }
 
             norm[j] = Math.Sqrt(square);
-            held[j] |= (p[j] <= task.Least[j] && push < 0) || (p[j] >= task.Most[j] && push > 0) || !(norm[j] > 0);
+            held[j] |= (p[j] <= task.Least[j] && push < 0) || (p[j] >= task.Most[j] && push > 0) || !(norm[j] > 0) || norm[j] * task.LargestStep[j] < Rounding;
         }
 
         int[] free = [.. Enumerable.Range(0, m).Where(j => !held[j])];

@@ -18,9 +18,17 @@ foreach (Command command in CommandList.All())
 ParseResult parsed = root.Parse(args);
 if (parsed.Errors.Count > 0)
 {
-    foreach (var error in parsed.Errors)
+    if (args is [{ Length: > 0 } first, ..] && first[0] != '-' && root.Subcommands.All(c => c.Name != first))
     {
-        Console.Error.WriteLine("fieldsolve: " + error.Message);
+        // What follows an unknown command is not worth a line each.
+        Console.Error.WriteLine($"fieldsolve: there is no command '{first.ReplaceLineEndings(" ")}'; there are {string.Join(", ", root.Subcommands.Select(c => c.Name))}");
+    }
+    else
+    {
+        foreach (var error in parsed.Errors)
+        {
+            Console.Error.WriteLine("fieldsolve: " + error.Message);
+        }
     }
 
     Console.Error.WriteLine("Try 'fieldsolve --help'.");

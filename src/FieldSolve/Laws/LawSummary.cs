@@ -51,7 +51,7 @@ public static class LawSummary
             >= 1e3 => (1e3, "k"),
             >= 1 => (1, ""),
             >= 1e-3 => (1e-3, "m"),
-            _ => (1e-6, "u"),
+            _ => (1e-6, "µ"),
         };
         return $"{Number(value / size)} {prefix}{unit}";
     }

@@ -33,6 +33,15 @@ public sealed partial class HelpTests
         Assert.All(SampleName().Matches(example).Select(m => m.Value), file => Assert.True(File.Exists(Path.Combine(Repository.Root, file)), file));
     }
 
+    [Fact]
+    public void An_unknown_command_is_said_once_with_those_that_there_are()
+    {
+        CommandResult result = Command.Run("dirve", "disc.toml", "--out", "x");
+        Assert.Equal((2, ""), (result.Exit, result.Out));
+        Assert.StartsWith("fieldsolve: there is no command 'dirve'; there are check, ", result.ErrorLines[0], StringComparison.Ordinal);
+        Assert.Equal(2, result.ErrorLines.Count); // and where help is
+    }
+
     [Theory]
     [MemberData(nameof(Commands))]
     public void Help_and_readme_know_every_option(string name)

@@ -104,7 +104,7 @@ public class CatalogueTests
         {
             CultureInfo.CurrentCulture = new CultureInfo(string.Empty) { NumberFormat = { NumberDecimalSeparator = "," } };
             Assert.Equal(
-                "ohmic: a = 4 mS, b = 1 mS, hall = 500 uS\nthe same dK/dE at every field",
+                "ohmic: a = 4 mS, b = 1 mS, hall = 500 µS\nthe same dK/dE at every field",
                 LawSummary.Describe(Make("ohmic", new() { ["a"] = 4e-3, ["b"] = 1e-3, ["hall"] = 5e-4 })));
             string text = LawSummary.Describe(Make("quadratic", new() { ["a"] = 4e-3, ["b"] = 1e-3, ["d12"] = 2e-9 }));
             Assert.StartsWith("quadratic: a = 4 mS, b = 1 mS, d12 = 2E-09 A m/V^2\nas written up to ", text, StringComparison.Ordinal);

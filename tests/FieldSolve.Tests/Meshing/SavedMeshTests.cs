@@ -91,7 +91,8 @@ public class SavedMeshTests
     }
 
     [Theory]
-    [InlineData("", "m.vtu:1:1: ", "XML")]
+    [InlineData("", "m.vtu:1:1: ", "is empty")]
+    [InlineData("<VTKFile", "m.vtu:1:", "XML")]
     [InlineData("<VTKFile type=\"ImageData\"/>", "m.vtu:1:2: ", "unstructured grid")]
     [InlineData("<VTKFile type=\"UnstructuredGrid\">\n<Piece NumberOfPoints=\"-1\" NumberOfCells=\"1\"/></VTKFile>", "m.vtu:2:2: ", "NumberOfPoints")]
     [InlineData("<VTKFile type=\"UnstructuredGrid\"><Piece NumberOfPoints=\"3\" NumberOfCells=\"1\"><Points><DataArray type=\"Float64\" Name=\"Points\" format=\"ascii\">\n0 0 x</DataArray></Points></Piece></VTKFile>", "m.vtu:1:", "is not a number")]

@@ -72,7 +72,7 @@ public static class ToleranceReport
     private static void Settings(Html page, ToleranceResult result) => page.Table(
         "", ["setting or figure", "value"],
         [
-            ["current, with both signs", SiScale.Text(result.Current, "A")], ["samples", ReportWords.Grouped(result.Samples.Count)], ["solved in this run", ReportWords.Grouped(result.Solved)],
+            ["current, with both signs", SiScale.Text(result.Current, "A")], ["samples", ReportWords.Grouped(result.Samples.Count)],
             ["sheet law", result.Device.Law.Kind], ["causes", ReportWords.Grouped(result.Device.Tolerance!.Causes.Count)],
             ["unknowns of the finest mesh", ReportWords.Grouped(result.Unknowns.Fine)], ["unknowns of the mesh of the samples", ReportWords.Grouped(result.Unknowns.Coarse)],
             ["wanted error of a voltage, relative to the largest along voltage", SiScale.Number(result.Device.Mesh.Error)],

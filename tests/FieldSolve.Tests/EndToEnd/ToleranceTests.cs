@@ -73,7 +73,7 @@ public class ToleranceTests
         Assert.Equal(files, TempFolder.FilesIn(folder["both"]));
         Assert.Equal(
             ["budget.csv", "pictures/budget-0-deg.png", "pictures/budget-0-deg.svg", "pictures/contacts.png", "pictures/contacts.svg",
-                "pictures/samples-0-deg.png", "pictures/samples-0-deg.svg", "report.html", "run.json", "samples.csv"],
+                "pictures/device.png", "pictures/device.svg", "pictures/samples-0-deg.png", "pictures/samples-0-deg.svg", "report.html", "run.json", "samples.csv"],
             files);
         foreach (string file in files.Where(f => f != "run.json"))
         {

@@ -16,6 +16,11 @@ internal static class Command
 {
     private static readonly TimeSpan Patience = TimeSpan.FromMinutes(3);
 
+    // A shell gives what it runs in the background a SIGINT that is ignored, and children inherit that; env (GNU) takes it back and keeps the process number.
+    private static readonly bool IgnoresInterrupts = OperatingSystem.IsLinux()
+        && File.ReadLines("/proc/self/status").FirstOrDefault(l => l.StartsWith("SigIgn:", StringComparison.Ordinal)) is { } line
+        && (Convert.ToUInt64(line[7..].Trim(), 16) & 2) != 0;
+
     public static string Assembly { get; } = Path.Combine(AppContext.BaseDirectory, "FieldSolve.Cli.dll");
 
     public static CommandResult Run(params string[] arguments) => Run(arguments, null);
@@ -33,7 +38,7 @@ internal static class Command
     /// <summary>Starts it.</summary>
     public static Process Start(string[] arguments, IReadOnlyDictionary<string, string>? environment = null, string? folder = null)
     {
-        var start = new ProcessStartInfo("dotnet", [Assembly, .. arguments])
+        var start = new ProcessStartInfo(IgnoresInterrupts ? "env" : "dotnet", [.. IgnoresInterrupts ? (string[])["--default-signal=INT", "dotnet"] : [], Assembly, .. arguments])
         {
             RedirectStandardOutput = true,
             RedirectStandardError = true,

@@ -48,7 +48,7 @@ public class FitTests
         Assert.Contains("results in", one.Out, StringComparison.Ordinal);
         Assert.Equal(
             [
-                "fit-curves.csv", "fit.json", "fitted.toml", "pictures/fit-curves.png", "pictures/fit-curves.svg", "pictures/fit-residuals.png", "pictures/fit-residuals.svg",
+                "fit-curves.csv", "fit.json", "fitted.toml", "pictures/device.png", "pictures/device.svg", "pictures/fit-curves.png", "pictures/fit-curves.svg", "pictures/fit-residuals.png", "pictures/fit-residuals.svg",
                 "report.html", "run.json",
             ],
             TempFolder.FilesIn(folder["one"]));

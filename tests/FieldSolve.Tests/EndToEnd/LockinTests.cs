@@ -33,7 +33,7 @@ public class LockinTests
         }
 
         string page = File.ReadAllText(folder["out/report.html"]);
-        Assert.Contains("data:image/svg+xml;base64,", page, StringComparison.Ordinal);
+        Assert.Contains("data:image/svg+xml,", page, StringComparison.Ordinal);
         Assert.Contains("default-src 'none'", page, StringComparison.Ordinal);
     }
 

@@ -45,7 +45,7 @@ try
 }
 catch (OperationCanceledException)
 {
-    Console.Error.WriteLine("fieldsolve: cancelled before the first row was finished; nothing was written");
+    Console.Error.WriteLine("fieldsolve: cancelled before there was anything to keep; nothing was written");
     return ExitCode.Cancelled;
 }
 catch (Exception e) when (Reason(e) is not null)

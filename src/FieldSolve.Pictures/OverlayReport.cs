@@ -20,9 +20,8 @@ public static class OverlayReport
         ArgumentNullException.ThrowIfNull(pictures);
         Html page = new();
         PageShell.Begin(page, result.Device.Title, "overlay", $"{result.Measured.Path} on {result.Device.Path}, FieldSolve {RunRecord.Version}");
+        PageShell.Answer(page, Answer(result));
         page.Box("Warnings", "", result.Warnings);
-        page.Element("h2", "Verdict");
-        page.Element("p", Verdict(result));
         page.Element("h2", "Maps");
         PageShell.Comparison(page);
         ReportPage.AddStill(page, pictures);
@@ -55,20 +54,24 @@ public static class OverlayReport
         PageShell.End(page, OverlayLive.Of(result), $"SHA-256 of the device file: {result.Device.Sha256}; of the map: {result.Measured.Sha256}", path);
     }
 
-    private static string Verdict(OverlayResult result)
+    private static IEnumerable<string> Answer(OverlayResult result)
     {
-        Reading? source = result.Row.Of("source");
-        string error = source is { } s ? $" The computed map belongs to a two-terminal voltage of {ErrorText.Of(s.Value, s.Error, "V")} (numerical error)." : "";
-        string places = result.Places.Count == 0 ? "Nowhere do neighbouring points differ from the computed map by more than the noise."
-            : string.Create(CultureInfo.InvariantCulture, $"At {result.Places.Count} {(result.Places.Count == 1 ? "place" : "places")} neighbouring points differ from the computed map by more than the noise; the worst lies at ({SiScale.Text(result.Places[0].Place.X, "m", 3)}, {SiScale.Text(result.Places[0].Place.Y, "m", 3)}).");
-        return string.Create(
-            CultureInfo.InvariantCulture,
-            $"{result.Points.Count(p => p.Model is not null)} of {result.Measured.Points.Count} points lie on the sheet, matched with wiring {result.Map.Wiring} at {SiScale.Text(result.Map.Current, "A")}. The residuals have a root mean square of {SiScale.Text(result.Rms, result.Unit, 3)}; the noise is {SiScale.Text(result.Noise, result.Unit, 3)}{(result.NoiseIsEstimated ? ", estimated from the residuals themselves" : "")}. {Pattern(result)}{places}{error}");
-    }
+        yield return $"{ReportWords.Grouped(result.Points.Count(p => p.Model is not null))} of {ReportWords.Grouped(result.Measured.Points.Count)} points lie on the sheet, matched with wiring {result.Map.Wiring} at {SiScale.Text(result.Map.Current, "A")}."
+            + (result.Row.Of("source") is { } s ? $" The computed map belongs to a two-terminal voltage of {ErrorText.Of(s.Value, s.Error, "V")} (numerical error)." : "");
+        yield return $"The residuals have a root mean square of {SiScale.Text(result.Rms, result.Unit, 3)}; the noise is {SiScale.Text(result.Noise, result.Unit, 3)}{(result.NoiseIsEstimated ? ", estimated from the residuals themselves" : "")}.";
+        if (result.Patch is { } patch)
+        {
+            yield return $"A patch of other conductance lies near ({SiScale.Text(patch.X.Value, "m", 3)}, {SiScale.Text(patch.Y.Value, "m", 3)}){(patch.Radius > 0 ? $" and does what a dead disc of radius {SiScale.Text(patch.Radius, "m", 3)} would" : "")}; the residuals are those of the sheet without it.";
+        }
 
-    private static string Pattern(OverlayResult result) =>
-        (result.Patch is { } p ? string.Create(CultureInfo.InvariantCulture, $"A patch of other conductance lies near ({SiScale.Text(p.X.Value, "m", 3)}, {SiScale.Text(p.Y.Value, "m", 3)}){(p.Radius > 0 ? $" and does what a dead disc of radius {SiScale.Text(p.Radius, "m", 3)} would" : "")}; the residuals are those of the sheet without it. ") : "")
-        + (result.IsStructured ? string.Create(CultureInfo.InvariantCulture, $"The misfit has a pattern that noise does not make; {100 * result.Rejected:F0} % of the points count nothing. ") : "");
+        if (result.IsStructured)
+        {
+            yield return string.Create(CultureInfo.InvariantCulture, $"The misfit has a pattern that noise does not make; {100 * result.Rejected:F0} % of the points count nothing.");
+        }
+
+        yield return result.Places.Count == 0 ? "Nowhere do neighbouring points differ from the computed map by more than the noise."
+            : string.Create(CultureInfo.InvariantCulture, $"At {result.Places.Count} {(result.Places.Count == 1 ? "place" : "places")} neighbouring points differ from the computed map by more than the noise; the worst lies at ({SiScale.Text(result.Places[0].Place.X, "m", 3)}, {SiScale.Text(result.Places[0].Place.Y, "m", 3)}).");
+    }
 
     private static string[] Row(string name, Registered r, string unit, double scale)
     {

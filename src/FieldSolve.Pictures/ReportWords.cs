@@ -86,7 +86,7 @@ internal static class ReportWords
         string text = device.Shape switch
         {
             "hall_bar" => "The sheet is a Hall bar",
-            "outline" => "The sheet has the outline of a file",
+            "outline" => "The sheet is a polygon",
             _ => $"The sheet is a {device.Shape}",
         };
         List<string> details = [];

@@ -58,8 +58,8 @@ public static class ToleranceReport
         PageShell.End(page, data.Charts.Count > 0 || data.Share is not null ? data : null, $"SHA-256 of the device file: {device.Sha256}", path);
     }
 
-    // Answers are also said on a terminal, which may know neither the micro sign nor a true minus.
-    private static string Printed(string answer) => Regex.Replace(Regex.Replace(answer, @"(?<=\d )u(?=[A-Za-z])", "µ"), @"(?<=[\s(])-(?=\d)", "−");
+    // Answers are also said on a terminal, without a true minus.
+    private static string Printed(string answer) => Regex.Replace(answer, @"(?<=[\s(])-(?=\d)", "−");
 
     private static string Accuracy(ToleranceResult result)
     {

@@ -207,6 +207,26 @@ public sealed class OutlinePageTests(ReportFixture shared) : LayoutPageBase(shar
         Assert.Matches(new Regex("outline = \\{ file = \"traced.geojson\", unit = \"um\" \\}   # from a drawing"), Session.State.Text.Text);
         await Accurate(page);
         Assert.Equal(Along(device).Value, await Shown(page, "along"));
+
+        // The tab keeps the trace when the page is loaded anew, and where the picture was.
+        double before = await page.EvaluateAsync<double>("fieldsolve.app.stage.picture.pixel");
+        string traced = await page.EvaluateAsync<string>("JSON.stringify(fieldsolve.app.stage.trace.request)");
+        await page.ReloadAsync();
+        await page.WaitForFunctionAsync("() => window.fieldsolve?.app.stage.trace.shapes.length === 3");
+        Assert.Equal(traced, await page.EvaluateAsync<string>("JSON.stringify(fieldsolve.app.stage.trace.request)"));
+        Assert.Equal("traced.geojson", await page.InputValueAsync("[data-do='trace-name']"));
+        Assert.True(await page.IsEnabledAsync("[data-do='trace-use']"));
+        await page.SetInputFilesAsync("[data-do='picture-file']", new FilePayload { Name = "flake.jpg", MimeType = "image/jpeg", Buffer = Convert.FromBase64String(made.Split(',')[1]) });
+        await page.WaitForFunctionAsync("() => fieldsolve.app.stage.picture.there");
+        Assert.Equal(before, await page.EvaluateAsync<double>("fieldsolve.app.stage.picture.pixel"));
+        for (int left = 3; left > 0; left--)
+        {
+            await page.Locator(".trace-list button").First.ClickAsync();
+        }
+
+        await page.ReloadAsync();
+        await Accurate(page);
+        Assert.Equal(0, await page.EvaluateAsync<int>("fieldsolve.app.stage.trace.shapes.length"));
         Assert.Empty(Complaints);
     }
 }

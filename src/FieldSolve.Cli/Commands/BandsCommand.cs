@@ -15,7 +15,7 @@ internal static class BandsCommand
         Option<string?> folder = SharedOptions.Out();
         folder.Description = "Folder for the results; made when missing. Default: <bands>-bands in the current folder.";
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
-        var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures; profile.csv, law.toml and run.json only." };
+        var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; profile.csv, law.toml and run.json only." };
         var command = new Command(
             "bands",
             "A sheet law and the conductance against direction, from a band model or a measured profile.\n\n"

@@ -72,16 +72,13 @@ internal sealed record MeasuredRun<TData, TResult>
         catch (OperationCanceledException)
         {
             screen.Clear();
-            Console.Error.WriteLine($"cancelled before the {What} stood; nothing was written");
+            Console.Error.WriteLine($"fieldsolve: cancelled before the {What} stood; nothing was written");
             return ExitCode.Cancelled;
         }
 
         bool cancelled = Write(result, screen);
         screen.Clear();
-        foreach (string warning in Warnings(result))
-        {
-            Console.Error.WriteLine("warning: " + warning);
-        }
+        RunManners.Say([], Warnings(result));
 
         screen.Print(Summary(result));
         return cancelled ? ExitCode.Cancelled : IsOk(result) ? ExitCode.Done : ExitCode.ToleranceNotReached;

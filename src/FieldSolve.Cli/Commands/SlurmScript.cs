@@ -16,13 +16,14 @@ internal static class SlurmScript
             + (options.Wanted is { } w ? FormattableString.Invariant($" --wanted {Quoted($"{w.ToString("R", CultureInfo.InvariantCulture)} V")}") : "");
         WholeFile.WriteText(array, string.Create(CultureInfo.InvariantCulture, $"""
             #!/bin/bash
-            # One task per shard of a tolerance run; a task solves every {shards}th sample. Submit from this folder's parent as written below.
-            # A task that was killed goes on where it was when it is submitted again: sbatch --array=K {array}
+            # One task per shard of a tolerance run; a task solves one sample in {shards}. Submit from the folder in which --write-slurm was given:
+            #   sbatch {Quoted(array)}
+            # A task that was killed goes on where it was when it is submitted again: sbatch --array=K {Quoted(array)}
             # FIELDSOLVE names the program where it is not called fieldsolve.
             #SBATCH --job-name=tolerance
             #SBATCH --array=1-{shards}
             #SBATCH --cpus-per-task=2
-            #SBATCH --output={folder}/shard-%a.log
+            #SBATCH --output={Quoted(folder)}/shard-%a.log
             set -eu
             export DOTNET_PROCESSOR_COUNT="${"{"}SLURM_CPUS_PER_TASK:-1{"}"}"
             exec ${"{"}FIELDSOLVE:-fieldsolve{"}"} tolerance {Quoted(device)} --shard "$SLURM_ARRAY_TASK_ID/{shards}" --samples {options.Samples} --seed {options.Seed} --out {Quoted(folder)}/"shard-$SLURM_ARRAY_TASK_ID"
@@ -32,7 +33,7 @@ internal static class SlurmScript
             #!/bin/bash
             # Joins the shards once all have ended well.
             #SBATCH --job-name=gather
-            #SBATCH --output={folder}/gather.log
+            #SBATCH --output={Quoted(folder)}/gather.log
             set -eu
             exec ${"{"}FIELDSOLVE:-fieldsolve{"}"} gather {Quoted(folder)}/shard-*/ --device {Quoted(device)} --out {Quoted(folder)}/result{extra}
 

@@ -18,7 +18,6 @@ namespace FieldSolve.Cli.Open;
 /// <summary>Serves the page of one session on 127.0.0.1 at a free port.</summary>
 internal sealed class OpenServer : IAsyncDisposable
 {
-
     private readonly EditSession session;
     private readonly WebApplication app;
     private readonly PageGuard guard;
@@ -197,7 +196,7 @@ internal sealed class OpenServer : IAsyncDisposable
                 await Send(context, outcome == SaveOutcome.Saved ? 200 : 409, "application/json", JsonSerializer.Serialize(new { outcome = outcome.ToString() }));
                 break;
             case "trace":
-                TraceRequest trace = await context.Request.ReadFromJsonAsync<TraceRequest>(EditJson.Options, context.RequestAborted) ?? throw new JsonException();
+                TraceRequest trace = await RequestBody.Read<TraceRequest>(context);
                 SaveOutcome traced = LayoutTrace.Save(session.State, trace.Name ?? "", trace.Read(), trace.Overwrite);
                 if (traced == SaveOutcome.Saved && session.State.Text.Pieces.Any(p => p.Value == trace.Name) && session.ReadFiles() is { Count: > 0 } faults)
                 {

@@ -19,7 +19,11 @@ internal static class BandsFiles
             screen.Report(new("drawing pictures", 0, 0));
             try
             {
-                clock.Time("pictures", () => { BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel); });
+                clock.Time("pictures", () =>
+                {
+                    IReadOnlyList<PictureFile> drawn = BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+                    BandsReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+                });
             }
             catch (OperationCanceledException)
             {

@@ -37,5 +37,5 @@ internal static class MeshText
         ["area_m2"] = quality.Area,
         ["levels"] = levels.Count,
         ["unknowns"] = levels.Count > 0 ? levels[^1].Unknowns : null,
-    }.ToJsonString(new() { WriteIndented = true });
+    }.ToJsonString(new() { WriteIndented = true }) + "\n";
 }

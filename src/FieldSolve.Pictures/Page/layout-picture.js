@@ -46,6 +46,7 @@ class PicturePanel {
       html('div', { class: 'bar' }, this.kinds, this.close, this.back), this.list,
       html('div', { class: 'bar' }, html('label', { class: 'choice' }, html('span', null, 'File'), this.fileName), this.saveButton, this.useButton, this.alone), this.message, this.note);
     host.append(this.box);
+    addEventListener('pagehide', () => this.#keep());
     this.show();
   }
 
@@ -72,7 +73,13 @@ class PicturePanel {
       return;
     }
     try {
-      await this.stage.picture.load(file);
+      const { picture } = this.stage;
+      await picture.load(file);
+      // The picture that the kept trace belongs to goes where it was.
+      if (this.placed && ['name', 'width', 'height'].every(k => this.placed[k] === picture[k])) {
+        Object.assign(picture, this.placed);
+      }
+      this.placed = null;
       this.#say('');
     } catch (e) {
       this.#say(e.message);
@@ -80,6 +87,48 @@ class PicturePanel {
     this.file.value = '';
     this.show();
     this.stage.draw();
+  }
+
+  /** What was traced here before the page was loaded anew. It is kept in this tab alone, for each device file; of the picture only its place is. */
+  restore(device) {
+    const first = !this.device, { trace } = this.stage;
+    this.device = device;
+    if (!first || trace.shapes.length || trace.open) {
+      return;
+    }
+    let kept = null;
+    try {
+      kept = JSON.parse(sessionStorage.getItem(`trace of ${device}`));
+    } catch {
+      // Storage is switched off, or holds something else: nothing is kept then.
+    }
+    if (kept) {
+      Object.assign(trace, { shapes: kept.shapes, open: kept.open, kind: kept.kind });
+      Object.assign(this, { saved: kept.saved, savedText: kept.savedText, placed: kept.placed });
+      this.fileName.value = kept.file;
+      this.box.open = true;
+      this.note.textContent = `Traced before this page was loaded anew.${kept.placed ? ` Choose ${kept.placed.name} again to see it where it was.` : ''}`;
+      trace.changed();
+    }
+  }
+
+  #keep() {
+    const { picture, trace } = this.stage;
+    if (!this.device) {
+      return;
+    }
+    const place = ({ name, width, height, cx, cy, pixel, angle, marks }) => ({ name, width, height, cx, cy, pixel, angle, marks });
+    try {
+      if (trace.shapes.length || trace.open) {
+        sessionStorage.setItem(`trace of ${this.device}`, JSON.stringify({
+          shapes: trace.shapes, open: trace.open, kind: trace.kind, saved: this.saved, savedText: this.savedText, file: this.fileName.value, placed: picture.there ? place(picture) : this.placed ?? null,
+        }));
+      } else {
+        sessionStorage.removeItem(`trace of ${this.device}`);
+      }
+    } catch {
+      // As above.
+    }
   }
 
   #say(text) {
@@ -156,6 +205,7 @@ class PicturePanel {
     }));
     this.saveButton.disabled = !trace.shapes.length;
     this.#fresh();
+    this.#keep();
   }
 
   // A saved trace can be used while it is what is on the page.

@@ -4,7 +4,9 @@
 function plusMinus(value, error, unit) {
   const scale = scaleFor(Math.max(Math.abs(value), Math.abs(error)), unit), f = scale.factor;
   const places = error > 0 ? Math.max(0, Math.min(9, 1 - Math.floor(Math.log10(error * f)))) : 4;
-  return `${(value * f).toFixed(places).replace('-', '−')} ±\u00A0${(error * f).toFixed(places)}\u00A0${scale.unit}`;
+  const text = (value * f).toFixed(places);
+  // No minus before what rounds to zero.
+  return `${(Number(text) === 0 ? text.replace('-', '') : text).replace('-', '−')} ±\u00A0${(error * f).toFixed(places)}\u00A0${scale.unit}`;
 }
 
 class LayoutReadings {
@@ -48,7 +50,7 @@ class LayoutReadings {
     this.host.replaceChildren(
       html('div', { class: 'wide' }, html('table', { class: 'readings' }, html('caption', null, `${wiring} at ${quantity(row.current, 'A')}; errors are those of the numerics.${reference ? ` Δ is the change from the pinned reference${reference.current === row.current ? '' : `, which was at ${quantity(reference.current, 'A')}`}.` : ''}${status}`), html('thead', null, html('tr', null, ...head.map(h => html('th', { scope: 'col' }, h)))), body)));
     if (answer.cautions?.length) {
-      this.host.append(html('details', { class: 'cautions' }, html('summary', null, `${answer.cautions.length} caution${answer.cautions.length > 1 ? 's' : ''} and warnings`), html('ul', null, ...answer.cautions.map(c => html('li', null, c)))));
+      this.host.append(html('details', { class: 'cautions' }, html('summary', null, answer.cautions.length > 1 ? `${answer.cautions.length} cautions and warnings` : '1 caution or warning'), html('ul', null, ...answer.cautions.map(c => html('li', null, c)))));
     }
   }
 

@@ -1,4 +1,5 @@
 using System.Globalization;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Lockin;
@@ -15,21 +16,21 @@ internal static class LockinWarnings
             {
                 HarmonicReading worst = left.Readings.Where(r => r.Status == RowStatus.OutsideLaw).MaxBy(r => Math.Abs(r.GuardShare))!;
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' leaves its law from {left.CurrentRms:G4} A RMS on: at ({exit.X:G4}, {exit.Y:G4}) m the field reaches {exit.Field:G3} V/m, beyond {exit.From:G3} V/m where the law is guarded (zone of radius {exit.Radius:G3} m), and that moves harmonic {worst.Harmonic} of '{worst.Pair}' by more than its wanted error. Give the law a field_limit, the contact a resistance, or drive less."));
+                    $"Wiring '{wiring.Key}' leaves its law from {SiText.Of(left.CurrentRms, "A", 4)} RMS on: at {SiText.Place(exit.X, exit.Y)} the field reaches {SiText.Of(exit.Field, "V/m")}, beyond {SiText.Of(exit.From, "V/m")} where the law is guarded (zone of radius {SiText.Of(exit.Radius, "m")}), and that moves harmonic {worst.Harmonic} of '{worst.Pair}' by more than its wanted error. Give the law a field_limit, the contact a resistance, or drive less."));
             }
 
             if (First(wiring, RowStatus.NotConverged) is { } failed)
             {
                 string why = refusals.TryGetValue(wiring.Key, out string? r) ? " " + r : "";
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' has no solution from {failed.CurrentRms:G4} A RMS{At(failed)} on: the iteration did not converge.{why} The sheet may not be able to carry the peak current under its law; drive less or extend the law."));
+                    $"Wiring '{wiring.Key}' has no solution from {SiText.Of(failed.CurrentRms, "A", 4)} RMS{At(failed)} on: the iteration did not converge.{why} The sheet may not be able to carry the peak current under its law; drive less or extend the law."));
             }
 
             if (wiring.Where(p => p.Readings.Any(r => r.Status == RowStatus.ErrorAboveWanted)).MinBy(p => p.CurrentRms) is { } coarse)
             {
                 HarmonicReading worst = coarse.Readings.Where(r => r.Status == RowStatus.ErrorAboveWanted).MaxBy(r => r.Error)!;
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {coarse.CurrentRms:G4} A RMS{At(coarse)}; error bar {worst.Error:G3} V in harmonic {worst.Harmonic} of '{worst.Pair}'). Ask for a smaller [mesh] error or even_error, raise max_unknowns, or accept the error bars as they stand."));
+                    $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {SiText.Of(coarse.CurrentRms, "A", 4)} RMS{At(coarse)}; error bar {SiText.Of(worst.Error, "V")} in harmonic {worst.Harmonic} of '{worst.Pair}'). Ask for a smaller [mesh] error or even_error, raise max_unknowns, or accept the error bars as they stand."));
             }
         }
 
@@ -38,7 +39,7 @@ internal static class LockinWarnings
 
     private static LockinPoint? First(IEnumerable<LockinPoint> points, RowStatus status) => points.Where(p => p.Status == status).MinBy(p => p.CurrentRms);
 
-    private static string At(LockinPoint point) => point.Frequency is { } f ? Text($" and {f:G4} Hz") : "";
+    private static string At(LockinPoint point) => point.Frequency is { } f ? Text($" and {SiText.Of(f, "Hz", 4)}") : "";
 
     private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
 }

@@ -25,6 +25,7 @@ internal sealed class DataTable
     private readonly Dictionary<string, (int Index, Unit Unit)> columns = new(StringComparer.Ordinal);
 
     private char separator = ',';
+    private bool commaTold;
 
     private DataTable(FaultList faults) => this.faults = faults;
 
@@ -98,6 +99,7 @@ internal sealed class DataTable
     {
         var table = new DataTable(faults);
         DataCell[]? header = null;
+        SortedDictionary<int, (Place First, int Rows)> odd = [];
         int line = 0;
         foreach (ReadOnlySpan<char> raw in text.AsSpan().TrimStart('\uFEFF').EnumerateLines())
         {
@@ -125,12 +127,21 @@ internal sealed class DataTable
             }
             else if (cells.Length != header.Length)
             {
-                faults.Add(new(line, cells[^1].Column), string.Create(CultureInfo.InvariantCulture, $"this row has {cells.Length} cells; the header in line {table.HeaderLine} has {header.Length}"));
+                (Place first, int rows) = odd.GetValueOrDefault(cells.Length, (new(line, cells[^1].Column), 0));
+                odd[cells.Length] = (first, rows + 1);
             }
             else
             {
                 table.rows.Add(cells);
             }
+        }
+
+        // One message for all rows that share a mistake, as a file written with decimal commas does.
+        foreach ((int cells, (Place first, int rows)) in odd)
+        {
+            string others = rows > 1 ? string.Create(CultureInfo.InvariantCulture, $" (and so have {rows - 1} more rows)") : "";
+            string comma = table.separator == ',' && cells > header!.Length && cells <= 2 * header.Length ? "; where commas part the cells a number takes a decimal point" : "";
+            faults.Add(first, string.Create(CultureInfo.InvariantCulture, $"this row has {cells} cells{others}; the header in line {table.HeaderLine} has {header!.Length}{comma}"));
         }
 
         if (header is null)
@@ -166,7 +177,13 @@ internal sealed class DataTable
 
         if (!double.TryParse(cell.Text.Replace('\u2212', '-'), NumberStyles.Float, CultureInfo.InvariantCulture, out double value) || !double.IsFinite(value))
         {
-            string why = separator != ',' && cell.Text.Contains(',') ? "; write a decimal point" : cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
+            if (HasDecimalComma(cell.Text))
+            {
+                TellComma(cell, column);
+                return null;
+            }
+
+            string why = cell.Text.Any(char.IsLetter) && !cell.Text.Equals("nan", StringComparison.OrdinalIgnoreCase) ? "; the unit stands in the header" : "";
             faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is no finite number ('{column}'){why}");
             return null;
         }
@@ -179,6 +196,23 @@ internal sealed class DataTable
         }
 
         return si;
+    }
+
+    private static bool HasDecimalComma(string text) =>
+        text.Count(c => c == ',') == 1 && double.TryParse(text.Replace(',', '.').Replace('\u2212', '-'), NumberStyles.Float, CultureInfo.InvariantCulture, out _);
+
+    // Once for the whole table: such files have one in every row.
+    private void TellComma(DataCell cell, string column)
+    {
+        if (commaTold)
+        {
+            return;
+        }
+
+        commaTold = true;
+        int others = rows.Sum(r => r.Count(c => HasDecimalComma(c.Text))) - 1;
+        string also = others > 0 ? string.Create(CultureInfo.InvariantCulture, $", here and in the {(others == 1 ? "other cell that has" : $"{others} other cells that have")} a decimal comma") : "";
+        faults.Add(new(cell.Line, cell.Column), $"'{Values.Short(cell.Text)}' is no finite number ('{column}'); write a decimal point{also}");
     }
 
     private bool Header(DataCell[] cells, IReadOnlyList<DataColumn> known)

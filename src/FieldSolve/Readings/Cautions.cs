@@ -1,6 +1,7 @@
 using System.Globalization;
 using FieldSolve.Device;
 using FieldSolve.Geometry;
+using FieldSolve.Quantities;
 
 namespace FieldSolve.Readings;
 
@@ -44,7 +45,7 @@ public static class Cautions
         if (worst is not null && Math.Abs(worst.Of("source")!.Value) > limit)
         {
             list.Add(Text(
-                $"Hazardous voltage: the source reaches {Math.Abs(worst.Of("source")!.Value):G3} V in wiring '{worst.Wiring}', above the touch-safe limit of {limit:G3} V {(ac ? "RMS AC" : "DC")} (IEC 61010-1, dry conditions). {Defer}"));
+                $"Hazardous voltage: the source reaches {SiText.Of(Math.Abs(worst.Of("source")!.Value), "V")} in wiring '{worst.Wiring}', above the touch-safe limit of {limit:G3} V {(ac ? "RMS AC" : "DC")} (IEC 61010-1, dry conditions). {Defer}"));
         }
     }
 
@@ -53,15 +54,15 @@ public static class Cautions
         CurveRow? current = rows.MaxBy(r => r.PeakSheetCurrent), power = rows.MaxBy(r => r.PeakPower);
         if (current is not null && current.PeakSheetCurrent > device.Caution.SheetCurrentDensity)
         {
-            string bulk = device.Thickness is { } t ? Text($" ({current.PeakSheetCurrent / t:G3} A/m² through its thickness)") : "";
+            string bulk = device.Thickness is { } t ? Text($" ({SiText.Of(current.PeakSheetCurrent / t, "A/m²")} through its thickness)") : "";
             list.Add(Text(
-                $"The sheet may be destroyed: the sheet current density peaks at {current.PeakSheetCurrent:G3} A/m{bulk} in wiring '{current.Wiring}', above {device.Caution.SheetCurrentDensity:G3} A/m, where thin flakes commonly fail (common practice, no source; set it in [caution])."));
+                $"The sheet may be destroyed: the sheet current density peaks at {SiText.Of(current.PeakSheetCurrent, "A/m")}{bulk} in wiring '{current.Wiring}', above {SiText.Of(device.Caution.SheetCurrentDensity, "A/m")}, where thin flakes commonly fail (common practice, no source; set it in [caution])."));
         }
 
         if (power is not null && power.PeakPower > device.Caution.PowerDensity)
         {
             list.Add(Text(
-                $"The device may burn: the power density peaks at {power.PeakPower:G3} W/m² in wiring '{power.Wiring}', above {device.Caution.PowerDensity:G3} W/m², where thin flakes commonly burn (common practice, no source; set it in [caution]). Keep anything that can catch fire away and follow local rules."));
+                $"The device may burn: the power density peaks at {SiText.Of(power.PeakPower, "W/m²")} in wiring '{power.Wiring}', above {SiText.Of(device.Caution.PowerDensity, "W/m²")}, where thin flakes commonly burn (common practice, no source; set it in [caution]). Keep anything that can catch fire away and follow local rules."));
         }
     }
 
@@ -79,7 +80,7 @@ public static class Cautions
         {
             string what = smallest.Contact >= 0 ? $"contact '{device.Contacts[smallest.Contact].Name}'" : "a stretch of the edge";
             list.Add(Text(
-                $"A local law is in doubt: the smallest feature ({what}, {size:G3} m) is under ten mean free paths ({path:G3} m each); carriers may cross it without scattering."));
+                $"A local law is in doubt: the smallest feature ({what}, {SiText.Of(size, "m")}) is under ten mean free paths ({SiText.Of(path, "m")} each); carriers may cross it without scattering."));
         }
     }
 

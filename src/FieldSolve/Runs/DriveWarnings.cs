@@ -1,4 +1,5 @@
 using System.Globalization;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -14,21 +15,21 @@ internal static class DriveWarnings
             if (First(wiring, RowStatus.OutsideLaw) is { Exit: { } exit } left)
             {
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' leaves its law from {left.Current:G4} A on: at ({exit.X:G4}, {exit.Y:G4}) m the field reaches {exit.Field:G3} V/m, beyond {exit.From:G3} V/m where the law is guarded (zone of radius {exit.Radius:G3} m), and that moves a reading by more than its wanted error. Give the law a field_limit, the contact a resistance, or drive less."));
+                    $"Wiring '{wiring.Key}' leaves its law from {SiText.Of(left.Current, "A", 4)} on: at {SiText.Place(exit.X, exit.Y)} the field reaches {SiText.Of(exit.Field, "V/m")}, beyond {SiText.Of(exit.From, "V/m")} where the law is guarded (zone of radius {SiText.Of(exit.Radius, "m")}), and that moves a reading by more than its wanted error. Give the law a field_limit, the contact a resistance, or drive less."));
             }
 
             if (First(wiring, RowStatus.NotConverged) is { } failed)
             {
                 string why = refusals.TryGetValue(wiring.Key, out string? r) ? " " + r : "";
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' has no solution from {failed.Current:G4} A on: the iteration did not converge.{why} The sheet may not be able to carry this current under its law; drive less or extend the law."));
+                    $"Wiring '{wiring.Key}' has no solution from {SiText.Of(failed.Current, "A", 4)} on: the iteration did not converge.{why} The sheet may not be able to carry this current under its law; drive less or extend the law."));
             }
 
             if (First(wiring, RowStatus.ErrorAboveWanted) is { } coarse)
             {
                 Reading worst = coarse.Readings.MaxBy(r => r.Error)!;
                 list.Add(Text(
-                    $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {coarse.Current:G4} A; largest error bar {worst.Error:G3} V in '{worst.Pair}'). Raise [mesh] max_unknowns, or accept the error bars as they stand."));
+                    $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {SiText.Of(coarse.Current, "A", 4)}; largest error bar {SiText.Of(worst.Error, "V")} in '{worst.Pair}'). Raise [mesh] max_unknowns, or accept the error bars as they stand."));
             }
         }
 

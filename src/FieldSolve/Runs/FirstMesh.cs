@@ -1,5 +1,6 @@
 using FieldSolve.Device;
 using FieldSolve.Meshing;
+using FieldSolve.Quantities;
 
 namespace FieldSolve.Runs;
 
@@ -41,7 +42,7 @@ internal static class FirstMesh
             int corners = device.Domain.Edges.Count(edge => edge.IsRim);
             throw new MeshException(
                 FormattableString.Invariant(
-                    $"The rim has {corners} edges, down to {device.Domain.Edges.Where(edge => edge.IsRim).Min(edge => edge.Curve.Length):G3} m long; even the coarsest mesh along them has more than {(int)(last * MeshRefinement.UnknownsPerCoarseTriangle / 1e4) * 1e4:F0} unknowns. Leave out corners that do not matter, or raise [mesh] max_unknowns."),
+                    $"The rim has {corners} edges, down to {SiText.Of(device.Domain.Edges.Where(edge => edge.IsRim).Min(edge => edge.Curve.Length), "m")} long; even the coarsest mesh along them has more than {(int)(last * MeshRefinement.UnknownsPerCoarseTriangle / 1e4) * 1e4:F0} unknowns. Leave out corners that do not matter, or raise [mesh] max_unknowns."),
                 e);
         }
 

@@ -153,6 +153,15 @@ public sealed class EditableToml
             return new(Text[..(braces.Start + 1)] + kept + comma + line + (inside.Length > kept.Length ? inside[kept.Length..] : " ") + Text[close..]);
         }
 
+        // A table written by dotted keys, as in outline.file = "…", gets another of them.
+        if (pieces.LastOrDefault(p => p.KeyStart < p.Start && IsChild(p.Path, parent)) is { } dotted)
+        {
+            string written = Text[dotted.KeyStart..Text.IndexOf('=', dotted.KeyStart)];
+            string more = string.Concat(written.AsSpan(0, written.LastIndexOf('.') + 1), line);
+            int behind = BeginsLine(dotted) ? LineEnd(dotted.End) : dotted.End;
+            return new(Text[..behind] + (BeginsLine(dotted) ? newLine : ", ") + more + Text[behind..]);
+        }
+
         return parent.Length == 0
             ? new(line + newLine + Text)
             : parent.Contains('[', StringComparison.Ordinal) || parent.Contains('.', StringComparison.Ordinal)
@@ -161,7 +170,7 @@ public sealed class EditableToml
     }
 
     /// <summary>The text without a key, or without a whole table; the line goes with its comment.</summary>
-    /// <param name="path">Path of a key under a header or in braces, or of a table with a header.</param>
+    /// <param name="path">Path of a key under a header or in braces, or of a table with a header or of dotted keys.</param>
     /// <exception cref="LayoutEditException">There is no such key or table, or it is written inside a list.</exception>
     public EditableToml Without(string path)
     {
@@ -178,18 +187,30 @@ public sealed class EditableToml
 
         if (Find(path) is not { } piece)
         {
-            throw new LayoutEditException($"the device file has no '{path}'");
+            string prefix = path + ".";
+            EditableToml rest = this;
+            while (rest.pieces.FirstOrDefault(p => p.Path.StartsWith(prefix, StringComparison.Ordinal)) is { } dotted)
+            {
+                rest = rest.Without(dotted.Path);
+            }
+
+            return ReferenceEquals(rest, this) ? throw new LayoutEditException($"the device file has no '{path}'") : rest;
         }
 
-        if (Text[LineStart(piece.KeyStart)..piece.KeyStart].Trim().Length > 0)
+        if (!BeginsLine(piece))
         {
-            return Find(path[..Math.Max(0, path.LastIndexOf('.'))]) is { Kind: "table" }
+            return pieces.LastOrDefault(p => p.Kind is "table" or "list" && p.Start < piece.KeyStart && piece.End < p.End) is { Kind: "table" }
                 ? WithoutInBraces(piece)
                 : throw new LayoutEditException($"'{path}' is written inside a list; take it out of the file by hand");
         }
 
         return new(Text[..LineStart(piece.KeyStart)] + Text[AfterLine(LineEnd(piece.End))..]);
     }
+
+    private bool BeginsLine(TomlPiece piece) => Text.AsSpan(LineStart(piece.KeyStart), piece.KeyStart - LineStart(piece.KeyStart)).IsWhiteSpace();
+
+    private static bool IsChild(string path, string parent) =>
+        path.Length > parent.Length + 1 && path.StartsWith(parent, StringComparison.Ordinal) && path[parent.Length] == '.' && path.AsSpan(parent.Length + 1).IndexOfAny('.', '[') < 0;
 
     // With the comma that follows, or else with the one before.
     private EditableToml WithoutInBraces(TomlPiece piece)

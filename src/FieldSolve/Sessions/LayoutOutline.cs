@@ -71,7 +71,8 @@ public static class LayoutOutline
             return text.With("sheet.outline", $"{{ unit = {EditableToml.Quoted(unit)}, corners = {rings[0]}{(rings.Length > 1 ? $", holes = {holes}" : "")} }}");
         }
 
-        text = text.Without("sheet.outline.file").With(Rim, rings[0]);
+        // Under a header of its own, or by dotted keys: these need the old key as their neighbour until the new one stands.
+        text = text.With(Rim, rings[0]).Without("sheet.outline.file");
         return rings.Length > 1 ? text.With(Holes, holes) : text;
     }
 

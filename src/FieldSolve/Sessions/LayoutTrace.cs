@@ -96,6 +96,7 @@ public static class LayoutTrace
             return SaveOutcome.Exists;
         }
 
+        WholeFile.RemoveLeftovers(target);
         WholeFile.WriteText(target, text);
         return SaveOutcome.Saved;
     }
@@ -129,8 +130,9 @@ public static class LayoutTrace
         string file = EditableToml.Quoted(name);
         if (polygons.Any(p => p.Name == OutlineName))
         {
-            text = device.Shape == "outline" && text.Find("sheet.outline") is null ? text.Without("sheet.outline") : text;
-            text = (device.Shape == "outline" ? text : text.Without("sheet." + device.Shape)).With("sheet.outline", $"{{ file = {file}, unit = \"{Unit}\" }}");
+            // Its own braces are filled anew; a header or dotted keys go.
+            text = device.Shape == "outline" && text.Find("sheet.outline") is not null ? text : text.Without("sheet." + device.Shape);
+            text = text.With("sheet.outline", $"{{ file = {file}, unit = \"{Unit}\" }}");
         }
 
         string[] pads = [.. polygons.Select(p => p.Name).OfType<string>().Where(n => n != OutlineName)];
@@ -182,7 +184,7 @@ public static class LayoutTrace
         Outline outline = new([.. rings.Select(r => OutlinePolygons.Segments(r.Corners))]);
         return outline.Validate() is [var problem, ..]
             ? throw new LayoutEditException(string.Create(
-                CultureInfo.InvariantCulture, $"{what}: {problem.Message}, at ({problem.At.X / Micrometre:0.###}, {problem.At.Y / Micrometre:0.###}) um"))
+                CultureInfo.InvariantCulture, $"{what}: {problem.Message}, at ({problem.At.X / Micrometre:0.###}, {problem.At.Y / Micrometre:0.###}) µm"))
             : outline;
     }
 

@@ -19,7 +19,7 @@ public class BandsTests
             Assert.True(JsonDocument.Parse(result.Out).RootElement.GetProperty("law").GetProperty("a_S").GetDouble() > 0);
             IReadOnlyList<string> files = TempFolder.FilesIn(one);
             Assert.Equal(
-                [.. pictures.SelectMany(p => new[] { $"pictures/{p}.png", $"pictures/{p}.svg" }).Concat(["law.toml", "profile.csv", "run.json"]).Order(StringComparer.Ordinal)],
+                [.. pictures.SelectMany(p => new[] { $"pictures/{p}.png", $"pictures/{p}.svg" }).Concat(["law.toml", "profile.csv", "report.html", "run.json"]).Order(StringComparer.Ordinal)],
                 files);
             if (sample == "measured-profile")
             {

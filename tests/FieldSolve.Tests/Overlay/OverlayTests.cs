@@ -172,6 +172,17 @@ public class OverlayTests
         Assert.StartsWith(expected, faults[0].ToString(), StringComparison.Ordinal);
     }
 
+    [Theory]
+    [InlineData(";", "map.csv:2:1: '0,5' is no finite number ('x'); write a decimal point, here and in the 39 other cells that have a decimal comma")]
+    [InlineData(",", "map.csv:2:9: this row has 5 cells (and so have 19 more rows); the header in line 1 has 3; where commas part the cells a number takes a decimal point")]
+    public void A_table_of_decimal_commas_has_one_fault(string separator, string expected)
+    {
+        string text = string.Join(separator, "x_um", "y_um", "value_V") + "\n" + string.Concat(Enumerable.Range(0, 20).Select(k => string.Join(separator, $"{k},5", "2", $"{k},1") + "\n"));
+        (MeasuredMap? map, IReadOnlyList<Fault> faults) = MapTable.Parse(text, "map.csv", MapQuantity.Potential, null);
+        Assert.Null(map);
+        Assert.Equal(expected, Assert.Single(faults).ToString());
+    }
+
     // As spreadsheets and instruments write them: semicolons or tabulators, capitals, the unit in brackets, nan where the tip met nothing.
     [Theory]
     [InlineData("x_um;y_um;value_mV", ";")]

@@ -33,6 +33,8 @@ public class EditableTomlTests
         Assert.Contains("# the µ counts as one\r\ndead_edge = \"1 nm\"\r\n[[contact]]", text.With("sheet.dead_edge", "\"1 nm\"").Text, StringComparison.Ordinal);
         Assert.Contains("steps = 3, more = 1 }", text.With("drive.current.more", "1").Text, StringComparison.Ordinal);
         Assert.EndsWith("both_signs = true\r\n\r\n[mesh]\r\nerror = 1e-3\r\n", text.With("mesh.error", "1e-3").Text, StringComparison.Ordinal);
+        Assert.Contains("edge.width = \"1 um\"\r\nedge.more = 1\r\n\r\n[[wiring]]", text.With("contact[1].edge.more", "1").Text, StringComparison.Ordinal);
+        Assert.Equal("a = { b.c = 1, b.d = 2 }", new EditableToml("a = { b.c = 1 }").With("a.b.d", "2").Text);
         Assert.Throws<LayoutEditException>(() => text.With("contact[7].edge", "1"));
         Assert.Throws<LayoutEditException>(() => text.With("law.a b", "1"));
     }
@@ -48,6 +50,8 @@ public class EditableTomlTests
         Assert.Contains("edge = { width=\"1 um\" }\r\n", text.Without("contact[0].edge.at").Text, StringComparison.Ordinal);
         Assert.Contains("along = [ \"m\" ] # two", text.WithoutItem("wiring[0].along[0]").Text.Replace("\r\n  ", "", StringComparison.Ordinal), StringComparison.Ordinal);
         Assert.Contains("along = [ \"n\" ] # two", text.WithoutItem("wiring[0].along[1]").Text, StringComparison.Ordinal);
+        Assert.Contains("name = \"m\"\r\n\r\n[[wiring]]", text.Without("contact[1].edge").Text, StringComparison.Ordinal);
+        Assert.Equal("a = { d = 2 }", new EditableToml("a = { b.c = 1, d = 2 }").Without("a.b.c").Text);
         Assert.Throws<LayoutEditException>(() => text.Without("wiring[0].along[0]"));
         Assert.Throws<LayoutEditException>(() => text.Without("law"));
     }

@@ -173,6 +173,51 @@ public sealed class LayoutOutlineTests : IDisposable
         Assert.Equal(before, disc.State.Text.Text);
     }
 
+    // TOML lets a table be written in braces, under a header of its own or by dotted keys.
+    [Theory]
+    [InlineData("outline.file = \"sheet.geojson\"  # dotted\noutline.unit = \"um\"", "outline.corners = [")]
+    [InlineData("[sheet.outline]\nfile = \"sheet.geojson\"\nunit = \"um\"", "\ncorners = [")]
+    public void A_corner_moves_and_a_trace_is_used_however_the_outline_is_written(string outline, string own)
+    {
+        folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[0,4],[10,4],[10,0],[0,0]],[[4,1],[5,1],[5,2],[4,1]]]}""");
+        string Device(string sheet) => Text.Replace("outline = { CORNERS }   # kept", sheet, StringComparison.Ordinal);
+        EditSession session = EditSession.Open(folder.Write("device.toml", Device(outline))).Session!;
+        string before = session.State.Text.Text;
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Move(t, d, 0, Find(d, 0, 4), new(-2e-6, 6e-6)), null));
+        Assert.True(Find(session.State.Device, -2, 6) >= 0);
+        Assert.Equal(2, session.State.Device.Drawn.Count);
+        Assert.Contains(own, session.State.Text.Text, StringComparison.Ordinal);
+        Assert.DoesNotContain("sheet.geojson", session.State.Text.Text, StringComparison.Ordinal);
+        Assert.True(session.Undo());
+        Assert.Equal(before, session.State.Text.Text);
+
+        TraceShape[] shapes = [new(TraceKind.Outline, "", [new(0, 0), new(0, 4e-6), new(10e-6, 4e-6), new(10e-6, 0)])];
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "t.geojson", shapes, overwrite: true));
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
+        Assert.Single(session.State.Device.Drawn);
+
+        EditSession bar = EditSession.Open(folder.Write("bar.toml", Device("bar.length = \"10 um\"\nbar.width = \"4 um\"\n")
+            .Replace("edge = { from = [\"0 um\", \"1 um\"], to = [\"0 um\", \"3 um\"] }", "edge.end = \"left\"", StringComparison.Ordinal)
+            .Replace("edge = { from = [\"10 um\", \"1 um\"], to = [\"10 um\", \"3 um\"] }", "edge.end = \"right\"", StringComparison.Ordinal)
+            .Replace("edge = { from = [\"2 um\", \"4 um\"], to = [\"3 um\", \"4 um\"] }", "edge = { from = [\"2 um\", \"2 um\"], to = [\"3 um\", \"2 um\"] }", StringComparison.Ordinal))).Session!;
+        EditableToml used = LayoutTrace.Use(bar.State.Text, bar.State.Device, "t.geojson", false);
+        Assert.DoesNotContain("bar.", used.Text, StringComparison.Ordinal);
+        Assert.Equal("t.geojson", used.Find("sheet.outline.file")!.Value);
+    }
+
+    [Fact]
+    public void A_save_removes_what_a_killed_one_left()
+    {
+        EditSession session = Open();
+        TraceShape[] shapes = [new(TraceKind.Outline, "", [new(0, 0), new(1e-6, 0), new(0, 1e-6)])];
+        string left = folder.Write(".t.geojson.1-1.part", "half"), other = folder.Write(".u.geojson.1-1.part", "half");
+        File.SetLastWriteTimeUtc(left, DateTime.UnixEpoch.AddYears(40));
+        File.SetLastWriteTimeUtc(other, DateTime.UnixEpoch.AddYears(40));
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "t.geojson", shapes, overwrite: false));
+        Assert.False(File.Exists(left));
+        Assert.True(File.Exists(other));
+    }
+
     [Fact]
     public void A_trace_that_makes_no_sheet_is_refused_with_the_reason()
     {

@@ -1,5 +1,6 @@
 using System.Globalization;
 using FieldSolve.Device;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -17,7 +18,7 @@ internal static class FitWarnings
         return exit is { } there && worst.Sigmas > share
             ? [string.Create(
                 CultureInfo.InvariantCulture,
-                $"The field reaches {there.Field:G3} V/m at ({there.X:G3} m, {there.Y:G3} m), beyond the {there.From:G3} V/m up to which the fitted law is used as written; what comes after moves line {worst.Line} of the data by {worst.Sigmas:G2} standard deviations. Give the law a field_limit or the contacts a resistance, or leave out the largest currents.")]
+                $"The field reaches {SiText.Of(there.Field, "V/m")} at {SiText.Place(there.X, there.Y)}, beyond the {SiText.Of(there.From, "V/m")} up to which the fitted law is used as written; what comes after moves line {worst.Line} of the data by {worst.Sigmas:G2} standard deviations. Give the law a field_limit or the contacts a resistance, or leave out the largest currents.")]
             : [];
     }
 

@@ -4,6 +4,7 @@ using FieldSolve.Fields;
 using FieldSolve.Geometry;
 using FieldSolve.Measured;
 using FieldSolve.Meshing;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -208,7 +209,7 @@ public static class OverlayRun
 
         if (registration.HasPatch)
         {
-            warnings.Add(string.Create(CultureInfo.InvariantCulture, $"The map shows a patch of other conductance near ({1e6 * p[OverlayFunction.PatchX]:F2}, {1e6 * p[OverlayFunction.PatchY]:F2}) um; it was fitted along with the registration. Residuals are those of the sheet without it."));
+            warnings.Add(string.Create(CultureInfo.InvariantCulture, $"The map shows a patch of other conductance near {SiText.Place(p[OverlayFunction.PatchX], p[OverlayFunction.PatchY])}; it was fitted along with the registration. Residuals are those of the sheet without it."));
         }
 
         if (registration.IsStructured)

@@ -1,5 +1,6 @@
 using System.Globalization;
 using FieldSolve.Device;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -72,7 +73,7 @@ internal static class ToleranceAnswers
 
         // One size when all placements share one, as in 50 nm for every contact.
         double[] sizes = [.. placed.Where(e => e.Cause.Kind is PositionCause or PadShiftCause or LayerShiftCause).Select(e => e.Cause.Sigma).Distinct()];
-        string placement = sizes.Length == 1 ? $"{Scaled(sizes[0], "m")} placement" : "the stated placement";
+        string placement = sizes.Length == 1 ? $"{SiText.Of(sizes[0], "m")} placement" : "the stated placement";
         string part = along != 0 ? Text($" is pick-up of {Percent(byPlace / Math.Abs(along))} of along for {placement}") : $" comes from {placement}";
         string who = Dominant(model, placed, byPlace * byPlace) is { } c ? Text($"; contact '{c.Name}' has the largest part of that ({Percent(c.Share)} of the variance)") : "";
         return Text($"{text} {Volts(byPlace)} of it{part}{who}.");
@@ -98,7 +99,7 @@ internal static class ToleranceAnswers
         }
 
         string goal = Text($"{Volts(level)}{(wanted is null ? " (1 % of along)" : "")}");
-        BudgetEntry? largest = moving.FirstOrDefault(e => e.Cause.Kind is PositionCause) ?? moving.FirstOrDefault(e => e.Cause.Kind.Dimension == Quantities.Dimension.Length);
+        BudgetEntry? largest = moving.FirstOrDefault(e => e.Cause.Kind is PositionCause) ?? moving.FirstOrDefault(e => e.Cause.Kind.Dimension == Dimension.Length);
         if (others >= level)
         {
             double alone = level / byPlace;
@@ -153,17 +154,10 @@ internal static class ToleranceAnswers
 
     private static IReadOnlyList<BudgetEntry> Entries(IReadOnlyList<BudgetEntry> budget, ToleranceQuantity q) => [.. budget.Where(e => e.Quantity == q)];
 
-    private static string Size(SheetCause cause, double si) => cause.Kind.Dimension == Quantities.Dimension.Length ? Scaled(si, "m")
-        : cause.Unit.Contains(' ', StringComparison.Ordinal) || cause.Unit is "deg" or "1" ? Text($"{si / cause.UnitSize:G3} {cause.Unit}") : Scaled(si, cause.Unit);
+    private static string Size(SheetCause cause, double si) => cause.Kind.Dimension == Dimension.Length ? SiText.Of(si, "m")
+        : cause.Unit.Contains(' ', StringComparison.Ordinal) || cause.Unit is "deg" or "1" ? Text($"{si / cause.UnitSize:G3} {cause.Unit}") : SiText.Of(si, cause.Unit);
 
-    private static string Volts(double v) => Scaled(v, "V");
-
-    private static string Scaled(double v, string unit)
-    {
-        (double Size, string Prefix)[] prefixes = [(1e3, "k"), (1, ""), (1e-3, "m"), (1e-6, "µ"), (1e-9, "n"), (1e-12, "p")];
-        (double size, string prefix) = prefixes.FirstOrDefault(p => Math.Abs(v) >= p.Size * 0.9995, prefixes[^1]);
-        return v == 0 ? $"0 {unit}" : Text($"{v / size:G3} {prefix}{unit}");
-    }
+    private static string Volts(double v) => SiText.Of(v, "V");
 
     private static string Text(FormattableString text) => text.ToString(CultureInfo.InvariantCulture);
 }

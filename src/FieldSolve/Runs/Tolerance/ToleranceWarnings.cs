@@ -1,4 +1,5 @@
 using System.Globalization;
+using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
@@ -31,12 +32,14 @@ internal static class ToleranceWarnings
 
         if (failed > 0)
         {
-            yield return Text($"{failed} of {samples.Count} samples have no solution at {model.Current:G4} A and are left out.");
+            yield return Text($"{failed} of {samples.Count} samples have no solution at {SiText.Of(model.Current, "A", 4)} and are left out.");
         }
 
         foreach (SampleStatistics s in statistics.Where(s => s.Count > 1 && s.SpreadError > Far * s.Deviation.Value))
         {
-            yield return Text($"The spread of {s.Quantity.Label} of wiring '{s.Quantity.Wiring}' ({s.Deviation.Value:G3}{(s.Quantity.IsRatio ? "" : " V")}) is not far above its numerical error ({s.SpreadError:G3}); lower [mesh] error.");
+            yield return Text($"The spread of {s.Quantity.Label} of wiring '{s.Quantity.Wiring}' ({Of(s.Deviation.Value)}) is not far above its numerical error ({Of(s.SpreadError)}); lower [mesh] error.");
+
+            string Of(double v) => s.Quantity.IsRatio ? Text($"{v:G3}") : SiText.Of(v, "V");
         }
     }
 

@@ -62,7 +62,7 @@ internal static class CyclePicture
         SiScale scale = SiScale.For(volts.Max(v => v.Max(Math.Abs)), "V");
         double[][] values = [.. volts.Select(v => v.Select(x => scale.Factor * x).ToArray())];
         double low = values.Min(v => v.Min()), high = values.Max(v => v.Max());
-        return new("Potential", values, low, high > low ? high : low + 1, new ScottPlot.Colormaps.Viridis(), $"potential ({scale.Unit})", null);
+        return new("Potential", values, low, high > low ? high : low + 1, MapColours.Shore, $"potential ({scale.Unit})", null);
     }
 
     private static Row Field(FineMesh mesh, CycleFrame[] shown)
@@ -73,7 +73,7 @@ internal static class CyclePicture
         double floor = high > 0 ? Math.Max(low, LeastField * high) : 1;
         double bottom = Math.Log10(floor * scale.Factor), top = high > floor ? Math.Log10(high * scale.Factor) : bottom + 1;
         double[][] values = [.. field.Select(v => v.Select(e => Math.Log10(Math.Max(e, 0.5 * floor) * scale.Factor)).ToArray())];
-        return new("Field", values, bottom, top, new ScottPlot.Colormaps.Magma(), $"|E| ({scale.Unit})", Levels.LogTicks(bottom, top));
+        return new("Field", values, bottom, top, MapColours.Ember, $"|E| ({scale.Unit})", Levels.LogTicks(bottom, top));
     }
 
     private static double[] Size(FineMesh mesh, FieldMap map) =>

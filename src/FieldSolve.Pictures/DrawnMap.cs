@@ -21,7 +21,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         double low = values.Min(), high = values.Max(), step = Levels.Step(high - low, 22);
         SheetFrame frame = Frame("Potential");
         frame.AddPadMetal(device);
-        MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Viridis(), low, high);
+        MapImage image = new(mesh, values, frame.Scale.Factor, MapColours.Shore, low, high);
         frame.Plot.PlottableList.Add(image);
         List<Point2[]> lines = [];
         foreach (double level in Levels.Between(low, high, step))
@@ -47,7 +47,7 @@ internal sealed class DrawnMap(SheetDevice device, FieldMap map, FineMesh mesh, 
         double[] values = [.. field.Select(e => Math.Log10(Math.Max(e, 0.5 * floor) * scale.Factor))];
         SheetFrame frame = Frame("Field");
         frame.AddPadMetal(device);
-        MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Magma(), bottom, top);
+        MapImage image = new(mesh, values, frame.Scale.Factor, MapColours.Ember, bottom, top);
         frame.Plot.PlottableList.Add(image);
         IReadOnlyList<Point2[]> lines = Streamlines.Of(mesh, finder, mesh.Straight(map.Kx), mesh.Straight(map.Ky), frame.Size / 32);
         frame.Plot.PlottableList.Add(new PolylineSet(lines, frame.Scale.Factor)

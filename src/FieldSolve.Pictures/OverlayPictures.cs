@@ -29,7 +29,7 @@ public static class OverlayPictures
             "overlay-maps", "The measured map laid on the sheet (points, gain and offset of the probe taken out) and the computed one, on one colour scale.",
             () => Maps(result));
         Add(
-            "overlay-residual", "Measured less computed. Blue is below, red above; rings mark places where the mean over the neighbouring points is beyond the noise.",
+            "overlay-residual", "Measured less computed. Blue is below, orange above; rings mark places where the mean over the neighbouring points is beyond the noise.",
             () => Residual(result));
         return files;
 
@@ -59,7 +59,7 @@ public static class OverlayPictures
         double low = field ? 0 : computed.Min(), high = field ? computed.Order().ElementAt((int)(FieldShare * (computed.Length - 1))) : computed.Max();
         SiScale scale = SiScale.For(Math.Max(Math.Abs(low), Math.Abs(high)), result.Unit);
         (low, high) = (low * scale.Factor, high * scale.Factor);
-        IColormap colours = field ? new ScottPlot.Colormaps.Magma() : new ScottPlot.Colormaps.Viridis();
+        MapColours colours = field ? MapColours.Ember : MapColours.Shore;
         string what = field ? "|E|" : "potential";
         SheetFrame left = Frame(result, "Measured"), right = Frame(result, "Computed");
         PointMap points = new([.. measured.Select(m => (m.Place, scale.Factor * m.Value))], Side(result), left.Scale.Factor, colours, low, high);
@@ -82,7 +82,7 @@ public static class OverlayPictures
         SiScale scale = SiScale.For(most, result.Unit);
         SheetFrame frame = Frame(result, "Measured − computed");
         PointMap points = new(
-            [.. on.Select(p => (p.Place, scale.Factor * p.Residual!.Value))], Side(result), frame.Scale.Factor, new ScottPlot.Colormaps.Balance(), -most * scale.Factor, most * scale.Factor);
+            [.. on.Select(p => (p.Place, scale.Factor * p.Residual!.Value))], Side(result), frame.Scale.Factor, MapColours.Diverging, -most * scale.Factor, most * scale.Factor);
         frame.Plot.PlottableList.Add(points);
         frame.AddDevice(result.Device, WiringOf(result));
         foreach (OverlayPlace p in result.Places)

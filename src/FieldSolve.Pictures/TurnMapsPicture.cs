@@ -31,7 +31,7 @@ internal static class TurnMapsPicture
             SheetFrame frame = SheetFrame.Around(device, Title(result, result.Maps[k]), last, (Margin, Margin), Target);
             frame.AddPadMetal(device);
             double[] values = [.. volts[k].Select(v => v * scale.Factor)];
-            MapImage image = new(mesh, values, frame.Scale.Factor, new ScottPlot.Colormaps.Viridis(), low, high);
+            MapImage image = new(mesh, values, frame.Scale.Factor, MapColours.Shore, low, high);
             frame.Plot.PlottableList.Add(image);
             List<Point2[]> lines = [];
             foreach (double level in Levels.Between(low, high, step))

@@ -122,6 +122,20 @@ public class PageMathTests(ReportFixture report)
         }
     }
 
+    [BrowserFact]
+    public async Task Pictures_have_the_colours_of_the_page()
+    {
+        foreach ((string page, MapColours picture) in new[] { ("RAMPS.shore", MapColours.Shore), ("RAMPS.ember", MapColours.Ember), ("DIVERGING", MapColours.Diverging) })
+        {
+            int[] table = await (await report.Shared()).EvaluateAsync<int[]>($"Array.from(fieldsolve.{page})");
+            for (int k = 0; k < 256; k++)
+            {
+                ScottPlot.Color c = picture.GetColor(k / 255.0);
+                Assert.InRange(Math.Max(Math.Abs(c.R - table[3 * k]), Math.Max(Math.Abs(c.G - table[(3 * k) + 1]), Math.Abs(c.B - table[(3 * k) + 2]))), 0, 1);
+            }
+        }
+    }
+
     private static double Linear(int v) => v / 255.0 <= 0.04045 ? v / 255.0 / 12.92 : Math.Pow(((v / 255.0) + 0.055) / 1.055, 2.4);
 
     private static double[] Seen(double r, double g, double b, string eye) => eye switch

@@ -58,6 +58,11 @@ internal static class OpenCommand
         }
 
         await server.Ended(cancel);
+        if (!session.State.IsSaved)
+        {
+            Console.Error.WriteLine("The layout was changed after the last save; these changes are gone.");
+        }
+
         return ExitCode.Done;
     }
 

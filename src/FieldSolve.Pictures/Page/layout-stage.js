@@ -107,7 +107,7 @@ class LayoutStage extends Plane {
       return;
     }
     const width = Math.max(260, this.host.clientWidth), box = this.extent, margin = { left: 52, right: 12, top: 14, bottom: 38 };
-    const room = width - margin.left - margin.right, most = Math.max(280, Math.min(700, innerHeight - 250)), pad = 56;
+    const room = width - margin.left - margin.right, most = Math.max(280, Math.min(700, innerHeight - 250)), pad = room < 460 ? 36 : 56;
     const scale = Math.min((room - 2 * pad) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 330 : 260, box.height * scale + 2 * pad)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
     this.layOut(this.overlay, this.canvas, this.picture.frame);

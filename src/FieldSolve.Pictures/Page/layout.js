@@ -59,7 +59,7 @@ class LayoutApp {
     this.painted = { coarse: [], accurate: [] };
     addEventListener('keydown', e => this.#key(e));
     addEventListener('beforeunload', e => {
-      if (this.state && !this.state.saved && this.alone) {
+      if (this.state && !this.state.saved) {
         e.preventDefault();
       }
     });
@@ -183,6 +183,7 @@ class LayoutApp {
     this.#diskNotice();
     this.stage.setWiring(names.indexOf(this.wiring));
     this.stage.show(state);
+    this.pictures.restore(state.file);
     this.#showFields();
     this.#badge();
   }

@@ -62,15 +62,18 @@ public static class BandsReport
         if (result.Response is { } r)
         {
             page.Element("h2", "Second order").Table(
-                "In A m/V², in the principal frame of the sheet conductance, with the errors of the quadrature.",
+                "In A m/V², in the principal frame of the sheet conductance; 0 where nothing is left beyond the error of the quadrature.",
                 ["element", "shifted distribution", "Berry curvature dipole", "sum"],
                 [.. r.Total.Elements.Select((e, k) => new[] { e.Name, Second(r.Drude.Elements[k].Number), Second(r.Dipole.Elements[k].Number), Second(e.Number) })]);
+            // What is rounding beside the largest conductance is zero.
+            double largest = r.Shares.Max(s => Math.Max(Math.Abs(s.Aa), Math.Abs(s.Bb)));
+            string Siemens(double v) => Math.Abs(v) <= 1e-9 * largest ? "0" : SiScale.Text(v, "S");
             page.Element("h2", "Cones").Table(
                 "With their degeneracy; the sheet conductances in the crystal frame of the file.",
                 ["cone", "states (1/(J m²))", "σ_aa", "σ_ab", "σ_bb", "half width of the contour", "mean free path"],
                 [.. r.Shares.Select(s => new[]
                 {
-                    s.Name, SiScale.Number(s.States), SiScale.Text(s.Aa, "S"), SiScale.Text(s.Ab, "S"), SiScale.Text(s.Bb, "S"), $"{SiScale.Number(1e-9 * s.HalfWidth)} 1/nm", SiScale.Text(s.MeanFreePath, "m"),
+                    s.Name, SiScale.Number(s.States), Siemens(s.Aa), Siemens(s.Ab), Siemens(s.Bb), $"{SiScale.Number(1e-9 * s.HalfWidth)} 1/nm", SiScale.Text(s.MeanFreePath, "m"),
                 })],
                 null, 0);
         }

@@ -7,7 +7,7 @@ namespace FieldSolve.Pictures;
 /// <param name="axis">Angle from lab x to crystal a, radians.</param>
 internal sealed class Compass(double axis) : IPlottable
 {
-    private const float Arm = 24, Inset = 42;
+    private const float Arm = 19, Inset = 35;
 
     /// <summary>The square it needs within a frame.</summary>
     public static SKRect Place(PixelRect frame) => new(frame.Left, frame.Bottom - (2 * Inset), frame.Left + (2 * Inset), frame.Bottom);

@@ -88,7 +88,7 @@ internal static class DriveLive
 
         if (views.OfType<LiveView>().ToArray() is { Length: > 0 } curves)
         {
-            yield return new("curves", "Voltages against current", "Bars are numerical errors. Ringed points are not ‘ok’ in the tables.", curves);
+            yield return new("curves", "Voltages against current", "Bars are numerical errors. Ringed points are not 'ok' in the tables.", curves);
         }
 
         if (Even(result, places, Frames) is { } even)

@@ -57,13 +57,16 @@ public static class FitReport
         ["number", "fitted", "unit", "95 %", "start", "prior"],
         [.. result.Parameters.Select(p =>
         {
-            double u = p.Parameter.UnitSize;
+            // Units of one letter take a prefix: "A m/V²" with one would not be what the file says.
+            SiScale scale = p.Parameter.Unit is "S" or "m"
+                ? SiScale.For(new[] { p.Value, p.StandardError, p.Parameter.Start }.Max(v => Math.Abs(v ?? 0)), p.Parameter.Unit) : new(1 / p.Parameter.UnitSize, FitWords.Unit(p.Parameter.Unit));
+            double u = 1 / scale.Factor;
             string end(double? x) => x is { } y ? SiScale.Number(y / u, 6) : "bound";
             return new[]
             {
                 $"{p.Parameter.Label}: {p.Parameter.Kind.Meaning}",
                 p.Value is { } v ? Fitted(v / u, p.StandardError!.Value / u) : "not determined",
-                FitWords.Unit(p.Parameter.Unit),
+                scale.Unit,
                 p.Interval is { } i ? $"{end(i.Low)} to {end(i.High)}" : "–",
                 SiScale.Number(p.Parameter.Start / u, 6),
                 p.Parameter.PriorSigma is { } s ? $"{SiScale.Number(p.Parameter.PriorMean / u, 4)} ± {SiScale.Number(s / u, 3)}" : "–",

@@ -3,6 +3,8 @@ namespace FieldSolve.Pictures;
 /// <summary>Round numbers for level lines and ticks.</summary>
 internal static class Levels
 {
+    private const double NarrowDecades = 0.6;
+
     /// <summary>A step of 1, 2 or 5 times a power of ten that cuts a range into about so many parts.</summary>
     public static double Step(double range, int parts)
     {
@@ -46,6 +48,18 @@ internal static class Levels
     {
         ScottPlot.TickGenerators.NumericManual ticks = new();
         double decades = high - low;
+        if (decades < NarrowDecades)
+        {
+            // Too few of the usual ticks fall into so short a range: even steps of the value itself.
+            double from = Math.Pow(10, low), to = Math.Pow(10, high), step = Step(to - from, 5);
+            foreach (double value in Between(from, to, step))
+            {
+                ticks.AddMajor(Math.Log10(value), SiScale.Number((Math.Round(value / step) * step) + 0.0, 6));
+            }
+
+            return ticks;
+        }
+
         int every = Math.Max(1, (int)Math.Ceiling(decades / 8));
         for (int e = (int)Math.Floor(low); e <= Math.Ceiling(high); e++)
         {

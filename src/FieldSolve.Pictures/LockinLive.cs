@@ -93,7 +93,7 @@ internal static class LockinLive
         {
             yield return new(
                 "harmonics", "Harmonics against current",
-                "Lines: slopes 1, 2 and 3 through the smallest current, as a weak non-linearity gives them. Only readings above their error bar; ringed ones are not ‘ok’ in the tables.", growth);
+                "Lines: slopes 1, 2 and 3 through the smallest current, as a weak non-linearity gives them. Only readings above their error bar; ringed ones are not 'ok' in the tables.", growth);
         }
 
         if (Second(result) is { } second)
@@ -106,7 +106,7 @@ internal static class LockinLive
         LiveView[] spectra = [.. result.Device.Wirings.SelectMany(w => Pairs.SelectMany(p => Enumerable.Range(1, 2).Select(h => Spectrum(result, w.Name, p, h)))).OfType<LiveView>()];
         if (spectra.Length > 0)
         {
-            yield return new("frequency", "Harmonics against frequency", "At the largest current; the gate’s charge turns and shrinks the harmonics.", spectra);
+            yield return new("frequency", "Harmonics against frequency", "At the largest current; the gate's charge turns and shrinks the harmonics.", spectra);
         }
 
         if (DriveLive.RefinementChart(result.Common()) is { } refinement)

@@ -28,7 +28,7 @@ internal static class LockinWords
 
         if (result.Points.Count(p => p.Status != RowStatus.Ok) is > 0 and var poor)
         {
-            yield return string.Create(CultureInfo.InvariantCulture, $"{poor} of {result.Points.Count} points are not ‘ok’: see the status in the tables.");
+            yield return string.Create(CultureInfo.InvariantCulture, $"{poor} of {result.Points.Count} points are not 'ok': see the status in the tables.");
         }
     }
 

@@ -70,7 +70,7 @@ public static class OverlayReport
         }
 
         yield return result.Places.Count == 0 ? "Nowhere do neighbouring points differ from the computed map by more than the noise."
-            : string.Create(CultureInfo.InvariantCulture, $"At {result.Places.Count} {(result.Places.Count == 1 ? "place" : "places")} neighbouring points differ from the computed map by more than the noise; the worst lies at ({SiScale.Text(result.Places[0].Place.X, "m", 3)}, {SiScale.Text(result.Places[0].Place.Y, "m", 3)}).");
+            : string.Create(CultureInfo.InvariantCulture, $"At {result.Places.Count} {(result.Places.Count == 1 ? "place" : "places")} neighbouring points differ from the computed map by more than the noise; {(result.Places.Count == 1 ? "it" : "the worst")} lies at ({SiScale.Text(result.Places[0].Place.X, "m", 3)}, {SiScale.Text(result.Places[0].Place.Y, "m", 3)}).");
     }
 
     private static string[] Row(string name, Registered r, string unit, double scale)

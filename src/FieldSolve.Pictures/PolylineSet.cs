@@ -9,7 +9,7 @@ namespace FieldSolve.Pictures;
 /// <param name="scale">Multiplies metres to give plot units.</param>
 internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) : IPlottable
 {
-    private const float ArrowLength = 9, ArrowHalfWidth = 3.6f;
+    private const float ArrowLength = 9, ArrowHalfWidth = 3.6f, LeastForArrow = 60;
 
     /// <summary>Colour of the lines.</summary>
     public Color Colour { get; init; } = Look.Ink;
@@ -52,7 +52,7 @@ internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) :
         if (Arrows)
         {
             using SKPath heads = new();
-            foreach (SKPoint[] line in pixels.Where(l => l.Length > 8))
+            foreach (SKPoint[] line in pixels.Where(l => l.Length > 8 && LengthOf(l) > LeastForArrow))
             {
                 AddHead(heads, line);
             }
@@ -67,6 +67,9 @@ internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) :
         Pixel pixel = Axes.GetPixel(new(scale * p.X, scale * p.Y));
         return new(pixel.X, pixel.Y);
     }
+
+    // A head on a shorter line would be most of what is seen of it.
+    private static float LengthOf(SKPoint[] points) => Enumerable.Range(1, points.Length - 1).Sum(k => SKPoint.Distance(points[k - 1], points[k]));
 
     private static void AddHead(SKPath heads, SKPoint[] points)
     {

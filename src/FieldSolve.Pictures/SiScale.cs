@@ -37,7 +37,8 @@ internal readonly record struct SiScale(double Factor, string Unit)
     /// <summary>A number at so many significant digits, without needless zeros, with a true minus sign.</summary>
     public static string Number(double value, int digits = 4)
     {
-        string text = value.ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
+        // Adding zero turns a negative zero into a plain one.
+        string text = (value + 0.0).ToString("G" + digits.ToString(CultureInfo.InvariantCulture), CultureInfo.InvariantCulture);
         int mark = text.IndexOf('E', StringComparison.Ordinal);
         if (mark > 0)
         {

@@ -31,7 +31,7 @@ internal static class TurnLive
         {
             string marks = TurnQuantity.AxisA(result) is null ? "" : " a and b mark the crystal axes.";
             string formula = AnglePicture.HasFormula(result) ? " Dashed without points: the formulas for a uniform strip, fitted to the curves of small drive, at the largest current." : "";
-            data.Charts.Add(new("angles", "Voltages over the direction", $"Bars are numerical errors; ringed points are not ‘ok’ in the table.{marks}{formula}", curves));
+            data.Charts.Add(new("angles", "Voltages over the direction", $"Bars are numerical errors; ringed points are not 'ok' in the table.{marks}{formula}", curves));
         }
 
         if (Ratios(result) is { Length: > 0 } ratios)

@@ -46,7 +46,8 @@ function makeAxis(low, high, from, to, log, wanted) {
         }
       }
     }
-    return { at, ticks };
+    // Too few of them fall into a short range: even steps of the value itself.
+    return { at, ticks: ticks.length > 2 || !(high > low) ? ticks : multiples(low, high, roundStep(high - low, Math.max(2, Math.abs(to - from) / 80))).map(v => Number(v.toPrecision(12))) };
   }
   const span = high > low ? high - low : Math.abs(low) || 1, a = high > low ? low : low - span / 2;
   const step = wanted ?? roundStep(span, Math.max(2, Math.abs(to - from) / (from < to ? 80 : 46)));

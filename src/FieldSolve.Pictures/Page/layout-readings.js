@@ -2,6 +2,9 @@
 
 /** A value with its error: as many digits as the error leaves. */
 function plusMinus(value, error, unit) {
+  if (value === 0 && !(error > 0)) {
+    return `0\u00A0${unit}`;
+  }
   const scale = scaleFor(Math.max(Math.abs(value), Math.abs(error)), unit), f = scale.factor;
   const places = error > 0 ? Math.max(0, Math.min(9, 1 - Math.floor(Math.log10(error * f)))) : 4;
   const text = (value * f).toFixed(places);
@@ -21,7 +24,7 @@ class LayoutReadings {
 
   #row(answer, wiring) {
     const rows = answer?.rows.filter(r => r.wiring === wiring) ?? [];
-    return rows.length ? rows.reduce((best, r) => Math.abs(r.current) > Math.abs(best.current) ? r : best) : null;
+    return rows.length ? rows.reduce((best, r) => Math.abs(r.current) >= Math.abs(best.current) ? r : best) : null;
   }
 
   show(answer, wiring) {
@@ -62,7 +65,7 @@ class LayoutReadings {
       return { name, look, x: own.map(o => x(o)), y: own.map(o => o.p.y), error: own.map(o => o.p.error), doubtful: own.map(o => answer.accurate && o.r.status !== 'ok'), frame: [] };
     });
     const of = (r, pair) => r.readings.find(x => x.pair === pair);
-    if (rows.some(r => of(r, 'across')?.even !== undefined && of(r, 'along')?.odd !== undefined)) {
+    if (rows.some(r => of(r, 'across')?.even) && rows.some(r => of(r, 'across')?.even !== undefined && of(r, 'along')?.odd !== undefined)) {
       views.push({
         label: 'even part', x: 'V_along, odd, squared', xUnit: 'V²', y: 'V_across, even', yUnit: 'V', kind: 'curve', categories: [], marks: [], logarithmic: false,
         series: series(r => of(r, 'across')?.even !== undefined && of(r, 'along')?.odd !== undefined ? { y: of(r, 'across').even, error: of(r, 'across').evenError ?? 0, x: of(r, 'along').odd ** 2 } : null, o => o.p.x),

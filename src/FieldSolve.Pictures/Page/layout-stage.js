@@ -108,7 +108,9 @@ class LayoutStage extends Plane {
     }
     const width = Math.max(260, this.host.clientWidth), box = this.extent, margin = { left: 52, right: 12, top: 14, bottom: 38 };
     const room = width - margin.left - margin.right, most = Math.max(280, Math.min(700, innerHeight - 250)), pad = room < 460 ? 36 : 56;
-    const scale = Math.min((room - 2 * pad) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 330 : 260, box.height * scale + 2 * pad)) };
+    // Names at the left and the right end stand outside, as far as there is room.
+    const longest = Math.max(0, ...this.state.contacts.filter(c => c.kind === 'edge' && Math.abs(c.middle[0] - box.cx) > 0.48 * box.width).map(c => c.name.length)), aside = Math.max(pad, longest ? Math.min(0.18 * room, 8 * longest + 44) : 0);
+    const scale = Math.min((room - 2 * aside) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 290 : 260, box.height * scale + 2 * pad)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
     this.layOut(this.overlay, this.canvas, this.picture.frame);
     this.draw();
@@ -199,7 +201,7 @@ class LayoutStage extends Plane {
   // The crystal axes beside the sheet: the longer line is a, the handle turns it.
   #drawDial(right) {
     // Smaller where there is little room.
-    const r = this.inner.width < 460 ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
+    const r = this.inner.width < 460 || this.inner.height < 330 ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
     const held = document.activeElement?.classList?.contains('axis-handle');
     this.centre = [cx, cy];
     const at = (p, q) => `${(cx + p * c - q * s).toFixed(1)} ${(cy - p * s - q * c).toFixed(1)}`, [hu, hv] = at(r, 0).split(' ');

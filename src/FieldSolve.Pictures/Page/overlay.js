@@ -55,8 +55,11 @@ class MapOverlay {
       const { extent } = this.view, [mu, mv] = this.view.toScreen(extent.cx, extent.cy), far = Math.hypot(mu - u, mv - v) || 1, word = { source: ' I+', drain: ' I−', along: ' ∥', across: ' ⊥' }[role] ?? '';
       const outer = Math.max(Math.abs(c.middle[0] - extent.cx) / extent.width, Math.abs(c.middle[1] - extent.cy) / extent.height) > 0.3;
       const size = c.kind === 'pad' ? this.view.fit * this.view.zoom * spanOf(c.points) : 0, turn = size > 30 ? 0 : c.kind === 'edge' || outer ? 1 : -1, du = turn * (mu - u) / far, dv = turn * (mv - v) / far;
+      // A lying contact has its name at its end, beside the arm it may close; names on the crossing lines, as they lie at first, step aside.
+      const [wide, tall] = c.kind === 'edge' ? this.#sizeOf(c.points) : [0, 0], beside = wide > 2 * tall && Math.abs(du) > 0.2;
+      const aside = c.kind !== 'pad' && turn > 0 && Math.abs(dv) < 0.15 ? -10 : 0, x = beside ? u + Math.sign(du) * (wide / 2 + 7) : u + 10 * du + (turn > 0 && Math.abs(du) < 0.15 ? 8 : 0);
       names.append(svg('text', {
-        class: `tag ${role}`, x: (u + 10 * du).toFixed(1), y: (v + 16 * dv + 4).toFixed(1), 'text-anchor': du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle',
+        class: `tag ${role}`, x: x.toFixed(1), y: (v + 16 * dv + 4 + aside).toFixed(1), 'text-anchor': beside ? du > 0 ? 'start' : 'end' : du > 0.4 || (turn > 0 && Math.abs(du) < 0.15) ? 'start' : du < -0.4 ? 'end' : 'middle',
       }, c.name + word + sign));
     });
     if (map.by !== 'current' && map.by !== 'phase') {
@@ -69,6 +72,12 @@ class MapOverlay {
       const [u, v] = this.view.toScreen(this.view.cursor.x, this.view.cursor.y);
       inside.append(svg('path', { class: 'cross screen', d: `M${u - 12} ${v}H${u - 4}M${u + 4} ${v}H${u + 12}M${u} ${v - 12}V${v - 4}M${u} ${v + 4}V${v + 12}` }));
     }
+  }
+
+  /** Width and height of points in pixels. */
+  #sizeOf(points) {
+    const { width, height } = extentOf([points]), s = this.view.fit * this.view.zoom;
+    return [width * s, height * s];
   }
 
   #arrow(line) {

@@ -21,7 +21,10 @@ public static class CurrentDirection
     {
         ArgumentNullException.ThrowIfNull(device);
         ArgumentNullException.ThrowIfNull(wiring);
-        return Centre(device.Contacts[wiring.Drain]) - Centre(device.Contacts[wiring.Source]);
+        Point2 direction = Centre(device.Contacts[wiring.Drain]) - Centre(device.Contacts[wiring.Source]);
+
+        // Middles that coincide do so to rounding, which has no direction.
+        return direction.Length > 1e-9 * device.Domain.Size ? direction : default;
     }
 
     // A rim that is all metal has no side: its middle is that of the whole loop.

@@ -110,7 +110,7 @@ class LayoutStage extends Plane {
     const room = width - margin.left - margin.right, most = Math.max(280, Math.min(700, innerHeight - 250)), pad = room < 460 ? 36 : 56;
     // Names at the left and the right end stand outside, as far as there is room.
     const longest = Math.max(0, ...this.state.contacts.filter(c => c.kind === 'edge' && Math.abs(c.middle[0] - box.cx) > 0.48 * box.width).map(c => c.name.length)), aside = Math.max(pad, longest ? Math.min(0.18 * room, 8 * longest + 44) : 0);
-    const scale = Math.min((room - 2 * aside) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 290 : 260, box.height * scale + 2 * pad)) };
+    const scale = Math.min((room - 2 * aside) / box.width, (most - 2 * pad) / box.height), inner = { width: room, height: Math.round(Math.max(room < 460 ? 250 : 260, box.height * scale + 2 * pad)) };
     Object.assign(this, { margin, inner, fit: scale, width, height: inner.height + margin.top + margin.bottom });
     this.layOut(this.overlay, this.canvas, this.picture.frame);
     this.draw();

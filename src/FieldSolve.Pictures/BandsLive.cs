@@ -24,7 +24,8 @@ internal static class BandsLive
     {
         double[] x = [.. response.Profile.Select(p => p.Direction / Degree)];
         LiveSeries Computed(Func<ProfilePoint, Estimate> of) => new(
-            "computed", 0, x, [.. response.Profile.Select(p => of(p).Value)], [.. response.Profile.Select(p => of(p).Error)], [.. x.Select(_ => false)], null, []) { Curve = ([], []) };
+            "computed", 0, x, [.. response.Profile.Select(p => of(p).Value)], [.. response.Profile.Select(p => of(p).Error)], [.. x.Select(_ => false)], null, [])
+        { Curve = ([], []) };
         BandLaw law = result.Law;
         return
         [
@@ -38,7 +39,8 @@ internal static class BandsLive
         [
             new("measured", 0, [.. profile.Directions.Select(d => d / Degree)], [.. profile.Values], profile.Errors is { } e ? [.. e] : [], [.. profile.Values.Select(_ => false)], null, []) { Curve = ([], []) },
             Tensor(d => TensorOf(result.Fit, d)),
-        ]) with { ErrorName = "standard error" };
+        ]) with
+    { ErrorName = "standard error" };
 
     private static LiveView View(BandsResult result, string what, string unit, IReadOnlyList<LiveSeries> series)
     {

@@ -133,6 +133,11 @@ internal sealed class Registration
 
         // What lies on the sheet now is what is compared from here on: points off it have no model.
         On = [.. points.Select(q => function.Map.Value(function.Place(all.P, q)) is not null)];
+        if (!On.Contains(true))
+        {
+            throw new FitException("No point of the map ends on the sheet; are its units right, and does its origin lie near that of the device file?") { IsOfData = true };
+        }
+
         double scale = Estimate(all.Values, null);
         Settle(all, scale, cancel);
         if (IsStructured && options.Patch && On.Count(o => o) >= FewestForPatch)
@@ -316,6 +321,13 @@ internal sealed class Registration
         Rejected = (double)rejected / on.Length;
         Structure = Pattern(on, z);
         IsStructured = Structure > MostPattern || Misfit > MostMisfit;
+        (Noise, Numerical, Weighting) = (new double[function.Length], new double[function.Length], new double[function.Length]);
+        if (free.Length == 0)
+        {
+            // The pose, gain and offset are given: the maps are only compared.
+            return;
+        }
+
         if (!(a.ConditionNumber() < MostCondition))
         {
             throw new FitException("The map does not determine the registration: some of shift, turn, gain and offset do the same to it. Hold some of them (--fixed-gain, --fixed-offset, --most-shift 0, --most-turn \"0 deg\"), or map more of the sheet.") { IsOfData = true };
@@ -323,7 +335,6 @@ internal sealed class Registration
 
         Matrix<double> inverse = a.Inverse(), spread = inverse * b * inverse;
         Vector<double> moved = inverse * push;
-        (Noise, Numerical, Weighting) = (new double[function.Length], new double[function.Length], new double[function.Length]);
         FitEnd? other = IsStructured ? LeastSquares.Run(function, Task(points, Added(1), false), all.P, MostSteps, cancel) : null;
         for (int k = 0; k < free.Length; k++)
         {

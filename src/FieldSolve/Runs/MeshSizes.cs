@@ -149,7 +149,7 @@ internal static class MeshSizes
     }
 
     // The mesher makes about as many triangles as equilateral ones of the wanted edge would be.
-    private static double EquilateralEdge(TriangleMesh mesh, int t)
+    public static double EquilateralEdge(TriangleMesh mesh, int t)
     {
         int a = mesh.Corners[3 * t], b = mesh.Corners[(3 * t) + 1], c = mesh.Corners[(3 * t) + 2];
         double area = 0.5 * (((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.X[c] - mesh.X[a]) * (mesh.Y[b] - mesh.Y[a])));

@@ -19,9 +19,9 @@ internal sealed class MeshPair
     private const double DoubtPerDecade = 0.25;
 
     // At a resistive pad's rim the current enters within the transfer length. Triangles larger than that by the second of these factors see an ideal pad, with a field without bound all along its rim; what
-    // the split leaves of an error there was seen to be up to one and a half times what it took away (bars with pads of 1e-12 to 1e-6 ohm cm²).
+    // the split leaves of an error there was seen to be up to two times what it took away (bars with pads of 1e-12 to 1e-6 ohm cm²).
     private const double ResolvedLayer = 2, UnresolvedLayer = 30;
-    private const double LeftAtLayer = 2;
+    private const double LeftAtLayer = 2.5;
 
     private readonly Falloff[] kinds;  // per vertex of the domain
     private readonly double[] layer;   // per coarse triangle: resistivity of the pad whose rim it touches, ohm m²; 0 for most

@@ -129,11 +129,11 @@ public class OverlayTests
         Assert.True(Math.Abs(worst.Significance) > 8);
         Assert.True(result.Rms > 1.3 * result.Noise);
 
-        // Without the patch in the fit the gain is bent by 4 %. The hole is a square of 2.4 um: what a square adds beyond a dipole may move numbers by some stated errors.
+        // Without the patch in the fit the gain is bent by 4 %. The hole is a square of 2.4 um: what a square adds beyond a dipole moves the gain by some errors of the noise, and the errors hold it.
         OverlayPatch patch = result.Patch!;
         Assert.True(Point2.Distance(new(patch.X.Value, patch.Y.Value), new(5.2e-6, 1.2e-6)) < 0.3e-6, $"{patch}");
         Assert.InRange(patch.Radius, 1.1e-6, 1.7e-6);
-        Assert.True(Math.Abs(result.Gain.Value - 1.15) < 4 * result.Gain.StandardError && result.Gain.StandardError < 0.01, $"{result.Gain}");
+        Assert.True(Math.Abs(result.Gain.Value - 1.15) < 2 * result.Gain.StandardError && result.Gain.Weighting > result.Gain.Noise && result.Gain.StandardError < 0.01, $"{result.Gain}");
         Assert.True(Math.Abs(result.Turn.Value + 0.05) < 4 * result.Turn.StandardError && result.Turn.StandardError < 0.01, $"{result.Turn}");
         Assert.True(Math.Abs(result.ShiftX.Value - 0.6e-6) < 4 * result.ShiftX.StandardError && result.ShiftX.StandardError < 0.1e-6, $"{result.ShiftX}");
         Assert.True(Math.Abs(result.ShiftY.Value - 0.4e-6) < 4 * result.ShiftY.StandardError && result.ShiftY.StandardError < 0.1e-6, $"{result.ShiftY}");

@@ -56,13 +56,13 @@ internal sealed class Registration
     /// <summary>Which numbers are free.</summary>
     public bool[] Free { get; private set; } = [];
 
-    /// <summary>Standard errors: noise (with the pattern of the residuals), the computed map's error, and the dependence on the weights.</summary>
+    /// <summary>Standard errors: noise (with the pattern of the residuals), the computed map's error, and the dependence on weights and on the patch's width.</summary>
     public double[] Noise { get; private set; } = [];
 
     /// <summary>What the computed map's error may do to each number.</summary>
     public double[] Numerical { get; private set; } = [];
 
-    /// <summary>What another weighting of the points does to each number; 0 unless <see cref="IsStructured"/>.</summary>
+    /// <summary>What another weighting of the points does to each number, where the misfit <see cref="IsStructured"/>, and another width of the patch, where there is one; else 0.</summary>
     public double[] Weighting { get; private set; } = [];
 
     /// <summary>All three in squares.</summary>
@@ -216,7 +216,23 @@ internal sealed class Registration
         }
 
         Settle(best, Estimate(best.Values, null), cancel);
+        VaryPatch(cancel);
     }
+
+    // A patch has a shape, and what stands for it here has another: the numbers may be off by as much as a bell of another width moves them.
+    private void VaryPatch(CancellationToken cancel)
+    {
+        (OverlayFunction own, FitEnd end) = (function, End);
+        function = new(own.Map, points, own.Map.Patch(OtherWidth * own.Patch!.Width, cancel));
+        FitEnd? other = LeastSquares.Run(function, Task(points, Added(Math.Max(1, Misfit)), true), end.P, MostSteps, cancel);
+        function = own;
+        for (int k = 0; other is not null && k < function.Length; k++)
+        {
+            Weighting[k] = double.Hypot(Weighting[k], Free[k] ? other.P[k] - end.P[k] : 0);
+        }
+    }
+
+    private const double OtherWidth = 1.6;
 
     // Fewer points cannot tell a patch from anything else.
     private const int FewestForPatch = 100;

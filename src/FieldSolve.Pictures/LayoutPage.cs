@@ -4,7 +4,6 @@ using FieldSolve.Fields;
 using FieldSolve.Files;
 using FieldSolve.Geometry;
 using FieldSolve.Laws;
-using FieldSolve.Readings;
 using FieldSolve.Sessions;
 
 namespace FieldSolve.Pictures;
@@ -85,94 +84,6 @@ public static class LayoutPage
         w.WriteEndArray();
         Laws(w);
         w.WriteEndObject();
-    }
-
-    /// <summary>Writes an answer: rows as in curves.csv, and the potential at the largest current.</summary>
-    /// <param name="w">Where to.</param>
-    /// <param name="answer">The answer.</param>
-    public static void WriteAnswer(Utf8JsonWriter w, LayoutAnswer answer)
-    {
-        ArgumentNullException.ThrowIfNull(w);
-        ArgumentNullException.ThrowIfNull(answer);
-        w.WriteStartObject();
-        w.WriteNumber("version", answer.Version);
-        w.WriteBoolean("accurate", answer.IsAccurate);
-        w.WriteBoolean("complete", answer.Drive is not null || (answer.IsAccurate && answer.Failure is not null));
-        w.WriteNumber("milliseconds", Math.Round(answer.Milliseconds, 1));
-        w.WriteString("failure", answer.Failure);
-        w.WriteStartArray("rows");
-        foreach (CurveRow row in answer.Rows)
-        {
-            Row(w, row);
-        }
-
-        w.WriteEndArray();
-        w.WriteStartArray("cautions");
-        foreach (string text in (answer.Drive?.Cautions ?? []).Concat(answer.Drive?.Warnings ?? []))
-        {
-            w.WriteStringValue(text);
-        }
-
-        w.WriteEndArray();
-        if (answer.Frames.Count > 0)
-        {
-            PotentialFrame first = answer.Frames[0];
-            LiveMesh mesh = new(first.X, first.Y, first.Nodes);
-            w.WriteStartObject("mesh");
-            LiveData.Write(w, mesh);
-            w.WriteEndObject();
-            w.WriteStartArray("frames");
-            foreach (PotentialFrame frame in answer.Frames.Where(f => ReferenceEquals(f.Nodes, first.Nodes)))
-            {
-                w.WriteStartObject();
-                w.WriteString("wiring", frame.Wiring);
-                w.WriteNumber("current", frame.Current);
-                (byte[] bytes, double low, double high) = mesh.Pack(frame.Potential);
-                w.WriteNumber("low", low);
-                w.WriteNumber("high", high);
-                if (high > low)
-                {
-                    w.WriteBase64String("phi", bytes);
-                }
-
-                w.WriteEndObject();
-            }
-
-            w.WriteEndArray();
-        }
-
-        w.WriteEndObject();
-    }
-
-    private static void Row(Utf8JsonWriter w, CurveRow row)
-    {
-        w.WriteStartObject();
-        w.WriteString("wiring", row.Wiring);
-        w.WriteNumber("current", row.Current);
-        w.WriteString("status", CurvesCsv.StatusText(row.Status));
-        w.WriteStartArray("readings");
-        foreach (Reading r in row.Readings)
-        {
-            w.WriteStartObject();
-            w.WriteString("pair", r.Pair);
-            Number("value", r.Value);
-            Number("error", r.Error);
-            Number("odd", r.Odd);
-            Number("even", r.Even);
-            Number("evenError", r.EvenError);
-            w.WriteEndObject();
-        }
-
-        w.WriteEndArray();
-        w.WriteEndObject();
-
-        void Number(string name, double? value)
-        {
-            if (value is { } v && double.IsFinite(v))
-            {
-                w.WriteNumber(name, v);
-            }
-        }
     }
 
     // Corners that can be moved: loops as drawn, and where each corner stands in the text.

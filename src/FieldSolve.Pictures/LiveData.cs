@@ -151,13 +151,23 @@ internal sealed class LiveData
         return Encoding.UTF8.GetString(memory.GetBuffer(), 0, (int)memory.Length);
     }
 
-    internal static void Write(Utf8JsonWriter w, LiveMesh mesh)
+    private static void Write(Utf8JsonWriter w, LiveMesh mesh)
+    {
+        WriteTriangles(w, mesh);
+        WritePlaces(w, mesh);
+    }
+
+    internal static void WriteTriangles(Utf8JsonWriter w, LiveMesh mesh)
     {
         w.WriteNumber("triangles", mesh.Triangles);
         w.WriteNumber("count", mesh.Count);
         w.WriteNumber("cornerCount", mesh.Corners);
-        w.WriteBase64String("places", mesh.Places(bent: false));
         w.WriteBase64String("corners", mesh.PackedCorners());
+    }
+
+    internal static void WritePlaces(Utf8JsonWriter w, LiveMesh mesh)
+    {
+        w.WriteBase64String("places", mesh.Places(bent: false));
         w.WriteBase64String("bent", LiveMesh.Pack(mesh.Bent));
         w.WriteBase64String("bentPlaces", mesh.Places(bent: true));
     }

@@ -27,24 +27,15 @@ internal sealed class LiveMesh
         Number(3);
         source = [.. order];
         CornerNumbers = new int[3 * Triangles];
-        List<int> bent = [];
-        bool[] seen = new bool[x.Length];
         for (int t = 0; t < Triangles; t++)
         {
             for (int k = 0; k < 3; k++)
             {
-                int a = nodes[(6 * t) + k], b = nodes[(6 * t) + ((k + 1) % 3)], m = nodes[(6 * t) + 3 + k];
-                CornerNumbers[(3 * t) + k] = number[a];
-                if (!seen[m] && (x[m] != 0.5 * (x[a] + x[b]) || y[m] != 0.5 * (y[a] + y[b])))
-                {
-                    bent.Add(number[m]);
-                }
-
-                seen[m] = true;
+                CornerNumbers[(3 * t) + k] = number[nodes[(6 * t) + k]];
             }
         }
 
-        Bent = [.. bent];
+        Bent = FindBent();
 
         void Number(int first)
         {
@@ -62,6 +53,17 @@ internal sealed class LiveMesh
             }
         }
     }
+
+    private LiveMesh(LiveMesh like, double[] x, double[] y)
+    {
+        (X, Y, Nodes, Triangles, Corners, CornerNumbers, source, before) = (x, y, like.Nodes, like.Triangles, like.Corners, like.CornerNumbers, like.source, like.before);
+        Bent = FindBent();
+    }
+
+    /// <summary>The same triangles with their nodes elsewhere.</summary>
+    /// <param name="x">As for a new mesh.</param>
+    /// <param name="y">Likewise.</param>
+    public LiveMesh Moved(double[] x, double[] y) => new(this, x, y);
 
     /// <summary>x of each node of the run.</summary>
     public double[] X { get; }
@@ -130,6 +132,35 @@ internal sealed class LiveMesh
         }
 
         return rest;
+    }
+
+    // Middles are numbered as they appear.
+    private int[] FindBent()
+    {
+        List<int> bent = [];
+        bool[] seen = new bool[X.Length];
+        int number = Corners;
+        for (int t = 0; t < Triangles; t++)
+        {
+            for (int k = 0; k < 3; k++)
+            {
+                int a = Nodes[(6 * t) + k], b = Nodes[(6 * t) + ((k + 1) % 3)], m = Nodes[(6 * t) + 3 + k];
+                if (seen[m])
+                {
+                    continue;
+                }
+
+                seen[m] = true;
+                if (X[m] != 0.5 * (X[a] + X[b]) || Y[m] != 0.5 * (Y[a] + Y[b]))
+                {
+                    bent.Add(number);
+                }
+
+                number++;
+            }
+        }
+
+        return [.. bent];
     }
 
     private (int[] First, int[] Second) Before()

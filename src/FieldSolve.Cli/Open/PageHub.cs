@@ -21,6 +21,8 @@ internal sealed class PageHub : IDisposable
     private readonly Timer leave;
     private TaskCompletionSource news = new(TaskCreationOptions.RunContinuationsAsynchronously);
     private byte[] state = [];
+    private readonly LayoutAnswers answers = new();
+    private IReadOnlyList<(int Number, byte[] Json)> triangles = [];
     private byte[] answer = [];
     private int stateNumber;
     private int answerNumber;
@@ -80,13 +82,14 @@ internal sealed class PageHub : IDisposable
         });
     }
 
-    /// <summary>Tells all pages of an answer.</summary>
+    /// <summary>Tells all pages of an answer; one at a time.</summary>
     public void Tell(LayoutAnswer now)
     {
-        byte[] made = Json(w => LayoutPage.WriteAnswer(w, now));
+        byte[] made = answers.Json(now);
+        IReadOnlyList<(int, byte[])> used = answers.Triangles;
         Publish(() =>
         {
-            (answer, shown) = (made, now);
+            (answer, shown, triangles) = (made, now, used);
             answerNumber++;
         });
     }
@@ -118,6 +121,7 @@ internal sealed class PageHub : IDisposable
         try
         {
             (int sentState, int sentAnswer) = (0, 0);
+            int[] sentTriangles = [0, 0];
             while (!gone.IsCancellationRequested)
             {
                 Task next;
@@ -128,9 +132,11 @@ internal sealed class PageHub : IDisposable
                     send =
                     [
                         .. stateNumber != sentState ? [(state, "state")] : Array.Empty<(byte[], string)>(),
+                        .. triangles.Where((t, k) => t.Number != sentTriangles[k]).Select(t => (t.Json, "triangles")),
                         .. answerNumber != sentAnswer ? [(answer, "answer")] : Array.Empty<(byte[], string)>(),
                     ];
                     (sentState, sentAnswer) = (stateNumber, answerNumber);
+                    sentTriangles = triangles.Count == 0 ? sentTriangles : [.. triangles.Select(t => t.Number)];
                 }
 
                 foreach ((byte[] data, string kind) in send)

@@ -19,6 +19,53 @@ function fill(node, attributes, children) {
   return node;
 }
 
+/** Gives an element these children and leaves those that are there already where they are, with their focus. */
+function adopt(parent, children) {
+  const wanted = new Set(children);
+  let at = parent.firstChild;
+  const skip = () => {
+    while (at && !wanted.has(at)) {
+      const gone = at;
+      at = at.nextSibling;
+      gone.remove();
+    }
+  };
+  skip();
+  for (const child of children) {
+    if (child === at) {
+      at = at.nextSibling;
+      skip();
+    } else {
+      parent.insertBefore(child, at);
+    }
+  }
+}
+
+/** What was made under a name, kept until its key changes. */
+class Kept {
+  #known = new Map();
+
+  /** @param make gets what was made before, or undefined. */
+  of(name, key, make) {
+    const known = this.#known.get(name);
+    if (known?.key === key) {
+      return known.made;
+    }
+    const made = make(known?.made);
+    this.#known.set(name, { key, made });
+    return made;
+  }
+
+  /** Forgets what is not named. */
+  only(names) {
+    for (const name of this.#known.keys()) {
+      if (!names.has(name)) {
+        this.#known.delete(name);
+      }
+    }
+  }
+}
+
 /** An HTML element. */
 const html = (tag, attributes, ...children) => fill(document.createElement(tag), attributes, children);
 

@@ -150,6 +150,7 @@ class MeshCanvas {
     if (this.canvas.width !== w || this.canvas.height !== h) {
       this.canvas.width = w;
       this.canvas.height = h;
+      this.done = '';
     }
   }
 
@@ -170,76 +171,33 @@ class MeshCanvas {
     gl.drawElements(gl.TRIANGLES, this.mesh.small.length, gl.UNSIGNED_INT, 0);
   }
 
-  // Which pixel lies in which small triangle, and where in it, is found once per view; a new frame or quantity then costs a few steps per pixel,
-  // however many triangles there are.
-  #findPixels() {
-    const { mesh, canvas, ratio } = this, w = canvas.width, h = canvas.height, { small, box } = mesh;
-    const key = [w, h, this.scale, this.left, this.top].join();
-    if (key === this.pixelKey) {
-      return this.found;
-    }
-    this.pixelKey = key;
-    const k = this.scale * ratio, ox = this.left * ratio - k * box.cx - 0.5, oy = this.top * ratio + k * box.cy - 0.5;
-    const px = this.px ??= new Float64Array(mesh.count), py = this.py ??= new Float64Array(mesh.count);
-    for (let i = 0; i < mesh.count; i++) {
-      px[i] = ox + k * mesh.x[i];
-      py[i] = oy - k * mesh.y[i];
-    }
-    const owner = new Int32Array(w * h).fill(-1), second = new Float32Array(w * h), third = new Float32Array(w * h);
-    let count = 0;
-    for (let s = 0; s < small.length; s += 3) {
-      const a = small[s], b = small[s + 1], c = small[s + 2], ax = px[a], ay = py[a], bx = px[b], by = py[b], cx = px[c], cy = py[c];
-      const y0 = Math.max(0, Math.ceil(Math.min(ay, by, cy))), y1 = Math.min(h - 1, Math.floor(Math.max(ay, by, cy)));
-      const det = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
-      if (y0 > y1 || det === 0) {
-        continue;
-      }
-      const bdx = (cy - ay) / det, bdy = (ax - cx) / det, cdx = (ay - by) / det, cdy = (bx - ax) / det;
-      for (let y = y0; y <= y1; y++) {
-        let from = Infinity, to = -Infinity;
-        // Where the row meets the three sides.
-        if ((ay <= y) !== (by <= y)) {
-          from = to = ax + (y - ay) * (bx - ax) / (by - ay);
-        }
-        if ((by <= y) !== (cy <= y)) {
-          const x = bx + (y - by) * (cx - bx) / (cy - by);
-          from = Math.min(from, x);
-          to = Math.max(to, x);
-        }
-        if ((cy <= y) !== (ay <= y)) {
-          const x = cx + (y - cy) * (ax - cx) / (ay - cy);
-          from = Math.min(from, x);
-          to = Math.max(to, x);
-        }
-        const x1 = Math.min(w - 1, Math.floor(to));
-        for (let x = Math.max(0, Math.ceil(from)), p = y * w + x; x <= x1; x++, p++) {
-          count += owner[p] < 0 ? 1 : 0;
-          owner[p] = s;
-          second[p] = (x - ax) * bdx + (y - ay) * bdy;
-          third[p] = (x - ax) * cdx + (y - ay) * cdy;
-        }
-      }
-    }
-    const found = { pixel: new Int32Array(count), a: new Int32Array(count), b: new Int32Array(count), c: new Int32Array(count), wb: new Float32Array(count), wc: new Float32Array(count) };
-    for (let p = 0, n = 0; p < owner.length; p++) {
-      const s = owner[p];
-      if (s >= 0) {
-        found.pixel[n] = p;
-        found.a[n] = small[s];
-        found.b[n] = small[s + 1];
-        found.c[n] = small[s + 2];
-        found.wb[n] = second[p];
-        found.wc[n++] = third[p];
-      }
-    }
-    this.image = this.pen.createImageData(w, h);
-    this.pixels = new Uint32Array(this.image.data.buffer);
-    this.levels = new Float32Array(w * h).fill(NaN);
-    return this.found = found;
+  /** Shows nothing. */
+  clear() {
+    this.canvas.width = this.canvas.width;
+    this.done = '';
   }
 
+  /** Goes on with another mesh; for the plain kind, whose canvas knows nothing of meshes. */
+  use(mesh) {
+    this.mesh = mesh;
+    this.done = '';
+  }
+
+  // Triangle by triangle and row by row: value and level grow by fixed steps along a row. Costs less than to remember which pixel lies where.
   #drawPlain() {
-    const { values, table, low } = this, { pixel, a, b, c, wb, wc } = this.#findPixels(), { pixels } = this;
+    const { mesh, canvas, ratio, values, potential, table, low, high, step } = this, w = canvas.width, h = canvas.height;
+    const key = [w, h, this.scale, this.left, this.top, low, high, step].join();
+    if (key === this.done && this.drawn?.values === values && this.drawn.potential === potential && this.drawn.table === table) {
+      return;
+    }
+    this.done = key;
+    this.drawn = { values, potential, table };
+    if (this.image?.width !== w || this.image.height !== h) {
+      this.image = this.pen.createImageData(w, h);
+      this.pixels = new Uint32Array(this.image.data.buffer);
+    } else {
+      this.pixels.fill(0);
+    }
     if (this.wordTable !== table) {
       this.words = new Uint32Array(256);
       for (let i = 0; i < 256; i++) {
@@ -247,39 +205,76 @@ class MeshCanvas {
       }
       this.wordTable = table;
     }
-    const { words } = this, span = 255 / (this.high - low), base = 0.5 - low * span;
-    for (let n = 0; n < pixel.length; n++) {
-      const va = values[a[n]], v = base + span * (va + wb[n] * (values[b[n]] - va) + wc[n] * (values[c[n]] - va));
-      pixels[pixel[n]] = words[v < 0 ? 0 : v > 255 ? 255 : v | 0];
+    const k = this.scale * ratio, ox = this.left * ratio - k * mesh.box.cx - 0.5, oy = this.top * ratio + k * mesh.box.cy - 0.5, count = mesh.count;
+    if (!(this.px?.length >= count)) {
+      this.px = new Float64Array(count);
+      this.py = new Float64Array(count);
     }
-    if (this.potential) {
-      this.#drawLevels(this.found);
+    const { px, py } = this;
+    for (let i = 0; i < count; i++) {
+      px[i] = ox + k * mesh.x[i];
+      py[i] = oy - k * mesh.y[i];
     }
+    fillTriangles({ pixels: this.pixels, w, h, small: mesh.small, px, py, values, words: this.words, low, span: 255 / (high - low), potential, inverse: 1 / (step || 1), thick: Math.max(1, ratio) });
     this.pen.putImageData(this.image, 0, 0);
   }
+}
 
-  // White lines with a dark hem, as the shader draws them: by the distance from a level in pixels.
-  #drawLevels({ pixel, a, b, c, wb, wc }) {
-    const { potential, levels, pixels } = this, w = this.canvas.width, inverse = 1 / (this.step || 1), lines = Math.max(1, this.ratio);
-    for (let n = 0; n < pixel.length; n++) {
-      const v = potential[a[n]];
-      levels[pixel[n]] = inverse * (v + wb[n] * (potential[b[n]] - v) + wc[n] * (potential[c[n]] - v));
+// Level lines are white with a dark hem, as the shader draws them: by the distance from a level in pixels.
+function fillTriangles({ pixels, w, h, small, px, py, values, words, low, span, potential, inverse, thick }) {
+  const start = 0.5 - low * span;
+  for (let s = 0; s < small.length; s += 3) {
+    const a = small[s], b = small[s + 1], c = small[s + 2], ax = px[a], ay = py[a], bx = px[b], by = py[b], cx = px[c], cy = py[c];
+    const y0 = Math.max(0, Math.ceil(ay < by ? ay < cy ? ay : cy : by < cy ? by : cy)), y1 = Math.min(h - 1, Math.floor(ay > by ? ay > cy ? ay : cy : by > cy ? by : cy));
+    const det = (bx - ax) * (cy - ay) - (by - ay) * (cx - ax);
+    if (y0 > y1 || det === 0 || (ax < 0 && bx < 0 && cx < 0) || (ax >= w && bx >= w && cx >= w)) {
+      continue;
     }
-    for (let n = 0; n < pixel.length; n++) {
-      const p = pixel[n], level = levels[p], off = Math.abs(level - Math.round(level));
-      let dx = Math.abs(levels[p + 1] - level), dy = Math.abs(levels[p + w] - level);
-      // Not a number at the rim: look back instead.
-      dx = dx >= 0 ? dx : Math.abs(level - levels[p - 1]);
-      dy = dy >= 0 ? dy : Math.abs(level - levels[p - w]);
-      const width = (dx >= 0 ? dx : 0) + (dy >= 0 ? dy : 0);
-      if (off < 1.3 * lines * width && width < 0.5) {
-        const away = off / width, fade = 1 - smoothstep(0.25, 0.5, width);
-        const dark = 1 - 0.3 * fade * smoothstep(lines * 1.3, lines * 0.9, away), white = 0.95 * fade * smoothstep(lines * 0.75, lines * 0.35, away);
-        const word = pixels[p], mix = v => Math.round(255 * white + v * dark * (1 - white));
-        pixels[p] = (255 << 24 | mix(word >> 16 & 255) << 16 | mix(word >> 8 & 255) << 8 | mix(word & 255)) >>> 0;
+    const bdx = (cy - ay) / det, bdy = (ax - cx) / det, cdx = (ay - by) / det, cdy = (bx - ax) / det;
+    const va = values[a], vb = span * (values[b] - va), vc = span * (values[c] - va), vdx = vb * bdx + vc * cdx, vdy = vb * bdy + vc * cdy, v0 = start + span * va;
+    let l0 = 0, ldx = 0, ldy = 0, near = 0, width = 1;
+    if (potential) {
+      const la = potential[a], lb = inverse * (potential[b] - la), lc = inverse * (potential[c] - la);
+      l0 = inverse * la;
+      ldx = lb * bdx + lc * cdx;
+      ldy = lb * bdy + lc * cdy;
+      width = Math.abs(ldx) + Math.abs(ldy);
+      near = width > 0 && width < 0.5 ? 1.3 * thick * width : 0;
+    }
+    for (let y = y0; y <= y1; y++) {
+      let from = Infinity, to = -Infinity;
+      // Where the row meets the three sides.
+      if ((ay <= y) !== (by <= y)) {
+        from = to = ax + (y - ay) * (bx - ax) / (by - ay);
+      }
+      if ((by <= y) !== (cy <= y)) {
+        const x = bx + (y - by) * (cx - bx) / (cy - by);
+        from = x < from ? x : from;
+        to = x > to ? x : to;
+      }
+      if ((cy <= y) !== (ay <= y)) {
+        const x = cx + (y - cy) * (ax - cx) / (ay - cy);
+        from = x < from ? x : from;
+        to = x > to ? x : to;
+      }
+      const x0 = from > 0 ? Math.ceil(from) : 0, x1 = to < w - 1 ? Math.floor(to) : w - 1, row = y * w;
+      let v = v0 + (x0 - ax) * vdx + (y - ay) * vdy, level = l0 + (x0 - ax) * ldx + (y - ay) * ldy;
+      for (let p = row + x0; p <= row + x1; p++, v += vdx, level += ldx) {
+        const word = words[v < 0 ? 0 : v > 255 ? 255 : v | 0];
+        if (near > 0) {
+          const off = Math.abs(level - Math.floor(level + 0.5));
+          pixels[p] = off < near ? onLine(word, off / width, width, thick) : word;
+        } else {
+          pixels[p] = word;
+        }
       }
     }
   }
+}
+
+function onLine(word, away, width, thick) {
+  const fade = 1 - smoothstep(0.25, 0.5, width), dark = 1 - 0.3 * fade * smoothstep(thick * 1.3, thick * 0.9, away), white = 0.95 * fade * smoothstep(thick * 0.75, thick * 0.35, away), keep = dark * (1 - white), plus = 255 * white + 0.5;
+  return (255 << 24 | (plus + (word >> 16 & 255) * keep) << 16 | (plus + (word >> 8 & 255) * keep) << 8 | (plus + (word & 255) * keep)) >>> 0;
 }
 
 /** As in the shading language: 0 at one end, 1 at the other, smooth between; the ends may be given in either order. */

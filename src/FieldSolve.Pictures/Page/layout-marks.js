@@ -7,29 +7,37 @@ function roleOf(raw) {
   return { role: parts[0]?.role ?? '', words: parts.length ? { short: parts.map(p => `${marks[p.role] ?? ''}${p.sign}`).join(' '), spoken: parts.map(p => `${p.role} ${p.sign}`.trim()).join(', ') } : null };
 }
 
-/** One contact, pad or tip; onkey(e, contact) gets its keys. */
+/** One contact, pad or tip; onkey(e, contact) gets its keys. The element stays the same as long as there is a contact of that name, so that it keeps the focus. */
 function partNode(stage, c, role, words, onkey) {
-  const chosen = c.name === stage.selected, mark = stage.marks?.get(c.name), [u, v] = stage.toScreen(...c.middle);
-  const group = svg('g', {
-    class: `part ${chosen ? 'chosen' : ''}`, 'data-contact': c.name, tabindex: stage.tool === 'move' ? 0 : -1, role: 'button', 'aria-pressed': String(chosen),
+  const chosen = c.name === stage.selected, mark = stage.marks?.get(c.name), [u, v] = stage.toScreen(...c.middle), d = c.kind === 'tip' ? '' : stage.pathOf(c.points, c.kind === 'pad');
+  const attributes = {
+    class: `part ${chosen ? 'chosen' : ''}`, tabindex: stage.tool === 'move' ? 0 : -1, 'aria-pressed': String(chosen),
     'aria-label': `${{ edge: 'Contact', pad: 'Pad', tip: 'Tip' }[c.kind]} ${c.name}${words ? `, ${words.spoken}` : ''}; x ${number(c.middle[0] * stage.unit.factor, 4)}, y ${number(c.middle[1] * stage.unit.factor, 4)} ${stage.unit.unit}. Arrow keys move it.${mark ? ` Misplaced it changes V_across by ${mark.text}.` : ''}`,
-    onkeydown: e => onkey(e, c), onfocus: () => stage.act.select(c.name),
-  });
-  if (c.kind === 'tip') {
-    group.append(svg('circle', { class: 'grip', cx: u.toFixed(1), cy: v.toFixed(1), r: 13 }), svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: chosen ? 6 : 4.5 }));
+  };
+  const make = before => {
+    const group = fill(before ?? svg('g', {
+      'data-contact': c.name, role: 'button', onkeydown: e => onkey(e, stage.state.contacts.find(o => o.name === c.name)), onfocus: () => stage.act.select(c.name),
+    }), attributes, []);
+    group.replaceChildren(...shapesOf(c, { u, v, d, role, chosen, mark }));
     return group;
+  };
+  return stage.kept.of(`part ${c.name}`, JSON.stringify([attributes, c.kind, role, mark?.share, d || [u, v]]), make);
+}
+
+function shapesOf(c, { u, v, d, role, chosen, mark }) {
+  if (c.kind === 'tip') {
+    return [svg('circle', { class: 'grip', cx: u.toFixed(1), cy: v.toFixed(1), r: 13 }), svg('circle', { class: `tip ${role}`, cx: u.toFixed(1), cy: v.toFixed(1), r: chosen ? 6 : 4.5 })];
   }
-  const d = stage.pathOf(c.points, c.kind === 'pad'), wide = c.kind === 'pad' ? 2 : mark ? 8 : role ? 7 : 5;
-  group.append(svg('path', { class: 'grip', d, 'stroke-width': 22 }));
+  const wide = c.kind === 'pad' ? 2 : mark ? 8 : role ? 7 : 5, nodes = [svg('path', { class: 'grip', d, 'stroke-width': 22 })];
   if (chosen) {
-    group.append(svg('path', { class: 'chosen-line', d, 'stroke-width': wide + 9 }));
+    nodes.push(svg('path', { class: 'chosen-line', d, 'stroke-width': wide + 9 }));
   }
   if (mark) {
-    group.append(svg('path', { class: 'sensed-edge', 'stroke-width': wide + 3, d }), svg('path', { class: 'sensed', stroke: rgbText(RAMPS.ember, mark.share), fill: c.kind === 'pad' ? rgbText(RAMPS.ember, mark.share) : 'none', 'fill-opacity': 0.8, 'stroke-width': wide, d }));
+    nodes.push(svg('path', { class: 'sensed-edge', 'stroke-width': wide + 3, d }), svg('path', { class: 'sensed', stroke: rgbText(RAMPS.ember, mark.share), fill: c.kind === 'pad' ? rgbText(RAMPS.ember, mark.share) : 'none', 'fill-opacity': 0.8, 'stroke-width': wide, d }));
   } else {
-    group.append(svg('path', { class: 'halo', 'stroke-width': wide + 2.5, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': wide, d }));
+    nodes.push(svg('path', { class: 'halo', 'stroke-width': wide + 2.5, d }), svg('path', { class: `${c.kind === 'pad' ? 'pad ' : ''}metal ${role}`, 'stroke-width': wide, d }));
   }
-  return group;
+  return nodes;
 }
 
 /** Names stand outside: those of edges and pads away from the middle of the sheet, those of tips above them. */
@@ -52,7 +60,8 @@ function nameNode(stage, c, role, words) {
   const anchor = du > 0.4 ? 'start' : du < -0.4 ? 'end' : 'middle', wide = 8 * text.length, before = { start: 0, middle: wide / 2, end: wide }[anchor];
   x = Math.max(stage.margin.left + 3 + before, Math.min(stage.margin.left + stage.inner.width - 3 - wide + before, x));
   y = Math.max(stage.margin.top + 12, Math.min(stage.margin.top + stage.inner.height - 4, y));
-  return svg('text', { class: `tag ${role}`, x: x.toFixed(1), y: y.toFixed(1), 'text-anchor': anchor }, text);
+  const attributes = { class: `tag ${role}`, x: x.toFixed(1), y: y.toFixed(1), 'text-anchor': anchor };
+  return stage.kept.of(`name ${c.name}`, JSON.stringify([attributes, text]), () => svg('text', attributes, text));
 }
 
 /** Corners of the outline, and between them the places where one can be added; onkey(e, loop, corner) gets their keys. */

@@ -13,10 +13,11 @@ class LayoutStage extends Plane {
    */
   constructor(host, act) {
     super(0.1, 500);
-    Object.assign(this, { host, act, selected: null, tool: 'move', quantity: 'phi', mapStrength: 1, state: null, answer: null, frame: null, mesh: null, gestures: 0, picked: null });
+    Object.assign(this, { host, act, selected: null, tool: 'move', quantity: 'phi', mapStrength: 1, state: null, answer: null, frame: null, mesh: null, gestures: 0, picked: null, described: new Map(), kept: new Kept() });
     this.canvas = html('canvas', { 'aria-hidden': 'true' });
     this.window = svg('rect', null);
     this.inside = svg('g', { 'clip-path': 'url(#stage-clip)' });
+    this.names = svg('g', { class: 'names' });
     this.axes = svg('g', null);
     this.dial = svg('g', { class: 'dial' });
     this.overlay = svg('svg', { class: 'overlay' }, svg('defs', null, svg('clipPath', { id: 'stage-clip' }, this.window)), this.inside, this.axes, this.dial);
@@ -67,14 +68,25 @@ class LayoutStage extends Plane {
     this.draw();
   }
 
+  /** Takes the triangles that answers of a kind lie on from now on. */
+  describe(triangles) {
+    this.described.set(triangles.kind, { triangles, mesh: null });
+  }
+
+  // Triangles stay while something is dragged; only their corners move.
+  #meshOf(places) {
+    const known = this.described.get(places.kind);
+    return known.mesh = new Mesh(known.mesh ? places : { ...known.triangles, ...places }, known.mesh);
+  }
+
   /** Shows another answer, for one wiring. */
   answerWith(answer, wiring) {
     const frame = answer?.frames?.find(f => f.wiring === wiring);
     if (frame) {
       if (answer !== this.answer) {
-        answer.built ??= new Mesh(answer.mesh);
-        this.mesh = answer.built;
-        this.view = new MeshCanvas(this.canvas, this.mesh, 'plain');
+        this.mesh = answer.built ??= this.#meshOf(answer.mesh);
+        this.view ??= new MeshCanvas(this.canvas, this.mesh, 'plain');
+        this.view.use(this.mesh);
       }
       frame.fields ??= new FrameFields(this.mesh, null, frame);
       this.fields = frame.fields;
@@ -123,40 +135,56 @@ class LayoutStage extends Plane {
       // While answers are coarse they come fast: one pixel of the page each is enough then.
       this.view.look(inner.width, inner.height, this.answer.accurate ? Math.min(2, devicePixelRatio || 1) : 1, this.fit * this.zoom, u - margin.left, v - margin.top);
       this.view.draw();
-      rampLegend(this.legend, 'stage-ramp', { low: ends[0], high: ends[1], unit: q.unit, log: q.log && ends[1] > 0, table: RAMPS[q.table], label: q.label, width: this.width, left: margin.left, words: `; lines every ${quantity(this.step, 'V')}` });
+      this.#showLegend({ low: ends[0], high: ends[1], unit: q.unit, log: q.log && ends[1] > 0, table: RAMPS[q.table], label: q.label, width: this.width, left: margin.left, words: `; lines every ${quantity(this.step, 'V')}` });
     } else {
-      this.canvas.width = this.canvas.width;
-      this.legend.replaceChildren();
+      this.view?.clear();
+      this.#showLegend(null);
     }
     this.#drawOver();
     this.painted?.(this.answer);
   }
 
+  #showLegend(what) {
+    const key = JSON.stringify({ ...what, table: null, quantity: what && this.quantity });
+    if (key === this.legendKey) {
+      return;
+    }
+    this.legendKey = key;
+    if (what) {
+      rampLegend(this.legend, 'stage-ramp', what);
+    } else {
+      this.legend.replaceChildren();
+    }
+  }
+
   #drawOver() {
     const { margin, inner, inside, state } = this, right = margin.left + inner.width;
-    fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []);
-    const focus = document.activeElement?.closest?.('[data-contact], [data-corner], [data-traced]')?.dataset, nodes = [], names = svg('g', { class: 'names' });
-    for (const loop of state.rim) {
+    const view = JSON.stringify([margin, inner, this.fit, this.zoom, this.panX, this.panY, this.extent]);
+    this.kept.of('window', view, () => fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []));
+    const focus = document.activeElement?.closest?.('[data-corner], [data-traced]')?.dataset, nodes = [], names = [], { kept } = this;
+    state.rim.forEach((loop, k) => {
       const d = this.pathOf(loop, true);
       // Over a picture the rim needs a bright line beside the dark one.
-      nodes.push(...this.picture.there ? [svg('path', { class: 'trace-halo', d })] : [], svg('path', { class: 'rim', d }));
-    }
+      nodes.push(...this.picture.there ? [kept.of(`halo ${k}`, d, () => svg('path', { class: 'trace-halo', d }))] : [], kept.of(`rim ${k}`, d, () => svg('path', { class: 'rim', d })));
+    });
     const roles = state.wirings[this.wiring]?.roles ?? [];
     state.contacts.forEach((c, k) => {
       const { role, words } = roleOf(roles[k]);
       nodes.push(partNode(this, c, role, words, (e, contact) => this.#key(e, contact)));
-      names.append(nameNode(this, c, role, words));
+      names.push(nameNode(this, c, role, words));
     });
+    adopt(this.names, names);
     if (this.tool === 'corner' && state.outline) {
       state.outline.loops.forEach((l, loop) => nodes.push(...cornerNodes(this, l.points, loop, (e, at, k) => this.#cornerKey(e, at, k))));
     }
-    inside.replaceChildren(...nodes, names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k), taken: name => state.contacts.some(c => c.name === name) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross());
+    adopt(inside, [...nodes, this.names, ...this.trace.nodes(this.tool === 'trace', { key: (e, index, k) => this.#tracedKey(e, index, k), taken: name => state.contacts.some(c => c.name === name) }), ...this.picture.there ? this.picture.nodes() : [], ...this.#cross()]);
     if (focus) {
-      const key = ['contact', 'corner', 'traced'].find(k => focus[k] !== undefined);
+      const key = ['corner', 'traced'].find(k => focus[k] !== undefined);
       [...inside.querySelectorAll(`[data-${key}]`)].find(n => n.dataset[key] === focus[key])?.focus({ preventScroll: true });
     }
-    this.axes.replaceChildren(...this.axisNodes());
-    this.#drawDial(right);
+    kept.only(new Set(['window', 'axes', 'dial', ...state.rim.flatMap((_, k) => [`halo ${k}`, `rim ${k}`]), ...state.contacts.flatMap(c => [`part ${c.name}`, `name ${c.name}`])]));
+    kept.of('axes', view, () => this.axes.replaceChildren(...this.axisNodes()));
+    kept.of('dial', JSON.stringify([view, state.axis]), () => this.#drawDial(right));
   }
 
   // Where the keys would place something.

@@ -129,6 +129,7 @@ class LayoutApp {
     const events = new EventSource(at);
     events.addEventListener('open', () => { this.lost = false; this.#badge(); });
     events.addEventListener('state', e => this.#state(JSON.parse(e.data)));
+    events.addEventListener('triangles', e => this.stage.describe(JSON.parse(e.data)));
     events.addEventListener('answer', e => this.#answer(JSON.parse(e.data)));
     events.addEventListener('error', () => {
       this.lost = true;

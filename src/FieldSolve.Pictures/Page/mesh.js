@@ -1,45 +1,63 @@
 // Quadratic triangles with six nodes each (corners 0, 1, 2, then the middles of edges 01, 12, 20), bent along arcs, as in the solver.
 
 class Mesh {
-  constructor(data) {
-    const places = doublesOf(data.places), corners = new Int32Array(3 * data.triangles);
-    let next = 0;
-    new PackedNumbers(data.corners).read(corners.length, (back, i) => {
-      corners[i] = next - back;
-      next += back === 0 ? 1 : 0;
-    });
-    const firstMiddle = places.length / 2, count = data.count, triangles = data.triangles;
-    this.triangles = triangles;
-    this.count = count;
-    this.x = new Float64Array(count);
-    this.y = new Float64Array(count);
-    for (let i = 0; i < firstMiddle; i++) {
-      this.x[i] = places[2 * i];
-      this.y[i] = places[2 * i + 1];
+  /** @param like a mesh whose triangles are the same, only placed otherwise; data then needs no corners. */
+  constructor(data, like = null) {
+    const places = doublesOf(data.places), firstMiddle = places.length / 2;
+    if (like) {
+      const { count, triangles, nodes, before, small } = like;
+      Object.assign(this, { count, triangles, nodes, before, small });
+    } else {
+      this.count = data.count;
+      this.triangles = data.triangles;
+      this.#findNodes(data.corners, firstMiddle);
     }
-    this.nodes = new Int32Array(6 * triangles);
-    this.before = { first: new Int32Array(count).fill(-1), second: new Int32Array(count).fill(-1) };
-    this.#findMiddles(corners, firstMiddle);
+    const { count, triangles, nodes, before } = this, x = this.x = new Float64Array(count), y = this.y = new Float64Array(count);
+    for (let i = 0; i < firstMiddle; i++) {
+      x[i] = places[2 * i];
+      y[i] = places[2 * i + 1];
+    }
+    for (let i = firstMiddle; i < count; i++) {
+      const a = before.first[i], b = before.second[i];
+      x[i] = 0.5 * (x[a] + x[b]);
+      y[i] = 0.5 * (y[a] + y[b]);
+    }
     const bent = new Int32Array(bytesOf(data.bent).buffer), bentPlaces = doublesOf(data.bentPlaces), isBent = new Uint8Array(count);
     bent.forEach((n, i) => {
-      this.x[n] = bentPlaces[2 * i];
-      this.y[n] = bentPlaces[2 * i + 1];
+      x[n] = bentPlaces[2 * i];
+      y[n] = bentPlaces[2 * i + 1];
       isBent[n] = 1;
     });
     this.bent = new Uint8Array(triangles);
-    this.small = new Uint32Array(12 * triangles);
-    for (let t = 0; t < triangles; t++) {
-      const [a, b, c, d, e, f] = this.nodes.subarray(6 * t, 6 * t + 6);
-      this.bent[t] = isBent[d] | isBent[e] | isBent[f];
-      this.small.set([a, d, f, d, b, e, f, e, c, d, e, f], 12 * t);
+    for (let t = 0, n = 0; t < triangles; t++, n += 6) {
+      this.bent[t] = isBent[nodes[n + 3]] | isBent[nodes[n + 4]] | isBent[nodes[n + 5]];
     }
     this.#measure();
-    this.#makeGrid();
+  }
+
+  // Corners, middles and the four small triangles of each.
+  #findNodes(packed, firstMiddle) {
+    const { count, triangles } = this, corners = new Int32Array(3 * triangles);
+    let next = 0;
+    new PackedNumbers(packed).read(corners.length, (back, i) => {
+      corners[i] = next - back;
+      next += back === 0 ? 1 : 0;
+    });
+    const nodes = this.nodes = new Int32Array(6 * triangles), small = this.small = new Uint32Array(12 * triangles);
+    this.before = { first: new Int32Array(count).fill(-1), second: new Int32Array(count).fill(-1) };
+    this.#findMiddles(corners, firstMiddle);
+    for (let t = 0, n = 0, at = 0; t < triangles; t++, n += 6) {
+      const a = nodes[n], b = nodes[n + 1], c = nodes[n + 2], d = nodes[n + 3], e = nodes[n + 4], f = nodes[n + 5];
+      for (const k of [a, d, f, d, b, e, f, e, c, d, e, f]) {
+        small[at++] = k;
+      }
+    }
   }
 
   // Middles are numbered as they appear, going through the triangles and their edges 01, 12, 20.
   #findMiddles(corners, firstMiddle) {
-    const seen = new Map(), { first, second } = this.before;
+    // The edges of each corner to those of higher number, as chains.
+    const head = new Int32Array(firstMiddle).fill(-1), chain = new Int32Array(this.count), { first, second } = this.before;
     let next = firstMiddle, corner = 0;
     for (let t = 0; t < this.triangles; t++) {
       // What a frame's values may be foretold from: the known corners of the first triangle of each corner, the ends of each edge.
@@ -56,15 +74,17 @@ class Mesh {
         }
       }
       for (let k = 0; k < 3; k++) {
-        const a = corners[3 * t + k], b = corners[3 * t + (k + 1) % 3], key = a < b ? a * firstMiddle + b : b * firstMiddle + a;
-        let m = seen.get(key);
-        if (m === undefined) {
+        const a = corners[3 * t + k], b = corners[3 * t + (k + 1) % 3], low = a < b ? a : b;
+        let m = head[low];
+        while (m >= 0 && first[m] + second[m] !== a + b) {
+          m = chain[m];
+        }
+        if (m < 0) {
           m = next++;
-          seen.set(key, m);
+          chain[m] = head[low];
+          head[low] = m;
           first[m] = a;
           second[m] = b;
-          this.x[m] = 0.5 * (this.x[a] + this.x[b]);
-          this.y[m] = 0.5 * (this.y[a] + this.y[b]);
         }
         this.nodes[6 * t + k] = a;
         this.nodes[6 * t + 3 + k] = m;
@@ -83,7 +103,11 @@ class Mesh {
     this.box = { x0, x1, y0, y1, cx: (x0 + x1) / 2, cy: (y0 + y1) / 2, width: x1 - x0, height: y1 - y0, diagonal: Math.hypot(x1 - x0, y1 - y0) };
   }
 
-  // Boxes with the triangles that touch them.
+  // Boxes with the triangles that touch them, made when a place is first looked for.
+  get grid() {
+    return this.boxes ??= this.#makeGrid();
+  }
+
   #makeGrid() {
     const { x0, y0, width, height } = this.box, cell = Math.sqrt(width * height / Math.max(64, this.triangles)) || 1;
     const columns = Math.max(1, Math.ceil(width / cell)), rows = Math.max(1, Math.ceil(height / cell));
@@ -115,7 +139,7 @@ class Mesh {
     visit((box, t) => {
       member[at[box]++] = t;
     });
-    this.grid = { x0, y0, cell, columns, rows, start, member };
+    return { x0, y0, cell, columns, rows, start, member };
   }
 
   /** The triangle under a point and the point's coordinates (b, c) in it, a = 1 - b - c; null outside the sheet. */

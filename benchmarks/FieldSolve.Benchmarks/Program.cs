@@ -18,7 +18,13 @@ if (args is ["page"])
     return;
 }
 
-// "layout" times the answers of the layout page; a second word is the number of moves for the look at memory, or "browser" for the times in the browser alone.
+// "layout" times the answers of the layout page; a second word is the number of moves for the look at memory, "browser" for the times in the browser alone, or "bars" for the bars of the coarse answers.
+if (args is ["layout", "bars"])
+{
+    FieldSolve.Benchmarks.CoarseAnswers.Print(Console.Out);
+    return;
+}
+
 if (args is ["layout", "browser"])
 {
     await FieldSolve.Benchmarks.LayoutPageTimes.Print(Console.Out);

@@ -24,7 +24,7 @@ internal sealed class QuickAnswer
     private const double Doubt = 2;
 
     // A difference that happens to change its sign as a contact moves says nothing for a moment: no bar is below this share of the widest among the probes.
-    private const double LeastShare = 0.1;
+    private const double LeastShare = 0.3;
 
     // A mesh whose triangles have lost more of their shape than this is made anew when there is time.
     private const double WellKept = 0.8;

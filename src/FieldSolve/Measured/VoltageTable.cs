@@ -259,7 +259,7 @@ public static class VoltageTable
             }
 
             string name = cell.Text.Length > 0 ? cell.Text : $"{plus.Text}-{minus.Text}";
-            if (circuit.Pairs.Any(x => x.Name == name))
+            if (circuit.Pairs.Any(x => x.Name == name) || (PairNamed(name, circuit) is { } other && (other.Plus != p || other.Minus != m)))
             {
                 faults.Add(new(cell.Line, cell.Column), $"the pair '{Values.Short(name)}' already stands for other probes");
                 return -1;
@@ -275,9 +275,7 @@ public static class VoltageTable
             return at;
         }
 
-        Pair? known = cell.Text == SourcePair ? new Pair(SourcePair, new(false, circuit.Source), new(false, circuit.Drain))
-            : circuit.Known?.Pairs.FirstOrDefault(x => x.Name == cell.Text);
-        if (known is null)
+        if (PairNamed(cell.Text, circuit) is not { } known)
         {
             string[] names = [.. circuit.Known?.Pairs.Select(x => x.Name) ?? [], SourcePair];
             faults.Add(new(cell.Line, cell.Column), circuit.Known is null
@@ -289,6 +287,11 @@ public static class VoltageTable
         circuit.Pairs.Add(known);
         return circuit.Pairs.Count - 1;
     }
+
+    // What a name stands for, whatever the table says.
+    private static Pair? PairNamed(string name, Circuit circuit) => name == SourcePair
+        ? new Pair(SourcePair, new(false, circuit.Source), new(false, circuit.Drain))
+        : circuit.Known?.Pairs.FirstOrDefault(x => x.Name == name);
 
     private static int Contact(DataCell cell, string column, SheetDevice device, FaultList faults)
     {

@@ -24,15 +24,33 @@ internal sealed record GoalMeasure(
     /// <summary>Error that was asked for, V; set once all readings are known.</summary>
     public double Wanted { get; init; }
 
+    /// <summary>Reading per ampere in the limit of small drive, ohm; 0 for an even part.</summary>
+    public double WeakValue { get; init; }
+
     /// <summary>Value with the correction, V.</summary>
     public double Corrected => Value + Error.Correction;
 
-    /// <summary>The same with a bar that minds how far the reading moved since the mesh before, where it was measured at the same current.</summary>
+    /// <summary>The same with a bar that minds how far the reading moved since the mesh before; where it was not measured there at the same current, it is untried.</summary>
     public GoalMeasure AfterMove(IReadOnlyList<GoalMeasure> before)
     {
         GoalMeasure? last = before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven && g.Current == Current);
-        return last is null ? this : this with { Error = Error.AfterMove(last.Error, Corrected - last.Corrected) };
+        return before.Count == 0 ? this : last is null ? Untried() : this with
+        {
+            Error = Error.AfterMove(last.Error, Corrected - last.Corrected),
+            WeakError = last.WeakError is { } weak ? WeakError!.AfterMove(weak, WeakValue + WeakError.Correction - last.WeakValue - weak.Correction) : WeakError,
+        };
     }
+
+    /// <summary>The same with bars for a mesh that nothing can be compared with yet.</summary>
+    public GoalMeasure Untried() => this with { Error = Error.Untried(), WeakError = WeakError?.Untried() };
+
+    /// <summary>The same with bars that trust the corrections as far as those of the same reading did on these triangles before they were moved a little.</summary>
+    /// <param name="before">The goals there.</param>
+    public GoalMeasure TriedAs(IReadOnlyList<GoalMeasure> before) => before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven) is not { } last ? Untried() : this with
+    {
+        Error = Error.TriedAs(last.Error),
+        WeakError = last.WeakError is { } weak ? WeakError!.TriedAs(weak) : WeakError,
+    };
 }
 
 /// <summary>Estimates the errors of all readings of one wiring at the largest current, by coarse and fine solutions at +I and -I.</summary>
@@ -63,7 +81,8 @@ internal static class LevelMeasure
         {
             return [.. weakErrors.Select((e, k) => new GoalMeasure(
                 plan, k, false, current, current * weak.Fine[k], current * (weak.Fine[k] - weak.Coarse[k]), e.Times(current),
-                weak.Fine[k] - weak.Coarse[k], e, meshes.Exponent))];
+                weak.Fine[k] - weak.Coarse[k], e, meshes.Exponent)
+            { WeakValue = weak.Fine[k] })];
         }
 
         (State? plus, State? minus) = (null, null);
@@ -93,7 +112,8 @@ internal static class LevelMeasure
                 plan, k, false, reached, plus.Fine[k], plus.Fine[k] - plus.Coarse[k],
                 Judged(GoalError.Of(meshes.Between, meshes.Shares, plus.Fine[k] - plus.Coarse[k], [(1, plus.Residual, plus.Details[k])]), plus.Fine[k], plus.Fine[k] - plus.Coarse[k])
                     .Beside(weakErrors[k], reached),
-                weak.Fine[k] - weak.Coarse[k], weakErrors[k], meshes.Exponent));
+                weak.Fine[k] - weak.Coarse[k], weakErrors[k], meshes.Exponent)
+            { WeakValue = weak.Fine[k] });
             if (minus is not null && plan.HasEven[k])
             {
                 double fine = (plus.Fine[k] + minus.Fine[k]) / 2, coarse = (plus.Coarse[k] + minus.Coarse[k]) / 2;

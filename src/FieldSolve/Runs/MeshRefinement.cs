@@ -111,7 +111,7 @@ internal sealed class MeshRefinement
             before = measured;
 
             // What is stated; the sizes of the next mesh follow what is expected.
-            List<GoalMeasure> stated = level > 0 ? measured : [.. measured.Select(g => g with { Error = g.Error.Untried() })];
+            List<GoalMeasure> stated = level > 0 ? measured : [.. measured.Select(g => g.Untried())];
             levels.Add(new(level, 4 * mesh.TriangleCount, meshes.Fine.Space.Size, [.. stated.Select(g => new LevelEstimate(
                 g.Plan.Wiring.Name, g.Plan.Pairs[g.Pair].Name, g.IsEven ? "even" : "value", g.Corrected, g.Error.Bar, g.Wanted)
             {

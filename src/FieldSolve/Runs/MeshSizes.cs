@@ -3,6 +3,7 @@ using FieldSolve.Geometry;
 using FieldSolve.Laws;
 using FieldSolve.Meshing;
 using FieldSolve.Meshing.SizeFields;
+using FieldSolve.Readings;
 
 namespace FieldSolve.Runs;
 
@@ -27,6 +28,9 @@ internal static class MeshSizes
 
     // Later predictions start from better meshes, but one that failed should not fail again for a trifle.
     private const double LessEachLevel = 0.95;
+
+    // At the rim of a pad whose transfer length is not resolved an error falls more slowly than elsewhere.
+    private const double LayerPower = 1.0 / 3;
 
     /// <summary>Sizes of the first mesh.</summary>
     /// <param name="device">Sheet and contacts.</param>
@@ -89,7 +93,7 @@ internal static class MeshSizes
             int vertex = meshes.Vertex[t];
             double factor = vertex >= 0
                 ? Math.Clamp(Math.Pow(CoreBudget * cancelling / Math.Max(cores, 1) / Math.Max(load[t], double.Epsilon), 1 / exponent[t][vertex]), 1e-6, 2)
-                : Math.Clamp(Math.Pow(equal / Math.Max(load[t], double.Epsilon), 1.0 / 6), 0.2, 2);
+                : Math.Clamp(Math.Pow(equal / Math.Max(load[t], double.Epsilon), meshes.Shares.Kinds[t] == Falloff.Smooth ? 1.0 / 6 : LayerPower), 0.2, 2);
             double edge = EquilateralEdge(mesh, t);
 
             // At a singular point only the point itself asks for tiny triangles; its neighbours follow by the growth.
@@ -149,7 +153,7 @@ internal static class MeshSizes
     }
 
     // The mesher makes about as many triangles as equilateral ones of the wanted edge would be.
-    private static double EquilateralEdge(TriangleMesh mesh, int t)
+    public static double EquilateralEdge(TriangleMesh mesh, int t)
     {
         int a = mesh.Corners[3 * t], b = mesh.Corners[(3 * t) + 1], c = mesh.Corners[(3 * t) + 2];
         double area = 0.5 * (((mesh.X[b] - mesh.X[a]) * (mesh.Y[c] - mesh.Y[a])) - ((mesh.X[c] - mesh.X[a]) * (mesh.Y[b] - mesh.Y[a])));

@@ -9,6 +9,9 @@ internal sealed class RowMaker
     // Readings are differences of potentials; nothing below this share of the largest, and below what the iteration left over, is resolved.
     private const double RoundingShare = 2e-13;
 
+    // An even part is compared with that at the largest current where that is so many of its bars.
+    private const double Resolved = 10;
+
     private readonly SheetDevice device;
     private readonly IReadOnlyList<GoalMeasure> goals;
 
@@ -67,7 +70,7 @@ internal sealed class RowMaker
 
             double odd = (here.Values[k] - opposite.Values![k]) / 2, even = (here.Values[k] + opposite.Values[k]) / 2;
             double oddDifference = (here.Difference![k] - opposite.Difference![k]) / 2, evenDifference = (here.Difference[k] + opposite.Difference[k]) / 2;
-            (double missingEven, double evenBar) = device.Law.IsLinear ? (0, -floor) : EstimateEven(plan, k, current, evenDifference);
+            (double missingEven, double evenBar) = device.Law.IsLinear ? (0, -floor) : EstimateEven(plan, k, current, even, evenDifference);
             (double missingOdd, double error) = Estimate(plan, k, current, oddDifference, evenDifference);
             (odd, even) = (odd + missingOdd, even + missingEven);
             double evenGuard = (here.Zone.Share[k] + opposite.Zone!.Share[k]) / 2;
@@ -124,16 +127,20 @@ internal sealed class RowMaker
         {
             double towards = (measured * Math.Sign(goal.Current) * ratio) - (goal.WeakDifference * Math.Abs(current));
             double here = (difference * Math.Sign(current)) - (goal.WeakDifference * Math.Abs(current));
-            return towards == 0 ? 1 : Math.Min(Math.Abs(here / towards), Math.Max(1, ratio));
+            double most = Math.Max(1, ratio);
+            return towards == 0 ? 1 : Math.Clamp(here / towards, -most, most);
         }
 
-        double share = Along(goal.Difference, oddDifference + evenDifference), oddShare = Math.Min(1, Along(oddMeasured, oddDifference));
+        // With its sign: where one sign of the current was measured alone, what is even changes its side at the other.
+        double share = Math.Abs(Along(goal.Difference, oddDifference + evenDifference)), oddShare = Math.Clamp(Along(oddMeasured, oddDifference), -1, 1);
         double missing = goal.WeakError.Correction + (oddShare * ((oddCorrection / goal.Current) - goal.WeakError.Correction));
         return (current * missing, Math.Max(weak + (share * (strong - weak)), Math.Min(weak, strong)));
     }
 
-    // An even part goes like I², its bar no lower than a third of that.
-    private (double Missing, double Bar) EstimateEven(ReadingPlan plan, int pair, double current, double difference)
+    // An even part goes like I², its bar no lower than a third of that. Where the law fades, a weaker drive has more of it, and more still of its error, which sits at contact ends where the
+    // law fades first: of an even part f times what I² makes of the one at the largest current, bars of up to 2f - 1 times were needed (discs and squares whose law fades; f up to 90).
+    // The difference of the two meshes is heeded too, since by itself it may be small by chance at the largest current.
+    private (double Missing, double Bar) EstimateEven(ReadingPlan plan, int pair, double current, double even, double difference)
     {
         if (current == 0)
         {
@@ -146,7 +153,9 @@ internal sealed class RowMaker
         }
 
         double ratio = Math.Abs(current / goal.Current), expected = ratio * ratio * Math.Abs(goal.Difference);
-        double share = expected > 0 ? Math.Abs(difference) / expected : 1;
-        return (ratio * ratio * goal.Error.Correction, ratio * ratio * goal.Error.Bar * Math.Clamp(share, 1.0 / 3, Math.Max(1, ratio)));
+        double share = expected > 0 ? Math.Abs(difference) / expected : 1, bar = ratio * ratio * goal.Error.Bar;
+        double fade = Math.Abs(goal.Value) > Resolved * goal.Error.Bar ? Math.Max(1, Math.Abs(even / (ratio * ratio * goal.Value))) : 1;
+        double follows = Math.Abs(difference) * (goal.Difference == 0 ? 1 : Math.Min(1, goal.Error.Bar / Math.Abs(goal.Difference)));
+        return (ratio * ratio * goal.Error.Correction, Math.Max(fade > 1 ? bar * ((2 * fade) - 1) : bar * Math.Clamp(share, 1.0 / 3, Math.Max(1, ratio)), follows));
     }
 }

@@ -163,4 +163,16 @@ public class FitModelTests
         Assert.True(stated.Max() < 1e-6 * largest);
         Assert.True(exact[20] + exact[0] != 0, "no even part, nothing was tested");
     }
+
+    // A first mesh that nothing was compared with: its bars trust the corrections to their sign alone, and measuring the same mesh again makes nothing better known.
+    [Fact]
+    public void Bars_of_a_moved_mesh_trust_its_corrections_no_more_than_those_before()
+    {
+        SheetDevice device = FitDevices.Read(FitDevices.SixArms(DeviceText.Ohmic(4e-3, 1.5e-3, 1e-4, 20)), "a = true");
+        MeasuredVoltages data = FitDevices.Table(device, "wiring,pair,current_A,value_V,sigma_V\n0 deg,along,1e-4,5e-3,1e-4\n60 deg,across,1e-4,5e-3,1e-4\n");
+        var problem = new FitProblem(device, device.Fit!.Parameters, data, data.Data);
+        FitReference first = FitReference.Refine(problem, problem.Start, 0.2, _ => { }, new StageClock(), default);
+        FitReference again = first.Again(problem.Start, first.Meshes.Coarse.Space.Mesh, 0.2, default);
+        Assert.All(first.Bars.Zip(again.Bars), bars => Assert.Equal(1, bars.Second / bars.First, 1e-6));
+    }
 }

@@ -77,6 +77,35 @@ public class LeastSquaresTests
     public void Says_so_when_the_model_says_nothing_at_the_start() =>
         Assert.Null(LeastSquares.Run(new Nothing(), Task([1, 2], 1), [1, 1], 5, default));
 
+    [Fact]
+    public void Short_steps_before_a_wall_are_no_end()
+    {
+        // y = 10 ± 0.1, and a model that says nothing beyond 1: however short the steps have become there, the best number lies elsewhere.
+        var task = new FitTask([10], [0.1], [-99], [99], [0], [double.PositiveInfinity], [false], [double.PositiveInfinity], [false], false);
+        FitEnd end = LeastSquares.Run(new Walled(), task, [0.3], 200, default)!;
+        Assert.InRange(end.P[0], 0.9, 1);
+        Assert.False(end.Converged);
+    }
+
+    [Fact]
+    public void An_interval_has_no_end_where_the_model_says_nothing()
+    {
+        // 0.9 ± 0.1: the 95 % point above is 1.096, beyond the wall at 1; below it is 0.704.
+        var task = new FitTask([0.9], [0.1], [-99], [99], [0], [double.PositiveInfinity], [false], [double.PositiveInfinity], [false], false);
+        FitEnd best = LeastSquares.Run(new Walled(), task, [0.5], 50, default)!;
+        Assert.True(best.Converged);
+        (double? low, double? high) = ProfileInterval.Of(new Walled(), task, best, new double[,] { { 0.01 } }, 1, 0, default).Interval;
+        Assert.Equal(0.9 - (1.959964 * 0.1), low!.Value, 0.002);
+        Assert.Null(high);
+    }
+
+    private sealed class Walled : IFitFunction
+    {
+        public double[]? Values(double[] p, CancellationToken cancel) => p[0] > 1 ? null : [p[0]];
+
+        public double[,] Jacobian(double[] p, CancellationToken cancel) => new double[,] { { 1 } };
+    }
+
     private sealed class Identity : IFitFunction
     {
         public double[]? Values(double[] p, CancellationToken cancel) => [p[0]];

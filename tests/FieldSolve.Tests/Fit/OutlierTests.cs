@@ -51,6 +51,44 @@ public class OutlierTests
         Assert.Null(result.Of("b").Interval);
     }
 
+    // Three data and two numbers leave residuals far below the noise; the stated sigmas stand all the same.
+    [Fact]
+    public void Robust_errors_of_few_data_are_no_smaller_than_the_stated_noise_makes_them()
+    {
+        SheetDevice truth = FitDevices.Read(FitDevices.SixArms(DeviceText.Ohmic(4e-3, 1.5e-3, 1e-4, 20)), "a = true");
+        SheetDevice device = FitDevices.Read(FitDevices.SixArms(DeviceText.Ohmic(4.2e-3, 1.6e-3, 1e-4, 20)), "a = true\nb = true");
+        Measured.MeasuredVoltages data = FitDevices.Measure(
+            truth, FitDevices.Table(truth, "wiring,pair,current_A,value_V,sigma_V\n0 deg,along,1e-4,0,1e-6\n60 deg,along,1e-4,0,1e-6\n120 deg,along,1e-4,0,1e-6\n"), 4);
+        FitResult plain = FitDevices.Fit(device, data), robust = FitDevices.Fit(device, data, new FitOptions { Robust = true, Starts = 1 });
+        foreach (string key in new[] { "a", "b" })
+        {
+            Assert.True(robust.Of(key).StandardError > 0.9 * plain.Of(key).StandardError, $"{key}: {robust.Of(key).StandardError} beside {plain.Of(key).StandardError}");
+        }
+    }
+
+    // An AC drive beside a DC current: of a resistance R the DC part is R I_dc and no second order.
+    [Fact]
+    public void The_formulas_know_the_direct_current_beside_a_harmonic()
+    {
+        const double Offset = 5e-5, Rms = 2e-5;
+        DeviceText text = FitDevices.SixArms(DeviceText.Law("quadratic", 4e-3, 1.5e-3, 20, ("d11", 1e-10, "A m/V^2"), ("field_limit", 4e5, "V/m")));
+        SheetDevice device = FitDevices.Read(text, "a = true\nb = true\nd11 = true");
+        device = device with { Drive = new DriveSpec(Rms, Rms, 1, true, [], Offset) };
+        var rows = new StringBuilder("wiring,pair,current_rms_A,harmonic,value_V,sigma_V\n");
+        foreach ((string wiring, double ohm) in new[] { ("0 deg", 80.0), ("60 deg", 130), ("120 deg", 110) })
+        {
+            rows.Append(CultureInfo.InvariantCulture, $"{wiring},along,{Rms:R},0,{ohm * Offset:R},1e-8\n{wiring},along,{Rms:R},1,{ohm * Rms:R},1e-8\n");
+        }
+
+        IReadOnlyList<FormulaValue> formulas = FormulaEstimate.Of(
+            device, FitDevices.Table(device, rows.ToString()), [.. device.Fit!.Parameters.Select(p => new FittedParameter(p, p.Start, 1, null, false) { Ended = p.Start })]);
+        FormulaValue second = formulas.Single(f => f.Key == "d11");
+
+        // A slip by R I_dc/I² in the second order would make it some 1e-8 A m/V².
+        Assert.Equal(0, second.Value, 1e-14);
+        Assert.True(formulas.Single(f => f.Key == "a").Value > 0);
+    }
+
     // Voltages of the truth at ten currents with noise, and the same with every twentieth row spoilt.
     private static (string Clean, string Dirty) Tables(SheetDevice truth, int seed)
     {

@@ -85,6 +85,8 @@ public class VoltageTableTests
     [InlineData("source,drain,plus,minus,current_A,value_V,sigma_V\ne,n,s,s,1,1,1\n", "data.csv:2:7: 'plus' and 'minus' are the same; a voltage is read between two")]
     [InlineData("source,drain,plus,minus,current_A,value_V,sigma_V\ne,n,x,s,1,1,1\n", "data.csv:2:5: 'plus': there is no contact or point 'x'")]
     [InlineData("source,drain,pair,plus,minus,current_A,value_V,sigma_V\ne,n,p,s,w,1,1,1\ne,n,p,w,s,1,1,1\n", "data.csv:3:5: the pair 'p' already stands for other probes")]
+    [InlineData("wiring,pair,plus,minus,current_A,value_V,sigma_V\n0 deg,source,n,s,1,1,1\n", "data.csv:2:7: the pair 'source' already stands for other probes")]
+    [InlineData("wiring,pair,plus,minus,current_A,value_V,sigma_V\n0 deg,across,w,n,1,1,1\n0 deg,across,,,1,1,1\n", "data.csv:2:7: the pair 'across' already stands for other probes")]
     [InlineData("source,drain,pair,current_A,value_V,sigma_V\ne,n,side,1,1,1\n", "data.csv:2:5: 'side': a circuit that is not in the device file names its probes in the columns plus and minus")]
     [InlineData("wiring,source,drain,pair,current_A,value_V,sigma_V\n0 deg,n,s,across,1,1,1\n", "data.csv:2:1: wiring '0 deg' of the device file has another source or drain; leave one of the two out")]
     [InlineData("wiring,pair,current_A,value_V,sigma_V\n,across,1,1,1\n", "data.csv:2:1: neither a wiring nor source and drain are named")]

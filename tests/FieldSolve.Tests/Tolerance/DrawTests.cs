@@ -48,4 +48,61 @@ public class DrawTests
         Assert.NotEqual(sample, new SampleDraw(Causes, 6).Of(130));
         Assert.Equal(sample[0], new SampleDraw([Causes[0]], 5).Of(130)[0]);
     }
+
+    // Samples of a run whose layer held other contacts, or turned about another point, are those of another run.
+    [Fact]
+    public void What_a_layer_holds_and_turns_about_is_part_of_the_fingerprint()
+    {
+        string[] layers = ["contacts = [\"a\", \"b\"]", "contacts = [\"a\", \"c\"]", "contacts = [\"a\", \"b\"]\nabout = [\"1 um\", \"0 um\"]"];
+        string[] designs = [.. layers.Select(layer =>
+        {
+            SheetDevice device = ToleranceDevices.Read($$"""
+                [sheet]
+                disc = { diameter = "2 um" }
+                [law]
+                kind = "ohmic"
+                a = "1 mS"
+                b = "1 mS"
+                [[contact]]
+                name = "a"
+                edge = { at = "0 deg", width = "0.2 um" }
+                [[contact]]
+                name = "b"
+                edge = { at = "90 deg", width = "0.2 um" }
+                [[contact]]
+                name = "c"
+                edge = { at = "180 deg", width = "0.2 um" }
+                [[wiring]]
+                name = "w"
+                source = "a"
+                drain = "c"
+                across = ["b", "c"]
+                [drive]
+                current = { from = "1 uA", to = "1 uA", steps = 1 }
+                [mesh]
+                error = 0.05
+                [[tolerance.layer]]
+                name = "gold"
+                {{layer}}
+                rotation = "1 deg"
+                """);
+            var store = new Designs();
+            ToleranceRun.Execute(device, new ToleranceOptions { Samples = 1 }, store, null, default);
+            return store.Design;
+        })];
+        Assert.Equal(3, designs.Distinct().Count());
+    }
+
+    private sealed class Designs : ISampleStore
+    {
+        public string Design { get; private set; } = "";
+
+        public IReadOnlyDictionary<int, SampleResult> Known { get; } = new Dictionary<int, SampleResult>();
+
+        public void Open(string design, int values) => Design = design;
+
+        public void Add(SampleResult sample)
+        {
+        }
+    }
 }

@@ -47,14 +47,14 @@ internal sealed class FitReference
     }
 
     /// <summary>The same triangles, moved, measured anew.</summary>
-    public static FitReference Again(FitProblem problem, double[] p, TriangleMesh moved, double share, CancellationToken cancel)
+    public FitReference Again(double[] p, TriangleMesh moved, double share, CancellationToken cancel)
     {
         SheetDevice there = problem.DeviceAt(p), device = Prepared(problem, there, share);
         MeshPair meshes = MeshPair.Build(device, moved, new LabLaw(device.Law, device.Axis), cancel);
         var found = new IReadOnlyList<GoalMeasure>[problem.Plans.Length];
         Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount }, c => found[c] =
             LevelMeasure.Of(meshes, problem.Plans[c], problem.LargestCurrent, [problem.LargestCurrent], !device.Law.IsLinear, cancel));
-        return new(problem, meshes, [.. found.SelectMany(g => g)], problem.Memory?.Of(there, moved, problem.Measured, cancel));
+        return new(problem, meshes, [.. found.SelectMany(g => g).Select(g => g.TriedAs(goals))], problem.Memory?.Of(there, moved, problem.Measured, cancel));
     }
 
     /// <summary>The same for another list of states.</summary>

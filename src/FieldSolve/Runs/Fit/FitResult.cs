@@ -8,7 +8,7 @@ namespace FieldSolve.Runs;
 /// <param name="Parameter">Which.</param>
 /// <param name="Value">SI; null when the data do not determine it.</param>
 /// <param name="StandardError">From the curvature of the sum of squares, with the stated sigmas, SI; null when not determined.</param>
-/// <param name="Interval">95 % interval by profile likelihood, SI; null when none was asked for; an end is null where the profile stays below its limit up to the bound.</param>
+/// <param name="Interval">95 % interval by profile likelihood, SI; null when none was asked for; an end is null where the profile stays below its limit up to the bound, or up to where the model says nothing.</param>
 /// <param name="AtBound">It ended at a bound.</param>
 public sealed record FittedParameter(FitParameter Parameter, double? Value, double? StandardError, (double? Low, double? High)? Interval, bool AtBound)
 {

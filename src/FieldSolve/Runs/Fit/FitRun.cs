@@ -28,6 +28,9 @@ public static class FitRun
     // Share of the allowed numerical error that the interpolation between currents may take.
     private const double MostBetween = 0.25;
 
+    // What RobustFactor makes of normal noise of the stated size.
+    private const double NormalFactor = 0.910;
+
     // A start that describes the thinned data this well (in standard deviations of chi squared) needs no rivals.
     private const double GoodStart = 5;
 
@@ -177,7 +180,7 @@ public static class FitRun
                 ?? throw new FitException("The model has no solution where the fit starts; begin nearer to the truth (start = …) or drive less.");
             (states, adjoints) = (states + model.Solves, adjoints + model.Adjoints);
             tell("numerical error");
-            FitReference next = clock.Time("numerical error", () => Next(problem, model, end.P, share, tell, clock, cancel));
+            FitReference next = clock.Time("numerical error", () => Next(problem, model, reference, end.P, share, tell, clock, cancel));
 
             // What the new correction would move, to first order.
             double moved = Shift(problem, task, end, next.Missing.Zip(reference.Missing, (a, b) => a - b).ToArray());
@@ -191,10 +194,10 @@ public static class FitRun
         }
     }
 
-    private static FitReference Next(FitProblem problem, FitModel model, double[] p, double share, Action<string> tell, StageClock clock, CancellationToken cancel)
+    private static FitReference Next(FitProblem problem, FitModel model, FitReference reference, double[] p, double share, Action<string> tell, StageClock clock, CancellationToken cancel)
     {
         TriangleMesh? mesh = model.MeshAt(problem.DeviceAt(p));
-        FitReference? again = mesh is null ? null : FitReference.Again(problem, p, mesh, share, cancel);
+        FitReference? again = mesh is null ? null : reference.Again(p, mesh, share, cancel);
         return again is { } good && good.LargestShare <= share ? good : FitReference.Refine(problem, p, share, tell, clock, cancel);
     }
 
@@ -233,7 +236,7 @@ public static class FitRun
         IReadOnlyList<FitDirection> directions = Identifiability.Of(q, end.Jacobian, task.Sigma, end.Weights, scales, end.P);
         directions = openAxis is { } open ? IsotropicEnd.Explain(directions, q, open) : directions;
         double[,] covariance = Identifiability.Covariance(directions, scales);
-        double widen = options.Robust ? RobustFactor(task, end) : 1;
+        double widen = options.Robust ? RobustFactor(task, end, q.Count(x => x.PriorSigma is null)) : 1;
         int m = q.Count;
         for (int i = 0; i < m; i++)
         {
@@ -321,8 +324,8 @@ public static class FitRun
     }
 
     // Of the estimate, not of the data: mean of psi² over the squared mean of psi' (P. J. Huber, Robust Statistics (1981), section 7.6). The directions were measured with
-    // the weights, whose mean is put back.
-    private static double RobustFactor(FitTask task, FitEnd end)
+    // the weights, whose mean is put back. Residuals are smaller than the noise by what the free numbers took of them, and a few may be small by chance: the stated sigmas are the least.
+    private static double RobustFactor(FitTask task, FitEnd end, int free)
     {
         double psi = 0, slope = 0, weight = 0;
         int n = end.Values.Length;
@@ -334,7 +337,7 @@ public static class FitRun
             weight += w;
         }
 
-        (psi, slope, weight) = (psi / n, slope / n, weight / n);
-        return slope > 0 ? psi / (slope * slope) * weight : 1;
+        (psi, slope, weight) = (psi / Math.Max(1, n - free), slope / n, weight / n);
+        return slope > 0 ? Math.Max(psi / (slope * slope) * weight, NormalFactor) : 1;
     }
 }

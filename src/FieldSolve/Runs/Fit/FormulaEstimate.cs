@@ -31,6 +31,7 @@ internal static class FormulaEstimate
 
     private static IEnumerable<Expansion> Expand(SheetDevice device, MeasuredVoltages measured)
     {
+        double offset = device.Drive?.Offset ?? 0;
         foreach (IGrouping<(int Circuit, int Pair), MeasuredVoltage> group in measured.Data.GroupBy(d => (d.Circuit, d.Pair)))
         {
             MeasuredVoltage[] data = [.. group.Where(d => d.Current != 0 && d.Harmonic is null or 0 or 1 or 2)];
@@ -50,8 +51,15 @@ internal static class FormulaEstimate
             double most = data.Max(d => Math.Abs(d.Current));
             for (int i = 0; i < data.Length; i++)
             {
-                double x = data[i].Current / most;
-                double[] row = data[i].Harmonic switch { null => [x, x * x, x * x * x], 1 => [x, 0, 1.5 * x * x * x], 2 => [0, -x * x / Math.Sqrt(2), 0], _ => [0, x * x, 0] };
+                // Of I, I² and I³ with I = o + sqrt(2) x sin: the part that is read.
+                double x = data[i].Current / most, o = offset / most;
+                double[] row = data[i].Harmonic switch
+                {
+                    null => [x, x * x, x * x * x],
+                    1 => [x, 2 * o * x, (3 * o * o * x) + (1.5 * x * x * x)],
+                    2 => [0, -x * x / Math.Sqrt(2), -3 * o * x * x / Math.Sqrt(2)],
+                    _ => [o, (o * o) + (x * x), (o * o * o) + (3 * o * x * x)],
+                };
                 for (int k = 0; k < orders; k++)
                 {
                     a[i, k] = row[k] / data[i].Sigma;

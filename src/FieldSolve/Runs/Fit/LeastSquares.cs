@@ -90,6 +90,9 @@ public static class LeastSquares
     // A step that is expected to lower the sum of squares by less than this ends the fit: the numbers are then within a hundredth of their standard errors.
     private const double LeastGain = 1e-4;
 
+    // After tries that failed every step is short, and short steps gain little; what a long one promises says whether there is something to gain.
+    private const double LeastLeft = 1e3 * LeastGain;
+
     /// <summary>Loss of one residual over sigma, scaled so that small ones count as squares.</summary>
     public static double Loss(double z, bool robust) => robust ? Freedom * Math.Log(1 + (z * z / Freedom)) : z * z;
 
@@ -114,14 +117,14 @@ public static class LeastSquares
         bool converged = false;
         while (steps < mostSteps && !converged)
         {
-            bool better = false;
+            bool better = false, failed = false;
             while (!better && damping <= MostDamping)
             {
                 cancel.ThrowIfCancellationRequested();
                 (double[] next, double gain) = Step(task, p, values, jacobian, damping);
                 if (gain < LeastGain)
                 {
-                    converged = true;
+                    converged = !failed || Step(task, p, values, jacobian, FirstDamping).Gain < LeastLeft;
                     break;
                 }
 
@@ -136,12 +139,13 @@ public static class LeastSquares
                 else
                 {
                     // Rounding and the tolerance of the solves: a step that gains next to nothing is as good as none.
-                    if (gain < 1e3 * LeastGain && there - objective < LeastGain * (1 + objective))
+                    if (gain < LeastLeft && there - objective < LeastGain * (1 + objective))
                     {
                         converged = true;
                         break;
                     }
 
+                    failed = true;
                     damping *= damping < 1e-4 ? 100 : 8;
                 }
             }

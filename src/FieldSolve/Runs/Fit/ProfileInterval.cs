@@ -18,7 +18,7 @@ internal static class ProfileInterval
     /// <param name="widen">By how much the covariance of a robust fit exceeds the inverse of its objective's curvature; 1 for squares.</param>
     /// <param name="j">Which number.</param>
     /// <param name="cancel">Stops the work.</param>
-    /// <returns>The interval, and the rises of the sum of squares on the way, over <paramref name="widen"/>, by value.</returns>
+    /// <returns>The interval (an end is null where the profile stays below its limit up to the bound, or up to where the model says nothing), and the rises of the sum of squares on the way, over <paramref name="widen"/>, by value.</returns>
     public static ((double? Low, double? High) Interval, IReadOnlyList<LikelihoodPoint> Points) Of(IFitFunction model, FitTask task, FitEnd best, double[,] covariance, double widen, int j, CancellationToken cancel)
     {
         double limit = Math.Sqrt(widen * ChiSquared.InvCDF(1, 0.95)), error = Math.Sqrt(covariance[j, j]);
@@ -45,6 +45,7 @@ internal static class ProfileInterval
             // The root of the rise is nearly proportional to the distance: secant on it.
             double at = best.P[j] + (sign * 1.96 * error), inner = best.P[j], innerRise = 0;
             double[] from = best.P, innerP = best.P;
+            bool solved = false;
             for (int trial = 0; trial < MostTrials; trial++)
             {
                 bool bound = at <= task.Least[j] || at >= task.Most[j];
@@ -52,9 +53,11 @@ internal static class ProfileInterval
                 if (LeastSquares.Run(model, held, Along(from, at), MostSteps, cancel) is not { } end)
                 {
                     at = (at + inner) / 2;
+                    solved = false;
                     continue;
                 }
 
+                solved = true;
                 double rise = Math.Sqrt(Math.Max(0, end.Objective - best.Objective));
                 points.Add(new(at, rise * rise / widen));
                 if (Math.Abs(rise - limit) < CloseEnough)
@@ -77,7 +80,7 @@ internal static class ProfileInterval
                 at = sign * (next - best.P[j]) > 0 ? next : (at + inner) / 2;
             }
 
-            return at;
+            return solved ? at : null;
         }
     }
 }

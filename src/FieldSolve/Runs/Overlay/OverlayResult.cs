@@ -17,7 +17,7 @@ public readonly record struct Registered(double Value, double StandardError)
     /// <summary>Share of the computed map's own error.</summary>
     public double Numerical { get; init; }
 
-    /// <summary>How far another weighting of the points moves the number; 0 unless the misfit has a pattern.</summary>
+    /// <summary>How far another weighting of the points moves the number, where the misfit has a pattern, and another width of the patch, where there is one; else 0.</summary>
     public double Weighting { get; init; }
 }
 

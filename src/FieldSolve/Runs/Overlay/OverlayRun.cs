@@ -76,14 +76,30 @@ public static class OverlayRun
 
         double reference = Math.Max(0.01 * (near.Max(q => q.Value) - near.Min(q => q.Value)), double.Epsilon);
         var found = new List<(OverlayCandidate Candidate, Registration Registration)>();
+        FitException? refused = null;
         foreach (ComputedMap map in maps)
         {
             progress?.Report(new($"registering on {map.Map.Wiring}", 0, 0));
-            Registration r = clock.Time("registration", () => Registration.Run(map, near, options with { Patch = false }, null, cancel));
+            Registration r;
+            try
+            {
+                r = clock.Time("registration", () => Registration.Run(map, near, options with { Patch = false }, null, cancel));
+            }
+            catch (FitException e) when (e.IsOfData)
+            {
+                // A wiring that this map says nothing of, as where no field reaches it, leaves the others.
+                refused ??= e;
+                continue;
+            }
 
             // Misfits of wirings are compared with one measure: the stated noise, or a hundredth of the range where none is stated.
             double misfit = Registration.Median([.. near.Select((q, i) => Math.Abs(q.Value - r.End.Values[i]) / (q.Sigma ?? reference))]) / Registration.MedianShare;
             found.Add((new(map.Map.Wiring, map.Map.Current, misfit), r));
+        }
+
+        if (found.Count == 0)
+        {
+            throw refused!;
         }
 
         (OverlayCandidate best, Registration registration) = found.OrderBy(f => f.Candidate.Misfit).First();
@@ -118,6 +134,9 @@ public static class OverlayRun
         // The drive's own clock: its stages are one here.
         (DriveResult Result, MeshRefinement Refinement)? driven = null;
         clock.Time("drive", () => { driven = DriveRun.Run(device, new DriveOptions { Maps = MapChoice.Last, ForPictures = false, Mesh = mesh }, progress, new StageClock(), cancel); });
+
+        // A drive that is cancelled ends with the rows it has; here nothing is made of them.
+        cancel.ThrowIfCancellationRequested();
         return (driven!.Value.Result, driven.Value.Refinement.Meshes);
     }
 

@@ -56,13 +56,13 @@ internal sealed class Registration
     /// <summary>Which numbers are free.</summary>
     public bool[] Free { get; private set; } = [];
 
-    /// <summary>Standard errors: noise (with the pattern of the residuals), the computed map's error, and the dependence on the weights.</summary>
+    /// <summary>Standard errors: noise (with the pattern of the residuals), the computed map's error, and the dependence on weights and on the patch's width.</summary>
     public double[] Noise { get; private set; } = [];
 
     /// <summary>What the computed map's error may do to each number.</summary>
     public double[] Numerical { get; private set; } = [];
 
-    /// <summary>What another weighting of the points does to each number; 0 unless <see cref="IsStructured"/>.</summary>
+    /// <summary>What another weighting of the points does to each number, where the misfit <see cref="IsStructured"/>, and another width of the patch, where there is one; else 0.</summary>
     public double[] Weighting { get; private set; } = [];
 
     /// <summary>All three in squares.</summary>
@@ -133,6 +133,11 @@ internal sealed class Registration
 
         // What lies on the sheet now is what is compared from here on: points off it have no model.
         On = [.. points.Select(q => function.Map.Value(function.Place(all.P, q)) is not null)];
+        if (!On.Contains(true))
+        {
+            throw new FitException("No point of the map ends on the sheet; are its units right, and does its origin lie near that of the device file?") { IsOfData = true };
+        }
+
         double scale = Estimate(all.Values, null);
         Settle(all, scale, cancel);
         if (IsStructured && options.Patch && On.Count(o => o) >= FewestForPatch)
@@ -211,7 +216,23 @@ internal sealed class Registration
         }
 
         Settle(best, Estimate(best.Values, null), cancel);
+        VaryPatch(cancel);
     }
+
+    // A patch has a shape, and what stands for it here has another: the numbers may be off by as much as a bell of another width moves them.
+    private void VaryPatch(CancellationToken cancel)
+    {
+        (OverlayFunction own, FitEnd end) = (function, End);
+        function = new(own.Map, points, own.Map.Patch(OtherWidth * own.Patch!.Width, cancel));
+        FitEnd? other = LeastSquares.Run(function, Task(points, Added(Math.Max(1, Misfit)), true), end.P, MostSteps, cancel);
+        function = own;
+        for (int k = 0; other is not null && k < function.Length; k++)
+        {
+            Weighting[k] = double.Hypot(Weighting[k], Free[k] ? other.P[k] - end.P[k] : 0);
+        }
+    }
+
+    private const double OtherWidth = 1.6;
 
     // Fewer points cannot tell a patch from anything else.
     private const int FewestForPatch = 100;
@@ -316,6 +337,13 @@ internal sealed class Registration
         Rejected = (double)rejected / on.Length;
         Structure = Pattern(on, z);
         IsStructured = Structure > MostPattern || Misfit > MostMisfit;
+        (Noise, Numerical, Weighting) = (new double[function.Length], new double[function.Length], new double[function.Length]);
+        if (free.Length == 0)
+        {
+            // The pose, gain and offset are given: the maps are only compared.
+            return;
+        }
+
         if (!(a.ConditionNumber() < MostCondition))
         {
             throw new FitException("The map does not determine the registration: some of shift, turn, gain and offset do the same to it. Hold some of them (--fixed-gain, --fixed-offset, --most-shift 0, --most-turn \"0 deg\"), or map more of the sheet.") { IsOfData = true };
@@ -323,7 +351,6 @@ internal sealed class Registration
 
         Matrix<double> inverse = a.Inverse(), spread = inverse * b * inverse;
         Vector<double> moved = inverse * push;
-        (Noise, Numerical, Weighting) = (new double[function.Length], new double[function.Length], new double[function.Length]);
         FitEnd? other = IsStructured ? LeastSquares.Run(function, Task(points, Added(1), false), all.P, MostSteps, cancel) : null;
         for (int k = 0; k < free.Length; k++)
         {

@@ -125,10 +125,10 @@ public static class ToleranceRun
         return (solved, false);
     }
 
-    // Everything that decides a sample shows in what the design reads, in the causes or in the seed.
+    // Everything that decides a sample shows in what the design reads, in the causes (a layer's with its contacts and what it turns about) or in the seed.
     private static string Fingerprint(ToleranceModel model, ToleranceOptions options)
     {
-        string causes = string.Join(';', model.Causes.Select(c => string.Create(CultureInfo.InvariantCulture, $"{c.Label}={c.Sigma:R} {c.Shape}")));
+        string causes = string.Join(';', model.Causes.Select(c => string.Create(CultureInfo.InvariantCulture, $"{c.Label}={c.Sigma:R} {c.Shape} {string.Join(' ', c.Target.Contacts)} about {c.Target.About.X:R} {c.Target.About.Y:R}")));
         byte[] data =
         [
             .. MemoryMarshal.AsBytes(model.Values.AsSpan()), .. MemoryMarshal.AsBytes(model.States[0].CoarseValues[0].AsSpan()),

@@ -13,19 +13,7 @@ internal static class BandsFiles
         ProfileCsv.Write(Path.Combine(folder, "profile.csv"), result);
         LawToml.Write(Path.Combine(folder, "law.toml"), result);
         var clock = new StageClock();
-        bool cancelled = false;
-        if (pictures)
-        {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () => { BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel); });
-            }
-            catch (OperationCanceledException)
-            {
-                cancelled = true;
-            }
-        }
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () => BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel));
 
         BandsRecord.Write(
             Path.Combine(folder, "run.json"),

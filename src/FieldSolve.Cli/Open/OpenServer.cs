@@ -18,13 +18,13 @@ namespace FieldSolve.Cli.Open;
 /// <summary>Serves the page of one session on 127.0.0.1 at a free port.</summary>
 internal sealed class OpenServer : IAsyncDisposable
 {
-
     private readonly EditSession session;
     private readonly WebApplication app;
     private readonly PageGuard guard;
     private readonly PageHub hub;
     private readonly AnswerLoop answers;
     private readonly Timer disk;
+    private readonly Lock telling = new();
     private readonly CancellationTokenSource stop = new();
     private readonly TaskCompletionSource ended = new(TaskCreationOptions.RunContinuationsAsynchronously);
 
@@ -33,8 +33,9 @@ internal sealed class OpenServer : IAsyncDisposable
         (this.session, this.app, this.guard) = (session, app, guard);
         hub = new(options.Grace, () => ended.TrySetResult());
         hub.Tell(session.State);
-        session.Changed += (_, _) => hub.Tell(session.State);
+        // The solve begins before the pages are told.
         answers = new(session, () => hub.LookedAt, Tell);
+        session.Changed += TellState;
         disk = new(_ => session.CheckDisk(), null, options.DiskCheck, options.DiskCheck);
     }
 
@@ -83,6 +84,15 @@ internal sealed class OpenServer : IAsyncDisposable
         await app.DisposeAsync();
         hub.Dispose();
         stop.Dispose();
+    }
+
+    // Two requests may end together; whoever is last tells of the newest state.
+    private void TellState(object? sender, EventArgs e)
+    {
+        lock (telling)
+        {
+            hub.Tell(session.State);
+        }
     }
 
     private void Tell(LayoutAnswer answer)

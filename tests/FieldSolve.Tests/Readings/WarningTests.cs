@@ -150,7 +150,8 @@ public class WarningTests
         Assert.Null(Summaries.Of(Device("quadratic"), rows[..3])[0].Slope);
 
         // Straight rows all alike: the line explains them all.
-        CurveRow[] flat = [.. new[] { 1e-4, 2e-4, 3e-4 }.Select(i => Even(i, RowStatus.Ok, 0, 0))];
+        double[] currents = [1e-4, 2e-4, 3e-4];
+        CurveRow[] flat = [.. currents.Select(i => Even(i, RowStatus.Ok, 0, 0))];
         Assert.Equal(1, Summaries.Of(Device("quadratic"), flat)[0].Slope!.RSquared);
     }
 }

@@ -165,7 +165,7 @@ public class EditableTomlTests
 
         // The second of two keys of one name is the reader's fault to tell; the first is found.
         Assert.Equal("1", new EditableToml("k = 1\nk = 2\n").Find("k")!.Value);
-        Assert.Empty(new EditableToml("= 3\n").Pieces.Where(p => p.Path.Length > 0));
+        Assert.DoesNotContain(new EditableToml("= 3\n").Pieces, p => p.Path.Length > 0);
     }
 
     [Fact]

@@ -35,6 +35,7 @@ public sealed class FittedDeviceTests : IDisposable
     private const string Sheet = "[sheet]\nbar = { length = \"20 um\", width = \"6 um\" }\n";
     private const string Law = "[law]   # guessed\nkind = \"saturating\"\n  a = \"1 mS\" # old\nb = \"2 mS\"\nfield_a = \"100 kV/m\"\nfield_b = \"100 kV/m\"\nsharpness = 2\n";
 
+    private static readonly string[] Blank = ["value", "standard_error", "numerical_error", "interval_95", "prior_mean", "prior_sigma"];
     private static readonly FitResult Fit = Fitted();
     private readonly TempFolder folder = new("fitted");
 
@@ -45,8 +46,10 @@ public sealed class FittedDeviceTests : IDisposable
         SheetDevice device = Read(Sheet + Law + Rest + "\n[fit]\na = true\nb = true\naxis = { sigma = \"5 deg\" }\nsharpness = true\n[[fit.contact]]\nname = \"l\"\nresistance = true\n");
         SheetDevice one = FitDevices.Read(DeviceText.Bar(20e-6, 6e-6, DeviceText.Ohmic(1e-3, 1e-3)).Whole("l", "end", "left").Whole("r", "end", "right").Tip("p", -2e-6, 0).Tip("q", 2e-6, 0).Wiring("x", "l", "r", "p q").Drive(1e-5), "a = true");
         FitResult result = FitDevices.Fit(one, FitDevices.Table(one, "wiring,pair,current_A,value_V,sigma_V\nx,along,1e-5,0.00667,1e-5\n"));
-        double[] values = [3e-3, 0, 0.25, 3, 2e-4];
-        FittedParameter[] parameters = [.. device.Fit!.Parameters.Select((p, k) => new FittedParameter(p, p.Kind.Key == "b" ? null : values[k], p.Kind.Key == "b" ? null : 0.1 * values[k], p.Kind.Key == "a" ? (2e-3, null) : null, false) { Ended = values[k], NumericalError = 1e-6 })];
+        Dictionary<string, double> values = new() { ["a"] = 3e-3, ["axis"] = 0.25, ["sharpness"] = 3, ["l.resistance"] = 2e-4 };
+        FittedParameter[] parameters = [.. device.Fit!.Parameters.Select(p => values.TryGetValue(p.Key, out double v)
+            ? new FittedParameter(p, v, 0.1 * v, p.Key == "a" ? (2e-3, null) : null, false) { Ended = v, NumericalError = 1e-6 }
+            : new(p, null, null, null, false) { Ended = 1, NumericalError = 1e-6 })];
         return result with { Device = device, Parameters = parameters, Correlation = new double[5, 5], Covariance = new double[5, 5] };
     }
 
@@ -112,7 +115,7 @@ public sealed class FittedDeviceTests : IDisposable
         JsonArray parameters = FitRecord.Json(Fit with { Quality = Fit.Quality with { Freedom = 4, ChiSquared = 16 } })["parameters"]!.AsArray();
         JsonObject Named(string key) => parameters.Single(p => (string?)p!["key"] == key)!.AsObject();
         Assert.False((bool)Named("b")["determined"]!);
-        Assert.All(new[] { "value", "standard_error", "numerical_error", "interval_95", "prior_mean", "prior_sigma" }, key => Assert.Null(Named("b")[key]));
+        Assert.All(Blank, key => Assert.Null(Named("b")[key]));
         Assert.Equal((3e-3, 1e-6), ((double)Named("a")["value"]!, (double)Named("a")["numerical_error"]!));
 
         // Chi squared is four times what it should be: errors as the residuals have them are twice as large. An interval may be open.

@@ -21,24 +21,12 @@ public static class BandPictures
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
-        EmbeddedFont.Use();
-        List<PictureFile> files = [];
-        void Add(string name, string caption, Func<Figure?> draw)
-        {
-            cancel.ThrowIfCancellationRequested();
-            using Figure? figure = draw();
-            if (figure is not null)
-            {
-                PictureFile file = new(name, null, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
-                figure.Save(file.PngPath, file.SvgPath);
-                files.Add(file);
-            }
-        }
-
-        Add("fermi-line", "Lines of the chemical potential, each drawn about its own node, in the lab frame.", () => FermiLine(result));
-        Add("profile", "Conductance as a polar curve: the distance from the middle is the value in that direction. Dashed: what a tensor makes of it.", () => Profile(result));
-        Add("tensor", "End of the sheet current per unit field as the field turns through all directions; its half axes are the principal sheet conductances.", () => Tensor(result));
-        return files;
+        return PictureBatch.Write(
+        [
+            new("fermi-line", null, "fermi-line", "Lines of the chemical potential, each drawn about its own node, in the lab frame.", () => FermiLine(result)),
+            new("profile", null, "profile", "Conductance as a polar curve: the distance from the middle is the value in that direction. Dashed: what a tensor makes of it.", () => Profile(result)),
+            new("tensor", null, "tensor", "End of the sheet current per unit field as the field turns through all directions; its half axes are the principal sheet conductances.", () => Tensor(result)),
+        ], folder, cancel);
     }
 
     private static Figure? FermiLine(BandsResult result)

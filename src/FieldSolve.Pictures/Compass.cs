@@ -5,7 +5,7 @@ namespace FieldSolve.Pictures;
 
 /// <summary>The crystal axes a and b as two small arrows in the lower left corner of the frame.</summary>
 /// <param name="axis">Angle from lab x to crystal a, radians.</param>
-internal sealed class Compass(double axis) : IPlottable
+internal sealed class Compass(double axis) : FrameDrawing
 {
     private const float Arm = 19, Inset = 35;
 
@@ -13,19 +13,7 @@ internal sealed class Compass(double axis) : IPlottable
     public static SKRect Place(PixelRect frame) => new(frame.Left, frame.Bottom - (2 * Inset), frame.Left + (2 * Inset), frame.Bottom);
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         Pixel centre = new(rp.DataRect.Left + Inset, rp.DataRect.Bottom - Inset);

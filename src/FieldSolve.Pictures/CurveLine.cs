@@ -5,29 +5,20 @@ namespace FieldSolve.Pictures;
 
 /// <summary>A curve in plot units, possibly in several runs with gaps between, with dashes and markers.</summary>
 /// <param name="runs">Each run is drawn as one connected line.</param>
-internal sealed class CurveLine(IReadOnlyList<Coordinates[]> runs) : IPlottable
+internal sealed class CurveLine(IReadOnlyList<Coordinates[]> runs) : FrameDrawing
 {
     /// <summary>How the curve is drawn, and its name.</summary>
     public required KeyEntry Style { get; init; }
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits()
+    public override AxisLimits GetAxisLimits()
     {
         Coordinates[] all = [.. runs.SelectMany(r => r)];
         return all.Length == 0 ? AxisLimits.NoLimits : new(all.Min(c => c.X), all.Max(c => c.X), all.Min(c => c.Y), all.Max(c => c.Y));
     }
 
     /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         if (Style.Width > 0)

@@ -19,30 +19,18 @@ public static class FitPictures
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
-        EmbeddedFont.Use();
-        var files = new List<PictureFile>();
-        Add("device", "The device with its contacts and crystal axis as in its file, and the first wirings of the data.", () => Device(result) is { Wirings.Count: > 0 } device ? DevicePicture.Draw(device) : null);
-        Add("fit-curves", "Measured voltages with their standard deviations against current; the lines join the fitted model at the same currents.", () => FitCurvePicture.Draw(result));
-        Add(
-            "fit-directions", "Voltage over current at the largest current against the direction of the current, from source to drain; the open squares are the fitted model.",
-            () => FitDirectionPicture.Draw(result));
-        Add(
-            "fit-residuals", "Measured less model in standard deviations, in the order of the data, and how often; the curve is the normal distribution. Ringed points are more than four deviations off.",
-            () => FitResidualPicture.Draw(result));
-        Add("fit-correlations", "Correlations of the fitted numbers in per cent: near 100 or −100 the data know a combination better than either number.", () => CorrelationPicture.Draw(result));
-        return files;
-
-        void Add(string name, string caption, Func<Figure?> draw)
-        {
-            cancel.ThrowIfCancellationRequested();
-            using Figure? figure = draw();
-            if (figure is not null)
-            {
-                PictureFile file = new(name, null, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
-                figure.Save(file.PngPath, file.SvgPath);
-                files.Add(file);
-            }
-        }
+        return PictureBatch.Write(
+        [
+            new("device", null, "device", "The device with its contacts and crystal axis as in its file, and the first wirings of the data.", () => Device(result) is { Wirings.Count: > 0 } device ? DevicePicture.Draw(device) : null),
+            new("fit-curves", null, "fit-curves", "Measured voltages with their standard deviations against current; the lines join the fitted model at the same currents.", () => FitCurvePicture.Draw(result)),
+            new(
+                "fit-directions", null, "fit-directions", "Voltage over current at the largest current against the direction of the current, from source to drain; the open squares are the fitted model.",
+                () => FitDirectionPicture.Draw(result)),
+            new(
+                "fit-residuals", null, "fit-residuals", "Measured less model in standard deviations, in the order of the data, and how often; the curve is the normal distribution. Ringed points are more than four deviations off.",
+                () => FitResidualPicture.Draw(result)),
+            new("fit-correlations", null, "fit-correlations", "Correlations of the fitted numbers in per cent: near 100 or −100 the data know a combination better than either number.", () => CorrelationPicture.Draw(result)),
+        ], folder, cancel);
     }
 
     // Wirings stand in the data: those of the file serve only where the data name them.

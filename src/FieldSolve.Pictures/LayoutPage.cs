@@ -64,24 +64,13 @@ public static class LayoutPage
         Outline(w, state);
         Contacts(w, device);
         Wirings(w, device);
-        w.WriteStartArray("values");
-        foreach (TomlPiece piece in state.Text.Pieces)
+        LiveData.Array(w, "values", state.Text.Pieces, (w, piece) =>
         {
-            w.WriteStartObject();
             w.WriteString("path", piece.Path);
             w.WriteString("kind", piece.Kind);
             w.WriteString("value", piece.Value);
-            w.WriteEndObject();
-        }
-
-        w.WriteEndArray();
-        w.WriteStartArray("tables");
-        foreach (TomlBlock block in state.Text.Blocks)
-        {
-            w.WriteStringValue(block.Path);
-        }
-
-        w.WriteEndArray();
+        });
+        LiveData.Words(w, "tables", state.Text.Blocks.Select(b => b.Path));
         Laws(w);
         w.WriteEndObject();
     }
@@ -97,22 +86,11 @@ public static class LayoutPage
         IReadOnlyList<IReadOnlyList<string?>> paths = LayoutOutline.Paths(state.Text, state.Device);
         w.WriteStartObject("outline");
         w.WriteString("file", state.Text.Find("sheet.outline.file")?.Value);
-        w.WriteStartArray("loops");
-        for (int l = 0; l < paths.Count; l++)
+        LiveData.Array(w, "loops", state.Device.Drawn.Zip(paths), (w, loop) =>
         {
-            w.WriteStartObject();
-            LiveData.Numbers(w, "points", LiveDevice.Flat([.. state.Device.Drawn[l].Select(c => c.Start)]));
-            w.WriteStartArray("paths");
-            foreach (string? path in paths[l])
-            {
-                w.WriteStringValue(path);
-            }
-
-            w.WriteEndArray();
-            w.WriteEndObject();
-        }
-
-        w.WriteEndArray();
+            LiveData.Numbers(w, "points", LiveDevice.Flat([.. loop.First.Select(c => c.Start)]));
+            LiveData.Words(w, "paths", loop.Second);
+        });
         w.WriteEndObject();
     }
 
@@ -145,50 +123,27 @@ public static class LayoutPage
 
     private static void Wirings(Utf8JsonWriter w, SheetDevice device)
     {
-        w.WriteStartArray("wirings");
-        foreach (Wiring wiring in device.Wirings)
+        Terminal[] terminals = [.. device.Contacts.Select((_, k) => new Terminal(false, k)), .. device.Tips.Select((_, k) => new Terminal(true, k))];
+        LiveData.Array(w, "wirings", device.Wirings, (w, wiring) =>
         {
-            w.WriteStartObject();
             w.WriteString("name", wiring.Name);
-            w.WriteStartArray("roles");
-            for (int k = 0; k < device.Contacts.Count + device.Tips.Count; k++)
-            {
-                w.WriteStringValue(LiveDevice.AllRoles(wiring, k < device.Contacts.Count ? new(false, k) : new(true, k - device.Contacts.Count)));
-            }
-
-            w.WriteEndArray();
-            w.WriteEndObject();
-        }
-
-        w.WriteEndArray();
+            LiveData.Words(w, "roles", terminals.Select(t => LiveDevice.AllRoles(wiring, t)));
+        });
     }
 
-    private static void Laws(Utf8JsonWriter w)
+    private static void Laws(Utf8JsonWriter w) => LiveData.Array(w, "laws", LawCatalogue.Kinds, (w, law) =>
     {
-        w.WriteStartArray("laws");
-        foreach (LawKind law in LawCatalogue.Kinds)
+        w.WriteString("name", law.Name);
+        w.WriteString("summary", law.Summary);
+        LiveData.Array(w, "keys", law.Parameters, (w, p) =>
         {
-            w.WriteStartObject();
-            w.WriteString("name", law.Name);
-            w.WriteString("summary", law.Summary);
-            w.WriteStartArray("keys");
-            foreach (LawParameter p in law.Parameters)
-            {
-                w.WriteStartObject();
-                w.WriteString("key", p.Key);
-                w.WriteString("meaning", p.Meaning);
-                w.WriteBoolean("required", p.Required);
-                w.WriteString("example", p.IsFile ? "table.csv" : p.Dimension == Quantities.Dimension.None ? "2" : p.Dimension.Example);
-                w.WriteBoolean("plain", !p.IsFile && p.Dimension == Quantities.Dimension.None);
-                w.WriteEndObject();
-            }
-
-            w.WriteEndArray();
-            w.WriteEndObject();
-        }
-
-        w.WriteEndArray();
-    }
+            w.WriteString("key", p.Key);
+            w.WriteString("meaning", p.Meaning);
+            w.WriteBoolean("required", p.Required);
+            w.WriteString("example", p.IsFile ? "table.csv" : p.Dimension == Quantities.Dimension.None ? "2" : p.Dimension.Example);
+            w.WriteBoolean("plain", !p.IsFile && p.Dimension == Quantities.Dimension.None);
+        });
+    });
 
     private static string Page()
     {

@@ -347,10 +347,10 @@ internal sealed class LiveData
         w.WriteEndArray();
     }
 
-    internal static void Words(Utf8JsonWriter w, string name, IEnumerable<string> words)
+    internal static void Words(Utf8JsonWriter w, string name, IEnumerable<string?> words)
     {
         w.WriteStartArray(name);
-        foreach (string word in words)
+        foreach (string? word in words)
         {
             w.WriteStringValue(word);
         }

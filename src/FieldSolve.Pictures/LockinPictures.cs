@@ -8,8 +8,6 @@ namespace FieldSolve.Pictures;
 /// <summary>All pictures of an AC run.</summary>
 public static class LockinPictures
 {
-    private sealed record Plan(string Kind, string? Wiring, string Name, string Caption, Func<Figure?> Draw);
-
     /// <summary>Draws the pictures and writes each as PNG and SVG; the same result always gives the same bytes.</summary>
     /// <param name="result">The run; what it lacks (frames, points) is left out.</param>
     /// <param name="folder">Where they go; made when missing.</param>
@@ -22,35 +20,10 @@ public static class LockinPictures
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
-
-        EmbeddedFont.Use();
-        Plan[] plans = [.. Plans(result)];
-        PictureFile?[] files = new PictureFile?[plans.Length];
-        try
-        {
-            Parallel.For(0, plans.Length, new ParallelOptions { CancellationToken = cancel }, k =>
-            {
-                Plan plan = plans[k];
-                using Figure? figure = plan.Draw();
-                if (figure is not null)
-                {
-                    PictureFile file = new(
-                        plan.Kind, plan.Wiring, plan.Caption,
-                        Path.Combine(folder, plan.Name + ".png"), Path.Combine(folder, plan.Name + ".svg"), figure.Width, figure.Height);
-                    figure.Save(file.PngPath, file.SvgPath);
-                    files[k] = file;
-                }
-            });
-        }
-        catch (AggregateException e) when (e.InnerExceptions.Count > 0)
-        {
-            System.Runtime.ExceptionServices.ExceptionDispatchInfo.Throw(e.InnerExceptions[0]);
-        }
-
-        return [.. files.OfType<PictureFile>()];
+        return PictureBatch.Write([.. Plans(result)], folder, cancel);
     }
 
-    private static IEnumerable<Plan> Plans(LockinResult result)
+    private static IEnumerable<PicturePlan> Plans(LockinResult result)
     {
         SheetDevice device = result.Device;
         DriveResult common = result.Common();

@@ -8,7 +8,7 @@ namespace FieldSolve.Pictures;
 /// page and placed into the plot, so there are no seams between triangles and an SVG stays small.
 /// </summary>
 internal sealed class MapImage(FineMesh mesh, double[] values, double scale, IColormap colours, double low, double high)
-    : IPlottable, IHasColorAxis, IDisposable
+    : FrameDrawing, IHasColorAxis, IDisposable
 {
     private const int Oversampling = 2, Shades = 1024, Compression = 4;
 
@@ -19,22 +19,13 @@ internal sealed class MapImage(FineMesh mesh, double[] values, double scale, ICo
     public IColormap Colormap { get; set; } = colours;
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
     public ScottPlot.Range GetRange() => new(low, high);
 
     /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => new(scale * mesh.X.Min(), scale * mesh.X.Max(), scale * mesh.Y.Min(), scale * mesh.Y.Max());
+    public override AxisLimits GetAxisLimits() => new(scale * mesh.X.Min(), scale * mesh.X.Max(), scale * mesh.Y.Min(), scale * mesh.Y.Max());
 
     /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         PixelRect place = rp.DataRect;

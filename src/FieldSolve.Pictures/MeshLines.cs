@@ -10,26 +10,14 @@ namespace FieldSolve.Pictures;
 /// </summary>
 /// <param name="mesh">The triangles.</param>
 /// <param name="scale">Multiplies metres to give plot units.</param>
-internal sealed class MeshLines(TriangleMesh mesh, double scale) : IPlottable
+internal sealed class MeshLines(TriangleMesh mesh, double scale) : FrameDrawing
 {
     private const int MostVectorEdges = 45_000, Quality = 80;
 
     private SKImage? image;
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         SKPoint[] pixels = [.. Enumerable.Range(0, mesh.VertexCount).Select(i => Axes.GetPixel(new(scale * mesh.X[i], scale * mesh.Y[i])))

@@ -9,24 +9,12 @@ namespace FieldSolve.Pictures;
 /// <param name="lines">Lines that names should not cover, metres.</param>
 /// <param name="rim">The sheet's closed loops, metres.</param>
 /// <param name="scale">Multiplies metres to give plot units.</param>
-internal sealed class NameTags(IReadOnlyList<NameTag> tags, IReadOnlyList<Point2[]> lines, IReadOnlyList<Point2[]> rim, double scale) : IPlottable
+internal sealed class NameTags(IReadOnlyList<NameTag> tags, IReadOnlyList<Point2[]> lines, IReadOnlyList<Point2[]> rim, double scale) : FrameDrawing
 {
     private const float FontSize = 13, Height = 15, LeaderFrom = 17;
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         SKPoint[][] loops = [.. rim.Select(l => l.Select(At).ToArray())];

@@ -23,24 +23,15 @@ public static class OverlayPictures
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
-        EmbeddedFont.Use();
-        var files = new List<PictureFile>();
-        Add(
-            "overlay-maps", "The measured map laid on the sheet (points, gain and offset of the probe taken out) and the computed one, on one colour scale.",
-            () => Maps(result));
-        Add(
-            "overlay-residual", "Measured less computed. Blue is below, orange above; rings mark places where the mean over the neighbouring points is beyond the noise.",
-            () => Residual(result));
-        return files;
-
-        void Add(string name, string caption, Func<Figure> draw)
-        {
-            cancel.ThrowIfCancellationRequested();
-            using Figure figure = draw();
-            PictureFile file = new(name, null, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
-            figure.Save(file.PngPath, file.SvgPath);
-            files.Add(file);
-        }
+        return PictureBatch.Write(
+        [
+            new(
+                "overlay-maps", null, "overlay-maps", "The measured map laid on the sheet (points, gain and offset of the probe taken out) and the computed one, on one colour scale.",
+                () => Maps(result)),
+            new(
+                "overlay-residual", null, "overlay-residual", "Measured less computed. Blue is below, orange above; rings mark places where the mean over the neighbouring points is beyond the noise.",
+                () => Residual(result)),
+        ], folder, cancel);
     }
 
     private static Wiring WiringOf(OverlayResult result) => result.Device.Wirings.First(w => w.Name == result.Map.Wiring);

@@ -12,28 +12,16 @@ namespace FieldSolve.Pictures;
 /// <param name="low">Value at the lower end.</param>
 /// <param name="high">Value at the upper end.</param>
 internal sealed class PointMap(IReadOnlyList<(Point2 Place, double Value)> points, double side, double scale, IColormap colours, double low, double high)
-    : IPlottable, IHasColorAxis
+    : FrameDrawing, IHasColorAxis
 {
     /// <inheritdoc/>
     public IColormap Colormap { get; set; } = colours;
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
     public ScottPlot.Range GetRange() => new(low, high);
 
     /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         using SKPaint paint = new() { IsAntialias = false };

@@ -7,7 +7,7 @@ namespace FieldSolve.Pictures;
 /// <summary>Many polylines of one style as one drawing, with an optional lighter or darker halo and arrow heads.</summary>
 /// <param name="lines">Points in metres.</param>
 /// <param name="scale">Multiplies metres to give plot units.</param>
-internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) : IPlottable
+internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) : FrameDrawing
 {
     private const float ArrowLength = 9, ArrowHalfWidth = 3.6f, LeastForArrow = 60;
 
@@ -27,19 +27,7 @@ internal sealed class PolylineSet(IReadOnlyList<Point2[]> lines, double scale) :
     public bool Arrows { get; init; }
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         Draw(rp.Canvas);

@@ -7,25 +7,13 @@ namespace FieldSolve.Pictures;
 /// <summary>Paints the inside of loops with one colour: the sheet, its holes left out, or the metal of pads.</summary>
 /// <param name="loops">Closed loops in metres.</param>
 /// <param name="scale">Multiplies metres to give plot units.</param>
-internal sealed class SheetFill(IReadOnlyList<Point2[]> loops, double scale) : IPlottable
+internal sealed class SheetFill(IReadOnlyList<Point2[]> loops, double scale) : FrameDrawing
 {
     /// <summary>The colour.</summary>
     public Color Colour { get; init; } = Look.Sheet;
 
     /// <inheritdoc/>
-    public bool IsVisible { get; set; } = true;
-
-    /// <inheritdoc/>
-    public IAxes Axes { get; set; } = new Axes();
-
-    /// <inheritdoc/>
-    public IEnumerable<LegendItem> LegendItems => LegendItem.None;
-
-    /// <inheritdoc/>
-    public AxisLimits GetAxisLimits() => AxisLimits.NoLimits;
-
-    /// <inheritdoc/>
-    public void Render(RenderPack rp)
+    public override void Render(RenderPack rp)
     {
         ArgumentNullException.ThrowIfNull(rp);
         using SKPath path = new() { FillType = SKPathFillType.EvenOdd };

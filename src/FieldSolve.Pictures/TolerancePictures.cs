@@ -21,22 +21,13 @@ public static class TolerancePictures
     {
         ArgumentNullException.ThrowIfNull(result);
         ArgumentNullException.ThrowIfNull(folder);
-        EmbeddedFont.Use();
-        var files = new List<PictureFile>();
-        void Add(string kind, string? wiring, string name, string caption, Func<Figure?> draw)
-        {
-            cancel.ThrowIfCancellationRequested();
-            using Figure? figure = draw();
-            if (figure is not null)
-            {
-                PictureFile file = new(kind, wiring, caption, Path.Combine(folder, name + ".png"), Path.Combine(folder, name + ".svg"), figure.Width, figure.Height);
-                figure.Save(file.PngPath, file.SvgPath);
-                files.Add(file);
-            }
-        }
+        return PictureBatch.Write([.. Plans(result)], folder, cancel);
+    }
 
-        Add("device", null, "device", "The device with its contacts and crystal axis as in its file, as wired.", () => result.Device.Wirings.Count == 0 ? null : DevicePicture.Draw(result.Device));
-        Add(
+    private static IEnumerable<PicturePlan> Plans(ToleranceResult result)
+    {
+        yield return new("device", null, "device", "The device with its contacts and crystal axis as in its file, as wired.", () => result.Device.Wirings.Count == 0 ? null : DevicePicture.Draw(result.Device));
+        yield return new(
             "share", null, "contacts",
             "Each contact shaded by the share of the variance of the odd part of V_across that its own causes carry; what is missing to 100 % comes from the sheet, the law and common shifts.",
             () => SharePicture.Draw(result));
@@ -44,16 +35,14 @@ public static class TolerancePictures
         for (int w = 0; w < Math.Min(names.Count, MostWirings); w++)
         {
             string wiring = result.Device.Wirings[w].Name;
-            Add(
+            yield return new(
                 "budget", wiring, "budget-" + names[w],
                 "The ten largest contributions to each reading, each for one standard deviation of its cause, with its sign.",
                 () => BudgetPicture.Draw(result, wiring));
-            Add(
+            yield return new(
                 "histogram", wiring, "samples-" + names[w],
                 "Sampled devices with all causes at once, each solved in full; the curve is what first derivatives predict, with the sampled number of devices.",
                 () => HistogramPicture.Draw(result, wiring));
         }
-
-        return files;
     }
 }

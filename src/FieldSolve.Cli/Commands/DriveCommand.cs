@@ -1,12 +1,9 @@
 using System.CommandLine;
 using FieldSolve.Cli.Output;
 using FieldSolve.Device;
-using FieldSolve.Fields;
-using FieldSolve.Files;
 using FieldSolve.Meshing;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -30,7 +27,7 @@ internal static class DriveCommand
         maps.AcceptOnlyFromAmong("all", "last", "none");
         var allSigns = new Option<bool>("--all-signs") { Description = "Also write the rows at the reversed currents." };
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; curves, maps and run.json only." };
-        var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+        Option<bool> quick = SharedOptions.Quick();
         Option<string[]> shift = ShiftOption.Create();
         var command = new Command(
             "drive",
@@ -91,21 +88,15 @@ internal static class DriveCommand
         }
 
         var screen = new Screen(choices.Quiet);
-        DriveResult result;
-        try
+        var options = new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures, Mesh = mesh };
+        if (!RunManners.TrySolve(choices.Device, screen, () => DriveRun.Execute(device, options, screen, cancel), out DriveResult? result))
         {
-            result = DriveRun.Execute(
-                device, new DriveOptions { Maps = choices.Maps, ForPictures = choices.Pictures, Mesh = mesh }, screen, cancel);
-            if (choices.Quick)
-            {
-                result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
-            }
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
+        }
+
+        if (choices.Quick)
+        {
+            result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
         }
 
         Directory.CreateDirectory(choices.Folder);

@@ -1,10 +1,7 @@
 using System.CommandLine;
 using FieldSolve.Cli.Output;
-using FieldSolve.Device;
-using FieldSolve.Fields;
 using FieldSolve.Lockin;
 using FieldSolve.Meshing;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -20,7 +17,7 @@ internal static class LockinCommand
         Option<bool> quiet = SharedOptions.Quiet(), json = SharedOptions.Json();
         Option<string?> mesh = SharedOptions.Mesh();
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; harmonics and run.json only." };
-        var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+        Option<bool> quick = SharedOptions.Quick();
         var command = new Command(
             "lockin",
             "AC drive: the harmonics of every pair as a lock-in amplifier reads them.\n\n"
@@ -69,20 +66,15 @@ internal static class LockinCommand
         }
 
         var screen = new Screen(choices.Quiet);
-        LockinResult result;
-        try
+        var options = new LockinOptions { Frames = choices.Pictures, Mesh = mesh };
+        if (!RunManners.TrySolve(choices.Device, screen, () => LockinRun.Execute(device, options, screen, cancel), out LockinResult? result))
         {
-            result = LockinRun.Execute(device, new LockinOptions { Frames = choices.Pictures, Mesh = mesh }, screen, cancel);
-            if (choices.Quick)
-            {
-                result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
-            }
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
+        }
+
+        if (choices.Quick)
+        {
+            result = result with { Warnings = [.. result.Warnings, RunManners.QuickWarning] };
         }
 
         Directory.CreateDirectory(choices.Folder);

@@ -1,12 +1,9 @@
 using System.CommandLine;
 using FieldSolve.Cli.Output;
-using FieldSolve.Device;
-using FieldSolve.Fields;
 using FieldSolve.Files;
 using FieldSolve.Meshing;
 using FieldSolve.Readings;
 using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -59,29 +56,20 @@ internal static class MeshCommand
         }
 
         var screen = new Screen(quiet);
-        TriangleMesh mesh;
-        IReadOnlyList<RefinementLevel> levels;
-        bool met;
-        try
+        if (!RunManners.TrySolve(path, screen, () => MeshRun.Make(device, screen, cancel), out (TriangleMesh Mesh, IReadOnlyList<RefinementLevel> Levels, bool IsMet) made))
         {
-            (mesh, levels, met) = MeshRun.Make(device, screen, cancel);
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(path, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
         }
 
-        VtuFile.WriteMesh(file, mesh);
+        VtuFile.WriteMesh(file, made.Mesh);
         screen.Clear();
-        if (!met)
+        if (!made.IsMet)
         {
             Console.Error.WriteLine("warning: the mesh does not meet the wanted error of every reading; raise max_unknowns or ask for less.");
         }
 
-        MeshQuality quality = MeshQuality.Of(mesh);
-        screen.Print(json ? MeshText.Json(quality, levels, file) : MeshText.Plain(quality, levels, file));
-        return met ? ExitCode.Done : ExitCode.ToleranceNotReached;
+        MeshQuality quality = MeshQuality.Of(made.Mesh);
+        screen.Print(json ? MeshText.Json(quality, made.Levels, file) : MeshText.Plain(quality, made.Levels, file));
+        return made.IsMet ? ExitCode.Done : ExitCode.ToleranceNotReached;
     }
 }

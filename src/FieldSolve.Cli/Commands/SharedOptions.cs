@@ -43,6 +43,8 @@ internal static class SharedOptions
         HelpName = "FILE",
     };
 
+    public static Option<bool> Quick() => new("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+
     public static Option<bool> Quiet() => new("--quiet") { Description = "No summary and no progress; warnings and faults are still shown." };
 
     public static Option<bool> Json() => new("--json") { Description = "Print the summary as JSON." };

@@ -1,11 +1,8 @@
 using System.CommandLine;
 using FieldSolve.Cli.Output;
 using FieldSolve.Device;
-using FieldSolve.Fields;
 using FieldSolve.Files;
-using FieldSolve.Meshing;
 using FieldSolve.Runs;
-using FieldSolve.Sparse;
 
 namespace FieldSolve.Cli.Commands;
 
@@ -134,20 +131,14 @@ internal static class ToleranceCommand
     {
         try
         {
-            return ToleranceRun.Execute(device, options, store, new SampleProgress(screen), cancel);
-        }
-        catch (Exception e) when (e is FieldSpaceException or MeshException or PivotException or ToleranceException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(device.Path, 1, 1, e.Message.ReplaceLineEndings(" ")));
+            return RunManners.TrySolve(device.Path, screen, () => ToleranceRun.Execute(device, options, store, new SampleProgress(screen), cancel), out ToleranceResult? result) ? result : null;
         }
         catch (JournalException e)
         {
             screen.Clear();
             Console.Error.WriteLine("fieldsolve: " + e.Message);
+            return null;
         }
-
-        return null;
     }
 
     /// <summary>Writes all files and the summary.</summary>

@@ -3,9 +3,7 @@ using System.CommandLine.Parsing;
 using System.Globalization;
 using FieldSolve.Cli.Output;
 using FieldSolve.Device;
-using FieldSolve.Fields;
 using FieldSolve.Meshing;
-using FieldSolve.Sparse;
 using FieldSolve.Turning;
 
 namespace FieldSolve.Cli.Commands;
@@ -56,7 +54,7 @@ internal static class TurnCommand
             }
         });
         var noPictures = new Option<bool>("--no-pictures") { Description = "No pictures and no report; tables, fit and run.json only." };
-        var quick = new Option<bool>("--quick") { Description = "Ten times the wanted errors of the device file, for a first look; the summary says so." };
+        Option<bool> quick = SharedOptions.Quick();
         var command = new Command(
             "turn",
             "Voltages against the direction of the current, and what they say about the sheet.\n\n"
@@ -133,29 +131,15 @@ internal static class TurnCommand
         }
 
         var screen = new Screen(choices.Quiet);
-        TurnResult result;
-        try
+        var options = new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures, Mesh = mesh };
+        if (!RunManners.TrySolve(choices.Device, screen, () => TurnRun.Execute(device, options, screen, cancel), out TurnResult? result))
         {
-            result = TurnRun.Execute(
-                device,
-                new TurnOptions { AxisSteps = choices.AxisSteps, Wiring = choices.Wiring, Ratios = choices.Ratios, ForPictures = choices.Pictures, Mesh = mesh },
-                screen, cancel);
-            if (choices.Quick)
-            {
-                result = result with
-                {
-                    Drive = result.Drive with
-                    {
-                        Warnings = [.. result.Drive.Warnings, RunManners.QuickWarning],
-                    },
-                };
-            }
-        }
-        catch (Exception e) when (e is TurnException or FieldSpaceException or MeshException or PivotException)
-        {
-            screen.Clear();
-            Console.Error.WriteLine(new Fault(choices.Device, 1, 1, e.Message.ReplaceLineEndings(" ")));
             return ExitCode.WrongInput;
+        }
+
+        if (choices.Quick)
+        {
+            result = result with { Drive = result.Drive with { Warnings = [.. result.Drive.Warnings, RunManners.QuickWarning] } };
         }
 
         Directory.CreateDirectory(choices.Folder);

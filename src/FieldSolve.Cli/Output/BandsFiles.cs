@@ -13,23 +13,11 @@ internal static class BandsFiles
         ProfileCsv.Write(Path.Combine(folder, "profile.csv"), result);
         LawToml.Write(Path.Combine(folder, "law.toml"), result);
         var clock = new StageClock();
-        bool cancelled = false;
-        if (pictures)
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    BandsReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                cancelled = true;
-            }
-        }
+            IReadOnlyList<PictureFile> drawn = BandPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            BandsReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
 
         BandsRecord.Write(
             Path.Combine(folder, "run.json"),

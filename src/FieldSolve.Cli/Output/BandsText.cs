@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Bands;
 using FieldSolve.Files;
@@ -11,8 +10,6 @@ namespace FieldSolve.Cli.Output;
 /// <summary>The short summary of the bands command.</summary>
 internal static class BandsText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
     public static string Plain(BandsResult result, string folder)
     {
         var text = new StringBuilder();
@@ -55,7 +52,7 @@ internal static class BandsText
             json[name] = node?.DeepClone();
         }
 
-        return json.ToJsonString(Indented) + "\n";
+        return SummaryJson.Text(json);
     }
 
     private static Estimate Of(SecondOrderSet set, string name) => set.Elements.First(e => e.Name == name).Number;

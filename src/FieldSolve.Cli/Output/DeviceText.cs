@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Device;
 using FieldSolve.Geometry;
@@ -12,8 +11,6 @@ namespace FieldSolve.Cli.Output;
 /// <summary>Says what was understood from a device file.</summary>
 internal static class DeviceText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
     public static string Plain(SheetDevice device)
     {
         var text = new StringBuilder();
@@ -105,7 +102,7 @@ internal static class DeviceText
             })]),
             ["currents_A"] = new JsonArray([.. (device.Drive?.Currents ?? []).Select(c => (JsonNode)c)]),
         };
-        return json.ToJsonString(Indented) + "\n";
+        return SummaryJson.Text(json);
     }
 
     private static string Name(SheetDevice device, Terminal t) => t.IsTip ? device.Tips[t.Index].Name : device.Contacts[t.Index].Name;

@@ -21,21 +21,14 @@ internal static class DriveFiles
             Path.Combine(folder, "curves.csv"), result.Device.Wirings, result.Rows, choices.AllSigns ? result.ReversedRows : null);
         var clock = new StageClock();
         clock.Time("maps", () => Maps(result, folder, choices.Maps, screen));
-        if (choices.Pictures)
+        bool cancelled = choices.Pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = DrivePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    ReportPage.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                result = result with { Cancelled = true };
-            }
+            IReadOnlyList<PictureFile> drawn = DrivePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            ReportPage.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
+        if (cancelled)
+        {
+            result = result with { Cancelled = true };
         }
 
         var options = new Dictionary<string, string>

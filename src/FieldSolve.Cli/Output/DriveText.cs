@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Files;
 using FieldSolve.Readings;
@@ -10,8 +9,6 @@ namespace FieldSolve.Cli.Output;
 /// <summary>The short summary of a drive.</summary>
 internal static class DriveText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
     public static string Plain(DriveResult result, string folder)
     {
         var text = new StringBuilder();
@@ -78,6 +75,6 @@ internal static class DriveText
             ["cautions"] = new JsonArray([.. result.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Warnings.Select(c => (JsonNode)c)]),
         };
-        return json.ToJsonString(Indented) + "\n";
+        return SummaryJson.Text(json);
     }
 }

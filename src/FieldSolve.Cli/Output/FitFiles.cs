@@ -16,23 +16,11 @@ internal static class FitFiles
         WholeFile.WriteText(Path.Combine(folder, "fit-curves.csv"), FitCurvesCsv.Text(result));
         WholeFile.WriteText(Path.Combine(folder, "fitted.toml"), FittedDevice.Text(result, File.ReadAllText(result.Device.Path), folder).Text);
         var clock = new StageClock();
-        bool cancelled = false;
-        if (pictures)
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = FitPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    FitReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                cancelled = true;
-            }
-        }
+            IReadOnlyList<PictureFile> drawn = FitPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            FitReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
 
         WholeFile.WriteText(Path.Combine(folder, "run.json"), FitRecord.RunText(
             result with { Stages = [.. result.Stages, .. clock.Times] },

@@ -1,7 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
-using System.Text.Json.Nodes;
 using FieldSolve.Files;
 using FieldSolve.Runs;
 
@@ -10,14 +8,7 @@ namespace FieldSolve.Cli.Output;
 /// <summary>Summary of a fit.</summary>
 internal static class FitText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
-    public static string Json(FitResult result, string folder)
-    {
-        JsonObject json = FitRecord.Json(result);
-        json["out"] = folder;
-        return json.ToJsonString(Indented) + "\n";
-    }
+    public static string Json(FitResult result, string folder) => SummaryJson.Text(FitRecord.Json(result), folder);
 
     public static string Plain(FitResult result, string folder)
     {

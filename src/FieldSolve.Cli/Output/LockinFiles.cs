@@ -13,21 +13,14 @@ internal static class LockinFiles
     {
         HarmonicsCsv.Write(Path.Combine(folder, "harmonics.csv"), result.Device.Wirings, result.Points);
         var clock = new StageClock();
-        if (pictures)
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = LockinPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    LockinReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                result = result with { Cancelled = true };
-            }
+            IReadOnlyList<PictureFile> drawn = LockinPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            LockinReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
+        if (cancelled)
+        {
+            result = result with { Cancelled = true };
         }
 
         LockinRecord.Write(

@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Device;
 using FieldSolve.Files;
@@ -12,8 +11,6 @@ namespace FieldSolve.Cli.Output;
 /// <summary>The short summary of an AC run.</summary>
 internal static class LockinText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
     public static string Plain(LockinResult result, string folder)
     {
         var text = new StringBuilder();
@@ -80,7 +77,7 @@ internal static class LockinText
             ["cautions"] = new JsonArray([.. result.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Warnings.Select(c => (JsonNode)c)]),
         };
-        return json.ToJsonString(Indented) + "\n";
+        return SummaryJson.Text(json);
     }
 
     private static JsonObject Wiring(LockinResult result, Wiring wiring)

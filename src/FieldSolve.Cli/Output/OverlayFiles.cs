@@ -15,23 +15,11 @@ internal static class OverlayFiles
         WholeFile.WriteText(Path.Combine(folder, "overlay.json"), OverlayRecord.Text(result));
         WholeFile.WriteText(Path.Combine(folder, "overlay.csv"), OverlayCsv.Text(result));
         var clock = new StageClock();
-        bool cancelled = false;
-        if (pictures)
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = OverlayPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    OverlayReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                cancelled = true;
-            }
-        }
+            IReadOnlyList<PictureFile> drawn = OverlayPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            OverlayReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
 
         string Number(double v) => v.ToString("R", CultureInfo.InvariantCulture);
         WholeFile.WriteText(Path.Combine(folder, "run.json"), OverlayRecord.RunText(

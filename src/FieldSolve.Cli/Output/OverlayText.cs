@@ -1,7 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
-using System.Text.Json.Nodes;
 using FieldSolve.Files;
 using FieldSolve.Runs;
 
@@ -10,14 +8,7 @@ namespace FieldSolve.Cli.Output;
 /// <summary>Summary of an overlay.</summary>
 internal static class OverlayText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
-    public static string Json(OverlayResult result, string folder)
-    {
-        JsonObject json = OverlayRecord.Json(result);
-        json["out"] = folder;
-        return json.ToJsonString(Indented) + "\n";
-    }
+    public static string Json(OverlayResult result, string folder) => SummaryJson.Text(OverlayRecord.Json(result), folder);
 
     public static string Plain(OverlayResult result, string folder)
     {

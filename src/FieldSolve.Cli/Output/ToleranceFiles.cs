@@ -20,21 +20,14 @@ internal static class ToleranceFiles
         }
 
         var clock = new StageClock();
-        if (pictures)
+        bool cancelled = pictures && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = TolerancePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    ToleranceReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                result = result with { Cancelled = true };
-            }
+            IReadOnlyList<PictureFile> drawn = TolerancePictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            ToleranceReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
+        if (cancelled)
+        {
+            result = result with { Cancelled = true };
         }
 
         ToleranceRecord.Write(

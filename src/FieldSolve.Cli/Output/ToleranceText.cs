@@ -2,7 +2,6 @@ using System.CommandLine;
 using System.CommandLine.Parsing;
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using FieldSolve.Files;
 using FieldSolve.Quantities;
 using FieldSolve.Runs;
@@ -13,8 +12,6 @@ namespace FieldSolve.Cli.Output;
 internal static class ToleranceText
 {
     private const int MostCauses = 5;
-
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
 
     public static Option<double?> Explain() => new("--explain")
     {
@@ -101,7 +98,7 @@ internal static class ToleranceText
     }
 
     public static string Json(ToleranceResult result, string folder) =>
-        ToleranceRecord.Json(result, new Dictionary<string, string> { ["out"] = folder }).ToJsonString(Indented) + "\n";
+        SummaryJson.Text(ToleranceRecord.Json(result, new Dictionary<string, string> { ["out"] = folder }));
 
     private static double? Voltage(ArgumentResult result, string name, bool allowNegative)
     {

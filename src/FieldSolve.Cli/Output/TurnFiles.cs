@@ -26,21 +26,14 @@ internal static class TurnFiles
         }
 
         var clock = new StageClock();
-        if (choices.Pictures && !result.Drive.Cancelled)
+        bool cancelled = choices.Pictures && !result.Drive.Cancelled && PictureStage.IsCancelled(clock, screen, () =>
         {
-            screen.Report(new("drawing pictures", 0, 0));
-            try
-            {
-                clock.Time("pictures", () =>
-                {
-                    IReadOnlyList<PictureFile> drawn = TurnPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
-                    TurnReport.Write(result, drawn, Path.Combine(folder, "report.html"));
-                });
-            }
-            catch (OperationCanceledException)
-            {
-                result = result with { Drive = result.Drive with { Cancelled = true } };
-            }
+            IReadOnlyList<PictureFile> drawn = TurnPictures.Write(result, Path.Combine(folder, "pictures"), cancel);
+            TurnReport.Write(result, drawn, Path.Combine(folder, "report.html"));
+        });
+        if (cancelled)
+        {
+            result = result with { Drive = result.Drive with { Cancelled = true } };
         }
 
         RunRecord.Write(

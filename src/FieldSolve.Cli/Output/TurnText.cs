@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json;
 using System.Text.Json.Nodes;
 using FieldSolve.Files;
 using FieldSolve.Readings;
@@ -11,8 +10,6 @@ namespace FieldSolve.Cli.Output;
 /// <summary>The short summary of a turn.</summary>
 internal static class TurnText
 {
-    private static readonly JsonSerializerOptions Indented = new() { WriteIndented = true };
-
     public static string Plain(TurnResult result, string folder)
     {
         var text = new StringBuilder();
@@ -85,7 +82,7 @@ internal static class TurnText
             ["cautions"] = new JsonArray([.. result.Drive.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Drive.Warnings.Select(c => (JsonNode)c)]),
         };
-        return json.ToJsonString(Indented) + "\n";
+        return SummaryJson.Text(json);
     }
 
     private static string Digits(double value) => value.ToString("G5", CultureInfo.InvariantCulture);

@@ -41,9 +41,9 @@ public sealed class EditableToml
         int skip = text.StartsWith('\uFEFF') ? 1 : 0;
         DocumentSyntax document = SyntaxParser.Parse(text[skip..], "");
         Add("", document.KeyValues, skip);
-        if (document.KeyValues.ChildrenCount > 0)
+        if (pieces.Count > 0)
         {
-            blocks.Add(new("", skip, pieces.Where(p => p.End > 0).Max(p => p.End)));
+            blocks.Add(new("", skip, pieces.Max(p => p.End)));
         }
 
         Dictionary<string, int> count = new(StringComparer.Ordinal);

@@ -1,14 +1,12 @@
-using System.Diagnostics;
 using FieldSolve.Fields;
 using FieldSolve.Files;
 using FieldSolve.Meshing;
 using FieldSolve.Readings;
 using FieldSolve.Tests.PicturesTests;
-using Xunit.Abstractions;
 
 namespace FieldSolve.Tests.FilesTests;
 
-public sealed class VtuFileTests(ITestOutputHelper output) : IDisposable
+public sealed class VtuFileTests : IDisposable
 {
     private static readonly DriveResult Drive = SyntheticDrive.Make(rings: 60, mapSteps: [10]);
     private readonly string folder = Directory.CreateTempSubdirectory("vtu-").FullName;
@@ -51,12 +49,11 @@ public sealed class VtuFileTests(ITestOutputHelper output) : IDisposable
         Assert.All(reader.Doubles("minimum_angle_deg"), a => Assert.Equal(60, a, 1e-9));
     }
 
-    [Theory]
+    [MeshioTheory]
     [InlineData(false)]
     [InlineData(true)]
     public void An_independent_reader_agrees(bool compressed)
     {
-        // meshio (Debian's python3-meshio), where it is installed.
         const string Script =
             "import sys, numpy as np, meshio\n" +
             "m = meshio.read(sys.argv[1])\n" +
@@ -66,54 +63,10 @@ public sealed class VtuFileTests(ITestOutputHelper output) : IDisposable
         string path = Path.Combine(folder, "map.vtu");
         FieldMap map = Drive.Maps[0];
         VtuFile.WriteMap(path, map, compressed);
-        string? answer = Python(Script, path);
-        if (answer is null)
-        {
-            return;
-        }
-
-        string[] words = answer.Split(' ', StringSplitOptions.TrimEntries);
+        string[] words = Meshio.Run(Script, path).Split(' ', StringSplitOptions.TrimEntries);
         Assert.Equal([$"{map.X.Length}", $"{map.TriangleCount}", "6", "3"], words[..4]);
         Assert.Equal(map.Potential.Sum(), double.Parse(words[4], System.Globalization.CultureInfo.InvariantCulture), 1e-9);
         Assert.Equal(map.Ey[5], double.Parse(words[5], System.Globalization.CultureInfo.InvariantCulture));
         Assert.Equal($"{map.Nodes[(6 * 3) + 4]}", words[6]);
-    }
-
-    /// <summary>What the script prints; null, with the reason printed, where Python or meshio is not installed.</summary>
-    private string? Python(string script, string argument)
-    {
-        string interpreter = File.Exists("/usr/bin/python3") ? "/usr/bin/python3" : "python3";
-        try
-        {
-            if (Run(interpreter, "-c", "import meshio", "").Code != 0)
-            {
-                output.WriteLine("Not checked: the Python package meshio is not installed.");
-                return null;
-            }
-        }
-        catch (System.ComponentModel.Win32Exception)
-        {
-            output.WriteLine("Not checked: Python is not installed.");
-            return null;
-        }
-
-        (int code, string text, string error) = Run(interpreter, "-c", script, argument);
-        Assert.True(code == 0, error);
-        return text.Trim();
-    }
-
-    private static (int Code, string Output, string Error) Run(string program, params string[] arguments)
-    {
-        ProcessStartInfo start = new(program) { RedirectStandardOutput = true, RedirectStandardError = true };
-        foreach (string a in arguments)
-        {
-            start.ArgumentList.Add(a);
-        }
-
-        using Process process = Process.Start(start)!;
-        Task<string> error = process.StandardError.ReadToEndAsync();
-        string text = process.StandardOutput.ReadToEnd();
-        process.WaitForExit();
-        return (process.ExitCode, text, error.Result);
     }
 }

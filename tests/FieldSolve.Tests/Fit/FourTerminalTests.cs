@@ -139,8 +139,7 @@ public class FourTerminalTests
         Assert.Null(result.Of("b").Value);
         Assert.Equal("b is not determined by these data", result.Directions[^1].Words);
 
-        // A uniform strip is what the formulas describe: they agree with the fit here.
-        FormulaValue strip = result.Formulas.FirstOrDefault(f => f.Method == "uniform strip" && f.Key == "a") ?? new("", "a", "S", result.Of("a").Value!.Value, null, null);
-        Assert.Equal(result.Of("a").Value!.Value, strip.Value, 1e-9);
+        // b carries no field along x, so the formulas of a strip, which need both, have nothing to say either.
+        Assert.Empty(result.Formulas);
     }
 }

@@ -137,4 +137,58 @@ public class MeshCheckerTests
         int tip = m.Domain.Tips[0];
         Finds(With(m, corners: [.. m.Corners.Select(v => v == tip ? 0 : v)]), "no triangle");
     }
+
+    [Fact]
+    public void Numbers_that_lead_nowhere_are_found()
+    {
+        TriangleMesh m = Good();
+        int n = m.VertexCount, t = m.TriangleCount;
+        foreach (int wrong in new[] { -1, n })
+        {
+            Finds(With(m, corners: Changed(m.Corners, 4, wrong)), $"Triangle 1 names vertex {wrong}");
+        }
+
+        foreach (int wrong in new[] { -2, t })
+        {
+            Finds(With(m, neighbours: Changed(m.Neighbours, 3, wrong)), $"neighbour {wrong}, which do not exist");
+        }
+
+        MeshEdge e = m.Edges[0];
+        MeshEdge[] broken =
+        [
+            e with { A = -1 }, e with { A = n }, e with { B = -1 }, e with { B = n }, e with { DomainEdge = -1 }, e with { DomainEdge = m.Domain.Edges.Count },
+            e with { LeftTriangle = -1 }, e with { LeftTriangle = t }, e with { RightTriangle = -2 }, e with { RightTriangle = t },
+        ];
+        Assert.All(broken, edge => Finds(With(m, edges: [edge, .. m.Edges.Skip(1)]), "not all of which exist"));
+
+        // Arrays of other lengths are said before anything is looked up in them.
+        TriangleMesh[] torn =
+        [
+            With(m, x: m.X[1..]), With(m, corners: m.Corners[1..]), With(m, neighbours: m.Neighbours[3..]), With(m, region: m.Region[1..]), With(m, corners: [], neighbours: [], region: []),
+        ];
+        Assert.All(torn, mesh => Assert.StartsWith("The arrays do not fit together: ", Assert.Single(MeshChecker.Check(mesh)), StringComparison.Ordinal));
+    }
+
+    [Fact]
+    public void Domains_that_no_mesh_can_follow_are_refused_with_the_place()
+    {
+        Domain good = Good().Domain;
+        string Refused(Domain domain) => Assert.Throws<MeshException>(() => Mesher.Generate(domain, new UniformSize(0.2))).Message;
+        Domain Edge(int k, DomainEdge edge) => good with { Edges = [.. good.Edges.Select((e, i) => i == k ? edge : e)] };
+        Domain Vertex(int k, Point2 p) => good with { Vertices = [.. good.Vertices.Select((v, i) => i == k ? p : v)] };
+        DomainEdge first = good.Edges[0];
+        Assert.Equal("The sheet has no rim. Give its outline.", Refused(good with { Edges = [] }));
+        Assert.StartsWith("Vertex 1 of the outline is at (NaN, 0) m.", Refused(Vertex(1, new(double.NaN, 0))), StringComparison.Ordinal);
+        Assert.StartsWith("Vertex 1 of the outline is at (0, ", Refused(Vertex(1, new(0, double.PositiveInfinity))), StringComparison.Ordinal);
+        Assert.StartsWith("Vertices 0 and 1 of the outline coincide", Refused(Vertex(1, good.Vertices[0])), StringComparison.Ordinal);
+        int count = good.Vertices.Count;
+        foreach ((int from, int to) in new[] { (-1, first.To), (first.From, -1), (count, first.To), (first.From, count), (first.From, first.From) })
+        {
+            Assert.StartsWith($"Edge 0 of the outline runs from vertex {from} to vertex {to}.", Refused(Edge(0, first with { From = from, To = to })), StringComparison.Ordinal);
+        }
+
+        Point2 off = new(3, 3);
+        Assert.Contains("does not start and end at its vertices bit for bit", Refused(Edge(0, first with { Curve = Curve.Segment(off, first.Curve.End) })), StringComparison.Ordinal);
+        Assert.Contains("does not start and end at its vertices bit for bit", Refused(Edge(0, first with { Curve = Curve.Segment(first.Curve.Start, off) })), StringComparison.Ordinal);
+    }
 }

@@ -190,4 +190,135 @@ public sealed class EditSessionTests : IDisposable
         // A contact that a wiring names cannot go.
         Assert.NotEmpty(session.Apply((t, d) => LayoutParts.Drop(t, d, "left"), null));
     }
+
+    [Fact]
+    public void A_file_that_says_no_device_or_no_drive_is_not_opened()
+    {
+        (EditSession? none, IReadOnlyList<Fault> faults) = EditSession.Open(folder.Write("bad.toml", SmallDevice.Text.Replace("1 mS", "1 mm", StringComparison.Ordinal)));
+        Assert.Null(none);
+        Assert.Contains("a sheet conductance is wanted", faults[0].Message, StringComparison.Ordinal);
+        string bare = SmallDevice.Text[..SmallDevice.Text.IndexOf("[drive]", StringComparison.Ordinal)];
+        (none, faults) = EditSession.Open(folder.Write("bare.toml", bare));
+        Assert.Null(none);
+        Assert.StartsWith("the file has no [drive]; add one", Assert.Single(faults).Message, StringComparison.Ordinal);
+        Assert.Equal("the file does not exist", EditSession.Open(folder["gone.toml"]).Faults.Single().Message);
+
+        // Nor does a change take it away.
+        EditSession session = Open();
+        Assert.Equal("without a [drive] there is nothing to compute", Assert.Single(session.Apply((t, _) => t.Without("drive"), null)).Message);
+        Assert.False(session.State.CanUndo);
+        Assert.Equal(1, session.State.Version);
+    }
+
+    [Fact]
+    public void A_file_that_is_gone_counts_as_changed_and_is_written_when_asked()
+    {
+        EditSession session = Open();
+        int told = 0;
+        session.Changed += (_, _) => told++;
+        session.CheckDisk();
+        Assert.Equal(0, told);
+        File.Delete(folder["device.toml"]);
+        session.CheckDisk();
+        session.CheckDisk();
+        Assert.Equal((1, true), (told, session.State.ChangedOnDisk));
+        Assert.Throws<FileNotFoundException>(() => session.Reload());
+        Assert.Equal(SaveOutcome.ChangedOnDisk, session.Save(overwrite: false));
+        Assert.Empty(folder.Files);
+        Assert.Equal(SaveOutcome.Saved, session.Save(overwrite: true));
+        Assert.Equal(SmallDevice.Text, File.ReadAllText(folder["device.toml"]));
+        Assert.False(session.State.ChangedOnDisk);
+    }
+
+    [Fact]
+    public void Save_as_replaces_when_asked_but_never_a_folder()
+    {
+        EditSession session = Open();
+        folder.Write("there.toml", "mine");
+        Directory.CreateDirectory(folder["folder.toml"]);
+        Assert.Equal(SaveOutcome.Exists, session.SaveAs("folder.toml", overwrite: true));
+        Assert.Equal(SaveOutcome.Saved, session.SaveAs("there.toml", overwrite: true));
+        Assert.Equal(SmallDevice.Text, File.ReadAllText(folder["there.toml"]));
+        Assert.Throws<LayoutEditException>(() => session.SaveAs(new string('a', 200) + ".toml", overwrite: true));
+    }
+
+    [PosixFact]
+    public void Save_as_does_not_follow_a_link()
+    {
+        EditSession session = Open();
+        string other = folder.Write("other.txt", "mine");
+        File.CreateSymbolicLink(folder["link.toml"], other);
+        Assert.Equal(SaveOutcome.Exists, session.SaveAs("link.toml", overwrite: true));
+        Assert.Equal("mine", File.ReadAllText(other));
+    }
+
+    [Fact]
+    public void A_file_that_became_faulty_is_not_taken_and_one_that_is_the_same_changes_nothing()
+    {
+        EditSession session = Open();
+        Assert.Empty(session.Reload());
+        Assert.Equal((1, false), (session.State.Version, session.State.CanUndo));
+        File.WriteAllText(folder["device.toml"], SmallDevice.Text + "[drive]\n");
+        SessionState before = session.State;
+        Assert.NotEmpty(session.Reload());
+        Assert.Equal(before, session.State);
+    }
+
+    [Fact]
+    public void Files_beside_the_device_are_read_anew_and_an_undo_to_what_they_forbid_is_none()
+    {
+        EditSession session = Sample("flake.toml");
+        string pads = File.ReadAllText(folder["flake-pads.geojson"]);
+        Point2 before = Named(session, "t1").Middle;
+        Assert.Empty(session.Apply((t, _) => t.With("title", "\"x\""), null));
+        int version = session.State.Version;
+        File.WriteAllText(folder["flake-pads.geojson"], pads.Replace("\"t1\"", "\"t9\"", StringComparison.Ordinal));
+        Assert.Contains("has no polygon named 't1'", session.ReadFiles()[0].Message, StringComparison.Ordinal);
+        Assert.Equal((version, before), (session.State.Version, Named(session, "t1").Middle));
+        Assert.False(session.Undo());
+        Assert.Equal("x", session.State.Device.Title);
+        File.WriteAllText(folder["flake-pads.geojson"], pads);
+        Assert.Empty(session.ReadFiles());
+        Assert.True(session.State.Version > version);
+        Assert.True(session.Undo());
+    }
+
+    [Fact]
+    public void A_change_that_changes_nothing_is_no_step_and_a_thousand_steps_are_kept()
+    {
+        EditSession session = Open("""
+            [sheet]
+            bar = { length = "12 um", width = "4 um" }
+            [law]
+            kind = "ohmic"
+            a = "1 mS"
+            b = "1 mS"
+            [[contact]]
+            name = "left"
+            edge = { end = "left" }
+            [[contact]]
+            name = "right"
+            edge = { end = "right" }
+            [[wiring]]
+            name = "bar"
+            source = "left"
+            drain = "right"
+            [drive]
+            current = { from = "0 uA", to = "30 uA", steps = 4 }
+            """);
+        Assert.Empty(session.Apply((t, _) => t, null));
+        Assert.Equal(1, session.State.Version);
+        for (int k = 0; k < 1003; k++)
+        {
+            Assert.Empty(session.Apply((t, _) => t.With("title", $"\"{k}\""), null));
+        }
+
+        int undone = 0;
+        while (session.Undo())
+        {
+            undone++;
+        }
+
+        Assert.Equal((1000, "2"), (undone, session.State.Device.Title));
+    }
 }

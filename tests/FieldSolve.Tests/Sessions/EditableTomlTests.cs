@@ -65,8 +65,129 @@ public class EditableTomlTests
         Assert.Null(new EditableToml(Text).At(400, 1));
     }
 
+    [Fact]
+    public void A_key_before_the_first_header_goes_to_the_front_where_there_is_none_yet()
+    {
+        EditableToml text = new("# a device\n[sheet]\n");
+        Assert.Equal("title = \"x\"\n# a device\n[sheet]\n", text.With("title", "\"x\"").Text);
+        Assert.Equal("# a device\n[sheet]\nthickness = \"1 nm\"\n", text.With("sheet.thickness", "\"1 nm\"").Text);
+        Assert.Equal("a = 1\nb = 2 # end\nc = 3\n", new EditableToml("a = 1\nb = 2 # end\n").With("c", "3").Text);
+    }
+
+    [Theory]
+    [InlineData("sheet.")]
+    [InlineData("")]
+    [InlineData("law.µ")]
+    [InlineData("tolerance.contacts.position")]
+    [InlineData("contact[0].position")]
+    public void A_path_that_names_no_place_is_refused(string path) =>
+        Assert.Equal($"'{path}' names no value of the device file", Assert.Throws<LayoutEditException>(() => new EditableToml("[sheet]\n").With(path, "1")).Message);
+
+    [Theory]
+    [InlineData("p = {}", "p = { k = 1 }")]
+    [InlineData("p = { }", "p = { k = 1 }")]
+    [InlineData("p = {a = 2}", "p = {a = 2, k = 1 }")]
+    [InlineData("p = { a = 2, } # last", "p = { a = 2, k = 1 } # last")]
+    [InlineData("p = { a = { b = 1 } }", "p = { a = { b = 1 }, k = 1 }")]
+    public void A_key_goes_into_braces_with_the_comma_that_is_missing(string text, string expected) => Assert.Equal(expected, new EditableToml(text).With("p.k", "1").Text);
+
+    [Theory]
+    [InlineData("p = { a = 1, b = 2, c = 3 }", "p.a", "p = { b = 2, c = 3 }")]
+    [InlineData("p = { a = 1, b = 2, c = 3 }", "p.b", "p = { a = 1, c = 3 }")]
+    [InlineData("p = { a = 1 , b = 2,  c = 3 }", "p.a", "p = { b = 2,  c = 3 }")]
+    [InlineData("p = { a = 1, b = 2 , c = 3 }", "p.c", "p = { a = 1, b = 2  }")]
+    [InlineData("p = { a = 1 }", "p.a", "p = {  }")]
+    [InlineData("p = {a=1}", "p.a", "p = {}")]
+    [InlineData("a = 1\nb = 2", "b", "a = 1\n")]
+    [InlineData("[a]\nx = 1\n\n  \n\t\n[b]\ny = 2\n", "a", "[b]\ny = 2\n")]
+    [InlineData("[a]\nx = 1\n[b]\ny = 2", "b", "[a]\nx = 1\n")]
+    [InlineData("[a]\r\nx = 1\r\n\r\n[b]\r\n", "a", "[b]\r\n")]
+    public void A_key_leaves_with_its_comma_or_its_line(string text, string path, string expected)
+    {
+        EditableToml without = new EditableToml(text).Without(path);
+        Assert.Equal(expected, without.Text);
+        Assert.Null(without.Find(path));
+    }
+
+    [Fact]
+    public void A_key_inside_a_list_is_left_to_the_hand()
+    {
+        EditableToml text = new("list = [ { a = [1, 2] } ]\n");
+        Assert.Equal("list = [ {  } ]\n", text.Without("list[0].a").Text);
+        Assert.Contains("is written inside a list", Assert.Throws<LayoutEditException>(() => text.Without("list[0]")).Message, StringComparison.Ordinal);
+        Assert.Contains("has no 'gone'", Assert.Throws<LayoutEditException>(() => text.Without("gone")).Message, StringComparison.Ordinal);
+    }
+
+    [Fact]
+    public void Items_come_and_go_with_their_commas()
+    {
+        EditableToml text = new("l = [1,  2, 3] # three\n");
+        Assert.Equal("l = [0, 1,  2, 3] # three\n", text.ItemBefore("l[0]", "0").Text);
+        Assert.Equal("l = [1,  2, 3, 4] # three\n", text.ItemAfter("l[2]", "4").Text);
+        Assert.Equal("l = [2, 3] # three\n", text.WithoutItem("l[0]").Text);
+        Assert.Equal("l = [1,  3] # three\n", text.WithoutItem("l[1]").Text);
+        Assert.Equal("l = [1,  2] # three\n", text.WithoutItem("l[2]").Text);
+        Assert.Equal("l = [] # three\n", text.WithoutItem("l[2]").WithoutItem("l[1]").WithoutItem("l[0]").Text);
+        foreach (string path in new[] { "l[3]", "l", "m[0]", "l[0]x" })
+        {
+            Assert.Equal($"the device file has no item '{path}'", Assert.Throws<LayoutEditException>(() => text.WithoutItem(path)).Message);
+            Assert.Throws<LayoutEditException>(() => text.ItemBefore(path, "0"));
+            Assert.Throws<LayoutEditException>(() => text.ItemAfter(path, "0"));
+        }
+    }
+
+    [Theory]
+    [InlineData("", null, "\n[b]\ny = 2\n")]
+    [InlineData("x = 1", null, "x = 1\n\n[b]\ny = 2\n")]
+    [InlineData("[a]\nx = 1", "a", "[a]\nx = 1\n\n[b]\ny = 2\n")]
+    [InlineData("[a]\nx = 1\n[c]\n", "a", "[a]\nx = 1\n\n[b]\ny = 2\n[c]\n")]
+    [InlineData("[a]\n", "z", "[a]\n\n[b]\ny = 2\n")]
+    [InlineData("[a]\r\n", null, "[a]\r\n\r\n[b]\r\ny = 2\r\n")]
+    public void A_table_is_added_behind_another_or_at_the_end(string text, string? after, string expected) =>
+        Assert.Equal(expected, new EditableToml(text).Appended("[b]\ny = 2", after).Text);
+
+    [Fact]
+    public void A_table_is_replaced_with_what_stands_between_its_keys()
+    {
+        EditableToml text = new("[a]\r\nx = 1\r\n# inside\r\nz = 2 # end\r\n# below\r\n[b]\r\n");
+        Assert.Equal("[c]\r\nq = 1\r\n# below\r\n[b]\r\n", text.Replaced("a", "[c]\nq = 1").Text);
+        Assert.Equal("the device file has no table 'c'", Assert.Throws<LayoutEditException>(() => text.Replaced("c", "")).Message);
+    }
+
+    [Fact]
+    public void Every_kind_of_value_and_key_is_found()
+    {
+        EditableToml text = new("day = 2026-12-02\non = true\nx = 1.5e3\nn = -3\n'a b' = 1\n\"c.d\" = 2\nl = [[1, 2], { k = 'v' }]\n[t.\"u v\"]\ns = 1\nw.\"x y\".z = 2\n[[r]]\n[[r]]\ns = 2\n");
+        (string Path, string Kind, string Value)[] expected =
+        [
+            ("day", "other", "2026-12-02"), ("on", "flag", "true"), ("x", "number", "1.5e3"), ("n", "number", "-3"), ("a b", "number", "1"), ("c.d", "number", "2"), ("l", "list", ""),
+            ("l[0]", "list", ""), ("l[0][0]", "number", "1"), ("l[0][1]", "number", "2"), ("l[1]", "table", ""), ("l[1].k", "text", "v"), ("t.u v.s", "number", "1"), ("t.u v.w.x y.z", "number", "2"),
+            ("r[1].s", "number", "2"),
+        ];
+        Assert.Equal(expected, text.Pieces.Select(p => (p.Path, p.Kind, p.Value)));
+        Assert.Equal(["", "t.u v", "r[0]", "r[1]"], text.Blocks.Select(b => b.Path));
+
+        // The second of two keys of one name is the reader's fault to tell; the first is found.
+        Assert.Equal("1", new EditableToml("k = 1\nk = 2\n").Find("k")!.Value);
+        Assert.DoesNotContain(new EditableToml("= 3\n").Pieces, p => p.Path.Length > 0);
+    }
+
+    [Fact]
+    public void A_place_leads_to_the_innermost_value()
+    {
+        EditableToml text = new("l = [[1, 2], 3]\n\nx = 1");
+        Assert.Equal("l[0][1]", text.At(1, 10)!.Path);
+        Assert.Equal("l[0]", text.At(1, 9)!.Path);
+        Assert.Equal("l", text.At(1, 1)!.Path);
+        Assert.Null(text.At(2, 1));
+        Assert.Equal("x", text.At(3, 5)!.Path);
+        Assert.Null(text.At(3, 6));
+        Assert.Null(text.At(4, 1));
+    }
+
     [Theory]
     [InlineData("a \"b\" \\ \n \u0001")]
+    [InlineData("\r\t\u007f\0")]
     [InlineData("µ ' ]")]
     public void Any_text_is_quoted_so_that_it_reads_back(string value) =>
         Assert.Equal(value, new EditableToml("x = " + EditableToml.Quoted(value)).Find("x")!.Value);

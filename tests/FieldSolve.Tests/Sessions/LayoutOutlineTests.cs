@@ -234,6 +234,12 @@ public sealed class LayoutOutlineTests : IDisposable
             ([good, Shape(TraceKind.Pad, "outline", 0, 0, 1, 0, 1, 1)], "a pad cannot be named 'outline'"),
             ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0, 1, 1), Shape(TraceKind.Pad, "a", 0, 0, 1, 0, 1, 1)], "two pads are named 'a'"),
             ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0)], "a traced polygon needs at least three corners"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0, 1, 2e9)], "a traced polygon needs at least three corners, none beyond 1 km"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, -2e9, 0, 1, 1)], "a traced polygon needs at least three corners, none beyond 1 km"),
+            ([Shape(TraceKind.Pad, new string('a', 101), 0, 0, 1, 0, 1, 1)], "every pad needs a name of one line"),
+            ([Shape(TraceKind.Pad, "a\nb", 0, 0, 1, 0, 1, 1)], "every pad needs a name of one line"),
+            ([Shape(TraceKind.Pad, "a", 0, 0, 1, 1, 1, 0, 0, 1)], "the pad 'a': "),
+            ([.. Enumerable.Range(0, 501).Select(k => Shape(TraceKind.Pad, $"p{k}", 0, 0, 1, 0, 1, 1))], "up to 500 polygons are saved together"),
             ([Shape(TraceKind.Pad, "a", 0, 0, 1, 0, double.NaN, 2)], "a traced polygon needs at least three corners"),
         ];
         Assert.All(cases, c => Assert.StartsWith(c.Message, Assert.Throws<LayoutEditException>(() => LayoutTrace.GeoJson(c.Shapes)).Message, StringComparison.Ordinal));
@@ -275,5 +281,130 @@ public sealed class LayoutOutlineTests : IDisposable
         }
 
         Assert.Equal(before, session.State.Text.Text);
+    }
+
+    [Theory]
+    [InlineData("disc = { diameter = \"8 um\" }", "a disc has no corners to move; its sizes are under [sheet]")]
+    [InlineData("hall_bar = { length = \"30 um\", width = \"6 um\", arm_width = \"1 um\", arm_length = \"3 um\", arms_at = [\"-8 um\", \"8 um\"] }", "a hall bar has no corners to move; its sizes are under [sheet]")]
+    public void A_shape_of_sizes_has_no_corners(string sheet, string message)
+    {
+        string contacts = sheet.StartsWith("disc", StringComparison.Ordinal) ? "at = \"0 deg\", width = \"1 um\"|at = \"90 deg\", width = \"1 um\"" : "end = \"left\"|end = \"right\"";
+        string text = $"""
+            [sheet]
+            {sheet}
+            [law]
+            kind = "ohmic"
+            a = "1 mS"
+            b = "1 mS"
+            [[contact]]
+            name = "left"
+            edge = {"{"} {contacts.Split('|')[0]} {"}"}
+            [[contact]]
+            name = "right"
+            edge = {"{"} {contacts.Split('|')[1]} {"}"}
+            [[wiring]]
+            name = "bar"
+            source = "left"
+            drain = "right"
+            [drive]
+            current = {"{"} from = "0 uA", to = "1 uA", steps = 2 {"}"}
+            """;
+        EditSession session = EditSession.Open(folder.Write("shape.toml", text)).Session!;
+        Assert.Equal(message, Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Move(t, d, 0, 0, default), null)).Message);
+        Assert.All(LayoutOutline.Paths(session.State.Text, session.State.Device).SelectMany(l => l), Assert.Null);
+    }
+
+    [Fact]
+    public void An_outline_of_very_many_corners_is_not_moved_by_hand()
+    {
+        // A sawtooth of 2100 corners along the lower edge.
+        string teeth = string.Join(',', Enumerable.Range(0, 2097).Select(k => FormattableString.Invariant($"[{k * 10.0 / 2097},{(k % 2 == 0 ? 0 : 0.01)}]")));
+        folder.Write("sheet.geojson", $"{{\"type\":\"Polygon\",\"coordinates\":[[{teeth},[10,0],[10,4],[0,4],[0,0]]]}}");
+        EditSession session = Open("file = \"sheet.geojson\", unit = \"um\"");
+        Assert.Equal("the outline has 2100 corners, and up to 2000 are moved by hand; simplify it first", Assert.Throws<LayoutEditException>(() => session.Apply(LayoutOutline.Own, null)).Message);
+    }
+
+    [Fact]
+    public void An_outline_under_its_own_header_keeps_its_unit_and_its_line_ends()
+    {
+        folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[0,4000],[10000,4000],[10000,0],[0,0]],[[4000,1000],[5000,1000],[5000,2000],[4000,1000]]]}""");
+        string text = Text.Replace("[sheet]\noutline = { CORNERS }   # kept", "[sheet.outline]\nfile = \"sheet.geojson\"   # gone with its key\nunit = \"nm\"", StringComparison.Ordinal).Replace("\n", "\r\n", StringComparison.Ordinal);
+        EditSession session = EditSession.Open(folder.Write("device.toml", text)).Session!;
+        Point2[][] before = [.. session.State.Device.Drawn.Select(l => l.Select(c => c.Start).ToArray())];
+        Assert.All(LayoutOutline.Paths(session.State.Text, session.State.Device).SelectMany(l => l), Assert.Null);
+        Assert.Empty(session.Apply(LayoutOutline.Own, null));
+        string now = session.State.Text.Text;
+        Assert.DoesNotContain("sheet.geojson", now, StringComparison.Ordinal);
+        Assert.DoesNotContain("\n", now.Replace("\r\n", "", StringComparison.Ordinal), StringComparison.Ordinal);
+        Assert.Contains("[\"10000 nm\", \"4000 nm\"]", now, StringComparison.Ordinal);
+        Assert.Equal(before.Select(l => l.Length), session.State.Device.Drawn.Select(l => l.Count));
+        Assert.All(before.SelectMany(l => l), p => Assert.Contains(session.State.Device.Drawn.SelectMany(l => l), c => Point2.Distance(c.Start, p) < 1e-12));
+        Assert.All(LayoutOutline.Paths(session.State.Text, session.State.Device).SelectMany(l => l), Assert.NotNull);
+
+        // What stands there already stays, to the letter.
+        Assert.Empty(session.Apply(LayoutOutline.Own, null));
+        Assert.Equal(now, session.State.Text.Text);
+    }
+
+    [Fact]
+    public void Corners_of_holes_move_come_and_go_and_the_last_three_of_the_rim_stay()
+    {
+        EditSession session = Open();
+        int n = session.State.Device.Drawn[1].Count;
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Add(t, d, 1, 0, new(4.2e-6, 1.6e-6)), null));
+        Assert.Equal(n + 1, session.State.Device.Drawn[1].Count);
+        int added = session.State.Device.Drawn[1].ToList().FindIndex(c => Point2.Distance(c.Start, new(4.2e-6, 1.6e-6)) < 1e-9);
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Move(t, d, 1, added, new(4.1e-6, 1.7e-6)), null));
+        Assert.Contains(session.State.Device.Drawn[1], c => Point2.Distance(c.Start, new(4.1e-6, 1.7e-6)) < 1e-9);
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Drop(t, d, 1, added), null));
+        Assert.Equal(n, session.State.Device.Drawn[1].Count);
+        Assert.Equal("the outline has no corner 8 in hole 1", Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Drop(t, d, 1, 7), null)).Message);
+        Assert.Equal("the outline has no corner 0", Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Drop(t, d, 0, -1), null)).Message);
+
+        // The upper left corner goes, with "top" and "left" on what joins its neighbours; then three are left.
+        Assert.Empty(session.Apply((t, d) => LayoutParts.Drop(t, d, "top"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Drop(t, d, 1, 0), null));
+        int corner = Find(session.State.Device, 10, 0), before = session.State.Device.Drawn[0].Count;
+        Assert.Equal(4, before);
+        Assert.Empty(session.Apply((t, d) => LayoutOutline.Drop(t, d, 0, corner), null));
+        Assert.Equal("an outline keeps at least three corners", Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutOutline.Drop(t, d, 0, 0), null)).Message);
+    }
+
+    [Fact]
+    public void A_trace_of_pads_alone_takes_the_place_of_the_contacts_of_their_names()
+    {
+        EditSession session = EditSession.Open(folder.Write("device.toml", Text.Replace("CORNERS", Corners, StringComparison.Ordinal)
+            .Replace("to = [\"0 um\", \"3 um\"] }", "to = [\"0 um\", \"3 um\"] }\nresistance = \"100 ohm um\"\nshift = \"0.1 um\"", StringComparison.Ordinal))).Session!;
+        Assert.True(Named(session, "left").LineResistance > 0);
+        TraceShape pad = new(TraceKind.Pad, "left", [new(0.5e-6, 1e-6), new(1.5e-6, 1e-6), new(1.5e-6, 3e-6), new(0.5e-6, 3e-6)]);
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "pads.geojson", [pad], overwrite: false));
+        Point2[] drawn = [.. session.State.Device.Drawn[0].Select(c => c.Start)];
+        Assert.Equal("a current needs two contacts; trace at least two pads", Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, "pads.geojson", true), null)).Message);
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "pads.geojson", false), null));
+        Assert.Equal(drawn, session.State.Device.Drawn[0].Select(c => c.Start));
+        Assert.Equal(["left", "right", "top"], session.State.Device.Contacts.Select(c => c.Name));
+        Assert.Equal((ContactKind.Pad, 0.0, 0.0), (Named(session, "left").Kind, Named(session, "left").LineResistance, Named(session, "left").Resistivity));
+        Assert.Equal(0, Point2.Distance(new(1e-6, 2e-6), Named(session, "left").Middle), 1e-12);
+
+        // Used once more nothing changes; a file that is no trace, or none at all, is said to be so.
+        string text = session.State.Text.Text;
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "pads.geojson", false), null));
+        Assert.Equal(text, session.State.Text.Text);
+        folder.Write("bad.geojson", "{\"type\": 3}");
+        Assert.StartsWith("the file 'bad.geojson': this is no GeoJSON", Assert.Throws<LayoutEditException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, "bad.geojson", false), null)).Message, StringComparison.Ordinal);
+        Assert.Throws<FileNotFoundException>(() => session.Apply((t, d) => LayoutTrace.Use(t, d, "gone.geojson", false), null));
+    }
+
+    [Fact]
+    public void A_traced_outline_takes_the_place_of_one_under_a_header()
+    {
+        folder.Write("sheet.geojson", """{"type":"Polygon","coordinates":[[[0,0],[0,4],[10,4],[10,0],[0,0]]]}""");
+        EditSession session = EditSession.Open(folder.Write("device.toml", Text.Replace("[sheet]\noutline = { CORNERS }   # kept", "[sheet]\n[sheet.outline]\nfile = \"sheet.geojson\"\nunit = \"um\"", StringComparison.Ordinal))).Session!;
+        TraceShape outline = new(TraceKind.Outline, "", [new(0, 0), new(10e-6, 0), new(10e-6, 5e-6), new(0, 5e-6)]);
+        Assert.Equal(SaveOutcome.Saved, LayoutTrace.Save(session.State, "t.geojson", [outline], overwrite: false));
+        Assert.Empty(session.Apply((t, d) => LayoutParts.Drop(t, d, "top"), null));
+        Assert.Empty(session.Apply((t, d) => LayoutTrace.Use(t, d, "t.geojson", false), null));
+        Assert.Equal(50e-12, new Outline(session.State.Device.Drawn).Area, 1e-16);
+        Assert.DoesNotContain("[sheet.outline]", session.State.Text.Text, StringComparison.Ordinal);
     }
 }

@@ -32,4 +32,44 @@ public sealed class LayoutSensitivityTests : IDisposable
         Assert.Equal(difference, effect.Odd, 0.05 * effect.Odd);
         Assert.Throws<LayoutEditException>(() => LayoutSensitivity.Of(session.State, "nobody", CancellationToken.None));
     }
+
+    [Fact]
+    public void A_layout_that_names_or_holds_no_place_says_so()
+    {
+        string Refused(string text) => Assert.Throws<LayoutEditException>(() => LayoutSensitivity.Of(EditSession.Open(folder.Write("device.toml", text)).Session!.State, "bar", CancellationToken.None)).Message;
+        Assert.StartsWith("the [tolerance] of the file names no place of a contact", Refused(SmallDevice.Text + "\n[tolerance]\na = \"10 uS\"\n"), StringComparison.Ordinal);
+        Assert.StartsWith("the [tolerance] of the file names no place of a contact", Refused("tolerance = { a = \"10 uS\" }\n" + SmallDevice.Text), StringComparison.Ordinal);
+
+        // Ends alone lie between corners.
+        string ends = SmallDevice.Text[..SmallDevice.Text.IndexOf("[[contact]]\nname = \"top 1\"", StringComparison.Ordinal)] + """
+            [[point]]
+            name = "p"
+            at = ["0 um", "1 um"]
+            [[point]]
+            name = "q"
+            at = ["0 um", "-1 um"]
+            [[wiring]]
+            name = "bar"
+            source = "left"
+            drain = "right"
+            across = ["p", "q"]
+            [drive]
+            current = { from = "0 uA", to = "30 uA", steps = 4 }
+            """;
+        Assert.Equal("no contact of this layout can be misplaced", Refused(ends));
+        Assert.Equal("this wiring reads nothing across", Refused(SmallDevice.Text.Replace("across = [\"top 1\", \"bottom 1\"]", "", StringComparison.Ordinal)));
+    }
+
+    [Fact]
+    public void Pads_are_misplaced_both_ways_and_a_stated_size_is_taken()
+    {
+        const string pad = "[[contact]]\nname = \"pad\"\npad = [[\"2.6 um\", \"-0.4 um\"], [\"3.4 um\", \"-0.4 um\"], [\"3.4 um\", \"0.4 um\"], [\"2.6 um\", \"0.4 um\"]]\n\n";
+        string text = SmallDevice.Text.Replace("[[point]]", pad + "[[point]]", StringComparison.Ordinal);
+        ContactEffect[] effects = [.. LayoutSensitivity.Of(EditSession.Open(folder.Write("device.toml", text)).Session!.State, "bar", CancellationToken.None)];
+        Assert.Equal("x 50 nm, y 50 nm", effects.Single(e => e.Contact == "pad").Causes);
+        Assert.Equal(effects.OrderByDescending(e => e.Odd).Select(e => e.Contact), effects.Select(e => e.Contact));
+        Assert.All(effects, e => Assert.Equal((0.0, 0.0), (e.Even, e.EvenError)));
+        ContactEffect one = Assert.Single(LayoutSensitivity.Of(EditSession.Open(folder.Write("stated.toml", SmallDevice.Text + "\n[[tolerance.contact]]\nname = \"top 1\"\nposition = \"25 nm\"\nwidth = \"10 nm\"\n")).Session!.State, "bar", CancellationToken.None));
+        Assert.Equal(("top 1", "position 25 nm"), (one.Contact, one.Causes));
+    }
 }

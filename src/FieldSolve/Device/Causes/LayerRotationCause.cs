@@ -3,13 +3,10 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Device;
 
 /// <summary>A lithography layer is turned against the sheet about a point, counter-clockwise.</summary>
-public sealed class LayerRotationCause : CauseKind
+public sealed class LayerRotationCause : LayerCause
 {
     /// <inheritdoc/>
     public override string Key => "layer_rotation";
-
-    /// <inheritdoc/>
-    public override CauseScope Scope => CauseScope.Layer;
 
     /// <inheritdoc/>
     public override Dimension Dimension => Dimension.Angle;
@@ -18,11 +15,6 @@ public sealed class LayerRotationCause : CauseKind
     public override string Meaning => "common rotation of a layer";
 
     /// <inheritdoc/>
-    public override void Apply(DeviceDraft draft, CauseTarget target, double by)
-    {
-        foreach (int c in target.Contacts)
-        {
-            EdgeMoves.Displace(draft, c, p => target.About + (p - target.About).Turned(by));
-        }
-    }
+    protected override void Apply(DeviceDraft draft, CauseTarget layer, int contact, double by) =>
+        EdgeMoves.Displace(draft, contact, p => layer.About + (p - layer.About).Turned(by));
 }

@@ -3,13 +3,10 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Device;
 
 /// <summary>All contacts of a lithography layer are wider by the same amount (exposure): edge contacts along the edge, pads across.</summary>
-public sealed class LayerWidthCause : CauseKind
+public sealed class LayerWidthCause : LayerCause
 {
     /// <inheritdoc/>
     public override string Key => "layer_width";
-
-    /// <inheritdoc/>
-    public override CauseScope Scope => CauseScope.Layer;
 
     /// <inheritdoc/>
     public override Dimension Dimension => Dimension.Length;
@@ -18,18 +15,15 @@ public sealed class LayerWidthCause : CauseKind
     public override string Meaning => "common extra width of a layer's contacts";
 
     /// <inheritdoc/>
-    public override void Apply(DeviceDraft draft, CauseTarget target, double by)
+    protected override void Apply(DeviceDraft draft, CauseTarget layer, int contact, double by)
     {
-        foreach (int c in target.Contacts)
+        if (draft.Contacts[contact].Pad is not null)
         {
-            if (draft.Contacts[c].Pad is not null)
-            {
-                PadGrowthCause.Grow(draft, c, by / 2);
-            }
-            else if (EdgeMoves.Refuse(draft.Designed, c) is null)
-            {
-                EdgeMoves.Move(draft, c, 0, by);
-            }
+            PadGrowthCause.Grow(draft, contact, by / 2);
+        }
+        else if (EdgeMoves.Refuse(draft.Designed, contact) is null)
+        {
+            EdgeMoves.Move(draft, contact, 0, by);
         }
     }
 }

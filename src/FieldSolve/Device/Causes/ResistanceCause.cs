@@ -3,22 +3,16 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Device;
 
 /// <summary>The line contact resistance of an edge contact.</summary>
-public sealed class ResistanceCause : CauseKind
+public sealed class ResistanceCause : ContactResistanceCause
 {
     /// <inheritdoc/>
     public override string Key => "resistance";
-
-    /// <inheritdoc/>
-    public override CauseScope Scope => CauseScope.Contact;
 
     /// <inheritdoc/>
     public override Dimension Dimension => Dimension.LineResistance;
 
     /// <inheritdoc/>
     public override string Meaning => "line contact resistance";
-
-    /// <inheritdoc/>
-    public override CauseEffect Effect => CauseEffect.Resistance;
 
     /// <inheritdoc/>
     public override bool Fits(ContactKind contact) => contact == ContactKind.Edge;
@@ -32,7 +26,4 @@ public sealed class ResistanceCause : CauseKind
         { LineResistance: 0 } => "is ideal; give the contact a 'resistance' for the tolerance to vary",
         _ => null,
     };
-
-    /// <inheritdoc/>
-    public override void Apply(DeviceDraft draft, CauseTarget target, double by) => draft.AddToResistance(target.Contacts[0], by);
 }

@@ -3,22 +3,16 @@ using FieldSolve.Quantities;
 namespace FieldSolve.Device;
 
 /// <summary>The specific contact resistivity of a pad.</summary>
-public sealed class ResistivityCause : CauseKind
+public sealed class ResistivityCause : ContactResistanceCause
 {
     /// <inheritdoc/>
     public override string Key => "resistivity";
-
-    /// <inheritdoc/>
-    public override CauseScope Scope => CauseScope.Contact;
 
     /// <inheritdoc/>
     public override Dimension Dimension => Dimension.ContactResistivity;
 
     /// <inheritdoc/>
     public override string Meaning => "specific contact resistivity";
-
-    /// <inheritdoc/>
-    public override CauseEffect Effect => CauseEffect.Resistance;
 
     /// <inheritdoc/>
     public override bool Fits(ContactKind contact) => contact == ContactKind.Pad;
@@ -30,7 +24,4 @@ public sealed class ResistivityCause : CauseKind
         { Resistivity: 0 } => "is ideal; give the pad a 'resistivity' for the tolerance to vary",
         _ => null,
     };
-
-    /// <inheritdoc/>
-    public override void Apply(DeviceDraft draft, CauseTarget target, double by) => draft.AddToResistance(target.Contacts[0], by);
 }

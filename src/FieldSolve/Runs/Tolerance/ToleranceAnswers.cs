@@ -116,13 +116,13 @@ internal static class ToleranceAnswers
 
     private static string Even(SampleStatistics s, IReadOnlyList<BudgetEntry> entries)
     {
-        double spread = Spread(s), share = s.Design != 0 ? spread / Math.Abs(s.Design) : double.PositiveInfinity;
+        double spread = Spread(s), share = spread == 0 ? 0 : s.Design != 0 ? spread / Math.Abs(s.Design) : double.PositiveInfinity;
         string noise = s.NumericalError > Math.Abs(s.Design) ? Text($" (below its numerical error of {Volts(s.NumericalError)})") : "";
         string largest = entries.FirstOrDefault(e => e.Contribution != 0) is { } e ? Text($" Most of it comes from {e.Cause.Label}{(e.Order == 2 ? ", in second order" : "")}.") : "";
         string verdict = share < 0.1 ? "these causes cannot fake it"
             : share < 1 ? "these causes change it, but do not make it up"
             : "these causes alone could fake it";
-        string part = double.IsFinite(share) ? Text($", {Percent(share)} of it") : "";
+        string part = s.Design != 0 ? Text($", {Percent(share)} of it") : "";
         return Text($"the across even part is {Volts(s.Design)} as designed{noise} and scatters by {Volts(spread)} (1 sigma){part}: {verdict}.{largest}");
     }
 
@@ -154,8 +154,13 @@ internal static class ToleranceAnswers
 
     private static IReadOnlyList<BudgetEntry> Entries(IReadOnlyList<BudgetEntry> budget, ToleranceQuantity q) => [.. budget.Where(e => e.Quantity == q)];
 
-    private static string Size(SheetCause cause, double si) => cause.Kind.Dimension == Dimension.Length ? SiText.Of(si, "m")
-        : cause.Unit.Contains(' ', StringComparison.Ordinal) || cause.Unit is "deg" or "1" ? Text($"{si / cause.UnitSize:G3} {cause.Unit}") : SiText.Of(si, cause.Unit);
+    private static string Size(SheetCause cause, double si) => cause.Unit switch
+    {
+        "1" => Text($"{si:G3}"),
+        _ when cause.Kind.Dimension == Dimension.Length => SiText.Of(si, "m"),
+        var unit when unit == "deg" || unit.Contains(' ', StringComparison.Ordinal) => Text($"{si / cause.UnitSize:G3} {unit}"),
+        var unit => SiText.Of(si, unit),
+    };
 
     private static string Volts(double v) => SiText.Of(v, "V");
 

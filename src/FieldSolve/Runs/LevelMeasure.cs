@@ -37,7 +37,7 @@ internal sealed record GoalMeasure(
         return before.Count == 0 ? this : last is null ? Untried() : this with
         {
             Error = Error.AfterMove(last.Error, Corrected - last.Corrected),
-            WeakError = last.WeakError is { } weak ? WeakError!.AfterMove(weak, WeakValue + WeakError.Correction - last.WeakValue - weak.Correction) : WeakError,
+            WeakError = (WeakError, last.WeakError) is ({ } own, { } weak) ? own.AfterMove(weak, WeakValue + own.Correction - last.WeakValue - weak.Correction) : WeakError,
         };
     }
 
@@ -46,10 +46,14 @@ internal sealed record GoalMeasure(
 
     /// <summary>The same with bars that trust the corrections as far as those of the same reading did on these triangles before they were moved a little.</summary>
     /// <param name="before">The goals there.</param>
-    public GoalMeasure TriedAs(IReadOnlyList<GoalMeasure> before) => before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven) is not { } last ? Untried() : this with
+    public GoalMeasure TriedAs(IReadOnlyList<GoalMeasure> before) => TriedAs(before.FirstOrDefault(g => g.Plan == Plan && g.Pair == Pair && g.IsEven == IsEven));
+
+    /// <summary>The same for one goal.</summary>
+    /// <param name="before">The same reading there, perhaps of a plan made anew; null where there was none.</param>
+    public GoalMeasure TriedAs(GoalMeasure? before) => before is null ? Untried() : this with
     {
-        Error = Error.TriedAs(last.Error),
-        WeakError = last.WeakError is { } weak ? WeakError!.TriedAs(weak) : WeakError,
+        Error = Error.TriedAs(before.Error),
+        WeakError = before.WeakError is { } weak ? WeakError?.TriedAs(weak) : WeakError?.Untried(),
     };
 }
 

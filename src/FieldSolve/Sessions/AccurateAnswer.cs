@@ -108,7 +108,7 @@ internal sealed class AccurateAnswer
     private GoalMeasure Tried(GoalMeasure goal)
     {
         GoalMeasure? before = last!.Goals.FirstOrDefault(g => g.IsEven == goal.IsEven && g.Plan.Wiring.Name == goal.Plan.Wiring.Name && g.Plan.Pairs[g.Pair].Name == goal.Plan.Pairs[goal.Pair].Name);
-        return goal with { Error = before is null ? goal.Error.Untried() : goal.Error.TriedAs(before.Error) };
+        return before is null ? goal.Untried() : goal.TriedAs(before);
     }
 
     private static bool Close(Tensor2 a, Tensor2 b)

@@ -32,10 +32,10 @@ public class WarningTests
         ];
         IReadOnlyList<string> words = DriveWarnings.Of(rows, new Dictionary<string, string> { ["v"] = "The table ends." });
         Assert.Equal(4, words.Count);
-        Assert.StartsWith("Wiring 'w' leaves its law from 0.0002 A on: at (1E-06, -2E-06) m the field reaches 3E+05 V/m, beyond 2E+05 V/m where the law is guarded (zone of radius 4E-08 m)", words[0], StringComparison.Ordinal);
-        Assert.StartsWith("Wiring 'v' has no solution from 0.0005 A on: the iteration did not converge. The table ends. The sheet may", words[1], StringComparison.Ordinal);
-        Assert.StartsWith("Wiring 'v' misses the wanted numerical error (first at 0.0001 A; largest error bar 4E-06 V in 'source').", words[2], StringComparison.Ordinal);
-        Assert.StartsWith("Wiring 'u' has no solution from 0.0006 A on: the iteration did not converge. The sheet may", words[3], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'w' leaves its law from 200 µA on: at (1 µm, -2 µm) the field reaches 300 kV/m, beyond 200 kV/m where the law is guarded (zone of radius 40 nm)", words[0], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'v' has no solution from 500 µA on: the iteration did not converge. The table ends. The sheet may", words[1], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'v' misses the wanted numerical error (first at 100 µA; largest error bar 4 µV in 'source').", words[2], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'u' has no solution from 600 µA on: the iteration did not converge. The sheet may", words[3], StringComparison.Ordinal);
         Assert.Empty(DriveWarnings.Of([rows[0]], None));
     }
 
@@ -51,11 +51,11 @@ public class WarningTests
         ];
         IReadOnlyList<string> words = LockinWarnings.Of(points, new Dictionary<string, string> { ["u"] = "It breaks." });
         Assert.Equal(4, words.Count);
-        Assert.Contains("leaves its law from 0.0002 A RMS on", words[0], StringComparison.Ordinal);
+        Assert.Contains("leaves its law from 200 µA RMS on", words[0], StringComparison.Ordinal);
         Assert.Contains("that moves harmonic 1 of 'along' by more than its wanted error", words[0], StringComparison.Ordinal);
-        Assert.Contains("(first at 0.0001 A RMS and 100 Hz; error bar 2E-09 V in harmonic 3 of 'across')", words[1], StringComparison.Ordinal);
-        Assert.StartsWith("Wiring 'v' has no solution from 0.0005 A RMS and 20 Hz on: the iteration did not converge. The sheet", words[2], StringComparison.Ordinal);
-        Assert.StartsWith("Wiring 'u' has no solution from 0.0003 A RMS on: the iteration did not converge. It breaks. The sheet", words[3], StringComparison.Ordinal);
+        Assert.Contains("(first at 100 µA RMS and 100 Hz; error bar 2 nV in harmonic 3 of 'across')", words[1], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'v' has no solution from 500 µA RMS and 20 Hz on: the iteration did not converge. The sheet", words[2], StringComparison.Ordinal);
+        Assert.StartsWith("Wiring 'u' has no solution from 300 µA RMS on: the iteration did not converge. It breaks. The sheet", words[3], StringComparison.Ordinal);
     }
 
     // Limits of touch: 60 V DC and 30 V RMS (IEC 61010-1, clause 6.3, from memory, as in the code); those of a flake: common practice, no source.
@@ -80,11 +80,11 @@ public class WarningTests
     public void Dense_currents_and_power_are_cautioned_with_the_wiring_that_has_them()
     {
         SheetDevice device = Device();
-        CurveRow[] rows = [Row("w", 1e-4, RowStatus.Ok, 0, null, 1001, 1), Row("v", 1e-4, RowStatus.Ok, 0, null, 1, 1.1e9)];
+        CurveRow[] rows = [Row("w", 1e-4, RowStatus.Ok, 0, null, 1100, 1), Row("v", 1e-4, RowStatus.Ok, 0, null, 1, 1.1e9)];
         IReadOnlyList<string> said = Cautions.Of(device, rows);
-        Assert.StartsWith("The sheet may be destroyed: the sheet current density peaks at 1E+03 A/m in wiring 'w', above 1E+03 A/m", said[0], StringComparison.Ordinal);
-        Assert.StartsWith("The device may burn: the power density peaks at 1.1E+09 W/m² in wiring 'v', above 1E+09 W/m²", said[1], StringComparison.Ordinal);
-        Assert.Contains("(1E+11 A/m² through its thickness)", Cautions.Of(device with { Thickness = 1e-8 }, rows)[0], StringComparison.Ordinal);
+        Assert.StartsWith("The sheet may be destroyed: the sheet current density peaks at 1.1 kA/m in wiring 'w', above 1 kA/m", said[0], StringComparison.Ordinal);
+        Assert.StartsWith("The device may burn: the power density peaks at 1.1 GW/m² in wiring 'v', above 1 GW/m²", said[1], StringComparison.Ordinal);
+        Assert.Contains("(110 GA/m² through its thickness)", Cautions.Of(device with { Thickness = 1e-8 }, rows)[0], StringComparison.Ordinal);
         Assert.Empty(Cautions.Of(device with { Caution = new() { SheetCurrentDensity = 2000, PowerDensity = 2e9 } }, rows));
         Assert.Empty(Cautions.Of(device, []));
     }
@@ -98,7 +98,7 @@ public class WarningTests
         Assert.Null(Cautions.OfMeanFreePath(bar with { MeanFreePath = end / 10.1 }));
         Assert.StartsWith("A local law is in doubt: the smallest feature (contact '", Cautions.OfMeanFreePath(bar with { MeanFreePath = end / 9.9 }), StringComparison.Ordinal);
         SheetDevice split = TestDrive.Device(DeviceText.Bar(12e-6, 4e-6, DeviceText.Ohmic(1e-3, 1e-3)).Stretch("l", -5.5e-6, 2e-6, -5.9e-6, 2e-6).Whole("r", "end", "right").Wiring("w", "l", "r").Drive(1e-4));
-        Assert.Contains("(a stretch of the edge, 1E-07 m)", Cautions.OfMeanFreePath(split with { MeanFreePath = 2e-8 }), StringComparison.Ordinal);
+        Assert.Contains("(a stretch of the edge, 100 nm)", Cautions.OfMeanFreePath(split with { MeanFreePath = 2e-8 }), StringComparison.Ordinal);
     }
 
     // V2 = -k V1²/sqrt(2) and V3 = c V1³ for a quadratic and a cubic response: slopes 1, 2 and 3 in log r against log I (README, lockin).

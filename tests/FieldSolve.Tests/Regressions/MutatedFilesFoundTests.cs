@@ -27,6 +27,15 @@ public class MutatedFilesFoundTests
         Assert.Contains($"'{text}' is beyond anything that is measured", fault.Message, StringComparison.Ordinal);
     }
 
+    // A number in a mesh file, and the path of a value in a change of a layout, brought a delete character and a carriage return into messages.
+    [Fact]
+    public void A_message_cannot_steer_a_terminal()
+    {
+        Fault fault = new("m.vtu", 3, 1, "'11\u007f61' is no number\r") { Column = 2 };
+        Assert.Equal("m.vtu:3:2: '11\\u007F61' is no number\\u000D", fault.ToString());
+        Assert.DoesNotContain((fault with { Message = "a\u2028b" }).Message, c => c is '\u2028');
+    }
+
     // A step of six per cent of the smallest double is none, and the reader hung.
     [Theory]
     [InlineData("4.9e-324")]

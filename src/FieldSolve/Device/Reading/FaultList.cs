@@ -1,5 +1,4 @@
 using System.Globalization;
-using System.Text;
 
 namespace FieldSolve.Device;
 
@@ -18,11 +17,11 @@ internal sealed class FaultList(string path)
     public int Count => faults.Count;
 
     /// <summary>Notes a fault of the device file.</summary>
-    public void Add(Place at, string message) => Keep(at, new(Path, at.Line, at.Column, Visible(message)));
+    public void Add(Place at, string message) => Keep(at, new(Path, at.Line, at.Column, message));
 
     /// <summary>Notes a fault of a file that the device file names at the given place.</summary>
     public void AddElsewhere(Place namedAt, string file, int line, int column, string message) =>
-        Keep(namedAt, new(file, line, column, Visible(message)));
+        Keep(namedAt, new(file, line, column, message));
 
     /// <summary>The faults in the order of their places; those beyond a readable number as a count.</summary>
     public IReadOnlyList<Fault> InOrder()
@@ -48,26 +47,5 @@ internal sealed class FaultList(string path)
         {
             faults.Add((order, fault));
         }
-    }
-
-    /// <summary>One line without control characters, so that a message cannot steer a terminal.</summary>
-    private static string Visible(string message)
-    {
-        StringBuilder? clean = null;
-        for (int k = 0; k < message.Length; k++)
-        {
-            char c = message[k];
-            if (char.IsControl(c) || c is '\u2028' or '\u2029')
-            {
-                clean ??= new StringBuilder(message, 0, k, message.Length + 16);
-                clean.Append(CultureInfo.InvariantCulture, $"\\u{(int)c:X4}");
-            }
-            else
-            {
-                clean?.Append(c);
-            }
-        }
-
-        return clean?.ToString() ?? message;
     }
 }

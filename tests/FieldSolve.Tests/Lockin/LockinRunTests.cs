@@ -97,7 +97,7 @@ public class LockinRunTests
             sharpness = 2
             """, "{ from = \"20 uA\", to = \"50 uA\", steps = 2 }"));
         Assert.Equal([RowStatus.Ok, RowStatus.NotConverged], result.Points.Select(p => p.Status));
-        Assert.Contains("5E-05 A RMS", Assert.Single(result.Warnings), StringComparison.Ordinal);
+        Assert.Contains("50 µA RMS", Assert.Single(result.Warnings), StringComparison.Ordinal);
         string[] lines = HarmonicsCsv.Text(result.Device.Wirings, result.Points).Split("\r\n");
         Assert.Equal(1 + (2 * 2 * 6) + 1, lines.Length);
         Assert.Equal("bar,5E-05,,source,5,,,,,,not-converged", lines[^2]);

@@ -1,6 +1,5 @@
 using System.Globalization;
 using System.Text;
-using System.Text.Json.Nodes;
 using FieldSolve.Meshing;
 using FieldSolve.Readings;
 
@@ -23,7 +22,7 @@ internal static class MeshText
         return text.ToString();
     }
 
-    public static string Json(MeshQuality quality, IReadOnlyList<RefinementLevel> levels, string file) => new JsonObject
+    public static string Json(MeshQuality quality, IReadOnlyList<RefinementLevel> levels, string file) => SummaryJson.Text(new()
     {
         ["file"] = file,
         ["triangles"] = quality.Triangles,
@@ -37,5 +36,5 @@ internal static class MeshText
         ["area_m2"] = quality.Area,
         ["levels"] = levels.Count,
         ["unknowns"] = levels.Count > 0 ? levels[^1].Unknowns : null,
-    }.ToJsonString(new() { WriteIndented = true }) + "\n";
+    });
 }

@@ -1,4 +1,3 @@
-using System.Diagnostics;
 using FieldSolve.Sparse;
 
 namespace FieldSolve.Tests.SparseTests;
@@ -65,16 +64,13 @@ public class ThreadTests
     [Theory]
     [InlineData(1)]
     [InlineData(2)]
-    public void Cancellation_reaches_a_factorisation_soon(int degree)
+    public void A_cancelled_factorisation_ends_and_its_factor_is_refused(int degree)
     {
         Sample disc = Disc.Value;
         var lu = new SparseLu(SparseAnalysis.Analyse(disc.Pattern, disc.X, disc.Y));
         lu.Factor(disc.Values, degree);
         using var cancel = new CancellationTokenSource();
-        // From this thread's own work: until the moment of cancelling the factorisation is repeated.
-        var clock = new Stopwatch();
-        using CancellationTokenRegistration noted = cancel.Token.Register(clock.Start);
-        // From a thread of its own: a timer needs a free thread of the pool, and all of them may wait or work here.
+        // Until the moment of cancelling the factorisation is repeated. From a thread of its own: a timer needs a free thread of the pool, and all of them may wait or work here.
         var hand = new Thread(() =>
         {
             Thread.Sleep(30);
@@ -89,8 +85,6 @@ public class ThreadTests
             }
         });
         hand.Join();
-        // 100 ms on a machine of one's own; far more where others work on it as well.
-        Assert.InRange(clock.Elapsed.TotalMilliseconds, 0, 10_000);
         Assert.Throws<InvalidOperationException>(() => lu.Solve(new double[disc.Size], new double[disc.Size]));
     }
 

@@ -10,6 +10,9 @@ internal static class LayoutPageTimes
 {
     private const int Warm = 8, Moves = 40, EachRest = 10;
 
+    // Asks the page to say when it is so far: a question at every frame would take time from the answer.
+    private const string Wait = "enough => new Promise(done => { const told = () => { if (enough.some(k => watched.kinds.has(k))) { watched.told = null; done(); } }; watched.told = told; told(); })";
+
     // Keeps the time of the last move of the mouse and, for the first answer of each kind that is painted for the newest state after it, how long that took.
     private const string Watch = """
         () => {
@@ -21,6 +24,7 @@ internal static class LayoutPageTimes
             if (answer && w.at !== null && answer.version > w.from && answer.version === app.state.version && !w.kinds.has(kind)) {
               w.kinds.add(kind);
               w[kind].push(performance.now() - w.at);
+              w.told?.();
             }
           };
         }
@@ -62,10 +66,11 @@ internal static class LayoutPageTimes
 
                     // To another of seven places, three pixels apart; every tenth move the hand rests.
                     await page.Mouse.MoveAsync(x + (3 * (k * 5 % 7)) - 9, y);
-                    await page.WaitForFunctionAsync("() => watched.kinds.has('coarse') || watched.kinds.has('accurate')");
+                    await page.EvaluateAsync(Wait, new[] { "coarse", "accurate" });
                     if (k % EachRest == 0)
                     {
-                        await page.WaitForFunctionAsync("() => fieldsolve.app.answer.complete && watched.kinds.has('accurate')");
+                        await page.EvaluateAsync(Wait, new[] { "accurate" });
+                        await page.WaitForFunctionAsync("() => fieldsolve.app.answer.complete");
                     }
                 }
 

@@ -24,6 +24,8 @@ internal sealed class OpenServer : IAsyncDisposable
     private readonly PageHub hub;
     private readonly AnswerLoop answers;
     private readonly Timer disk;
+    private readonly Timer tidy;
+    private readonly TimeSpan rest;
     private readonly Lock telling = new();
     private readonly CancellationTokenSource stop = new();
     private readonly TaskCompletionSource ended = new(TaskCreationOptions.RunContinuationsAsynchronously);
@@ -31,6 +33,8 @@ internal sealed class OpenServer : IAsyncDisposable
     private OpenServer(EditSession session, WebApplication app, PageGuard guard, OpenOptions options)
     {
         (this.session, this.app, this.guard) = (session, app, guard);
+        tidy = new(_ => GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true));
+        rest = options.Rest;
         hub = new(options.Grace, () => ended.TrySetResult());
         hub.Tell(session.State);
         // The solve begins before the pages are told.
@@ -76,6 +80,7 @@ internal sealed class OpenServer : IAsyncDisposable
         await disk.DisposeAsync();
         await stop.CancelAsync();
         answers.Dispose();
+        await tidy.DisposeAsync();
         using (CancellationTokenSource soon = new(TimeSpan.FromSeconds(2)))
         {
             await app.StopAsync(soon.Token);
@@ -95,14 +100,11 @@ internal sealed class OpenServer : IAsyncDisposable
         }
     }
 
+    // A page stays open for hours and mostly rests; what the solves needed then goes back to the machine. Not between two moves of a hand: fresh memory costs the next answer time.
     private void Tell(LayoutAnswer answer)
     {
         hub.Tell(answer);
-        if (answer.Drive is not null)
-        {
-            // A page stays open for hours and mostly rests; what the solves needed goes back to the machine.
-            GC.Collect(GC.MaxGeneration, GCCollectionMode.Aggressive, blocking: true, compacting: true);
-        }
+        tidy.Change(answer.Drive is null ? Timeout.InfiniteTimeSpan : rest, Timeout.InfiniteTimeSpan);
     }
 
     private async Task Answer(HttpContext context)

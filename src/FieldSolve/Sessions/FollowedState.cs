@@ -108,7 +108,7 @@ internal sealed class FollowedState
 
     private NewtonOutcome Step(FieldLevel level, double[] u, ref SparseLu? factor, double to, CancellationToken cancel)
     {
-        var newton = new NewtonSolver(level, factor, RelativeResidual);
+        var newton = new NewtonSolver(level, factor, RelativeResidual) { KeepsFactor = true };
         NewtonOutcome outcome = newton.Solve(u, plan.Wiring.Source, plan.Wiring.Drain, to, cancel);
         factor = newton.Factor;
         return outcome;

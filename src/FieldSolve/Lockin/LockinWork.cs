@@ -163,6 +163,13 @@ internal sealed class LockinWork
             cancel.ThrowIfCancellationRequested();
             bool wantsFrames = options.Frames && i == largest;
             CycleStates? states = currents[i] > failedAt ? null : cycles.Solve(currents[i], wantsFrames, reference, cancel);
+            if (states is null && i != largest && currents[i] <= failedAt)
+            {
+                // What was learnt from other cycles may mislead, close to the last current that the sheet carries.
+                cycles = AtRest();
+                states = cycles.Solve(currents[i], wantsFrames, null, cancel);
+            }
+
             if (states is null)
             {
                 failedAt = Math.Min(failedAt, currents[i]);
@@ -171,7 +178,6 @@ internal sealed class LockinWork
                     refusals.TryAdd(plan.Wiring.Name, why);
                 }
 
-                // What it learnt near the last current that the sheet carries would mislead the smaller cycles.
                 cycles = AtRest();
 
                 for (int f = 0; f < frequencies.Length; f++)

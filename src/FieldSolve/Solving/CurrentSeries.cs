@@ -45,6 +45,9 @@ internal sealed class CurrentSeries
         past.Add((current, copy));
     }
 
+    /// <summary>Forgets what was remembered, but for anchors, at larger currents than this one.</summary>
+    public void ForgetBeyond(double current) => past.RemoveAll(p => Math.Abs(p.Current) > Math.Abs(current));
+
     /// <summary>The polynomial at a current.</summary>
     public void Predict(double current, Span<double> value)
     {

@@ -83,6 +83,8 @@ public sealed class DrivePath
 
     private NewtonOutcome Creep(double current, double[] u, NewtonOutcome failed, CancellationToken cancel)
     {
+        // A polynomial through currents close to the last that the sheet carries swings below them.
+        past.ForgetBeyond(current);
         double from = past.LastCurrent * current > 0 && Math.Abs(past.LastCurrent) < Math.Abs(current) ? past.LastCurrent : 0;
         double step = (current - from) / 2;
         NewtonOutcome sum = failed;

@@ -1,5 +1,6 @@
 using System.Diagnostics;
 using System.Globalization;
+using System.Runtime.InteropServices;
 using FieldSolve.Runs;
 
 namespace FieldSolve.Cli.Output;
@@ -13,6 +14,7 @@ internal sealed class Screen : IProgress<RunProgress>
     private readonly bool live;
     private readonly Lock gate = new();
     private readonly Timer? life;
+    private readonly PosixSignalRegistration? stop;
     private string? shown;
     private long since;
     private int width;
@@ -23,6 +25,9 @@ internal sealed class Screen : IProgress<RunProgress>
         this.quiet = quiet;
         live = !quiet && !Console.IsErrorRedirected;
         life = live ? new(_ => Live(), null, Tick, Tick) : null;
+
+        // Ctrl-C is answered at once, though a large sheet may take a moment to come to rest. Who ends the run is not decided here.
+        stop = live ? PosixSignalRegistration.Create(PosixSignal.SIGINT, _ => Report(new("stopping", 0, 0))) : null;
     }
 
     /// <summary>Overwrites the progress line.</summary>

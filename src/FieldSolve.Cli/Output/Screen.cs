@@ -15,6 +15,7 @@ internal sealed class Screen : IProgress<RunProgress>
     private readonly Lock gate = new();
     private readonly Timer? life;
     private readonly PosixSignalRegistration? stop;
+    private volatile bool stopping;
     private string? shown;
     private long since;
     private int width;
@@ -27,13 +28,13 @@ internal sealed class Screen : IProgress<RunProgress>
         life = live ? new(_ => Live(), null, Tick, Tick) : null;
 
         // Ctrl-C is answered at once, though a large sheet may take a moment to come to rest. Who ends the run is not decided here.
-        stop = live ? PosixSignalRegistration.Create(PosixSignal.SIGINT, _ => Report(new("stopping", 0, 0))) : null;
+        stop = live ? PosixSignalRegistration.Create(PosixSignal.SIGINT, _ => Stop()) : null;
     }
 
     /// <summary>Overwrites the progress line.</summary>
     public void Report(RunProgress value)
     {
-        if (!live)
+        if (!live || stopping)
         {
             return;
         }
@@ -44,6 +45,12 @@ internal sealed class Screen : IProgress<RunProgress>
             (shown, since) = (text, Stopwatch.GetTimestamp());
             Write(text);
         }
+    }
+
+    private void Stop()
+    {
+        Report(new("stopping", 0, 0));
+        stopping = true;
     }
 
     // A step that takes long shows for how long it has been at it.

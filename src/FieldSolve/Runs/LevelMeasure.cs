@@ -76,7 +76,7 @@ internal static class LevelMeasure
     public static IReadOnlyList<GoalMeasure> Of(
         MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel, Action? solved = null)
     {
-        State weak = State.Weak(meshes, plan);
+        State weak = State.Weak(meshes, plan, cancel);
         solved?.Invoke();
         GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
             meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
@@ -154,9 +154,10 @@ internal static class LevelMeasure
     private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details, double[] EvenExponent)
     {
         // In the limit of small drive, for one ampere.
-        public static State Weak(MeshPair meshes, ReadingPlan plan)
+        public static State Weak(MeshPair meshes, ReadingPlan plan, CancellationToken cancel)
         {
             (int source, int drain) = (plan.Wiring.Source, plan.Wiring.Drain);
+            cancel.ThrowIfCancellationRequested();
             double[] coarse = meshes.Coarse.UnitSolution(source, drain), fine = meshes.Fine.UnitSolution(source, drain);
             double[] carried = new double[fine.Length], residual = new double[fine.Length];
             meshes.Between.Apply(coarse, carried);
@@ -166,6 +167,7 @@ internal static class LevelMeasure
             residual[^1] = 0;
             double[][] details = [.. plan.Vectors(meshes.Fine).Select(j =>
             {
+                cancel.ThrowIfCancellationRequested();
                 double[] detail = new double[meshes.Between.Parent.Length];
                 meshes.Between.Detail(meshes.Fine.Adjoint(j), detail);
                 return detail;
@@ -221,6 +223,7 @@ internal static class LevelMeasure
             double[][] vectors = plan.Vectors(meshes.Fine), details = new double[plan.Count][];
             for (int k = 0; k < plan.Count; k++)
             {
+                cancel.ThrowIfCancellationRequested();
                 factor.SolveTransposed(vectors[k].AsSpan(0, n), z.AsSpan(0, n));
                 details[k] = new double[meshes.Between.Parent.Length];
                 meshes.Between.Detail(z, details[k]);

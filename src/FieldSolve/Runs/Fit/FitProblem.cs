@@ -145,7 +145,7 @@ internal sealed class FitProblem
         for (int j = 0; j < p.Length; j++)
         {
             CauseKind kind = Parameters[j].Kind;
-            if (kind.Effect == CauseEffect.Motion && !NodeMotion.IsSmooth(there.Domain, by => DomainAt(p, j, by), kind.LargeChange(there)))
+            if (kind.Effect == CauseEffect.Motion && !MotionScale.IsSmooth(there, kind, Parameters[j].Target, by => DomainAt(p, j, by)))
             {
                 throw Jump(j, p[j]);
             }

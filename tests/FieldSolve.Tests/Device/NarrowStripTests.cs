@@ -81,5 +81,5 @@ public class NarrowStripTests
     [Fact]
     public void No_sample_has_a_strip() => Assert.All(
         Directory.GetFiles(Repository.Sample(""), "*.toml"),
-        f => Assert.Empty(NarrowStrips.Of(DeviceFile.Load(f).Device!)));
+        f => Assert.Empty(NarrowStrips.Of(DeviceFile.Read(f).Device!)));
 }

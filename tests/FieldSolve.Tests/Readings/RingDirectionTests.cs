@@ -1,4 +1,3 @@
-using FieldSolve.Cli.Output;
 using FieldSolve.Device;
 using FieldSolve.Pictures;
 using FieldSolve.Readings;
@@ -26,7 +25,7 @@ public class RingDirectionTests
         DriveResult all = SyntheticDrive.Make(mapSteps: []), some = all with { Summaries = [.. all.Summaries.Select(s => s with { HasDirection = false })] };
         Assert.Contains(ReportWords.Answer(all), s => s.Contains("current at 30°", StringComparison.Ordinal));
         Assert.DoesNotContain(ReportWords.Answer(some), s => s.Contains("current at", StringComparison.Ordinal));
-        Assert.Contains("(current at 30 deg)", DriveText.Plain(all, "out"), StringComparison.Ordinal);
-        Assert.DoesNotContain("(current at", DriveText.Plain(some, "out"), StringComparison.Ordinal);
+        Assert.Contains("(current at 30 deg)", Cli.Output.DriveText.Plain(all, "out"), StringComparison.Ordinal);
+        Assert.DoesNotContain("(current at", Cli.Output.DriveText.Plain(some, "out"), StringComparison.Ordinal);
     }
 }

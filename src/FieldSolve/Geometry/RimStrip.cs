@@ -24,7 +24,6 @@ internal readonly record struct RimStrip(double Gap, double Squares, Point2 At)
             Point2 along = side.End - side.Start;
             double[] width = [.. Enumerable.Range(0, Steps + 1).Select(k => Width(live, side.At(k / (double)Steps), isIdeal ? turn * along : default))];
             double squares = 0;
-            int narrowest = -1;
             for (int k = 0; k < Steps; k++)
             {
                 // The wider end: a side that crosses the rim is near it for a moment only.
@@ -32,13 +31,15 @@ internal readonly record struct RimStrip(double Gap, double Squares, Point2 At)
                 if (wider <= Near * live.Size)
                 {
                     squares += side.Length / Steps / wider;
-                    narrowest = narrowest < 0 || width[k] < width[narrowest] ? k : narrowest;
                 }
             }
 
-            if (narrowest >= 0 && (worst is not { } w || squares > w.Squares))
+            if (squares > (worst?.Squares ?? 0))
             {
-                worst = new(width[narrowest], squares, side.At((narrowest + 0.5) / Steps));
+                // Where it is equally narrow in many places, the middle of them.
+                double gap = width.Min();
+                int[] narrow = [.. Enumerable.Range(0, width.Length).Where(k => width[k] <= (1 + 1e-3) * gap)];
+                worst = new(gap, squares, side.At(narrow[narrow.Length / 2] / (double)Steps));
             }
         }
 

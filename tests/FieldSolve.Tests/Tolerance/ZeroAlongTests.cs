@@ -52,7 +52,7 @@ public class ZeroAlongTests
         Assert.False(Read(-1e-8, 1e-9).AlongIsZero);
     }
 
-    // Between ideal ends the bar has V = I L / (a W) = 1e-4 * 3 / 4e-3 = 75 mV between source and drain, and nothing between the probes.
+    // The mirror line of a disc from source to drain exchanges both probes, so that there is exactly nothing between them.
     [Fact]
     public void A_wanted_error_is_reached_though_the_along_voltage_is_zero()
     {

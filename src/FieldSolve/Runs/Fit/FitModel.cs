@@ -148,7 +148,7 @@ internal sealed class FitModel : IFitFunction
             }
         });
         int jump = Enumerable.Range(0, fields.Length).FirstOrDefault(j => fields[j] is null && problem.Parameters[j].Kind.Effect == CauseEffect.Motion, -1);
-        return jump < 0 ? fields : throw problem.Jump(jump, p[jump]);
+        return jump < 0 ? fields : throw problem.Jump(p, jump);
     }
 
     /// <summary>

@@ -53,14 +53,14 @@ internal sealed class MeshRefinement
 
     /// <summary>Wanted error of a reading, V.</summary>
     /// <param name="spec">What the device file asks for.</param>
-    /// <param name="along">Largest |along voltage| of all wirings, V (or of any reading where nothing is read along).</param>
+    /// <param name="along">From <see cref="VoltageScale"/>, V.</param>
     /// <param name="value">The reading, V.</param>
     public static double Wanted(MeshSpec spec, double along, double value) =>
         Math.Max(spec.Error * along, ResolvedShare * Math.Abs(value));
 
     /// <summary>Wanted error of an even part, V.</summary>
     /// <param name="spec">What the device file asks for.</param>
-    /// <param name="along">Largest |along voltage|, V.</param>
+    /// <param name="along">From <see cref="VoltageScale"/>, V.</param>
     /// <param name="evens">Even parts of the row, V.</param>
     /// <param name="even">The even part in question, V.</param>
     public static double WantedEven(MeshSpec spec, double along, IEnumerable<double> evens, double even) =>
@@ -249,7 +249,7 @@ internal sealed class MeshRefinement
             currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];
         }
 
-        double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
+        double along = VoltageScale.Of(device, currents.Max(Math.Abs), perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
         double[] curve = oneCurve ? [.. perPlan.SelectMany(g => g).Where(g => g.IsEven).Select(g => g.Value)] : [];
         var all = new List<GoalMeasure>();
@@ -265,18 +265,5 @@ internal sealed class MeshRefinement
         }
 
         return all;
-    }
-
-    /// <summary>The largest |along voltage|; without any along pair, the largest of all readings.</summary>
-    public static double AlongScale(IEnumerable<(bool IsAlong, double Value)> readings)
-    {
-        double along = 0, any = 0;
-        foreach ((bool isAlong, double value) in readings)
-        {
-            any = Math.Max(any, Math.Abs(value));
-            along = isAlong ? Math.Max(along, Math.Abs(value)) : along;
-        }
-
-        return along > 0 ? along : any;
     }
 }

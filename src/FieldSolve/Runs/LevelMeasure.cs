@@ -72,9 +72,12 @@ internal static class LevelMeasure
     /// <param name="lower">The drive's currents by size, the largest first: where to look when the sheet cannot carry <paramref name="current"/>.</param>
     /// <param name="bothSigns">Measure the even parts too.</param>
     /// <param name="cancel">Checked at every step.</param>
-    public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel)
+    /// <param name="solved">Told of each state solved, from the threads that did so.</param>
+    public static IReadOnlyList<GoalMeasure> Of(
+        MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel, Action? solved = null)
     {
         State weak = State.Weak(meshes, plan);
+        solved?.Invoke();
         GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
             meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
         double change = weak.Fine.Zip(weak.Coarse, (f, c) => Math.Abs(f - c)).DefaultIfEmpty(0).Max() / weak.Fine.Select(Math.Abs).DefaultIfEmpty(0).Max();
@@ -105,7 +108,7 @@ internal static class LevelMeasure
             }
 
             cancel.ThrowIfCancellationRequested();
-            Side(meshes, plan, reached, bothSigns, cancel, out plus, out minus);
+            Side(meshes, plan, reached, bothSigns, solved, cancel, out plus, out minus);
         }
 
         ErrorShares evenShares = meshes.EvenShares(plus.EvenExponent);
@@ -135,11 +138,15 @@ internal static class LevelMeasure
         return list;
     }
 
-    // Both signs side by side.
-    private static void Side(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, CancellationToken cancel, out State? plus, out State? minus)
+    // Both signs side by side, where memory allows.
+    private static void Side(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, Action? solved, CancellationToken cancel, out State? plus, out State? minus)
     {
         State?[] found = new State?[bothSigns ? 2 : 1];
-        Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel }, k => found[k] = State.Solve(meshes, plan, k == 0 ? current : -current, cancel));
+        Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) }, k =>
+        {
+            found[k] = State.Solve(meshes, plan, k == 0 ? current : -current, cancel);
+            solved?.Invoke();
+        });
         (plus, minus) = (found[0], bothSigns && found[0] is not null ? found[1] : null);
     }
 

@@ -104,9 +104,10 @@ internal sealed class MeshRefinement
                 return new(best!, goals, levels, false);
             }
 
-            tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
+            string stage = string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles");
+            tell(stage);
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve, Solved(stage, tell)));
             measured = [.. measured.Select(g => g.AfterMove(before))];
             before = measured;
 
@@ -179,6 +180,10 @@ internal sealed class MeshRefinement
     public static ISizeField NextSizes(SheetDevice device, MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level) =>
         MeshSizes.Next(meshes, goals, level, (int)(0.95 * device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle));
 
+    // Tells of each state solved: on a large mesh one takes long.
+    private static Action<int, int> Solved(string stage, Action<string> tell) =>
+        (done, all) => tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"{stage}, {done} of {all} states solved"));
+
     // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
     {
@@ -218,15 +223,27 @@ internal sealed class MeshRefinement
     /// <param name="bothSigns">Measure the even parts too.</param>
     /// <param name="cancel">Checked at every step.</param>
     /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
+    /// <param name="solved">Told how many states are solved, and of how many: each wiring at weak drive and at each sign of the current; one call at a time.</param>
     public static List<GoalMeasure> Measure(
         SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<LabLaw>? laws, double[] currents, double[] lower, bool bothSigns,
-        CancellationToken cancel, bool oneCurve = false)
+        CancellationToken cancel, bool oneCurve = false, Action<int, int>? solved = null)
     {
+        int states = plans.Count * (device.Law.IsLinear ? 1 : bothSigns ? 3 : 2), done = 0;
+        var gate = new Lock();
+        void Count()
+        {
+            lock (gate)
+            {
+                // A current that the sheet cannot carry is tried again, lower.
+                solved?.Invoke(Math.Min(++done, states), states);
+            }
+        }
+
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) },
             k => perPlan[k] = LevelMeasure.Of(
-                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel));
+                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel, Count));
         for (int k = 0; k < plans.Count; k++)
         {
             currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];

@@ -24,6 +24,7 @@ internal sealed class MeshPair
     private const double LeftAtLayer = 2.5;
 
     private readonly Falloff[] kinds;  // per vertex of the domain
+    private readonly int[] near;       // per coarse triangle: the singular vertex that it is too near for its size, without touching it; -1 for most
     private readonly double[] layer;   // per coarse triangle: resistivity of the pad whose rim it touches, ohm m²; 0 for most
     private readonly ConcurrentDictionary<(ReadingPlan, double), (double[] Coarse, double[] Fine)> known = new();
 
@@ -34,6 +35,7 @@ internal sealed class MeshPair
         Between = new Prolongation(coarse.Space, fine.Space);
         (kinds, Exponent) = Rates(coarse);
         Vertex = DomainVertices(coarse.Space.Mesh);
+        near = NearSingular.Vertices(coarse.Space.Mesh, coarse.Equations.Law.AtZeroField, Exponent);
         layer = LayersOf(coarse.Space);
         Shares = SharesOf(kinds, Exponent, true);
     }
@@ -45,6 +47,7 @@ internal sealed class MeshPair
         Fine = other.Fine.WithLaw(law, cancel);
         (kinds, Exponent) = Rates(Coarse);
         Vertex = DomainVertices(Coarse.Space.Mesh);
+        near = NearSingular.Vertices(Coarse.Space.Mesh, law.AtZeroField, Exponent);
         Shares = SharesOf(kinds, Exponent, true);
     }
 
@@ -200,6 +203,11 @@ internal sealed class MeshPair
         {
             kind[t] = Vertex[t] < 0 ? Falloff.Smooth : kinds[Vertex[t]];
             share[t] = kind[t] == Falloff.Smooth ? ErrorShares.Smooth : 1 / (Math.Pow(2, exponent[Vertex[t]]) - 1);
+            if (kind[t] == Falloff.Smooth && near[t] >= 0)
+            {
+                (kind[t], share[t]) = (Falloff.Blunt, 1 / (Math.Pow(2, exponent[near[t]]) - 1));
+            }
+
             double sizes = layer[t] > 0 ? MeshSizes.EquilateralEdge(Coarse.Space.Mesh, t) / Math.Sqrt(layer[t] * tensor.SmallestSymmetricEigenvalue) : 0;
             if (sizes > 1 && kind[t] != Falloff.Singular)
             {

@@ -16,7 +16,7 @@ internal static class DeviceText
         var text = new StringBuilder();
         void Line(string name, string value) => text.Append(name.PadRight(11)).Append(value).Append('\n');
         Line("title", device.Title);
-        Line("sheet", $"{device.Shape}, {Engineering.Text(Area(device) * 1e12, "µm²", 6)} conducting, "
+        Line("sheet", $"{device.Shape}, {AreaText(Area(device))} conducting, "
             + Extent(device)
             + (device.DeadEdge > 0 ? $", dead edge {Engineering.Text(device.DeadEdge, "m")}" : "")
             + (device.Thickness is { } t ? $", {Engineering.Text(t, "m")} thick" : ""));
@@ -135,6 +135,13 @@ internal static class DeviceText
     private static bool Floats(SheetDevice device, Contact c) => device.Wirings.Count > 0 && !device.Wirings.Any(
         w => device.Contacts[w.Source] == c || device.Contacts[w.Drain] == c
             || w.Pairs.Any(p => (!p.Plus.IsTip && device.Contacts[p.Plus.Index] == c) || (!p.Minus.IsTip && device.Contacts[p.Minus.Index] == c)));
+
+    // A prefix would stand for its square: 2160 µm², not 2.16 kµm².
+    private static string AreaText(double area)
+    {
+        (double size, string unit) = area >= 1e-7 ? (1e-6, "mm²") : area >= 1e-13 ? (1e-12, "µm²") : (1e-18, "nm²");
+        return $"{(area / size).ToString("G6", CultureInfo.InvariantCulture)} {unit}";
+    }
 
     // Green's theorem over the rim; exact on arcs.
     private static double Area(SheetDevice device)

@@ -17,9 +17,9 @@ internal static class DriveText
         {
             text.Append(CultureInfo.InvariantCulture, $"\n{s.Wiring}{(s.HasDirection ? string.Create(CultureInfo.InvariantCulture, $" (current at {s.DirectionDegrees:G4} deg)") : "")}\n");
             void Line(string name, string value) => text.Append("  ").Append(name.PadRight(44)).Append(value).Append('\n');
-            Line("two-terminal resistance at small drive", Engineering.Text(s.TwoTerminal, "ohm", 6));
-            Line("along resistance at small drive", Engineering.Text(s.Along, "ohm", 6));
-            Line("across resistance at small drive", Engineering.Text(s.Across, "ohm", 6));
+            Line("two-terminal resistance at small drive", Resistance(result, s, s.TwoTerminal, "source"));
+            Line("along resistance at small drive", Resistance(result, s, s.Along, "along"));
+            Line("across resistance at small drive", Resistance(result, s, s.Across, "across"));
             if (s.Slope is { } line)
             {
                 Line("V_across_even / V_along_odd²", string.Create(
@@ -48,6 +48,13 @@ internal static class DriveText
         }
 
         return text.Append("results in ").Append(folder).Append('\n').ToString();
+    }
+
+    // The numerical error is that of the smallest current's reading; what the law adds on the way to zero current is not in it.
+    private static string Resistance(DriveResult result, WiringSummary s, double? value, string pair)
+    {
+        CurveRow? smallest = result.Rows.Where(r => r.Wiring == s.Wiring && r.Current != 0 && r.Of(pair) is not null).MinBy(r => Math.Abs(r.Current));
+        return value is { } ohm && smallest is not null ? Engineering.Measured(ohm, smallest.Of(pair)!.Error / Math.Abs(smallest.Current), "ohm") : "-";
     }
 
     public static string Json(DriveResult result, string folder)

@@ -15,9 +15,10 @@ internal static class FitText
         var text = new StringBuilder();
         FitQuality q = result.Quality;
         text.Append(CultureInfo.InvariantCulture, $"{result.Device.Title}: {result.Data.Count} voltages, {result.Parameters.Count} free numbers{(result.Robust ? ", robust" : "")}\n\n");
+        int wide = Math.Max(18, result.Parameters.Select(p => p.Parameter.Label.Length).DefaultIfEmpty(0).Max() + 2);
         foreach (FittedParameter p in result.Parameters)
         {
-            text.Append("  ").Append(p.Parameter.Label.PadRight(18)).Append(Value(p)).Append('\n');
+            text.Append("  ").Append(p.Parameter.Label.PadRight(wide)).Append(Value(p)).Append('\n');
         }
 
         text.Append(CultureInfo.InvariantCulture, $"\nchi squared {q.ChiSquared:G5} for {q.Freedom} degrees of freedom");

@@ -65,7 +65,8 @@ public sealed class GatheredSamples : ISampleStore
 
         int[] absent = [.. Enumerable.Range(1, first!.Shards).Except(shards.Keys)];
         return absent.Length > 0
-            ? throw new JournalException(Text($"of {first.Shards} shards {string.Join(", ", absent)} {(absent.Length == 1 ? "is" : "are")} missing"))
+            ? throw new JournalException(Text(
+                $"shard{(absent.Length == 1 ? "" : "s")} {string.Join(", ", absent)} of {first.Shards} {(absent.Length == 1 ? "is" : "are")} missing; name every shard's folder, or run 'tolerance --shard {absent[0]}/{first.Shards}' with the same device file and options"))
             : new(first, all);
     }
 

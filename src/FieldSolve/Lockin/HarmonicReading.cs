@@ -61,6 +61,9 @@ public sealed record LockinPoint(
     string Wiring, double CurrentRms, double? Frequency, IReadOnlyList<HarmonicReading> Readings, IReadOnlyList<Waveform> Waves, RowStatus Status,
     LawExit? Exit, double PeakSheetCurrent, double PeakPower, int Steps)
 {
+    /// <summary>Largest error of a reading over what is wanted of it, among those that are <see cref="RowStatus.ErrorAboveWanted"/>; 0 when none is.</summary>
+    internal double Miss { get; init; }
+
     /// <summary>The reading of a pair at a harmonic, or null.</summary>
     public HarmonicReading? Of(string pair, int harmonic) => Readings.FirstOrDefault(r => r.Pair == pair && r.Harmonic == harmonic);
 }

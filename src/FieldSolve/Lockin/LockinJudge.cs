@@ -31,6 +31,7 @@ internal static class LockinJudge
         }
 
         var readings = new List<HarmonicReading>();
+        double miss = 0;
         double[][] size = [.. Enumerable.Range(0, plan.Count).Select(k => Enumerable.Range(0, PhaseNodes.HighestHarmonic + 1)
             .Select(h => Rms(h) * Math.Sqrt(Square(answer.Sine[k][h]) + Square(answer.Cosine[k][h]))).ToArray())];
         for (int k = 0; k < plan.Count; k++)
@@ -48,6 +49,7 @@ internal static class LockinJudge
                 RowStatus status = answer.Exit is not null && Math.Abs(guard) > wanted ? RowStatus.OutsideLaw
                     : error > wanted && along > 0 ? RowStatus.ErrorAboveWanted
                     : RowStatus.Ok;
+                miss = status == RowStatus.ErrorAboveWanted ? Math.Max(miss, error / wanted) : miss;
                 readings.Add(new(plan.Pairs[k].Name, h, x, y, error, guard, status));
             }
         }
@@ -56,7 +58,10 @@ internal static class LockinJudge
         return new(
             plan.Wiring.Name, answer.CurrentRms, answer.Frequency, readings,
             [.. plan.Pairs.Select((p, k) => new Waveform(p.Name, answer.Sine[k], answer.Cosine[k]))], worst, answer.Exit,
-            answer.Peak.SheetCurrent, answer.Peak.Power, answer.Steps);
+            answer.Peak.SheetCurrent, answer.Peak.Power, answer.Steps)
+        {
+            Miss = miss,
+        };
     }
 
     /// <summary>Largest RMS first harmonic along (of any pair where nothing is read along), V; the DC part where only that is driven. No less than <see cref="VoltageScale"/> says.</summary>

@@ -13,6 +13,10 @@ namespace FieldSolve.Lockin;
 /// </summary>
 public static class LockinRun
 {
+    // A run whose harmonics miss what is wanted is made again so often, on a mesh that aims at this share of it and at no less than the second.
+    private const int MostRepeats = 2;
+    private const double Room = 0.7, LeastShare = 0.1;
+
     /// <summary>What keeps a device from an AC run, with the place in its file; null when nothing does.</summary>
     public static Fault? Missing(SheetDevice device)
     {
@@ -63,10 +67,36 @@ public static class LockinRun
             refinement = refinement.Extended(device, law, plans, weakest, bothSigns, Tell, clock, cancel);
         }
 
-
         var work = new LockinWork(device, options, refinement.Meshes, plans, law);
         bool cancelled = clock.Time("solve", () => work.Run(progress, cancel));
         IReadOnlyList<LockinPoint> points = work.Points();
+        for (int round = 0; round < MostRepeats && !cancelled && options.Mesh is null && Miss(points) > 1; round++)
+        {
+            // The refinement looked at two currents, not at the harmonics of all.
+            try
+            {
+                double share = Math.Max(Room / Miss(points), LeastShare);
+                if (refinement.Tightened(device, law, plans, weakest > 0 && bothSigns ? [largest, weakest] : [largest], bothSigns, share, Tell, clock, cancel) is not { } finer)
+                {
+                    break;
+                }
+
+                var again = new LockinWork(device, options, finer.Meshes, plans, law);
+                cancelled = clock.Time("solve", () => again.Run(progress, cancel));
+                IReadOnlyList<LockinPoint> next = again.Points();
+                if (cancelled || Miss(next) >= Miss(points) || Failed(next) > Failed(points))
+                {
+                    break; // what stood before stands
+                }
+
+                (refinement, work, points) = (finer, again, next);
+            }
+            catch (OperationCanceledException)
+            {
+                cancelled = true;
+            }
+        }
+
         FieldLevel fine = refinement.Meshes.Fine;
         return new LockinResult
         {
@@ -87,6 +117,10 @@ public static class LockinRun
             Cancelled = cancelled,
         };
     }
+
+    private static double Miss(IReadOnlyList<LockinPoint> points) => points.Select(p => p.Miss).DefaultIfEmpty(0).Max();
+
+    private static int Failed(IReadOnlyList<LockinPoint> points) => points.Count(p => p.Status == RowStatus.NotConverged);
 
     // The touch-safe limit is that of AC whether or not a frequency was given.
     private static SheetDevice AsAc(SheetDevice device) =>

@@ -148,9 +148,10 @@ internal sealed class LockinWork
     {
         ReadingPlan plan = plans[w];
         MeshPair meshes = charged?.Meshes ?? shared;
-        var cycles = new CycleSolver(
+        CycleSolver AtRest() => new(
             () => new PhasePath(meshes, plan, ReferenceEquals(meshes, shared) ? peaks : new PeakFinder(meshes.Fine.Equations)), device.Law.IsLinear, odd,
             device.Drive!.Offset, device.Mesh);
+        CycleSolver cycles = AtRest();
         int largest = Array.IndexOf(currents, currents.Max());
         double failedAt = double.PositiveInfinity;
         AdjointSet? adjoints = null;
@@ -169,6 +170,9 @@ internal sealed class LockinWork
                 {
                     refusals.TryAdd(plan.Wiring.Name, why);
                 }
+
+                // What it learnt near the last current that the sheet carries would mislead the smaller cycles.
+                cycles = AtRest();
 
                 for (int f = 0; f < frequencies.Length; f++)
                 {

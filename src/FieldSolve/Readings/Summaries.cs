@@ -39,7 +39,7 @@ public static class Summaries
             .Select(r => (X: r.Of("along")!.Odd!.Value * r.Of("along")!.Odd!.Value, Y: r.Of("across")!.Even!.Value))
             .DistinctBy(p => p.X)
             .ToList();
-        if (points.Count < 2)
+        if (points.Count < 2 || points.All(p => p.Y == 0)) // an odd law: nothing is even
         {
             return null;
         }

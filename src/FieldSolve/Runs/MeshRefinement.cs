@@ -148,7 +148,6 @@ internal sealed class MeshRefinement
         const double Room = 0.8;
         const int MostRounds = 1;   // the sizes aim well below what is wanted; what is still missed is marked in the rows
         MeshRefinement now = this;
-        int mostTriangles = (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle);
         double[] currents = [.. plans.Select(_ => current)];
         for (int round = 0; round < MostRounds; round++)
         {
@@ -159,21 +158,53 @@ internal sealed class MeshRefinement
                 return now;
             }
 
-            int level = now.Levels.Count;
-            ISizeField size = MeshSizes.Next(meshes, [.. now.Goals, .. measured.Select(g => g with { Wanted = Room * g.Wanted })], 0, (int)(0.95 * mostTriangles));
-            TriangleMesh? mesh = clock.Time("mesh", () => Mesh(device, size, mostTriangles, cancel));
-            if (mesh is null || mesh.TriangleCount <= meshes.Coarse.Space.Mesh.TriangleCount)
+            if (now.Finer(device, law, [.. now.Goals, .. measured.Select(g => g with { Wanted = Room * g.Wanted })], tell, clock, cancel) is not { } finer)
             {
                 return now;
             }
 
-            tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
-            meshes.ForgetIfLarge();
-            MeshPair next = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            now = new(next, now.Goals, [.. now.Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [])], now.IsMet);
+            now = finer;
         }
 
         return now;
+    }
+
+    /// <summary>One more mesh, for a run whose own readings missed what is wanted of them; null where no larger one is allowed. <see cref="Goals"/> are those of the mesh before.</summary>
+    /// <param name="device">Sheet and wanted errors.</param>
+    /// <param name="law">Law of the mesh.</param>
+    /// <param name="plans">What is read.</param>
+    /// <param name="currents">To measure at, A; lowered where the sheet cannot carry one.</param>
+    /// <param name="bothSigns">Measure the even parts too.</param>
+    /// <param name="share">What to aim at, over the wanted error; over the errors as they stand where those are smaller.</param>
+    /// <param name="tell">Told about the level.</param>
+    /// <param name="clock">Adds up the stages.</param>
+    /// <param name="cancel">Checked within.</param>
+    public MeshRefinement? Tightened(
+        SheetDevice device, LabLaw law, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<double> currents, bool bothSigns, double share, Action<string> tell,
+        StageClock clock, CancellationToken cancel)
+    {
+        double[] lower = [.. device.Drive!.Currents.Select(Math.Abs).Where(c => c > 0).Distinct().OrderDescending()];
+        GoalMeasure[] goals = clock.Time("estimate", () => currents
+            .SelectMany(i => Measure(device, Meshes, plans, null, [.. plans.Select(_ => i == 0 ? 1 : i)], lower, bothSigns, cancel)).ToArray());
+        double scale = share * Math.Min(goals.Select(g => g.Error.Bar / g.Wanted).DefaultIfEmpty(1).Max(), 1);
+        return Finer(device, law, [.. goals.Select(g => g with { Wanted = scale * g.Wanted })], tell, clock, cancel);
+    }
+
+    // On a mesh of more triangles, for goals on this one; null when there is none.
+    private MeshRefinement? Finer(SheetDevice device, LabLaw law, IReadOnlyList<GoalMeasure> goals, Action<string> tell, StageClock clock, CancellationToken cancel)
+    {
+        int level = Levels.Count, mostTriangles = (int)(device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle);
+        ISizeField size = MeshSizes.Next(Meshes, goals, 0, (int)(0.95 * mostTriangles));
+        TriangleMesh? mesh = clock.Time("mesh", () => Mesh(device, size, mostTriangles, cancel));
+        if (mesh is null || mesh.TriangleCount <= Meshes.Coarse.Space.Mesh.TriangleCount)
+        {
+            return null;
+        }
+
+        tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
+        Meshes.ForgetIfLarge();
+        MeshPair next = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
+        return new(next, Goals, [.. Levels, new(level, 4 * mesh.TriangleCount, next.Fine.Space.Size, [])], IsMet);
     }
 
     /// <summary>Sizes for the next mesh after measures of one's own.</summary>

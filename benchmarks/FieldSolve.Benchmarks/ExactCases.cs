@@ -12,7 +12,8 @@ internal sealed record ExactCase(string Name, string Toml, string Pair, bool IsE
 
 /// <summary>
 /// Problems with exact values. Sources: arcs on a disc, R. F. Wick, J. Appl. Phys. 25, 741 (1954) (K/K'); anisotropic disc, the same after W. L. V. Price's
-/// stretch, J. Phys. D 5, 1127 (1972); Hall plates, H. J. Lippmann, F. Kuhrt, Z. Naturforsch. 13a, 462 and 474 (1958); ring with velocity saturation, the
+/// stretch, J. Phys. D 5, 1127 (1972); Hall plates, H. J. Lippmann, F. Kuhrt, Z. Naturforsch. 13a, 462 and 474 (1958); square with its axis askew, symmetry about a
+/// diagonal after L. J. van der Pauw's stretch, Philips Res. Rep. 16, 187 (1961); ring with velocity saturation, the
 /// law of D. M. Caughey, R. E. Thomas, Proc. IEEE 55, 2192 (1967), integrated; second-order disc, reciprocity integral by quadrature. All values recomputed.
 /// </summary>
 internal static class ExactCases
@@ -36,6 +37,8 @@ internal static class ExactCases
         Bar("square, Hall angle 1.2 rad", 1, 1.2, "source", 2.75970360133),
         Bar("square, Hall angle 1.2 rad, across", 1, 1.2, "across", -0.840098054 * Math.Tan(1.2)),
         Bar("bar 2 : 1, Hall angle 1 rad", 2, 1, "source", 2.8934739059),
+        Square("square, ratio 4, axis 45 deg off", 4),
+        Square("square, ratio 30, axis 45 deg off", 30),
         Ring(),
         SecondOrder("second order, 10 deg arcs, even across", 10, 0.723307936),
         SecondOrder("second order, 20 deg arcs, even across", 20, 0.605270707),
@@ -60,6 +63,13 @@ internal static class ExactCases
         string sheet = string.Create(CultureInfo.InvariantCulture, $"bar = {{ length = \"{length:R} m\", width = \"1 m\" }}");
         return new(name, Sheet(sheet, law) + End("s", "left") + End("d", "right") + Tip("l", 0, 0.5) + Tip("r", 0, -0.5)
             + Wiring(pair == "across") + Drive(1, false), pair, false, exact);
+    }
+
+    // A rhombus where it is isotropic: one square, whatever the ratio.
+    private static ExactCase Square(string name, double ratio)
+    {
+        string law = string.Create(CultureInfo.InvariantCulture, $"kind = \"ohmic\"\naxis = \"45 deg\"\na = \"{Math.Sqrt(ratio):R} S\"\nb = \"{1 / Math.Sqrt(ratio):R} S\"");
+        return new(name, Sheet("bar = { length = \"1 m\", width = \"1 m\" }", law) + End("s", "left") + End("d", "right") + Wiring(false) + Drive(1, false), "source", false, 1);
     }
 
     private static ExactCase Ring()

@@ -10,6 +10,8 @@ internal static class LayoutPageTimes
 {
     private const int Warm = 8, Moves = 40, EachRest = 10;
 
+    private static readonly string[] Both = ["coarse", "accurate"], Accurate = ["accurate"];
+
     // Asks the page to say when it is so far: a question at every frame would take time from the answer.
     private const string Wait = "enough => new Promise(done => { const told = () => { if (enough.some(k => watched.kinds.has(k))) { watched.told = null; done(); } }; watched.told = told; told(); })";
 
@@ -66,10 +68,10 @@ internal static class LayoutPageTimes
 
                     // To another of seven places, three pixels apart; every tenth move the hand rests.
                     await page.Mouse.MoveAsync(x + (3 * (k * 5 % 7)) - 9, y);
-                    await page.EvaluateAsync(Wait, new[] { "coarse", "accurate" });
+                    await page.EvaluateAsync(Wait, Both);
                     if (k % EachRest == 0)
                     {
-                        await page.EvaluateAsync(Wait, new[] { "accurate" });
+                        await page.EvaluateAsync(Wait, Accurate);
                         await page.WaitForFunctionAsync("() => fieldsolve.app.answer.complete");
                     }
                 }

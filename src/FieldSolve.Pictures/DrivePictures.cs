@@ -71,7 +71,7 @@ public static class DrivePictures
 
             Lazy<(FineMesh Mesh, TriangleFinder Finder)> made = meshes[known].Made;
             FieldMap[] alike = [.. maps.Where(m => SameMesh(m, last))];
-            double degrees = result.Summaries.FirstOrDefault(s => s.Wiring == wiring)?.DirectionDegrees ?? Direction(device, device.Wirings[w]);
+            double? degrees = CurrentDirection.Vector(device, device.Wirings[w]) == default ? null : CurrentDirection.Degrees(device, device.Wirings[w]);
             yield return new(
                 "potential", wiring, "potential-" + names[w],
                 $"Potential with equipotential lines at the last current of wiring {wiring}; the drain is at 0 V. Source orange, drain blue, other metal black.",
@@ -82,7 +82,7 @@ public static class DrivePictures
                 () => new DrawnMap(device, last, made.Value.Mesh, made.Value.Finder).Field());
             yield return new(
                 "sections", wiring, "sections-" + names[w],
-                "Potential along two lines through the middle of the sheet: along the direction of the current and across it. Gaps: the line leaves the sheet.",
+                $"Potential along two lines through the middle of the sheet: {(degrees is null ? "along x and along y" : "along the direction of the current and across it")}. Gaps: the line leaves the sheet.",
                 () => SectionPicture.Draw(alike, made.Value.Mesh, made.Value.Finder, degrees));
         }
 
@@ -99,10 +99,4 @@ public static class DrivePictures
         (ReferenceEquals(a.Nodes, b.Nodes) || a.Nodes.AsSpan().SequenceEqual(b.Nodes))
         && (ReferenceEquals(a.X, b.X) || a.X.AsSpan().SequenceEqual(b.X))
         && (ReferenceEquals(a.Y, b.Y) || a.Y.AsSpan().SequenceEqual(b.Y));
-
-    private static double Direction(SheetDevice device, Wiring wiring)
-    {
-        Geometry.Point2 d = device.Contacts[wiring.Drain].Middle - device.Contacts[wiring.Source].Middle;
-        return Math.Atan2(d.Y, d.X) * 180 / Math.PI;
-    }
 }

@@ -21,7 +21,7 @@ internal static class ReportTables
             [.. result.Summaries.Select(s => new[]
             {
                 s.Wiring,
-                SiScale.Number(Math.Round(s.DirectionDegrees, 3), 6) + "°",
+                s.HasDirection ? SiScale.Number(Math.Round(s.DirectionDegrees, 3), 6) + "°" : None,
                 Ohms(s.TwoTerminal),
                 Ohms(s.Along),
                 Ohms(s.Across),

@@ -25,7 +25,7 @@ internal static class ReportWords
             Add("along", s.Along);
             Add("across", s.Across);
             Add("between source and drain", s.TwoTerminal);
-            string text = $"Wiring {s.Wiring}, current at {SiScale.Number(Math.Round(s.DirectionDegrees, 3), 6)}°: "
+            string text = $"Wiring {s.Wiring}{(s.HasDirection ? $", current at {SiScale.Number(Math.Round(s.DirectionDegrees, 3), 6)}°" : "")}: "
                 + (parts.Count > 0 ? "at small drive " + string.Join(", ", parts) + "." : "no row could be solved.");
             if (!result.Device.Law.IsLinear && s.Slope is { } fit && double.IsFinite(fit.Slope))
             {

@@ -14,9 +14,10 @@ internal static class SectionPicture
     /// <param name="maps">Maps of one wiring in the order of the drive.</param>
     /// <param name="mesh">Small triangles of these maps.</param>
     /// <param name="finder">Point location on them.</param>
-    /// <param name="degrees">Direction of the wiring.</param>
-    public static Figure Draw(IReadOnlyList<FieldMap> maps, FineMesh mesh, TriangleFinder finder, double degrees)
+    /// <param name="direction">Direction of the wiring, degrees; null where the current has none, as from rim to rim of a ring.</param>
+    public static Figure Draw(IReadOnlyList<FieldMap> maps, FineMesh mesh, TriangleFinder finder, double? direction)
     {
+        double degrees = direction ?? 0;
         FieldMap[] chosen = Spread(maps);
         double[][] volts = [.. chosen.Select(m => mesh.Quadratic(m.Potential))];
         SiScale scaleV = SiScale.For(volts.Max(v => v.Max(Math.Abs)), "V");
@@ -26,8 +27,10 @@ internal static class SectionPicture
         double left = Math.Min(first.Left, second.Left), right = Math.Max(first.Right, second.Right);
         along.Axes.SetLimitsX(left, right);
         across.Axes.SetLimitsX(left, right);
-        along.Title($"Potential along the current ({SiScale.Number(Math.Round(degrees, 2))}°), {Look.Short(chosen[0].Wiring, 24)}", Look.TitleSize);
-        across.Title($"Potential across the current ({SiScale.Number(Math.Round((degrees + 90) % 360, 2))}°), {Look.Short(chosen[0].Wiring, 24)}", Look.TitleSize);
+        string Title(string way, double angle, string axis) =>
+            $"Potential {(direction is null ? $"along {axis}" : $"{way} the current ({SiScale.Number(Math.Round(angle % 360, 2))}°)")}, {Look.Short(chosen[0].Wiring, 24)}";
+        along.Title(Title("along", degrees, "x"), Look.TitleSize);
+        across.Title(Title("across", degrees + 90, "y"), Look.TitleSize);
         return Figure.Rows([along, across], 1, 600, 300).WithKeyRight([.. chosen.Select((m, k) => Style(k, m))]);
     }
 

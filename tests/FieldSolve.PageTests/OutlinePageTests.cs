@@ -1,5 +1,7 @@
 using System.Buffers.Binary;
 using System.Globalization;
+using System.IO.Compression;
+using System.Text;
 using System.Text.RegularExpressions;
 using FieldSolve.Device;
 using FieldSolve.Geometry;
@@ -122,6 +124,87 @@ public sealed class OutlinePageTests(ReportFixture shared) : LayoutPageBase(shar
     }
 
     [BrowserFact]
+    public async Task A_large_micrograph_is_drawn_from_smaller_copies_and_a_faulty_one_leaves_it_there()
+    {
+        IPage page = await Open();
+        await page.ClickAsync(".picture-box summary");
+        await page.SetInputFilesAsync("[data-do='picture-file']", new FilePayload { Name = "wide.png", MimeType = "image/png", Buffer = Png(6000, 900) });
+        await page.WaitForFunctionAsync("() => fieldsolve.app.stage.picture.there");
+        Assert.Equal<IEnumerable<int>>([6000, 3000, 1500], await page.EvaluateAsync<int[]>("fieldsolve.app.stage.picture.levels.map(l => l.width)"));
+
+        // Where a place of the picture is seen: as the picture has it, on the whole sheet and ten times larger, turned or not. Its left third is dark, the rest bright.
+        const string Seen = """
+            ([turn, zoom]) => {
+                const s = fieldsolve.app.stage, p = s.picture;
+                p.angle = turn;
+                s.whole();
+                s.zoomBy(zoom, ...s.toScreen(...p.toPlace(2000, 450)));
+                s.drawNow();
+                return [1980, 2020].map(i => {
+                    const [u, v] = s.toScreen(...p.toPlace(2000 + (i - 2000) * 3 / zoom, 450));
+                    return p.frame.getContext('2d').getImageData(Math.round(u - s.margin.left), Math.round(v - s.margin.top), 1, 1).data[0];
+                });
+            }
+            """;
+        foreach (double[] view in new double[][] { [0, 1], [0, 10], [30, 1], [30, 10] })
+        {
+            Assert.Equal<IEnumerable<int>>([40, 200], await page.EvaluateAsync<int[]>(Seen, view));
+        }
+
+        await page.SetInputFilesAsync("[data-do='picture-file']", new FilePayload { Name = "half.png", MimeType = "image/png", Buffer = Png(300, 200)[..200] });
+        await page.WaitForFunctionAsync("() => document.querySelector('.picture-box .fault-line').textContent.startsWith('half.png')");
+        Assert.Equal("wide.png, 6000 × 900 pixels", await page.InnerTextAsync(".picture-box .bar .soft"));
+        Assert.Empty(Complaints);
+    }
+
+    // A grey picture, its left third dark (ISO/IEC 15948: chunks with CRC-32, rows behind a filter byte, deflated as in RFC 1950).
+    private static byte[] Png(int width, int height)
+    {
+        byte[] head = [0, 0, 0, 0, 0, 0, 0, 0, 8, 0, 0, 0, 0], row = new byte[width + 1];
+        BinaryPrimitives.WriteInt32BigEndian(head, width);
+        BinaryPrimitives.WriteInt32BigEndian(head.AsSpan(4), height);
+        row.AsSpan(1, width / 3).Fill(40);
+        row.AsSpan(1 + (width / 3)).Fill(200);
+        using MemoryStream rows = new(), png = new();
+        using (ZLibStream pack = new(rows, CompressionLevel.Fastest, leaveOpen: true))
+        {
+            for (int k = 0; k < height; k++)
+            {
+                pack.Write(row);
+            }
+        }
+
+        png.Write([0x89, 0x50, 0x4E, 0x47, 0x0D, 0x0A, 0x1A, 0x0A]);
+        foreach ((string name, byte[] data) in new[] { ("IHDR", head), ("IDAT", rows.ToArray()), ("IEND", []) })
+        {
+            byte[] chunk = [.. Encoding.ASCII.GetBytes(name), .. data];
+            byte[] number = new byte[4];
+            BinaryPrimitives.WriteInt32BigEndian(number, data.Length);
+            png.Write(number);
+            png.Write(chunk);
+            BinaryPrimitives.WriteUInt32BigEndian(number, Crc(chunk));
+            png.Write(number);
+        }
+
+        return png.ToArray();
+    }
+
+    private static uint Crc(byte[] data)
+    {
+        uint crc = uint.MaxValue;
+        foreach (byte b in data)
+        {
+            crc ^= b;
+            for (int k = 0; k < 8; k++)
+            {
+                crc = (crc & 1) != 0 ? 0xEDB88320 ^ (crc >> 1) : crc >> 1;
+            }
+        }
+
+        return ~crc;
+    }
+
+    [BrowserFact]
     public async Task An_outline_and_pads_traced_on_a_micrograph_are_saved_read_back_and_used()
     {
         IPage page = await Open();
@@ -134,6 +217,18 @@ public sealed class OutlinePageTests(ReportFixture shared) : LayoutPageBase(shar
         await page.SetInputFilesAsync("[data-do='picture-file']", new FilePayload { Name = "huge.png", MimeType = "image/png", Buffer = huge });
         await page.WaitForFunctionAsync("() => !document.querySelector('.picture-box .fault-line').hidden");
         Assert.Equal("huge.png has 200 megapixels (20000 × 10000); up to 50 are taken, so make it smaller first", await page.InnerTextAsync(".picture-box .fault-line"));
+
+        // A text under such a name, and the start of a picture.
+        foreach ((string name, byte[] content, string words) in new[]
+        {
+            ("notes.png", "nothing to see"u8.ToArray(), "notes.png: it is neither PNG nor JPEG; a PNG or JPEG is wanted"),
+            ("half.png", Png(300, 200)[..200], "half.png cannot be decoded; is it whole?"),
+        })
+        {
+            await page.SetInputFilesAsync("[data-do='picture-file']", new FilePayload { Name = name, MimeType = "image/png", Buffer = content });
+            await page.WaitForFunctionAsync("words => document.querySelector('.picture-box .fault-line').textContent === words", words);
+            Assert.False(await page.EvaluateAsync<bool>("fieldsolve.app.stage.picture.there"));
+        }
 
         // 400 by 200 pixels; the two marks are 300 pixels or 9 um apart.
         string made = await page.EvaluateAsync<string>("() => { const c = document.createElement('canvas'); c.width = 400; c.height = 200; c.getContext('2d').fillRect(40, 30, 320, 140); return c.toDataURL('image/jpeg'); }");

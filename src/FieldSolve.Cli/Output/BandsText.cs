@@ -52,7 +52,7 @@ internal static class BandsText
             json[name] = node?.DeepClone();
         }
 
-        return SummaryJson.Text(json);
+        return SummaryJson.Text(json, folder);
     }
 
     private static Estimate Of(SecondOrderSet set, string name) => set.Elements.First(e => e.Name == name).Number;

@@ -49,7 +49,7 @@ internal static class DeviceText
         foreach (var g in (device.Tolerance?.Causes ?? []).GroupBy(c => (c.Kind, c.Sigma, c.Shape)))
         {
             string size = g.First().Unit is "m" or "S" ? Engineering.Text(g.Key.Sigma, g.First().Unit)
-                : string.Create(CultureInfo.InvariantCulture, $"{g.Key.Sigma / g.First().UnitSize:G6} {g.First().Unit}");
+                : string.Create(CultureInfo.InvariantCulture, $"{g.Key.Sigma / g.First().UnitSize:G6}{(g.First().Unit == "1" ? "" : " " + g.First().Unit)}");
             string whom = g.First().Target.Name.Length == 0 ? "" : $" of {string.Join(", ", g.Select(c => c.Target.Name))}";
             Line("tolerance", $"{g.Key.Kind.Key}{whom}: {size}{(g.Key.Shape == CauseShape.Uniform ? ", uniform" : "")}");
         }
@@ -65,6 +65,11 @@ internal static class DeviceText
         if (Cautions.OfMeanFreePath(device) is { } caution)
         {
             Line("caution", caution);
+        }
+
+        foreach (string strip in NarrowStrips.Of(device))
+        {
+            Line("warning", strip);
         }
 
         return text.ToString();
@@ -101,6 +106,7 @@ internal static class DeviceText
                     p.Name, (JsonNode?)new JsonArray(Name(device, p.Plus), Name(device, p.Minus))))),
             })]),
             ["currents_A"] = new JsonArray([.. (device.Drive?.Currents ?? []).Select(c => (JsonNode)c)]),
+            ["warnings"] = new JsonArray([.. NarrowStrips.Of(device).Select(w => (JsonNode)w)]),
         };
         return SummaryJson.Text(json);
     }

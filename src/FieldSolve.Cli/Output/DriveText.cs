@@ -15,7 +15,7 @@ internal static class DriveText
         text.Append(result.Device.Title).Append('\n');
         foreach (WiringSummary s in result.Summaries)
         {
-            text.Append(CultureInfo.InvariantCulture, $"\n{s.Wiring} (current at {s.DirectionDegrees:G4} deg)\n");
+            text.Append(CultureInfo.InvariantCulture, $"\n{s.Wiring}{(s.HasDirection ? string.Create(CultureInfo.InvariantCulture, $" (current at {s.DirectionDegrees:G4} deg)") : "")}\n");
             void Line(string name, string value) => text.Append("  ").Append(name.PadRight(44)).Append(value).Append('\n');
             Line("two-terminal resistance at small drive", Resistance(result, s, s.TwoTerminal, "source"));
             Line("along resistance at small drive", Resistance(result, s, s.Along, "along"));
@@ -82,6 +82,6 @@ internal static class DriveText
             ["cautions"] = new JsonArray([.. result.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Warnings.Select(c => (JsonNode)c)]),
         };
-        return SummaryJson.Text(json);
+        return SummaryJson.Text(json, folder);
     }
 }

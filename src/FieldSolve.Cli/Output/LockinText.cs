@@ -77,7 +77,7 @@ internal static class LockinText
             ["cautions"] = new JsonArray([.. result.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Warnings.Select(c => (JsonNode)c)]),
         };
-        return SummaryJson.Text(json);
+        return SummaryJson.Text(json, folder);
     }
 
     private static JsonObject Wiring(LockinResult result, Wiring wiring)

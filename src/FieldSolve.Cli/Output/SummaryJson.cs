@@ -10,9 +10,10 @@ internal static class SummaryJson
 
     public static string Text(JsonObject json) => json.ToJsonString(Indented) + "\n";
 
-    /// <summary>With the folder of the results at its end.</summary>
+    /// <summary>With the folder of the results, under both names that commands have used for it.</summary>
     public static string Text(JsonObject json, string folder)
     {
+        json["folder"] = folder;
         json["out"] = folder;
         return Text(json);
     }

@@ -98,7 +98,7 @@ internal static class ToleranceText
     }
 
     public static string Json(ToleranceResult result, string folder) =>
-        SummaryJson.Text(ToleranceRecord.Json(result, new Dictionary<string, string> { ["out"] = folder }));
+        SummaryJson.Text(ToleranceRecord.Json(result, new Dictionary<string, string> { ["out"] = folder }), folder);
 
     private static double? Voltage(ArgumentResult result, string name, bool allowNegative)
     {

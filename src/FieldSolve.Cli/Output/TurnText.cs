@@ -82,7 +82,7 @@ internal static class TurnText
             ["cautions"] = new JsonArray([.. result.Drive.Cautions.Select(c => (JsonNode)c)]),
             ["warnings"] = new JsonArray([.. result.Drive.Warnings.Select(c => (JsonNode)c)]),
         };
-        return SummaryJson.Text(json);
+        return SummaryJson.Text(json, folder);
     }
 
     private static string Digits(double value) => value.ToString("G5", CultureInfo.InvariantCulture);

@@ -46,8 +46,10 @@ function makeAxis(low, high, from, to, log, wanted) {
         }
       }
     }
-    // Too few of them fall into a short range: even steps of the value itself.
-    return { at, ticks: ticks.length > 2 || !(high > low) ? ticks : multiples(low, high, roundStep(high - low, Math.max(2, Math.abs(to - from) / 80))).map(v => Number(v.toPrecision(12))) };
+    // Too few of them fall into a short range: even steps of the value itself, which crowd at its upper end, so some are left out there.
+    const even = () => multiples(low, high, roundStep(high - low, Math.max(2, Math.abs(to - from) / 80))).map(v => Number(v.toPrecision(12)));
+    const apart = list => list.reduce((kept, v) => kept.length && Math.abs(at(v) - at(kept[kept.length - 1])) < (from < to ? 54 : 16) ? kept : [...kept, v], []);
+    return { at, ticks: ticks.length > 2 || !(high > low) ? ticks : apart(even()) };
   }
   const span = high > low ? high - low : Math.abs(low) || 1, a = high > low ? low : low - span / 2;
   const step = wanted ?? roundStep(span, Math.max(2, Math.abs(to - from) / (from < to ? 80 : 46)));

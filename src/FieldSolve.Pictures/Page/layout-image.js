@@ -57,44 +57,59 @@ async function examinePicture(file) {
   return size;
 }
 
+/**
+ * The picture at full size, half, a quarter, …: each pixel of the screen is then made of few pixels of the one that suits the zoom, whatever the size of the file. Canvases
+ * stay off the graphics card, which need not take pictures of this size.
+ */
+async function pictureLevels(file) {
+  const levels = [await createImageBitmap(file)];
+  for (let last = levels[0]; Math.max(last.width, last.height) > 2048; last = levels[levels.length - 1]) {
+    // One step after the other, so that the page answers in between.
+    await new Promise(go => setTimeout(go));
+    const half = html('canvas', { width: Math.ceil(last.width / 2), height: Math.ceil(last.height / 2) });
+    half.getContext('2d', { willReadFrequently: true }).drawImage(last, 0, 0, half.width, half.height);
+    levels.push(half);
+  }
+  return levels;
+}
+
 /** Where the picture lies: its middle (metres), metres per pixel, and degrees counter-clockwise. */
 class Micrograph {
   constructor(plane) {
-    Object.assign(this, { plane, width: 0, height: 0, cx: 0, cy: 0, pixel: 0, angle: 0, strength: 1, marks: [] });
-    this.image = html('img', { alt: '', draggable: 'false', class: 'micrograph' });
-    this.frame = html('div', { class: 'micrograph-frame', hidden: true, 'aria-hidden': 'true' }, this.image);
+    Object.assign(this, { plane, levels: [], loads: 0, width: 0, height: 0, cx: 0, cy: 0, pixel: 0, angle: 0, strength: 1, marks: [] });
+    this.frame = html('canvas', { class: 'micrograph', hidden: true, 'aria-hidden': 'true' });
   }
 
   get there() { return this.width > 0; }
 
-  /** Takes a file; throws what is wrong with it. */
+  /** Takes a file; false when another was asked for meanwhile. Throws what is wrong with it, and the picture that was there stays. */
   async load(file) {
-    const { width, height } = await examinePicture(file), url = URL.createObjectURL(file), { extent } = this.plane;
-    this.image.src = url;
+    const turn = ++this.loads;
+    await examinePicture(file);
+    let levels;
     try {
-      await this.image.decode();
+      levels = await pictureLevels(file);
     } catch {
-      URL.revokeObjectURL(url);
-      this.clear();
       throw new Error(`${file.name} cannot be decoded; is it whole?`);
     }
-    if (this.url) {
-      URL.revokeObjectURL(this.url);
+    if (turn !== this.loads) {
+      levels[0].close();
+      return false;
     }
-    // A JPEG that says so is turned by the browser.
-    const turned = this.image.naturalWidth && this.image.naturalWidth !== width;
-    Object.assign(this, { url, name: file.name, width: turned ? height : width, height: turned ? width : height, cx: extent.cx, cy: extent.cy, angle: 0, marks: [] });
-    this.pixel = Math.max(extent.width / this.width, extent.height / this.height) * 1.15;
+    this.clear();
+    // A JPEG that says so has been turned by the browser, so sizes are those of what it made.
+    const { extent } = this.plane, { width, height } = levels[0];
+    Object.assign(this, { levels, name: file.name, width, height, cx: extent.cx, cy: extent.cy, angle: 0 });
+    this.pixel = Math.max(extent.width / width, extent.height / height) * 1.15;
     this.frame.hidden = false;
     this.draw();
+    return true;
   }
 
   clear() {
-    if (this.url) {
-      URL.revokeObjectURL(this.url);
-    }
-    Object.assign(this, { url: null, width: 0, height: 0, marks: [] });
-    this.image.removeAttribute('src');
+    this.levels[0]?.close();
+    this.loads++;
+    Object.assign(this, { levels: [], drawn: null, width: 0, height: 0, marks: [] });
     this.frame.hidden = true;
   }
 
@@ -125,12 +140,18 @@ class Micrograph {
     if (!this.there || !this.plane.fit) {
       return;
     }
-    const { plane, image } = this, k = plane.fit * plane.zoom * this.pixel, c = k * Math.cos(this.angle * Math.PI / 180), s = k * Math.sin(this.angle * Math.PI / 180), [u, v] = plane.toScreen(this.cx, this.cy);
+    const { plane, frame } = this, k = plane.fit * plane.zoom * this.pixel, c = k * Math.cos(this.angle * Math.PI / 180), s = k * Math.sin(this.angle * Math.PI / 180), [u, v] = plane.toScreen(this.cx, this.cy);
     const e = u - plane.margin.left - (c * this.width + s * this.height) / 2, f = v - plane.margin.top - (-s * this.width + c * this.height) / 2;
-    image.style.width = `${this.width}px`;
-    image.style.height = `${this.height}px`;
-    image.style.transform = `matrix(${c}, ${-s}, ${s}, ${c}, ${e}, ${f})`;
-    image.style.opacity = String(this.strength);
+    frame.style.opacity = String(this.strength);
+    const ratio = Math.min(2, devicePixelRatio || 1), size = [plane.inner.width, plane.inner.height].map(l => Math.round(l * ratio)), view = JSON.stringify([size, c, s, e, f]);
+    if (view === this.drawn) {
+      return;
+    }
+    this.drawn = view;
+    [frame.width, frame.height] = size;
+    const from = this.levels.findLast(l => l.width >= k * ratio * this.width) ?? this.levels[0], p = ratio * this.width / from.width, q = ratio * this.height / from.height, pen = frame.getContext('2d', { willReadFrequently: true });
+    pen.setTransform(p * c, -p * s, q * s, q * c, ratio * e, ratio * f);
+    pen.drawImage(from, 0, 0);
   }
 
   /** The two points whose distance is known. */

@@ -69,22 +69,27 @@ class PicturePanel {
 
   async #load() {
     const [file] = this.file.files;
+    // So that the same file can be chosen again.
+    this.file.value = '';
     if (!file) {
       return;
     }
     try {
       const { picture } = this.stage;
-      await picture.load(file);
+      this.#say('');
+      const coming = picture.load(file);
+      this.name.textContent = `reading ${file.name} …`;
+      if (!await coming) {
+        return;
+      }
       // The picture that the kept trace belongs to goes where it was.
       if (this.placed && ['name', 'width', 'height'].every(k => this.placed[k] === picture[k])) {
         Object.assign(picture, this.placed);
       }
       this.placed = null;
-      this.#say('');
     } catch (e) {
       this.#say(e.message);
     }
-    this.file.value = '';
     this.show();
     this.stage.draw();
   }

@@ -163,7 +163,7 @@ class LayoutStage extends Plane {
     const { margin, inner, inside, state } = this, right = margin.left + inner.width;
     const view = JSON.stringify([margin, inner, this.fit, this.zoom, this.panX, this.panY, this.extent]);
     this.kept.of('window', view, () => fill(this.window, { x: margin.left, y: margin.top, width: inner.width, height: inner.height }, []));
-    const focus = document.activeElement?.closest?.('[data-corner], [data-traced]')?.dataset, nodes = [], names = [], { kept } = this;
+    const focus = document.activeElement?.closest?.('[data-corner], [data-traced]')?.dataset, nodes = [], { kept } = this;
     state.rim.forEach((loop, k) => {
       const d = this.pathOf(loop, true);
       // Over a picture the rim needs a bright line beside the dark one.
@@ -173,9 +173,8 @@ class LayoutStage extends Plane {
     state.contacts.forEach((c, k) => {
       const { role, words } = roleOf(roles[k]);
       nodes.push(partNode(this, c, role, words, (e, contact) => this.#key(e, contact)));
-      names.push(nameNode(this, c, role, words));
     });
-    adopt(this.names, names);
+    adopt(this.names, nameNodes(this, roles, this.#dialBoxes(right)));
     if (this.tool === 'corner' && state.outline) {
       state.outline.loops.forEach((l, loop) => nodes.push(...cornerNodes(this, l.points, loop, (e, at, k) => this.#cornerKey(e, at, k))));
     }
@@ -198,10 +197,21 @@ class LayoutStage extends Plane {
     return [svg('path', { class: 'trace-halo', d }), svg('path', { class: 'measure', d })];
   }
 
+  // Middle and size of the dial, and where its angle stands. Where there is little room it is smaller, with the angle beside it, clear of the sheet.
+  #dialPlace(right) {
+    const small = this.inner.width < 460 || this.inner.height < 330, r = small ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, text = `axis ${number(this.state.axis, 5)}°`;
+    return { cx, cy, r, text, ...small ? { x: cx - r - 12, y: this.margin.top + 14, anchor: 'end' } : { x: cx, y: cy + r + 26, anchor: 'middle' } };
+  }
+
+  // What names keep clear of.
+  #dialBoxes(right) {
+    const { cx, cy, r, text, x, y, anchor } = this.#dialPlace(right), wide = nameWidth(text), left = x - (anchor === 'end' ? wide : wide / 2);
+    return [[cx - r - 10, cy - r - 10, cx + r + 10, cy + r + 10], [left - 3, y - 11, left + wide + 3, y + 3]];
+  }
+
   // The crystal axes beside the sheet: the longer line is a, the handle turns it.
   #drawDial(right) {
-    // Smaller where there is little room.
-    const r = this.inner.width < 460 || this.inner.height < 330 ? 0.55 * AXIS_DIAL : AXIS_DIAL, cx = right - r - 14, cy = this.margin.top + r + 14, angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
+    const { cx, cy, r, text, ...place } = this.#dialPlace(right), angle = this.state.axis * Math.PI / 180, c = Math.cos(angle), s = Math.sin(angle);
     const held = document.activeElement?.classList?.contains('axis-handle');
     this.centre = [cx, cy];
     const at = (p, q) => `${(cx + p * c - q * s).toFixed(1)} ${(cy - p * s - q * c).toFixed(1)}`, [hu, hv] = at(r, 0).split(' ');
@@ -219,7 +229,7 @@ class LayoutStage extends Plane {
       svg('circle', { class: 'dial-face', cx, cy, r: r + 10 }),
       svg('path', { class: 'ink', fill: 'none', 'stroke-width': 2.2, d: `M${at(-r, 0)}L${at(r, 0)}` }), svg('path', { class: 'ink', fill: 'none', 'stroke-width': 1.4, 'stroke-dasharray': '4 3', d: `M${at(0, -r * 0.7)}L${at(0, r * 0.7)}` }),
       svg('text', { x: (cx + 0.55 * r * c - 11 * s).toFixed(1), y: (cy - 0.55 * r * s - 11 * c + 4).toFixed(1), 'text-anchor': 'middle' }, 'a'), svg('text', { x: (cx - 0.5 * r * s - 11 * c).toFixed(1), y: (cy - 0.5 * r * c + 11 * s + 4).toFixed(1), 'text-anchor': 'middle' }, 'b'),
-      svg('text', { class: 'tag', x: cx, y: cy + r + 26, 'text-anchor': 'middle' }, `axis ${number(this.state.axis, 5)}°`), handle);
+      svg('text', { class: 'tag', x: place.x, y: place.y, 'text-anchor': place.anchor }, text), handle);
     if (held) {
       handle.focus({ preventScroll: true });
     }

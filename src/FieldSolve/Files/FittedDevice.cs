@@ -37,7 +37,7 @@ public static partial class FittedDevice
             double unit = p.Parameter.UnitSize;
             text.Append(CultureInfo.InvariantCulture, $"# {p.Parameter.Key} = ");
             text.Append(p.Value is { } v && p.StandardError is { } e
-                ? string.Create(CultureInfo.InvariantCulture, $"{v / unit:G8} +- {e / unit:G2} {p.Parameter.Unit}")
+                ? string.Create(CultureInfo.InvariantCulture, $"{v / unit:G8} +- {e / unit:G2}{(p.Parameter.Unit == "1" ? "" : " " + p.Parameter.Unit)}")
                 : "not determined by the data");
             text.Append(p.Value is null || p.Parameter.Kind.Effect is CauseEffect.Law or CauseEffect.Axis ? "\n" : ", not applied below\n");
         }

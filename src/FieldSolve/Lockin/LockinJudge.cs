@@ -64,8 +64,8 @@ internal static class LockinJudge
         };
     }
 
-    /// <summary>Largest RMS first harmonic along (of any pair where nothing is read along), V; the DC part where only that is driven.</summary>
-    public static double AlongScale(IEnumerable<CycleAnswer> answers) => MeshRefinement.AlongScale(answers.Where(a => a.Converged).SelectMany(
+    /// <summary>Largest RMS first harmonic along (of any pair where nothing is read along), V; the DC part where only that is driven. No less than <see cref="VoltageScale"/> says.</summary>
+    public static double AlongScale(SheetDevice device, double rms, IEnumerable<CycleAnswer> answers) => VoltageScale.Of(device, rms == 0 ? device.Drive!.Offset : rms, answers.Where(a => a.Converged).SelectMany(
         a => a.Plan.Pairs.Select((p, k) => (p == a.Plan.Wiring.Along, Math.Max(
             Math.Abs(a.Cosine[k][0]) * (a.CurrentRms == 0 ? 1 : 0), Rms(1) * Math.Sqrt(Square(a.Sine[k][1]) + Square(a.Cosine[k][1])))))));
 

@@ -109,7 +109,7 @@ public static class LockinRun
             Mesh = refinement.Meshes.Coarse.Space.Mesh,
             Levels = refinement.Levels,
             Cautions = Cautions.Of(AsAc(device), [.. points.Select(AsRow)]),
-            Warnings = LockinWarnings.Of(points, work.Refusals),
+            Warnings = LockinWarnings.Of(device, points, work.Refusals),
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),

@@ -1,13 +1,15 @@
 using System.Globalization;
+using FieldSolve.Device;
 using FieldSolve.Quantities;
 using FieldSolve.Readings;
+using FieldSolve.Runs;
 
 namespace FieldSolve.Lockin;
 
 /// <summary>Says in words which readings to distrust, why, and what helps; one sentence or two per wiring and cause.</summary>
 internal static class LockinWarnings
 {
-    public static IReadOnlyList<string> Of(IReadOnlyList<LockinPoint> points, IReadOnlyDictionary<string, string> refusals)
+    public static IReadOnlyList<string> Of(SheetDevice device, IReadOnlyList<LockinPoint> points, IReadOnlyDictionary<string, string> refusals)
     {
         var list = new List<string>();
         foreach (IGrouping<string, LockinPoint> wiring in points.GroupBy(p => p.Wiring))
@@ -32,6 +34,11 @@ internal static class LockinWarnings
                 list.Add(Text(
                     $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {SiText.Of(coarse.CurrentRms, "A", 4)} RMS{At(coarse)}; error bar {SiText.Of(worst.Error, "V")} in harmonic {worst.Harmonic} of '{worst.Pair}'). Ask for a smaller [mesh] error or even_error, raise max_unknowns, or accept the error bars as they stand."));
             }
+        }
+
+        if (VoltageScale.Warning(device, points.SelectMany(p => p.Readings.Where(r => r.Pair == "along" && r.Harmonic == 1).Select(r => (p.CurrentRms, Math.Sqrt((r.X * r.X) + (r.Y * r.Y)))))) is { } small)
+        {
+            list.Add(small);
         }
 
         return list;

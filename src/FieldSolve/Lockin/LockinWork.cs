@@ -88,7 +88,7 @@ internal sealed class LockinWork
                     if (answers[w, i, f] is { } answer)
                     {
                         list.Add(LockinJudge.Of(
-                            device, answer, LockinJudge.AlongScale(Enumerable.Range(0, plans.Length).Select(v => answers[v, i, f]).OfType<CycleAnswer>())));
+                            device, answer, LockinJudge.AlongScale(device, currents[i], Enumerable.Range(0, plans.Length).Select(v => answers[v, i, f]).OfType<CycleAnswer>())));
                     }
                 }
             }

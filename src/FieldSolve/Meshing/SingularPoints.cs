@@ -1,10 +1,12 @@
 using FieldSolve.Geometry;
+using FieldSolve.Laws;
 
 namespace FieldSolve.Meshing;
 
-/// <summary>A vertex of the domain where the field of an isotropic sheet is not smooth.</summary>
+/// <summary>A vertex of the domain where the field is not smooth.</summary>
 /// <param name="Vertex">Index in the domain.</param>
-/// <param name="Exponent">The potential goes like r to this power: pi/(2 w) where a contact meets a free edge, pi/w at a corner of interior angle w.</param>
+/// <param name="Exponent">The potential goes like r to this power: pi/(2 w) where a contact meets a free edge, pi/w at a corner of interior angle w, as it is after the
+/// sheet was stretched so that it conducts alike along all directions.</param>
 /// <param name="Reach">Length of the shorter stretch that ends there, metres.</param>
 public readonly record struct SingularPoint(int Vertex, double Exponent, double Reach)
 {
@@ -14,16 +16,29 @@ public readonly record struct SingularPoint(int Vertex, double Exponent, double 
 
 /// <summary>
 /// Finds contact ends and re-entrant corners. The exponents are those of the Laplace equation in a wedge (P. Grisvard, Elliptic Problems in
-/// Nonsmooth Domains, 1985); anisotropy and a Hall part change them, so the list is only a first guess for the mesh.
+/// Nonsmooth Domains, 1985), for an anisotropic sheet in the plane where it is isotropic (L. J. van der Pauw, Philips Res. Rep. 16, 187 (1961)): there a corner has another angle,
+/// so that the end of a bar is singular where the crystal axis lies askew. A Hall part takes from the exponent of the potential what it gives to that of the adjoint.
 /// </summary>
 public static class SingularPoints
 {
+    private const double Below = 1.01;
+
+    /// <summary>All points of an isotropic sheet whose exponent is below <paramref name="below"/>, in the order of the domain's vertices.</summary>
+    public static IReadOnlyList<SingularPoint> Of(Domain domain, double below = Below) => Of(domain, new Tensor2(1, 0, 0, 1), below);
+
     /// <summary>All points whose exponent is below <paramref name="below"/>, in the order of the domain's vertices.</summary>
-    public static IReadOnlyList<SingularPoint> Of(Domain domain, double below = 1.01)
+    /// <param name="domain">The sheet.</param>
+    /// <param name="conductance">Conductance tensor in the frame of the domain; its symmetric part is positive definite, its unit does not matter.</param>
+    /// <param name="below">Largest exponent.</param>
+    public static IReadOnlyList<SingularPoint> Of(Domain domain, Tensor2 conductance, double below = Below)
     {
+        // S = L Lᵀ, and L⁻¹ maps to the plane where the sheet is isotropic.
+        double first = Math.Sqrt(conductance.Aa), off = (conductance.Ab + conductance.Ba) / 2 / first, second = Math.Sqrt(conductance.Bb - (off * off));
+        Point2 Mapped(Point2 p) => new(p.X / first, (p.Y - (off * p.X / first)) / second);
         var list = new List<SingularPoint>();
-        foreach ((int v, DomainEdge before, DomainEdge after, double angle) in RimVertices(domain))
+        foreach ((int v, DomainEdge before, DomainEdge after, _) in RimVertices(domain))
         {
+            double angle = Angle(Mapped(-before.Curve.Tangent(1)), Mapped(after.Curve.Tangent(0)));
             bool mixed = before.Contact >= 0 != after.Contact >= 0;
             double exponent = mixed ? Math.PI / (2 * angle) : Math.PI / angle;
             if (exponent < below && (mixed || exponent < 0.97))
@@ -75,9 +90,14 @@ public static class SingularPoints
             }
 
             DomainEdge before = domain.Edges[into[v]], after = domain.Edges[from[v]];
-            Point2 back = -before.Curve.Tangent(1), ahead = after.Curve.Tangent(0);
-            double angle = Math.Atan2(Point2.Cross(ahead, back), Point2.Dot(ahead, back));
-            yield return (v, before, after, angle <= 0 ? angle + (2 * Math.PI) : angle);
+            yield return (v, before, after, Angle(-before.Curve.Tangent(1), after.Curve.Tangent(0)));
         }
+    }
+
+    // From the way ahead to the way back, in (0, 2 pi].
+    private static double Angle(Point2 back, Point2 ahead)
+    {
+        double angle = Math.Atan2(Point2.Cross(ahead, back), Point2.Dot(ahead, back));
+        return angle <= 0 ? angle + (2 * Math.PI) : angle;
     }
 }

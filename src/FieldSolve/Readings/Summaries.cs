@@ -24,7 +24,10 @@ public static class Summaries
             wiring.Name, CurrentDirection.Degrees(device, wiring),
             Resistance("source"), Resistance("along"), Resistance("across"),
             device.Law.IsLinear ? null : Line(solved),
-            left.Count > 0 ? left[0] : null, solved.Count > 0 ? Math.Abs(solved[^1].Current) : 0);
+            left.Count > 0 ? left[0] : null, solved.Count > 0 ? Math.Abs(solved[^1].Current) : 0)
+        {
+            HasDirection = CurrentDirection.Vector(device, wiring) != default,
+        };
     }
 
     // Straight line through V_across_even against V_along_odd², ordinary least squares.

@@ -10,7 +10,7 @@ public sealed record EvenSlope(double Slope, double SlopeError, double Intercept
 
 /// <summary>What a drive says about one wiring.</summary>
 /// <param name="Wiring">Name.</param>
-/// <param name="DirectionDegrees">Angle of the vector from source to drain, 0 to 360.</param>
+/// <param name="DirectionDegrees">Angle of the vector from source to drain, 0 to 360; 0 without <see cref="HasDirection"/>.</param>
 /// <param name="TwoTerminal">V_source / I at the smallest non-zero current, ohm; null when there is none.</param>
 /// <param name="Along">V_along / I there, ohm.</param>
 /// <param name="Across">V_across / I there, ohm.</param>
@@ -19,4 +19,8 @@ public sealed record EvenSlope(double Slope, double SlopeError, double Intercept
 /// <param name="Largest">Largest |current| solved, A.</param>
 public sealed record WiringSummary(
     string Wiring, double DirectionDegrees, double? TwoTerminal, double? Along, double? Across, EvenSlope? Slope,
-    double? LeftLawAt, double Largest);
+    double? LeftLawAt, double Largest)
+{
+    /// <summary>False where the middles of source and drain coincide, as with the two rims of a ring: the current has no one direction then.</summary>
+    public bool HasDirection { get; init; } = true;
+}

@@ -56,7 +56,7 @@ public static class DriveRun
             Mesh = refinement.Meshes.Coarse.Space.Mesh,
             Levels = refinement.Levels,
             Cautions = Cautions.Of(device, [.. rows, .. reversed]),
-            Warnings = DriveWarnings.Of(rows, work.Refusals),
+            Warnings = DriveWarnings.Of(device, rows, work.Refusals),
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.AtZero.NonZeros,
                 work.Total.Factorisations + (2 * refinement.Levels.Count), work.Total.Solves, work.Total.Steps, work.LargestResidual),

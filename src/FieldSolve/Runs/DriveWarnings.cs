@@ -1,4 +1,5 @@
 using System.Globalization;
+using FieldSolve.Device;
 using FieldSolve.Quantities;
 using FieldSolve.Readings;
 
@@ -7,7 +8,7 @@ namespace FieldSolve.Runs;
 /// <summary>Says in words which rows to distrust, why, and what helps; one sentence or two per wiring and cause.</summary>
 internal static class DriveWarnings
 {
-    public static IReadOnlyList<string> Of(IReadOnlyList<CurveRow> rows, IReadOnlyDictionary<string, string> refusals)
+    public static IReadOnlyList<string> Of(SheetDevice device, IReadOnlyList<CurveRow> rows, IReadOnlyDictionary<string, string> refusals)
     {
         var list = new List<string>();
         foreach (IGrouping<string, CurveRow> wiring in rows.GroupBy(r => r.Wiring))
@@ -31,6 +32,12 @@ internal static class DriveWarnings
                 list.Add(Text(
                     $"Wiring '{wiring.Key}' misses the wanted numerical error (first at {SiText.Of(coarse.Current, "A", 4)}; largest error bar {SiText.Of(worst.Error, "V")} in '{worst.Pair}'). Raise [mesh] max_unknowns, or accept the error bars as they stand."));
             }
+        }
+
+        list.AddRange(NarrowStrips.Of(device));
+        if (VoltageScale.Warning(device, rows.Where(r => r.Of("along") is not null).Select(r => (r.Current, r.Of("along")!.Odd ?? r.Of("along")!.Value))) is { } small)
+        {
+            list.Add(small);
         }
 
         return list;

@@ -9,6 +9,7 @@ namespace FieldSolve.Runs;
 /// <summary>The solves of a drive: wirings and signs run side by side, each with its own state, so the results do not depend on the number of threads.</summary>
 internal sealed class DriveWork
 {
+    private readonly SheetDevice device;
     private readonly DriveOptions options;
     private readonly MeshPair meshes;
     private readonly ReadingPlan[] plans;
@@ -23,6 +24,7 @@ internal sealed class DriveWork
 
     public DriveWork(SheetDevice device, DriveOptions options, MeshPair meshes, ReadingPlan[] plans)
     {
+        this.device = device;
         this.options = options;
         this.meshes = meshes;
         this.plans = plans;
@@ -145,7 +147,7 @@ internal sealed class DriveWork
             }
         }
 
-        return MeshRefinement.AlongScale(readings);
+        return VoltageScale.Of(device, currents[k], readings);
     }
 
     private void Follow(int w, int sign, int signs, PeakFinder peaks, IProgress<RunProgress>? progress, CancellationToken cancel)

@@ -24,7 +24,7 @@ internal static class EvenRates
         double hall = Math.Atan2(Math.Abs(zero.Ab - zero.Ba) / 2, Math.Sqrt(zero.Aa * zero.Bb));
         double[] exponent = [.. meshes.Exponent];
         double[] singular = new double[exponent.Length];
-        foreach (SingularPoint p in SingularPoints.Of(space.Mesh.Domain))
+        foreach (SingularPoint p in SingularPoints.Of(space.Mesh.Domain, zero))
         {
             singular[p.Vertex] = p.Exponent;
         }

@@ -39,6 +39,11 @@ internal static class FirstMesh
         }
         catch (MeshException e) when (e.IsTooMany)
         {
+            if (NarrowStrips.Of(device) is [var strip, ..])
+            {
+                throw new MeshException(strip, e);
+            }
+
             int corners = device.Domain.Edges.Count(edge => edge.IsRim);
             throw new MeshException(
                 FormattableString.Invariant(

@@ -72,9 +72,12 @@ internal static class LevelMeasure
     /// <param name="lower">The drive's currents by size, the largest first: where to look when the sheet cannot carry <paramref name="current"/>.</param>
     /// <param name="bothSigns">Measure the even parts too.</param>
     /// <param name="cancel">Checked at every step.</param>
-    public static IReadOnlyList<GoalMeasure> Of(MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel)
+    /// <param name="solved">Told of each state solved, from the threads that did so.</param>
+    public static IReadOnlyList<GoalMeasure> Of(
+        MeshPair meshes, ReadingPlan plan, double current, IReadOnlyList<double> lower, bool bothSigns, CancellationToken cancel, Action? solved = null)
     {
-        State weak = State.Weak(meshes, plan);
+        State weak = State.Weak(meshes, plan, cancel);
+        solved?.Invoke();
         GoalError[] weakErrors = [.. weak.Details.Select((d, k) => GoalError.Of(
             meshes.Between, meshes.Shares, weak.Fine[k] - weak.Coarse[k], [(1, weak.Residual, d)]))];
         double change = weak.Fine.Zip(weak.Coarse, (f, c) => Math.Abs(f - c)).DefaultIfEmpty(0).Max() / weak.Fine.Select(Math.Abs).DefaultIfEmpty(0).Max();
@@ -105,7 +108,7 @@ internal static class LevelMeasure
             }
 
             cancel.ThrowIfCancellationRequested();
-            Side(meshes, plan, reached, bothSigns, cancel, out plus, out minus);
+            Side(meshes, plan, reached, bothSigns, solved, cancel, out plus, out minus);
         }
 
         ErrorShares evenShares = meshes.EvenShares(plus.EvenExponent);
@@ -135,11 +138,15 @@ internal static class LevelMeasure
         return list;
     }
 
-    // Both signs side by side.
-    private static void Side(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, CancellationToken cancel, out State? plus, out State? minus)
+    // Both signs side by side, where memory allows.
+    private static void Side(MeshPair meshes, ReadingPlan plan, double current, bool bothSigns, Action? solved, CancellationToken cancel, out State? plus, out State? minus)
     {
         State?[] found = new State?[bothSigns ? 2 : 1];
-        Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel }, k => found[k] = State.Solve(meshes, plan, k == 0 ? current : -current, cancel));
+        Parallel.For(0, found.Length, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) }, k =>
+        {
+            found[k] = State.Solve(meshes, plan, k == 0 ? current : -current, cancel);
+            solved?.Invoke();
+        });
         (plus, minus) = (found[0], bothSigns && found[0] is not null ? found[1] : null);
     }
 
@@ -147,9 +154,10 @@ internal static class LevelMeasure
     private sealed record State(double[] Coarse, double[] Fine, double[] Residual, double[][] Details, double[] EvenExponent)
     {
         // In the limit of small drive, for one ampere.
-        public static State Weak(MeshPair meshes, ReadingPlan plan)
+        public static State Weak(MeshPair meshes, ReadingPlan plan, CancellationToken cancel)
         {
             (int source, int drain) = (plan.Wiring.Source, plan.Wiring.Drain);
+            cancel.ThrowIfCancellationRequested();
             double[] coarse = meshes.Coarse.UnitSolution(source, drain), fine = meshes.Fine.UnitSolution(source, drain);
             double[] carried = new double[fine.Length], residual = new double[fine.Length];
             meshes.Between.Apply(coarse, carried);
@@ -159,6 +167,7 @@ internal static class LevelMeasure
             residual[^1] = 0;
             double[][] details = [.. plan.Vectors(meshes.Fine).Select(j =>
             {
+                cancel.ThrowIfCancellationRequested();
                 double[] detail = new double[meshes.Between.Parent.Length];
                 meshes.Between.Detail(meshes.Fine.Adjoint(j), detail);
                 return detail;
@@ -214,6 +223,7 @@ internal static class LevelMeasure
             double[][] vectors = plan.Vectors(meshes.Fine), details = new double[plan.Count][];
             for (int k = 0; k < plan.Count; k++)
             {
+                cancel.ThrowIfCancellationRequested();
                 factor.SolveTransposed(vectors[k].AsSpan(0, n), z.AsSpan(0, n));
                 details[k] = new double[meshes.Between.Parent.Length];
                 meshes.Between.Detail(z, details[k]);

@@ -24,6 +24,7 @@ internal sealed class MeshPair
     private const double LeftAtLayer = 2.5;
 
     private readonly Falloff[] kinds;  // per vertex of the domain
+    private readonly int[] near;       // per coarse triangle: the singular vertex that it is too near for its size, without touching it; -1 for most
     private readonly double[] layer;   // per coarse triangle: resistivity of the pad whose rim it touches, ohm m²; 0 for most
     private readonly ConcurrentDictionary<(ReadingPlan, double), (double[] Coarse, double[] Fine)> known = new();
 
@@ -32,19 +33,21 @@ internal sealed class MeshPair
         Coarse = coarse;
         Fine = fine;
         Between = new Prolongation(coarse.Space, fine.Space);
-        Domain domain = coarse.Space.Mesh.Domain;
-        kinds = KindsOf(domain);
-        Exponent = Exponents(domain);
+        (kinds, Exponent) = Rates(coarse);
         Vertex = DomainVertices(coarse.Space.Mesh);
+        near = NearSingular.Vertices(coarse.Space.Mesh, coarse.Equations.Law.AtZeroField, Exponent);
         layer = LayersOf(coarse.Space);
         Shares = SharesOf(kinds, Exponent, true);
     }
 
     private MeshPair(MeshPair other, LabLaw law, CancellationToken cancel)
     {
-        (Between, Exponent, Vertex, kinds, layer) = (other.Between, other.Exponent, other.Vertex, other.kinds, other.layer);
+        (Between, layer) = (other.Between, other.layer);
         Coarse = other.Coarse.WithLaw(law, cancel);
         Fine = other.Fine.WithLaw(law, cancel);
+        (kinds, Exponent) = Rates(Coarse);
+        Vertex = DomainVertices(Coarse.Space.Mesh);
+        near = NearSingular.Vertices(Coarse.Space.Mesh, law.AtZeroField, Exponent);
         Shares = SharesOf(kinds, Exponent, true);
     }
 
@@ -136,43 +139,29 @@ internal sealed class MeshPair
         return vertex;
     }
 
-    // A tip does no harm to the order, though the adjoint is logarithmic there: the potential is smooth (measured on the square with a large Hall angle and
-    // the anisotropic disc of benchmarks/accuracy.md).
-    private static Falloff[] KindsOf(Domain domain)
+    // Per vertex of the domain, how an error from the triangles around it falls, and like which power of their size. A tip does no harm to the order, though the adjoint is
+    // logarithmic there: the potential is smooth (measured on the square with a large Hall angle and the anisotropic disc of benchmarks/accuracy.md); the size of the
+    // contributions goes like h^3. Potential and adjoint go like r^x and r^y at a singular point, so the reading's error goes like h^(x+y). A Hall part takes from one what it
+    // gives to the other (R. W. Rendell, S. M. Girvin, Phys. Rev. B 23, 6610 (1981)), so x + y = 2 pi/(2 w) whatever the Hall angle. At other vertices second order is on the
+    // safe side.
+    private static (Falloff[] Kinds, double[] Exponents) Rates(FieldLevel level)
     {
+        Domain domain = level.Space.Mesh.Domain;
         var kind = new Falloff[domain.Vertices.Count];
-        Array.Fill(kind, Falloff.Blunt);
-        foreach (int v in SingularPoints.SmoothVertices(domain))
-        {
-            kind[v] = Falloff.Smooth;
-        }
-
-        foreach (SingularPoint p in SingularPoints.Of(domain))
-        {
-            kind[p.Vertex] = Falloff.Singular;
-        }
-
-        return kind;
-    }
-
-    // Potential and adjoint go like r^x and r^y at a singular point, so the reading's error goes like h^(x+y). A Hall part takes from one what it
-    // gives to the other (R. W. Rendell, S. M. Girvin, Phys. Rev. B 23, 6610 (1981)), so x + y = 2 pi/(2 w) whatever the Hall angle. At a tip the size
-    // of the contributions goes like h^3. At other vertices second order is on the safe side.
-    private static double[] Exponents(Domain domain)
-    {
         double[] exponent = new double[domain.Vertices.Count];
+        Array.Fill(kind, Falloff.Blunt);
         Array.Fill(exponent, 2);
         foreach (int v in SingularPoints.SmoothVertices(domain))
         {
-            exponent[v] = 3;
+            (kind[v], exponent[v]) = (Falloff.Smooth, 3);
         }
 
-        foreach (SingularPoint p in SingularPoints.Of(domain))
+        foreach (SingularPoint p in SingularPoints.Of(domain, level.Equations.Law.AtZeroField))
         {
-            exponent[p.Vertex] = Math.Clamp(2 * p.Exponent, 0.5, 2);
+            (kind[p.Vertex], exponent[p.Vertex]) = (Falloff.Singular, Math.Clamp(2 * p.Exponent, 0.5, 2));
         }
 
-        return exponent;
+        return (kind, exponent);
     }
 
     // Triangles with a vertex on the rim of a resistive pad, on either side.
@@ -214,6 +203,11 @@ internal sealed class MeshPair
         {
             kind[t] = Vertex[t] < 0 ? Falloff.Smooth : kinds[Vertex[t]];
             share[t] = kind[t] == Falloff.Smooth ? ErrorShares.Smooth : 1 / (Math.Pow(2, exponent[Vertex[t]]) - 1);
+            if (kind[t] == Falloff.Smooth && near[t] >= 0)
+            {
+                (kind[t], share[t]) = (Falloff.Blunt, 1 / (Math.Pow(2, exponent[near[t]]) - 1));
+            }
+
             double sizes = layer[t] > 0 ? MeshSizes.EquilateralEdge(Coarse.Space.Mesh, t) / Math.Sqrt(layer[t] * tensor.SmallestSymmetricEigenvalue) : 0;
             if (sizes > 1 && kind[t] != Falloff.Singular)
             {

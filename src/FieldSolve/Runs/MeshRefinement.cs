@@ -53,14 +53,14 @@ internal sealed class MeshRefinement
 
     /// <summary>Wanted error of a reading, V.</summary>
     /// <param name="spec">What the device file asks for.</param>
-    /// <param name="along">Largest |along voltage| of all wirings, V (or of any reading where nothing is read along).</param>
+    /// <param name="along">From <see cref="VoltageScale"/>, V.</param>
     /// <param name="value">The reading, V.</param>
     public static double Wanted(MeshSpec spec, double along, double value) =>
         Math.Max(spec.Error * along, ResolvedShare * Math.Abs(value));
 
     /// <summary>Wanted error of an even part, V.</summary>
     /// <param name="spec">What the device file asks for.</param>
-    /// <param name="along">Largest |along voltage|, V.</param>
+    /// <param name="along">From <see cref="VoltageScale"/>, V.</param>
     /// <param name="evens">Even parts of the row, V.</param>
     /// <param name="even">The even part in question, V.</param>
     public static double WantedEven(MeshSpec spec, double along, IEnumerable<double> evens, double even) =>
@@ -104,9 +104,10 @@ internal sealed class MeshRefinement
                 return new(best!, goals, levels, false);
             }
 
-            tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles"));
+            string stage = string.Create(System.Globalization.CultureInfo.InvariantCulture, $"refining, level {level}: {4 * mesh.TriangleCount} triangles");
+            tell(stage);
             MeshPair meshes = clock.Time("factor", () => MeshPair.Build(device, mesh, law, cancel));
-            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve));
+            List<GoalMeasure> measured = clock.Time("estimate", () => Measure(device, meshes, plans, laws, currents, lower, bothSigns, cancel, oneCurve, Solved(stage, tell)));
             measured = [.. measured.Select(g => g.AfterMove(before))];
             before = measured;
 
@@ -210,6 +211,10 @@ internal sealed class MeshRefinement
     public static ISizeField NextSizes(SheetDevice device, MeshPair meshes, IReadOnlyList<GoalMeasure> goals, int level) =>
         MeshSizes.Next(meshes, goals, level, (int)(0.95 * device.Mesh.MaxUnknowns / UnknownsPerCoarseTriangle));
 
+    // Tells of each state solved: on a large mesh one takes long.
+    private static Action<int, int> Solved(string stage, Action<string> tell) =>
+        (done, all) => tell(string.Create(System.Globalization.CultureInfo.InvariantCulture, $"{stage}, {done} of {all} states solved"));
+
     // A mesh within the limit: sizes that ask for more are stretched. Null when there is none.
     private static TriangleMesh? Mesh(SheetDevice device, ISizeField size, int mostTriangles, CancellationToken cancel)
     {
@@ -249,21 +254,33 @@ internal sealed class MeshRefinement
     /// <param name="bothSigns">Measure the even parts too.</param>
     /// <param name="cancel">Checked at every step.</param>
     /// <param name="oneCurve">See <see cref="DriveOptions.OneCurve"/>.</param>
+    /// <param name="solved">Told how many states are solved, and of how many: each wiring at weak drive and at each sign of the current; one call at a time.</param>
     public static List<GoalMeasure> Measure(
         SheetDevice device, MeshPair meshes, IReadOnlyList<ReadingPlan> plans, IReadOnlyList<LabLaw>? laws, double[] currents, double[] lower, bool bothSigns,
-        CancellationToken cancel, bool oneCurve = false)
+        CancellationToken cancel, bool oneCurve = false, Action<int, int>? solved = null)
     {
+        int states = plans.Count * (device.Law.IsLinear ? 1 : bothSigns ? 3 : 2), done = 0;
+        var gate = new Lock();
+        void Count()
+        {
+            lock (gate)
+            {
+                // A current that the sheet cannot carry is tried again, lower.
+                solved?.Invoke(Math.Min(++done, states), states);
+            }
+        }
+
         var perPlan = new IReadOnlyList<GoalMeasure>[plans.Count];
         Parallel.For(
             0, plans.Count, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = SharedCores.Jobs(meshes.Fine.Space.Size) },
             k => perPlan[k] = LevelMeasure.Of(
-                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel));
+                laws is null ? meshes : meshes.WithLaw(laws[k], cancel), plans[k], currents[k], lower, bothSigns, cancel, Count));
         for (int k = 0; k < plans.Count; k++)
         {
             currents[k] = perPlan[k].Count > 0 ? perPlan[k][0].Current : currents[k];
         }
 
-        double along = AlongScale(perPlan.SelectMany(g => g).Where(g => !g.IsEven)
+        double along = VoltageScale.Of(device, currents.Max(Math.Abs), perPlan.SelectMany(g => g).Where(g => !g.IsEven)
             .Select(g => (g.Plan.Pairs[g.Pair] == g.Plan.Wiring.Along, g.Value)));
         double[] curve = oneCurve ? [.. perPlan.SelectMany(g => g).Where(g => g.IsEven).Select(g => g.Value)] : [];
         var all = new List<GoalMeasure>();
@@ -279,18 +296,5 @@ internal sealed class MeshRefinement
         }
 
         return all;
-    }
-
-    /// <summary>The largest |along voltage|; without any along pair, the largest of all readings.</summary>
-    public static double AlongScale(IEnumerable<(bool IsAlong, double Value)> readings)
-    {
-        double along = 0, any = 0;
-        foreach ((bool isAlong, double value) in readings)
-        {
-            any = Math.Max(any, Math.Abs(value));
-            along = isAlong ? Math.Max(along, Math.Abs(value)) : along;
-        }
-
-        return along > 0 ? along : any;
     }
 }

@@ -44,7 +44,7 @@ internal static class MeshSizes
         Tensor2 tensor = device.Law.AtZeroField;
         double stretch = Math.Clamp(Math.Pow(Math.Max(tensor.Aa / tensor.Bb, tensor.Bb / tensor.Aa), 0.25), 1, 2);
         double background = domain.Size / (FirstAcross * stretch);
-        var points = SingularPoints.Of(domain)
+        var points = SingularPoints.Of(domain).Concat(SingularPoints.Of(domain, tensor.ToLab(device.Axis))).DistinctBy(p => p.Vertex)
             .Where(p => corners || p.IsContactEnd)
             .Select(p => new SizePoint(
                 domain.Vertices[p.Vertex].X, domain.Vertices[p.Vertex].Y, Math.Min(background, ends * p.Reach / stretch), FirstGrowth))

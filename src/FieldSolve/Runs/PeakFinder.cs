@@ -19,7 +19,7 @@ internal sealed class PeakFinder
     {
         this.equations = equations;
         TriangleMesh mesh = equations.Space.Mesh;
-        IReadOnlyList<SingularPoint> singular = SingularPoints.Of(mesh.Domain);
+        IReadOnlyList<SingularPoint> singular = SingularPoints.Of(mesh.Domain, equations.Law.AtZeroField);
         var tree = new BoxTree([.. singular.Select(s => Box.Of(mesh.Domain.Vertices[s.Vertex]).Grown(LeftOut * s.Reach))]);
         var list = new List<int>();
         for (int t = 0; t < mesh.TriangleCount; t++)

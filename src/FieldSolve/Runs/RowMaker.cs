@@ -21,6 +21,9 @@ internal sealed class RowMaker
         this.goals = goals;
     }
 
+    /// <summary>What the rows are of.</summary>
+    public SheetDevice Device => device;
+
     /// <summary>Largest even part at one current, V.</summary>
     /// <param name="states">Wirings with their states at +I and -I.</param>
     public static double EvenScale(IEnumerable<(ReadingPlan Plan, StateResult? Plus, StateResult? Minus)> states)
@@ -42,7 +45,7 @@ internal sealed class RowMaker
     /// <param name="current">A.</param>
     /// <param name="here">State at the row's current.</param>
     /// <param name="opposite">State at the opposite current; null when it was not solved.</param>
-    /// <param name="along">Largest along voltage of all wirings at this current, V.</param>
+    /// <param name="along">What wanted errors are relative to at this current, V; see <see cref="VoltageScale"/>.</param>
     /// <param name="curve">Largest even part of the curve that the row is a point of, V; 0 when it stands by itself.</param>
     public CurveRow Make(ReadingPlan plan, double current, StateResult here, StateResult? opposite, double along, double curve = 0)
     {

@@ -14,18 +14,19 @@ public static class CauseSlope
         ArgumentNullException.ThrowIfNull(device);
         ArgumentNullException.ThrowIfNull(cause);
         ArgumentNullException.ThrowIfNull(motion);
-        return cause.Kind.Effect != CauseEffect.Motion ? null : motion.Velocity(Moved, cause.Kind.LargeChange(device));
+        return cause.Kind.Effect != CauseEffect.Motion ? null : MotionScale.Velocity(motion, device, cause.Kind, cause.Target, by => Moved(device, cause, by));
+    }
 
-        Domain? Moved(double by)
+    /// <summary>The domain at a value of a cause; null where that makes no device.</summary>
+    internal static Domain? Moved(SheetDevice device, SheetCause cause, double by)
+    {
+        try
         {
-            try
-            {
-                return cause.Applied(device, by).Domain;
-            }
-            catch (LayoutException)
-            {
-                return null;
-            }
+            return cause.Applied(device, by).Domain;
+        }
+        catch (LayoutException)
+        {
+            return null;
         }
     }
 

@@ -15,6 +15,9 @@ public sealed class NodeMotion
     // sheet the error is the fourth power of the step, and rounding stays at 1e-12.
     private const double Step = 1e-4;
 
+    /// <summary>How far from the reference the outermost domain lies, as a share of the scale.</summary>
+    internal const double Reach = 2 * Step;
+
     private static readonly (double At, double Weight)[] Stencil = [(-2, 1.0 / 12), (-1, -8.0 / 12), (1, 8.0 / 12), (2, -1.0 / 12)];
 
     private readonly MeshMover mover;
@@ -111,7 +114,7 @@ public sealed class NodeMotion
     /// <summary>Whether a domain changes in places alone when a cause changes a little either way, so that it has velocities.</summary>
     /// <param name="at">The domain at the reference.</param>
     /// <param name="domain">The domain at a value of the cause counted from the reference; null where there is none.</param>
-    /// <param name="scale">A value of the cause that moves things by about the size of the sheet.</param>
+    /// <param name="scale">A value of the cause that moves things by about the size of the sheet; less where a narrow contact or a close neighbour leaves little room.</param>
     public static bool IsSmooth(Domain at, Func<double, Domain?> domain, double scale)
     {
         ArgumentNullException.ThrowIfNull(at);
@@ -123,8 +126,8 @@ public sealed class NodeMotion
     /// Velocity of the places when a cause moves the domain.
     /// </summary>
     /// <param name="domain">The domain at a value of the cause counted from the reference; null or an exception-free null where there is none.</param>
-    /// <param name="scale">A value of the cause that moves things by about the size of the sheet.</param>
-    /// <returns>Null when the domain changes in more than places, however little the cause changes.</returns>
+    /// <param name="scale">A value of the cause that moves things by about the size of the sheet; less where a narrow contact or a close neighbour leaves little room.</param>
+    /// <returns>Null when the domain changes in more than places on the way, two ten-thousandths of the scale.</returns>
     public MotionField? Velocity(Func<double, Domain?> domain, double scale)
     {
         ArgumentNullException.ThrowIfNull(domain);

@@ -115,7 +115,7 @@ internal sealed class QuickAnswer
             }
         });
 
-        double along = MeshRefinement.AlongScale(plans.SelectMany((p, w) => (solved[w, 0].Values ?? []).Select((v, k) => (p.Pairs[k] == p.Wiring.Along, v))));
+        double along = VoltageScale.Of(device, largest, plans.SelectMany((p, w) => (solved[w, 0].Values ?? []).Select((v, k) => (p.Pairs[k] == p.Wiring.Along, v))));
         var maker = new RowMaker(device, []);
         var rows = new List<CurveRow>();
         for (int w = 0; w < plans.Length; w++)

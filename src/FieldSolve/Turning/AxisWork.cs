@@ -144,7 +144,7 @@ internal sealed class AxisWork
         }
     }
 
-    private double AlongScale(int k) => MeshRefinement.AlongScale(Enumerable.Range(0, places.Count).Where(p => states[p, k, 0]?.Values is not null)
+    private double AlongScale(int k) => VoltageScale.Of(device, currents[k], Enumerable.Range(0, places.Count).Where(p => states[p, k, 0]?.Values is not null)
         .SelectMany(p => states[p, k, 0]!.Values!.Select((v, i) => (plans[p].Pairs[i] == plans[p].Wiring.Along, v))));
 
     private void Follow(int place, IProgress<RunProgress>? progress, CancellationToken cancel)

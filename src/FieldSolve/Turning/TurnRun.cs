@@ -122,7 +122,7 @@ public static class TurnRun
             Mesh = mesh.Meshes.Coarse.Space.Mesh,
             Levels = mesh.Levels,
             Cautions = Cautions.Of(one, [.. all, .. reversed]),
-            Warnings = DriveWarnings.Of(all, work.Refusals),
+            Warnings = DriveWarnings.Of(device, all, work.Refusals),
             Figures = new(
                 fine.Space.Size, fine.Space.Mesh.TriangleCount, fine.Analysis.FactorNonZeros,
                 total.Factorisations + (2 * mesh.Levels.Count) + (2 * work.SolvedPlaces), total.Solves, total.Steps,

@@ -27,6 +27,12 @@ public class BarTests(ITestOutputHelper output)
         .Pad("w", -11e-6, -3e-6, -7e-6, 3e-6, resistivity).Pad("e", 7e-6, -3e-6, 11e-6, 3e-6, resistivity).Pad("f", -1e-6, -1e-6, 1e-6, 1e-6, resistivity)
         .Tip("p", -4e-6, 2.5e-6).Tip("q", 4e-6, 2.5e-6).Tip("r", 4e-6, -2.5e-6).Wiring("x", "w", "e", "p q", "q r", "fp: f p").Drive(2e-4).Wanted(w));
 
+    // Right angles become 46 and 134 degrees in the plane where this sheet is isotropic.
+    [Fact]
+    public void Ends_of_a_bar_with_its_crystal_axis_askew() => Compare(w => DeviceText.Bar(52e-6, 30e-6, DeviceText.Ohmic(6e-3, 69e-3, 0, -20))
+        .Whole("w", "end", "left").Whole("e", "end", "right").Stretch("p", -7.9e-6, 15e-6, -7.6e-6, 15e-6).Stretch("q", 18.3e-6, 15e-6, 19.4e-6, 15e-6)
+        .Stretch("r", 1e-6, -15e-6, 3.3e-6, -15e-6).Wiring("x", "w", "e", "p q", "p r").Drive(1e-4).Wanted(w));
+
     // Nothing can be compared with a first mesh, at whatever current.
     [Fact]
     public void Weak_drives_on_a_first_mesh_are_trusted_no_more_than_strong_ones()

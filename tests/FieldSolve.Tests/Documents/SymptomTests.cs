@@ -11,7 +11,7 @@ public sealed partial class SymptomTests
     /// <summary>Files whose longer texts are cautions and warnings; a further one is a line here.</summary>
     private static readonly string[] Speakers =
     [
-        "FieldSolve/Readings/Cautions.cs", "FieldSolve/Runs/DriveWarnings.cs", "FieldSolve/Lockin/LockinWarnings.cs", "FieldSolve/Runs/Tolerance/ToleranceWarnings.cs",
+        "FieldSolve/Readings/Cautions.cs", "FieldSolve/Runs/DriveWarnings.cs", "FieldSolve/Runs/VoltageScale.cs", "FieldSolve/Device/NarrowStrips.cs", "FieldSolve/Lockin/LockinWarnings.cs", "FieldSolve/Runs/Tolerance/ToleranceWarnings.cs",
         "FieldSolve/Runs/Fit/FitWarnings.cs", "FieldSolve/Runs/BandsRun.cs", "FieldSolve/Runs/Overlay/OverlayRun.cs", "FieldSolve/Turning/TurnRun.cs",
         "FieldSolve.Cli/Commands/RunManners.cs", "FieldSolve.Cli/Commands/MeshCommand.cs", "FieldSolve.Cli/Commands/OpenCommand.cs",
     ];

@@ -78,6 +78,7 @@ public sealed class FittedDeviceTests : IDisposable
         Assert.Contains("# b = not determined by the data\n", text, StringComparison.Ordinal);
         Assert.Contains("# l.resistance = 0.0002 +- 2E-05 ohm m, not applied below\n", text, StringComparison.Ordinal);
         Assert.Contains("# a = 0.003 +- 0.0003 S\n", text, StringComparison.Ordinal);
+        Assert.Contains("# sharpness = 3 +- 0.3\n", text, StringComparison.Ordinal);
         Assert.EndsWith(Rest, text, StringComparison.Ordinal);
     }
 

@@ -30,13 +30,13 @@ public class WarningTests
             Row("w", 0, RowStatus.Ok), Row("w", -3e-4, RowStatus.OutsideLaw, exit: Exit), Row("w", 2e-4, RowStatus.OutsideLaw, exit: Exit),
             Row("v", 1e-4, RowStatus.ErrorAboveWanted, 2e-6, null, 0, 0, ("along", 1), ("source", 2)), Row("v", 5e-4, RowStatus.NotConverged), Row("u", 6e-4, RowStatus.NotConverged),
         ];
-        IReadOnlyList<string> words = DriveWarnings.Of(rows, new Dictionary<string, string> { ["v"] = "The table ends." });
+        IReadOnlyList<string> words = DriveWarnings.Of(Device(), rows, new Dictionary<string, string> { ["v"] = "The table ends." });
         Assert.Equal(4, words.Count);
         Assert.StartsWith("Wiring 'w' leaves its law from 200 µA on: at (1 µm, -2 µm) the field reaches 300 kV/m, beyond 200 kV/m where the law is guarded (zone of radius 40 nm)", words[0], StringComparison.Ordinal);
         Assert.StartsWith("Wiring 'v' has no solution from 500 µA on: the iteration did not converge. The table ends. The sheet may", words[1], StringComparison.Ordinal);
         Assert.StartsWith("Wiring 'v' misses the wanted numerical error (first at 100 µA; largest error bar 4 µV in 'source').", words[2], StringComparison.Ordinal);
         Assert.StartsWith("Wiring 'u' has no solution from 600 µA on: the iteration did not converge. The sheet may", words[3], StringComparison.Ordinal);
-        Assert.Empty(DriveWarnings.Of([rows[0]], None));
+        Assert.Empty(DriveWarnings.Of(Device(), [rows[0]], None));
     }
 
     [Fact]
@@ -49,7 +49,7 @@ public class WarningTests
             Point("w", 1e-4, 100, RowStatus.ErrorAboveWanted, Bad("along", 1, 1e-9, 0, RowStatus.ErrorAboveWanted), Bad("across", 3, 2e-9, 0, RowStatus.ErrorAboveWanted)),
             Point("v", 5e-4, 20, RowStatus.NotConverged), Point("v", 4e-4, null, RowStatus.Ok, Bad("along", 1, 0, 0, RowStatus.Ok)), Point("u", 3e-4, null, RowStatus.NotConverged),
         ];
-        IReadOnlyList<string> words = LockinWarnings.Of(points, new Dictionary<string, string> { ["u"] = "It breaks." });
+        IReadOnlyList<string> words = LockinWarnings.Of(Device(), points, new Dictionary<string, string> { ["u"] = "It breaks." });
         Assert.Equal(4, words.Count);
         Assert.Contains("leaves its law from 200 µA RMS on", words[0], StringComparison.Ordinal);
         Assert.Contains("that moves harmonic 1 of 'along' by more than its wanted error", words[0], StringComparison.Ordinal);

@@ -41,6 +41,15 @@ internal static class PlacementReport
                 faults.Add(at.At, Message(p, at, other, live));
             }
         }
+
+        foreach (ContactDraft c in contacts.Where(c => c.Placement!.Pad is not null && !reported.Contains(c.At)))
+        {
+            if (RimStrip.Of(live, c.Placement!.Pad!, c.Placement.IdealPad) is { Squares: > NarrowStrips.TooMany } strip)
+            {
+                string words = NarrowStrips.Words(c.Name, strip);
+                faults.Add(c.At, $"{char.ToLowerInvariant(words[0])}{words[1..]}, too thin a strip for any mesh; move the side well off the edge, or let the pad reach across it");
+            }
+        }
     }
 
     private static string Message(PlacementProblem p, ContactDraft at, ContactDraft? other, Outline live)

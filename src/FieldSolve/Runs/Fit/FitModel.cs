@@ -144,11 +144,11 @@ internal sealed class FitModel : IFitFunction
             CauseKind kind = problem.Parameters[j].Kind;
             if (kind.Effect == CauseEffect.Motion)
             {
-                fields[j] = motion.Velocity(by => problem.DomainAt(p, j, by), kind.LargeChange(problem.DeviceAt(p)));
+                fields[j] = MotionScale.Velocity(motion, problem.DeviceAt(p), kind, problem.Parameters[j].Target, by => problem.DomainAt(p, j, by));
             }
         });
         int jump = Enumerable.Range(0, fields.Length).FirstOrDefault(j => fields[j] is null && problem.Parameters[j].Kind.Effect == CauseEffect.Motion, -1);
-        return jump < 0 ? fields : throw problem.Jump(jump, p[jump]);
+        return jump < 0 ? fields : throw problem.Jump(p, jump);
     }
 
     /// <summary>

@@ -145,21 +145,24 @@ internal sealed class FitProblem
         for (int j = 0; j < p.Length; j++)
         {
             CauseKind kind = Parameters[j].Kind;
-            if (kind.Effect == CauseEffect.Motion && !NodeMotion.IsSmooth(there.Domain, by => DomainAt(p, j, by), kind.LargeChange(there)))
+            if (kind.Effect == CauseEffect.Motion && !MotionScale.IsSmooth(there, kind, Parameters[j].Target, by => DomainAt(p, j, by)))
             {
-                throw Jump(j, p[j]);
+                throw Jump(p, j);
             }
         }
     }
 
     /// <summary>What to say of a number without a derivative.</summary>
-    public FitException Jump(int j, double value)
+    public FitException Jump(double[] p, int j)
     {
         FitParameter q = Parameters[j];
+        double value = p[j];
+        (bool noRoom, string why) = MotionScale.Obstacle(DeviceAt(p), new SheetCause(q.Kind, q.Target, 0, CauseShape.Normal));
+        string there = noRoom ? $"there is no room for the smallest change ({why})" : "there the smallest change makes an edge of the metal or of the sheet meet another, appear or vanish";
         return new(
             string.Create(
                 CultureInfo.InvariantCulture,
-                $"'{q.Kind.Key}'{(q.Target.Name.Length > 0 ? $": contact '{q.Target.Name}'" : "")} cannot be free at {value / q.UnitSize:G6} {q.Unit}: there the smallest change makes an edge of the metal or of the sheet meet another, appear or vanish, and the readings have no derivative; start elsewhere (start = …), keep away from that place with 'min' and 'max', or draw it clear of the edge"),
+                $"'{q.Kind.Key}'{(q.Target.Name.Length > 0 ? $": contact '{q.Target.Name}'" : "")} cannot be free at {value / q.UnitSize:G6} {q.Unit}: {there}, and the readings have no derivative; start elsewhere (start = …), keep away from that place with 'min' and 'max', or draw it clear of the edge"),
             q.At.Line, q.At.Column);
     }
 

@@ -12,7 +12,7 @@ public enum SampleStatus
     /// <summary>The values make no device: contacts overlap, a width or a resistance is no longer positive.</summary>
     NoDevice,
 
-    /// <summary>The sheet has no solution at the current.</summary>
+    /// <summary>The sheet has no solution at the current, or one in which a ratio has no value.</summary>
     NotConverged,
 }
 

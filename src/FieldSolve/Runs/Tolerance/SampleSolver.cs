@@ -97,7 +97,7 @@ internal sealed class SampleSolver(ToleranceModel model)
             }
         }
 
-        return new(index, SampleStatus.Ok, Values(readings));
+        return Of(index, SampleStatus.Ok, readings);
     }
 
     private SampleResult Anew(int index, SheetDevice device, CancellationToken cancel)
@@ -120,7 +120,14 @@ internal sealed class SampleSolver(ToleranceModel model)
             readings[w] = ToleranceModel.BothSigns(maker.Make(plans[w], model.Current, plus, minus, 0));
         }
 
-        return new(index, SampleStatus.Remeshed, Values(readings));
+        return Of(index, SampleStatus.Remeshed, readings);
+    }
+
+    // A ratio to an along voltage of exactly zero has no value.
+    private SampleResult Of(int index, SampleStatus status, double[][][] readings)
+    {
+        double[] values = Values(readings);
+        return values.All(double.IsFinite) ? new(index, status, values) : new(index, SampleStatus.NotConverged, []);
     }
 
     private double[] Values(double[][][] readings) => [.. model.Quantities.Select(q =>

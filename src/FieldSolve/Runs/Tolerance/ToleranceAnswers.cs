@@ -27,7 +27,7 @@ internal static class ToleranceAnswers
             }
 
             int odd = Find(model, w, "across", ReadingPart.Odd), even = Find(model, w, "across", ReadingPart.Even);
-            double along = s.Row.Of("along")?.Odd ?? 0;
+            double along = s.AlongIsZero ? 0 : s.Row.Of("along")?.Odd ?? 0;
             list.Add(name + PickUp(model, statistics[odd], Entries(budget, model.Quantities[odd]), along));
             if (Placement(model, statistics[odd], Entries(budget, model.Quantities[odd]), along, options.Wanted) is { } placement)
             {

@@ -33,6 +33,9 @@ internal sealed class DesignState
 
     /// <summary>Values with error bars and status.</summary>
     public required CurveRow Row { get; init; }
+
+    /// <summary>The along voltage cannot be told from zero, so that nothing is a share of it.</summary>
+    public bool AlongIsZero => Row.Of("along") is { } along && !(Math.Abs(along.Odd!.Value) > along.Error);
 }
 
 /// <summary>
@@ -105,7 +108,7 @@ internal sealed class ToleranceModel
         var bare = new ToleranceModel(device, causes, refinement, current)
         {
             States = states,
-            Quantities = ToleranceQuantity.Of(plans, device.Law.IsLinear),
+            Quantities = [.. ToleranceQuantity.Of(plans, device.Law.IsLinear).Where(q => !q.IsRatio || !states[q.WiringIndex].AlongIsZero)],
             Values = [],
             Errors = [],
             Slopes = new double[0, 0],
@@ -143,7 +146,7 @@ internal sealed class ToleranceModel
             }
         }
 
-        double along = MeshRefinement.AlongScale(plans.SelectMany((p, w) =>
+        double along = VoltageScale.Of(maker.Device, current, plans.SelectMany((p, w) =>
             solved[w, 0]!.Value.Result.Values!.Select((v, k) => (p.Pairs[k] == p.Wiring.Along, v))));
         var sensitivity = new StateSensitivity[plans.Length, 2, 2];
         Parallel.For(0, 4 * plans.Length, new ParallelOptions { CancellationToken = cancel, MaxDegreeOfParallelism = Environment.ProcessorCount }, job =>

@@ -57,7 +57,7 @@ public static class ToleranceRun
             Draw = draw.Of,
             Statistics = statistics,
             Answers = ToleranceAnswers.Of(model, budget, statistics, options),
-            Warnings = [.. spec.Notes, .. ToleranceWarnings.Of(model, samples, statistics)],
+            Warnings = [.. spec.Notes, .. ToleranceWarnings.Of(model, samples, statistics, options)],
             Cautions = Cautions.Of(device, [.. model.States.Select(s => s.Row)]),
             Unknowns = (model.Meshes.Fine.Space.Size, model.Meshes.Coarse.Space.Size),
             Stages = clock.Times,

@@ -1,6 +1,7 @@
 using System.Globalization;
 using FieldSolve.Quantities;
 using FieldSolve.Readings;
+using FieldSolve.Sensitivity;
 
 namespace FieldSolve.Runs;
 
@@ -9,7 +10,7 @@ internal static class ToleranceWarnings
 {
     private const double Far = 0.1;
 
-    public static IEnumerable<string> Of(ToleranceModel model, IReadOnlyList<SampleResult> samples, IReadOnlyList<SampleStatistics> statistics)
+    public static IEnumerable<string> Of(ToleranceModel model, IReadOnlyList<SampleResult> samples, IReadOnlyList<SampleStatistics> statistics, ToleranceOptions options)
     {
         foreach (DesignState s in model.States.Where(s => s.Row.Status != RowStatus.Ok))
         {
@@ -20,8 +21,26 @@ internal static class ToleranceWarnings
         {
             if (model.WithoutSlope[c])
             {
-                yield return $"'{model.Causes[c].Label}' changes more than places at once (a corner of metal lies on the edge), so it has no derivative and is left out of the budget; the samples contain it.";
+                (bool noRoom, string why) = MotionScale.Obstacle(model.Device, model.Causes[c]);
+                yield return noRoom
+                    ? $"'{model.Causes[c].Label}' has no room for the smallest change ({why}), so it has no derivative and is left out of the budget; the samples contain it where they make a device."
+                    : $"'{model.Causes[c].Label}' changes more than places at once ({why}), so it has no derivative and is left out of the budget; the samples contain it.";
             }
+        }
+
+        foreach (DesignState s in model.States.Where(s => s.AlongIsZero && s.Plan.Wiring.Across is not null))
+        {
+            yield return Text($"The along voltage of wiring '{s.Plan.Wiring.Name}' cannot be told from zero, so across / along is left out. Read 'along' between probes that the current passes one after the other.");
+        }
+
+        foreach (DesignState s in model.States.Where(s => options.Explain is not null && s.Plan.Wiring.Across is null))
+        {
+            yield return Text($"Wiring '{s.Plan.Wiring.Name}' has no across pair, so --explain has no voltage to explain there; give the wiring 'across', or explain another one.");
+        }
+
+        if (VoltageScale.Warning(model.Device, model.States.Where(s => s.Row.Of("along") is not null).Select(s => (s.Row.Current, s.Row.Of("along")!.Odd!.Value))) is { } small)
+        {
+            yield return small;
         }
 
         int none = samples.Count(s => s.Status == SampleStatus.NoDevice), failed = samples.Count(s => s.Status == SampleStatus.NotConverged);

@@ -117,6 +117,65 @@ public class LockinRunTests
         Assert.Throws<ArgumentException>(() => LockinRun.Execute(device, new LockinOptions(), null, default));
     }
 
+    // The smaller cycles start from what the path knows; near the last current that the sheet carries (here the law saturates at 40 A/m) that misled them.
+    [Fact]
+    public void A_cycle_that_the_sheet_cannot_carry_leaves_the_smaller_ones_alone()
+    {
+        string text = Disc.Replace("kind = \"quadratic\"", "kind = \"saturating\"", StringComparison.Ordinal).Replace("a = \"4 mS\"\nb = \"1 mS\"", "a = \"2 mS\"\nb = \"2 mS\"", StringComparison.Ordinal)
+            .Replace("d11 = \"1e-10 A m/V^2\"\nd12 = \"4e-10 A m/V^2\"\nfield_limit = \"400 kV/m\"", "field_a = \"20 kV/m\"\nfield_b = \"20 kV/m\"\nsharpness = 2", StringComparison.Ordinal)
+            .Replace("from = \"20 uA\", to = \"80 uA\", steps = 2", "from = \"14 uA\", to = \"42 uA\", steps = 3", StringComparison.Ordinal);
+        LockinResult result = Run(text + "\n[mesh]\nerror = 1e-2\neven_error = 0.1\n");
+        Assert.Equal([RowStatus.Ok, RowStatus.Ok, RowStatus.NotConverged], result.Points.Select(p => p.Status));
+    }
+
+    // The refinement looks at the largest and the weakest current; this flake's harmonics missed what was wanted by a fifth.
+    [Fact]
+    public void A_run_that_misses_what_is_wanted_is_made_again_on_a_finer_mesh()
+    {
+        const string Flake = """
+            [sheet]
+            outline = { corners = [["0 um", "0 um"], ["9 um", "-1 um"], ["14 um", "2 um"], ["15 um", "7 um"], ["11 um", "10 um"], ["8 um", "8.5 um"], ["3 um", "11 um"], ["-1 um", "6 um"]] }
+            dead_edge = "80 nm"
+            [law]
+            kind = "quadratic"
+            axis = "-15 deg"
+            a = "3 mS"
+            b = "1 mS"
+            d11 = "2e-9 A m/V^2"
+            d12 = "-1e-9 A m/V^2"
+            field_limit = "100 kV/m"
+            [[contact]]
+            name = "L"
+            edge = { from = ["-162.1622 nm", "972.973 nm"], to = ["-0.5 um", "3 um"] }
+            [[contact]]
+            name = "R"
+            edge = { from = ["15 um", "7 um"], to = ["14.5 um", "4.5 um"] }
+            [[contact]]
+            name = "P"
+            pad = [["2 um", "1 um"], ["4 um", "0.5 um"], ["4 um", "-3 um"], ["2 um", "-3 um"]]
+            [[contact]]
+            name = "Q"
+            pad = [["10 um", "8 um"], ["10 um", "12 um"], ["12 um", "12 um"], ["12 um", "8 um"]]
+            resistivity = "2e-8 ohm cm^2"
+            [[point]]
+            name = "m"
+            at = ["6 um", "5 um"]
+            [[point]]
+            name = "n"
+            at = ["10 um", "5 um"]
+            [[wiring]]
+            name = "main"
+            source = "L"
+            drain = "R"
+            along = ["m", "n"]
+            across = ["Q", "P"]
+            [drive]
+            current = { from = "20 uA", to = "100 uA", steps = 2 }
+            """;
+        LockinResult result = Run(Flake);
+        Assert.True(result.AllOk, string.Join('\n', result.Warnings));
+    }
+
     private static LockinResult Run(string text, bool frames = false)
     {
         DeviceReading reading = DeviceFile.Parse(text, "test.toml", ".");

@@ -82,6 +82,22 @@ public class MutatedFilesFoundTests
         Assert.Empty(SampleJournal.Read(folder[SampleJournal.FileName]).Samples);
     }
 
+    // growth = "1e300 nm" in [tolerance] ended the command: squares of the lengths were infinite.
+    [Theory]
+    [InlineData(1e291)]
+    [InlineData(-1e291)]
+    public void A_rim_that_moves_beyond_all_sheets_makes_no_device(double by) =>
+        Assert.Throws<FieldSolve.Geometry.LayoutException>(() => new DeviceDraft(DeviceTexts.Good(DeviceTexts.Bar)).Grow(by));
+
+    [Theory]
+    [InlineData("\"1e300 nm\"")]
+    [InlineData("{ half_width = \"1e-300 nm\" }")]
+    public void A_tolerance_beyond_all_sheets_is_refused_where_it_stands(string size)
+    {
+        Fault fault = Assert.Single(DeviceFile.Parse($"{DeviceTexts.Bar}\n[tolerance]\ngrowth = {size}\n", "d.toml", ".").Faults);
+        Assert.True(fault.Column >= 10 && fault.Message.Contains("beyond any sheet; check its unit", StringComparison.Ordinal), fault.ToString());
+    }
+
     private static void Write(TempFolder folder, string head, params string[] lines) => File.WriteAllText(
         folder[SampleJournal.FileName], string.Concat(lines.Where(l => l.Length > 0).Select(l => $"{l},{SampleJournal.Check(l)}\n").Prepend($"{head};{SampleJournal.Check(head)}\n")));
 }

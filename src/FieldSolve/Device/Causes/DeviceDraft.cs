@@ -7,6 +7,9 @@ namespace FieldSolve.Device;
 /// <param name="device">The device as designed.</param>
 public sealed class DeviceDraft(SheetDevice device)
 {
+    // Beyond this nothing is a sheet any more, and squares of lengths overflow.
+    private const double MostGrowth = 1e6;
+
     private readonly Dictionary<string, double> law = new(StringComparer.Ordinal);
     private readonly double[] resistance = [.. device.Contacts.Select(c => c.Kind == ContactKind.Edge ? c.LineResistance : c.Resistivity)];
     private readonly Tip[] tips = [.. device.Tips];
@@ -36,6 +39,11 @@ public sealed class DeviceDraft(SheetDevice device)
     internal void Grow(double by)
     {
         Outline was = Live;
+        if (!(Math.Abs(by) <= MostGrowth * Designed.Domain.Size))
+        {
+            throw new LayoutException("the rim is moved by more than a million times the size of the sheet");
+        }
+
         Live = OutlineGrowth.Of(was, by);
         for (int c = 0; c < Contacts.Length; c++)
         {

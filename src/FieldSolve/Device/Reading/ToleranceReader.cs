@@ -1,3 +1,4 @@
+using System.Globalization;
 using FieldSolve.Geometry;
 using FieldSolve.Quantities;
 
@@ -6,6 +7,9 @@ namespace FieldSolve.Device;
 /// <summary>Reads [tolerance]: first what stands there, then, once the device stands, whom it befalls.</summary>
 internal sealed class ToleranceReader(Section root, ContactReader contacts)
 {
+    // Squares of sizes beyond these over- or underflow in a budget.
+    private const double Smallest = 1e-60, Largest = 1e60;
+
     private readonly FaultList faults = root.Faults;
     private readonly List<Given> given = [];
     private bool present;
@@ -191,9 +195,19 @@ internal sealed class ToleranceReader(Section root, ContactReader contacts)
             ? (half is null ? value : value / Math.Sqrt(3), uniform ? CauseShape.Uniform : CauseShape.Normal)
             : null;
 
-        double? One(TomlValue value, string name) => plain
-            ? Values.Number(value, name, Range.NonNegative, integer: false, faults)
-            : Values.Quantity(value, name, kind.Dimension, Range.NonNegative, faults, example.Trim('"'));
+        double? One(TomlValue value, string name)
+        {
+            double? size = plain
+                ? Values.Number(value, name, Range.NonNegative, integer: false, faults)
+                : Values.Quantity(value, name, kind.Dimension, Range.NonNegative, faults, example.Trim('"'));
+            if (size is > 0 and (< Smallest or > Largest))
+            {
+                faults.Add(value.At, string.Create(CultureInfo.InvariantCulture, $"{name} is {size:G3} in SI units, beyond any sheet; check its unit"));
+                return null;
+            }
+
+            return size;
+        }
     }
 
     private List<int>? Members(TomlEntry entry)

@@ -17,7 +17,7 @@ internal static class NearSingular
     // Exponents that differ by rounding alone.
     private const double Same = 1e-6;
 
-    /// <summary>Per triangle a singular vertex of the domain, the nearest in that plane; -1 for most triangles, and for those that touch one.</summary>
+    /// <summary>Per triangle a singular vertex of the domain, the nearest in that plane; -1 for most triangles. Those that touch one may have theirs.</summary>
     /// <param name="mesh">The triangles.</param>
     /// <param name="conductance">In the lab frame.</param>
     /// <param name="exponent">Per vertex of the domain: p of an error like h^p; singular where below 2.</param>
